@@ -1,0 +1,57 @@
+/**
+ * The life of a frame and of a reading, as data. A state word is compared nowhere else: commands ask
+ * `frameStep` / `readingStep` which state a step leads from and to.
+ */
+export const FRAME_STATES = ['copying', 'waiting', 'fitting', 'fitted', 'refused', 'unreadable'] as const;
+export type FrameState = (typeof FRAME_STATES)[number];
+
+export const READING_STATES = ['draft', 'review', 'returned', 'accepted', 'replaced'] as const;
+export type ReadingState = (typeof READING_STATES)[number];
+
+export const FRAME_WORDS: Record<FrameState, string> = {
+  copying: 'Copying',
+  waiting: 'Waiting',
+  fitting: 'Fitting',
+  fitted: 'Fitted',
+  refused: 'Refused',
+  unreadable: 'Unreadable',
+};
+
+export const READING_WORDS: Record<ReadingState, string> = {
+  draft: 'Draft',
+  review: 'To review',
+  returned: 'Returned',
+  accepted: 'Accepted',
+  replaced: 'Replaced',
+};
+
+export const FRAME_STEPS = {
+  land: { from: ['copying'], to: 'waiting' },
+  breakOff: { from: ['copying'], to: 'unreadable' },
+  take: { from: ['waiting'], to: 'fitting' },
+  putBack: { from: ['fitting'], to: 'waiting' },
+  fit: { from: ['fitting', 'refused'], to: 'fitted' },
+  refuse: { from: ['fitting'], to: 'refused' },
+  giveUp: { from: ['fitting'], to: 'unreadable' },
+} as const satisfies Record<string, { from: readonly FrameState[]; to: FrameState }>;
+
+export const READING_STEPS = {
+  send: { from: ['draft'], to: 'review' },
+  accept: { from: ['review'], to: 'accepted' },
+  return: { from: ['review'], to: 'returned' },
+  /** A re-fit makes a new reading; the one it was made from steps back. */
+  replace: { from: ['draft', 'review', 'returned'], to: 'replaced' },
+} as const satisfies Record<string, { from: readonly ReadingState[]; to: ReadingState }>;
+
+export type FrameStep = keyof typeof FRAME_STEPS;
+export type ReadingStep = keyof typeof READING_STEPS;
+
+/** May the step be taken from this state? */
+export function readingMay(step: ReadingStep, state: ReadingState): boolean {
+  return (READING_STEPS[step].from as readonly ReadingState[]).includes(state);
+}
+
+/** True while the frame's state can still change by itself; a page shows these live. */
+export function frameIsMoving(state: FrameState): boolean {
+  return state === 'copying' || state === 'waiting' || state === 'fitting';
+}

@@ -1,0 +1,13 @@
+/** Limits stated once; every screen and sentence that names one reads it here. */
+export const LIMITS = {
+  fileBytes: 200 * 1024 * 1024,
+  filePixels: 100_000_000,
+  filesAtOnce: 500,
+  pageRows: 25,
+  passwordShortest: 12,
+  passwordLongest: 256,
+  resetMinutes: 30,
+  serialLength: 60,
+  unitsAtOnce: 5000,
+  wordsLength: 1000,
+} as const;

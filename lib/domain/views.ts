@@ -1,0 +1,367 @@
+/** What the pages are given: plain data, made by lib/server/queries and drawn by app and components. */
+import type { FrameState, ReadingState } from './life-cycle';
+import type { BudgetRow, Finding, FindingWord, ReadingResult, Region, Strip, ToneChoice } from './reading-result';
+import type { Role } from './roles';
+import type { Judgement, Medium, Specification, Verdict } from './specification';
+
+export interface PersonRef {
+  id: number;
+  name: string;
+}
+
+/** The signed-in person as a page needs it. */
+export interface Me extends PersonRef {
+  email: string;
+  roles: Role[];
+}
+
+/** Times cross the wire as ISO 8601 UTC strings. */
+export type Instant = string;
+
+/** ---- benches ---- */
+export interface StatedValue {
+  value: number;
+  /** As entered: expanded or standard uncertainty with its coverage factor. */
+  stated: number;
+  k: number;
+  /** stated / k */
+  u: number;
+  certificate: string;
+  /** Calendar date yyyy-mm-dd or null. */
+  due: string | null;
+}
+
+export interface SetupView {
+  id: number;
+  benchId: number;
+  number: number;
+  from: Instant;
+  /** null while in force. */
+  to: Instant | null;
+  plate: string;
+  scaleUmPerPx: StatedValue;
+  separationUm: StatedValue;
+  widthUm: StatedValue;
+  distanceMm: StatedValue;
+  remountNm: { u: number; dof: number | null } | null;
+  tone: ToneChoice;
+  why: string;
+  enteredBy: PersonRef;
+  enteredAt: Instant;
+  readings: number;
+  /** What changed from the setup before, in words; '' for the first. */
+  change: string;
+  /** Larger than both uncertainties together. */
+  changeIsLook: boolean;
+}
+
+/** Fit for use today? */
+export interface BenchFitness {
+  word: FindingWord;
+  /** "due in 20 days", "overdue 3 days: take, not accept" */
+  text: string;
+}
+
+export interface BenchChoice {
+  id: number;
+  name: string;
+  setupNumber: number | null;
+  fitness: BenchFitness;
+}
+
+export interface BenchView extends BenchChoice {
+  note: string;
+  inForce: SetupView | null;
+  /** Newest first, the one in force included. */
+  setups: SetupView[];
+  /** Wavelength (nm, air) to draw the geometry with: the last accepted reading's, else 635. */
+  drawNm: number;
+  drawnFrom: 'reading' | 'example';
+}
+
+/** ---- lots ---- */
+export interface SpecificationView extends Specification {
+  id: number;
+  retired: boolean;
+  lots: number;
+}
+
+export interface LotRow {
+  id: number;
+  number: string;
+  supplier: string;
+  specification: SpecificationView;
+  units: number;
+  unitsTaken: number;
+  openedBy: PersonRef;
+  openedAt: Instant;
+  closedAt: Instant | null;
+}
+
+export interface UnitRow {
+  id: number;
+  serial: string;
+  frames: number;
+  /** The newest reading that stands (not replaced). */
+  reading: ReadingBrief | null;
+  outcome: { outcome: Outcome; reason: string; by: PersonRef; at: Instant } | null;
+}
+
+export interface LotView extends LotRow {
+  rows: UnitRow[];
+  totalRows: number;
+  page: number;
+  counts: Record<Verdict | 'none', number>;
+}
+
+export interface SourceView {
+  id: number;
+  name: string;
+  vacuumNm: number;
+  uNm: number;
+  note: string;
+}
+
+export const OUTCOMES = ['passed-on', 'measure-again', 'held-for-qa', 'sent-back'] as const;
+export type Outcome = (typeof OUTCOMES)[number];
+export const OUTCOME_WORDS: Record<Outcome, string> = {
+  'passed-on': 'Passed on',
+  'measure-again': 'Measure again',
+  'held-for-qa': 'Held for QA',
+  'sent-back': 'Sent back',
+};
+
+export const RETURN_REASONS = ['take-again', 'wrong-bench-or-lot', 'no-clean-region', 'another'] as const;
+export type ReturnReason = (typeof RETURN_REASONS)[number];
+export const RETURN_WORDS: Record<ReturnReason, string> = {
+  'take-again': 'Take the frame again',
+  'wrong-bench-or-lot': 'Wrong bench or lot',
+  'no-clean-region': 'No clean region',
+  another: 'Another reason',
+};
+
+/** ---- frames and readings ---- */
+export interface ReadingBrief {
+  id: number;
+  /** Number of the reading within its frame, from 1. */
+  number: number;
+  status: ReadingState;
+  version: number;
+  /** In the specification's medium (air for a reference source). */
+  wavelengthNm: number | null;
+  uNm: number | null;
+  expandedNm: number | null;
+  k: number | null;
+  medium: Medium;
+  judgement: Judgement | null;
+  word: FindingWord;
+  /** The gravest finding's message, or the calm sentence. */
+  wordText: string;
+  orderCentres: number;
+  spacingPx: number;
+  uSpacingPx: number;
+  scaleUmPerPx: number;
+  strip: Strip;
+  /** Position of the zero order on the strip's axis, px. */
+  zeroAlongPx: number;
+  madeBy: PersonRef | null;
+  madeAt: Instant;
+}
+
+export type Subject =
+  | { kind: 'unit'; unitId: number; serial: string; lotId: number; lot: string; specification: Specification }
+  | { kind: 'source'; sourceId: number; name: string; vacuumNm: number }
+  | { kind: 'none' };
+
+export interface FrameRow {
+  id: number;
+  fileName: string;
+  bytes: number;
+  sha256: string;
+  state: FrameState;
+  code: string | null;
+  message: string | null;
+  receivedAt: Instant;
+  uploadedBy: PersonRef;
+  bench: PersonRef;
+  setupNumber: number;
+  subject: Subject;
+  reading: ReadingBrief | null;
+}
+
+export interface FramesQuery {
+  /** A frame state or a reading state; '' is all. */
+  state: '' | FrameState | ReadingState;
+  /** Serial, lot or file name contains. */
+  find: string;
+  benchId: number | null;
+  lotId: number | null;
+  /** Days back; 0 is all. */
+  days: number;
+  mine: boolean;
+  page: number;
+}
+
+export interface FramesPage {
+  rows: FrameRow[];
+  /** Counts for every state under the other filters. */
+  counts: Record<string, number>;
+  total: number;
+  toReview: number;
+  page: number;
+  pages: number;
+}
+
+export interface SignatureView {
+  personName: string;
+  role: Role;
+  meaning: string;
+  at: Instant;
+  digest: string;
+}
+
+export interface ReadingView extends ReadingBrief {
+  result: ReadingResult;
+  budget: BudgetRow[];
+  findings: Finding[];
+  setup: SetupView;
+  replaces: number | null;
+  replacedBy: number | null;
+  sentBy: PersonRef | null;
+  sentAt: Instant | null;
+  returned: { reason: ReturnReason; words: string; by: PersonRef; at: Instant } | null;
+  signature: SignatureView | null;
+  zeroShift: number;
+  leaveOut: number[];
+  tone: ToneChoice;
+}
+
+export interface FrameView extends FrameRow {
+  widthPx: number | null;
+  heightPx: number | null;
+  /** Every reading of this frame, newest first. */
+  readings: ReadingBrief[];
+  /** The reading shown: the asked one or the newest. */
+  shown: ReadingView | null;
+  outcome: UnitRow['outcome'];
+}
+
+/** What the signed-in person may do with the shown reading, decided on the server. */
+export interface May {
+  fit: boolean;
+  send: boolean;
+  accept: boolean;
+  return: boolean;
+  outcome: boolean;
+  /** Sentence why accept is not open to this person; null when it is. */
+  acceptBarred: string | null;
+}
+
+export interface ReviewView {
+  frame: FrameView;
+  may: May;
+  queue: { at: number; of: number; previousId: number | null; nextId: number | null };
+}
+
+/** A fit that is shown and not kept. */
+export interface FitPreview {
+  result: ReadingResult;
+  wavelengthNm: number | null;
+  expandedNm: number | null;
+  medium: Medium;
+  judgement: Judgement | null;
+}
+
+/** ---- over time ---- */
+export interface ChartPoint {
+  readingId: number;
+  frameId: number;
+  label: string;
+  takenAt: Instant;
+  acceptedAt: Instant;
+  valueNm: number;
+  uNm: number | null;
+  setupId: number;
+  setupNumber: number;
+  /** Moving range to the point before in the same stretch; null for its first. */
+  movingRangeNm: number | null;
+  outside: boolean;
+}
+
+export interface ChartStretch {
+  setupId: number;
+  setupNumber: number;
+  from: Instant;
+  change: string;
+  /** Index of the first and last point of the stretch. */
+  first: number;
+  last: number;
+  points: number;
+  meanNm: number;
+  /** null with fewer than 2 points. */
+  lowerNm: number | null;
+  upperNm: number | null;
+  meanRangeNm: number | null;
+  upperRangeNm: number | null;
+  /** 'none' under 2, 'provisional' under 30, else 'firm'. */
+  standing: 'none' | 'provisional' | 'firm';
+}
+
+export interface ChartFinding {
+  letter: string;
+  kind: 'outside' | 'range' | 'nine';
+  first: number;
+  last: number;
+  title: string;
+  text: string;
+}
+
+export interface OverTimeView {
+  bench: PersonRef | null;
+  medium: Medium;
+  subjectName: string;
+  /** Reference value in the shown medium, or the nominal of the lot. */
+  referenceNm: number | null;
+  referenceIsNominal: boolean;
+  points: ChartPoint[];
+  stretches: ChartStretch[];
+  findings: ChartFinding[];
+  /** Choices for the picker. */
+  choices: { value: string; label: string; points: number }[];
+  chosen: string;
+  benches: { bench: PersonRef; runs: number; differenceNm: number; expandedNm: number | null }[];
+}
+
+/** ---- people and log ---- */
+export interface PersonRow extends Me {
+  active: boolean;
+  lastSignInAt: Instant | null;
+  createdAt: Instant;
+}
+
+export interface LogRow {
+  id: number;
+  at: Instant;
+  who: string;
+  action: string;
+  subject: string;
+  subjectHref: string | null;
+  before: unknown;
+  after: unknown;
+  hash: string;
+}
+
+export interface LogPage {
+  rows: LogRow[];
+  total: number;
+  page: number;
+  pages: number;
+  actions: string[];
+}
+
+/** The change of region a person previews. */
+export interface RegionChange {
+  region: Region;
+  leaveOut: number[];
+  zeroShift: number;
+}
