@@ -47,8 +47,9 @@ export type Action = keyof typeof PERMISSIONS;
  */
 export function can(actor: Actor | null, action: string, subject?: ReadingSubject): boolean {
   if (!actor) return false;
-  const holders = (PERMISSIONS as Record<string, readonly Role[]>)[action];
-  if (!holders || !holders.some((role) => actor.roles.includes(role))) return false;
+  if (!Object.hasOwn(PERMISSIONS, action)) return false;
+  const holders: readonly Role[] = PERMISSIONS[action as Action];
+  if (!holders.some((role) => actor.roles.includes(role))) return false;
   if (action === 'readings.accept' && subject) return barredFromAccepting(actor.id, subject) === null;
   return true;
 }

@@ -1,0 +1,101 @@
+/**
+ * The one place that turns numbers into text. Minus is U+2212, thousands of a measured number are parted by a
+ * thin space (U+2009), an expanded uncertainty has two figures and its value ends at the same place
+ * (JCGM 100:2008, 7.2.6; halves are rounded away from zero).
+ */
+const THIN = '\u2009';
+const MINUS = '\u2212';
+
+/** Rounds half away from zero at `places` decimals, as text with a plain hyphen-minus. */
+export function roundHalfAway(value: number, places: number): string {
+  const text = Math.abs(value).toFixed(Math.min(Math.max(places, 0), 12));
+  // toFixed works on the binary value: 1.005 is below its half. A tenth-of-a-ulp nudge restores the written half.
+  const nudged = (Math.abs(value) * (1 + 4e-16)).toFixed(Math.min(Math.max(places, 0), 12));
+  const chosen = nudged >= text || nudged.length > text.length ? nudged : text;
+  return value < 0 && Number(chosen) !== 0 ? `-${chosen}` : chosen;
+}
+
+/** "1850.2" -> "1 850.2" with thin spaces; a leading hyphen becomes a minus sign. */
+export function groupThousands(text: string): string {
+  const [whole, fraction] = text.replace(/^[-\u2212]/, '').split('.');
+  const grouped = whole.replace(/\B(?=(\d{3})+$)/g, THIN);
+  const sign = /^[-\u2212]/.test(text) ? MINUS : '';
+  return sign + grouped + (fraction === undefined ? '' : `.${fraction}`);
+}
+
+/** A plain number with a fixed count of decimals, grouped, with a true minus. */
+export function formatNumber(value: number, places: number): string {
+  return groupThousands(roundHalfAway(value, places));
+}
+
+/** As formatNumber, with a plus sign for values above zero: for differences. */
+export function formatSigned(value: number, places: number): string {
+  const text = roundHalfAway(value, places);
+  return Number(text) > 0 ? `+${groupThousands(text)}` : groupThousands(text);
+}
+
+/** Decimals that leave two significant figures of an uncertainty; 0 for uncertainties of 10 and more. */
+export function placesFor(uncertainty: number): number {
+  if (!(uncertainty > 0) || !Number.isFinite(uncertainty)) return 2;
+  const exponent = Math.floor(Math.log10(uncertainty));
+  // 0.0996 rounds up to 0.10: the rounded figure decides the place.
+  const rounded = Number(uncertainty.toPrecision(2));
+  const settled = Math.max(exponent, Math.floor(Math.log10(rounded) + 1e-12));
+  return Math.min(12, Math.max(0, 1 - settled));
+}
+
+export interface QuantityText {
+  value: string;
+  uncertainty: string;
+}
+
+/** Value and expanded uncertainty to two figures of the latter: (634.8199, 0.714) -> "634.82", "0.71". */
+export function formatQuantity(value: number, expanded: number): QuantityText {
+  const places = placesFor(expanded);
+  return { value: formatNumber(value, places), uncertainty: formatNumber(expanded, places) };
+}
+
+/** A share as a whole or one-decimal per cent: 0.042 -> "4.2 %". */
+export function formatPercent(share: number): string {
+  const percent = 100 * share;
+  return `${formatNumber(percent, percent >= 10 || percent === 0 ? 0 : 1)} %`;
+}
+
+const MONTHS = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'];
+
+function partsIn(iso: string, timeZone: string): Record<string, string> {
+  const format = new Intl.DateTimeFormat('en-GB', {
+    timeZone,
+    year: 'numeric',
+    month: 'numeric',
+    day: 'numeric',
+    hour: '2-digit',
+    minute: '2-digit',
+    hourCycle: 'h23',
+  });
+  return Object.fromEntries(format.formatToParts(new Date(iso)).map((part) => [part.type, part.value]));
+}
+
+/** "12 Nov 2026, 09:42" in the lab's time zone. */
+export function formatInstant(iso: string, timeZone: string): string {
+  const p = partsIn(iso, timeZone);
+  return `${p.day} ${MONTHS[Number(p.month) - 1]} ${p.year}, ${p.hour}:${p.minute}`;
+}
+
+/** "12 Nov 2026" in the lab's time zone. */
+export function formatDay(iso: string, timeZone: string): string {
+  const p = partsIn(iso, timeZone);
+  return `${p.day} ${MONTHS[Number(p.month) - 1]} ${p.year}`;
+}
+
+/** A calendar date yyyy-mm-dd as "12 Nov 2026"; it has no time zone. */
+export function formatCalendarDate(date: string): string {
+  const [year, month, day] = date.split('-').map(Number);
+  return `${day} ${MONTHS[month - 1]} ${year}`;
+}
+
+/** Bytes as "3.1 MB" (10⁶). */
+export function formatBytes(bytes: number): string {
+  if (bytes < 1e6) return `${formatNumber(bytes / 1e3, 0)} kB`;
+  return `${formatNumber(bytes / 1e6, bytes < 1e8 ? 1 : 0)} MB`;
+}
