@@ -13,8 +13,16 @@ const folders = ['app', 'components', 'lib', 'models', 'migrations', 'scripts', 
 const CHECKS = [
   { name: 'types', command: bin('tsc'), args: ['--noEmit', '-p', '.'] },
   { name: 'lint', command: bin('eslint'), args: ['--max-warnings', '0', '.'] },
-  { name: 'format', command: bin('prettier'), args: ['--check', '--log-level', 'warn', '**/*.{ts,tsx,mjs,css}'] },
-  { name: 'import rules', command: bin('depcruise'), args: ['--config', '.dependency-cruiser.cjs', ...folders] },
+  {
+    name: 'format',
+    command: bin('prettier'),
+    args: ['--check', '--log-level', 'warn', '**/*.{ts,tsx,mjs,css}'],
+  },
+  {
+    name: 'import rules',
+    command: bin('depcruise'),
+    args: ['--config', '.dependency-cruiser.cjs', ...folders],
+  },
 ];
 
 /** Runs the named checks (all when none is named) and returns how many passed and failed. */

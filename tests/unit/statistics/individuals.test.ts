@@ -22,7 +22,7 @@ describe('individuals and moving-range chart', () => {
     expect(chart.findings).toEqual([]);
   });
   test('one outside is found, with its ranges', () => {
-    const values = Array.from({ length: 20 }, (_, i) => (i % 2 ? 0.1 : -0.1));
+    const values: number[] = Array.from({ length: 20 }, (_, i) => (i % 2 ? 0.5 : -0.5));
     values[12] = 5;
     const chart = individualsChart(points(values));
     expect(chart.outside.filter(Boolean)).toHaveLength(1);
