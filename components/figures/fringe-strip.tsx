@@ -1,0 +1,83 @@
+'use client';
+
+import { useEffect, useRef } from 'react';
+import { encode, lightRgb, STRIP_EXPONENT, type Rgb } from '@/lib/client/light';
+import { useLook } from '@/lib/client/look';
+import type { Strip } from '@/lib/domain/reading-result';
+
+/** One pixel per sample, one high: the browser stretches it, so no size has to be measured. */
+function paint(canvas: HTMLCanvasElement, light: readonly number[], colour: Rgb) {
+  const context = canvas.getContext('2d');
+  if (!context || light.length === 0) return;
+  canvas.width = light.length;
+  canvas.height = 1;
+  const image = context.createImageData(light.length, 1);
+  light.forEach((sample, i) => {
+    const v = Math.pow(Math.max(0, Math.min(1, sample)), STRIP_EXPONENT);
+    image.data[4 * i] = 255 * encode(colour[0] * v);
+    image.data[4 * i + 1] = 255 * encode(colour[1] * v);
+    image.data[4 * i + 2] = 255 * encode(colour[2] * v);
+    image.data[4 * i + 3] = 255;
+  });
+  context.putImageData(image, 0, 0);
+}
+
+interface LightProps {
+  light: readonly number[];
+  /** Measured wavelength, nm; null draws bone. */
+  nm: number | null;
+  label: string;
+  style?: React.CSSProperties;
+}
+
+/** Samples of linear light as a picture that fills its place. */
+export function LightBand({ light, nm, label, style }: LightProps) {
+  const canvas = useRef<HTMLCanvasElement>(null);
+  const { goggles } = useLook();
+  useEffect(() => {
+    if (canvas.current) paint(canvas.current, light, lightRgb(nm, goggles));
+  }, [light, nm, goggles]);
+  return <canvas ref={canvas} role="img" aria-label={label} style={style} />;
+}
+
+export interface StripPlace {
+  strip: Strip;
+  /** Where the zero order lies on the strip's axis, px. */
+  zeroAlongPx: number;
+  scaleUmPerPx: number;
+}
+
+/** Ends of a strip in mm about the zero order. */
+export function stripEndsMm({ strip, zeroAlongPx, scaleUmPerPx }: StripPlace): [number, number] {
+  const mm = (px: number) => ((px - zeroAlongPx) * scaleUmPerPx) / 1000;
+  return [mm(strip.fromPx), mm(strip.fromPx + strip.stepPx * strip.light.length)];
+}
+
+/** Width of the one scale of a list in mm: twice the longest side of any strip, rounded up to a whole even number. */
+export function spanForMm(places: readonly StripPlace[]): number {
+  const longest = Math.max(0, ...places.flatMap((p) => stripEndsMm(p).map(Math.abs)));
+  return longest > 0 ? 2 * Math.ceil(longest) : 60;
+}
+
+interface Props extends StripPlace {
+  spanMm: number;
+  nm: number | null;
+  label: string;
+}
+
+/** A strip on a list's scale, its zero order on the middle. */
+export function FringeStrip({ spanMm, nm, label, ...place }: Props) {
+  const [fromMm, toMm] = stripEndsMm(place);
+  const left = 50 + (100 * fromMm) / spanMm;
+  const width = (100 * (toMm - fromMm)) / spanMm;
+  return (
+    <div className="strip-bed">
+      <LightBand
+        light={place.strip.light}
+        nm={nm}
+        label={label}
+        style={{ left: `${left}%`, width: `${width}%` }}
+      />
+    </div>
+  );
+}

@@ -1,0 +1,40 @@
+import { Button } from '@/components/ui/button';
+import { formatNumber, formatSigned } from '@/lib/quantity/format';
+import { orderName } from './order-ladder';
+import type { StageOrder } from './stage-data';
+
+interface Props {
+  order: StageOrder;
+  out: boolean;
+  top: number;
+  side: 'left' | 'right';
+  onClose: () => void;
+  onToggle?: () => void;
+}
+
+/** What the reading line crosses: centre, its uncertainty, the pull, and whether the fit uses it. */
+export function OrderCard({ order, out, top, side, onClose, onToggle }: Props) {
+  return (
+    <div className="order-card" style={{ top, [side]: 0 }} role="status">
+      <dl>
+        <dt>Order {orderName(order.m)}</dt>
+        <dd className="text-ink-2">{out ? 'left out' : order.kind}</dd>
+        <dt>centre</dt>
+        <dd>{formatSigned(order.mm, 3)} mm</dd>
+        <dt>u of centre</dt>
+        <dd>{formatNumber(order.uPx, 3)} px</dd>
+        <dt>pull</dt>
+        <dd>{order.pullMm === null ? 'no raw middle' : `${formatSigned(order.pullMm, 3)} mm`}</dd>
+      </dl>
+      {onToggle ? <Button onClick={onToggle}>{out ? 'Take it back' : 'Leave it out'}</Button> : null}
+      <button
+        type="button"
+        className="card-close"
+        onClick={onClose}
+        aria-label="Close the card of this order"
+      >
+        Close
+      </button>
+    </div>
+  );
+}

@@ -1,0 +1,250 @@
+'use client';
+
+import { useMemo, useState } from 'react';
+import { lightLine } from '@/lib/client/light';
+import { useLook } from '@/lib/client/look';
+import { useSize } from '@/lib/client/use-size';
+import type { ReadingResult } from '@/lib/domain/reading-result';
+import { formatNumber } from '@/lib/quantity/format';
+import { LightBand, stripEndsMm } from '../fringe-strip';
+import { MisfitBand } from './misfit-band';
+import { OrderCard } from './order-card';
+import { isOut, OrderLadder } from './order-ladder';
+import type { Scale } from './paths';
+import { ProfileBand } from './profile-band';
+import { stageData, zeroAlongPx } from './stage-data';
+import { stageLayout, type AxisView, type StageLayout } from './stage-layout';
+import { StageZoom, zoomed } from './stage-zoom';
+
+interface Props {
+  result: ReadingResult;
+  scaleUmPerPx: number;
+  /** Wavelength in air that colours the light; null before one is known. */
+  nm: number | null;
+  leaveOut: readonly number[];
+  picked: number | null;
+  onPick: (m: number | null) => void;
+  /** Leaves an order out or takes it back; absent where the reading cannot be changed. */
+  onToggleOrder?: (m: number) => void;
+}
+
+/** Room one dot needs, px; closer points are thinned and the caption says so. */
+const DOT_ROOM = 2.6;
+
+/** Strip, profile, misfit and order ladder on one axis, the zero order in the middle. */
+export function Stage(props: Props) {
+  const [measure, size] = useSize<HTMLDivElement>();
+  return (
+    <section className="stage" aria-label="Fringes on one axis" ref={measure}>
+      {size && size.width > 60 ? (
+        <Drawing {...props} width={size.width} height={Math.max(560, size.height)} />
+      ) : null}
+    </section>
+  );
+}
+
+function Drawing({
+  result,
+  scaleUmPerPx,
+  nm,
+  leaveOut,
+  picked,
+  onPick,
+  onToggleOrder,
+  width,
+  height,
+}: Props & { width: number; height: number }) {
+  const { theme, goggles } = useLook();
+  const [zoom, setZoom] = useState({ factor: 1, middleMm: 0 });
+  const data = useMemo(() => stageData(result, scaleUmPerPx), [result, scaleUmPerPx]);
+  const layout = stageLayout(height, goggles);
+  const view = zoomed(data.halfMm, zoom);
+  const x: Scale = (mm) => ((mm - view.fromMm) / (view.toMm - view.fromMm)) * width;
+  const seen = data.points.filter((p) => p.mm >= view.fromMm && p.mm <= view.toMm);
+  const every = Math.max(1, Math.round((seen.length * DOT_ROOM) / width));
+  const order = data.orders.find((o) => o.m === picked) ?? null;
+  const used = data.orders.filter((o) => !isOut(o, leaveOut)).length;
+  const style = {
+    '--light-line': goggles ? 'var(--ink)' : lightLine(nm, theme, false),
+  } as React.CSSProperties;
+
+  return (
+    <>
+      <Band result={result} scaleUmPerPx={scaleUmPerPx} nm={nm} layout={layout} view={view} width={width} />
+      <svg className="fig" width={width} height={height} style={style}>
+        <g role="img" aria-label={describe(result, used, data.orders.length)}>
+          <Captions
+            layout={layout}
+            width={width}
+            result={result}
+            used={used}
+            total={data.orders.length}
+            every={every}
+            goggles={goggles}
+          />
+          <ZeroLine x={x(0)} layout={layout} width={width} />
+          <ProfileBand
+            points={seen}
+            every={every}
+            top={data.top}
+            peakShare={result.peakShare}
+            x={x}
+            width={width}
+            from={layout.profile[0]}
+            to={layout.profile[1]}
+            goggles={goggles}
+          />
+          <MisfitBand
+            points={seen}
+            every={every}
+            x={x}
+            width={width}
+            from={layout.misfit[0]}
+            to={layout.misfit[1]}
+            goggles={goggles}
+          />
+        </g>
+        <OrderLadder
+          orders={data.orders}
+          leaveOut={leaveOut}
+          picked={picked}
+          onPick={onPick}
+          x={x}
+          width={width}
+          view={view}
+          layout={layout}
+          touchPx={44}
+        />
+        {order && order.mm >= view.fromMm && order.mm <= view.toMm ? (
+          <ReadingLine x={x(order.mm)} layout={layout} bright={order.kind === 'bright'} />
+        ) : null}
+      </svg>
+      <StageZoom zoom={zoom} halfMm={data.halfMm} onZoom={setZoom} top={layout.profile[0] - 40} />
+      {order ? (
+        <OrderCard
+          order={order}
+          out={isOut(order, leaveOut)}
+          top={layout.profile[0] + 6}
+          side={x(order.mm) > width * 0.62 ? (x(order.mm) > width - 180 ? 'left' : 'right') : 'right'}
+          onClose={() => onPick(null)}
+          onToggle={onToggleOrder ? () => onToggleOrder(order.m) : undefined}
+        />
+      ) : null}
+    </>
+  );
+}
+
+function describe(result: ReadingResult, used: number, total: number): string {
+  return `Straightened fringes, profile with the fitted curve, misfit over its uncertainty. ${used} of ${total} order centres used, visibility ${formatNumber(result.visibility, 2)}.`;
+}
+
+interface BandProps {
+  result: ReadingResult;
+  scaleUmPerPx: number;
+  nm: number | null;
+  layout: StageLayout;
+  view: AxisView;
+  width: number;
+}
+
+function Band({ result, scaleUmPerPx, nm, layout, view, width }: BandProps) {
+  const [from, to] = stripEndsMm({ strip: result.strip, zeroAlongPx: zeroAlongPx(result), scaleUmPerPx });
+  const share = (mm: number) => (100 * mm) / (view.toMm - view.fromMm);
+  return (
+    <div className="band" style={{ top: layout.band[0], height: layout.band[1] - layout.band[0], width }}>
+      <LightBand
+        light={result.strip.light}
+        nm={nm}
+        label="Fringes, straightened and averaged"
+        style={{ left: `${share(from - view.fromMm)}%`, width: `${share(to - from)}%` }}
+      />
+    </div>
+  );
+}
+
+function ZeroLine({ x, layout, width }: { x: number; layout: StageLayout; width: number }) {
+  if (x < 0 || x > width) return null;
+  return (
+    <path
+      d={`M${x} 0V${layout.band[0]}M${x} ${layout.band[1]}V${layout.ladder[0] + 10}`}
+      className="l-edge"
+    />
+  );
+}
+
+function ReadingLine({ x, layout, bright }: { x: number; layout: StageLayout; bright: boolean }) {
+  const end = bright ? layout.brightY - 4 : layout.darkY - 4;
+  const dots = {
+    strokeDasharray: '1 4',
+    strokeLinecap: 'round' as const,
+    style: { strokeWidth: 'calc(1.25px * var(--g))' },
+  };
+  return (
+    <g aria-hidden="true">
+      <path d={`M${x} ${layout.profile[0]}V${end}`} className="l-ink" {...dots} />
+      <path d={`M${x} ${layout.band[0]}V${layout.band[1]}`} stroke="#f4f0e7" {...dots} />
+    </g>
+  );
+}
+
+interface CaptionsProps {
+  layout: StageLayout;
+  width: number;
+  result: ReadingResult;
+  used: number;
+  total: number;
+  every: number;
+  goggles: boolean;
+}
+
+function Captions({ layout, width, result, used, total, every, goggles }: CaptionsProps) {
+  const line = (y: number, name: string, more: string) => (
+    <text x="0" y={y - 10} className="t-2 s14">
+      <tspan className="t-ink t-500">{name}</tspan>
+      {more ? <tspan dx="12">{more}</tspan> : null}
+    </text>
+  );
+  const y = layout.profile[0] - 10;
+  const at = goggles ? 92 : 82;
+  const tone = goggles ? 'var(--edge)' : 'var(--ink)';
+  const zero = result.envelopeZeroOrder;
+  const roomy = width > 520;
+  return (
+    <>
+      {line(layout.band[0], '1 Fringes, straightened', `${formatNumber(result.rows, 0)} rows averaged`)}
+      {line(layout.profile[0], '2 Profile', '')}
+      {line(layout.misfit[0], '3 Misfit over its uncertainty', every > 1 ? `1 of ${every} points drawn` : '')}
+      {line(layout.ladder[0], '4 Orders', `${used} of ${total} centres used`)}
+      <path
+        d={`M${at} ${y - 5}h0M${at + 8} ${y - 7}h0M${at + 16} ${y - 4}h0`}
+        stroke={tone}
+        strokeWidth="4"
+        strokeLinecap="round"
+      />
+      <text x={at + 25} y={y} className="t-2 s14">
+        data
+      </text>
+      <path
+        d={`M${at + 66} ${y - 5}h22`}
+        stroke="var(--light-line)"
+        style={{ strokeWidth: 'calc(2.25px * var(--g))' }}
+      />
+      <text x={at + 95} y={y} className="t-2 s14">
+        fit
+      </text>
+      {roomy ? (
+        <>
+          <path
+            d={`M${width / 2 + 14} ${y - 5}h22`}
+            stroke="var(--ink-2)"
+            strokeDasharray="5 4"
+            style={{ strokeWidth: 'calc(1.5px * var(--g))' }}
+          />
+          <text x={width / 2 + 43} y={y} className="t-2 s14">
+            {zero === null ? 'envelope' : `envelope, zero at order ${formatNumber(zero, 1)}`}
+          </text>
+        </>
+      ) : null}
+    </>
+  );
+}

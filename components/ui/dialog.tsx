@@ -1,0 +1,34 @@
+'use client';
+
+import { useEffect, useId, useRef, type ReactNode } from 'react';
+
+interface Props {
+  open: boolean;
+  onClose: () => void;
+  title: ReactNode;
+  children: ReactNode;
+}
+
+/** A modal sheet. The browser keeps the focus inside, Escape closes it, focus goes back where it was. */
+export function Dialog({ open, onClose, title, children }: Props) {
+  const ref = useRef<HTMLDialogElement>(null);
+  const id = useId();
+  useEffect(() => {
+    const dialog = ref.current;
+    if (!dialog) return;
+    if (open && !dialog.open) dialog.showModal();
+    if (!open && dialog.open) dialog.close();
+  }, [open]);
+  return (
+    <dialog ref={ref} className="dialog" aria-labelledby={id} onClose={onClose}>
+      {open ? (
+        <>
+          <h2 id={id} className="mb-4 text-value">
+            {title}
+          </h2>
+          {children}
+        </>
+      ) : null}
+    </dialog>
+  );
+}
