@@ -37,7 +37,8 @@ interface Row {
 }
 
 const clock = (): number => performance.now();
-const rms = (values: number[]): number => Math.sqrt(values.reduce((s, v) => s + v * v, 0) / Math.max(1, values.length));
+const rms = (values: number[]): number =>
+  Math.sqrt(values.reduce((s, v) => s + v * v, 0) / Math.max(1, values.length));
 const median = (values: number[]): number => {
   if (values.length === 0) return Number.NaN;
   const sorted = [...values].sort((a, b) => a - b);
@@ -79,8 +80,11 @@ async function runFamily(family: Family, frames: number, show: boolean): Promise
   let covered = 0;
   for (let seed = 1; seed <= frames; seed += 1) {
     const plan = family.plan(seed);
-    const picture = photograph(plan.scene, plan.camera);
-    const file = await encodeFile(picture, plan.kind, { quality: plan.quality, orientation: plan.orientation });
+    const picture = photograph(plan.scene, plan.camera, plan.paints);
+    const file = await encodeFile(picture, plan.kind, {
+      quality: plan.quality,
+      orientation: plan.orientation,
+    });
     const setup = setupOf(plan.scene);
     const answer = await analyseFrame(file, setup, {}, clock);
     totals.push(answer.ms.total);
@@ -104,12 +108,16 @@ async function runFamily(family: Family, frames: number, show: boolean): Promise
     const isWrong = Math.abs(error) > 6 * answer.uSpacingPx && Math.abs(error / truth) > family.wrongBeyond;
     if (isWrong) wrong += 1;
     if (show && (isWrong || Math.abs(error) > 4 * answer.uSpacingPx)) {
-      console.log(`  seed ${seed}: error ${(error / truth).toExponential(2)}, z ${(error / answer.uSpacingPx).toFixed(1)}, e ${(error / bound.uSpacingPx).toFixed(1)}`);
+      console.log(
+        `  seed ${seed}: error ${(error / truth).toExponential(2)}, z ${(error / answer.uSpacingPx).toFixed(1)}, e ${(error / bound.uSpacingPx).toFixed(1)}`,
+      );
     }
     if (family.orders) {
       const angle = (plan.scene.tiltDeg * Math.PI) / 180;
       for (const order of answer.orders) {
-        const along = (order.xPx - plan.scene.zeroXPx) * Math.cos(angle) + (order.yPx - plan.scene.zeroYPx) * Math.sin(angle);
+        const along =
+          (order.xPx - plan.scene.zeroXPx) * Math.cos(angle) +
+          (order.yPx - plan.scene.zeroYPx) * Math.sin(angle);
         orderRatio.push((along - trueOrderPx(plan.scene, order.m)) / bound.orderPx(order.m));
       }
     }
@@ -117,10 +125,24 @@ async function runFamily(family: Family, frames: number, show: boolean): Promise
   const [rmsELow, rmsEHigh] = rmsInterval(e);
   const [coverageLow, coverageHigh] = wilson(covered, answered);
   const row: Row = {
-    family: family.name, frames, answered, wrong, medianRelative: median(relative),
-    rmsE: rms(e), rmsELow, rmsEHigh, rmsZ: rms(z), coverage: covered / Math.max(1, answered), coverageLow, coverageHigh,
-    rmsOrder: family.orders ? rms(orderRatio) : Number.NaN, handMedianRelative: median(hand),
-    msTotal: median(totals), msDecode: median(decodes), missed: [], codes,
+    family: family.name,
+    frames,
+    answered,
+    wrong,
+    medianRelative: median(relative),
+    rmsE: rms(e),
+    rmsELow,
+    rmsEHigh,
+    rmsZ: rms(z),
+    coverage: covered / Math.max(1, answered),
+    coverageLow,
+    coverageHigh,
+    rmsOrder: family.orders ? rms(orderRatio) : Number.NaN,
+    handMedianRelative: median(hand),
+    msTotal: median(totals),
+    msDecode: median(decodes),
+    missed: [],
+    codes,
   };
   row.missed = missedTargets(family, row, z);
   return row;
@@ -129,7 +151,8 @@ async function runFamily(family: Family, frames: number, show: boolean): Promise
 function missedTargets(family: Family, row: Row, z: number[]): string[] {
   const missed: string[] = [];
   const [zLow, zHigh] = rmsInterval(z);
-  if (family.efficiency !== null && row.rmsELow > family.efficiency) missed.push(`√mean e² above ${family.efficiency}`);
+  if (family.efficiency !== null && row.rmsELow > family.efficiency)
+    missed.push(`√mean e² above ${family.efficiency}`);
   if (row.coverageHigh < family.coverage[0]) missed.push(`coverage below ${family.coverage[0]}`);
   if (row.coverageLow > family.coverage[1]) missed.push(`coverage above ${family.coverage[1]}`);
   if (zLow > 1.25 || zHigh < 0.6) missed.push('√mean z² outside 0.6 to 1.25');
@@ -139,27 +162,50 @@ function missedTargets(family: Family, row: Row, z: number[]): string[] {
   return missed;
 }
 
-async function runHopeless(kind: Hopeless, frames: number): Promise<{ name: string; frames: number; refused: number; codes: Record<string, number>; missed: string[] }> {
+async function runHopeless(
+  kind: Hopeless,
+  frames: number,
+): Promise<{
+  name: string;
+  frames: number;
+  refused: number;
+  codes: Record<string, number>;
+  missed: string[];
+}> {
   const codes: Record<string, number> = {};
   let right = 0;
   for (let seed = 1; seed <= frames; seed += 1) {
     const plan = kind.plan(seed);
-    const file = await encodeFile(photograph(plan.scene, plan.camera), plan.kind);
+    const file = await encodeFile(photograph(plan.scene, plan.camera, plan.paints), plan.kind);
     const answer = await analyseFrame(file, setupOf(plan.scene), {}, clock);
     codes[answer.code] = (codes[answer.code] ?? 0) + 1;
     if (!answer.ok && kind.codes.includes(answer.code)) right += 1;
   }
-  return { name: kind.name, frames, refused: right, codes, missed: right === frames ? [] : [`${frames - right} not refused rightly`] };
+  return {
+    name: kind.name,
+    frames,
+    refused: right,
+    codes,
+    missed: right === frames ? [] : [`${frames - right} not refused rightly`],
+  };
 }
 
 function line(row: Row): string {
   const share = (v: number) => `${(100 * v).toFixed(1)} %`;
   const cells = [
-    row.family, String(row.frames), share(row.answered / row.frames), String(row.wrong), row.medianRelative.toExponential(1),
-    `${row.rmsE.toFixed(2)} (${row.rmsELow.toFixed(2)} to ${row.rmsEHigh.toFixed(2)})`, row.rmsZ.toFixed(2),
+    row.family,
+    String(row.frames),
+    share(row.answered / row.frames),
+    String(row.wrong),
+    row.medianRelative.toExponential(1),
+    `${row.rmsE.toFixed(2)} (${row.rmsELow.toFixed(2)} to ${row.rmsEHigh.toFixed(2)})`,
+    row.rmsZ.toFixed(2),
     `${share(row.coverage)} (${share(row.coverageLow)} to ${share(row.coverageHigh)})`,
-    Number.isNaN(row.rmsOrder) ? '' : row.rmsOrder.toFixed(2), Number.isNaN(row.handMedianRelative) ? '' : row.handMedianRelative.toExponential(1),
-    row.msTotal.toFixed(0), row.msDecode.toFixed(0), row.missed.join('; ') || 'met',
+    Number.isNaN(row.rmsOrder) ? '' : row.rmsOrder.toFixed(2),
+    Number.isNaN(row.handMedianRelative) ? '' : row.handMedianRelative.toExponential(1),
+    row.msTotal.toFixed(0),
+    row.msDecode.toFixed(0),
+    row.missed.join('; ') || 'met',
   ];
   return `| ${cells.join(' | ')} |`;
 }
@@ -169,10 +215,13 @@ const HEAD =
   '|---|---|---|---|---|---|---|---|---|---|---|---|---|';
 
 async function main(argv: string[]): Promise<number> {
-  const option = (name: string): string | undefined => (argv.includes(name) ? argv[argv.indexOf(name) + 1] : undefined);
+  const option = (name: string): string | undefined =>
+    argv.includes(name) ? argv[argv.indexOf(name) + 1] : undefined;
   const frames = option('--frames') ? Number(option('--frames')) : null;
   const out = option('--out');
-  const names = argv.filter((a, i) => !a.startsWith('--') && argv[i - 1] !== '--frames' && argv[i - 1] !== '--out');
+  const names = argv.filter(
+    (a, i) => !a.startsWith('--') && argv[i - 1] !== '--frames' && argv[i - 1] !== '--out',
+  );
   const chosen = (name: string): boolean => names.length === 0 || names.some((n) => name.includes(n));
   const lines = [HEAD];
   console.log(HEAD);
@@ -187,7 +236,9 @@ async function main(argv: string[]): Promise<number> {
   for (const kind of HOPELESS.filter((f) => chosen(f.name))) {
     const row = await runHopeless(kind, Math.min(frames ?? 30, 30));
     missed += row.missed.length;
-    const text = `| ${row.name} | ${row.frames} | ${row.refused} | ${Object.entries(row.codes).map(([c, n]) => `${c} ${n}`).join(', ')} | ${row.missed.join('; ') || 'met'} |`;
+    const text = `| ${row.name} | ${row.frames} | ${row.refused} | ${Object.entries(row.codes)
+      .map(([c, n]) => `${c} ${n}`)
+      .join(', ')} | ${row.missed.join('; ') || 'met'} |`;
     lines.push(text);
     console.log(text);
   }

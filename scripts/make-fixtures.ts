@@ -22,7 +22,15 @@ interface Plan {
   quality?: number;
 }
 
-const SMALL: Partial<Scene> = { widthPx: 720, heightPx: 160, zeroXPx: 361.7, zeroYPx: 80.4, bandHalfPx: 60, scaleUmPerPx: 25.4, tiltDeg: 0.2 };
+const SMALL: Partial<Scene> = {
+  widthPx: 720,
+  heightPx: 160,
+  zeroXPx: 361.7,
+  zeroYPx: 80.4,
+  bandHalfPx: 60,
+  scaleUmPerPx: 25.4,
+  tiltDeg: 0.2,
+};
 
 const PLANS: Plan[] = [
   { file: 'clean.tif' },
@@ -30,9 +38,22 @@ const PLANS: Plan[] = [
   { file: 'tilted.tif', scene: { tiltDeg: 2.4 }, camera: { seed: 3 } },
   { file: 'clipped.tif', camera: { seed: 4, peakShare: 1.4 } },
   { file: 'dim.tif', camera: { seed: 5, peakShare: 0.1, peakElectrons: 1500 } },
-  { file: 'photo.jpg', scene: { widthPx: 900, heightPx: 300, zeroXPx: 450, zeroYPx: 150 }, camera: { seed: 6, bits: 8, offsetCounts: 2, tone: 'srgb', bayer: [1, 0.12, 0.03] } },
-  { file: 'photo-turned.jpg', scene: { widthPx: 900, heightPx: 300, zeroXPx: 450, zeroYPx: 150 }, camera: { seed: 7, bits: 8, offsetCounts: 2, tone: 'srgb', bayer: [1, 0.12, 0.03] }, orientation: 6 },
-  { file: 'photo.webp', camera: { seed: 8, bits: 8, offsetCounts: 2, tone: 'srgb', bayer: [1, 0.12, 0.03] }, quality: 95 },
+  {
+    file: 'photo.jpg',
+    scene: { widthPx: 900, heightPx: 300, zeroXPx: 450, zeroYPx: 150 },
+    camera: { seed: 6, bits: 8, offsetCounts: 2, tone: 'srgb', bayer: [1, 0.12, 0.03] },
+  },
+  {
+    file: 'photo-turned.jpg',
+    scene: { widthPx: 900, heightPx: 300, zeroXPx: 450, zeroYPx: 150 },
+    camera: { seed: 7, bits: 8, offsetCounts: 2, tone: 'srgb', bayer: [1, 0.12, 0.03] },
+    orientation: 6,
+  },
+  {
+    file: 'photo.webp',
+    camera: { seed: 8, bits: 8, offsetCounts: 2, tone: 'srgb', bayer: [1, 0.12, 0.03] },
+    quality: 95,
+  },
   { file: 'one-slit.tif', scene: { pattern: 'one', widthUm: 120 }, camera: { seed: 9 } },
   { file: 'black.tif', camera: { seed: 10, peakShare: 0.0001, peakElectrons: 1 } },
 ];
@@ -44,7 +65,10 @@ async function frames(): Promise<void> {
     const camera: Camera = { ...PLAIN_CAMERA, ...plan.camera };
     const ending = path.extname(plan.file).slice(1);
     const kind: FileKind = ending === 'tif' ? 'tiff' : ending === 'jpg' ? 'jpeg' : (ending as FileKind);
-    const bytes = await encodeFile(photograph(scene, camera), kind, { orientation: plan.orientation, quality: plan.quality ?? 92 });
+    const bytes = await encodeFile(photograph(scene, camera), kind, {
+      orientation: plan.orientation,
+      quality: plan.quality ?? 92,
+    });
     await writeFile(path.join(FRAMES, plan.file), bytes);
     truth[plan.file] = {
       pattern: scene.pattern,
@@ -87,7 +111,9 @@ async function hostile(): Promise<void> {
   const picture = photograph(scene, { ...PLAIN_CAMERA, bits: 8, offsetCounts: 3 });
   const png = await encodeFile(picture, 'png');
   const jpeg = await encodeFile(picture, 'jpeg');
-  const grey = sharp(Uint8Array.from(picture.samples), { raw: { width: scene.widthPx, height: scene.heightPx, channels: 1 } });
+  const grey = sharp(Uint8Array.from(picture.samples), {
+    raw: { width: scene.widthPx, height: scene.heightPx, channels: 1 },
+  });
   const colour = await grey.clone().toColourspace('srgb').png().toBuffer();
   const page = await sharp(colour).resize(120, 40).png().toBuffer();
   const put = (name: string, bytes: Buffer | string) => writeFile(path.join(HOSTILE, name), bytes);
@@ -98,7 +124,12 @@ async function hostile(): Promise<void> {
   await put('bomb.png', pictureBomb());
   await put('palette.png', await sharp(colour).png({ palette: true, colours: 16 }).toBuffer());
   await put('cmyk.jpg', await sharp(colour).toColourspace('cmyk').jpeg().toBuffer());
-  await put('animated.webp', await sharp([page, page, page], { join: { animated: true } }).webp({ delay: [100, 100, 100] }).toBuffer());
+  await put(
+    'animated.webp',
+    await sharp([page, page, page], { join: { animated: true } })
+      .webp({ delay: [100, 100, 100] })
+      .toBuffer(),
+  );
   // The first box of a HEIC file as ISO/IEC 23008-12 has it: size, 'ftyp', brand 'heic'. Nothing follows.
   await put('camera.heic', Buffer.from('000000186674797068656963000000006d69663168656963', 'hex'));
   await put('tiny.png', await sharp(colour).resize(16, 9).toColourspace('b-w').png().toBuffer());

@@ -36,5 +36,4 @@ export class AppError extends Error {
 
 /** What a server action answers. Never throws across the wire. */
 export type ActionAnswer<T> =
-  | { ok: true; value: T }
-  | { ok: false; code: ErrorCode; message: string; fields?: Record<string, string> };
+  { ok: true; value: T } | { ok: false; code: ErrorCode; message: string; fields?: Record<string, string> };

@@ -4,17 +4,27 @@ import { LIMITS } from './limits';
 import { ROLES } from './roles';
 import { OUTCOMES, RETURN_REASONS } from './views';
 
-const finite = (what: string) => z.number({ error: `${what} must be a number.` }).refine(Number.isFinite, `${what} must be a number.`);
+const finite = (what: string) =>
+  z.number({ error: `${what} must be a number.` }).refine(Number.isFinite, `${what} must be a number.`);
 const positive = (what: string) => finite(what).refine((v) => v > 0, `${what} must be larger than 0.`);
 const words = (what: string, min = 1) =>
-  z.string().trim().min(min, `${what} is missing.`).max(LIMITS.wordsLength, `${what} is longer than ${LIMITS.wordsLength} characters.`);
+  z
+    .string()
+    .trim()
+    .min(min, `${what} is missing.`)
+    .max(LIMITS.wordsLength, `${what} is longer than ${LIMITS.wordsLength} characters.`);
 const id = z.number().int().positive();
 
 export const passwordSchema = z
   .string()
   .min(LIMITS.passwordShortest, `A password has at least ${LIMITS.passwordShortest} characters.`)
   .max(LIMITS.passwordLongest, `A password has at most ${LIMITS.passwordLongest} characters.`);
-export const emailSchema = z.string().trim().toLowerCase().max(254).pipe(z.email('This is not an e-mail address.'));
+export const emailSchema = z
+  .string()
+  .trim()
+  .toLowerCase()
+  .max(254)
+  .pipe(z.email('This is not an e-mail address.'));
 
 export const regionSchema = z.object({
   cxPx: finite('Centre x'),
@@ -25,21 +35,52 @@ export const regionSchema = z.object({
 });
 export const regionChangeSchema = z.object({
   region: regionSchema,
-  leaveOut: z.array(z.number().refine((m) => Number.isInteger(2 * m), 'An order is whole or half.')).max(400).default([]),
+  leaveOut: z
+    .array(z.number().refine((m) => Number.isInteger(2 * m), 'An order is whole or half.'))
+    .max(400)
+    .default([]),
   zeroShift: z.number().int().min(-400).max(400).default(0),
 });
-export const refitSchema = regionChangeSchema.extend({ frameId: id, fromReadingId: id.nullable(), fromVersion: z.number().int().min(0) });
+export const refitSchema = regionChangeSchema.extend({
+  frameId: id,
+  fromReadingId: id.nullable(),
+  fromVersion: z.number().int().min(0),
+});
 
-export const sendSchema = z.object({ readings: z.array(z.object({ readingId: id, version: z.number().int().min(0), note: z.string().trim().max(LIMITS.wordsLength).default('') })).min(1).max(500) });
-export const lookAnswerSchema = z.object({ check: z.string().max(60), answer: z.enum(['accept-as-is', 'set-aside']), reason: words('The reason') });
+export const sendSchema = z.object({
+  readings: z
+    .array(
+      z.object({
+        readingId: id,
+        version: z.number().int().min(0),
+        note: z.string().trim().max(LIMITS.wordsLength).default(''),
+      }),
+    )
+    .min(1)
+    .max(500),
+});
+export const lookAnswerSchema = z.object({
+  check: z.string().max(60),
+  answer: z.enum(['accept-as-is', 'set-aside']),
+  reason: words('The reason'),
+});
 export const acceptSchema = z.object({
   readingId: id,
   version: z.number().int().min(0),
   password: z.string().min(1, 'Type your password to sign.').max(LIMITS.passwordLongest),
   answers: z.array(lookAnswerSchema).max(60).default([]),
 });
-export const returnSchema = z.object({ readingId: id, version: z.number().int().min(0), reason: z.enum(RETURN_REASONS), words: z.string().trim().max(LIMITS.wordsLength).default('') });
-export const outcomeSchema = z.object({ unitId: id, outcome: z.enum(OUTCOMES), reason: z.string().trim().max(LIMITS.wordsLength).default('') });
+export const returnSchema = z.object({
+  readingId: id,
+  version: z.number().int().min(0),
+  reason: z.enum(RETURN_REASONS),
+  words: z.string().trim().max(LIMITS.wordsLength).default(''),
+});
+export const outcomeSchema = z.object({
+  unitId: id,
+  outcome: z.enum(OUTCOMES),
+  reason: z.string().trim().max(LIMITS.wordsLength).default(''),
+});
 
 const stated = (what: string) =>
   z.object({
@@ -49,25 +90,39 @@ const stated = (what: string) =>
     certificate: z.string().trim().max(300).default(''),
     due: z.iso.date('A due date looks like 2027-03-01.').nullable().default(null),
   });
-export const benchSchema = z.object({ name: z.string().trim().min(1, 'The bench needs a name.').max(60), note: z.string().trim().max(LIMITS.wordsLength).default('') });
-export const setupSchema = z.object({
-  benchId: id,
-  /** The number the person saw as the newest; another one means someone was faster. */
-  afterNumber: z.number().int().min(0),
-  plate: z.string().trim().min(1, 'Name the slit plate.').max(60),
-  scaleUmPerPx: stated('Pixel scale'),
-  separationUm: stated('Slit separation'),
-  widthUm: stated('Slit width'),
-  distanceMm: stated('Distance'),
-  remountNm: z.object({ u: positive('Re-mount'), dof: positive('Degrees of freedom').nullable() }).nullable().default(null),
-  tone: z.enum(['auto', 'linear', 'srgb']).default('auto'),
-  why: words('Why'),
-}).refine((s) => s.widthUm.value < s.separationUm.value, { path: ['widthUm', 'value'], message: 'The slit width must be smaller than the separation.' });
+export const benchSchema = z.object({
+  name: z.string().trim().min(1, 'The bench needs a name.').max(60),
+  note: z.string().trim().max(LIMITS.wordsLength).default(''),
+});
+export const setupSchema = z
+  .object({
+    benchId: id,
+    /** The number the person saw as the newest; another one means someone was faster. */
+    afterNumber: z.number().int().min(0),
+    plate: z.string().trim().min(1, 'Name the slit plate.').max(60),
+    scaleUmPerPx: stated('Pixel scale'),
+    separationUm: stated('Slit separation'),
+    widthUm: stated('Slit width'),
+    distanceMm: stated('Distance'),
+    remountNm: z
+      .object({ u: positive('Re-mount'), dof: positive('Degrees of freedom').nullable() })
+      .nullable()
+      .default(null),
+    tone: z.enum(['auto', 'linear', 'srgb']).default('auto'),
+    why: words('Why'),
+  })
+  .refine((s) => s.widthUm.value < s.separationUm.value, {
+    path: ['widthUm', 'value'],
+    message: 'The slit width must be smaller than the separation.',
+  });
 
 export const specificationSchema = z
   .object({
     name: z.string().trim().min(1, 'The specification needs a name.').max(80),
-    nominalNm: finite('Nominal').refine((v) => v >= 200 && v <= 2000, 'The nominal lies between 200 and 2000 nm.'),
+    nominalNm: finite('Nominal').refine(
+      (v) => v >= 200 && v <= 2000,
+      'The nominal lies between 200 and 2000 nm.',
+    ),
     medium: z.enum(['air', 'vacuum']),
     lowerNm: finite('Lower limit').nullable(),
     upperNm: finite('Upper limit').nullable(),
@@ -76,16 +131,60 @@ export const specificationSchema = z
     ratio: positive('The ratio').nullable().default(null),
     halfToleranceNm: positive('Half the tolerance').nullable().default(null),
   })
-  .refine((s) => s.lowerNm !== null || s.upperNm !== null, { path: ['lowerNm'], message: 'Give at least one limit.' })
-  .refine((s) => s.lowerNm === null || s.upperNm === null || s.lowerNm < s.upperNm, { path: ['upperNm'], message: 'The upper limit must be above the lower one.' })
-  .refine((s) => (s.lowerNm !== null && s.upperNm !== null) || s.halfToleranceNm !== null, { path: ['halfToleranceNm'], message: 'With one limit only, state half the tolerance.' })
-  .refine((s) => s.rule !== 'guard-own' || s.ownGuardNm !== null, { path: ['ownGuardNm'], message: 'State the width of the guard band.' });
-export const lotSchema = z.object({ number: z.string().trim().min(1, 'The lot needs a number.').max(40), specificationId: id, supplier: z.string().trim().max(120).default('') });
-export const unitsSchema = z.object({ lotId: id, serials: z.array(z.string().trim().min(1).max(LIMITS.serialLength, `A serial has at most ${LIMITS.serialLength} characters.`)).min(1, 'There is no serial in it.').max(LIMITS.unitsAtOnce, `At most ${LIMITS.unitsAtOnce} units at once.`) });
-export const sourceSchema = z.object({ name: z.string().trim().min(1, 'The source needs a name.').max(60), vacuumNm: finite('Wavelength').refine((v) => v >= 200 && v <= 2000, 'The wavelength lies between 200 and 2000 nm.'), uNm: positive('The standard uncertainty'), note: z.string().trim().max(300).default('') });
+  .refine((s) => s.lowerNm !== null || s.upperNm !== null, {
+    path: ['lowerNm'],
+    message: 'Give at least one limit.',
+  })
+  .refine((s) => s.lowerNm === null || s.upperNm === null || s.lowerNm < s.upperNm, {
+    path: ['upperNm'],
+    message: 'The upper limit must be above the lower one.',
+  })
+  .refine((s) => (s.lowerNm !== null && s.upperNm !== null) || s.halfToleranceNm !== null, {
+    path: ['halfToleranceNm'],
+    message: 'With one limit only, state half the tolerance.',
+  })
+  .refine((s) => s.rule !== 'guard-own' || s.ownGuardNm !== null, {
+    path: ['ownGuardNm'],
+    message: 'State the width of the guard band.',
+  });
+export const lotSchema = z.object({
+  number: z.string().trim().min(1, 'The lot needs a number.').max(40),
+  specificationId: id,
+  supplier: z.string().trim().max(120).default(''),
+});
+export const unitsSchema = z.object({
+  lotId: id,
+  serials: z
+    .array(
+      z
+        .string()
+        .trim()
+        .min(1)
+        .max(LIMITS.serialLength, `A serial has at most ${LIMITS.serialLength} characters.`),
+    )
+    .min(1, 'There is no serial in it.')
+    .max(LIMITS.unitsAtOnce, `At most ${LIMITS.unitsAtOnce} units at once.`),
+});
+export const sourceSchema = z.object({
+  name: z.string().trim().min(1, 'The source needs a name.').max(60),
+  vacuumNm: finite('Wavelength').refine(
+    (v) => v >= 200 && v <= 2000,
+    'The wavelength lies between 200 and 2000 nm.',
+  ),
+  uNm: positive('The standard uncertainty'),
+  note: z.string().trim().max(300).default(''),
+});
 
-export const personSchema = z.object({ name: z.string().trim().min(1, 'The person needs a name.').max(80), email: emailSchema, roles: z.array(z.enum(ROLES)).min(1, 'Choose at least one role.') });
+export const personSchema = z.object({
+  name: z.string().trim().min(1, 'The person needs a name.').max(80),
+  email: emailSchema,
+  roles: z.array(z.enum(ROLES)).min(1, 'Choose at least one role.'),
+});
 export const newPersonSchema = personSchema.extend({ password: passwordSchema });
-export const personChangeSchema = z.object({ personId: id, roles: z.array(z.enum(ROLES)), active: z.boolean() });
+export const personChangeSchema = z.object({
+  personId: id,
+  roles: z.array(z.enum(ROLES)),
+  active: z.boolean(),
+});
 export const forgottenSchema = z.object({ email: emailSchema });
 export const resetSchema = z.object({ token: z.string().min(20).max(200), password: passwordSchema });

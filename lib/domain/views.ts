@@ -1,6 +1,14 @@
 /** What the pages are given: plain data, made by lib/server/queries and drawn by app and components. */
 import type { FrameState, ReadingState } from './life-cycle';
-import type { BudgetRow, Finding, FindingWord, ReadingResult, Region, Strip, ToneChoice } from './reading-result';
+import type {
+  BudgetRow,
+  Finding,
+  FindingWord,
+  ReadingResult,
+  Region,
+  Strip,
+  ToneChoice,
+} from './reading-result';
 import type { Role } from './roles';
 import type { Judgement, Medium, Specification, Verdict } from './specification';
 

@@ -32,8 +32,7 @@ export function saturationPressurePa(temperatureC: number): number {
   if (temperatureC < 0) {
     const theta = kelvin / 273.16;
     return (
-      611.657 *
-      Math.exp(-13.928169 * (1 - Math.pow(theta, -1.5)) + 34.7078238 * (1 - Math.pow(theta, -1.25)))
+      611.657 * Math.exp(-13.928169 * (1 - Math.pow(theta, -1.5)) + 34.7078238 * (1 - Math.pow(theta, -1.25)))
     );
   }
   const omega = kelvin - 2.38555575678e-1 / (kelvin - 6.50175348448e2);

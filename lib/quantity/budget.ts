@@ -25,7 +25,8 @@ export function combineBudget(inputs: readonly BudgetInput[]): CombinedBudget {
   let quartic = 0;
   const contributions = inputs.map((row) => {
     const c = Math.abs(row.sensitivity * row.u);
-    if (!Number.isFinite(c) || row.u < 0) throw new RangeError(`The uncertainty of ${row.name} is not a number.`);
+    if (!Number.isFinite(c) || row.u < 0)
+      throw new RangeError(`The uncertainty of ${row.name} is not a number.`);
     variance += c * c;
     if (row.dof !== null) quartic += (c * c * c * c) / row.dof;
     return c;

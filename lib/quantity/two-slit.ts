@@ -4,12 +4,22 @@
  */
 
 /** Distance from the axis in mm at which order m stands on a flat plane: X = L·tan(asin(mλ/d)). NaN beyond 90°. */
-export function orderPositionMm(m: number, wavelengthNm: number, separationUm: number, distanceMm: number): number {
+export function orderPositionMm(
+  m: number,
+  wavelengthNm: number,
+  separationUm: number,
+  distanceMm: number,
+): number {
   return distanceMm * Math.tan(Math.asin((m * wavelengthNm) / (separationUm * 1000)));
 }
 
 /** Spacing at the zero order in px: Λ = dX/dm at m = 0 = λL/(d·s). */
-export function spacingPx(wavelengthNm: number, separationUm: number, distanceMm: number, scaleUmPerPx: number): number {
+export function spacingPx(
+  wavelengthNm: number,
+  separationUm: number,
+  distanceMm: number,
+  scaleUmPerPx: number,
+): number {
   return (wavelengthNm * 1e-3 * distanceMm * 1e3) / (separationUm * scaleUmPerPx);
 }
 

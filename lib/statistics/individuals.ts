@@ -43,7 +43,7 @@ export function individualsChart(points: readonly IndividualsInput[]): Individua
     i > 0 && points[i - 1].setupId === point.setupId ? Math.abs(point.valueNm - points[i - 1].valueNm) : null,
   );
   const stretches: Stretch[] = [];
-  for (let first = 0; first < points.length; ) {
+  for (let first = 0; first < points.length;) {
     let last = first;
     while (last + 1 < points.length && points[last + 1].setupId === points[first].setupId) last += 1;
     stretches.push(stretchOf(points, movingRanges, first, last));
@@ -54,7 +54,11 @@ export function individualsChart(points: readonly IndividualsInput[]): Individua
   for (const stretch of stretches) {
     for (let i = stretch.first; i <= stretch.last; i += 1) {
       const value = points[i].valueNm;
-      if (stretch.upperNm !== null && stretch.lowerNm !== null && (value > stretch.upperNm || value < stretch.lowerNm)) {
+      if (
+        stretch.upperNm !== null &&
+        stretch.lowerNm !== null &&
+        (value > stretch.upperNm || value < stretch.lowerNm)
+      ) {
         outside[i] = true;
         findings.push({ kind: 'outside', first: i, last: i });
       }

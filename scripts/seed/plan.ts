@@ -46,45 +46,173 @@ export const DEMO_BENCHES = [
 ];
 
 export const DEMO_SETUPS: DemoSetup[] = [
-  { bench: 0, daysAgo: 90, plate: 'P-2', scaleUmPerPx: [6.9, 0.0014], separationUm: [250.1, 0.2], widthUm: [50.2, 0.6], distanceMm: [300.2, 0.3], why: 'First setup of this bench.', dueInDays: { plate: 120, scale: 300, distance: 41 } },
-  { bench: 1, daysAgo: 90, plate: 'P-3', scaleUmPerPx: [52.092, 0.031], separationUm: [250.0, 0.19], widthUm: [30.0, 0.4], distanceMm: [1852.4, 0.9], why: 'First setup of this bench.', dueInDays: { plate: 110, scale: 30, distance: 60 } },
-  { bench: 1, daysAgo: 51, plate: 'P-3', scaleUmPerPx: [52.092, 0.031], separationUm: [250.0, 0.19], widthUm: [30.0, 0.4], distanceMm: [1850.2, 0.9], why: 'Screen re-clamped, distance measured again.', dueInDays: { plate: 110, scale: 30, distance: 60 } },
-  { bench: 1, daysAgo: 17, plate: 'P-3', scaleUmPerPx: [52.04, 0.031], separationUm: [250.0, 0.19], widthUm: [30.0, 0.4], distanceMm: [1850.2, 0.9], why: 'Pixel scale measured again from a photographed scale.', dueInDays: { plate: 110, scale: 200, distance: 20 } },
-  { bench: 2, daysAgo: 90, plate: 'P-5', scaleUmPerPx: [25.0, 0.012], separationUm: [249.6, 0.2], widthUm: [40.3, 0.5], distanceMm: [1000.4, 0.5], why: 'First setup of this bench.', dueInDays: { plate: 90, scale: 2, distance: 80 } },
+  {
+    bench: 0,
+    daysAgo: 90,
+    plate: 'P-2',
+    scaleUmPerPx: [6.9, 0.0014],
+    separationUm: [250.1, 0.2],
+    widthUm: [50.2, 0.6],
+    distanceMm: [300.2, 0.3],
+    why: 'First setup of this bench.',
+    dueInDays: { plate: 120, scale: 300, distance: 41 },
+  },
+  {
+    bench: 1,
+    daysAgo: 90,
+    plate: 'P-3',
+    scaleUmPerPx: [52.092, 0.031],
+    separationUm: [250.0, 0.19],
+    widthUm: [30.0, 0.4],
+    distanceMm: [1852.4, 0.9],
+    why: 'First setup of this bench.',
+    dueInDays: { plate: 110, scale: 30, distance: 60 },
+  },
+  {
+    bench: 1,
+    daysAgo: 51,
+    plate: 'P-3',
+    scaleUmPerPx: [52.092, 0.031],
+    separationUm: [250.0, 0.19],
+    widthUm: [30.0, 0.4],
+    distanceMm: [1850.2, 0.9],
+    why: 'Screen re-clamped, distance measured again.',
+    dueInDays: { plate: 110, scale: 30, distance: 60 },
+  },
+  {
+    bench: 1,
+    daysAgo: 17,
+    plate: 'P-3',
+    scaleUmPerPx: [52.04, 0.031],
+    separationUm: [250.0, 0.19],
+    widthUm: [30.0, 0.4],
+    distanceMm: [1850.2, 0.9],
+    why: 'Pixel scale measured again from a photographed scale.',
+    dueInDays: { plate: 110, scale: 200, distance: 20 },
+  },
+  {
+    bench: 2,
+    daysAgo: 90,
+    plate: 'P-5',
+    scaleUmPerPx: [25.0, 0.012],
+    separationUm: [249.6, 0.2],
+    widthUm: [40.3, 0.5],
+    distanceMm: [1000.4, 0.5],
+    why: 'First setup of this bench.',
+    dueInDays: { plate: 90, scale: 2, distance: 80 },
+  },
 ];
 
 export const DEMO_SPECIFICATIONS = [
   { key: 'red', name: 'Red module 635 ± 5', nominalNm: 635, half: 5, rule: 'guard-expanded' as const },
   { key: 'green', name: 'Green module 520 ± 5', nominalNm: 520, half: 5, rule: 'guard-expanded' as const },
   { key: 'blue', name: 'Blue module 450 ± 5', nominalNm: 450, half: 5, rule: 'simple' as const },
-  { key: 'narrow', name: 'Narrow red module 635 ± 0.5', nominalNm: 635, half: 0.5, rule: 'guard-expanded' as const },
+  {
+    key: 'narrow',
+    name: 'Narrow red module 635 ± 0.5',
+    nominalNm: 635,
+    half: 0.5,
+    rule: 'guard-expanded' as const,
+  },
 ];
 
 export const DEMO_LOTS = [
-  { number: '0930', specification: 'blue', supplier: 'Invented supplier A', prefix: 'LM-17', first: 60, units: 12, daysAgo: 60 },
-  { number: '0931', specification: 'red', supplier: 'Invented supplier B', prefix: 'LM-24', first: 1, units: 24, daysAgo: 40 },
-  { number: '0932', specification: 'green', supplier: 'Invented supplier A', prefix: 'LM-20', first: 80, units: 12, daysAgo: 25 },
-  { number: '0933', specification: 'narrow', supplier: 'Invented supplier C', prefix: 'LM-33', first: 1, units: 6, daysAgo: 10 },
+  {
+    number: '0930',
+    specification: 'blue',
+    supplier: 'Invented supplier A',
+    prefix: 'LM-17',
+    first: 60,
+    units: 12,
+    daysAgo: 60,
+  },
+  {
+    number: '0931',
+    specification: 'red',
+    supplier: 'Invented supplier B',
+    prefix: 'LM-24',
+    first: 1,
+    units: 24,
+    daysAgo: 40,
+  },
+  {
+    number: '0932',
+    specification: 'green',
+    supplier: 'Invented supplier A',
+    prefix: 'LM-20',
+    first: 80,
+    units: 12,
+    daysAgo: 25,
+  },
+  {
+    number: '0933',
+    specification: 'narrow',
+    supplier: 'Invented supplier C',
+    prefix: 'LM-33',
+    first: 1,
+    units: 6,
+    daysAgo: 10,
+  },
 ];
 
 export function serialsOf(lot: (typeof DEMO_LOTS)[number]): string[] {
-  return Array.from({ length: lot.units }, (_, i) => `${lot.prefix}${String(lot.first + i).padStart(2, '0')}`);
+  return Array.from(
+    { length: lot.units },
+    (_, i) => `${lot.prefix}${String(lot.first + i).padStart(2, '0')}`,
+  );
 }
 
 /** The true geometry behind a bench's stated one at a moment, off by less than it states. */
 function truth(bench: number, daysAgo: number, r: Random): Scene {
   const remount = 1 + 1e-4 * r.normal();
-  const base = { ...PLAIN_SCENE, widthPx: 1280, heightPx: 400, visibility: r.between(0.9, 0.96), tiltDeg: r.between(-0.6, 0.9), envelopeShiftPx: r.between(-3, 3), zeroXPx: 640 + r.between(-35, 35), zeroYPx: 200 + r.between(-15, 15), bandHalfPx: r.between(120, 150) };
-  if (bench === 0) return { ...base, scaleUmPerPx: 6.9003, separationUm: 250.04, widthUm: 50.0, distanceMm: 300.15 * remount };
-  if (bench === 2) return { ...base, scaleUmPerPx: 25.004, separationUm: 249.66, widthUm: 40.1, distanceMm: 1000.5 * remount };
+  const base = {
+    ...PLAIN_SCENE,
+    widthPx: 1280,
+    heightPx: 400,
+    visibility: r.between(0.9, 0.96),
+    tiltDeg: r.between(-0.6, 0.9),
+    envelopeShiftPx: r.between(-3, 3),
+    zeroXPx: 640 + r.between(-35, 35),
+    zeroYPx: 200 + r.between(-15, 15),
+    bandHalfPx: r.between(120, 150),
+  };
+  if (bench === 0)
+    return {
+      ...base,
+      scaleUmPerPx: 6.9003,
+      separationUm: 250.04,
+      widthUm: 50.0,
+      distanceMm: 300.15 * remount,
+    };
+  if (bench === 2)
+    return {
+      ...base,
+      scaleUmPerPx: 25.004,
+      separationUm: 249.66,
+      widthUm: 40.1,
+      distanceMm: 1000.5 * remount,
+    };
   // The scale of bench 2 creeps as its lens works loose, until it is measured again; its screen moved once.
   const creep = daysAgo > 51 ? 0 : daysAgo > 17 ? ((51 - daysAgo) / 34) * 5.5e-4 : 5e-4;
   const scale = daysAgo > 17 ? 52.083 : 52.06;
-  return { ...base, scaleUmPerPx: scale * (1 - creep * (daysAgo > 17 ? 1 : 0)), separationUm: 250.03, widthUm: 30.1, distanceMm: (daysAgo > 51 ? 1852.1 : 1850.0) * remount };
+  return {
+    ...base,
+    scaleUmPerPx: scale * (1 - creep * (daysAgo > 17 ? 1 : 0)),
+    separationUm: 250.03,
+    widthUm: 30.1,
+    distanceMm: (daysAgo > 51 ? 1852.1 : 1850.0) * remount,
+  };
 }
 
 function camera(r: Random, change: Partial<Camera> = {}): Camera {
-  return { ...PLAIN_CAMERA, seed: r.integer(1, 2 ** 30), peakElectrons: r.between(8000, 16_000), peakShare: r.between(0.6, 0.84), speckle: { contrast: 0.06, grainPx: 3 }, ...change };
+  return {
+    ...PLAIN_CAMERA,
+    seed: r.integer(1, 2 ** 30),
+    peakElectrons: r.between(8000, 16_000),
+    peakShare: r.between(0.6, 0.84),
+    speckle: { contrast: 0.06, grainPx: 3 },
+    ...change,
+  };
 }
 
 /** Reference frames: He-Ne R-1, taken to see that the bench agrees. */
@@ -95,7 +223,15 @@ function references(r: Random): DemoFrame[] {
     const scene = { ...truth(bench, daysAgo, r), wavelengthNm: AIR_632_8 };
     // One run with the screen knocked out of place, as happens.
     if (bench === 1 && Math.round(daysAgo) === 44) scene.distanceMm *= 1.0013;
-    frames.push({ daysAgo, bench, fileName: `b${bench + 1}-ref-${String(Math.round(1000 - daysAgo * 10))}.tif`, subject: { kind: 'source' }, plan: { scene, camera: camera(r), kind: 'tiff' }, fate: 'accept', by: 0 });
+    frames.push({
+      daysAgo,
+      bench,
+      fileName: `b${bench + 1}-ref-${String(Math.round(1000 - daysAgo * 10))}.tif`,
+      subject: { kind: 'source' },
+      plan: { scene, camera: camera(r), kind: 'tiff' },
+      fate: 'accept',
+      by: 0,
+    });
   };
   for (let day = 88; day >= 1; day -= 3.1) take(1, day);
   for (let day = 85; day >= 3; day -= 16) take(0, day);
@@ -106,22 +242,57 @@ function references(r: Random): DemoFrame[] {
 /** Unit frames, lot by lot, with the things that go wrong on a bench. */
 function units(r: Random): DemoFrame[] {
   const frames: DemoFrame[] = [];
-  const add = (lot: string, serial: string, bench: number, daysAgo: number, wavelengthNm: number, fate: Fate, change: { scene?: Partial<Scene>; camera?: Partial<Camera>; kind?: FileKind; cutAt?: number; take?: number } = {}): void => {
+  const add = (
+    lot: string,
+    serial: string,
+    bench: number,
+    daysAgo: number,
+    wavelengthNm: number,
+    fate: Fate,
+    change: {
+      scene?: Partial<Scene>;
+      camera?: Partial<Camera>;
+      kind?: FileKind;
+      cutAt?: number;
+      take?: number;
+    } = {},
+  ): void => {
     const kind = change.kind ?? 'tiff';
     const ending = kind === 'jpeg' ? 'jpg' : kind === 'tiff' ? 'tif' : kind;
     frames.push({
-      daysAgo, bench, fate, by: frames.length % 3 === 0 ? 1 : 0, cutAt: change.cutAt,
+      daysAgo,
+      bench,
+      fate,
+      by: frames.length % 3 === 0 ? 1 : 0,
+      cutAt: change.cutAt,
       fileName: `b${bench + 1}-${lot}-${serial}-${change.take ?? 1}.${ending}`,
       subject: { kind: 'unit', lot, serial },
-      plan: { scene: { ...truth(bench, daysAgo, r), wavelengthNm, ...change.scene }, camera: camera(r, change.camera), kind, quality: 92 },
+      plan: {
+        scene: { ...truth(bench, daysAgo, r), wavelengthNm, ...change.scene },
+        camera: camera(r, change.camera),
+        kind,
+        quality: 92,
+      },
     });
   };
   const [blue, red, green, narrow] = DEMO_LOTS.map(serialsOf);
-  blue.slice(0, 10).forEach((serial, i) => add('0930', serial, 2, 58 - i * 0.8, 450.6 + 1.1 * r.normal(), 'accept'));
+  blue
+    .slice(0, 10)
+    .forEach((serial, i) => add('0930', serial, 2, 58 - i * 0.8, 450.6 + 1.1 * r.normal(), 'accept'));
   add('0930', blue[10], 2, 49.5, 457.1, 'accept');
-  red.slice(0, 13).forEach((serial, i) => add('0931', serial, 1, 38 - i * 1.4, 634.7 + 1.2 * r.normal(), 'accept'));
-  green.slice(0, 6).forEach((serial, i) => add('0932', serial, 2, 22 - i * 1.3, 520.8 + 1.3 * r.normal(), 'accept', { camera: { peakShare: r.between(0.55, 0.8) } }));
-  add('0931', red[13], 1, 9.3, 634.2, 'return', { camera: { dirt: { dust: 9, hot: 4, deadColumns: 1, marks: 0 } } });
+  red
+    .slice(0, 13)
+    .forEach((serial, i) => add('0931', serial, 1, 38 - i * 1.4, 634.7 + 1.2 * r.normal(), 'accept'));
+  green
+    .slice(0, 6)
+    .forEach((serial, i) =>
+      add('0932', serial, 2, 22 - i * 1.3, 520.8 + 1.3 * r.normal(), 'accept', {
+        camera: { peakShare: r.between(0.55, 0.8) },
+      }),
+    );
+  add('0931', red[13], 1, 9.3, 634.2, 'return', {
+    camera: { dirt: { dust: 9, hot: 4, deadColumns: 1, marks: 0 } },
+  });
   add('0931', red[13], 1, 8.2, 634.2, 'accept', { take: 2 });
   add('0932', green[6], 2, 6.4, 521.4, 'return', { scene: { tiltDeg: 3.6 } });
   add('0931', red[14], 1, 5.3, 635.4, 'as-it-falls', { scene: { pattern: 'one', widthUm: 60 } });
@@ -129,7 +300,10 @@ function units(r: Random): DemoFrame[] {
   add('0931', red[15], 1, 4.4, 639.55, 'review');
   add('0931', red[16], 1, 3.4, 634.9, 'review', { camera: { peakShare: 1.25 } });
   add('0931', red[17], 1, 3.3, 634.1, 'review', { scene: { tiltDeg: 1.82 } });
-  add('0932', green[7], 2, 2.6, 520.1, 'review', { kind: 'jpeg', camera: { bits: 8, offsetCounts: 3, tone: 'srgb' } });
+  add('0932', green[7], 2, 2.6, 520.1, 'review', {
+    kind: 'jpeg',
+    camera: { bits: 8, offsetCounts: 3, tone: 'srgb' },
+  });
   add('0933', narrow[0], 1, 2.2, 634.95, 'review');
   add('0933', narrow[1], 1, 2.1, 635.2, 'draft');
   add('0931', red[18], 1, 1.2, 634.6, 'draft');

@@ -32,7 +32,10 @@ function sinc(t: number): number {
 }
 
 /** Light with the unknowns as the fit sees them; κ = s/L per px, r the envelope's zero in orders. */
-function shape(u: number, p: { spacing: number; zero: number; ratio: number; middle: number; visibility: number; curvature: number }): number {
+function shape(
+  u: number,
+  p: { spacing: number; zero: number; ratio: number; middle: number; visibility: number; curvature: number },
+): number {
   const orders = (x: number): number => x / (p.spacing * Math.sqrt(1 + (p.curvature * x) ** 2));
   const envelope = sinc(orders(u - p.middle) / p.ratio);
   return envelope * envelope * 0.5 * (1 + p.visibility * Math.cos(2 * Math.PI * orders(u - p.zero)));
@@ -53,7 +56,11 @@ export function cramerRao(scene: Scene, camera: Camera, relativeCurvatureU: numb
   const along = (u: number): number => u / (1 - scene.obliquePerPx * u);
   const table = (f: (u: number) => number): Table => new Table((u) => f(along(u)), from, to, step);
   const derivative = (key: keyof typeof truth, h: number): Table =>
-    table((u) => (shape(u, { ...truth, [key]: truth[key] + h }) - shape(u, { ...truth, [key]: truth[key] - h })) / (2 * h));
+    table(
+      (u) =>
+        (shape(u, { ...truth, [key]: truth[key] + h }) - shape(u, { ...truth, [key]: truth[key] - h })) /
+        (2 * h),
+    );
   const mean = table((u) => shape(u, truth));
   const tables: [number, Table][] = [
     [SPACING, derivative('spacing', truth.spacing * 1e-5)],
@@ -119,7 +126,8 @@ function accumulate(scene: Scene, camera: Camera, mean: Table, tables: [number, 
       }
     }
   }
-  for (let i = 0; i < COUNT; i += 1) for (let j = 0; j < i; j += 1) total[i * COUNT + j] = total[j * COUNT + i];
+  for (let i = 0; i < COUNT; i += 1)
+    for (let j = 0; j < i; j += 1) total[i * COUNT + j] = total[j * COUNT + i];
   return total;
 }
 
@@ -127,7 +135,9 @@ function accumulate(scene: Scene, camera: Camera, mean: Table, tables: [number, 
 function invert(matrix: Float64Array, n: number): Float64Array {
   const scale = Float64Array.from({ length: n }, (_, i) => 1 / Math.sqrt(matrix[i * n + i]));
   const a = Array.from({ length: n }, (_, i) =>
-    Float64Array.from({ length: 2 * n }, (_v, j) => (j < n ? matrix[i * n + j] * scale[i] * scale[j] : j - n === i ? 1 : 0)),
+    Float64Array.from({ length: 2 * n }, (_v, j) =>
+      j < n ? matrix[i * n + j] * scale[i] * scale[j] : j - n === i ? 1 : 0,
+    ),
   );
   for (let p = 0; p < n; p += 1) {
     let best = p;
@@ -143,6 +153,7 @@ function invert(matrix: Float64Array, n: number): Float64Array {
     }
   }
   const out = new Float64Array(n * n);
-  for (let i = 0; i < n; i += 1) for (let j = 0; j < n; j += 1) out[i * n + j] = a[i][n + j] * scale[i] * scale[j];
+  for (let i = 0; i < n; i += 1)
+    for (let j = 0; j < n; j += 1) out[i * n + j] = a[i][n + j] * scale[i] * scale[j];
   return out;
 }

@@ -1,3 +1,4 @@
+import type { Paint } from './paintings';
 import { random, type Random } from './random';
 import { renderMean, type Scene } from './scene';
 
@@ -47,9 +48,7 @@ export interface Picture {
 /** The noise of one pixel in counts², given its mean in counts above the offset. */
 export function noiseVariance(camera: Camera, countsAboveOffset: number): number {
   const perElectron = countsPerElectron(camera);
-  return (
-    Math.max(0, countsAboveOffset) * perElectron + (camera.readElectrons * perElectron) ** 2 + 1 / 12
-  );
+  return Math.max(0, countsAboveOffset) * perElectron + (camera.readElectrons * perElectron) ** 2 + 1 / 12;
 }
 
 export function fullScale(camera: Camera): number {
@@ -62,9 +61,10 @@ export function countsPerElectron(camera: Camera): number {
 }
 
 /** Photographs a scene: shot and read noise in electrons, dirt, speckle, clipping, quantisation, tone. */
-export function photograph(scene: Scene, camera: Camera): Picture {
+export function photograph(scene: Scene, camera: Camera, paints: readonly Paint[] = []): Picture {
   const rnd = random(camera.seed);
   const mean = renderMean(scene);
+  for (const paint of paints) paint(mean, scene);
   if (camera.speckle.contrast > 0) applySpeckle(mean, scene, camera, rnd);
   applyDust(mean, scene, camera, rnd);
   const { widthPx, heightPx } = scene;
@@ -75,7 +75,8 @@ export function photograph(scene: Scene, camera: Camera): Picture {
     for (let c = 0; c < widthPx; c += 1) {
       const i = r * widthPx + c;
       const seen = camera.bayer ? camera.bayer[(r & 1) + (c & 1)] : 1;
-      const electrons = rnd.poisson(mean[i] * camera.peakElectrons * seen) + camera.readElectrons * rnd.normal();
+      const electrons =
+        rnd.poisson(mean[i] * camera.peakElectrons * seen) + camera.readElectrons * rnd.normal();
       sensor[i] = camera.offsetCounts + perElectron * electrons;
     }
   }
@@ -87,7 +88,13 @@ export function photograph(scene: Scene, camera: Camera): Picture {
   if (!camera.bayer) {
     return { widthPx, heightPx, channels: 1, bits, samples: Uint16Array.from(sensor, quantise) };
   }
-  return { widthPx, heightPx, channels: 3, bits, samples: Uint16Array.from(demosaic(sensor, widthPx, heightPx), quantise) };
+  return {
+    widthPx,
+    heightPx,
+    channels: 3,
+    bits,
+    samples: Uint16Array.from(demosaic(sensor, widthPx, heightPx), quantise),
+  };
 }
 
 function encoder(tone: Camera['tone']): (share: number) => number {
@@ -100,7 +107,13 @@ function encoder(tone: Camera['tone']): (share: number) => number {
 /** Partly developed speckle: |field|² of a smoothed complex normal field, mixed to the stated contrast. */
 function applySpeckle(mean: Float32Array, scene: Scene, camera: Camera, rnd: Random): void {
   const { widthPx: w, heightPx: h } = scene;
-  const field = () => smooth(Float32Array.from({ length: w * h }, () => rnd.normal()), w, h, camera.speckle.grainPx);
+  const field = () =>
+    smooth(
+      Float32Array.from({ length: w * h }, () => rnd.normal()),
+      w,
+      h,
+      camera.speckle.grainPx,
+    );
   const re = field();
   const im = field();
   let power = 0;
@@ -122,7 +135,14 @@ function smooth(data: Float32Array, w: number, h: number, grainPx: number): Floa
   return from;
 }
 
-function runningMean(data: Float32Array, along: number, lines: number, radius: number, step: number, jump: number): Float32Array {
+function runningMean(
+  data: Float32Array,
+  along: number,
+  lines: number,
+  radius: number,
+  step: number,
+  jump: number,
+): Float32Array {
   const out = new Float32Array(data.length);
   for (let line = 0; line < lines; line += 1) {
     const base = line * jump;
@@ -130,7 +150,8 @@ function runningMean(data: Float32Array, along: number, lines: number, radius: n
     for (let k = -radius; k <= radius; k += 1) sum += data[base + ((k + along) % along) * step];
     for (let i = 0; i < along; i += 1) {
       out[base + i * step] = sum / (2 * radius + 1);
-      sum += data[base + ((i + radius + 1) % along) * step] - data[base + ((i - radius + along) % along) * step];
+      sum +=
+        data[base + ((i + radius + 1) % along) * step] - data[base + ((i - radius + along) % along) * step];
     }
   }
   return out;
@@ -170,7 +191,8 @@ function applyDefects(sensor: Float32Array, scene: Scene, camera: Camera, rnd: R
       for (let t = 0; t < 3; t += 1) {
         const c = x + (upright ? t : k);
         const r = y + (upright ? k : t);
-        if (c < w && r < h) sensor[r * w + c] = camera.offsetCounts + 0.25 * (sensor[r * w + c] - camera.offsetCounts);
+        if (c < w && r < h)
+          sensor[r * w + c] = camera.offsetCounts + 0.25 * (sensor[r * w + c] - camera.offsetCounts);
       }
     }
   }

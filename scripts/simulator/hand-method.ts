@@ -18,7 +18,8 @@ export function handSpacingPx(picture: Picture, aboutPx: number): number | null 
   for (let c = reach; c < widthPx - reach; c += 1) {
     if (profile[c] < floor + 0.1 * (top - floor)) continue;
     let isTop = true;
-    for (let k = -reach; k <= reach && isTop; k += 1) isTop = k === 0 || profile[c + k] < profile[c] || (profile[c + k] === profile[c] && k > 0);
+    for (let k = -reach; k <= reach && isTop; k += 1)
+      isTop = k === 0 || profile[c + k] < profile[c] || (profile[c + k] === profile[c] && k > 0);
     if (isTop) middles.push(centroid(profile, c, reach));
   }
   if (middles.length < 3) return null;

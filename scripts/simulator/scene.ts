@@ -98,7 +98,9 @@ export function trueOrderPx(scene: Scene, m: number): number {
 
 /** Share of the light that reaches the row at v px from the band's middle. */
 export function bandAt(scene: Scene, v: number): number {
-  return Number.isFinite(scene.bandHalfPx) ? Math.exp(-Math.pow(Math.abs(v) / scene.bandHalfPx, scene.bandPower)) : 1;
+  return Number.isFinite(scene.bandHalfPx)
+    ? Math.exp(-Math.pow(Math.abs(v) / scene.bandHalfPx, scene.bandPower))
+    : 1;
 }
 
 export function strayAt(scene: Scene, x: number): number {
@@ -159,7 +161,10 @@ export function renderMean(scene: Scene): Float32Array {
   const cos = Math.cos(t);
   const sin = Math.sin(t);
   const { from, to } = rangeOfU(scene);
-  const table = scene.pattern === 'rings' ? null : new Table((u) => lightAt(scene, u), from, to, Math.min(0.25, trueSpacingPx(scene) / 60));
+  const table =
+    scene.pattern === 'rings'
+      ? null
+      : new Table((u) => lightAt(scene, u), from, to, Math.min(0.25, trueSpacingPx(scene) / 60));
   for (let r = 0; r < heightPx; r += 1) {
     for (let c = 0; c < widthPx; c += 1) {
       let sum = 0;
@@ -181,5 +186,9 @@ export function renderMean(scene: Scene): Float32Array {
 /** Rings of even spacing under a broad envelope: a pattern that is periodic but no two-slit pattern. */
 function ringsAt(scene: Scene, radius: number): number {
   const spacing = trueSpacingPx(scene);
-  return 0.5 * (1 + scene.visibility * Math.cos((2 * Math.PI * radius) / spacing)) * Math.exp(-((radius / (0.4 * scene.widthPx)) ** 2));
+  return (
+    0.5 *
+    (1 + scene.visibility * Math.cos((2 * Math.PI * radius) / spacing)) *
+    Math.exp(-((radius / (0.4 * scene.widthPx)) ** 2))
+  );
 }

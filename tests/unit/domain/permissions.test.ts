@@ -27,7 +27,9 @@ const MATRIX: Record<Action, string> = {
 const LETTER: Record<Role, string> = { technician: 't', reviewer: 'r', qa: 'q', admin: 'a' };
 
 describe('permissions', () => {
-  const cases = (Object.keys(PERMISSIONS) as Action[]).flatMap((action) => ROLES.map((role) => [action, role] as const));
+  const cases = (Object.keys(PERMISSIONS) as Action[]).flatMap((action) =>
+    ROLES.map((role) => [action, role] as const),
+  );
   test.each(cases)('%s by %s', (action, role) => {
     expect(can({ id: 1, roles: [role] }, action)).toBe(MATRIX[action].includes(LETTER[role]));
   });
@@ -39,10 +41,16 @@ describe('permissions', () => {
   });
   test('whoever had a hand in a reading cannot accept it, whatever roles they hold', () => {
     const subject = { uploadedBy: 1, sentBy: 2, fittedBeforeSending: [3] };
-    for (const id of [1, 2, 3]) expect(can({ id, roles: [...ROLES] }, 'readings.accept', subject)).toBe(false);
+    for (const id of [1, 2, 3])
+      expect(can({ id, roles: [...ROLES] }, 'readings.accept', subject)).toBe(false);
     expect(can({ id: 4, roles: ['reviewer'] }, 'readings.accept', subject)).toBe(true);
     expect(can({ id: 4, roles: ['admin', 'qa', 'technician'] }, 'readings.accept', subject)).toBe(false);
-    expect([1, 2, 3, 4].map((id) => barredFromAccepting(id, subject))).toEqual(['uploaded', 'sent', 'fitted', null]);
+    expect([1, 2, 3, 4].map((id) => barredFromAccepting(id, subject))).toEqual([
+      'uploaded',
+      'sent',
+      'fitted',
+      null,
+    ]);
   });
 });
 

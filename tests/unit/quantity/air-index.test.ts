@@ -1,4 +1,10 @@
-import { airFromVacuum, airIndex, saturationPressurePa, vacuumFromAir, type AirState } from '@/lib/quantity/air-index';
+import {
+  airFromVacuum,
+  airIndex,
+  saturationPressurePa,
+  vacuumFromAir,
+  type AirState,
+} from '@/lib/quantity/air-index';
 
 const base: AirState = { temperatureC: 20, pressurePa: 101_325, humidityPercent: 50, co2Ppm: 450 };
 

@@ -1,13 +1,26 @@
 import { combineBudget, type BudgetInput } from '@/lib/quantity/budget';
 
 const row = (key: string, u: number, sensitivity: number, dof: number | null = null): BudgetInput => ({
-  key, name: key, symbol: '', value: null, unit: '', u, known: '', dof, sensitivity,
+  key,
+  name: key,
+  symbol: '',
+  value: null,
+  unit: '',
+  u,
+  known: '',
+  dof,
+  sensitivity,
 });
 
 describe('combining a budget', () => {
   // JCGM 100:2008, H.1 (end gauge): contributions 25, 9.7, 2.9, 16.6 nm -> u 32 nm, ν_eff 16.7, t₉₉(16) 2.92.
   test('GUM H.1', () => {
-    const combined = combineBudget([row('l_S', 25, 1, 18), row('d', 9.66, 1, 25.6), row('δα', 0.58e-6, 2.887 / 0.58e-6, 50), row('δθ', 0.029, 16.599 / 0.029, 2)]);
+    const combined = combineBudget([
+      row('l_S', 25, 1, 18),
+      row('d', 9.66, 1, 25.6),
+      row('δα', 0.58e-6, 2.887 / 0.58e-6, 50),
+      row('δθ', 0.029, 16.599 / 0.029, 2),
+    ]);
     expect(combined.uNm).toBeCloseTo(31.66, 1);
     expect(Math.abs((combined.dof ?? 0) - 16.7)).toBeLessThan(0.1);
   });

@@ -1,4 +1,15 @@
-import { formatBytes, formatCalendarDate, formatDay, formatInstant, formatNumber, formatPercent, formatQuantity, formatSigned, placesFor, roundHalfAway } from '@/lib/quantity/format';
+import {
+  formatBytes,
+  formatCalendarDate,
+  formatDay,
+  formatInstant,
+  formatNumber,
+  formatPercent,
+  formatQuantity,
+  formatSigned,
+  placesFor,
+  roundHalfAway,
+} from '@/lib/quantity/format';
 
 describe('numbers as text', () => {
   test('two figures of the uncertainty, the value to the same place', () => {

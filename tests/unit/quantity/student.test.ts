@@ -23,13 +23,16 @@ describe("Student's t", () => {
     expect(normalCdf(1)).toBeCloseTo(0.841344746068543, 13);
     expect(normalCdf(-6)).toBeCloseTo(9.865876450377e-10, 18);
     // ν = 1 is the Cauchy distribution: F(t) = ½ + atan(t)/π.
-    for (const t of [-3, -0.2, 0, 0.7, 12]) expect(studentCdf(t, 1)).toBeCloseTo(0.5 + Math.atan(t) / Math.PI, 12);
+    for (const t of [-3, -0.2, 0, 0.7, 12])
+      expect(studentCdf(t, 1)).toBeCloseTo(0.5 + Math.atan(t) / Math.PI, 12);
     // ν = 2: F(t) = ½ + t / (2√(2 + t²)).
-    for (const t of [-3, 0.7, 12]) expect(studentCdf(t, 2)).toBeCloseTo(0.5 + t / (2 * Math.sqrt(2 + t * t)), 12);
+    for (const t of [-3, 0.7, 12])
+      expect(studentCdf(t, 2)).toBeCloseTo(0.5 + t / (2 * Math.sqrt(2 + t * t)), 12);
   });
   test('quantile and cumulative function undo each other, also for fractional ν', () => {
     for (const dof of [0.8, 3.7, 19.2, 400.5]) {
-      for (const p of [0.01, 0.3, 0.5, 0.9, 0.9999]) expect(studentCdf(studentQuantile(p, dof), dof)).toBeCloseTo(p, 10);
+      for (const p of [0.01, 0.3, 0.5, 0.9, 0.9999])
+        expect(studentCdf(studentQuantile(p, dof), dof)).toBeCloseTo(p, 10);
     }
   });
   test('refuses what is no probability and no degrees of freedom', () => {

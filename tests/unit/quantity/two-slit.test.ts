@@ -1,5 +1,12 @@
 import {
-  fringesInCentralLobe, highestOrder, isMissingOrder, orderAngleDeg, orderHeight, orderPositionMm, spacingPx, wavelengthFromSpacing,
+  fringesInCentralLobe,
+  highestOrder,
+  isMissingOrder,
+  orderAngleDeg,
+  orderHeight,
+  orderPositionMm,
+  spacingPx,
+  wavelengthFromSpacing,
 } from '@/lib/quantity/two-slit';
 
 // Worked examples of OpenStax, University Physics vol. 3 (UP), chapters 3 and 4, and College Physics 2e (CP),
@@ -20,7 +27,9 @@ describe('two-slit relations', () => {
     expect(spacingPx(633 / 1.33, 80, 3000, 1000)).toBeCloseTo(17.848, 2);
   });
   test('UP / CP: 7.50 mm, 2.00 m, 0.120 mm -> 450 nm', () => {
-    expect(wavelengthFromSpacing({ spacingPx: 7.5, scaleUmPerPx: 1000, separationUm: 120, distanceMm: 2000 })).toBeCloseTo(450, 9);
+    expect(
+      wavelengthFromSpacing({ spacingPx: 7.5, scaleUmPerPx: 1000, separationUm: 120, distanceMm: 2000 }),
+    ).toBeCloseTo(450, 9);
   });
   test('UP: 5th maximum 2.8 cm off axis, 1.5 m, 0.15 mm: 560 nm for small angles, 559.90 exactly', () => {
     const small = (0.15 * 28 * 1e6) / (5 * 1500);
@@ -37,7 +46,9 @@ describe('two-slit relations', () => {
   });
   test('UP ex. 4.4: w 0.020 mm, d 0.20 mm: 19 bright fringes, orders 10 and 20 missing, 20 at 2.87°', () => {
     expect(fringesInCentralLobe(200, 20)).toBe(19);
-    expect(isMissingOrder(10, 200, 20) && isMissingOrder(-10, 200, 20) && isMissingOrder(20, 200, 20)).toBe(true);
+    expect(isMissingOrder(10, 200, 20) && isMissingOrder(-10, 200, 20) && isMissingOrder(20, 200, 20)).toBe(
+      true,
+    );
     expect(orderAngleDeg(20, 500, 200)).toBeCloseTo(2.87, 2);
   });
   test('UP: w 2.5 µm, d 5.0 µm: 3 fringes; d/w = 5: 9 fringes', () => {

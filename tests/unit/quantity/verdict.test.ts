@@ -2,8 +2,15 @@ import { judge } from '@/lib/quantity/verdict';
 import type { Specification } from '@/lib/domain/specification';
 
 const spec: Specification = {
-  name: 'invented', nominalNm: 635, medium: 'air', lowerNm: 630, upperNm: 640,
-  rule: 'guard-expanded', ownGuardNm: null, ratio: 1, halfToleranceNm: 5,
+  name: 'invented',
+  nominalNm: 635,
+  medium: 'air',
+  lowerNm: 630,
+  upperNm: 640,
+  rule: 'guard-expanded',
+  ownGuardNm: null,
+  ratio: 1,
+  halfToleranceNm: 5,
 };
 
 describe('verdict', () => {
@@ -34,7 +41,12 @@ describe('verdict', () => {
     expect(() => judge(1, 1, null, 2, { ...spec, lowerNm: null, upperNm: null })).toThrow(RangeError);
   });
   // JCGM 106:2012: at the acceptance limit T_U − w, one-sided: w = 0 -> 0.5, u -> 0.84134, 1.64485u -> 0.95, 2u -> 0.97725.
-  test.each([[0, 0.5], [1, 0.84134], [1.64485, 0.95], [2, 0.97725]])('conformity with a guard of %d u', (w, p) => {
+  test.each([
+    [0, 0.5],
+    [1, 0.84134],
+    [1.64485, 0.95],
+    [2, 0.97725],
+  ])('conformity with a guard of %d u', (w, p) => {
     const upper = { ...spec, lowerNm: null, rule: 'simple' as const };
     expect(judge(640 - w * 0.5, 0.5, null, 1, upper).conformity).toBeCloseTo(p, 4);
   });

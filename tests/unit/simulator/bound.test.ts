@@ -10,14 +10,25 @@ import { lightAt, PLAIN_SCENE, trueOrderPx, trueSpacingPx } from '@/scripts/simu
  */
 describe('Cramér–Rao bound of the simulator', () => {
   test('tends to the bound of a tone when the envelope is flat and the noise white', () => {
-    const scene = { ...PLAIN_SCENE, widthPx: 1000, heightPx: 4, zeroXPx: 500, zeroYPx: 2, widthUm: 0.5, visibility: 0.5, distanceMm: 5e5, scaleUmPerPx: 15.875e3 };
+    const scene = {
+      ...PLAIN_SCENE,
+      widthPx: 1000,
+      heightPx: 4,
+      zeroXPx: 500,
+      zeroYPx: 2,
+      widthUm: 0.5,
+      visibility: 0.5,
+      distanceMm: 5e5,
+      scaleUmPerPx: 15.875e3,
+    };
     // Read noise far above shot noise makes the noise white; the prior on s/L is tight.
     const camera = { ...PLAIN_CAMERA, peakElectrons: 1000, readElectrons: 500, peakShare: 0.5 };
     const bound = cramerRao(scene, camera, 1e-6);
     const sigma = Math.sqrt(noiseVariance(camera, 0));
     const amplitude = countsPerElectron(camera) * camera.peakElectrons * 0.5 * scene.visibility;
     const samples = scene.widthPx;
-    const varOmega = (24 * sigma * sigma) / (amplitude * amplitude * samples * (samples * samples - 1) * scene.heightPx);
+    const varOmega =
+      (24 * sigma * sigma) / (amplitude * amplitude * samples * (samples * samples - 1) * scene.heightPx);
     const spacing = trueSpacingPx(scene);
     const expected = (spacing * spacing * Math.sqrt(varOmega)) / (2 * Math.PI);
     // Background slope, envelope and row brightness are unknown as well, which costs a few per cent.
@@ -29,13 +40,21 @@ describe('Cramér–Rao bound of the simulator', () => {
     // Spacing, zero order, brightness, background of a 1-D profile with known envelope; 2000 noisy copies.
     const scene = { ...PLAIN_SCENE, heightPx: 1, zeroYPx: 0.5 };
     const spacing = trueSpacingPx(scene);
-    const f = (u: number, k: number, zero: number): number => lightAt({ ...scene, wavelengthNm: scene.wavelengthNm * k }, u - zero);
+    const f = (u: number, k: number, zero: number): number =>
+      lightAt({ ...scene, wavelengthNm: scene.wavelengthNm * k }, u - zero);
     const rows = Array.from({ length: 512 }, (_, c) => {
       const u = 2 * c + 0.5 - scene.zeroXPx;
-      return [(f(u, 1 + 1e-6, 0) - f(u, 1 - 1e-6, 0)) / (2e-6 * spacing), (f(u, 1, 1e-3) - f(u, 1, -1e-3)) / 2e-3, f(u, 1, 0), 1];
+      return [
+        (f(u, 1 + 1e-6, 0) - f(u, 1 - 1e-6, 0)) / (2e-6 * spacing),
+        (f(u, 1, 1e-3) - f(u, 1, -1e-3)) / 2e-3,
+        f(u, 1, 0),
+        1,
+      ];
     });
     const sigma = 0.02;
-    const normal = rows[0].map((_, i) => rows[0].map((_v, j) => rows.reduce((s, g) => s + g[i] * g[j], 0) / (sigma * sigma)));
+    const normal = rows[0].map((_, i) =>
+      rows[0].map((_v, j) => rows.reduce((s, g) => s + g[i] * g[j], 0) / (sigma * sigma)),
+    );
     const solve = (b: number[]): number[] => {
       const a = normal.map((line, i) => [...line, b[i]]);
       for (let p = 0; p < a.length; p += 1) {

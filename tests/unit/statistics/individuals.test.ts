@@ -17,7 +17,10 @@ describe('individuals and moving-range chart', () => {
   });
   test('a new setup starts new limits and has no range across the seam', () => {
     const chart = individualsChart([...points([1, 2, 1, 2], 1), ...points([11, 12, 11, 12], 2)]);
-    expect(chart.stretches.map((s) => [s.first, s.last, s.meanNm])).toEqual([[0, 3, 1.5], [4, 7, 11.5]]);
+    expect(chart.stretches.map((s) => [s.first, s.last, s.meanNm])).toEqual([
+      [0, 3, 1.5],
+      [4, 7, 11.5],
+    ]);
     expect(chart.movingRanges).toEqual([null, 1, 1, 1, null, 1, 1, 1]);
     expect(chart.findings).toEqual([]);
   });
@@ -34,11 +37,16 @@ describe('individuals and moving-range chart', () => {
     const eight = individualsChart(points([...Array<number>(8).fill(1), ...Array<number>(8).fill(-1)]));
     expect(eight.findings.filter((f) => f.kind === 'nine')).toEqual([]);
     const nine = individualsChart(points([...Array<number>(9).fill(1), ...Array<number>(9).fill(-1)]));
-    expect(nine.findings.filter((f) => f.kind === 'nine')).toEqual([{ kind: 'nine', first: 0, last: 8 }, { kind: 'nine', first: 9, last: 17 }]);
+    expect(nine.findings.filter((f) => f.kind === 'nine')).toEqual([
+      { kind: 'nine', first: 0, last: 8 },
+      { kind: 'nine', first: 9, last: 17 },
+    ]);
   });
   test('one point has no limits, thirty are firm', () => {
     expect(individualsChart(points([1])).stretches[0]).toMatchObject({ standing: 'none', upperNm: null });
-    expect(individualsChart(points(Array.from({ length: 30 }, (_, i) => i % 3))).stretches[0].standing).toBe('firm');
+    expect(individualsChart(points(Array.from({ length: 30 }, (_, i) => i % 3))).stretches[0].standing).toBe(
+      'firm',
+    );
     expect(individualsChart([]).stretches).toEqual([]);
   });
 });
