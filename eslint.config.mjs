@@ -2,7 +2,18 @@ import nextVitals from 'eslint-config-next/core-web-vitals';
 import nextTypescript from 'eslint-config-next/typescript';
 
 export default [
-  { ignores: ['node_modules/**', '.next*/**', '.build/**', '.data/**', '.test-data/**', 'coverage/**', 'next-env.d.ts', 'public/**'] },
+  {
+    ignores: [
+      'node_modules/**',
+      '.next*/**',
+      '.build/**',
+      '.data/**',
+      '.test-data/**',
+      'coverage/**',
+      'next-env.d.ts',
+      'public/**',
+    ],
+  },
   ...nextVitals,
   ...nextTypescript,
   {
@@ -19,7 +30,10 @@ export default [
     files: ['app/**', 'components/**', 'lib/**', 'models/**', 'migrations/**'],
     ignores: ['lib/server/env.ts'],
     rules: {
-      'no-restricted-properties': ['error', { object: 'process', property: 'env', message: 'Read it through lib/server/env.ts.' }],
+      'no-restricted-properties': [
+        'error',
+        { object: 'process', property: 'env', message: 'Read it through lib/server/env.ts.' },
+      ],
     },
   },
   {

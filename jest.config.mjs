@@ -2,8 +2,20 @@ import { availableParallelism } from 'node:os';
 
 /** Packages that ship ESM only, or ESM first: jest's CommonJS mode must transform them. */
 const ESM_PACKAGES = [
-  'is-any-array', 'ml-[^/]+', 'react-dropzone', '@tanstack/[^/]+', 'smtp-server', 'nodemailer', 'file-selector',
-  'attr-accept', 'jose', 'uuid', '@panva/hkdf', 'preact', 'preact-render-to-string', 'oauth',
+  'is-any-array',
+  'ml-[^/]+',
+  'react-dropzone',
+  '@tanstack/[^/]+',
+  'smtp-server',
+  'nodemailer',
+  'file-selector',
+  'attr-accept',
+  'jose',
+  'uuid',
+  '@panva/hkdf',
+  'preact',
+  'preact-render-to-string',
+  'oauth',
 ];
 
 const transform = {
@@ -37,7 +49,6 @@ export default {
       moduleNameMapper: {
         '^next/headers$': '<rootDir>/tests/setup/next-headers.ts',
         '^next/navigation$': '<rootDir>/tests/setup/next-navigation.ts',
-        '^next/cache$': '<rootDir>/tests/setup/next-cache.ts',
         '^@/(.*)$': '<rootDir>/$1',
       },
     }),

@@ -43,12 +43,20 @@ export const READING_STEPS = {
   replace: { from: ['draft', 'review', 'returned'], to: 'replaced' },
 } as const satisfies Record<string, { from: readonly ReadingState[]; to: ReadingState }>;
 
+/** Where each begins its life. */
+export const BORN = { frame: 'copying', reading: 'draft' } as const satisfies { frame: FrameState; reading: ReadingState };
+
 export type FrameStep = keyof typeof FRAME_STEPS;
 export type ReadingStep = keyof typeof READING_STEPS;
 
 /** May the step be taken from this state? */
 export function readingMay(step: ReadingStep, state: ReadingState): boolean {
   return (READING_STEPS[step].from as readonly ReadingState[]).includes(state);
+}
+
+/** May the step be taken from this state? */
+export function frameMay(step: FrameStep, state: FrameState): boolean {
+  return (FRAME_STEPS[step].from as readonly FrameState[]).includes(state);
 }
 
 /** True while the frame's state can still change by itself; a page shows these live. */

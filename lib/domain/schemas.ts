@@ -188,3 +188,8 @@ export const personChangeSchema = z.object({
 });
 export const forgottenSchema = z.object({ email: emailSchema });
 export const resetSchema = z.object({ token: z.string().min(20).max(200), password: passwordSchema });
+export const firstAdminSchema = newPersonSchema.omit({ roles: true });
+export const retireSchema = z.object({ id });
+export const chooseBenchSchema = z.object({ benchId: id.nullable() });
+/** For what takes nothing in. */
+export const nothingSchema = z.void();

@@ -4,7 +4,9 @@ let written: string[] = [];
 beforeEach(() => {
   written = [];
   jest.spyOn(console, 'error').mockImplementation((...parts: unknown[]) => {
-    written.push(parts.map((part) => (part instanceof Error ? (part.stack ?? part.message) : String(part))).join(' '));
+    written.push(
+      parts.map((part) => (part instanceof Error ? (part.stack ?? part.message) : String(part))).join(' '),
+    );
   });
 });
 

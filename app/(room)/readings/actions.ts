@@ -1,0 +1,44 @@
+'use server';
+
+import { acceptSchema, outcomeSchema, refitSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
+import { acceptReading as acceptReadingCommand } from '@/lib/server/commands/accept-reading';
+import { keepFit as keepFitCommand } from '@/lib/server/commands/keep-fit';
+import { returnReading as returnReadingCommand } from '@/lib/server/commands/return-reading';
+import { sendReadings } from '@/lib/server/commands/send-reading';
+import { setOutcome as setOutcomeCommand } from '@/lib/server/commands/set-outcome';
+import { defineAction } from '@/lib/server/define-action';
+
+export const keepFit = defineAction({
+  name: 'keepFit',
+  permission: 'readings.fit',
+  schema: refitSchema,
+  run: ({ input, context }) => keepFitCommand(context, input),
+});
+
+export const sendToReview = defineAction({
+  name: 'sendToReview',
+  permission: 'readings.send',
+  schema: sendSchema,
+  run: ({ input, context }) => sendReadings(context, input.readings),
+});
+
+export const acceptReading = defineAction({
+  name: 'acceptReading',
+  permission: 'readings.accept',
+  schema: acceptSchema,
+  run: ({ input, context }) => acceptReadingCommand(context, input),
+});
+
+export const returnReading = defineAction({
+  name: 'returnReading',
+  permission: 'readings.return',
+  schema: returnSchema,
+  run: ({ input, context }) => returnReadingCommand(context, input),
+});
+
+export const setOutcome = defineAction({
+  name: 'setOutcome',
+  permission: 'outcomes.set',
+  schema: outcomeSchema,
+  run: ({ input, context }) => setOutcomeCommand(context, input),
+});

@@ -1,0 +1,116 @@
+import 'server-only';
+import type { z } from 'zod';
+import { AppError } from '@/lib/domain/errors';
+import { READING_STEPS } from '@/lib/domain/life-cycle';
+import type { ReadingResult } from '@/lib/domain/reading-result';
+import type { acceptSchema } from '@/lib/domain/schemas';
+import type { CommandContext } from '../context';
+import { db } from '../db';
+import {
+  changedMeanwhile,
+  findReading,
+  readingText,
+  stepReading,
+  whyBarred,
+  type ReadingFacts,
+} from '../reading-facts';
+import { daysUntilDue } from '../setups';
+import { inTransaction } from '../transaction';
+import { checkOwnPassword } from './check-password';
+
+type Acceptance = z.output<typeof acceptSchema>;
+
+export const SIGNATURE_MEANING = 'I have looked at this fit and accept it.';
+
+/**
+ * A reviewer signs a reading. Refused to whoever had a hand in it before review, while a stop stands on the
+ * wavelength, while a look has no word, and under an overdue setup. Of two at once exactly one wins.
+ */
+export async function acceptReading(
+  context: CommandContext,
+  wanted: Acceptance,
+): Promise<{ readingId: number; version: number }> {
+  const facts = await findReading(wanted.readingId);
+  const barred = await whyBarred(context.actor.id, facts);
+  if (barred) throw new AppError('NOT_ALLOWED', barred);
+  if (facts.version !== wanted.version) throw changedMeanwhile();
+  await requireAcceptable(context, facts, wanted.answers);
+  await checkOwnPassword(context.actor.id, wanted.password, context.at);
+  const { tables } = db();
+  return inTransaction(context, async (work) => {
+    const { transaction } = work;
+    const now = await findReading(wanted.readingId, transaction);
+    const barredNow = await whyBarred(context.actor.id, now, transaction);
+    if (barredNow) throw new AppError('NOT_ALLOWED', barredNow);
+    await stepReading(work, context.at, now, wanted.version, 'accept', { accepted_at: context.at });
+    await tables.signatures.create(
+      {
+        readingId: now.readingId,
+        personId: context.actor.id,
+        personName: context.actor.name,
+        role: 'reviewer',
+        meaning: SIGNATURE_MEANING,
+        signedAt: context.at,
+        digest: now.digest,
+      },
+      { transaction },
+    );
+    await tables.lookAnswers.bulkCreate(
+      wanted.answers.map(({ check, answer, reason }) => ({
+        readingId: now.readingId,
+        checkName: check,
+        answer,
+        reason,
+        answeredBy: context.actor.id,
+        answeredAt: context.at,
+      })),
+      { transaction },
+    );
+    work.audit({
+      action: 'reading.accept',
+      subject: { kind: 'reading', id: now.readingId, text: readingText(now) },
+      before: { status: now.status },
+      after: { status: READING_STEPS.accept.to, digest: now.digest, answers: wanted.answers },
+    });
+    return { readingId: now.readingId, version: wanted.version + 1 };
+  });
+}
+
+async function requireAcceptable(
+  context: CommandContext,
+  facts: ReadingFacts,
+  answers: Acceptance['answers'],
+): Promise<void> {
+  const { tables } = db();
+  const setup = await tables.setups.findByPk(facts.setupId, { rejectOnEmpty: true });
+  const left = daysUntilDue(setup, context.at);
+  if (left !== null && left < 0) {
+    throw new AppError(
+      'WRONG_STATE',
+      `A calibration of setup ${setup.number} is overdue by ${-left} days, so its readings cannot be accepted. An admin enters the new certificate.`,
+    );
+  }
+  if (facts.valueNm === null)
+    throw new AppError('WRONG_STATE', 'This reading has no wavelength, so there is nothing to accept.');
+  const row = await tables.readingResults.findByPk(facts.readingId, { rejectOnEmpty: true });
+  const { findings } = JSON.parse(row.resultJson) as ReadingResult;
+  const stop = findings.find((finding) => finding.word === 'stop');
+  if (stop)
+    throw new AppError(
+      'WRONG_STATE',
+      `A stop stands on the wavelength: ${stop.message} Return the reading, or change its region.`,
+    );
+  const answered = new Set(answers.map((answer) => answer.check));
+  const open = findings.filter((finding) => finding.word === 'look' && !answered.has(finding.check));
+  if (open.length) {
+    throw new AppError(
+      'BAD_INPUT',
+      `Say a word on: ${open.map((finding) => finding.message).join(' ')}`,
+      Object.fromEntries(open.map((finding) => [finding.check, 'This finding needs your word.'])),
+    );
+  }
+  const known = new Set(findings.map((finding) => finding.check));
+  if (answers.length !== answered.size || answers.some((answer) => !known.has(answer.check))) {
+    throw new AppError('BAD_INPUT', 'An answer names a finding this reading does not have, or one twice.');
+  }
+}

@@ -1,0 +1,116 @@
+import 'server-only';
+import { UniqueConstraintError, type Transaction } from 'sequelize';
+import { AppError } from '@/lib/domain/errors';
+import { BORN, frameMay } from '@/lib/domain/life-cycle';
+import { LIMITS } from '@/lib/domain/limits';
+import type { CommandContext } from '../context';
+import { db, select } from '../db';
+import { nudgeQueue } from '../queue';
+import { dropSpool, spoolBody, type Spooled } from '../spool';
+import { findSubject, type FrameSubject, type SubjectChoice } from '../subject';
+import { landFrame } from './land-frame';
+
+export interface Incoming extends SubjectChoice {
+  fileName: string;
+  benchId: number;
+  /** What Content-Length says. */
+  declaredBytes: number;
+  body: AsyncIterable<Uint8Array>;
+}
+
+/**
+ * Takes one file: its bytes go to a file of the spool while they are hashed, then a row says `copying`, then the
+ * store has them, then the row says `waiting`. A crash after any of these steps leaves what the next start needs.
+ */
+export async function receiveFrame(
+  context: CommandContext,
+  incoming: Incoming,
+): Promise<{ frameId: number; sameAs: number | null }> {
+  if (incoming.declaredBytes > LIMITS.fileBytes) throw tooLarge();
+  const fileName = tidyName(incoming.fileName);
+  const setup = await setupInForce(incoming.benchId);
+  const subject = await findSubject(fileName, incoming);
+  const spooled = await spoolBody(incoming.body, LIMITS.fileBytes);
+  const frame = await db()
+    .tables.frames.create({
+      benchId: incoming.benchId,
+      setupId: setup.id,
+      lotId: subject.lotId,
+      unitId: subject.unitId,
+      sourceId: subject.sourceId,
+      fileName,
+      findText: `${fileName} ${subject.findText}`.slice(0, 500),
+      bytes: spooled.bytes,
+      sha256: spooled.sha256,
+      mediaType: spooled.mediaType,
+      sameKey: sameKey(spooled, incoming.benchId, subject),
+      state: BORN.frame,
+      spoolPath: spooled.path,
+      uploadedBy: context.actor.id,
+      receivedAt: context.at,
+    })
+    .catch((problem: unknown) => {
+      if (problem instanceof UniqueConstraintError) return null;
+      throw problem;
+    });
+  if (!frame) return sameAgain(context, spooled, incoming.benchId, subject);
+  await landFrame(context, frame.id, spooled);
+  nudgeQueue();
+  return { frameId: frame.id, sameAs: null };
+}
+
+/** The same bytes for the same bench and subject are there already; a copy that had broken off is finished. */
+async function sameAgain(context: CommandContext, spooled: Spooled, benchId: number, subject: FrameSubject) {
+  const frame = await db().tables.frames.findOne({
+    where: { sameKey: sameKey(spooled, benchId, subject) },
+    rejectOnEmpty: true,
+  });
+  if (frameMay('land', frame.state)) {
+    await landFrame(context, frame.id, spooled);
+    nudgeQueue();
+  } else {
+    await dropSpool(spooled.path);
+  }
+  return { frameId: frame.id, sameAs: frame.id };
+}
+
+function sameKey(spooled: Spooled, benchId: number, { unitId, sourceId }: FrameSubject): string {
+  return `${spooled.sha256}:${benchId}:${unitId !== null ? `u${unitId}` : `s${sourceId}`}`;
+}
+
+/** The bench's newest setup: what is in force when the frame arrives stays with it. */
+export async function setupInForce(
+  benchId: number,
+  transaction?: Transaction,
+): Promise<{ id: number; number: number }> {
+  const [bench] = await select<{ name: string; setup_id: number | null; number: number | null }>(
+    `SELECT b.name, s.id AS setup_id, s.number FROM benches b LEFT JOIN setups s ON s.bench_id = b.id
+     WHERE b.id = :benchId ORDER BY s.number DESC LIMIT 1`,
+    { benchId },
+    transaction,
+  );
+  if (!bench) throw new AppError('NOT_FOUND', 'There is no such bench.');
+  if (bench.setup_id === null || bench.number === null) {
+    throw new AppError(
+      'BAD_INPUT',
+      `${bench.name} has no setup yet, so its frames give no wavelength. An admin enters one under Benches.`,
+    );
+  }
+  return { id: bench.setup_id, number: bench.number };
+}
+
+export function tooLarge(): AppError {
+  const megabytes = LIMITS.fileBytes / 1024 / 1024;
+  return new AppError(
+    'TOO_LARGE',
+    `This file is larger than ${megabytes} MB. Save the frame with compression, or crop it to the fringes.`,
+  );
+}
+
+/** The last part of a name, without control characters; at most 255 characters. */
+function tidyName(name: string): string {
+  const last = name.split(/[/\\]/).at(-1) ?? '';
+  const clean = last.replace(/[\p{Cc}\p{Cf}]/gu, '').trim();
+  if (!clean) throw new AppError('BAD_INPUT', 'The file has no name.');
+  return clean.slice(-255);
+}

@@ -1,0 +1,114 @@
+import 'server-only';
+import type { Transaction } from 'sequelize';
+import type { ReadingState } from '@/lib/domain/life-cycle';
+import type { FitOptions, ReadingResult, SetupValues } from '@/lib/domain/reading-result';
+import type { Specification } from '@/lib/domain/specification';
+import { canonicalJson, sha256 } from '../canonical';
+import { db, select } from '../db';
+import { gravest, riskOf, zeroAlongPx } from '../findings';
+import { valueIn } from '../value';
+
+/** What a new reading is made from. */
+export interface NewReading {
+  frame: {
+    id: number;
+    sha256: string;
+    benchId: number;
+    setupId: number;
+    lotId: number | null;
+    unitId: number | null;
+    sourceId: number | null;
+  };
+  result: ReadingResult;
+  setup: SetupValues;
+  specification: Specification | null;
+  options: FitOptions;
+  /** null: the product's own first fit. */
+  madeBy: number | null;
+  madeInReview: boolean;
+  replacesId: number | null;
+  at: Date;
+  state: { status: ReadingState; sentBy: number | null; sentAt: Date | null; note: string };
+}
+
+/** Writes a reading, its result and its first state. Nothing here is ever updated but the state. */
+export async function storeReading(
+  reading: NewReading,
+  transaction: Transaction,
+): Promise<{ id: number; number: number }> {
+  const { tables } = db();
+  const { frame, result, setup, specification, options, at } = reading;
+  const [last] = await select<{ number: number }>(
+    'SELECT COALESCE(MAX(number), 0) AS number FROM readings WHERE frame_id = :frameId',
+    { frameId: frame.id },
+    transaction,
+  );
+  const value = valueIn(result, specification);
+  const { word, text } = gravest(result.findings);
+  const row = await tables.readings.create(
+    {
+      frameId: frame.id,
+      number: last.number + 1,
+      replacesId: reading.replacesId,
+      benchId: frame.benchId,
+      setupId: frame.setupId,
+      lotId: frame.lotId,
+      unitId: frame.unitId,
+      sourceId: frame.sourceId,
+      madeBy: reading.madeBy,
+      madeAt: at,
+      madeInReview: reading.madeInReview,
+      engine: result.engine,
+      frameSha256: frame.sha256,
+      digest: digestOf({ frameSha256: frame.sha256, result, setup, specification, options }),
+      optionsJson: canonicalJson(options),
+      setupJson: canonicalJson(setup),
+      specificationJson: specification ? canonicalJson(specification) : null,
+      medium: value.medium,
+      valueNm: value.valueNm,
+      uNm: value.uNm,
+      expandedNm: value.expandedNm,
+      k: result.k,
+      dof: result.dofWavelength,
+      wavelengthAirNm: result.wavelengthNm,
+      wavelengthVacuumNm: result.wavelengthVacuumNm,
+      verdict: value.judgement?.verdict ?? null,
+      judgementJson: value.judgement ? canonicalJson(value.judgement) : null,
+      word,
+      wordText: text.slice(0, 1000),
+      orderCentres: result.orders.length,
+      spacingPx: result.spacingPx,
+      uSpacingPx: result.uSpacingPx,
+      scaleUmPerPx: setup.scaleUmPerPx?.value ?? 0,
+      zeroAlongPx: zeroAlongPx(result),
+    },
+    { transaction },
+  );
+  await tables.readingResults.create(
+    { readingId: row.id, stripJson: JSON.stringify(result.strip), resultJson: canonicalJson(result) },
+    { transaction },
+  );
+  await tables.readingStates.create(
+    {
+      readingId: row.id,
+      frameId: frame.id,
+      benchId: frame.benchId,
+      ...reading.state,
+      changedAt: at,
+      risk: riskOf(word, value.judgement?.verdict ?? null),
+    },
+    { transaction },
+  );
+  return { id: row.id, number: row.number };
+}
+
+/** SHA-256 over everything a signature stands for: bytes, result, setup, specification, options. */
+export function digestOf(content: {
+  frameSha256: string;
+  result: ReadingResult;
+  setup: SetupValues;
+  specification: Specification | null;
+  options: FitOptions;
+}): string {
+  return sha256(canonicalJson(content));
+}

@@ -1,0 +1,50 @@
+import 'server-only';
+import { Piscina } from 'piscina';
+import type { FitOptions, FrameAnswer, SetupValues } from '@/lib/domain/reading-result';
+import { env } from './env';
+
+export interface PreviewPicture {
+  webp: Uint8Array;
+  widthPx: number;
+  heightPx: number;
+}
+
+const held = globalThis as { midfringePool?: Piscina };
+
+/** The threads that decode and fit, off the thread that answers requests. One pool per process. */
+function pool(): Piscina {
+  const { MEASURE_WORKER, MEASURE_THREADS } = env();
+  held.midfringePool ??= new Piscina({
+    filename: MEASURE_WORKER,
+    minThreads: 0,
+    maxThreads: MEASURE_THREADS,
+    idleTimeout: 60_000,
+    maxQueue: 600,
+  });
+  return held.midfringePool;
+}
+
+/** Fits one frame. The bytes are handed over to the thread: the caller's array is empty afterwards. */
+export async function analyseInPool(
+  bytes: Uint8Array<ArrayBuffer>,
+  setup: SetupValues,
+  options: FitOptions,
+): Promise<FrameAnswer> {
+  const answer: unknown = await pool().run(
+    { task: 'analyse', bytes, setup, options },
+    { transferList: [bytes.buffer] },
+  );
+  return answer as FrameAnswer;
+}
+
+/** The frame as a person sees it, or null when the file is no picture. The bytes are handed over. */
+export async function previewInPool(bytes: Uint8Array<ArrayBuffer>): Promise<PreviewPicture | null> {
+  const answer: unknown = await pool().run({ task: 'preview', bytes }, { transferList: [bytes.buffer] });
+  return answer as PreviewPicture | null;
+}
+
+export async function closePool(): Promise<void> {
+  const open = held.midfringePool;
+  held.midfringePool = undefined;
+  await open?.close();
+}

@@ -1,0 +1,33 @@
+import 'server-only';
+import type { ReadingResult } from '@/lib/domain/reading-result';
+import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
+import { judge } from '@/lib/quantity/verdict';
+
+/** A reading's value in the medium it is judged in, and the verdict there. */
+export interface ValueIn {
+  medium: Medium;
+  valueNm: number | null;
+  uNm: number | null;
+  expandedNm: number | null;
+  judgement: Judgement | null;
+}
+
+/**
+ * The value in the specification's medium (air without one). Uncertainties are scaled by the same index of air as
+ * the value, λvac/λair. A source has no specification and gets no verdict.
+ */
+export function valueIn(result: ReadingResult, specification: Specification | null): ValueIn {
+  const medium = specification?.medium ?? 'air';
+  const valueNm = medium === 'air' ? result.wavelengthNm : result.wavelengthVacuumNm;
+  if (valueNm === null || result.wavelengthNm === null) {
+    return { medium, valueNm: null, uNm: null, expandedNm: null, judgement: null };
+  }
+  const index = valueNm / result.wavelengthNm;
+  const uNm = result.uWavelengthNm === null ? null : result.uWavelengthNm * index;
+  const expandedNm = result.expandedNm === null ? null : result.expandedNm * index;
+  const judgement =
+    specification && uNm !== null && expandedNm !== null
+      ? judge(valueNm, uNm, result.dofWavelength, expandedNm, specification)
+      : null;
+  return { medium, valueNm, uNm, expandedNm, judgement };
+}

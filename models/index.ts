@@ -1,0 +1,55 @@
+import type { Sequelize } from 'sequelize';
+import { defineAuditHead } from './audit-head';
+import { defineAuditRow } from './audit-row';
+import { defineBench } from './bench';
+import { defineFrame } from './frame';
+import { defineLookAnswer } from './look-answer';
+import { defineLot } from './lot';
+import { defineOutboxMail } from './outbox-mail';
+import { definePasswordReset } from './password-reset';
+import { definePerson } from './person';
+import { definePersonRole } from './person-role';
+import { defineReading } from './reading';
+import { defineReadingResult } from './reading-result';
+import { defineReadingState } from './reading-state';
+import { defineReturn } from './return';
+import { defineSetting } from './setting';
+import { defineSetup } from './setup';
+import { defineSignInAttempt } from './sign-in-attempt';
+import { defineSignature } from './signature';
+import { defineSource } from './source';
+import { defineSpecification } from './specification';
+import { defineUnit } from './unit';
+import { defineUnitOutcome } from './unit-outcome';
+
+export type Tables = ReturnType<typeof defineTables>;
+
+/** Every table of the product on one connection pool. */
+export function defineTables(sequelize: Sequelize) {
+  const tables = {
+    auditHead: defineAuditHead(sequelize),
+    auditRows: defineAuditRow(sequelize),
+    benches: defineBench(sequelize),
+    frames: defineFrame(sequelize),
+    lookAnswers: defineLookAnswer(sequelize),
+    lots: defineLot(sequelize),
+    outbox: defineOutboxMail(sequelize),
+    passwordResets: definePasswordReset(sequelize),
+    people: definePerson(sequelize),
+    personRoles: definePersonRole(sequelize),
+    readings: defineReading(sequelize),
+    readingResults: defineReadingResult(sequelize),
+    readingStates: defineReadingState(sequelize),
+    returns: defineReturn(sequelize),
+    settings: defineSetting(sequelize),
+    setups: defineSetup(sequelize),
+    signInAttempts: defineSignInAttempt(sequelize),
+    signatures: defineSignature(sequelize),
+    sources: defineSource(sequelize),
+    specifications: defineSpecification(sequelize),
+    units: defineUnit(sequelize),
+    unitOutcomes: defineUnitOutcome(sequelize),
+  };
+  tables.people.hasMany(tables.personRoles, { foreignKey: 'personId', as: 'roleRows' });
+  return tables;
+}
