@@ -19,7 +19,13 @@ export const chooseBench = defineAction({
     if (input.benchId === null) jar.delete(BENCH_COOKIE);
     else {
       const value = String(input.benchId);
-      jar.set(BENCH_COOKIE, value, { httpOnly: true, sameSite: 'lax', secure, path: '/', maxAge: A_YEAR_SECONDS });
+      jar.set(BENCH_COOKIE, value, {
+        httpOnly: true,
+        sameSite: 'lax',
+        secure,
+        path: '/',
+        maxAge: A_YEAR_SECONDS,
+      });
     }
     return null;
   },

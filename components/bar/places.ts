@@ -34,3 +34,11 @@ export function menuPlaces(me: Me, mailPage: boolean): Place[] {
 export function isAt(path: string, place: Place): boolean {
   return path === place.href || path.startsWith(`${place.href}/`);
 }
+
+/** Where a person's work starts. */
+export function homeOf(me: Me): string {
+  if (me.roles.includes('technician')) return '/intake';
+  if (me.roles.includes('reviewer')) return '/review';
+  if (me.roles.includes('qa')) return '/over-time';
+  return '/benches';
+}

@@ -1,6 +1,12 @@
 'use server';
 
-import { lotSchema, retireSchema, sourceSchema, specificationSchema, unitsSchema } from '@/lib/domain/schemas';
+import {
+  lotSchema,
+  retireSchema,
+  sourceSchema,
+  specificationSchema,
+  unitsSchema,
+} from '@/lib/domain/schemas';
 import { addSource as addSourceCommand } from '@/lib/server/commands/add-source';
 import {
   addSpecification as addSpecificationCommand,

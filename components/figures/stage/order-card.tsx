@@ -10,10 +10,11 @@ interface Props {
   side: 'left' | 'right';
   onClose: () => void;
   onToggle?: () => void;
+  onZero?: () => void;
 }
 
 /** What the reading line crosses: centre, its uncertainty, the pull, and whether the fit uses it. */
-export function OrderCard({ order, out, top, side, onClose, onToggle }: Props) {
+export function OrderCard({ order, out, top, side, onClose, onToggle, onZero }: Props) {
   return (
     <div className="order-card" style={{ top, [side]: 0 }} role="status">
       <dl>
@@ -27,6 +28,7 @@ export function OrderCard({ order, out, top, side, onClose, onToggle }: Props) {
         <dd>{order.pullMm === null ? 'no raw middle' : `${formatSigned(order.pullMm, 3)} mm`}</dd>
       </dl>
       {onToggle ? <Button onClick={onToggle}>{out ? 'Take it back' : 'Leave it out'}</Button> : null}
+      {onZero ? <Button onClick={onZero}>Count from here</Button> : null}
       <button
         type="button"
         className="card-close"

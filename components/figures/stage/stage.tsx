@@ -26,6 +26,8 @@ interface Props {
   onPick: (m: number | null) => void;
   /** Leaves an order out or takes it back; absent where the reading cannot be changed. */
   onToggleOrder?: (m: number) => void;
+  /** Counts all orders from this one. */
+  onZeroHere?: (m: number) => void;
 }
 
 /** Room one dot needs, px; closer points are thinned and the caption says so. */
@@ -51,6 +53,7 @@ function Drawing({
   picked,
   onPick,
   onToggleOrder,
+  onZeroHere,
   width,
   height,
 }: Props & { width: number; height: number }) {
@@ -128,6 +131,9 @@ function Drawing({
           side={x(order.mm) > width * 0.62 ? (x(order.mm) > width - 180 ? 'left' : 'right') : 'right'}
           onClose={() => onPick(null)}
           onToggle={onToggleOrder ? () => onToggleOrder(order.m) : undefined}
+          onZero={
+            onZeroHere && order.kind === 'bright' && order.m !== 0 ? () => onZeroHere(order.m) : undefined
+          }
         />
       ) : null}
     </>

@@ -1,0 +1,21 @@
+/** The server actions a reading's pages are given, as the components see them. */
+import type { z } from 'zod';
+import type { ActionAnswer } from '@/lib/domain/errors';
+import type {
+  acceptSchema,
+  outcomeSchema,
+  refitSchema,
+  returnSchema,
+  sendSchema,
+} from '@/lib/domain/schemas';
+
+export type KeepFit = (
+  input: z.input<typeof refitSchema>,
+) => Promise<ActionAnswer<{ readingId: number; version: number }>>;
+export type SendToReview = (
+  input: z.input<typeof sendSchema>,
+) => Promise<ActionAnswer<{ sent: number; problems: string[] }>>;
+export type AcceptReading = (input: z.input<typeof acceptSchema>) => Promise<ActionAnswer<unknown>>;
+export type ReturnReading = (input: z.input<typeof returnSchema>) => Promise<ActionAnswer<unknown>>;
+export type SetOutcome = (input: z.input<typeof outcomeSchema>) => Promise<ActionAnswer<unknown>>;
+export type LookAnswer = z.input<typeof acceptSchema>['answers'] extends (infer A)[] | undefined ? A : never;

@@ -1,0 +1,48 @@
+import Link from 'next/link';
+import { Mark } from '@/components/figures/marks';
+import { MEDIUM_SHORT } from '@/components/figures/quantity';
+import { buttonClass } from '@/components/ui/button';
+import { Notice } from '@/components/ui/notice';
+import { count, subjectName } from '@/lib/client/words';
+import { OUTCOME_WORDS, type FrameView } from '@/lib/domain/views';
+import { valueText } from './readings-of-frame';
+
+interface Props {
+  frame: FrameView;
+  done: 'accepted' | 'returned';
+  left: number;
+  nextId: number | null;
+}
+
+/** What was decided, what became of the unit, and where the queue goes on. */
+export function AfterDecision({ frame, done, left, nextId }: Props) {
+  const reading = frame.shown;
+  const medium = reading ? MEDIUM_SHORT[reading.medium] : 'air';
+  const value = reading && reading.wavelengthNm !== null ? ` at ${valueText(reading)} nm (${medium})` : '';
+  const unit = frame.outcome ? `Unit ${OUTCOME_WORDS[frame.outcome.outcome].toLowerCase()}. ` : '';
+  return (
+    <Notice
+      live
+      mark={<Mark kind={done === 'accepted' ? 'reading-accepted' : 'reading-returned'} />}
+      title={
+        done === 'accepted' ? `${subjectName(frame)} accepted${value}` : `${subjectName(frame)} returned`
+      }
+      act={
+        nextId ? (
+          <Link className={buttonClass('main')} href={`/review/${nextId}`}>
+            Next
+          </Link>
+        ) : (
+          <Link className={buttonClass()} href="/frames">
+            Go to Frames
+          </Link>
+        )
+      }
+    >
+      {unit}
+      {left === 0
+        ? 'Nothing is left to review.'
+        : `${count(left, 'reading is', 'readings are')} left to review.`}
+    </Notice>
+  );
+}

@@ -1,0 +1,121 @@
+'use client';
+
+import { useState } from 'react';
+import { FRAME_WORDS } from '@/lib/domain/life-cycle';
+import type { FrameView, May } from '@/lib/domain/views';
+import { specificationOf } from '@/lib/client/words';
+import { useRegionChange } from '@/lib/client/use-region-change';
+import { useShortcuts } from '@/lib/client/use-shortcuts';
+import { TILT_STEP_DEG, turn } from '@/lib/client/region';
+import type { KeepFit, SendToReview } from './actions';
+import { BeforeAfter } from './before-after';
+import { ConflictNotice } from './conflict';
+import { PhotoPart, pictureOf, StageNote, StagePart, usePicked } from './desk-parts';
+import { Findings } from './findings';
+import { KeepChange, type Refusal } from './keep-change';
+import { KeysSheet } from './keys-sheet';
+import { ReadingsOfFrame } from './readings-of-frame';
+import { Budget, Result } from './result';
+import { SendBox } from './send-box';
+import { FrameStory } from './frame-story';
+import { NewFitStage, scaleOfFit } from './new-fit-stage';
+
+interface Props {
+  frame: FrameView;
+  may: May;
+  keepFit: KeepFit;
+  sendToReview: SendToReview;
+}
+
+/** One frame as the technician sees it: photo, stage, result, and what can be done with it. */
+export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
+  const reading = frame.shown;
+  const desk = useRegionChange({ frameId: frame.id, picture: pictureOf(frame), reading });
+  const [picked, pick] = usePicked();
+  const [refusal, setRefusal] = useState<Refusal | null>(null);
+  const [sheet, setSheet] = useState(false);
+  const keys = useShortcuts({
+    '[': () => may.fit && desk.setRegion(turn(desk.region, -TILT_STEP_DEG)),
+    ']': () => may.fit && desk.setRegion(turn(desk.region, TILT_STEP_DEG)),
+    x: () => may.fit && picked !== null && desk.toggleOrder(picked),
+    '?': () => setSheet(true),
+  });
+  const fit = desk.preview.fit;
+  const shown = fit ?? reading;
+  return (
+    <div className="desk">
+      <section className="left" aria-label="Photo, region and checks">
+        <PhotoPart frame={frame} desk={desk} mayFit={may.fit} onKeys={() => setSheet(true)} />
+        {shown ? <Findings findings={fit ? fit.result.findings : (reading?.findings ?? [])} /> : null}
+      </section>
+      {reading ? (
+        <StagePart reading={reading} desk={desk} mayFit={may.fit} picked={picked} onPick={pick} />
+      ) : fit ? (
+        <NewFitStage fit={fit} desk={desk} picked={picked} onPick={pick} />
+      ) : (
+        <StageNote>
+          <p className="mb-2 text-lead font-medium text-ink">{FRAME_WORDS[frame.state]}</p>
+          <p>{frame.message ?? 'The frame is not fitted yet.'}</p>
+          {may.fit && pictureOf(frame) ? (
+            <p className="mt-3">
+              Where the fringes can be seen, set the calliper on them: the region is then fitted as you set
+              it.
+            </p>
+          ) : null}
+        </StageNote>
+      )}
+      <section className="right" aria-label="Result">
+        {refusal ? (
+          <div className="mb-3">
+            <ConflictNotice
+              refusal={refusal}
+              kept="Your change of the region was not saved; it is kept here."
+              onClose={() => setRefusal(null)}
+            />
+          </div>
+        ) : null}
+        <FrameStory frame={frame} />
+        {desk.change ? (
+          <>
+            <BeforeAfter before={reading} preview={desk.preview} />
+            <KeepChange
+              main
+              frameId={frame.id}
+              reading={reading}
+              desk={desk}
+              keepFit={keepFit}
+              hrefOf={(id) => `/frames/${frame.id}?reading=${id}`}
+              onRefused={setRefusal}
+            />
+          </>
+        ) : null}
+        {shown ? (
+          <>
+            <Result
+              result={shown.result}
+              wavelengthNm={shown.wavelengthNm}
+              expandedNm={shown.expandedNm}
+              medium={shown.medium}
+              judgement={shown.judgement}
+              specification={specificationOf(frame.subject)}
+              scaleUmPerPx={reading?.setup.scaleUmPerPx.value ?? (fit ? scaleOfFit(fit) : 0)}
+              uScaleUmPerPx={reading?.setup.scaleUmPerPx.u ?? 0}
+            />
+            <Budget result={shown.result} />
+          </>
+        ) : null}
+        {frame.readings.length ? (
+          <ReadingsOfFrame
+            readings={frame.readings}
+            shownId={reading?.id ?? null}
+            hrefOf={(r) => `/frames/${frame.id}?reading=${r.id}`}
+          />
+        ) : null}
+        {reading && may.send ? (
+          <SendBox reading={reading} changed={desk.change !== null} sendToReview={sendToReview} />
+        ) : null}
+      </section>
+      <KeysSheet open={sheet} onClose={() => setSheet(false)} on={keys.on} setOn={keys.setOn} />
+    </div>
+  );
+}

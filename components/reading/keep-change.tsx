@@ -1,0 +1,70 @@
+'use client';
+
+import { useRouter } from 'next/navigation';
+import { useState, useTransition } from 'react';
+import { Button } from '@/components/ui/button';
+import { callAction } from '@/lib/client/call-action';
+import type { RegionDesk } from '@/lib/client/use-region-change';
+import type { ErrorCode } from '@/lib/domain/errors';
+import type { ReadingView } from '@/lib/domain/views';
+import type { KeepFit } from './actions';
+
+export interface Refusal {
+  code: ErrorCode;
+  message: string;
+}
+
+interface Props {
+  frameId: number;
+  reading: ReadingView | null;
+  desk: RegionDesk;
+  keepFit: KeepFit;
+  /** Address of the new reading. */
+  hrefOf: (readingId: number) => string;
+  onRefused: (refusal: Refusal | null) => void;
+  /** Solid where keeping is what the screen is for. */
+  main?: boolean;
+}
+
+/** Keeps the change as a new reading, or drops it. What is typed stays if the service refuses. */
+export function KeepChange({ frameId, reading, desk, keepFit, hrefOf, onRefused, main = false }: Props) {
+  const router = useRouter();
+  const [waiting, start] = useTransition();
+  const [kept, setKept] = useState(false);
+  const keep = () =>
+    start(async () => {
+      if (!desk.change) return;
+      const answer = await callAction(() =>
+        keepFit({
+          ...desk.change!,
+          frameId,
+          fromReadingId: reading?.id ?? null,
+          fromVersion: reading?.version ?? 0,
+        }),
+      );
+      if (!answer.ok) {
+        onRefused({ code: answer.code, message: answer.message });
+        return;
+      }
+      onRefused(null);
+      setKept(true);
+      router.replace(hrefOf(answer.value.readingId), { scroll: false });
+    });
+  const ready = desk.preview.fit !== null && !desk.preview.working;
+  return (
+    <div className="mb-3 grid grid-cols-2 gap-2">
+      <Button
+        kind={main ? 'main' : 'plain'}
+        busy={waiting || kept}
+        disabled={!ready}
+        onClick={keep}
+        className="px-2!"
+      >
+        Keep this region
+      </Button>
+      <Button onClick={desk.drop} disabled={waiting} className="px-2!">
+        Drop the change
+      </Button>
+    </div>
+  );
+}

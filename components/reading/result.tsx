@@ -1,0 +1,110 @@
+import { SaidVerdict } from '@/components/figures/marks';
+import { MEDIUM_SHORT, Quantity } from '@/components/figures/quantity';
+import { ToleranceWhisker } from '@/components/figures/tolerance-whisker';
+import { BudgetBars } from '@/components/figures/budget-bars';
+import { RULE_WORDS } from '@/lib/client/words';
+import type { ReadingResult } from '@/lib/domain/reading-result';
+import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
+import { formatNumber, formatQuantity } from '@/lib/quantity/format';
+
+export interface ResultProps {
+  result: ReadingResult;
+  /** In the specification's medium. */
+  wavelengthNm: number | null;
+  expandedNm: number | null;
+  medium: Medium;
+  judgement: Judgement | null;
+  specification: Specification | null;
+  scaleUmPerPx: number;
+  /** Standard uncertainty of the scale, for the spacing in mm. */
+  uScaleUmPerPx: number;
+}
+
+/** Verdict, value and where it stands; the largest thing on the page. */
+export function Result(props: ResultProps) {
+  const { result, wavelengthNm, expandedNm, medium, judgement, specification } = props;
+  return (
+    <div>
+      <div className="cap items-center" style={{ marginBottom: 0 }}>
+        {judgement ? (
+          <SaidVerdict verdict={judgement.verdict} />
+        ) : (
+          <span className="text-ink">Reference</span>
+        )}
+        {judgement && specification ? (
+          <span className="text-right">
+            {RULE_WORDS[specification.rule]}
+            <span className="max-[1240px]:hidden">
+              {judgement.guardNm > 0 ? ` = ${formatQuantity(0, judgement.guardNm).uncertainty} nm` : ''}
+            </span>
+          </span>
+        ) : null}
+      </div>
+      <div className="mt-2">
+        {wavelengthNm === null ? (
+          <Quantity value={result.spacingPx} expanded={2 * result.uSpacingPx} unit="px" size="result" />
+        ) : (
+          <Quantity value={wavelengthNm} expanded={expandedNm} medium={medium} size="result" />
+        )}
+        <Lines {...props} />
+      </div>
+      {judgement && specification && wavelengthNm !== null && expandedNm !== null ? (
+        <>
+          <div className="mt-1">
+            <ToleranceWhisker
+              named
+              specification={specification}
+              valueNm={wavelengthNm}
+              expandedNm={expandedNm}
+              judgement={judgement}
+            />
+          </div>
+          {judgement.verdict === 'within' ? null : (
+            <p className="mb-1 text-small text-ink-2">{judgement.because}</p>
+          )}
+        </>
+      ) : null}
+    </div>
+  );
+}
+
+function Lines({ result, wavelengthNm, medium, scaleUmPerPx, uScaleUmPerPx }: ResultProps) {
+  const spacingMm = (result.spacingPx * scaleUmPerPx) / 1000;
+  const relative = Math.hypot(result.uSpacingPx / result.spacingPx, uScaleUmPerPx / scaleUmPerPx);
+  const spacing = formatQuantity(spacingMm, 2 * spacingMm * relative);
+  const other = medium === 'air' ? result.wavelengthVacuumNm : result.wavelengthNm;
+  const places =
+    wavelengthNm !== null && result.expandedNm
+      ? Math.max(2, formatQuantity(0, result.expandedNm).value.length - 2)
+      : 2;
+  return (
+    <p className="res-k">
+      {result.k === null ? '' : `k = ${formatNumber(result.k, 2)}`}
+      {wavelengthNm !== null && other !== null
+        ? ` · ${formatNumber(other, places)} nm (${MEDIUM_SHORT[medium === 'air' ? 'vacuum' : 'air']})`
+        : ''}
+      <br />
+      Spacing <span className="sym">Λ</span>{' '}
+      <b>
+        {spacing.value} ± {spacing.uncertainty} mm
+      </b>
+    </p>
+  );
+}
+
+/** What the ± is made of, or why there is none. */
+export function Budget({ result }: { result: ReadingResult }) {
+  return (
+    <div className="sec" style={{ marginTop: 6 }}>
+      <div className="cap">
+        <h2>What the ± is made of</h2>
+        <span>nm, k = 1</span>
+      </div>
+      {result.budget.length && result.uWavelengthNm !== null && result.expandedNm !== null ? (
+        <BudgetBars rows={result.budget} uNm={result.uWavelengthNm} expandedNm={result.expandedNm} />
+      ) : (
+        <p className="text-small text-ink-2">The setup states no uncertainty, so this reading has none.</p>
+      )}
+    </div>
+  );
+}

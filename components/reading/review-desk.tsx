@@ -1,0 +1,182 @@
+'use client';
+
+import { useRouter } from 'next/navigation';
+import { useState } from 'react';
+import { readingMay } from '@/lib/domain/life-cycle';
+import type { ReadingView, ReviewView } from '@/lib/domain/views';
+import { specificationOf, subjectName } from '@/lib/client/words';
+import { TILT_STEP_DEG, turn } from '@/lib/client/region';
+import { useRegionChange } from '@/lib/client/use-region-change';
+import { useShortcuts } from '@/lib/client/use-shortcuts';
+import type { AcceptReading, KeepFit, ReturnReading, SetOutcome } from './actions';
+import { AfterDecision } from './after-decision';
+import { BeforeAfter } from './before-after';
+import { ConflictNotice } from './conflict';
+import { Decision } from './decision';
+import { PhotoPart, pictureOf, StagePart, usePicked } from './desk-parts';
+import { Findings } from './findings';
+import { FrameStory } from './frame-story';
+import { KeepChange, type Refusal } from './keep-change';
+import { KeysSheet } from './keys-sheet';
+import { LookAnswers, whyChecksClose, type Answers } from './look-answers';
+import { OutcomeLine } from './outcome-line';
+import { ReadingsOfFrame } from './readings-of-frame';
+import { Budget, Result } from './result';
+import { ReturnForm } from './return-form';
+
+interface Props {
+  view: ReviewView;
+  reading: ReadingView;
+  keepFit: KeepFit;
+  acceptReading: AcceptReading;
+  returnReading: ReturnReading;
+  setOutcome: SetOutcome;
+}
+
+/** One reading under a second pair of eyes. */
+export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReading, setOutcome }: Props) {
+  const { frame, may, queue } = view;
+  const router = useRouter();
+  const desk = useRegionChange({ frameId: frame.id, picture: pictureOf(frame), reading });
+  const [picked, pick] = usePicked();
+  const [answers, setAnswers] = useState<Answers>({});
+  const [mode, setMode] = useState<'checks' | 'return'>('checks');
+  const [refusal, setRefusal] = useState<Refusal | null>(null);
+  const [done, setDone] = useState<'accepted' | 'returned' | null>(null);
+  const [sheet, setSheet] = useState(false);
+
+  const open = readingMay('accept', reading.status) && done === null;
+  const mayFit = may.fit && open;
+  const go = (id: number | null) => id !== null && router.push(`/review/${id}`);
+  const keys = useShortcuts({
+    '[': () => mayFit && desk.setRegion(turn(desk.region, -TILT_STEP_DEG)),
+    ']': () => mayFit && desk.setRegion(turn(desk.region, TILT_STEP_DEG)),
+    x: () => mayFit && picked !== null && desk.toggleOrder(picked),
+    n: () => go(queue.nextId),
+    p: () => go(queue.previousId),
+    '?': () => setSheet(true),
+  });
+  const settle = (how: 'accepted' | 'returned') => {
+    setDone(how);
+    setMode('checks');
+    setRefusal(null);
+    router.refresh();
+  };
+
+  const fit = desk.preview.fit;
+  const shown = fit ?? reading;
+  const closed = desk.change
+    ? 'Keep or drop your change of the region first.'
+    : (may.acceptBarred ?? whyChecksClose(reading.findings, answers));
+  const unit = frame.subject.kind === 'unit' ? frame.subject : null;
+
+  return (
+    <>
+      {refusal || done ? (
+        <div className="px-[var(--gutter)] py-3">
+          {refusal ? (
+            <ConflictNotice
+              refusal={refusal}
+              kept={keptWords(desk.change !== null)}
+              onClose={() => setRefusal(null)}
+            />
+          ) : done ? (
+            <AfterDecision
+              frame={frame}
+              done={done}
+              left={Math.max(0, queue.of - (open ? 1 : 0))}
+              nextId={queue.nextId}
+            />
+          ) : null}
+        </div>
+      ) : null}
+      <div className="desk">
+        <section className="left" aria-label="Photo, region and checks">
+          <PhotoPart frame={frame} desk={desk} mayFit={mayFit} onKeys={() => setSheet(true)} />
+          {mode === 'return' ? (
+            <ReturnForm
+              reading={reading}
+              name={subjectName(frame)}
+              returnReading={returnReading}
+              onDone={() => settle('returned')}
+              onBack={() => setMode('checks')}
+              onRefused={setRefusal}
+            />
+          ) : fit || !open ? (
+            <Findings findings={fit ? fit.result.findings : reading.findings} />
+          ) : (
+            <LookAnswers
+              findings={reading.findings}
+              answers={answers}
+              onAnswer={(check, answer) => setAnswers({ ...answers, [check]: answer })}
+            />
+          )}
+        </section>
+        <StagePart reading={reading} desk={desk} mayFit={mayFit} picked={picked} onPick={pick} />
+        <section className="right" aria-label="Result and decision">
+          {open ? null : <FrameStory frame={frame} />}
+          {desk.change ? (
+            <>
+              <BeforeAfter before={reading} preview={desk.preview} />
+              <KeepChange
+                frameId={frame.id}
+                reading={reading}
+                desk={desk}
+                keepFit={keepFit}
+                hrefOf={(id) => `/review/${id}`}
+                onRefused={setRefusal}
+              />
+            </>
+          ) : null}
+          <Result
+            result={shown.result}
+            wavelengthNm={shown.wavelengthNm}
+            expandedNm={shown.expandedNm}
+            medium={shown.medium}
+            judgement={shown.judgement}
+            specification={specificationOf(frame.subject)}
+            scaleUmPerPx={reading.setup.scaleUmPerPx.value}
+            uScaleUmPerPx={reading.setup.scaleUmPerPx.u}
+          />
+          <Budget result={shown.result} />
+          <ReadingsOfFrame
+            readings={frame.readings}
+            shownId={reading.id}
+            hrefOf={(r) =>
+              readingMay('accept', r.status) ? `/review/${r.id}` : `/frames/${frame.id}?reading=${r.id}`
+            }
+          />
+          <div className="closing">
+            {unit ? (
+              <OutcomeLine
+                unitId={unit.unitId}
+                outcome={frame.outcome}
+                mayChange={may.outcome}
+                setOutcome={setOutcome}
+              />
+            ) : null}
+            {open ? (
+              <Decision
+                reading={reading}
+                answers={answers}
+                closed={closed}
+                mayReturn={may.return}
+                acceptReading={acceptReading}
+                onReturn={() => setMode('return')}
+                onAccepted={() => settle('accepted')}
+                onRefused={setRefusal}
+              />
+            ) : null}
+          </div>
+        </section>
+      </div>
+      <KeysSheet open={sheet} onClose={() => setSheet(false)} on={keys.on} setOn={keys.setOn} />
+    </>
+  );
+}
+
+function keptWords(changed: boolean): string {
+  return changed
+    ? 'Your change of the region was not saved; it is kept here until you leave.'
+    : 'Your answers are kept here until you leave.';
+}

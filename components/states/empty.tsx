@@ -1,0 +1,22 @@
+import type { ReactNode } from 'react';
+import { HollowOrders } from '@/components/figures/hollow-orders';
+
+interface Props {
+  title: ReactNode;
+  children?: ReactNode;
+  /** Something was looked for: the middle order is lit. */
+  searched?: boolean;
+  acts?: ReactNode;
+}
+
+/** A place with nothing in it yet, or where nothing was found; it says what to do. */
+export function Empty({ title, children, searched = false, acts }: Props) {
+  return (
+    <div className="empty">
+      <HollowOrders of={15} lit={searched ? 1 : 0} />
+      <h2>{title}</h2>
+      <p>{children}</p>
+      {acts ? <div className="do">{acts}</div> : null}
+    </div>
+  );
+}
