@@ -1,0 +1,98 @@
+import 'server-only';
+import type { FitOptions, ReadingResult } from '@/lib/domain/reading-result';
+import type { Role } from '@/lib/domain/roles';
+import type { ReadingBrief, ReadingView, ReturnReason } from '@/lib/domain/views';
+import { select } from '../db';
+import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
+import { setupViews } from './setup-views';
+
+/** Every reading of a frame, newest first, without curves. */
+export async function readingsOf(frameId: number): Promise<ReadingBrief[]> {
+  const rows = await select<BriefColumns>(
+    `SELECT ${BRIEF_COLUMNS} FROM readings r ${BRIEF_JOINS} WHERE r.frame_id = :frameId ORDER BY r.number DESC`,
+    { frameId },
+  );
+  return rows.flatMap((row) => briefOf(row) ?? []);
+}
+
+interface ViewColumns extends BriefColumns {
+  result_json: string;
+  options_json: string;
+  setup_id: number;
+  bench_id: number;
+  replaces_id: number | null;
+  replaced_by: number | null;
+  sent_at: Date | null;
+  sender_id: number | null;
+  sender: string | null;
+}
+
+/** One reading in full, curves included. */
+export async function readingView(readingId: number): Promise<ReadingView | null> {
+  const [row] = await select<ViewColumns>(
+    `SELECT ${BRIEF_COLUMNS}, rr.result_json, r.options_json, r.setup_id, r.bench_id, r.replaces_id,
+       (SELECT MAX(n.id) FROM readings n WHERE n.replaces_id = r.id) AS replaced_by,
+       st.sent_at, sn.id AS sender_id, sn.name AS sender
+     FROM readings r ${BRIEF_JOINS} LEFT JOIN people sn ON sn.id = st.sent_by WHERE r.id = :readingId`,
+    { readingId },
+  );
+  const brief = row ? briefOf(row) : null;
+  if (!brief) return null;
+  const setup = (await setupViews(row.bench_id)).find(({ id }) => id === row.setup_id);
+  if (!setup) throw new Error(`Reading ${readingId} names a setup its bench does not have.`);
+  const result = JSON.parse(row.result_json) as ReadingResult;
+  const options = JSON.parse(row.options_json) as FitOptions;
+  return {
+    ...brief,
+    result,
+    budget: result.budget,
+    findings: result.findings,
+    setup,
+    replaces: row.replaces_id,
+    replacedBy: row.replaced_by,
+    sentBy: row.sender_id !== null && row.sender !== null ? { id: row.sender_id, name: row.sender } : null,
+    sentAt: row.sent_at?.toISOString() ?? null,
+    returned: await returnOf(readingId),
+    signature: await signatureOf(readingId),
+    zeroShift: options.zeroShift ?? 0,
+    leaveOut: options.leaveOut ?? [],
+    tone: options.tone ?? 'auto',
+  };
+}
+
+async function returnOf(readingId: number): Promise<ReadingView['returned']> {
+  const [row] = await select<{
+    reason: ReturnReason;
+    words: string;
+    returned_by: number;
+    name: string;
+    returned_at: Date;
+  }>(
+    `SELECT t.reason, t.words, t.returned_by, p.name, t.returned_at FROM returns t JOIN people p ON p.id = t.returned_by
+     WHERE t.reading_id = :readingId`,
+    { readingId },
+  );
+  if (!row) return null;
+  const { reason, words, returned_by: id, name, returned_at: at } = row;
+  return { reason, words, by: { id, name }, at: at.toISOString() };
+}
+
+async function signatureOf(readingId: number): Promise<ReadingView['signature']> {
+  const [row] = await select<{
+    person_name: string;
+    role: Role;
+    meaning: string;
+    signed_at: Date;
+    digest: string;
+  }>('SELECT person_name, role, meaning, signed_at, digest FROM signatures WHERE reading_id = :readingId', {
+    readingId,
+  });
+  if (!row) return null;
+  return {
+    personName: row.person_name,
+    role: row.role,
+    meaning: row.meaning,
+    at: row.signed_at.toISOString(),
+    digest: row.digest,
+  };
+}
