@@ -193,3 +193,20 @@ export const retireSchema = z.object({ id });
 export const chooseBenchSchema = z.object({ benchId: id.nullable() });
 /** For what takes nothing in. */
 export const nothingSchema = z.void();
+
+/** ---- what routes take from path and query, where everything comes as text ---- */
+const idText = z.coerce.number<string>().int().positive();
+const maybeIdText = z.preprocess((text) => (text === '' || text === undefined ? null : text), idText.nullable());
+export const frameIdSchema = z.object({ id: idText });
+export const uploadSchema = z.object({
+  name: z.string().min(1, 'The file has no name.').max(1000),
+  benchId: idText,
+  lotId: maybeIdText,
+  serial: z.string().trim().max(LIMITS.serialLength).default('').transform((serial) => serial || null),
+  sourceId: maybeIdText,
+});
+export const statusSchema = z.object({
+  ids: z.string().transform((text) => text.split(',')).pipe(z.array(idText).min(1).max(LIMITS.filesAtOnce)),
+});
+export const previewFitSchema = regionChangeSchema.extend({ id: idText, readingId: id.nullable().default(null) });
+export const overTimeSchema = z.object({ bench: maybeIdText, choice: z.string().max(40).default(''), last: z.coerce.number().int().min(0).max(100_000).default(0) });
