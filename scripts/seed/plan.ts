@@ -283,13 +283,11 @@ function units(r: Random): DemoFrame[] {
   red
     .slice(0, 13)
     .forEach((serial, i) => add('0931', serial, 1, 38 - i * 1.4, 634.7 + 1.2 * r.normal(), 'accept'));
-  green
-    .slice(0, 6)
-    .forEach((serial, i) =>
-      add('0932', serial, 2, 22 - i * 1.3, 520.8 + 1.3 * r.normal(), 'accept', {
-        camera: { peakShare: r.between(0.55, 0.8) },
-      }),
-    );
+  green.slice(0, 6).forEach((serial, i) =>
+    add('0932', serial, 2, 22 - i * 1.3, 520.8 + 1.3 * r.normal(), 'accept', {
+      camera: { peakShare: r.between(0.55, 0.8) },
+    }),
+  );
   add('0931', red[13], 1, 9.3, 634.2, 'return', {
     camera: { dirt: { dust: 9, hot: 4, deadColumns: 1, marks: 0 } },
   });
