@@ -1,4 +1,224 @@
-import sharp from 'sharp';
+/** From a file's bytes to one channel of codes. The only place that knows sharp. */
+import sharp, { type Metadata, type Sharp } from 'sharp';
+import { chooseChannel, type ChannelChoice } from './channel';
+import { iccToneCurve } from './icc';
+import { findLevels, histogram } from './levels';
+import type { Picture, SourceFacts } from './picture';
+import { Refused, type PictureBrief } from './refused';
+import { jpegQuality, readPng, sniffKind, type FileKind, type PngFacts } from './sniff';
+import { LINEAR, SRGB, exponentCurve, lightTable, type ToneCurve } from './tone';
+
+export interface DecodeLimits {
+  fileBytes: number;
+  filePixels: number;
+}
+
+export type ToneWish = 'auto' | 'linear' | 'srgb';
+
+/** Shortest side with room for three fringes of the finest kind and the bands along them. */
+const SMALLEST_SIDE_PX = 24;
+const SMALLEST_LONG_SIDE_PX = 48;
+/** A lossy colour file above this size is looked at in small before the channel is decoded at full size. */
+const LOOK_FIRST_PIXELS = 1_500_000;
+const LOOK_SIDE_PX = 700;
+
+interface Header {
+  kind: FileKind;
+  meta: Metadata;
+  png: PngFacts | null;
+  brief: PictureBrief;
+  bits: 8 | 16;
+  colour: boolean;
+}
+
+/** Decodes the channel that carries the light. Refuses, with a code and a sentence, what cannot be measured. */
+export async function decodePicture(bytes: Uint8Array, wish: ToneWish, limits: DecodeLimits): Promise<Picture> {
+  if (bytes.length > limits.fileBytes) {
+    throw new Refused('TOO_LARGE', `The file has ${Math.round(bytes.length / 1e6)} MB; at most ${Math.round(limits.fileBytes / 1048576)} MB are read. Crop the frame to the fringes or store it compressed without loss.`);
+  }
+  const header = await readHeader(bytes, limits);
+  try {
+    return await decodeChannel(bytes, header, wish, limits);
+  } catch (error) {
+    throw asRefused(error, header.brief);
+  }
+}
+
+async function readHeader(bytes: Uint8Array, limits: DecodeLimits): Promise<Header> {
+  const kind = sniffKind(bytes);
+  const png = kind === 'PNG' ? readPng(bytes) : null;
+  let meta: Metadata;
+  try {
+    meta = await open(bytes, limits).metadata();
+  } catch (error) {
+    throw asRefused(error, null, limits);
+  }
+  const turned = (meta.orientation ?? 1) >= 5;
+  const brief: PictureBrief = { widthPx: turned ? meta.height : meta.width, heightPx: turned ? meta.width : meta.height, format: kind };
+  refuseUnmeasurable(kind, meta, png, brief, limits);
+  const bits = meta.depth === 'ushort' || meta.depth === 'short' ? 16 : 8;
+  return { kind, meta, png, brief, bits, colour: (meta.channels ?? 3) >= 3 };
+}
+
+function refuseUnmeasurable(kind: FileKind, meta: Metadata, png: PngFacts | null, brief: PictureBrief, limits: DecodeLimits): void {
+  const pixels = brief.widthPx * brief.heightPx;
+  if (pixels > limits.filePixels) throw tooManyPixels(limits, brief);
+  if ((meta.pages ?? 1) > 1 || png?.animated) {
+    throw new Refused('ANIMATED', 'The file holds several pictures. Save the one to be measured as a file of its own.', brief);
+  }
+  if (png?.colourType === 3 || meta.isPalette === true) {
+    throw new Refused('PALETTE', 'The file holds picked colours from a palette, not measured light. Save the frame as 8 or 16 bit grey or colour.', brief);
+  }
+  if (meta.space === 'cmyk') {
+    throw new Refused('CMYK', 'The file is made for printing (CMYK); its numbers are ink, not light. Save the camera frame as RGB or grey.', brief);
+  }
+  if (meta.depth && !['uchar', 'ushort', 'char', 'short'].includes(meta.depth)) {
+    throw new Refused('FLOAT_SAMPLES', `The file stores ${meta.depth === 'float' || meta.depth === 'double' ? 'floating-point' : '32 bit'} samples, which cannot be read safely. Save it as 16 bit PNG or TIFF.`, brief);
+  }
+  if (Math.min(brief.widthPx, brief.heightPx) < SMALLEST_SIDE_PX || Math.max(brief.widthPx, brief.heightPx) < SMALLEST_LONG_SIDE_PX) {
+    throw new Refused('TOO_SMALL', `The picture has ${brief.widthPx} by ${brief.heightPx} px. At least ${SMALLEST_LONG_SIDE_PX} by ${SMALLEST_SIDE_PX} px are needed.`, brief);
+  }
+  if (kind === 'PNG' && png && !png.complete) throw truncated(brief);
+}
+
+async function decodeChannel(bytes: Uint8Array, header: Header, wish: ToneWish, limits: DecodeLimits): Promise<Picture> {
+  const { kind, meta, bits, colour, brief } = header;
+  const curveOf = (channel: 'grey' | 'red' | 'green' | 'blue') => toneFor(header, wish, channel);
+  let choice: ChannelChoice = { index: 0, name: 'grey', colour: false, clippedShare: [] };
+  let samples: Uint8Array | Uint16Array;
+  if (!colour) {
+    samples = await rawSamples(upright(open(bytes, limits), meta).extractChannel(0).toColourspace(bits === 16 ? 'grey16' : 'b-w'), bits);
+  } else if (kind === 'JPEG' && brief.widthPx * brief.heightPx > LOOK_FIRST_PIXELS) {
+    const { data, info } = await open(bytes, limits).resize({ width: LOOK_SIDE_PX, height: LOOK_SIDE_PX, fit: 'inside' }).raw().toBuffer({ resolveWithObject: true });
+    choice = chooseChannel(new Uint8Array(data), info.width, info.height, 255, curveOf('red').toLinear);
+    samples = await rawSamples(upright(open(bytes, limits), meta).extractChannel(choice.index), 8);
+  } else {
+    ({ choice, samples } = await decodeAllChannels(bytes, header, limits, curveOf('red').toLinear));
+  }
+  const lossy = kind === 'JPEG' || kind === 'WebP';
+  const levels = findLevels(histogram(samples, bits), bits, lossy);
+  const curve = curveOf(channelName(choice));
+  const source: SourceFacts = {
+    format: `${kind}, ${bits} bit`,
+    channel: choice.name,
+    tone: curve.kind,
+    toneBecause: curve.because,
+    colour: choice.colour,
+    jpegQuality: kind === 'JPEG' ? jpegQuality(bytes) : null,
+    chromaSubsampling: meta.chromaSubsampling ?? null,
+    lossy,
+  };
+  return {
+    widthPx: brief.widthPx,
+    heightPx: brief.heightPx,
+    samples,
+    bits,
+    light: lightTable(curve, bits, levels.whiteCode),
+    clipCode: levels.clipCode,
+    floorCode: levels.floorCode,
+    source,
+  };
+}
+
+const channelName = (choice: ChannelChoice) => (choice.name === 'red' || choice.name === 'green' || choice.name === 'blue' ? choice.name : 'grey');
+
+/** Small and lossless colour files: every channel is decoded once, then one is kept. */
+async function decodeAllChannels(bytes: Uint8Array, header: Header, limits: DecodeLimits, toLinear: (c: number) => number): Promise<{ choice: ChannelChoice; samples: Uint8Array | Uint16Array }> {
+  const { meta, bits, brief } = header;
+  const pipeline = upright(open(bytes, limits), meta);
+  const rgb = await rawSamples(meta.hasAlpha ? pipeline.toColourspace(bits === 16 ? 'rgb16' : 'srgb') : pipeline.removeAlpha().toColourspace(bits === 16 ? 'rgb16' : 'srgb'), bits);
+  const n = brief.widthPx * brief.heightPx;
+  const stride = Math.round(rgb.length / n);
+  const look = Math.max(1, Math.floor(Math.max(brief.widthPx, brief.heightPx) / LOOK_SIDE_PX));
+  const small = thinned(rgb, brief.widthPx, brief.heightPx, stride, look);
+  if (stride === 4) refuseAlphaOnly(small.rgb, rgb, n, brief);
+  const choice = chooseChannel(small.rgb, small.widthPx, small.heightPx, bits === 16 ? 65535 : 255, toLinear);
+  const samples = bits === 16 ? new Uint16Array(n) : new Uint8Array(n);
+  for (let i = 0, j = choice.index; i < n; i++, j += stride) samples[i] = rgb[j];
+  return { choice, samples };
+}
+
+function thinned(rgb: Uint8Array | Uint16Array, widthPx: number, heightPx: number, stride: number, step: number): { rgb: Uint16Array; widthPx: number; heightPx: number } {
+  const w = Math.floor(widthPx / step);
+  const h = Math.floor(heightPx / step);
+  const out = new Uint16Array(3 * w * h);
+  for (let y = 0, k = 0; y < h; y++) {
+    for (let x = 0; x < w; x++) {
+      const at = (y * step * widthPx + x * step) * stride;
+      out[k++] = rgb[at];
+      out[k++] = rgb[at + 1];
+      out[k++] = rgb[at + 2];
+    }
+  }
+  return { rgb: out, widthPx: w, heightPx: h };
+}
+
+/** A file whose colour is one and the same everywhere while its transparency varies holds no measured light. */
+function refuseAlphaOnly(small: Uint16Array, all: Uint8Array | Uint16Array, n: number, brief: PictureBrief): void {
+  for (let i = 3; i < small.length; i++) if (small[i] !== small[i - 3]) return;
+  let low = Infinity;
+  let high = -Infinity;
+  for (let i = 0; i < n; i += 7) {
+    const a = all[4 * i + 3];
+    if (a < low) low = a;
+    if (a > high) high = a;
+  }
+  if (high > low) throw new Refused('ALPHA_ONLY', 'The picture is drawn in transparency only; its colours hold no light. Save it without transparency.', brief);
+}
+
+/** Tone in order of trust: the person's choice, the file's profile or chunks, the habit of its kind. */
+function toneFor(header: Header, wish: ToneWish, channel: 'grey' | 'red' | 'green' | 'blue'): ToneCurve {
+  const { kind, meta, png, bits, colour } = header;
+  if (wish === 'linear') return LINEAR('chosen: linear');
+  if (wish === 'srgb') return SRGB('chosen: sRGB');
+  if (meta.icc) {
+    const curve = iccToneCurve(new Uint8Array(meta.icc), colour ? channel : 'grey');
+    if (curve) return curve;
+  }
+  if (png?.srgb) return SRGB('sRGB chunk in the file');
+  if (png && png.gamma !== null && png.gamma > 0) return exponentCurve(1 / png.gamma, `gamma chunk in the file (${png.gamma})`);
+  if (kind === 'JPEG' || kind === 'WebP') return SRGB(`${kind} without a profile is taken as sRGB`);
+  if (colour && bits === 8) return SRGB('8 bit colour without a profile is taken as sRGB');
+  return LINEAR(`${colour ? '16 bit colour' : 'grey'} ${kind} without a profile is taken as linear`);
+}
+
+function open(bytes: Uint8Array, limits: DecodeLimits): Sharp {
+  return sharp(bytes, { limitInputPixels: limits.filePixels, ignoreIcc: true, failOn: 'warning' });
+}
+
+function upright(pipeline: Sharp, meta: Metadata): Sharp {
+  return (meta.orientation ?? 1) > 1 ? pipeline.autoOrient() : pipeline;
+}
+
+async function rawSamples(pipeline: Sharp, bits: 8 | 16): Promise<Uint8Array | Uint16Array> {
+  if (bits === 8) {
+    const data = await pipeline.raw().toBuffer();
+    return new Uint8Array(data.buffer, data.byteOffset, data.length);
+  }
+  const data = await pipeline.raw({ depth: 'ushort' }).toBuffer();
+  const bytes = data.byteOffset % 2 === 0 ? data : Uint8Array.prototype.slice.call(data);
+  return new Uint16Array(bytes.buffer, bytes.byteOffset, bytes.length / 2);
+}
+
+function tooManyPixels(limits: DecodeLimits, brief: PictureBrief | null): Refused {
+  return new Refused('TOO_MANY_PIXELS', `The picture has more than ${limits.filePixels / 1e6} megapixels. Crop it to the fringes or bin it in the camera.`, brief);
+}
+
+function truncated(brief: PictureBrief | null): Refused {
+  return new Refused('TRUNCATED_FILE', 'The file breaks off before its end. Copy it again, then replace it.', brief);
+}
+
+/** Turns what sharp says into a refusal; anything else goes on as it is. */
+function asRefused(error: unknown, brief: PictureBrief | null, limits?: DecodeLimits): unknown {
+  if (error instanceof Refused || !(error instanceof Error)) return error;
+  const said = error.message;
+  if (/pixel limit/i.test(said) && limits) return tooManyPixels(limits, brief);
+  if (/premature|truncat|end of|unexpected end|not enough|short read|read error|out of (data|bounds)/i.test(said)) return truncated(brief);
+  if (/unsupported|Input|Vips|png|jpeg|tiff|webp|libspng|bad|corrupt|invalid|unable/i.test(said)) {
+    return new Refused('BROKEN_FILE', 'The file is damaged and cannot be read. Copy it again or save the frame again.', brief);
+  }
+  return error;
+}
 
 export interface Preview {
   webp: Uint8Array;
@@ -8,16 +228,18 @@ export interface Preview {
 
 const PREVIEW_LONG_SIDE_PX = 1600;
 
-/** An oriented 8-bit WebP of at most 1600 px; null where sharp cannot read the file. */
-export async function renderPreview(bytes: Uint8Array): Promise<Preview | null> {
+/** The picture as a person sees it: oriented, 8 bit, at most 1600 px, not stretched; null where it cannot be read. */
+export async function renderPreview(bytes: Uint8Array, limits: DecodeLimits): Promise<Preview | null> {
   try {
-    const { data, info } = await sharp(bytes, { limitInputPixels: 100_000_000 })
-      .rotate()
+    sniffKind(bytes);
+    const { data, info } = await sharp(bytes, { limitInputPixels: limits.filePixels })
+      .autoOrient()
       .resize({ width: PREVIEW_LONG_SIDE_PX, height: PREVIEW_LONG_SIDE_PX, fit: 'inside', withoutEnlargement: true })
       .webp({ quality: 82 })
       .toBuffer({ resolveWithObject: true });
     return { webp: new Uint8Array(data), widthPx: info.width, heightPx: info.height };
-  } catch {
-    return null;
+  } catch (error) {
+    if (asRefused(error, null, limits) instanceof Refused) return null;
+    throw error;
   }
 }

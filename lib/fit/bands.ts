@@ -1,0 +1,282 @@
+import { AveragedModel, type ProfileFit } from './fit-profile';
+import { varianceAt, type Noise } from './noise';
+import { averagingNodes, type Profile } from './profile';
+import { solveSymmetric } from './small-matrix';
+import { ModelPoint } from './two-slit-model';
+
+/** Bands along the fringes, each a profile of its own. Cells are [band * bins + bin]. */
+export interface BandData {
+  bins: number;
+  bands: number;
+  pitchPx: number;
+  bandV: Float64Array;
+  light: Float64Array;
+  pixels: Float64Array;
+  u: Float64Array;
+  varU: Float64Array;
+  pixelVar: number;
+  pixelFourth: number;
+}
+
+/** How each band differs from the common profile P: light = offset + slope z + gain P(u - shift). */
+export interface BandState {
+  gain: Float64Array;
+  offset: Float64Array;
+  slope: Float64Array;
+  shift: Float64Array;
+  stretch: Float64Array;
+  /** Why a cell is left out; 0 is used. */
+  left: Uint8Array;
+  noise: Noise | null;
+}
+
+export const LEFT = { used: 0, clipped: 1, floor: 2, outlier: 3, person: 4, outside: 5 } as const;
+
+export function freshState(data: BandData): BandState {
+  const line = (v: number) => new Float64Array(data.bands).fill(v);
+  return { gain: line(1), offset: line(0), slope: line(0), shift: line(0), stretch: line(0), left: new Uint8Array(data.bins * data.bands), noise: null };
+}
+
+/** Where the bands' common coordinate runs: u of the first bin's lower edge and the half length, px. */
+export interface CommonGrid {
+  from: number;
+  half: number;
+  bins: number;
+  pitchPx: number;
+}
+
+export function gridOf(data: BandData): CommonGrid {
+  let low = Infinity;
+  let high = -Infinity;
+  for (let i = 0; i < data.u.length; i++) {
+    if (!(data.pixels[i] > 0)) continue;
+    if (data.u[i] < low) low = data.u[i];
+    if (data.u[i] > high) high = data.u[i];
+  }
+  const bins = Math.max(1, Math.ceil((high - low) / data.pitchPx) + 1);
+  return { from: low - data.pitchPx / 2, half: Math.max(1e-9, (high - low) / 2), bins, pitchPx: data.pitchPx };
+}
+
+/** The common coordinate of a cell: the band's own shift and stretch undone. */
+export function commonU(data: BandData, state: BandState, band: number, cell: number): number {
+  return (data.u[cell] - state.shift[band]) / (1 + state.stretch[band]);
+}
+
+/**
+ * One profile from all bands: in each bin of the common coordinate the weighted mean of (light - offset - slope z)/gain
+ * with weights pixels * gain^2 / variance(light of the fit), never of the observed light.
+ * `expected` is the light the last fit expects on the same grid; absent before the first fit.
+ */
+export function combineBands(data: BandData, state: BandState, grid: CommonGrid, expected: Float64Array | null): Profile {
+  const n = grid.bins;
+  const sw = new Float64Array(n);
+  const sz = new Float64Array(n);
+  const su = new Float64Array(n);
+  const suu = new Float64Array(n);
+  const sv = new Float64Array(n);
+  const scale = 1 / grid.pitchPx;
+  for (let b = 0; b < data.bands; b++) {
+    const g = state.gain[b];
+    if (!(g > 0)) continue;
+    for (let j = 0; j < data.bins; j++) {
+      const cell = b * data.bins + j;
+      const pixels = data.pixels[cell];
+      if (pixels === 0 || state.left[cell] !== LEFT.used) continue;
+      const u = commonU(data, state, b, cell);
+      const k = Math.floor((u - grid.from) * scale);
+      if (k < 0 || k >= n) continue;
+      const z = u / grid.half;
+      const extra = state.offset[b] + state.slope[b] * z;
+      let variance = 1;
+      if (expected && state.noise) variance = varianceAt(state.noise, g * expected[k] + extra);
+      const w = (pixels * g * g) / variance;
+      sw[k] += w;
+      sz[k] += (w * (data.light[cell] - extra)) / g;
+      su[k] += w * u;
+      suu[k] += w * u * u;
+      sv[k] += w * data.varU[cell];
+    }
+  }
+  return profileFrom(data, { sw, sz, su, suu, sv });
+}
+
+function profileFrom(data: BandData, sums: Record<'sw' | 'sz' | 'su' | 'suu' | 'sv', Float64Array>): Profile {
+  const n = sums.sw.length;
+  const profile: Profile = { u: new Float64Array(n), node: new Float64Array(n), nodeWeight: new Float64Array(n), light: new Float64Array(n), sigma: new Float64Array(n).fill(Infinity), size: n };
+  for (let k = 0; k < n; k++) {
+    const w = sums.sw[k];
+    if (!(w > 0)) continue;
+    const u = sums.su[k] / w;
+    const bin = Math.max(0, sums.suu[k] / w - u * u) + sums.sv[k] / w;
+    profile.u[k] = u;
+    profile.light[k] = sums.sz[k] / w;
+    profile.sigma[k] = 1 / Math.sqrt(w);
+    const { node, weight } = averagingNodes(data.pixelVar + bin, data.pixelFourth + 1.8 * bin * bin + 6 * data.pixelVar * bin);
+    profile.node[k] = node;
+    profile.nodeWeight[k] = weight;
+  }
+  return profile;
+}
+
+/** The fitted light and its derivative along u on an even grid, for quick look-up by cubic interpolation. */
+export class FitTable {
+  readonly light: Float64Array;
+  readonly slope: Float64Array;
+  private readonly step: number;
+
+  constructor(
+    fit: ProfileFit,
+    readonly from: number,
+    to: number,
+    pitchPx: number,
+    extent: { variance: number; fourth: number },
+  ) {
+    const spacing = fit.result.parameters[0] * fit.unitPx;
+    this.step = Math.min(pitchPx, spacing / 20);
+    const n = Math.max(2, Math.ceil((to - from) / this.step) + 2);
+    this.light = new Float64Array(n);
+    this.slope = new Float64Array(n);
+    const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
+    const { node, weight } = averagingNodes(extent.variance, extent.fourth);
+    for (let i = 0; i < n; i++) {
+      const x = (from + i * this.step - fit.originPx) / fit.unitPx;
+      if (!model.evaluate(fit.result.parameters, x, node / fit.unitPx, weight, false)) continue;
+      this.light[i] = model.light * fit.unitLight;
+      this.slope[i] = (model.slope * fit.unitLight) / fit.unitPx;
+    }
+  }
+
+  /** Index and fraction of u; kept inside the table. */
+  private place(u: number): { i: number; f: number } {
+    const t = (u - this.from) / this.step;
+    const i = Math.max(0, Math.min(this.light.length - 2, Math.floor(t)));
+    return { i, f: Math.max(0, Math.min(1, t - i)) };
+  }
+
+  lightAt(u: number): number {
+    const { i, f } = this.place(u);
+    const h = this.step;
+    const a = this.light[i];
+    const b = this.light[i + 1];
+    const c = this.slope[i] * h;
+    const d = this.slope[i + 1] * h;
+    const f2 = f * f;
+    const f3 = f2 * f;
+    return a * (2 * f3 - 3 * f2 + 1) + c * (f3 - 2 * f2 + f) + b * (3 * f2 - 2 * f3) + d * (f3 - f2);
+  }
+
+  slopeAt(u: number): number {
+    const { i, f } = this.place(u);
+    return this.slope[i] + f * (this.slope[i + 1] - this.slope[i]);
+  }
+}
+
+export function tableFor(data: BandData, grid: CommonGrid, fit: ProfileFit): FitTable {
+  let v = 0;
+  let n = 0;
+  for (let i = 0; i < data.varU.length; i++) {
+    if (data.pixels[i] === 0) continue;
+    v += data.varU[i];
+    n++;
+  }
+  const bin = n > 0 ? v / n : 0;
+  const margin = 3 * grid.pitchPx;
+  return new FitTable(fit, grid.from - margin, grid.from + grid.bins * grid.pitchPx + margin, grid.pitchPx, {
+    variance: data.pixelVar + bin,
+    fourth: data.pixelFourth + 1.8 * bin * bin + 6 * data.pixelVar * bin,
+  });
+}
+
+export interface BandShifts {
+  /** Displacement of the fringes in each band beyond what the state already undoes, px, and 1/u^2. */
+  shift: Float64Array;
+  shiftWeight: Float64Array;
+  /** Relative change of spacing in each band beyond the state's stretch, and 1/u^2. */
+  stretch: Float64Array;
+  stretchWeight: Float64Array;
+}
+
+/**
+ * Fits every band as offset + slope z + gain P(u) - shift P' - stretch u P' and renews the state's gain, offset and slope.
+ * Shift and stretch are answered, not applied. Bands too poor for it get weight 0 and keep gain 0.
+ */
+export function regressBands(data: BandData, state: BandState, grid: CommonGrid, table: FitTable): BandShifts {
+  const n = data.bands;
+  const out: BandShifts = { shift: new Float64Array(n), shiftWeight: new Float64Array(n), stretch: new Float64Array(n), stretchWeight: new Float64Array(n) };
+  const T = 5;
+  const a = new Float64Array(T * T);
+  const rhs = new Float64Array(T);
+  const t = new Float64Array(T);
+  for (let b = 0; b < n; b++) {
+    a.fill(0);
+    rhs.fill(0);
+    const g = state.gain[b] > 0 ? state.gain[b] : 1;
+    for (let j = 0; j < data.bins; j++) {
+      const cell = b * data.bins + j;
+      if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used) continue;
+      const u = commonU(data, state, b, cell);
+      const p = table.lightAt(u);
+      const slope = table.slopeAt(u);
+      const w = data.pixels[cell] / (state.noise ? varianceAt(state.noise, g * p + state.offset[b] + (state.slope[b] * u) / grid.half) : 1);
+      t[0] = 1;
+      t[1] = u / grid.half;
+      t[2] = p;
+      t[3] = -slope;
+      t[4] = (-slope * u) / grid.half;
+      for (let k = 0; k < T; k++) {
+        const wt = w * t[k];
+        rhs[k] += wt * data.light[cell];
+        for (let l = k; l < T; l++) a[k * T + l] += wt * t[l];
+      }
+    }
+    for (let k = 0; k < T; k++) for (let l = 0; l < k; l++) a[k * T + l] = a[l * T + k];
+    const x = solveSymmetric(a, rhs, T);
+    if (x === null || !(x[2] > 0.02)) {
+      state.gain[b] = 0;
+      continue;
+    }
+    state.offset[b] = x[0];
+    state.slope[b] = x[1];
+    state.gain[b] = x[2];
+    out.shift[b] = x[3] / x[2];
+    out.shiftWeight[b] = informationOf(a, T, 3) * x[2] * x[2];
+    out.stretch[b] = x[4] / x[2] / grid.half;
+    out.stretchWeight[b] = informationOf(a, T, 4) * x[2] * x[2] * grid.half * grid.half;
+  }
+  normalise(data, state);
+  return out;
+}
+
+/** 1 / (inverse of a)_kk */
+function informationOf(a: Float64Array, n: number, k: number): number {
+  const e = new Float64Array(n);
+  e[k] = 1;
+  const x = solveSymmetric(a, e, n);
+  return x !== null && x[k] > 0 ? 1 / x[k] : 0;
+}
+
+/** Mean gain 1; offsets and slopes without a common part, which belongs to the profile. */
+function normalise(data: BandData, state: BandState): void {
+  let g = 0;
+  let n = 0;
+  for (let b = 0; b < data.bands; b++) {
+    if (state.gain[b] > 0) {
+      g += state.gain[b];
+      n++;
+    }
+  }
+  if (n === 0) return;
+  let gg = 0;
+  let go = 0;
+  let gs = 0;
+  for (let b = 0; b < data.bands; b++) {
+    state.gain[b] *= n / g;
+    gg += state.gain[b] ** 2;
+    go += state.gain[b] * state.offset[b];
+    gs += state.gain[b] * state.slope[b];
+  }
+  for (let b = 0; b < data.bands; b++) {
+    state.offset[b] -= (state.gain[b] * go) / gg;
+    state.slope[b] -= (state.gain[b] * gs) / gg;
+  }
+}

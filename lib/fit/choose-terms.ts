@@ -1,0 +1,41 @@
+import { refitBands, type BandFit } from './fit-bands';
+import { refit } from './fit-profile';
+import type { ModelTerms } from './two-slit-model';
+
+const MOST_BACKGROUND = 6;
+const MOST_ADDED = 4;
+/** A term must beat the information criterion by this much, so that noise does not buy terms. */
+const MARGIN = 4;
+
+/**
+ * Adds optional terms one at a time, each time the one that helps most, while the Bayesian information criterion
+ * (Schwarz 1978: chi-square + parameters * ln points) falls by more than a margin. Chi-square is scaled by what the best
+ * model leaves, so that structure no term describes does not buy terms either.
+ */
+export function chooseTerms(band: BandFit, allow: { curve: boolean; tone: boolean; chirp: boolean }): BandFit {
+  let now = band;
+  for (let added = 0; added < MOST_ADDED; added++) {
+    let best: { terms: ModelTerms; gain: number } | null = null;
+    for (const terms of offers(now.fit.layout.terms, allow)) {
+      const trial = refit(now.profile, now.fit, terms);
+      if (trial.result.covariance === null) continue;
+      const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));
+      const extra = trial.layout.size - now.fit.layout.size;
+      const gain = (now.fit.result.chiSquare - trial.result.chiSquare) / scale - extra * Math.log(trial.points) - MARGIN;
+      if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain };
+    }
+    if (best === null) return now;
+    now = refitBands(now, best.terms);
+  }
+  return now;
+}
+
+function offers(terms: ModelTerms, allow: { curve: boolean; tone: boolean; chirp: boolean }): ModelTerms[] {
+  const list: ModelTerms[] = [];
+  if (terms.background < MOST_BACKGROUND) list.push({ ...terms, background: terms.background + 1 });
+  if (terms.background < MOST_BACKGROUND - 1) list.push({ ...terms, background: terms.background + 2 });
+  if (!terms.chirp && allow.chirp) list.push({ ...terms, chirp: true });
+  if (!terms.tone && allow.tone) list.push({ ...terms, tone: true });
+  if (!terms.fade) list.push({ ...terms, fade: true });
+  return list;
+}

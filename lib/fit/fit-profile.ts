@@ -1,0 +1,226 @@
+import { leastSquares, type LeastSquaresResult } from './least-squares';
+import type { Profile } from './profile';
+import { scanStartValues, type StartValues } from './start-values';
+import { layoutOf, ModelPoint, type ModelFixed, type ModelLayout, type ModelTerms } from './two-slit-model';
+
+/** Prior knowledge of the wide-angle curvature s/L, per px; u null: known exactly; absent: nothing known. */
+export interface CurvePrior {
+  value: number;
+  u: number | null;
+}
+
+export interface ProfileFit {
+  layout: ModelLayout;
+  fixed: ModelFixed;
+  result: LeastSquaresResult;
+  /** x of the model = (u - originPx) / unitPx; light of the model = light / unitLight. */
+  originPx: number;
+  unitPx: number;
+  unitLight: number;
+  /** Points with a finite sigma, priors not counted. */
+  points: number;
+  curvePrior: CurvePrior | null;
+}
+
+/** The plainest model for a given knowledge of the geometry. */
+export function plainTerms(prior: CurvePrior | null): ModelTerms {
+  return { background: 2, curve: prior !== null && prior.u !== null && prior.u > 0, chirp: false, tone: false, fade: false };
+}
+
+/** Best of several starts; `around` is the spacing in px the search believes in. Null when nothing starts. */
+export function fitProfile(profile: Profile, around: number, prior: CurvePrior | null): ProfileFit | null {
+  let best: ProfileFit | null = null;
+  for (const start of scanStartValues(profile, around, 3)) {
+    const fit = fitFrom(profile, start, plainTerms(prior), prior);
+    if (best === null || fit.result.chiSquare < best.result.chiSquare) best = fit;
+  }
+  return best;
+}
+
+/** One fit from start values in px. */
+export function fitFrom(profile: Profile, start: StartValues, terms: ModelTerms, prior: CurvePrior | null): ProfileFit {
+  const layout = layoutOf(terms);
+  const unitPx = start.spacing;
+  const unitLight = Math.max(1e-9, start.a + Math.max(0, start.background));
+  const originPx = start.zero;
+  const p = new Float64Array(layout.size);
+  p[0] = 1;
+  p[1] = 0;
+  p[2] = start.ratio;
+  p[3] = (start.middle - start.zero) / unitPx;
+  p[4] = start.a / unitLight;
+  p[5] = start.b / unitLight;
+  p[6] = start.background / unitLight;
+  if (terms.background > 1) p[7] = start.slope / unitLight;
+  if (layout.curve >= 0 && prior) p[layout.curve] = prior.value * unitPx;
+  if (layout.tone >= 0) p[layout.tone] = 1;
+  return run(profile, { layout, prior, originPx, unitPx, unitLight }, p);
+}
+
+/** The same fit carried on: new data, or more terms. Parameters that are new start at their neutral value. */
+export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms): ProfileFit {
+  const layout = layoutOf(terms);
+  const p = new Float64Array(layout.size);
+  const old = before.result.parameters;
+  for (let i = 0; i < 6; i++) p[i] = old[i];
+  for (let k = 0; k < Math.min(terms.background, before.layout.terms.background); k++) p[6 + k] = old[6 + k];
+  const carry = (now: number, then: number, neutral: number) => {
+    if (now >= 0) p[now] = then >= 0 ? old[then] : neutral;
+  };
+  carry(layout.curve, before.layout.curve, before.fixed.curve);
+  carry(layout.chirp, before.layout.chirp, 0);
+  carry(layout.tone, before.layout.tone, 1);
+  carry(layout.fade, before.layout.fade, 0.05);
+  return run(profile, { layout, prior: before.curvePrior, originPx: before.originPx, unitPx: before.unitPx, unitLight: before.unitLight }, p);
+}
+
+/**
+ * The pattern of one slit on the same data: no interference term. Tried from several widths; chi-square tells whether the
+ * second slit is needed at all.
+ */
+export function fitOneSlit(profile: Profile, two: ProfileFit): LeastSquaresResult | null {
+  const layout = layoutOf(plainTerms(null));
+  const old = two.result.parameters;
+  let brightest = 0;
+  for (let i = 0; i < profile.size; i++) if (Number.isFinite(profile.sigma[i]) && profile.light[i] > profile.light[brightest]) brightest = i;
+  const peak = (profile.u[brightest] - two.originPx) / two.unitPx;
+  let best: LeastSquaresResult | null = null;
+  for (const middle of [old[3], peak]) {
+    for (const ratio of [0.35, 0.6, 1, 1.7]) {
+      const p = new Float64Array(layout.size);
+      p[0] = 1;
+      p[2] = ratio;
+      p[3] = middle;
+      p[4] = Math.max(old[4], 0.2);
+      p[6] = old[6];
+      p[7] = old[7];
+      const { result } = run(profile, { layout, prior: null, originPx: two.originPx, unitPx: two.unitPx, unitLight: two.unitLight, hold: [0, 1, 5] }, p);
+      if (best === null || result.chiSquare < best.chiSquare) best = result;
+    }
+  }
+  return best;
+}
+
+interface Frame {
+  layout: ModelLayout;
+  prior: CurvePrior | null;
+  originPx: number;
+  unitPx: number;
+  unitLight: number;
+  /** Parameters that keep their start value. */
+  hold?: number[];
+}
+
+function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
+  const { layout, prior, originPx, unitPx, unitLight } = frame;
+  const index: number[] = [];
+  for (let i = 0; i < profile.size; i++) if (Number.isFinite(profile.sigma[i])) index.push(i);
+  const n = index.length;
+  const from = (profile.u[index[0]] - originPx) / unitPx;
+  const to = (profile.u[index[n - 1]] - originPx) / unitPx;
+  const fixed: ModelFixed = { curve: prior ? prior.value * unitPx : 0, centre: (from + to) / 2, half: Math.max(1e-9, (to - from) / 2) };
+  const priors = priorRows(layout, frame, fixed);
+  const rows = n + priors.length;
+  const averaged = new AveragedModel(new ModelPoint(layout, fixed));
+  const result = leastSquares(
+    {
+      residuals: rows,
+      evaluate(p, r, jacobian) {
+        for (let k = 0; k < n; k++) {
+          const i = index[k];
+          if (!averaged.evaluate(p, (profile.u[i] - originPx) / unitPx, profile.node[i] / unitPx, profile.nodeWeight[i], jacobian !== null)) return false;
+          const w = unitLight / profile.sigma[i];
+          r[k] = (profile.light[i] / unitLight - averaged.light) * w;
+          if (jacobian) for (let j = 0; j < layout.size; j++) jacobian[j * rows + k] = averaged.gradient[j] * w;
+        }
+        for (let k = 0; k < priors.length; k++) {
+          const { parameter, value, u } = priors[k];
+          r[n + k] = (value - p[parameter]) / u;
+          if (jacobian) for (let j = 0; j < layout.size; j++) jacobian[j * rows + n + k] = j === parameter ? 1 / u : 0;
+        }
+        return true;
+      },
+    },
+    start,
+    { ...boundsFor(layout, fixed, start, frame.hold ?? []), maxEvaluations: 120, reductionTolerance: 1e-12, gradientTolerance: 1e-9 },
+  );
+  return { layout, fixed, result, originPx, unitPx, unitLight, points: n, curvePrior: prior };
+}
+
+/** Weak knowledge that keeps a flat envelope from wandering, and the stated geometry. */
+function priorRows(layout: ModelLayout, frame: Frame, fixed: ModelFixed): { parameter: number; value: number; u: number }[] {
+  const rows: { parameter: number; value: number; u: number }[] = [
+    { parameter: layout.middle, value: fixed.centre, u: 40 * Math.max(1, fixed.half) },
+    { parameter: layout.ratio, value: 0.25, u: 5 },
+  ];
+  const { prior, unitPx } = frame;
+  if (layout.curve >= 0 && prior?.u) rows.push({ parameter: layout.curve, value: prior.value * unitPx, u: prior.u * unitPx });
+  return rows;
+}
+
+function boundsFor(layout: ModelLayout, fixed: ModelFixed, start: Float64Array, hold: number[]): { lower: Float64Array; upper: Float64Array } {
+  const lower = new Float64Array(layout.size).fill(-Infinity);
+  const upper = new Float64Array(layout.size).fill(Infinity);
+  lower[0] = 0.4;
+  upper[0] = 2.5;
+  lower[2] = 0.002;
+  upper[2] = hold.length > 0 ? 4 : 1.2;
+  lower[4] = 0;
+  upper[4] = 60;
+  lower[5] = 0;
+  const reach = 3 * fixed.half + 5;
+  lower[3] = fixed.centre - reach;
+  upper[3] = fixed.centre + reach;
+  if (layout.curve >= 0) lower[layout.curve] = 0;
+  if (layout.tone >= 0) {
+    lower[layout.tone] = 0.25;
+    upper[layout.tone] = 2.5;
+  }
+  if (layout.fade >= 0) {
+    lower[layout.fade] = 1e-4;
+    upper[layout.fade] = 1.5;
+  }
+  if (layout.chirp >= 0) {
+    lower[layout.chirp] = -0.5 / fixed.half;
+    upper[layout.chirp] = 0.5 / fixed.half;
+  }
+  for (const k of hold) {
+    lower[k] = start[k];
+    upper[k] = start[k];
+  }
+  return { lower, upper };
+}
+
+/** The model averaged over the extent of a point by its three nodes. */
+export class AveragedModel {
+  light = 0;
+  fringes = 0;
+  envelope = 0;
+  slope = 0;
+  readonly gradient: Float64Array;
+
+  constructor(readonly point: ModelPoint) {
+    this.gradient = new Float64Array(point.layout.size);
+  }
+
+  evaluate(p: Float64Array, x: number, node: number, weight: number, wantGradient: boolean): boolean {
+    const { point, gradient } = this;
+    if (!point.evaluate(p, x, wantGradient)) return false;
+    const mid = 1 - 2 * weight;
+    this.light = mid * point.light;
+    this.fringes = mid * point.fringes;
+    this.envelope = mid * point.envelope;
+    this.slope = mid * point.slope;
+    if (wantGradient) for (let j = 0; j < gradient.length; j++) gradient[j] = mid * point.gradient[j];
+    if (weight === 0) return true;
+    for (let side = -1; side <= 1; side += 2) {
+      if (!point.evaluate(p, x + side * node, wantGradient)) return false;
+      this.light += weight * point.light;
+      this.fringes += weight * point.fringes;
+      this.envelope += weight * point.envelope;
+      this.slope += weight * point.slope;
+      if (wantGradient) for (let j = 0; j < gradient.length; j++) gradient[j] += weight * point.gradient[j];
+    }
+    return true;
+  }
+}

@@ -1,0 +1,278 @@
+import type { Plane } from './picture';
+import type { WaveCandidate } from './spectrum';
+
+/** Where one wave lives in the frame and how its phase runs there. Lengths in px of the frame. */
+export interface FringePatch {
+  /** Wave vector at the patch's middle, cycles per px, after the phase fit. */
+  kx: number;
+  ky: number;
+  /** Middle of the patch. */
+  cx: number;
+  cy: number;
+  /** Cells of the patch: centres, amplitude (half of the fringe's half swing), unwrapped phase in turns. */
+  cells: { x: number; y: number; amplitude: number; turns: number }[];
+  cellPx: number;
+  /** Sum of squared amplitudes times area: how much fringe light stands behind it. */
+  energy: number;
+  /** Root mean square of the phase about the best quadratic surface, turns. */
+  roughTurns: number;
+  /** Second derivatives of the phase, turns per px^2: across the fringes, mixed, along them. */
+  bend: { across: number; mixed: number; along: number };
+}
+
+interface CellMap {
+  nx: number;
+  ny: number;
+  size: number;
+  re: Float64Array;
+  im: Float64Array;
+  /** Amplitude over its own noise. */
+  snr: Float64Array;
+}
+
+const SMALLEST_SHARE = 0.07;
+const SMALLEST_SNR = 3;
+const LARGEST_STEP_TURNS = 0.16;
+const REACH = 2;
+
+/** Plane on which a period is sampled finely enough and not more than that. */
+export function planeFor(planes: Plane[], periodPx: number): Plane {
+  let best = planes[0];
+  for (const plane of planes) if (periodPx / plane.factor >= 5) best = plane;
+  return best;
+}
+
+/** Demodulates one wave in cells, grows the patch of continuous phase from its strongest cell and fits its phase. */
+export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true): FringePatch | null {
+  const f = plane.factor;
+  const map = demodulateCells(plane, wave.kx * f, wave.ky * f);
+  const cells = growPatch(map);
+  if (cells.length < 3) return null;
+  const centre = (i: number) => ({ x: ((i % map.nx) + 0.5) * map.size * f, y: (Math.floor(i / map.nx) + 0.5) * map.size * f });
+  const list = cells.map(({ index, turns }) => ({ ...centre(index), amplitude: Math.hypot(map.re[index], map.im[index]), turns }));
+  let w = 0;
+  let cx = 0;
+  let cy = 0;
+  for (const c of list) {
+    const e = c.amplitude ** 2;
+    w += e;
+    cx += e * c.x;
+    cy += e * c.y;
+  }
+  cx /= w;
+  cy /= w;
+  const surface = fitPhase(list, cx, cy, map.size * f);
+  const kx = wave.kx + surface.gx;
+  const ky = wave.ky + surface.gy;
+  const shift = Math.hypot(surface.gx, surface.gy) / Math.hypot(wave.kx, wave.ky);
+  // A wave vector that moved far was not demodulated well: once more with the better one.
+  if (mayRetry && shift > 0.02 && shift < 0.6) return tracePatch(plane, { kx, ky, weight: wave.weight }, false);
+  const k = Math.hypot(kx, ky);
+  const ux = kx / k;
+  const uy = ky / k;
+  return {
+    kx,
+    ky,
+    cx,
+    cy,
+    cells: list,
+    cellPx: map.size * f,
+    energy: w * (map.size * f) ** 2,
+    roughTurns: surface.rough,
+    bend: {
+      across: surface.xx * ux * ux + 2 * surface.xy * ux * uy + surface.yy * uy * uy,
+      mixed: (surface.yy - surface.xx) * ux * uy + surface.xy * (ux * ux - uy * uy),
+      along: surface.xx * uy * uy - 2 * surface.xy * ux * uy + surface.yy * ux * ux,
+    },
+  };
+}
+
+/** Complex amplitude of the wave in cells about a period wide, smoothed over 3 x 3 cells, local mean removed. */
+function demodulateCells(plane: Plane, kx: number, ky: number): CellMap {
+  const period = 1 / Math.hypot(kx, ky);
+  const size = Math.max(5, Math.round(0.9 * period));
+  const nx = Math.max(1, Math.floor(plane.widthPx / size));
+  const ny = Math.max(1, Math.floor(plane.heightPx / size));
+  const cosX = new Float64Array(plane.widthPx);
+  const sinX = new Float64Array(plane.widthPx);
+  for (let x = 0; x < plane.widthPx; x++) {
+    cosX[x] = Math.cos(2 * Math.PI * kx * (x + 0.5));
+    sinX[x] = Math.sin(2 * Math.PI * kx * (x + 0.5));
+  }
+  const n = nx * ny;
+  const sums = { re: new Float64Array(n), im: new Float64Array(n), er: new Float64Array(n), ei: new Float64Array(n), one: new Float64Array(n), two: new Float64Array(n) };
+  for (let y = 0; y < ny * size; y++) {
+    const cy = Math.cos(2 * Math.PI * ky * (y + 0.5));
+    const sy = Math.sin(2 * Math.PI * ky * (y + 0.5));
+    const cellRow = Math.floor(y / size) * nx;
+    for (let i = 0; i < nx; i++) {
+      let c = 0;
+      let s = 0;
+      let ec = 0;
+      let es = 0;
+      let one = 0;
+      let two = 0;
+      const from = y * plane.widthPx + i * size;
+      for (let d = 0; d < size; d++) {
+        const v = plane.data[from + d];
+        const a = cosX[i * size + d];
+        const b = sinX[i * size + d];
+        c += v * a;
+        s += v * b;
+        ec += a;
+        es += b;
+        one += v;
+        two += v * v;
+      }
+      const k = cellRow + i;
+      // exp(-i phi) with phi split into its x and y parts
+      sums.re[k] += c * cy - s * sy;
+      sums.im[k] -= s * cy + c * sy;
+      sums.er[k] += ec * cy - es * sy;
+      sums.ei[k] -= es * cy + ec * sy;
+      sums.one[k] += one;
+      sums.two[k] += two;
+    }
+  }
+  return smoothCells(sums, nx, ny, size);
+}
+
+function smoothCells(sums: Record<'re' | 'im' | 'er' | 'ei' | 'one' | 'two', Float64Array>, nx: number, ny: number, size: number): CellMap {
+  const re = new Float64Array(nx * ny);
+  const im = new Float64Array(nx * ny);
+  const snr = new Float64Array(nx * ny);
+  for (let y = 0; y < ny; y++) {
+    for (let x = 0; x < nx; x++) {
+      let w = 0;
+      let w2 = 0;
+      const t = { re: 0, im: 0, er: 0, ei: 0, one: 0, two: 0 };
+      for (let dy = -1; dy <= 1; dy++) {
+        for (let dx = -1; dx <= 1; dx++) {
+          if (x + dx < 0 || x + dx >= nx || y + dy < 0 || y + dy >= ny) continue;
+          const g = (2 - Math.abs(dx)) * (2 - Math.abs(dy));
+          const k = (y + dy) * nx + x + dx;
+          w += g;
+          w2 += g * g;
+          t.re += g * sums.re[k];
+          t.im += g * sums.im[k];
+          t.er += g * sums.er[k];
+          t.ei += g * sums.ei[k];
+          t.one += g * sums.one[k];
+          t.two += g * sums.two[k];
+        }
+      }
+      const pixels = w * size * size;
+      const mean = t.one / pixels;
+      const i = y * nx + x;
+      re[i] = (t.re - mean * t.er) / pixels;
+      im[i] = (t.im - mean * t.ei) / pixels;
+      const power = re[i] * re[i] + im[i] * im[i];
+      const rest = Math.max(1e-12, t.two / pixels - mean * mean - 2 * power);
+      snr[i] = Math.sqrt(power / ((rest * w2) / (w * pixels)));
+    }
+  }
+  return { nx, ny, size, re, im, snr };
+}
+
+/** Cells reached from the strongest one by small steps of phase; each keeps the whole number of turns on its way. */
+function growPatch(map: CellMap): { index: number; turns: number }[] {
+  const { nx, ny, re, im, snr } = map;
+  const n = nx * ny;
+  const amplitude = new Float64Array(n);
+  let seed = 0;
+  for (let i = 0; i < n; i++) {
+    amplitude[i] = Math.hypot(re[i], im[i]);
+    if (amplitude[i] > amplitude[seed]) seed = i;
+  }
+  const good = (i: number) => amplitude[i] > SMALLEST_SHARE * amplitude[seed] && snr[i] > SMALLEST_SNR;
+  if (!good(seed)) return [];
+  const turnsOf = (i: number) => Math.atan2(im[i], re[i]) / (2 * Math.PI);
+  const turns = new Float64Array(n).fill(NaN);
+  turns[seed] = turnsOf(seed);
+  const queue = [seed];
+  for (let head = 0; head < queue.length; head++) {
+    const i = queue[head];
+    const x = i % nx;
+    const y = Math.floor(i / nx);
+    for (let dy = -REACH; dy <= REACH; dy++) {
+      for (let dx = -REACH; dx <= REACH; dx++) {
+        const xx = x + dx;
+        const yy = y + dy;
+        if (xx < 0 || xx >= nx || yy < 0 || yy >= ny) continue;
+        const j = yy * nx + xx;
+        if (!Number.isNaN(turns[j]) || !good(j)) continue;
+        let step = turnsOf(j) - turns[i];
+        step -= Math.round(step);
+        if (Math.abs(step) > LARGEST_STEP_TURNS * Math.max(1, Math.hypot(dx, dy) * 0.8)) continue;
+        turns[j] = turns[i] + step;
+        queue.push(j);
+      }
+    }
+  }
+  return queue.map((index) => ({ index, turns: turns[index] }));
+}
+
+interface PhaseSurface {
+  gx: number;
+  gy: number;
+  xx: number;
+  xy: number;
+  yy: number;
+  rough: number;
+}
+
+/** Weighted least squares of turns = t0 + gx x + gy y + xx x^2/2 + xy x y + yy y^2/2; second order only with enough cells. */
+function fitPhase(cells: FringePatch['cells'], cx: number, cy: number, unit: number): PhaseSurface {
+  const full = cells.length >= 16;
+  const terms = full ? 6 : 3;
+  const basis = (c: { x: number; y: number }) => {
+    const x = (c.x - cx) / unit;
+    const y = (c.y - cy) / unit;
+    return [1, x, y, (x * x) / 2, x * y, (y * y) / 2];
+  };
+  const a = new Float64Array(terms * terms);
+  const b = new Float64Array(terms);
+  for (const c of cells) {
+    const t = basis(c);
+    const w = c.amplitude ** 2;
+    for (let i = 0; i < terms; i++) {
+      b[i] += w * t[i] * c.turns;
+      for (let j = 0; j < terms; j++) a[i * terms + j] += w * t[i] * t[j];
+    }
+  }
+  const s = solveSmall(a, b, terms);
+  let w = 0;
+  let e = 0;
+  for (const c of cells) {
+    const t = basis(c);
+    let r = c.turns;
+    for (let i = 0; i < terms; i++) r -= s[i] * t[i];
+    w += c.amplitude ** 2;
+    e += c.amplitude ** 2 * r * r;
+  }
+  const second = unit * unit;
+  return { gx: s[1] / unit, gy: s[2] / unit, xx: (s[3] ?? 0) / second, xy: (s[4] ?? 0) / second, yy: (s[5] ?? 0) / second, rough: Math.sqrt(e / w) };
+}
+
+/** Gaussian elimination with a small ridge, for normal equations of a few unknowns. */
+export function solveSmall(a: Float64Array, b: Float64Array, n: number): Float64Array {
+  const m = Float64Array.from(a);
+  const x = Float64Array.from(b);
+  for (let i = 0; i < n; i++) m[i * n + i] *= 1 + 1e-9;
+  for (let k = 0; k < n; k++) {
+    const pivot = m[k * n + k];
+    if (!(Math.abs(pivot) > 0)) continue;
+    for (let i = k + 1; i < n; i++) {
+      const f = m[i * n + k] / pivot;
+      for (let j = k; j < n; j++) m[i * n + j] -= f * m[k * n + j];
+      x[i] -= f * x[k];
+    }
+  }
+  for (let i = n - 1; i >= 0; i--) {
+    let s = x[i];
+    for (let j = i + 1; j < n; j++) s -= m[i * n + j] * x[j];
+    const pivot = m[i * n + i];
+    x[i] = Math.abs(pivot) > 0 ? s / pivot : 0;
+  }
+  return x;
+}

@@ -1,0 +1,191 @@
+import FFT from 'fft.js';
+import type { Plane } from './picture';
+
+/** A possible fringe system: wave vector in cycles per px of the frame, pointing to the right (or straight down). */
+export interface WaveCandidate {
+  kx: number;
+  ky: number;
+  weight: number;
+}
+
+const N = 64;
+const fft = new FFT(N);
+/** Peaks nearer to the middle of the spectrum are the light's own outline, not fringes. */
+const LOWEST_BIN = 2.1;
+const FINEST_PERIOD_PX = 2.2;
+const TILES_PER_PLANE = 36;
+
+/** Votes for wave vectors from windowed tiles on every plane, gathered into the few that stand out. */
+export function findWaves(planes: Plane[], keep: number): WaveCandidate[] {
+  const votes: WaveCandidate[] = [];
+  const power = new Float32Array(N * N);
+  for (const plane of planes) {
+    for (const [x, y] of chooseTiles(plane)) {
+      tilePower(plane, x, y, power);
+      votes.push(...tilePeaks(power, plane));
+    }
+  }
+  return gather(votes, keep);
+}
+
+/** Corners of the tiles worth a spectrum: the liveliest half by their variance and an even grid of the rest. */
+function chooseTiles(plane: Plane): [number, number][] {
+  const tw = Math.min(N, plane.widthPx);
+  const th = Math.min(N, plane.heightPx);
+  const nx = plane.widthPx <= N ? 1 : Math.ceil((plane.widthPx - N) / (N / 2)) + 1;
+  const ny = plane.heightPx <= N ? 1 : Math.ceil((plane.heightPx - N) / (N / 2)) + 1;
+  const tiles: { at: [number, number]; energy: number }[] = [];
+  for (let j = 0; j < ny; j++) {
+    for (let i = 0; i < nx; i++) {
+      const x = nx === 1 ? 0 : Math.round((i * (plane.widthPx - tw)) / (nx - 1));
+      const y = ny === 1 ? 0 : Math.round((j * (plane.heightPx - th)) / (ny - 1));
+      tiles.push({ at: [x, y], energy: tileEnergy(plane, x, y, tw, th) });
+    }
+  }
+  if (tiles.length <= TILES_PER_PLANE) return tiles.map((t) => t.at);
+  const lively = [...tiles].sort((a, b) => b.energy - a.energy).slice(0, TILES_PER_PLANE / 2);
+  const step = tiles.length / (TILES_PER_PLANE / 2);
+  const even = Array.from({ length: TILES_PER_PLANE / 2 }, (_, i) => tiles[Math.floor(i * step)]);
+  return [...new Set([...lively, ...even])].map((t) => t.at);
+}
+
+/** Mean squared difference of neighbours three apart, from a thinned tile. */
+function tileEnergy(plane: Plane, x0: number, y0: number, tw: number, th: number): number {
+  let s = 0;
+  let n = 0;
+  for (let y = y0; y + 3 < y0 + th; y += 5) {
+    for (let x = x0; x + 3 < x0 + tw; x += 3) {
+      const i = y * plane.widthPx + x;
+      const a = plane.data[i] - plane.data[i + 3];
+      const b = plane.data[i] - plane.data[i + 3 * plane.widthPx];
+      s += a * a + b * b;
+      n++;
+    }
+  }
+  return n > 0 ? s / n : 0;
+}
+
+const line = new Float64Array(2 * N);
+const lineOut = new Float64Array(2 * N);
+const grid = new Float64Array(2 * N * N);
+
+/** Power spectrum of one tile after removal of its mean and slopes, under a Hann window. Entry [ky * N + kx]. */
+function tilePower(plane: Plane, x0: number, y0: number, power: Float32Array): void {
+  const tw = Math.min(N, plane.widthPx);
+  const th = Math.min(N, plane.heightPx);
+  const { mean, sx, sy } = tilt(plane, x0, y0, tw, th);
+  const wx = hann(tw);
+  const wy = hann(th);
+  grid.fill(0);
+  for (let y = 0; y < th; y++) {
+    line.fill(0);
+    const row = (y0 + y) * plane.widthPx + x0;
+    const dy = y - (th - 1) / 2;
+    for (let x = 0; x < tw; x++) line[2 * x] = (plane.data[row + x] - mean - sx * (x - (tw - 1) / 2) - sy * dy) * wx[x] * wy[y];
+    fft.transform(lineOut, line);
+    // Transposed on the way, so that the second pass runs along rows again.
+    for (let k = 0; k < N; k++) {
+      grid[2 * (k * N + y)] = lineOut[2 * k];
+      grid[2 * (k * N + y) + 1] = lineOut[2 * k + 1];
+    }
+  }
+  for (let kx = 0; kx <= N / 2; kx++) {
+    fft.transform(lineOut, grid.subarray(2 * kx * N, 2 * (kx + 1) * N));
+    for (let ky = 0; ky < N; ky++) power[ky * N + kx] = lineOut[2 * ky] ** 2 + lineOut[2 * ky + 1] ** 2;
+  }
+}
+
+function hann(n: number): Float64Array {
+  return Float64Array.from({ length: n }, (_, i) => Math.sin((Math.PI * (i + 0.5)) / n) ** 2);
+}
+
+function tilt(plane: Plane, x0: number, y0: number, tw: number, th: number): { mean: number; sx: number; sy: number } {
+  let s = 0;
+  let bx = 0;
+  let by = 0;
+  for (let y = 0; y < th; y++) {
+    const row = (y0 + y) * plane.widthPx + x0;
+    const dy = y - (th - 1) / 2;
+    for (let x = 0; x < tw; x++) {
+      const v = plane.data[row + x];
+      s += v;
+      bx += v * (x - (tw - 1) / 2);
+      by += v * dy;
+    }
+  }
+  const n = tw * th;
+  return { mean: s / n, sx: bx / ((n * (tw * tw - 1)) / 12), sy: by / ((n * (th * th - 1)) / 12) };
+}
+
+/** Up to two peaks of the half plane kx >= 0, weighted by amplitude, by their share of the energy and by the tile's size. */
+function tilePeaks(power: Float32Array, plane: Plane): WaveCandidate[] {
+  const highest = plane.factor === 1 ? N / FINEST_PERIOD_PX : N / 3.6;
+  let total = 0;
+  const found: WaveCandidate[] = [];
+  const inRange = (kx: number, ky: number) => {
+    const k = Math.hypot(kx, ky);
+    return k >= LOWEST_BIN && k <= highest;
+  };
+  for (let y = 0; y < N; y++) {
+    const ky = y < N / 2 ? y : y - N;
+    for (let kx = 0; kx <= N / 2; kx++) if (Math.hypot(kx, ky) >= 1.5) total += power[y * N + kx];
+  }
+  if (total === 0) return [];
+  const at = (kx: number, ky: number) => power[((ky + N) % N) * N + kx];
+  for (let n = 0; n < 2; n++) {
+    let best = 0;
+    let bx = 0;
+    let by = 0;
+    for (let kx = 0; kx <= N / 2; kx++) {
+      for (let ky = -N / 2 + 1; ky < N / 2; ky++) {
+        if (kx === 0 && ky <= 0) continue;
+        const p = at(kx, ky);
+        if (p > best && inRange(kx, ky) && !found.some((f) => Math.hypot(f.kx * plane.factor * N - kx, f.ky * plane.factor * N - ky) < 3)) {
+          best = p;
+          bx = kx;
+          by = ky;
+        }
+      }
+    }
+    if (best === 0) break;
+    let e = 0;
+    let mx = 0;
+    let my = 0;
+    for (let dx = -1; dx <= 1; dx++) {
+      for (let dy = -1; dy <= 1; dy++) {
+        const kx = bx + dx;
+        if (kx < 0 || kx > N / 2) continue;
+        const p = at(kx, by + dy);
+        e += p;
+        mx += p * kx;
+        my += p * (by + dy);
+      }
+    }
+    const share = e / total;
+    found.push({ kx: mx / e / N / plane.factor, ky: my / e / N / plane.factor, weight: Math.sqrt(e) * share * plane.factor });
+  }
+  return found;
+}
+
+/** Greedy clusters of votes whose wave vectors agree to a fifth, strongest first. */
+function gather(votes: WaveCandidate[], keep: number): WaveCandidate[] {
+  const left = [...votes].sort((a, b) => b.weight - a.weight);
+  const clusters: { kx: number; ky: number; weight: number; sum: number }[] = [];
+  for (const v of left) {
+    const k = Math.hypot(v.kx, v.ky);
+    const home = clusters.find((c) => Math.min(Math.hypot(c.kx - v.kx, c.ky - v.ky), Math.hypot(c.kx + v.kx, c.ky + v.ky)) < 0.17 * k);
+    if (!home) {
+      clusters.push({ kx: v.kx, ky: v.ky, weight: v.weight, sum: v.weight });
+      continue;
+    }
+    const sign = home.kx * v.kx + home.ky * v.ky < 0 ? -1 : 1;
+    home.kx = (home.kx * home.sum + sign * v.kx * v.weight) / (home.sum + v.weight);
+    home.ky = (home.ky * home.sum + sign * v.ky * v.weight) / (home.sum + v.weight);
+    home.sum += v.weight;
+    home.weight += v.weight;
+  }
+  return clusters
+    .sort((a, b) => b.weight - a.weight)
+    .slice(0, keep)
+    .map(({ kx, ky, weight }) => ({ kx, ky, weight }));
+}

@@ -1,0 +1,146 @@
+import { fitOneSlit } from '@/lib/fit/fit-profile';
+import { AveragedModel } from '@/lib/fit/fit-profile';
+import { ModelPoint, orderAt } from '@/lib/fit/two-slit-model';
+import { solveSymmetric } from '@/lib/fit/small-matrix';
+import { toModel } from '@/lib/fit/orders';
+import type { Spread } from '@/lib/fit/spread';
+import { Refused } from '@/lib/imaging/refused';
+import type { PlaceFit } from './place';
+
+const FINEST_PX = 2.5;
+const FEWEST_FRINGES = 3;
+const LEAST_SWING_SIGMAS = 6;
+const MOST_RELATIVE_U = 0.02;
+const MOST_MISFIT = 0.3;
+const MOST_HARMONIC = 0.2;
+const MOST_BOW = 0.22;
+
+export interface Evidence {
+  /** Bright orders that can be seen in the region. */
+  fringes: number;
+  /** Swing of the fringes over its uncertainty. */
+  swingSigmas: number;
+  /** Root mean square misfit beyond the noise, relative to the fringes' own swing. */
+  misfit: number;
+  /** Second harmonic over first: 0 for two slits, 0.5 for three. */
+  harmonic: number;
+  visibility: number;
+}
+
+/** What speaks for two slits in a fitted place. */
+export function weigh(place: PlaceFit): Evidence {
+  const { fit, profile } = place.band;
+  const p = fit.result.parameters;
+  const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
+  let swing = 0;
+  let rest = 0;
+  let n = 0;
+  let noise = 0;
+  for (let k = 0; k < profile.size; k++) {
+    if (!Number.isFinite(profile.sigma[k])) continue;
+    if (!model.evaluate(p, toModel(fit, profile.u[k]), profile.node[k] / fit.unitPx, profile.nodeWeight[k], false)) continue;
+    const r = profile.light[k] / fit.unitLight - model.light;
+    const e = 0.5 * p[5] * envelopeAt(place, profile.u[k]);
+    swing += 0.5 * e * e;
+    rest += r * r;
+    noise += (profile.sigma[k] / fit.unitLight) ** 2;
+    n++;
+  }
+  const c = fit.result.covariance;
+  const scale = Math.max(1, fit.result.chiSquare / Math.max(1, fit.result.dof));
+  const uSwing = c === null ? Infinity : Math.sqrt(c[5 * fit.layout.size + 5] * scale);
+  return {
+    fringes: countFringes(place),
+    swingSigmas: p[5] / uSwing,
+    misfit: n > 0 && swing > 0 ? Math.sqrt(Math.max(0, rest - noise) / swing) : Infinity,
+    harmonic: secondHarmonic(place),
+    visibility: p[4] > 0 ? p[5] / p[4] : 0,
+  };
+}
+
+function envelopeAt(place: PlaceFit, u: number): number {
+  const { fit } = place.band;
+  const p = fit.result.parameters;
+  const t = Math.PI * p[2] * (orderAt(fit.layout, fit.fixed, p, toModel(fit, u)) - p[3]);
+  return Math.abs(t) < 1e-6 ? 1 : (Math.sin(t) / t) ** 2;
+}
+
+/** Bright orders inside the used part of the profile whose envelope is at least 4 % of the highest there. */
+function countFringes(place: PlaceFit): number {
+  const { fit, profile } = place.band;
+  const p = fit.result.parameters;
+  const used = new Set<number>();
+  const height = new Map<number, number>();
+  for (let k = 0; k < profile.size; k++) {
+    if (!Number.isFinite(profile.sigma[k])) continue;
+    const m = orderAt(fit.layout, fit.fixed, p, toModel(fit, profile.u[k]));
+    used.add(Math.floor(4 * (m - Math.round(m)) + 2) + 8 * Math.round(m));
+    height.set(Math.round(m), Math.max(height.get(Math.round(m)) ?? 0, envelopeAt(place, profile.u[k])));
+  }
+  const top = Math.max(...height.values(), 0);
+  let count = 0;
+  for (const [m, h] of height) {
+    // A fringe counts when light is seen on both sides of its centre.
+    const seen = [0, 1, 2, 3].filter((q) => used.has(q + 8 * m)).length;
+    if (h > 0.04 * top && seen >= 2) count++;
+  }
+  return count;
+}
+
+/** Weighted regression of the profile on 1, z, E, E cos, E cos 2: second coefficient over first. */
+function secondHarmonic(place: PlaceFit): number {
+  const { fit, profile, grid } = place.band;
+  const p = fit.result.parameters;
+  const a = new Float64Array(25);
+  const b = new Float64Array(5);
+  for (let k = 0; k < profile.size; k++) {
+    if (!Number.isFinite(profile.sigma[k])) continue;
+    const e = envelopeAt(place, profile.u[k]);
+    const phase = 2 * Math.PI * orderAt(fit.layout, fit.fixed, p, toModel(fit, profile.u[k]));
+    const t = [1, profile.u[k] / grid.half, e, e * Math.cos(phase), e * Math.cos(2 * phase)];
+    for (let i = 0; i < 5; i++) {
+      b[i] += t[i] * profile.light[k];
+      for (let j = 0; j < 5; j++) a[i * 5 + j] += t[i] * t[j];
+    }
+  }
+  const x = solveSymmetric(a, b, 5);
+  return x === null || !(x[3] > 0) ? 0 : x[4] / x[3];
+}
+
+/** Throws the refusal that fits, or returns the evidence of a pattern that can be answered. */
+export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
+  const { fit } = place.band;
+  const spacing = fit.result.parameters[0] * fit.unitPx;
+  const evidence = weigh(place);
+  if (!(evidence.swingSigmas > LEAST_SWING_SIGMAS) || spread === null) throw noFringes();
+  if (spacing < FINEST_PX) {
+    throw new Refused('TOO_FINE', `The fringes are ${spacing.toFixed(1)} px apart; below ${FINEST_PX} px the camera cannot hold them. Move the camera back or use a finer pixel scale.`);
+  }
+  const one = fitOneSlit(place.band.profile, fit);
+  if (fit.result.parameters[2] > 0.8 || (one !== null && one.chiSquare < 1.15 * fit.result.chiSquare + 10)) {
+    throw new Refused('ONE_SLIT', 'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.');
+  }
+  if (evidence.harmonic > MOST_HARMONIC) {
+    throw new Refused('MANY_SLITS', 'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.');
+  }
+  const bow = Math.abs(place.tilt.bowPx) * 1.5;
+  if (bow > MOST_BOW * spacing && bow > 6 * place.tilt.uBowPx) {
+    throw new Refused('RINGS', 'The fringes are bent like rings, so this is not the pattern of two slits. Look for a second reflection, a window or dust in the beam.');
+  }
+  if (evidence.fringes < FEWEST_FRINGES) {
+    throw new Refused('TOO_FEW_FRINGES', `Only ${evidence.fringes} bright ${evidence.fringes === 1 ? 'fringe is' : 'fringes are'} in the frame; at least ${FEWEST_FRINGES} are needed. Move the camera nearer or choose a wider region.`);
+  }
+  if (!(evidence.misfit < MOST_MISFIT)) throw noFringes();
+  const u = Math.sqrt(spread.covariance[0]) / fit.result.parameters[0];
+  if (!(u < MOST_RELATIVE_U)) {
+    throw new Refused('PATTERN_CUT', 'The part of the pattern in this frame does not fix the spacing. Take a frame with more of the pattern in it.');
+  }
+  if (fit.result.status !== 'converged' && fit.result.status !== 'stalled') {
+    throw new Refused('NOT_CONVERGED', 'The fit did not settle on one pattern. Choose the region by hand or take the frame again.');
+  }
+  return evidence;
+}
+
+export function noFringes(): Refused {
+  return new Refused('NO_FRINGES', 'No two-slit fringes were found in this frame. Check that the beam meets both slits and that the camera sees the pattern, in focus and still.');
+}

@@ -1,0 +1,172 @@
+import { readFile } from 'node:fs/promises';
+import { performance } from 'node:perf_hooks';
+import type { Estimate, FrameAnswer, SetupValues, ToneChoice } from '@/lib/domain/reading-result';
+import { analyseFrame } from '@/lib/measure/analyse-frame';
+import { ENGINE_VERSION } from '@/lib/measure/engine-version';
+
+const USAGE = `Usage: npm run --silent analyse -- FILE... [--list FILE.jsonl]
+  [--scale-um-per-px N] [--separation-um N] [--width-um N] [--distance-mm N]
+  [--u-scale-um-per-px N] [--u-separation-um N] [--u-width-um N] [--u-distance-mm N]
+  [--linear | --srgb]
+One JSON line per frame. Values in a list override those of the command line.
+`;
+
+const NUMBERS = {
+  '--scale-um-per-px': 'scaleUmPerPx',
+  '--separation-um': 'separationUm',
+  '--width-um': 'widthUm',
+  '--distance-mm': 'distanceMm',
+  '--u-scale-um-per-px': 'uScaleUmPerPx',
+  '--u-separation-um': 'uSeparationUm',
+  '--u-width-um': 'uWidthUm',
+  '--u-distance-mm': 'uDistanceMm',
+} as const;
+type NumberKey = (typeof NUMBERS)[keyof typeof NUMBERS];
+type Numbers = Partial<Record<NumberKey, number>>;
+
+interface Job {
+  file: string;
+  numbers: Numbers;
+}
+
+class WrongUsage extends Error {}
+
+/** Runs the command; answers the exit code. */
+export async function main(args: string[]): Promise<number> {
+  let plan: { jobs: Job[]; tone: ToneChoice };
+  try {
+    plan = await readArguments(args);
+  } catch (error) {
+    if (!(error instanceof WrongUsage)) throw error;
+    process.stderr.write(`${error.message}\n${USAGE}`);
+    return 2;
+  }
+  for (const job of plan.jobs) {
+    const line = await analyseFile(job, plan.tone);
+    await new Promise<void>((resolve, reject) => process.stdout.write(`${JSON.stringify(line)}\n`, (e) => (e ? reject(e) : resolve())));
+  }
+  return 0;
+}
+
+async function readArguments(args: string[]): Promise<{ jobs: Job[]; tone: ToneChoice }> {
+  const files: string[] = [];
+  const lists: string[] = [];
+  const numbers: Numbers = {};
+  let tone: ToneChoice = 'auto';
+  for (let i = 0; i < args.length; i++) {
+    const arg = args[i];
+    if (arg === '--linear' || arg === '--srgb') {
+      const wish: ToneChoice = arg === '--linear' ? 'linear' : 'srgb';
+      if (tone !== 'auto' && tone !== wish) throw new WrongUsage('Choose --linear or --srgb, not both.');
+      tone = wish;
+    } else if (arg === '--list') {
+      if (i + 1 >= args.length) throw new WrongUsage('--list needs a file.');
+      lists.push(args[++i]);
+    } else if (arg in NUMBERS) {
+      numbers[NUMBERS[arg as keyof typeof NUMBERS]] = positive(arg, args[++i]);
+    } else if (arg.startsWith('--')) throw new WrongUsage(`${arg} is not known.`);
+    else files.push(arg);
+  }
+  const jobs: Job[] = files.map((file) => ({ file, numbers }));
+  for (const list of lists) jobs.push(...(await readList(list, numbers)));
+  if (jobs.length === 0 && lists.length === 0) throw new WrongUsage('Name at least one frame.');
+  return { jobs, tone };
+}
+
+function positive(name: string, text: string | undefined): number {
+  const value = Number(text);
+  if (text === undefined || text.trim() === '' || !Number.isFinite(value) || !(value > 0)) throw new WrongUsage(`${name} needs a number larger than 0.`);
+  return value;
+}
+
+async function readList(path: string, common: Numbers): Promise<Job[]> {
+  let text: string;
+  try {
+    text = await readFile(path, 'utf8');
+  } catch {
+    throw new WrongUsage(`The list ${path} cannot be read.`);
+  }
+  const jobs: Job[] = [];
+  text.split(/\r?\n/).forEach((line, index) => {
+    if (line.trim() === '') return;
+    const where = `Line ${index + 1} of ${path}`;
+    let entry: unknown;
+    try {
+      entry = JSON.parse(line);
+    } catch {
+      throw new WrongUsage(`${where} is not JSON.`);
+    }
+    if (typeof entry !== 'object' || entry === null || !('file' in entry) || typeof entry.file !== 'string') throw new WrongUsage(`${where} names no file.`);
+    const numbers: Numbers = { ...common };
+    const fields = entry as Record<string, unknown>;
+    for (const key of Object.values(NUMBERS)) {
+      const value = fields[key];
+      if (value === undefined || value === null) continue;
+      if (typeof value !== 'number' || !Number.isFinite(value) || !(value > 0)) throw new WrongUsage(`${where}: ${key} must be a number larger than 0.`);
+      numbers[key] = value;
+    }
+    jobs.push({ file: entry.file, numbers });
+  });
+  return jobs;
+}
+
+function setupOf(n: Numbers): SetupValues {
+  const pair = (value: number | undefined, u: number | undefined): Estimate | undefined => (value === undefined ? undefined : { value, u: u ?? null });
+  return {
+    scaleUmPerPx: pair(n.scaleUmPerPx, n.uScaleUmPerPx),
+    separationUm: pair(n.separationUm, n.uSeparationUm),
+    widthUm: pair(n.widthUm, n.uWidthUm),
+    distanceMm: pair(n.distanceMm, n.uDistanceMm),
+  };
+}
+
+async function analyseFile(job: Job, tone: ToneChoice): Promise<object> {
+  let bytes: Uint8Array;
+  try {
+    bytes = await readFile(job.file);
+  } catch (error) {
+    const missing = error instanceof Error && 'code' in error && error.code === 'ENOENT';
+    const message = missing ? 'There is no such file. Check the name and the folder.' : 'The file cannot be read. Check that it is a file and that it may be read.';
+    return { file: job.file, ok: false, code: missing ? 'NO_SUCH_FILE' : 'UNREADABLE_FILE', message, engine: ENGINE_VERSION, ms: { decode: 0, find: 0, profile: 0, fit: 0, total: 0 } };
+  }
+  return lineFor(job.file, await analyseFrame(bytes, setupOf(job.numbers), { tone }, () => performance.now()));
+}
+
+/** The line of one frame: the keys of the command's description first, further ones at the end. */
+export function lineFor(file: string, answer: FrameAnswer): object {
+  const ms = Object.fromEntries(Object.entries(answer.ms).map(([k, v]) => [k, Math.round(v * 1000) / 1000]));
+  if (!answer.ok) return { file, ok: false, code: answer.code, message: answer.message, engine: answer.engine, ms, fileAtFault: answer.fileAtFault, picture: answer.picture };
+  const given = <T>(key: string, value: T | null) => (value === null ? {} : { [key]: value });
+  return {
+    file,
+    ok: true,
+    code: answer.code,
+    message: answer.message,
+    spacingPx: answer.spacingPx,
+    uSpacingPx: answer.uSpacingPx,
+    dofSpacing: answer.dofSpacing,
+    tiltDeg: answer.tiltDeg,
+    visibility: answer.visibility,
+    zeroOrder: answer.zeroOrder,
+    orders: answer.orders.map(({ m, kind, xPx, yPx, uPx, pullPx }) => ({ m, kind, xPx, yPx, uPx, pullPx })),
+    region: answer.region,
+    medium: answer.medium,
+    ...given('wavelengthNm', answer.wavelengthNm),
+    ...given('wavelengthVacuumNm', answer.wavelengthVacuumNm),
+    ...given('uWavelengthNm', answer.uWavelengthNm),
+    ...given('expandedNm', answer.expandedNm),
+    ...given('k', answer.k),
+    findings: answer.findings.map(({ check, word, message }) => ({ check, word, message })),
+    engine: answer.engine,
+    ms,
+    uTiltDeg: answer.uTiltDeg,
+    uVisibility: answer.uVisibility,
+    dofWavelength: answer.dofWavelength,
+    envelopeZeroOrder: answer.envelopeZeroOrder,
+    peakShare: answer.peakShare,
+    clippedShare: answer.clippedShare,
+    chiSquareReduced: answer.chiSquareReduced,
+    picture: answer.picture,
+  };
+}
+
