@@ -4,6 +4,7 @@ import { buttonClass } from '@/components/ui/button';
 import { count } from '@/lib/client/words';
 import type { FramesQuery } from '@/lib/domain/views';
 import { DAYS_AT_REST, framesHref } from './query';
+import { sumOf } from './state-words';
 
 interface Props {
   query: FramesQuery;
@@ -40,7 +41,7 @@ export function NoFrames({ query, bench, counts, mayAdd }: Props) {
       </Empty>
     );
   }
-  const all = counts.all ?? 0;
+  const all = sumOf(counts);
   return (
     <Empty
       searched

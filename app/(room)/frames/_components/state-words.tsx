@@ -18,6 +18,11 @@ const WORDS: readonly [FramesQuery['state'], string][] = [
 /** States that pass by themselves show only while a frame is in them. */
 const PASSING: readonly string[] = ['copying', 'waiting', 'fitting'];
 
+/** All frames under the other filters. */
+export function sumOf(counts: Record<string, number>): number {
+  return Object.values(counts).reduce((sum, n) => sum + n, 0);
+}
+
 interface Props {
   query: FramesQuery;
   counts: Record<string, number>;
@@ -25,6 +30,7 @@ interface Props {
 
 /** Filter by state: words in the address, with the count each would show. */
 export function StateWords({ query, counts }: Props) {
+  const all = sumOf(counts);
   const shown = WORDS.filter(
     ([state]) => !PASSING.includes(state) || (counts[state] ?? 0) > 0 || query.state === state,
   );
@@ -39,7 +45,7 @@ export function StateWords({ query, counts }: Props) {
           scroll={false}
         >
           {word}
-          <span className="count">{counts[state === '' ? 'all' : state] ?? 0}</span>
+          <span className="count">{state === '' ? all : (counts[state] ?? 0)}</span>
         </Link>
       ))}
       <Link

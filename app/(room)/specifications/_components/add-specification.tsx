@@ -1,0 +1,144 @@
+'use client';
+
+import { useRouter } from 'next/navigation';
+import { useState } from 'react';
+import type { z } from 'zod';
+import { Disclosure } from '@/components/ui/disclosure';
+import { Field, Select } from '@/components/ui/field';
+import { FormFoot } from '@/components/ui/form-foot';
+import { parseMaybe, parseNumber, useSubmit } from '@/lib/client/use-submit';
+import type { ActionAnswer } from '@/lib/domain/errors';
+import type { specificationSchema } from '@/lib/domain/schemas';
+import type { DecisionRule, Medium } from '@/lib/domain/specification';
+
+interface Props {
+  addSpecification: (input: z.input<typeof specificationSchema>) => Promise<ActionAnswer<unknown>>;
+}
+
+const RULES: readonly [DecisionRule, string, string][] = [
+  [
+    'guard-expanded',
+    'Guard band U',
+    'Within only when the whole interval y ± U lies inside the limits. Wrongly passed: at most about 2.5 %.',
+  ],
+  [
+    'guard-one-sided',
+    'Guard band 1.645 u',
+    'Within when a wrong pass is at most 5 % likely. A narrower band than U.',
+  ],
+  ['guard-own', 'A guard band of its own', 'The width is agreed with the customer and stated here.'],
+  [
+    'simple',
+    'No guard band',
+    'Within when the value itself lies inside the limits. At a limit every second pass may be wrong.',
+  ],
+];
+
+export function AddSpecification({ addSpecification }: Props) {
+  return (
+    <Disclosure word="Add a specification…" title="Add a specification" kind="main">
+      {(close) => <SpecificationForm addSpecification={addSpecification} close={close} />}
+    </Disclosure>
+  );
+}
+
+const START = { name: '', nominal: '', lower: '', upper: '', ownGuard: '', ratio: '', half: '' };
+
+function SpecificationForm({ addSpecification, close }: Props & { close: () => void }) {
+  const router = useRouter();
+  const [text, setText] = useState(START);
+  const [medium, setMedium] = useState<Medium>('air');
+  const [rule, setRule] = useState<DecisionRule>('guard-expanded');
+  const submit = useSubmit<unknown>();
+  const field = (key: keyof typeof START, error: string) => ({
+    value: text[key],
+    error: submit.fields[error],
+    onChange: (event: React.ChangeEvent<HTMLInputElement>) => setText({ ...text, [key]: event.target.value }),
+  });
+  const oneSided = (text.lower.trim() === '') !== (text.upper.trim() === '');
+  const send = () =>
+    submit.run(
+      () =>
+        addSpecification({
+          name: text.name,
+          nominalNm: parseNumber(text.nominal),
+          medium,
+          lowerNm: parseMaybe(text.lower),
+          upperNm: parseMaybe(text.upper),
+          rule,
+          ownGuardNm: rule === 'guard-own' ? parseMaybe(text.ownGuard) : null,
+          ratio: parseMaybe(text.ratio),
+          halfToleranceNm: oneSided ? parseMaybe(text.half) : null,
+        }),
+      () => {
+        close();
+        router.refresh();
+      },
+    );
+  return (
+    <form
+      onSubmit={(event) => {
+        event.preventDefault();
+        send();
+      }}
+    >
+      <div className="form-grid">
+        <Field label="Name" required {...field('name', 'name')} />
+        <Field label="Nominal, nm" inputMode="decimal" required {...field('nominal', 'nominalNm')} />
+        <Select
+          label="Stated in"
+          value={medium}
+          onChange={(event) => setMedium(event.target.value === 'vacuum' ? 'vacuum' : 'air')}
+        >
+          <option value="air">air</option>
+          <option value="vacuum">vacuum</option>
+        </Select>
+        <Field
+          label="Lower limit, nm"
+          inputMode="decimal"
+          help="Empty when there is none."
+          {...field('lower', 'lowerNm')}
+        />
+        <Field
+          label="Upper limit, nm"
+          inputMode="decimal"
+          help="Empty when there is none."
+          {...field('upper', 'upperNm')}
+        />
+        {oneSided ? (
+          <Field
+            label="Half the tolerance, nm"
+            inputMode="decimal"
+            help="With one limit only: what U is compared with."
+            {...field('half', 'halfToleranceNm')}
+          />
+        ) : null}
+        <Select
+          label="Decision rule"
+          value={rule}
+          help={RULES.find(([key]) => key === rule)?.[2]}
+          onChange={(event) =>
+            setRule(RULES.find(([key]) => key === event.target.value)?.[0] ?? 'guard-expanded')
+          }
+        >
+          {RULES.map(([key, name]) => (
+            <option key={key} value={key}>
+              {name}
+            </option>
+          ))}
+        </Select>
+        {rule === 'guard-own' ? (
+          <Field label="Guard band, nm" inputMode="decimal" {...field('ownGuard', 'ownGuardNm')} />
+        ) : null}
+        <Field
+          label="No verdict when U is above this share of half the tolerance"
+          inputMode="decimal"
+          placeholder="usual value"
+          help="Empty takes the usual value for the rule."
+          {...field('ratio', 'ratio')}
+        />
+      </div>
+      <FormFoot word="Add it" waiting={submit.waiting} message={submit.message} onBack={close} />
+    </form>
+  );
+}
