@@ -14,7 +14,7 @@ import { ENGINE_VERSION } from './engine-version';
 import { findingsOf } from './findings';
 import { judgePlace, noFringes, type Evidence } from './judge';
 import { refuseByLight } from './light';
-import { fitPlace, type PlaceFit } from './place';
+import { fitPlace, trimPlace, type PlaceFit } from './place';
 import { wavelengthOf } from './wavelength';
 
 /** Milliseconds from any fixed moment; time is an argument so that the engine itself has no clock. */
@@ -80,7 +80,8 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
 /** The full measurement of a place that the quick look found good. */
 function measurePlace(picture: Picture, quick: PlaceFit, prior: CurvePrior | null, setup: SetupValues, options: FitOptions): Measured {
   const spacing = quick.band.fit.result.parameters[0] * quick.band.fit.unitPx;
-  const place = fitPlace(picture, quick.rect, spacing, prior, leftOutBy(options, quick), false);
+  const rect = options.region ? quick.rect : trimPlace(picture, quick);
+  const place = fitPlace(picture, rect, spacing, prior, leftOutBy(options, quick), false);
   if (place === null) throw noFringes();
   place.band = chooseTerms(place.band, { curve: !setup.distanceMm, tone: true, chirp: true });
   const spread = spreadOf(place.band);

@@ -1,6 +1,7 @@
 import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { fitBands, fitTilt, type BandFit, type LightLimits, type TiltFit } from '@/lib/fit/fit-bands';
-import { toDegrees, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
+import { leanOfBands } from '@/lib/fit/lean';
+import { coordinatesIn, pointAlong, toDegrees, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
 import type { Picture } from '@/lib/imaging/picture';
 import { straighten, type BandStack, type StraightenOptions } from '@/lib/imaging/straighten';
 
@@ -45,7 +46,7 @@ export function lightLimits(picture: Picture): LightLimits {
 /** Straightens and fits, turning the region until the fringes stand square in it. Null where nothing can be fitted. */
 export function fitPlace(picture: Picture, rect: Rectangle, spacingPx: number, prior: CurvePrior | null, leaveOut: (u: number) => boolean, quick: boolean): PlaceFit | null {
   const limits = lightLimits(picture);
-  let here = rect;
+  let here = quick ? leanIn(picture, rect, spacingPx) : rect;
   let around = spacingPx;
   let last: PlaceFit | null = null;
   for (let turn = 0; turn < STRAIGHTENINGS; turn++) {
@@ -62,4 +63,59 @@ export function fitPlace(picture: Picture, rect: Rectangle, spacingPx: number, p
     if (quick && turn === 1) break;
   }
   return last;
+}
+
+const LEANINGS = 4;
+const LEAN_ENOUGH_DEG = 0.15;
+
+/** Turns the region by the phase of its bands until the fringes stand nearly square in it. */
+function leanIn(picture: Picture, rect: Rectangle, spacingPx: number): Rectangle {
+  let here = rect;
+  for (let i = 0; i < LEANINGS; i++) {
+    const lean = leanOfBands(straighten(picture, here, gridFor(here, spacingPx, true)), spacingPx);
+    if (lean === null) return here;
+    const degrees = toDegrees(Math.atan(lean));
+    here = { ...here, angleDeg: wrapAngleDeg(here.angleDeg - degrees) };
+    if (Math.abs(degrees) < LEAN_ENOUGH_DEG) return here;
+  }
+  return here;
+}
+
+/** The region cut to the bands that carry the pattern and to the frame. */
+export function trimPlace(picture: Picture, place: PlaceFit): Rectangle {
+  const { rect, band } = place;
+  const { gain } = band.state;
+  const weight = band.shifts.shiftWeight;
+  const most = Math.max(...weight);
+  let first = gain.length;
+  let last = -1;
+  for (let b = 0; b < gain.length; b++) {
+    if (!(weight[b] > LEAST_INFORMATION * most)) continue;
+    first = Math.min(first, b);
+    last = b;
+  }
+  if (last < first) return rect;
+  const bandHeight = rect.heightPx / gain.length;
+  const v0 = -rect.heightPx / 2 + Math.max(0, first - 1) * bandHeight;
+  const v1 = -rect.heightPx / 2 + Math.min(gain.length, last + 2) * bandHeight;
+  return cutToFrame(picture, rect, v0, v1);
+}
+
+/** Bands with less than this share of the best band's information on the fringes' place are cut off at the ends. */
+const LEAST_INFORMATION = 0.002;
+
+function cutToFrame(picture: Picture, rect: Rectangle, v0: number, v1: number): Rectangle {
+  const corners = [
+    [0, 0],
+    [picture.widthPx, 0],
+    [0, picture.heightPx],
+    [picture.widthPx, picture.heightPx],
+  ].map(([x, y]) => coordinatesIn(rect, x, y));
+  const from = Math.max(-rect.lengthPx / 2, Math.min(...corners.map((k) => k.u)));
+  const to = Math.min(rect.lengthPx / 2, Math.max(...corners.map((k) => k.u)));
+  const low = Math.max(v0, Math.min(...corners.map((k) => k.v)));
+  const high = Math.min(v1, Math.max(...corners.map((k) => k.v)));
+  if (!(to > from) || !(high > low)) return rect;
+  const centre = pointAlong(rect, (from + to) / 2, (low + high) / 2);
+  return { cxPx: centre.xPx, cyPx: centre.yPx, lengthPx: to - from, heightPx: high - low, angleDeg: rect.angleDeg };
 }
