@@ -14,6 +14,7 @@ export interface BandData {
   pixels: Float64Array;
   u: Float64Array;
   varU: Float64Array;
+  dv: Float64Array;
   pixelVar: number;
   pixelFourth: number;
 }
@@ -21,6 +22,8 @@ export interface BandData {
 /** How each band differs from the common profile P: light = offset + slope z + gain P(u - shift). */
 export interface BandState {
   gain: Float64Array;
+  /** Change of the gain along the fringes, per px: cells of a band do not all have its mean v. */
+  gainSlope: Float64Array;
   offset: Float64Array;
   slope: Float64Array;
   shift: Float64Array;
@@ -34,7 +37,7 @@ export const LEFT = { used: 0, clipped: 1, floor: 2, outlier: 3, person: 4, outs
 
 export function freshState(data: BandData): BandState {
   const line = (v: number) => new Float64Array(data.bands).fill(v);
-  return { gain: line(1), offset: line(0), slope: line(0), shift: line(0), stretch: line(0), left: new Uint8Array(data.bins * data.bands), noise: null };
+  return { gain: line(1), gainSlope: line(0), offset: line(0), slope: line(0), shift: line(0), stretch: line(0), left: new Uint8Array(data.bins * data.bands), noise: null };
 }
 
 /** Where the bands' common coordinate runs: u of the first bin's lower edge and the half length, px. */
@@ -62,6 +65,12 @@ export function commonU(data: BandData, state: BandState, band: number, cell: nu
   return (data.u[cell] - state.shift[band]) / (1 + state.stretch[band]);
 }
 
+/** The gain at a cell's own place along the fringes. */
+export function gainIn(data: BandData, state: BandState, band: number, cell: number): number {
+  const g = state.gain[band];
+  return Math.max(0.05 * g, g + state.gainSlope[band] * data.dv[cell]);
+}
+
 /**
  * One profile from all bands: in each bin of the common coordinate the weighted mean of (light - offset - slope z)/gain
  * with weights pixels * gain^2 / variance(light of the fit), never of the observed light.
@@ -76,13 +85,13 @@ export function combineBands(data: BandData, state: BandState, grid: CommonGrid,
   const sv = new Float64Array(n);
   const scale = 1 / grid.pitchPx;
   for (let b = 0; b < data.bands; b++) {
-    const g = state.gain[b];
-    if (!(g > 0)) continue;
+    if (!(state.gain[b] > 0)) continue;
     for (let j = 0; j < data.bins; j++) {
       const cell = b * data.bins + j;
       const pixels = data.pixels[cell];
       if (pixels === 0 || state.left[cell] !== LEFT.used) continue;
       const u = commonU(data, state, b, cell);
+      const g = gainIn(data, state, b, cell);
       const k = Math.floor((u - grid.from) * scale);
       if (k < 0 || k >= n) continue;
       const z = u / grid.half;
@@ -187,6 +196,11 @@ export function tableFor(data: BandData, grid: CommonGrid, fit: ProfileFit): Fit
   });
 }
 
+/** A band whose gain is known to less than 8 % says nothing about the pattern. */
+const LEAST_GAIN_INFORMATION = 150;
+/** Relative scatter of a pixel assumed before the noise is known. */
+const OWN_NOISE = 0.1;
+
 export interface BandShifts {
   /** Displacement of the fringes in each band beyond what the state already undoes, px, and 1/u^2. */
   shift: Float64Array;
@@ -215,8 +229,10 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
       const cell = b * data.bins + j;
       if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used) continue;
       const u = commonU(data, state, b, cell);
-      const p = table.lightAt(u);
-      const slope = table.slopeAt(u);
+      // What the gain's slope adds within the band is put into the pattern the band is compared with.
+      const along = state.gain[b] > 0 ? gainIn(data, state, b, cell) / state.gain[b] : 1;
+      const p = along * table.lightAt(u);
+      const slope = along * table.slopeAt(u);
       const w = data.pixels[cell] / (state.noise ? varianceAt(state.noise, g * p + state.offset[b] + (state.slope[b] * u) / grid.half) : 1);
       t[0] = 1;
       t[1] = u / grid.half;
@@ -231,7 +247,8 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
     }
     for (let k = 0; k < T; k++) for (let l = 0; l < k; l++) a[k * T + l] = a[l * T + k];
     const x = solveSymmetric(a, rhs, T);
-    if (x === null || !(x[2] > 0.02)) {
+    const noisy = state.noise ? 1 : a[0] > 0 ? (OWN_NOISE * OWN_NOISE * rhs[0] * rhs[0]) / (a[0] * a[0]) : 1;
+    if (x === null || !(x[2] > 0.01) || !(informationOf(a, T, 2) * x[2] * x[2] > LEAST_GAIN_INFORMATION * noisy)) {
       state.gain[b] = 0;
       continue;
     }
@@ -278,5 +295,10 @@ function normalise(data: BandData, state: BandState): void {
   for (let b = 0; b < data.bands; b++) {
     state.offset[b] -= (state.gain[b] * go) / gg;
     state.slope[b] -= (state.gain[b] * gs) / gg;
+  }
+  for (let b = 0; b < data.bands; b++) {
+    const before = b > 0 && state.gain[b - 1] > 0 ? b - 1 : b;
+    const after = b + 1 < data.bands && state.gain[b + 1] > 0 ? b + 1 : b;
+    state.gainSlope[b] = state.gain[b] > 0 && after > before ? (state.gain[after] - state.gain[before]) / (data.bandV[after] - data.bandV[before]) : 0;
   }
 }

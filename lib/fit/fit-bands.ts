@@ -1,4 +1,4 @@
-import { combineBands, commonU, freshState, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
+import { combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
 import { fitProfile, refit, type CurvePrior, type ProfileFit } from './fit-profile';
 import { fitNoise, varianceAt } from './noise';
 import type { Profile } from './profile';
@@ -95,7 +95,7 @@ export function expectedOn(grid: CommonGrid, table: FitTable): Float64Array {
 /** What the fit expects in a cell. */
 function expectedIn(data: BandData, state: BandState, grid: CommonGrid, table: FitTable, band: number, cell: number): number {
   const u = commonU(data, state, band, cell);
-  return state.offset[band] + (state.slope[band] * u) / grid.half + state.gain[band] * table.lightAt(u);
+  return state.offset[band] + (state.slope[band] * u) / grid.half + gainIn(data, state, band, cell) * table.lightAt(u);
 }
 
 const NOISE_CELLS = 12000;

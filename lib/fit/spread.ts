@@ -1,4 +1,4 @@
-import { commonU, LEFT } from './bands';
+import { commonU, gainIn, LEFT } from './bands';
 import { expectedOn, type BandFit } from './fit-bands';
 import { AveragedModel } from './fit-profile';
 import { varianceAt } from './noise';
@@ -70,13 +70,13 @@ function bandInfluences(band: BandFit, c: Float64Array, n: number): Float64Array
   const expected = expectedOn(grid, table);
   const out: Float64Array[] = [];
   for (let b = 0; b < data.bands; b++) {
-    const g = state.gain[b];
     const score = new Float64Array(n);
-    if (!(g > 0) || state.noise === null) continue;
+    if (!(state.gain[b] > 0) || state.noise === null) continue;
     for (let j = 0; j < data.bins; j++) {
       const cell = b * data.bins + j;
       if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used) continue;
       const u = commonU(data, state, b, cell);
+      const g = gainIn(data, state, b, cell);
       const k = Math.floor((u - grid.from) / grid.pitchPx);
       if (k < 0 || k >= grid.bins) continue;
       const extra = state.offset[b] + (state.slope[b] * u) / grid.half;

@@ -19,6 +19,8 @@ export interface BandStack {
   pixels: Float64Array;
   u: Float64Array;
   varU: Float64Array;
+  /** Mean v of the cell's pixels relative to its band's. */
+  dv: Float64Array;
   /** Variance and fourth moment of a pixel's own extent along u: a square seen at the angle. */
   pixelVar: number;
   pixelFourth: number;
@@ -58,7 +60,7 @@ export function straighten(picture: Picture, rect: Rectangle, options: Straighte
   const fine = Math.ceil(Math.abs(rect.lengthPx / step)) + 2;
   const bins = Math.floor(fine / merge);
   const stack = emptyStack(rect, bins, bands, Math.abs(step) * merge);
-  const line: FineLine = { sum: new Float64Array(fine + lanes), n: new Float64Array(fine + lanes), d: new Float64Array(fine + lanes), dd: new Float64Array(fine + lanes) };
+  const line: FineLine = { sum: new Float64Array(fine + lanes), n: new Float64Array(fine + lanes), d: new Float64Array(fine + lanes), dd: new Float64Array(fine + lanes), v: new Float64Array(fine + lanes) };
   for (let b = 0; b < bands; b++) {
     const low = -rect.heightPx / 2 + (b * rect.heightPx) / bands;
     const high = low + rect.heightPx / bands;
@@ -66,14 +68,16 @@ export function straighten(picture: Picture, rect: Rectangle, options: Straighte
     line.n.fill(0);
     line.d.fill(0);
     line.dd.fill(0);
+    line.v.fill(0);
     accumulateBand(picture, scan, line, { low, high, half, lanes, first, fine, rowStep });
     for (let i = lanes; i < fine; i++) {
       line.n[i] += line.n[i - lanes];
       line.d[i] += line.d[i - lanes];
       line.dd[i] += line.dd[i - lanes];
+      line.v[i] += line.v[i - lanes];
     }
-    mergeBins(stack, b, line, { first, step, merge });
-    stack.bandV[b] = (low + high) / 2;
+    mergeBins(stack, b, line, { first, step, merge, vPerBin: scan.vp / lanes });
+    centreBand(stack, b, (low + high) / 2);
   }
   return stack;
 }
@@ -81,8 +85,10 @@ export function straighten(picture: Picture, rect: Rectangle, options: Straighte
 interface FineLine {
   sum: Float64Array;
   n: Float64Array;
+  /** Sums of the rows' offsets from the bin's centre (in bins), of their squares, and of v at the bin's index 0. */
   d: Float64Array;
   dd: Float64Array;
+  v: Float64Array;
 }
 
 function emptyStack(rect: Rectangle, bins: number, bands: number, pitchPx: number): BandStack {
@@ -99,6 +105,7 @@ function emptyStack(rect: Rectangle, bins: number, bands: number, pitchPx: numbe
     pixels: new Float64Array(cells),
     u: new Float64Array(cells),
     varU: new Float64Array(cells),
+    dv: new Float64Array(cells),
     pixelVar: 1 / 12,
     // Two boxes of widths |cos| and |sin|: fourth moments a^4/80 each and 6 times the product of the variances.
     pixelFourth: (c * c + s * s) / 80 + (6 * c * s) / 144,
@@ -179,7 +186,8 @@ function accumulateBand(picture: Picture, scan: Scan, line: FineLine, range: Ban
     p1 = Math.min(p1, p0 + Math.max(0, Math.ceil((fine - i) / lanes)));
     if (p1 <= p0) continue;
     const end = i + (p1 - p0) * lanes;
-    addRange(line, i, Math.min(end, fine + lanes - 1), offset);
+    // v at bin index 0 of this row; it grows by vp / lanes a bin.
+    addRange(line, i, Math.min(end, fine + lanes - 1), offset, vRow + p0 * scan.vp - (i * scan.vp) / lanes);
     const sum = line.sum;
     let at = q * width + p0;
     for (let j = i; j < end; j += lanes) sum[j] += light[samples[at++]];
@@ -187,23 +195,26 @@ function accumulateBand(picture: Picture, scan: Scan, line: FineLine, range: Ban
 }
 
 /** One more pixel with this offset in every lane-strided bin from `i` up to `end`. */
-function addRange(line: FineLine, i: number, end: number, offset: number): void {
+function addRange(line: FineLine, i: number, end: number, offset: number, v: number): void {
   line.n[i] += 1;
   line.d[i] += offset;
   line.dd[i] += offset * offset;
+  line.v[i] += v;
+  line.v[end] -= v;
   line.n[end] -= 1;
   line.d[end] -= offset;
   line.dd[end] -= offset * offset;
 }
 
-function mergeBins(stack: BandStack, band: number, line: FineLine, grid: { first: number; step: number; merge: number }): void {
-  const { first, step, merge } = grid;
+function mergeBins(stack: BandStack, band: number, line: FineLine, grid: { first: number; step: number; merge: number; vPerBin: number }): void {
+  const { first, step, merge, vPerBin } = grid;
   const { bins } = stack;
   for (let k = 0; k < bins; k++) {
     let n = 0;
     let s = 0;
     let m = 0;
     let mm = 0;
+    let v = 0;
     for (let j = 0; j < merge; j++) {
       const i = k * merge + j;
       const pixels = line.n[i];
@@ -212,6 +223,7 @@ function mergeBins(stack: BandStack, band: number, line: FineLine, grid: { first
       const centre = j + 0.5;
       n += pixels;
       s += line.sum[i];
+      v += line.v[i] + pixels * i * vPerBin;
       m += pixels * centre + line.d[i];
       mm += pixels * centre * centre + 2 * centre * line.d[i] + line.dd[i];
     }
@@ -220,7 +232,22 @@ function mergeBins(stack: BandStack, band: number, line: FineLine, grid: { first
     if (n === 0) continue;
     const mean = m / n;
     stack.light[cell] = s / n;
+    stack.dv[cell] = v / n;
     stack.u[cell] = (first + k * merge + mean) * step;
     stack.varU[cell] = Math.max(0, mm / n - mean * mean) * step * step;
   }
+}
+
+/** The band's mean v becomes its place; cells keep theirs relative to it. */
+function centreBand(stack: BandStack, band: number, middle: number): void {
+  const from = band * stack.bins;
+  let n = 0;
+  let v = 0;
+  for (let i = from; i < from + stack.bins; i++) {
+    n += stack.pixels[i];
+    v += stack.pixels[i] * stack.dv[i];
+  }
+  const mean = n > 0 ? v / n : middle;
+  stack.bandV[band] = mean;
+  for (let i = from; i < from + stack.bins; i++) if (stack.pixels[i] > 0) stack.dv[i] -= mean;
 }

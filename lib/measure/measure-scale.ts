@@ -16,6 +16,8 @@ import type { ScaleAnswer, ScaleKind } from '@/lib/domain/scale-result';
 const OUTLIER = 4;
 /** A further term (uneven pitch, distortion) is kept when it exceeds this many of its standard uncertainties. */
 const SIGNIFICANT = 4;
+/** Chance peaks that were taken for lines scatter by about a tenth of their pitch; those of a scale do not. */
+const LARGEST_SCATTER = 0.04;
 
 /**
  * @param pitchMm pitch of the photographed scale, mm  @param uPitchRelative relative standard uncertainty of that pitch
@@ -94,6 +96,7 @@ function fitTicks(
     ticks = kept;
     fit = solveTicks(ticks, middle, true);
   }
+  if (fit.scatter > LARGEST_SCATTER * fit.parameters[1]) throw notFound('scale with evenly spaced lines');
   const uneven = ticks.length >= 8 && Math.abs(fit.parameters[3]) > SIGNIFICANT * fit.u[3];
   if (!uneven) fit = solveTicks(ticks, middle, false);
   const lean = Math.atan(fit.parameters[2]);
@@ -173,6 +176,8 @@ function solveTicks(
 
 // ---- a grid or a chessboard ----
 
+const LATTICE_WORDS = { grid: 'square line grid', chessboard: 'chessboard' };
+
 function fromLattice(
   picture: Picture,
   plane: Parameters<typeof findLattice>[0],
@@ -184,8 +189,11 @@ function fromLattice(
     const found = findLattice(plane, kind, ...stepsOf(kind, k1, k2));
     if (found.length > points.length) points = found;
   }
-  if (points.length < 16) throw notFound(kind === 'grid' ? 'square line grid' : 'chessboard');
-  return fitMap(points, picture.widthPx, picture.heightPx);
+  if (points.length < 16) throw notFound(LATTICE_WORDS[kind]);
+  const map = fitMap(points, picture.widthPx, picture.heightPx);
+  const scatter = Math.sqrt(map.points.reduce((sum, p) => sum + p.misfitPx ** 2, 0) / map.points.length);
+  if (!(scatter <= LARGEST_SCATTER * map.pitchPx)) throw notFound(LATTICE_WORDS[kind]);
+  return map;
 }
 
 /** Pairs of waves about square to each other and of about one period, strongest first; at most six. */
