@@ -1,0 +1,83 @@
+import type { Metadata } from 'next';
+import Link from 'next/link';
+import { notFound } from 'next/navigation';
+import { GeometryDrawing } from '@/components/figures/geometry-drawing';
+import { SaidCheck } from '@/components/figures/marks';
+import { When } from '@/components/figures/when';
+import { Empty } from '@/components/states/empty';
+import { buttonClass } from '@/components/ui/button';
+import { can } from '@/lib/domain/permissions';
+import { findBench } from '@/lib/server/queries/benches';
+import { requireMe } from '@/lib/server/session';
+import { HowKnown } from '../_components/how-known';
+import { SetupList } from '../_components/setup-list';
+import { ValuesInForce } from '../_components/values-in-force';
+
+interface Props {
+  params: Promise<{ id: string }>;
+}
+
+export const metadata: Metadata = { title: 'Bench' };
+
+export default async function Bench({ params }: Props) {
+  const me = await requireMe('benches.see');
+  const id = Number((await params).id);
+  if (!Number.isInteger(id) || id < 1) notFound();
+  const bench = (await findBench(id)) ?? notFound();
+  const setup = bench.inForce;
+  const next = (setup?.number ?? 0) + 1;
+  const newSetup = can(me, 'setups.add') ? (
+    <Link className={buttonClass()} href={`/benches/${id}/new-setup`}>
+      Start setup {next}…
+    </Link>
+  ) : null;
+  return (
+    <div className="page">
+      <div className="headline">
+        <div className="l">
+          <h1>{bench.name}</h1>
+          {setup ? (
+            <span className="text-ink-2">
+              Setup {setup.number}, in force since <When at={setup.from} />
+            </span>
+          ) : null}
+          {setup ? (
+            <span className="pl-2.5">
+              <SaidCheck word={bench.fitness.word}>{bench.fitness.text}</SaidCheck>
+            </span>
+          ) : null}
+        </div>
+        <div className="acts">
+          {setup ? newSetup : null}
+          {setup && can(me, 'frames.upload') ? (
+            <Link className={buttonClass('main')} href="/intake">
+              Check with a reference
+            </Link>
+          ) : null}
+        </div>
+      </div>
+      {bench.note ? <p className="lead text-small">{bench.note}</p> : null}
+      {setup ? (
+        <>
+          <GeometryDrawing setup={setup} nm={bench.drawNm} drawnFrom={bench.drawnFrom} />
+          <div className="bench-cols">
+            <ValuesInForce setup={setup} />
+            <HowKnown setup={setup} />
+            <SetupList setups={bench.setups} />
+          </div>
+        </>
+      ) : (
+        <div className="my-4">
+          <Empty title={`${bench.name} has no setup yet`} acts={newSetup}>
+            A setup states pixel scale, slit separation, slit width and distance, each with its uncertainty
+            and certificate. Frames can be taken once it is in force.
+          </Empty>
+        </div>
+      )}
+      <p className="pb-5 text-small text-ink-2">
+        Laser light can hurt eyes. Block the beam before touching the bench; the laser safety officer and the
+        local rules have the last word.
+      </p>
+    </div>
+  );
+}

@@ -1,0 +1,51 @@
+import { Mark } from '@/components/figures/marks';
+import type { SetupView, StatedValue } from '@/lib/domain/views';
+import type { FindingWord } from '@/lib/domain/reading-result';
+import { formatCalendarDate, formatNumber, placesFor } from '@/lib/quantity/format';
+import { daysUntil, dueWord } from './due';
+import { SETUP_VALUES, valueOf } from './setup-values';
+
+function dueText(value: StatedValue, today: Date): { word: FindingWord; text: string } {
+  if (!value.due) return { word: 'clear', text: 'No due date is stated.' };
+  const days = daysUntil(value.due, today);
+  const date = formatCalendarDate(value.due);
+  if (days < 0) return { word: 'stop', text: `Overdue since ${date}: frames can be taken, not accepted.` };
+  return {
+    word: dueWord(days),
+    text: days === 0 ? 'Due today.' : `Due ${date}, in ${days} ${days === 1 ? 'day' : 'days'}.`,
+  };
+}
+
+/** What stands behind each value: certificate, the uncertainty as stated, and until when. */
+export function HowKnown({ setup }: { setup: SetupView }) {
+  const today = new Date();
+  return (
+    <section aria-labelledby="known">
+      <div className="cap">
+        <h2 id="known">How each value is known</h2>
+        <span>as stated</span>
+      </div>
+      <ul className="known">
+        {SETUP_VALUES.map(({ key, name, symbol, unit }) => {
+          const value = valueOf(setup, key);
+          const due = dueText(value, today);
+          return (
+            <li key={key}>
+              <Mark kind={`check-${due.word}`} />
+              <div>
+                <b>
+                  {name} <span className="sym">{symbol}</span>
+                </b>
+                : ± {formatNumber(value.stated, placesFor(value.stated))} {unit}, k ={' '}
+                {formatNumber(value.k, 2)}. {value.certificate || 'No certificate is named.'} {due.text}
+              </div>
+            </li>
+          );
+        })}
+      </ul>
+      <p className="mt-3 text-small text-ink-2">
+        Plate {setup.plate}. {setup.why}
+      </p>
+    </section>
+  );
+}
