@@ -40,6 +40,32 @@ export function freshState(data: BandData): BandState {
   return { gain: line(1), gainSlope: line(0), offset: line(0), slope: line(0), shift: line(0), stretch: line(0), left: new Uint8Array(data.bins * data.bands), noise: null };
 }
 
+/**
+ * Gains before there is a fit, where clipping takes different fringes from different bands: each band against the one
+ * before it on the bins both show, by the ratio of their standard deviations (which noise does not pull to one side).
+ */
+export function chainGains(data: BandData, state: BandState): void {
+  let gain = 1;
+  for (let b = 1; b < data.bands; b++) {
+    const s = { n: 0, x: 0, y: 0, xx: 0, yy: 0 };
+    for (let j = 0; j < data.bins; j++) {
+      const here = b * data.bins + j;
+      const before = here - data.bins;
+      if (data.pixels[here] === 0 || data.pixels[before] === 0 || state.left[here] !== LEFT.used || state.left[before] !== LEFT.used) continue;
+      s.n++;
+      s.x += data.light[before];
+      s.y += data.light[here];
+      s.xx += data.light[before] ** 2;
+      s.yy += data.light[here] ** 2;
+    }
+    const vx = s.xx - (s.x * s.x) / s.n;
+    const vy = s.yy - (s.y * s.y) / s.n;
+    if (s.n > 10 && vx > 0 && vy > 0) gain *= Math.sqrt(vy / vx);
+    state.gain[b] = gain;
+  }
+  normalise(data, state);
+}
+
 /** Where the bands' common coordinate runs: u of the first bin's lower edge and the half length, px. */
 export interface CommonGrid {
   from: number;

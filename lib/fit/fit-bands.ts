@@ -1,4 +1,4 @@
-import { combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
+import { chainGains, combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
 import { fitProfile, refit, type CurvePrior, type ProfileFit } from './fit-profile';
 import { fitNoise, varianceAt } from './noise';
 import type { Profile } from './profile';
@@ -40,6 +40,7 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
     if (leaveOut(data.u[cell])) state.left[cell] = LEFT.person;
     else if (data.light[cell] > NEAR_WHITE * limits.clip) state.left[cell] = LEFT.clipped;
   }
+  if (state.left.some((why) => why === LEFT.clipped)) chainGains(data, state);
   let profile = scaledFirst(combineBands(data, state, grid, null));
   if (countUsed(profile) < 12) return null;
   let fit = fitProfile(profile, aroundPx, prior);

@@ -11,7 +11,8 @@ export interface FringePatch {
   cy: number;
   /** Cells of the patch: centres, amplitude (half of the fringe's half swing), unwrapped phase in turns. */
   cells: { x: number; y: number; amplitude: number; turns: number }[];
-  cellPx: number;
+  cellWidePx: number;
+  cellHighPx: number;
   /** Sum of squared amplitudes times area: how much fringe light stands behind it. */
   energy: number;
   /** Root mean square of the phase about the best quadratic surface, turns. */
@@ -23,7 +24,9 @@ export interface FringePatch {
 interface CellMap {
   nx: number;
   ny: number;
-  size: number;
+  /** Size of a cell in px of the plane. */
+  wide: number;
+  high: number;
   re: Float64Array;
   im: Float64Array;
   /** Amplitude over its own noise. */
@@ -48,7 +51,7 @@ export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true): 
   const map = demodulateCells(plane, wave.kx * f, wave.ky * f);
   const cells = growPatch(map);
   if (cells.length < 3) return null;
-  const centre = (i: number) => ({ x: ((i % map.nx) + 0.5) * map.size * f, y: (Math.floor(i / map.nx) + 0.5) * map.size * f });
+  const centre = (i: number) => ({ x: ((i % map.nx) + 0.5) * map.wide * f, y: (Math.floor(i / map.nx) + 0.5) * map.high * f });
   const list = cells.map(({ index, turns }) => ({ ...centre(index), amplitude: Math.hypot(map.re[index], map.im[index]), turns }));
   let w = 0;
   let cx = 0;
@@ -61,13 +64,15 @@ export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true): 
   }
   cx /= w;
   cy /= w;
-  const surface = fitPhase(list, cx, cy, map.size * f);
+  const surface = fitPhase(list, cx, cy, Math.max(map.wide, map.high) * f);
   const kx = wave.kx + surface.gx;
   const ky = wave.ky + surface.gy;
   const shift = Math.hypot(surface.gx, surface.gy) / Math.hypot(wave.kx, wave.ky);
   // A wave vector that moved far was not demodulated well: once more with the better one.
   if (mayRetry && shift > 0.02 && shift < 0.6) return tracePatch(plane, { kx, ky, weight: wave.weight }, false);
   const k = Math.hypot(kx, ky);
+  const moved = k / Math.hypot(wave.kx, wave.ky);
+  if (!(moved > 0.6 && moved < 1.7)) return null;
   const ux = kx / k;
   const uy = ky / k;
   return {
@@ -76,8 +81,9 @@ export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true): 
     cx,
     cy,
     cells: list,
-    cellPx: map.size * f,
-    energy: w * (map.size * f) ** 2,
+    cellWidePx: map.wide * f,
+    cellHighPx: map.high * f,
+    energy: w * map.wide * map.high * f * f,
     roughTurns: surface.rough,
     bend: {
       across: surface.xx * ux * ux + 2 * surface.xy * ux * uy + surface.yy * uy * uy,
@@ -90,9 +96,14 @@ export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true): 
 /** Complex amplitude of the wave in cells about a period wide, smoothed over 3 x 3 cells, local mean removed. */
 function demodulateCells(plane: Plane, kx: number, ky: number): CellMap {
   const period = 1 / Math.hypot(kx, ky);
-  const size = Math.max(5, Math.round(0.9 * period));
-  const nx = Math.max(1, Math.floor(plane.widthPx / size));
-  const ny = Math.max(1, Math.floor(plane.heightPx / size));
+  // About a period long where the wave runs, and short enough across it for several cells in a flat pattern.
+  const size = Math.max(4, Math.round(0.9 * period));
+  const short = (side: number) => Math.max(2, Math.min(size, Math.floor(side / 6)));
+  const long = (side: number) => Math.max(2, Math.min(size, Math.floor(side / 3)));
+  const wide = Math.abs(kx) >= Math.abs(ky) ? long(plane.widthPx) : short(plane.widthPx);
+  const high = Math.abs(kx) >= Math.abs(ky) ? short(plane.heightPx) : long(plane.heightPx);
+  const nx = Math.floor(plane.widthPx / wide);
+  const ny = Math.floor(plane.heightPx / high);
   const cosX = new Float64Array(plane.widthPx);
   const sinX = new Float64Array(plane.widthPx);
   for (let x = 0; x < plane.widthPx; x++) {
@@ -101,10 +112,10 @@ function demodulateCells(plane: Plane, kx: number, ky: number): CellMap {
   }
   const n = nx * ny;
   const sums = { re: new Float64Array(n), im: new Float64Array(n), er: new Float64Array(n), ei: new Float64Array(n), one: new Float64Array(n), two: new Float64Array(n) };
-  for (let y = 0; y < ny * size; y++) {
+  for (let y = 0; y < ny * high; y++) {
     const cy = Math.cos(2 * Math.PI * ky * (y + 0.5));
     const sy = Math.sin(2 * Math.PI * ky * (y + 0.5));
-    const cellRow = Math.floor(y / size) * nx;
+    const cellRow = Math.floor(y / high) * nx;
     for (let i = 0; i < nx; i++) {
       let c = 0;
       let s = 0;
@@ -112,11 +123,11 @@ function demodulateCells(plane: Plane, kx: number, ky: number): CellMap {
       let es = 0;
       let one = 0;
       let two = 0;
-      const from = y * plane.widthPx + i * size;
-      for (let d = 0; d < size; d++) {
+      const from = y * plane.widthPx + i * wide;
+      for (let d = 0; d < wide; d++) {
         const v = plane.data[from + d];
-        const a = cosX[i * size + d];
-        const b = sinX[i * size + d];
+        const a = cosX[i * wide + d];
+        const b = sinX[i * wide + d];
         c += v * a;
         s += v * b;
         ec += a;
@@ -134,10 +145,10 @@ function demodulateCells(plane: Plane, kx: number, ky: number): CellMap {
       sums.two[k] += two;
     }
   }
-  return smoothCells(sums, nx, ny, size);
+  return smoothCells(sums, nx, ny, wide, high);
 }
 
-function smoothCells(sums: Record<'re' | 'im' | 'er' | 'ei' | 'one' | 'two', Float64Array>, nx: number, ny: number, size: number): CellMap {
+function smoothCells(sums: Record<'re' | 'im' | 'er' | 'ei' | 'one' | 'two', Float64Array>, nx: number, ny: number, wide: number, high: number): CellMap {
   const re = new Float64Array(nx * ny);
   const im = new Float64Array(nx * ny);
   const snr = new Float64Array(nx * ny);
@@ -161,7 +172,7 @@ function smoothCells(sums: Record<'re' | 'im' | 'er' | 'ei' | 'one' | 'two', Flo
           t.two += g * sums.two[k];
         }
       }
-      const pixels = w * size * size;
+      const pixels = w * wide * high;
       const mean = t.one / pixels;
       const i = y * nx + x;
       re[i] = (t.re - mean * t.er) / pixels;
@@ -171,7 +182,7 @@ function smoothCells(sums: Record<'re' | 'im' | 'er' | 'ei' | 'one' | 'two', Flo
       snr[i] = Math.sqrt(power / ((rest * w2) / (w * pixels)));
     }
   }
-  return { nx, ny, size, re, im, snr };
+  return { nx, ny, wide, high, re, im, snr };
 }
 
 /** Cells reached from the strongest one by small steps of phase; each keeps the whole number of turns on its way. */

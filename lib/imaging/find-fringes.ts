@@ -49,7 +49,7 @@ function placeOf(picture: Picture, patch: FringePatch, within: Rectangle | null)
   if (within) return { rect: { ...within, angleDeg }, spacingPx, patch };
   const c = Math.cos(toRadians(angleDeg));
   const s = Math.sin(toRadians(angleDeg));
-  const cell = patch.cellPx;
+  const cell = Math.abs(s) * patch.cellWidePx + Math.abs(c) * patch.cellHighPx;
   const u = patch.cells.map((k) => (k.x - patch.cx) * c + (k.y - patch.cy) * s);
   const v = patch.cells.map((k) => -(k.x - patch.cx) * s + (k.y - patch.cy) * c);
   const amplitude = patch.cells.map((k) => k.amplitude);

@@ -3,6 +3,8 @@ import type { Picture, Plane } from './picture';
 /** Pixels a plane may have so that looking for fringes stays quick. */
 const PLANE_PIXELS = 1_400_000;
 
+const SMALLEST_PLANE_PX = 64;
+
 /**
  * Linear light reduced by whole-number block averages, from the finest that stays below PLANE_PIXELS down to a
  * plane of about 64 px. Light above the white level counts as white.
@@ -13,7 +15,7 @@ export function buildPyramid(picture: Picture): Plane[] {
   const planes = [reducePicture(picture, factor)];
   for (;;) {
     const last = planes[planes.length - 1];
-    if (Math.max(last.widthPx, last.heightPx) <= 96 || Math.min(last.widthPx, last.heightPx) < 16) return planes;
+    if (Math.max(last.widthPx, last.heightPx) <= SMALLEST_PLANE_PX || Math.min(last.widthPx, last.heightPx) < 8) return planes;
     planes.push(halve(last));
   }
 }

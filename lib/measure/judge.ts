@@ -35,15 +35,14 @@ export function weigh(place: PlaceFit): Evidence {
   let swing = 0;
   let rest = 0;
   let n = 0;
-  let noise = 0;
   for (let k = 0; k < profile.size; k++) {
     if (!Number.isFinite(profile.sigma[k])) continue;
     if (!model.evaluate(p, toModel(fit, profile.u[k]), profile.node[k] / fit.unitPx, profile.nodeWeight[k], false)) continue;
+    const w = (fit.unitLight / profile.sigma[k]) ** 2;
     const r = profile.light[k] / fit.unitLight - model.light;
     const e = 0.5 * p[5] * envelopeAt(place, profile.u[k]);
-    swing += 0.5 * e * e;
-    rest += r * r;
-    noise += (profile.sigma[k] / fit.unitLight) ** 2;
+    swing += 0.5 * w * e * e;
+    rest += w * r * r;
     n++;
   }
   const c = fit.result.covariance;
@@ -52,7 +51,7 @@ export function weigh(place: PlaceFit): Evidence {
   return {
     fringes: countFringes(place),
     swingSigmas: p[5] / uSwing,
-    misfit: n > 0 && swing > 0 ? Math.sqrt(Math.max(0, rest - noise) / swing) : Infinity,
+    misfit: n > 0 && swing > 0 ? Math.sqrt(Math.max(0, rest - n) / swing) : Infinity,
     harmonic: secondHarmonic(place),
     visibility: p[4] > 0 ? p[5] / p[4] : 0,
   };
