@@ -1,6 +1,6 @@
 'use client';
 
-import { useEffect, useId, useState, type ReactNode } from 'react';
+import { useId, useState, type ReactNode } from 'react';
 
 interface Props {
   /** The word inside the field. */
@@ -29,9 +29,11 @@ export function NumberField({
   onChange,
 }: Props) {
   const shown = value.toFixed(places).replace('-', '−');
-  const [text, setText] = useState<string | null>(null);
+  // What is being typed, and the value it was typed over: a new value from elsewhere wins.
+  const [typed, setTyped] = useState<{ text: string; over: number } | null>(null);
+  const text = typed && typed.over === value ? typed.text : null;
+  const setText = (next: string | null) => setTyped(next === null ? null : { text: next, over: value });
   const id = useId();
-  useEffect(() => setText(null), [value]);
   const parsed = text === null ? value : Number(text.trim().replace('−', '-').replace(',', '.'));
   const wrong = text !== null && (text.trim() === '' || !Number.isFinite(parsed));
   const settle = () => {

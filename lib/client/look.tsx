@@ -1,6 +1,15 @@
 'use client';
 
-import { createContext, useCallback, useContext, useEffect, useMemo, useState, type ReactNode } from 'react';
+import {
+  createContext,
+  useCallback,
+  useContext,
+  useEffect,
+  useMemo,
+  useState,
+  useSyncExternalStore,
+  type ReactNode,
+} from 'react';
 import type { Theme } from './light';
 import { LOOK_COOKIE, ZONE_COOKIE } from './look-cookie';
 
@@ -27,6 +36,12 @@ function keep(name: string, value: string) {
   document.cookie = `${name}=${encodeURIComponent(value)}; path=/; max-age=${YEAR_SECONDS}; samesite=lax`;
 }
 
+const neverChanges = () => () => undefined;
+
+function ownZone(): string {
+  return Intl.DateTimeFormat().resolvedOptions().timeZone || 'UTC';
+}
+
 interface Props {
   theme: Theme;
   goggles: boolean;
@@ -38,15 +53,12 @@ interface Props {
 export function LookProvider({ theme: theme0, goggles: goggles0, timeZone: zone0, children }: Props) {
   const [theme, setThemeState] = useState(theme0);
   const [goggles, setGogglesState] = useState(goggles0);
-  const [timeZone, setTimeZone] = useState(zone0);
+  // The browser's own zone, once it runs; the first paint is the server's, which knows it from the cookie.
+  const timeZone = useSyncExternalStore(neverChanges, ownZone, () => zone0);
 
   useEffect(() => {
-    const own = Intl.DateTimeFormat().resolvedOptions().timeZone;
-    if (own && own !== zone0) {
-      keep(ZONE_COOKIE, own);
-      setTimeZone(own);
-    }
-  }, [zone0]);
+    if (timeZone !== zone0) keep(ZONE_COOKIE, timeZone);
+  }, [timeZone, zone0]);
 
   const apply = useCallback((nextTheme: Theme, nextGoggles: boolean) => {
     const root = document.documentElement;

@@ -1,6 +1,6 @@
 'use client';
 
-import { useEffect, useRef, useState } from 'react';
+import { useEffect, useState } from 'react';
 import type { FitPreview, RegionChange } from '@/lib/domain/views';
 
 export interface PreviewState {
@@ -28,39 +28,44 @@ async function ask(frameId: number, readingId: number | null, change: RegionChan
   return { fit: null, problem: typeof title === 'string' ? title : 'The fit could not be made. Try again.' };
 }
 
+/** The newest answer and the change it answers. */
+interface Answered {
+  key: string;
+  fit: FitPreview | null;
+  problem: string | null;
+}
+
+const NONE: Answered = { key: '', fit: null, problem: null };
+
+function failure(problem: unknown): Pick<Answered, 'fit' | 'problem'> {
+  const lost = problem instanceof TypeError;
+  return {
+    fit: null,
+    problem: lost
+      ? 'The service could not be reached. Your change is kept here; move it again to fit it.'
+      : 'The fit could not be made. Try again.',
+  };
+}
+
 /** Fits a change of the region without keeping it. `change` is null while nothing is changed. */
 export function usePreviewFit(
   frameId: number,
   readingId: number | null,
   change: RegionChange | null,
 ): PreviewState {
-  const [state, setState] = useState<PreviewState>(REST);
-  const asked = useRef(0);
-  const key = change ? JSON.stringify(change) : '';
+  const [answered, setAnswered] = useState<Answered>(NONE);
+  const key = change ? JSON.stringify([frameId, readingId, change]) : '';
+  if (!key && answered !== NONE) setAnswered(NONE);
 
   useEffect(() => {
-    const mine = ++asked.current;
-    if (!key) {
-      setState(REST);
-      return undefined;
-    }
+    if (!key) return undefined;
     const abort = new AbortController();
-    setState((before) => ({ ...before, working: true }));
+    const [, , wanted] = JSON.parse(key) as [number, number | null, RegionChange];
     const timer = setTimeout(() => {
-      ask(frameId, readingId, JSON.parse(key) as RegionChange, abort.signal)
+      ask(frameId, readingId, wanted, abort.signal)
+        .catch(failure)
         .then((answer) => {
-          if (mine === asked.current) setState({ working: false, ...answer });
-        })
-        .catch((problem: unknown) => {
-          if (abort.signal.aborted || mine !== asked.current) return;
-          const lost = problem instanceof TypeError;
-          setState({
-            working: false,
-            fit: null,
-            problem: lost
-              ? 'The service could not be reached. Your change is kept here; move it again to fit it.'
-              : 'The fit could not be made. Try again.',
-          });
+          if (!abort.signal.aborted) setAnswered({ key, ...answer });
         });
     }, SETTLE_MS);
     return () => {
@@ -69,5 +74,6 @@ export function usePreviewFit(
     };
   }, [key, frameId, readingId]);
 
-  return state;
+  if (!key) return REST;
+  return { working: answered.key !== key, fit: answered.fit, problem: answered.problem };
 }

@@ -1,8 +1,16 @@
 'use client';
 
-import { useEffect, useState } from 'react';
+import { useEffect, useSyncExternalStore } from 'react';
 
 const KEPT = 'single-keys';
+const CHANGED = 'single-keys-changed';
+
+function subscribe(onChange: () => void): () => void {
+  window.addEventListener(CHANGED, onChange);
+  return () => window.removeEventListener(CHANGED, onChange);
+}
+
+const isOn = () => localStorage.getItem(KEPT) !== 'off';
 
 function isTyping(target: EventTarget | null): boolean {
   return (
@@ -16,10 +24,7 @@ export function useShortcuts(keys: Record<string, () => void>): {
   on: boolean;
   setOn: (on: boolean) => void;
 } {
-  const [on, setOnState] = useState(true);
-  useEffect(() => {
-    setOnState(localStorage.getItem(KEPT) !== 'off');
-  }, []);
+  const on = useSyncExternalStore(subscribe, isOn, () => true);
   useEffect(() => {
     const press = (event: KeyboardEvent) => {
       if (event.ctrlKey || event.metaKey || event.altKey || isTyping(event.target)) return;
@@ -34,8 +39,8 @@ export function useShortcuts(keys: Record<string, () => void>): {
     return () => document.removeEventListener('keydown', press);
   });
   const setOn = (next: boolean) => {
-    setOnState(next);
     localStorage.setItem(KEPT, next ? 'on' : 'off');
+    window.dispatchEvent(new Event(CHANGED));
   };
   return { on, setOn };
 }
