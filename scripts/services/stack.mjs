@@ -24,6 +24,8 @@ export async function startServices({ data, databases = ['midfringe'], outside =
     const env = {
       NEXTAUTH_SECRET: outside.NEXTAUTH_SECRET ?? secrets.session,
       SPOOL_FOLDER: outside.SPOOL_FOLDER ?? path.join(data, 'spool'),
+      // The store's client warns of a Node version it will want next year; nothing to do about it here.
+      AWS_SDK_JS_NODE_VERSION_SUPPORT_WARNING_DISABLED: 'true',
       LOG_FILE: outside.LOG_FILE ?? path.join(data, 'logs', 'midfringe.log'),
     };
     await mkdir(env.SPOOL_FOLDER, { recursive: true, mode: 0o700 });

@@ -38,8 +38,8 @@ export async function storeReading(
 ): Promise<{ id: number; number: number }> {
   const { tables } = db();
   const { frame, result, setup, specification, options, at } = reading;
-  const [last] = await select<{ number: number }>(
-    'SELECT COALESCE(MAX(number), 0) AS number FROM readings WHERE frame_id = :frameId',
+  const [last] = await select<{ number: number | null }>(
+    'SELECT MAX(number) AS number FROM readings WHERE frame_id = :frameId',
     { frameId: frame.id },
     transaction,
   );
@@ -48,7 +48,7 @@ export async function storeReading(
   const row = await tables.readings.create(
     {
       frameId: frame.id,
-      number: last.number + 1,
+      number: (last.number ?? 0) + 1,
       replacesId: reading.replacesId,
       benchId: frame.benchId,
       setupId: frame.setupId,
