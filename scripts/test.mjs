@@ -117,7 +117,7 @@ async function test() {
     total.passed += passed;
     total.failed += failed;
   };
-  if (wanted('check')) add(runChecks(part ? pattern : ''));
+  if (wanted('check')) add(await runChecks(part ? pattern : ''));
   const plain = ['unit', 'architecture'].filter(wanted);
   if (plain.length) add(await jest(plain, pattern));
   if (wanted('integration') || wanted('e2e')) await withServices(wanted, add, pattern);
