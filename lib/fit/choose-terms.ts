@@ -1,4 +1,4 @@
-import { refitBands, type BandFit } from './fit-bands';
+import { refineBands, type BandFit } from './fit-bands';
 import { refit } from './fit-profile';
 import type { ModelTerms } from './two-slit-model';
 
@@ -25,7 +25,9 @@ export function chooseTerms(band: BandFit, allow: { curve: boolean; tone: boolea
       if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain };
     }
     if (best === null) return now;
-    now = refitBands(now, best.terms);
+    const next = refineBands(now, best.terms);
+    if (next === null) return now;
+    now = next;
   }
   return now;
 }

@@ -1,5 +1,5 @@
 import { chainGains, combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
-import { fitProfile, refit, type CurvePrior, type ProfileFit } from './fit-profile';
+import { fitProfile, rebase, refit, type CurvePrior, type ProfileFit } from './fit-profile';
 import { fitNoise, varianceAt } from './noise';
 import type { Profile } from './profile';
 import type { ModelTerms } from './two-slit-model';
@@ -21,6 +21,10 @@ export interface BandFit {
   grid: CommonGrid;
   table: FitTable;
   shifts: BandShifts;
+  limits: LightLimits;
+  leaveOut: (u: number) => boolean;
+  /** Whole orders a person moved the zero order by. */
+  zeroShift: number;
 }
 
 const ROUNDS = 3;
@@ -28,12 +32,13 @@ const OUTLIER_SIGMAS = 5;
 const NEIGHBOUR_SIGMAS = 3.5;
 /** Before there is a fit, cells this near the white level count as clipped. */
 const NEAR_WHITE = 0.94;
+const FEWEST_POINTS = 12;
 
 /**
- * Fits all bands with one pattern: profile -> fit -> bands against the fit (gain, stray light, noise, cells to leave out)
- * -> better profile, a few times over. Null when no start leads anywhere.
+ * Fits all bands with one pattern: profile -> fit -> bands against the fit (gain, stray light) -> noise and cells to leave
+ * out -> better profile, a few times over. Null when no start leads anywhere.
  */
-export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | null, limits: LightLimits, leaveOut: (u: number) => boolean): BandFit | null {
+export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | null, limits: LightLimits, leaveOut: (u: number) => boolean, zeroShift = 0): BandFit | null {
   const state = freshState(data);
   const grid = gridOf(data);
   for (let cell = 0; cell < state.left.length; cell++) {
@@ -41,32 +46,35 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
     else if (data.light[cell] > NEAR_WHITE * limits.clip) state.left[cell] = LEFT.clipped;
   }
   if (state.left.some((why) => why === LEFT.clipped)) chainGains(data, state);
-  let profile = scaledFirst(combineBands(data, state, grid, null));
-  if (countUsed(profile) < 12) return null;
-  let fit = fitProfile(profile, aroundPx, prior);
-  if (fit === null) return null;
-  let table = tableFor(data, grid, fit);
-  let shifts = regressBands(data, state, grid, table);
-  for (let round = 0; round < ROUNDS; round++) {
-    measureNoise(data, state, grid, table, limits);
-    maskCells(data, state, grid, table, limits, leaveOut);
-    profile = combineBands(data, state, grid, expectedOn(grid, table));
-    if (countUsed(profile) < 12) return null;
-    fit = refit(profile, fit, fit.layout.terms);
-    table = tableFor(data, grid, fit);
-    shifts = regressBands(data, state, grid, table);
-  }
-  return { data, fit, profile, state, grid, table, shifts };
-}
-
-/** One more round with other terms: the model earns them from the outside, see choose-terms. */
-export function refitBands(before: BandFit, terms: ModelTerms): BandFit {
-  const { data, state, grid } = before;
-  const profile = combineBands(data, state, grid, expectedOn(grid, before.table));
-  const fit = refit(profile, before.fit, terms);
+  const profile = scaledFirst(combineBands(data, state, grid, null));
+  if (countUsed(profile) < FEWEST_POINTS) return null;
+  const first = fitProfile(profile, aroundPx, prior);
+  if (first === null) return null;
+  const fit = rebase(profile, first, zeroShift);
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table);
-  return { data, fit, profile, state, grid, table, shifts };
+  let band: BandFit = { data, fit, profile, state, grid, table, shifts, limits, leaveOut, zeroShift };
+  for (let round = 0; round < ROUNDS; round++) {
+    const next = refineBands(band, band.fit.layout.terms);
+    if (next === null) return null;
+    band = next;
+  }
+  return band;
+}
+
+/** One more round: noise and masks from the bands' agreement, a new profile, the fit with these terms, the bands again. */
+export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null {
+  const { data, state, grid, limits } = before;
+  const agreed = combineBands(data, state, grid, expectedOn(grid, before.table));
+  measureNoise(before, agreed);
+  maskCells(before, agreed);
+  maskBins(before, agreed);
+  const profile = combineBands(data, state, grid, expectedOn(grid, before.table));
+  if (countUsed(profile) < FEWEST_POINTS) return null;
+  const fit = rebase(profile, refit(profile, before.fit, terms), before.zeroShift);
+  const table = tableFor(data, grid, fit);
+  const shifts = regressBands(data, state, grid, table);
+  return { ...before, fit, profile, table, shifts, limits };
 }
 
 /** Without a noise model the profile's own scatter stands in: differences of neighbours. */
@@ -93,24 +101,31 @@ export function expectedOn(grid: CommonGrid, table: FitTable): Float64Array {
   return Float64Array.from({ length: grid.bins }, (_, k) => table.lightAt(grid.from + (k + 0.5) * grid.pitchPx));
 }
 
-/** What the fit expects in a cell. */
-function expectedIn(data: BandData, state: BandState, grid: CommonGrid, table: FitTable, band: number, cell: number): number {
-  const u = commonU(data, state, band, cell);
-  return state.offset[band] + (state.slope[band] * u) / grid.half + gainIn(data, state, band, cell) * table.lightAt(u);
+/** Light the bands agree on at a cell: the profile's own, carried from its bin's mean place to the cell's. */
+function agreedIn(band: BandFit, agreed: Profile, b: number, cell: number): number {
+  const { data, state, grid, table } = band;
+  const u = commonU(data, state, b, cell);
+  const k = Math.floor((u - grid.from) / grid.pitchPx);
+  if (k < 0 || k >= grid.bins) return NaN;
+  // Where every band is left out only the fit knows.
+  const light = Number.isFinite(agreed.sigma[k]) ? agreed.light[k] + table.lightAt(u) - table.lightAt(agreed.u[k]) : table.lightAt(u);
+  return state.offset[b] + (state.slope[b] * u) / grid.half + gainIn(data, state, b, cell) * light;
 }
 
 const NOISE_CELLS = 12000;
 
-function measureNoise(data: BandData, state: BandState, grid: CommonGrid, table: FitTable, limits: LightLimits): void {
+function measureNoise(band: BandFit, agreed: Profile): void {
+  const { data, state, limits } = band;
   const step = Math.max(1, Math.floor((data.bins * data.bands) / NOISE_CELLS));
   const light: number[] = [];
   const q: number[] = [];
   // Each band spends five parameters on its bins, each bin of the profile one on its bands.
   const rest = Math.max(0.2, 1 - 5 / data.bins - 1 / Math.max(2, data.bands));
   for (let cell = 0; cell < data.light.length; cell += step) {
-    const band = Math.floor(cell / data.bins);
-    if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used || !(state.gain[band] > 0)) continue;
-    const expected = expectedIn(data, state, grid, table, band, cell);
+    const b = Math.floor(cell / data.bins);
+    if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used || !(state.gain[b] > 0)) continue;
+    const expected = agreedIn(band, agreed, b, cell);
+    if (!Number.isFinite(expected)) continue;
     const r = data.light[cell] - expected;
     light.push(expected);
     q.push((r * r * data.pixels[cell]) / rest);
@@ -118,8 +133,9 @@ function measureNoise(data: BandData, state: BandState, grid: CommonGrid, table:
   state.noise = fitNoise(Float64Array.from(light), Float64Array.from(q), limits.leastVariance);
 }
 
-/** Marks cells that are clipped, at the floor, or hold something that is not the pattern. */
-function maskCells(data: BandData, state: BandState, grid: CommonGrid, table: FitTable, limits: LightLimits, leaveOut: (u: number) => boolean): void {
+/** Marks cells that are clipped, at the floor, or differ from what the other bands show there. */
+function maskCells(band: BandFit, agreed: Profile): void {
+  const { data, state, limits, leaveOut } = band;
   const noise = state.noise;
   if (noise === null) return;
   const white = limits.clip - 4 * Math.sqrt(varianceAt(noise, limits.clip));
@@ -135,7 +151,7 @@ function maskCells(data: BandData, state: BandState, grid: CommonGrid, table: Fi
       }
       state.left[cell] = LEFT.used;
       if (!(state.gain[b] > 0)) continue;
-      const expected = expectedIn(data, state, grid, table, b, cell);
+      const expected = agreedIn(band, agreed, b, cell);
       if (expected > white) state.left[cell] = LEFT.clipped;
       else if (expected < black) state.left[cell] = LEFT.floor;
       else far[cell] = Math.abs(data.light[cell] - expected) / Math.sqrt(varianceAt(noise, expected) / data.pixels[cell]);
@@ -149,6 +165,51 @@ function maskCells(data: BandData, state: BandState, grid: CommonGrid, table: Fi
       for (let d = -1; d <= 1; d += 2) {
         for (let k = j + d; k >= 0 && k < data.bins && far[b * data.bins + k] > NEIGHBOUR_SIGMAS; k += d) state.left[b * data.bins + k] = LEFT.outlier;
       }
+    }
+  }
+}
+
+const LONGEST_RUN_FRINGES = 1.2;
+const MOST_BINS_LEFT = 0.25;
+
+/**
+ * Leaves out what all bands show in one place and the fit does not: a dead column, a pen line. Only where most of the profile
+ * follows the fit (the yardstick is the median misfit), so that a wrong model does not mask the data that speak against it.
+ */
+function maskBins(band: BandFit, agreed: Profile): void {
+  const { data, state, grid, table, fit } = band;
+  const z = new Float64Array(grid.bins);
+  const sizes: number[] = [];
+  for (let k = 0; k < grid.bins; k++) {
+    if (!Number.isFinite(agreed.sigma[k])) continue;
+    z[k] = Math.abs(agreed.light[k] - table.lightAt(agreed.u[k])) / agreed.sigma[k];
+    sizes.push(z[k]);
+  }
+  if (sizes.length === 0) return;
+  sizes.sort((a, b) => a - b);
+  const scale = Math.max(1, sizes[sizes.length >> 1] / 0.6745);
+  const longest = (LONGEST_RUN_FRINGES * fit.result.parameters[0] * fit.unitPx) / grid.pitchPx;
+  const out = new Uint8Array(grid.bins);
+  let count = 0;
+  for (let k = 0; k < grid.bins; k++) {
+    if (!(z[k] > OUTLIER_SIGMAS * scale)) continue;
+    let from = k;
+    let to = k;
+    while (from > 0 && z[from - 1] > NEIGHBOUR_SIGMAS * 0.7 * scale) from--;
+    while (to + 1 < grid.bins && z[to + 1] > NEIGHBOUR_SIGMAS * 0.7 * scale) to++;
+    if (to - from + 1 <= longest) {
+      out.fill(1, Math.max(0, from - 1), Math.min(grid.bins, to + 2));
+      count += to - from + 3;
+    }
+    k = to;
+  }
+  if (count === 0 || count > MOST_BINS_LEFT * sizes.length) return;
+  for (let b = 0; b < data.bands; b++) {
+    for (let j = 0; j < data.bins; j++) {
+      const cell = b * data.bins + j;
+      if (state.left[cell] !== LEFT.used) continue;
+      const k = Math.floor((commonU(data, state, b, cell) - grid.from) / grid.pitchPx);
+      if (k >= 0 && k < grid.bins && out[k] === 1) state.left[cell] = LEFT.outlier;
     }
   }
 }

@@ -1,7 +1,7 @@
 import { leastSquares, type LeastSquaresResult } from './least-squares';
 import type { Profile } from './profile';
 import { scanStartValues, type StartValues } from './start-values';
-import { layoutOf, ModelPoint, type ModelFixed, type ModelLayout, type ModelTerms } from './two-slit-model';
+import { layoutOf, ModelPoint, placeOfOrder, type ModelFixed, type ModelLayout, type ModelTerms } from './two-slit-model';
 
 /** Prior knowledge of the wide-angle curvature s/L, per px; u null: known exactly; absent: nothing known. */
 export interface CurvePrior {
@@ -72,6 +72,26 @@ export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms): 
   carry(layout.tone, before.layout.tone, 1);
   carry(layout.fade, before.layout.fade, 0.05);
   return run(profile, { layout, prior: before.curvePrior, originPx: before.originPx, unitPx: before.unitPx, unitLight: before.unitLight }, p);
+}
+
+/**
+ * Makes the order nearest the envelope's middle (moved by a person's whole orders) the model's order 0 and fits again: spacing
+ * is the distance of orders there, and with wide angles or perspective the numbering is not free.
+ */
+export function rebase(profile: Profile, fit: ProfileFit, zeroShift: number): ProfileFit {
+  const p = fit.result.parameters;
+  const steps = Math.round(p[3]) - zeroShift;
+  if (steps === 0 || !Number.isFinite(steps)) return fit;
+  const place = placeOfOrder(fit.layout, fit.fixed, p, steps);
+  const next = placeOfOrder(fit.layout, fit.fixed, p, steps + 0.01);
+  if (!Number.isFinite(place) || !Number.isFinite(next)) return fit;
+  const start = Float64Array.from(p);
+  start[0] = (next - place) * 100;
+  start[1] = place;
+  start[3] = p[3] - steps;
+  const { layout, curvePrior: prior, originPx, unitPx, unitLight } = fit;
+  if (layout.chirp >= 0) start[layout.chirp] = p[layout.chirp] / (1 + p[layout.chirp] * (place - p[1]));
+  return run(profile, { layout, prior, originPx, unitPx, unitLight }, start);
 }
 
 /**

@@ -18,8 +18,8 @@ const MOST_ORDERS = 800;
 export const toPx = (fit: ProfileFit, x: number) => fit.originPx + x * fit.unitPx;
 export const toModel = (fit: ProfileFit, u: number) => (u - fit.originPx) / fit.unitPx;
 
-/** All bright and dark orders between two places of the profile, numbered so that `zero` of the model becomes 0. */
-export function listOrders(fit: ProfileFit, profile: Profile, covariance: Float64Array, from: number, to: number, zero: number): OrderPlace[] {
+/** All bright and dark orders between two places of the profile. */
+export function listOrders(fit: ProfileFit, profile: Profile, covariance: Float64Array, from: number, to: number): OrderPlace[] {
   const p = fit.result.parameters;
   const first = Math.ceil(2 * orderAt(fit.layout, fit.fixed, p, toModel(fit, from)));
   const last = Math.floor(2 * orderAt(fit.layout, fit.fixed, p, toModel(fit, to)));
@@ -30,7 +30,7 @@ export function listOrders(fit: ProfileFit, profile: Profile, covariance: Float6
     if (!Number.isFinite(x)) continue;
     const u = toPx(fit, x);
     const bright = h % 2 === 0;
-    orders.push({ m: h / 2 - zero, kind: bright ? 'bright' : 'dark', u, uPx: placeUncertainty(fit, covariance, h / 2) * fit.unitPx, pullPx: pullOf(fit, profile, u, bright) });
+    orders.push({ m: h / 2, kind: bright ? 'bright' : 'dark', u, uPx: placeUncertainty(fit, covariance, h / 2) * fit.unitPx, pullPx: pullOf(fit, profile, u, bright) });
   }
   return orders;
 }

@@ -81,7 +81,7 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
 function measurePlace(picture: Picture, quick: PlaceFit, prior: CurvePrior | null, setup: SetupValues, options: FitOptions): Measured {
   const spacing = quick.band.fit.result.parameters[0] * quick.band.fit.unitPx;
   const rect = options.region ? quick.rect : trimPlace(picture, quick);
-  const place = fitPlace(picture, rect, spacing, prior, leftOutBy(options, quick), false);
+  const place = fitPlace(picture, rect, spacing, prior, leftOutBy(options, quick), false, options.zeroShift ?? 0);
   if (place === null) throw noFringes();
   place.band = chooseTerms(place.band, { curve: !setup.distanceMm, tone: true, chirp: true });
   const spread = spreadOf(place.band);
@@ -97,8 +97,7 @@ function leftOutBy(options: FitOptions, quick: PlaceFit): (u: number) => boolean
   const { fit } = quick.band;
   const p = fit.result.parameters;
   const spacing = p[0] * fit.unitPx;
-  const zero = Math.round(p[3]) - (options.zeroShift ?? 0);
-  const places = orders.map((m) => fit.originPx + (p[1] + (m + zero) * p[0]) * fit.unitPx);
+  const places = orders.map((m) => fit.originPx + (p[1] + (m - (options.zeroShift ?? 0)) * p[0]) * fit.unitPx);
   return (u) => places.some((at) => Math.abs(u - at) < 0.5 * spacing);
 }
 
@@ -118,12 +117,11 @@ function resultOf(picture: Picture, measured: Measured, setup: SetupValues, opti
   const spacingPx = p[0] * fit.unitPx;
   const uSpacingPx = Math.sqrt(spread.covariance[0]) * fit.unitPx;
   const size = fit.layout.size;
-  const zeroInModel = Math.round(p[3]) - (options.zeroShift ?? 0);
   const region: Rectangle = options.region ?? place.rect;
   const toAlong = alongIn(region, place.rect);
-  const orders = ordersOf(place, spread, region, zeroInModel, toAlong, options);
+  const orders = ordersOf(place, spread, region, toAlong, options);
   const zeroPlace = orders.find((o) => o.m === 0);
-  const zero = zeroPlace ?? pointAlong(region, toAlong(fit.originPx + (p[1] + zeroInModel * p[0]) * fit.unitPx));
+  const zero = zeroPlace ?? pointAlong(region, toAlong(fit.originPx + p[1] * fit.unitPx));
   const visibility = Math.min(1, evidence.visibility);
   const uVisibility = visibilityU(p, spread.covariance, size);
   const curves = curvesOf(place, toAlong);
@@ -175,10 +173,10 @@ function alongIn(region: Rectangle, rect: Rectangle): (u: number) => number {
   return (u) => u / turn;
 }
 
-function ordersOf(place: PlaceFit, spread: Spread, region: Rectangle, zeroInModel: number, toAlong: (u: number) => number, options: FitOptions): OrderCentre[] {
+function ordersOf(place: PlaceFit, spread: Spread, region: Rectangle, toAlong: (u: number) => number, options: FitOptions): OrderCentre[] {
   const { fit, profile, grid } = place.band;
   const left = options.leaveOut ?? [];
-  return listOrders(fit, profile, spread.covariance, grid.from, grid.from + grid.bins * grid.pitchPx, zeroInModel).map((o) => {
+  return listOrders(fit, profile, spread.covariance, grid.from, grid.from + grid.bins * grid.pitchPx).map((o) => {
     const alongPx = toAlong(o.u);
     return { m: o.m, kind: o.kind, ...pointAlong(region, alongPx), uPx: o.uPx, pullPx: o.pullPx, alongPx, used: !left.includes(o.m) };
   });

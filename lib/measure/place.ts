@@ -44,14 +44,14 @@ export function lightLimits(picture: Picture): LightLimits {
 }
 
 /** Straightens and fits, turning the region until the fringes stand square in it. Null where nothing can be fitted. */
-export function fitPlace(picture: Picture, rect: Rectangle, spacingPx: number, prior: CurvePrior | null, leaveOut: (u: number) => boolean, quick: boolean): PlaceFit | null {
+export function fitPlace(picture: Picture, rect: Rectangle, spacingPx: number, prior: CurvePrior | null, leaveOut: (u: number) => boolean, quick: boolean, zeroShift = 0): PlaceFit | null {
   const limits = lightLimits(picture);
   let here = quick ? leanIn(picture, rect, spacingPx) : rect;
   let around = spacingPx;
   let last: PlaceFit | null = null;
   for (let turn = 0; turn < STRAIGHTENINGS; turn++) {
     const stack = straighten(picture, here, gridFor(here, around, quick));
-    const band = fitBands(stack, around, prior, limits, leaveOut);
+    const band = fitBands(stack, around, prior, limits, leaveOut, zeroShift);
     if (band === null) return last;
     const tilt = fitTilt(stack, band.shifts);
     last = { rect: here, stack, band, tilt };

@@ -20,6 +20,9 @@ export interface SpacingValue {
   known: string;
 }
 
+const INDEX_FROM_NM = 301;
+const INDEX_TO_NM = 1690;
+
 const NONE: Wavelength = { airNm: null, vacuumNm: null, uNm: null, expandedNm: null, k: null, dof: null, budget: [] };
 
 /** An effect of the frame itself on the wavelength, for the budget. */
@@ -39,7 +42,8 @@ export function wavelengthOf(spacing: SpacingValue, setup: SetupValues, effects:
   const { scaleUmPerPx: scale, separationUm: separation, distanceMm: distance } = setup;
   if (!scale || !separation || !distance) return NONE;
   const airNm = wavelengthFromSpacing({ spacingPx: spacing.spacingPx, scaleUmPerPx: scale.value, separationUm: separation.value, distanceMm: distance.value });
-  const vacuumNm = vacuumFromAir(airNm, setup.air);
+  // Outside the range in which the index of air is published there is no vacuum value to state.
+  const vacuumNm = airNm > INDEX_FROM_NM && airNm < INDEX_TO_NM ? vacuumFromAir(airNm, setup.air) : null;
   const fit: BudgetInput = { key: 'fit', name: 'Fit of the spacing', symbol: 'Λ', value: spacing.spacingPx, unit: 'px', u: spacing.uSpacingPx, known: spacing.known, dof: spacing.dof, sensitivity: airNm / spacing.spacingPx };
   if (scale.u === null || separation.u === null || distance.u === null) return { ...NONE, airNm, vacuumNm };
   const rows: BudgetInput[] = [
