@@ -1,6 +1,6 @@
 import { chainGains, combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
 import { fitProfile, rebase, refit, type CurvePrior, type ProfileFit } from './fit-profile';
-import { fitNoise, varianceAt } from './noise';
+import { fitNoise, varianceAt, type Noise } from './noise';
 import type { Profile } from './profile';
 import type { ModelTerms } from './two-slit-model';
 import { weightedLine } from './small-matrix';
@@ -138,8 +138,7 @@ function maskCells(band: BandFit, agreed: Profile): void {
   const { data, state, limits, leaveOut } = band;
   const noise = state.noise;
   if (noise === null) return;
-  const white = limits.clip - 4 * Math.sqrt(varianceAt(noise, limits.clip));
-  const black = limits.floor + 4 * Math.sqrt(varianceAt(noise, Math.max(0, limits.floor)));
+  const black = limits.floor + 4 * Math.sqrt(varianceAt({ ...noise, grain: 0 }, Math.max(0, limits.floor)));
   const far = new Float32Array(data.light.length);
   for (let b = 0; b < data.bands; b++) {
     for (let j = 0; j < data.bins; j++) {
@@ -152,7 +151,7 @@ function maskCells(band: BandFit, agreed: Profile): void {
       state.left[cell] = LEFT.used;
       if (!(state.gain[b] > 0)) continue;
       const expected = agreedIn(band, agreed, b, cell);
-      if (expected > white) state.left[cell] = LEFT.clipped;
+      if (reachesWhite(noise, expected, limits.clip)) state.left[cell] = LEFT.clipped;
       else if (expected < black) state.left[cell] = LEFT.floor;
       else far[cell] = Math.abs(data.light[cell] - expected) / Math.sqrt(varianceAt(noise, expected) / data.pixels[cell]);
     }
@@ -167,6 +166,16 @@ function maskCells(band: BandFit, agreed: Profile): void {
       }
     }
   }
+}
+
+/**
+ * Would some pixels of this mean be clipped? Four standard deviations of the camera's noise; two of grain, whose own
+ * scatter is so much larger that what is cut off does not matter beside it.
+ */
+function reachesWhite(noise: Noise, light: number, clip: number): boolean {
+  if (!Number.isFinite(clip)) return false;
+  const camera = 4 * Math.sqrt(varianceAt({ ...noise, grain: 0 }, light));
+  return light + camera + 2 * Math.sqrt(noise.grain) * Math.max(0, light) > clip;
 }
 
 const LONGEST_RUN_FRINGES = 1.2;

@@ -151,10 +151,13 @@ function tilePeaks(power: Float32Array, plane: Plane): WaveCandidate[] {
     let e = 0;
     let mx = 0;
     let my = 0;
-    for (let dx = -1; dx <= 1; dx++) {
-      for (let dy = -1; dy <= 1; dy++) {
+    // A tile with few rows or columns smears its peak over that many bins.
+    const rx = Math.max(1, Math.round((0.6 * N) / Math.min(N, plane.widthPx)));
+    const ry = Math.max(1, Math.round((0.6 * N) / Math.min(N, plane.heightPx)));
+    for (let dx = -rx; dx <= rx; dx++) {
+      for (let dy = -ry; dy <= ry; dy++) {
         const kx = bx + dx;
-        if (kx < 0 || kx > N / 2) continue;
+        if (kx < 0 || kx > N / 2 || Math.abs(by + dy) >= N / 2) continue;
         const p = at(kx, by + dy);
         e += p;
         mx += p * kx;
