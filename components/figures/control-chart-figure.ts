@@ -94,6 +94,8 @@ function traces(view: OverTimeView, c: ChartColours): Dict[] {
       text: view.points.map((p) => `${p.label}<br>${formatNumber(p.valueNm, 3)} nm, setup ${p.setupNumber}`),
       hovertemplate: '%{text}<extra></extra>',
       marker: {
+        // With sizes of their own the library would make the points see-through.
+        opacity: 1,
         symbol: out.map((o) => (o ? 'circle-open' : 'circle')),
         size: out.map((o) => (o ? 13 : 7.5)),
         color: c.ink,
@@ -242,14 +244,36 @@ function say(x: number, y: number, said: Said, more: Dict): Dict {
   };
 }
 
+/** The names of what changed, without the values: "distance, plate". */
+function changedNames(change: string): string {
+  return change
+    .split(', ')
+    .map((part) => part.replace(/\s\S*\d.*$/, ''))
+    .join(', ');
+}
+
+/** As much of setup, date and change as the stretch has room for. */
+function seamText(s: ChartStretch, i: number, c: ChartColours, timeZone: string, roomPx: number): string {
+  const day = formatDay(s.from, timeZone).replace(/ \d{4}$/, '');
+  const name = `<span style="color:${c.ink}"><b>Setup ${s.setupNumber}</b></span>`;
+  const what = i && s.change ? `, ${changedNames(s.change)}` : '';
+  const longest: [string, number][] = [
+    [`${name}  ${i ? '' : 'since '}${day}${what}`, 10 + (i ? 0 : 6) + day.length + what.length],
+    [`${name}  ${day}`, 10 + day.length],
+    [name, 8],
+  ];
+  const letters = (roomPx - 16) / (c.notePx * 0.54);
+  return (
+    longest.find(([, length]) => length <= letters)?.[0] ??
+    `<span style="color:${c.ink}"><b>${s.setupNumber}</b></span>`
+  );
+}
+
 /** Setup, date and what changed at each seam; the limits where they begin. */
 function stretchTexts(s: ChartStretch, i: number, c: ChartColours, timeZone: string, roomPx: number): Dict[] {
   const x = s.first + 0.5;
   const left: Dict = { xanchor: 'left', align: 'left' };
-  const full = `<b>Setup ${s.setupNumber}</b>  ${i ? formatDay(s.from, timeZone) : `since ${formatDay(s.from, timeZone)}`}${s.change && i ? `, ${s.change}` : ''}`;
-  const fits = Math.max(0, Math.floor(roomPx / (c.notePx * 0.52)) - 2);
-  const short =
-    fits < 24 ? `<b>${s.setupNumber}</b>` : full.length - 7 > fits ? `${full.slice(0, fits + 6)}…` : full;
+  const short = seamText(s, i, c, timeZone, roomPx);
   const limit = (axis: 'y' | 'y2', word: string, at: number | null, above: boolean): Dict[] =>
     at === null || roomPx < 76
       ? []
@@ -293,13 +317,21 @@ function texts(
     say(
       0,
       1,
-      { text: `<b>Wavelength</b>  nm (${medium}), one run a point`, size: c.axisPx, color: c.ink2 },
+      {
+        text: `<span style="color:${c.ink}"><b>Wavelength</b></span>  nm (${medium}), one run a point`,
+        size: c.axisPx,
+        color: c.ink2,
+      },
       { xref: 'paper', yref: 'paper', xanchor: 'left', yanchor: 'bottom', xshift: -58, yshift: 12 },
     ),
     say(
       0,
       RANGE_DOMAIN[1],
-      { text: '<b>Moving range</b>  nm, from run to run', size: c.axisPx, color: c.ink2 },
+      {
+        text: `<span style="color:${c.ink}"><b>Moving range</b></span>  nm, from run to run`,
+        size: c.axisPx,
+        color: c.ink2,
+      },
       { xref: 'paper', yref: 'paper', xanchor: 'left', yanchor: 'bottom', xshift: -58, yshift: 16 },
     ),
     ...(last
@@ -387,7 +419,7 @@ export function controlChartFigure(
   const top = rangeTop(view);
   const margin = {
     l: 58 + (c.axisPx > 13 ? 10 : 0),
-    r: width < 560 ? 24 : 104 + (c.axisPx > 13 ? 26 : 0),
+    r: width < 560 ? 24 : 128 + (c.axisPx > 13 ? 26 : 0),
     t: 34,
     b: 40,
   };

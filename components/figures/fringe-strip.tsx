@@ -3,7 +3,7 @@
 import { useEffect, useRef } from 'react';
 import { encode, lightRgb, STRIP_EXPONENT, type Rgb } from '@/lib/client/light';
 import { useLook } from '@/lib/client/look';
-import type { Strip } from '@/lib/domain/reading-result';
+import { stripEndsMm, type StripPlace } from './strip-scale';
 
 /** One pixel per sample, one high: the browser stretches it, so no size has to be measured. */
 function paint(canvas: HTMLCanvasElement, light: readonly number[], colour: Rgb) {
@@ -38,25 +38,6 @@ export function LightBand({ light, nm, label, style }: LightProps) {
     if (canvas.current) paint(canvas.current, light, lightRgb(nm, goggles));
   }, [light, nm, goggles]);
   return <canvas ref={canvas} role="img" aria-label={label} style={style} />;
-}
-
-export interface StripPlace {
-  strip: Strip;
-  /** Where the zero order lies on the strip's axis, px. */
-  zeroAlongPx: number;
-  scaleUmPerPx: number;
-}
-
-/** Ends of a strip in mm about the zero order. */
-export function stripEndsMm({ strip, zeroAlongPx, scaleUmPerPx }: StripPlace): [number, number] {
-  const mm = (px: number) => ((px - zeroAlongPx) * scaleUmPerPx) / 1000;
-  return [mm(strip.fromPx), mm(strip.fromPx + strip.stepPx * strip.light.length)];
-}
-
-/** Width of the one scale of a list in mm: twice the longest side of any strip, rounded up to a whole even number. */
-export function spanForMm(places: readonly StripPlace[]): number {
-  const longest = Math.max(0, ...places.flatMap((p) => stripEndsMm(p).map(Math.abs)));
-  return longest > 0 ? 2 * Math.ceil(longest) : 60;
 }
 
 interface Props extends StripPlace {

@@ -1,5 +1,5 @@
 import Link from 'next/link';
-import { spanForMm } from '@/components/figures/fringe-strip';
+import { spanForMm } from '@/components/figures/strip-scale';
 import { Mark, SaidVerdict, stateOf } from '@/components/figures/marks';
 import { Quantity } from '@/components/figures/quantity';
 import { ToleranceWhisker } from '@/components/figures/tolerance-whisker';

@@ -23,7 +23,7 @@ export function MmScale({ spanMm }: { spanMm: number }) {
           </g>
         );
       })}
-      <text x="-14" y="25" textAnchor="end">
+      <text x="-14" y="25" textAnchor="end" className="mm-word">
         mm
       </text>
     </svg>

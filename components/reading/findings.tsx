@@ -55,6 +55,7 @@ function ElseWhere({ finding }: { finding: Finding }) {
 export function ClearFindings({ findings }: { findings: readonly Finding[] }) {
   const [open, setOpen] = useState(false);
   const clear = findings.filter((f) => f.word === 'clear');
+  if (!findings.length) return <p className="text-small text-ink-2">This reading carries no checks.</p>;
   if (!clear.length) return null;
   return (
     <div className="rest">

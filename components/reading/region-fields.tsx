@@ -62,6 +62,7 @@ export function RegionFields({ region, onChange, onKeys }: Props) {
             heard={field.heard}
             unit={field.unit}
             places={field.places}
+            fixed={field.key === 'angleDeg'}
             value={region[field.key]}
             chosen={chosen === field.key}
             disabled={!onChange}

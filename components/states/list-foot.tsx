@@ -16,7 +16,7 @@ export function ListFoot({ page, pages, total, perPage, href }: Props) {
   const first = (page - 1) * perPage + 1;
   const last = Math.min(total, page * perPage);
   return (
-    <div className="foot">
+    <div className="list-foot">
       <span className="text-small text-ink-2">
         {total === 0
           ? ''

@@ -7,6 +7,9 @@ interface Bench {
   visibility: number;
 }
 
+/** Stray light that keeps the dark orders of a picture from going black. */
+const STRAY = 0.004;
+
 function sinc2(t: number): number {
   return Math.abs(t) < 1e-9 ? 1 : (Math.sin(t) / t) ** 2;
 }
@@ -20,6 +23,6 @@ export function twoSlitLight(bench: Bench, spanMm: number, samples: number): num
   return Array.from({ length: samples }, (_, i) => {
     const mm = ((i + 0.5) / samples - 0.5) * spanMm;
     const k = (Math.PI * mm) / Math.hypot(mm, distanceMm) / (wavelengthNm * 1e-3);
-    return (sinc2(widthUm * k) * (1 + visibility * Math.cos(2 * separationUm * k))) / 2;
+    return (sinc2(widthUm * k) * (1 + visibility * Math.cos(2 * separationUm * k))) / 2 + STRAY;
   });
 }

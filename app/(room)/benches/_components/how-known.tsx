@@ -1,7 +1,7 @@
 import { Mark } from '@/components/figures/marks';
 import type { SetupView, StatedValue } from '@/lib/domain/views';
 import type { FindingWord } from '@/lib/domain/reading-result';
-import { formatCalendarDate, formatNumber, placesFor } from '@/lib/quantity/format';
+import { formatCalendarDate, formatNumber, groupThousands, placesFor } from '@/lib/quantity/format';
 import { daysUntil, dueWord } from './due';
 import { SETUP_VALUES, valueOf } from './setup-values';
 
@@ -14,6 +14,12 @@ function dueText(value: StatedValue, today: Date): { word: FindingWord; text: st
     word: dueWord(days),
     text: days === 0 ? 'Due today.' : `Due ${date}, in ${days} ${days === 1 ? 'day' : 'days'}.`,
   };
+}
+
+function sentence(certificate: string): string {
+  const text = certificate.trim();
+  if (!text) return 'No certificate is named.';
+  return /[.!?]$/.test(text) ? text : `${text}.`;
 }
 
 /** What stands behind each value: certificate, the uncertainty as stated, and until when. */
@@ -36,8 +42,8 @@ export function HowKnown({ setup }: { setup: SetupView }) {
                 <b>
                   {name} <span className="sym">{symbol}</span>
                 </b>
-                : ± {formatNumber(value.stated, placesFor(value.stated))} {unit}, k ={' '}
-                {formatNumber(value.k, 2)}. {value.certificate || 'No certificate is named.'} {due.text}
+                : ± {formatNumber(value.stated, placesFor(value.stated))} {unit},
+                {groupThousands(String(value.k))}. {sentence(value.certificate)} {due.text}
               </div>
             </li>
           );

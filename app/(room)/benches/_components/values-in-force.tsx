@@ -57,7 +57,7 @@ export function ValuesInForce({ setup }: { setup: SetupView }) {
             </td>
           </tr>
           <tr>
-            <td>Tone of the camera</td>
+            <td>Camera’s tone</td>
             <td className="num">{TONE_WORDS[setup.tone]}</td>
             <td className="due" />
           </tr>

@@ -23,7 +23,7 @@ export function FindForm({ query }: { query: FramesQuery }) {
           key={query.find}
         />
       </div>
-      <div className="w-[150px] max-[1240px]:w-[140px]">
+      <div className="w-[160px]">
         <Select
           label="Time"
           labelHidden

@@ -4,7 +4,7 @@ import { useRouter } from 'next/navigation';
 import { useState, useTransition } from 'react';
 import { benchLines, fitnessMark, type ChooseBench } from '@/components/bar/bench-picker';
 import { Mark } from '@/components/figures/marks';
-import { spanForMm } from '@/components/figures/fringe-strip';
+import { spanForMm } from '@/components/figures/strip-scale';
 import type { SendToReview } from '@/components/reading/actions';
 import { Button } from '@/components/ui/button';
 import { Choice } from '@/components/ui/choice';

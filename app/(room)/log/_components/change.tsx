@@ -5,12 +5,22 @@ type Flat = [string, string][];
 const plain = (value: unknown): string => {
   if (value === null || value === undefined) return 'none';
   if (typeof value === 'boolean') return value ? 'yes' : 'no';
-  if (typeof value === 'number') return String(Number(value.toPrecision(9)));
+  if (typeof value === 'number') return String(Number(value.toPrecision(7))).replace('-', '−');
   return String(value);
 };
 
-/** "centreXPx" or "person_id" as "centre x px", "person id". */
+const NAMES: Record<string, string> = {
+  cxPx: 'centre x, px',
+  cyPx: 'centre y, px',
+  lengthPx: 'length, px',
+  heightPx: 'height, px',
+  angleDeg: 'tilt, degrees',
+  sha256: 'SHA-256',
+};
+
+/** "fromReading" or "person_id" as "from reading", "person id". */
 function nameOf(key: string): string {
+  if (NAMES[key]) return NAMES[key];
   return key
     .replace(/([a-z0-9])([A-Z])/g, '$1 $2')
     .replace(/_/g, ' ')
@@ -29,7 +39,7 @@ function flatten(value: unknown, prefix = ''): Flat {
   }
   if (value !== null && typeof value === 'object') {
     return Object.entries(value).flatMap(([key, inner]) =>
-      flatten(inner, prefix ? `${prefix}, ${nameOf(key)}` : nameOf(key)),
+      flatten(inner, prefix ? `${prefix}: ${nameOf(key)}` : nameOf(key)),
     );
   }
   return value === null || value === undefined ? [] : [[prefix || 'value', plain(value)]];

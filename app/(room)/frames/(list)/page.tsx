@@ -10,10 +10,10 @@ import type { FrameRow, Me } from '@/lib/domain/views';
 import { listBenchChoices } from '@/lib/server/queries/benches';
 import { listFrames } from '@/lib/server/queries/frames';
 import { benchInUse, requireMe } from '@/lib/server/session';
-import { FindForm } from './_components/find-form';
-import { framesHref, readFramesQuery } from './_components/query';
-import { StateWords } from './_components/state-words';
-import { NoFrames } from './_components/no-frames';
+import { FindForm } from '../_components/find-form';
+import { framesHref, readFramesQuery } from '../_components/query';
+import { StateWords } from '../_components/state-words';
+import { NoFrames } from '../_components/no-frames';
 
 export const metadata: Metadata = { title: 'Frames' };
 

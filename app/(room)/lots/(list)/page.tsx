@@ -13,8 +13,8 @@ import { can } from '@/lib/domain/permissions';
 import type { LotRow } from '@/lib/domain/views';
 import { listLots, listSpecifications } from '@/lib/server/queries/lots';
 import { requireMe } from '@/lib/server/session';
-import { openLot } from './actions';
-import { OpenLot } from './_components/open-lot';
+import { openLot } from '../actions';
+import { OpenLot } from '../_components/open-lot';
 
 export const metadata: Metadata = { title: 'Lots' };
 
