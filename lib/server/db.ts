@@ -24,6 +24,7 @@ export function db(): Database {
         bigIntAsNumber: true,
         insertIdAsNumber: true,
         logParam: false,
+        connectTimeout: 10_000,
         charset: 'utf8mb4',
       },
     });
