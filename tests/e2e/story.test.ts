@@ -1,0 +1,434 @@
+import type { Browser } from 'playwright-core';
+import { Desk, fixture, openBrowser, PASSWORD, SITE } from './support/browser';
+
+/**
+ * The main job from an empty installation, through all four roles in a real browser: set up, take, review, chart.
+ * The frames are the simulated ones of fixtures/frames with a true wavelength of 635 nm; people are invented.
+ */
+jest.setTimeout(120_000);
+
+const EMAIL = {
+  admin: 'admin@story.example',
+  technician: 'technician@story.example',
+  reviewer: 'reviewer@story.example',
+  both: 'both@story.example',
+  qa: 'qa@story.example',
+};
+const TRUE_NM = 635;
+
+describe('the main job', () => {
+  let browser: Browser;
+  let admin: Desk;
+  let technician: Desk;
+  let reviewer: Desk;
+  let both: Desk;
+  let qa: Desk;
+
+  beforeAll(async () => {
+    browser = await openBrowser();
+    [admin, technician, reviewer, both, qa] = await Promise.all(
+      Array.from({ length: 5 }, () => Desk.open(browser)),
+    );
+  });
+  afterAll(() => browser?.close());
+  afterEach(() => [admin, technician, reviewer, both, qa].forEach((desk) => desk?.expectQuiet()));
+
+  test('the first visit makes the first admin', async () => {
+    const { page } = admin;
+    await page.goto('/');
+    await page.waitForURL('**/first-admin');
+    await admin.expectAccessible();
+    await page.getByLabel('Your name').fill('Admin A');
+    await page.getByLabel('E-mail').fill(EMAIL.admin);
+    await page.getByLabel('New password').fill(PASSWORD);
+    await page.getByLabel('The same again').fill(PASSWORD);
+    await page.getByRole('button', { name: 'Start' }).click();
+    await page.waitForURL('**/benches');
+    // The door is shut afterwards.
+    const outsider = await Desk.open(browser);
+    await outsider.page.goto('/first-admin');
+    expect(new URL(outsider.page.url()).pathname).toBe('/sign-in');
+    await outsider.close();
+  });
+
+  test('the admin enters people, a bench with its setup, a specification, a lot with units, a source', async () => {
+    const { page } = admin;
+    await page.goto('/people');
+    const people: [string, string, string[]][] = [
+      ['Technician T', EMAIL.technician, ['Technician']],
+      ['Reviewer R', EMAIL.reviewer, ['Reviewer']],
+      ['Both B', EMAIL.both, ['Technician', 'Reviewer']],
+      ['QA Q', EMAIL.qa, ['QA']],
+    ];
+    for (const [name, email, roles] of people) {
+      await page.getByRole('button', { name: 'Add a person…' }).click();
+      await page.getByLabel('Name').fill(name);
+      await page.getByLabel('E-mail').fill(email);
+      await page.getByLabel('First password').fill(PASSWORD);
+      for (const role of ['Technician', 'Reviewer', 'QA', 'Admin'])
+        await page.getByRole('checkbox', { name: role, exact: true }).setChecked(roles.includes(role));
+      await page.getByRole('button', { name: 'Add the person' }).click();
+      await page.getByText(email).waitFor();
+    }
+    await admin.expectAccessible();
+
+    await page.goto('/benches');
+    await page.getByRole('button', { name: 'Add a bench…' }).click();
+    await page.getByLabel('Name').fill('Bench 7');
+    await page.getByRole('button', { name: 'Add it, then enter its first setup' }).click();
+    await page.waitForURL('**/new-setup');
+    await page.getByLabel('Slit plate').fill('P-7');
+    const values: [RegExp, string, string][] = [
+      [/^Pixel scale/, '25.4', '0.005'],
+      [/^Slit separation/, '250', '0.2'],
+      [/^Slit width/, '50', '0.8'],
+      [/^Distance/, '500', '0.34'],
+    ];
+    for (const [name, value, stated] of values) {
+      const block = page.getByRole('group', { name });
+      await block.getByLabel(name).fill(value);
+      await block.getByLabel('± as stated').fill(stated);
+      await block.getByLabel('at k =').fill('2');
+      await block.getByLabel('Certificate').fill('Invented certificate');
+    }
+    await page.getByLabel('Why a new setup').fill('First setup.');
+    await admin.expectAccessible();
+    await page.getByRole('button', { name: /setup 1/i }).click();
+    await page.waitForURL(/\/benches\/\d+$/);
+    await page.getByRole('heading', { name: 'Bench 7' }).waitFor();
+    await admin.expectAccessible();
+
+    await page.goto('/specifications');
+    await page.getByRole('button', { name: /^Add a specification/ }).click();
+    await page.getByLabel('Name', { exact: true }).fill('Red 635 ± 5');
+    await page.getByLabel('Nominal, nm').fill('635');
+    await page.getByLabel('Lower limit, nm').fill('630');
+    await page.getByLabel('Upper limit, nm').fill('640');
+    await page.getByRole('button', { name: /^Add the specification|^Add it/ }).click();
+    await page.getByText('Red 635 ± 5').first().waitFor();
+
+    await page.goto('/sources');
+    await page.getByRole('button', { name: /^Add a (reference )?source/ }).click();
+    await page.getByLabel('Name', { exact: true }).fill('Reference S-1');
+    await page.getByLabel('Wavelength in vacuum, nm').fill('635.1725');
+    await page.getByLabel(/^Standard uncertainty/).fill('0.001');
+    await page.getByLabel('Where the value comes from').fill('Invented source.');
+    await page.getByRole('button', { name: /^Add the source|^Add it/ }).click();
+    await page.getByText('Reference S-1').first().waitFor();
+
+    await page.goto('/lots');
+    await page.getByRole('button', { name: 'Open a lot…' }).click();
+    await page.getByLabel('Number', { exact: true }).fill('0001');
+    await page.getByRole('button', { name: 'Open the lot' }).click();
+    await page.waitForURL(/\/lots\/\d+$/);
+    await page.getByRole('button', { name: 'Add units…' }).click();
+    await page.getByLabel('Serials').fill('serial;note\nU-101;x\nU-102;y\nU-103\nU-104\nU-105\nU-106');
+    await page.getByRole('button', { name: 'Add 6 units' }).click();
+    await page.getByText('6 units added').waitFor();
+    await admin.expectAccessible();
+  });
+
+  test('the technician takes frames; each says what became of it without a reload', async () => {
+    const { page } = technician;
+    await technician.signIn(EMAIL.technician);
+    await page.waitForURL('**/intake');
+    await page
+      .getByRole('button', { name: /Bench 7/ })
+      .last()
+      .click();
+    const input = page.locator('input[type=file][multiple]').first();
+    await input.setInputFiles([
+      await fixture('frames/clean.tif', 'b7-0001-U-101-1.tif'),
+      await fixture('frames/tilted.tif', 'b7-0001-U-102-1.tif'),
+      await fixture('frames/photo-turned.jpg', 'b7-0001-U-103-1.jpg'),
+      await fixture('frames/one-slit.tif', 'b7-0001-U-104-1.tif'),
+      await fixture('hostile/truncated.png', 'b7-0001-U-105-1.png'),
+      await fixture('hostile/not-a-picture.png', 'b7-0001-U-106-1.png'),
+      await fixture('frames/clean.png', 'nameless.png'),
+    ]);
+    const row = (name: string) => page.getByRole('listitem').filter({ hasText: name });
+    for (const name of ['U-101-1.tif', 'U-102-1.tif', 'U-103-1.jpg'])
+      await row(name).getByText('Fitted', { exact: true }).waitFor({ timeout: 60_000 });
+    await row('U-104-1.tif').getByText('Refused', { exact: true }).waitFor();
+    await row('U-105-1.png').getByText('Unreadable', { exact: true }).waitFor();
+    await row('U-106-1.png').getByText('Not copied', { exact: true }).waitFor();
+    await row('U-106-1.png')
+      .getByText(/PNG|picture/)
+      .first()
+      .waitFor();
+    await row('nameless.png')
+      .getByText(/No unit of lot 0001/)
+      .waitFor();
+    await row('nameless.png').getByLabel('Serial of the unit').fill('U-106');
+    await row('nameless.png').getByRole('button', { name: 'Send again' }).click();
+    await row('nameless.png').getByText('Fitted', { exact: true }).waitFor({ timeout: 60_000 });
+    await technician.expectAccessible();
+
+    // The same file again is recognised and stored once.
+    await input.setInputFiles([await fixture('frames/clean.tif', 'b7-0001-U-101-1.tif')]);
+    await page.getByText('The same file was here already').waitFor();
+    expect(await row('U-101-1.tif').count()).toBe(1);
+
+    // Clear ones go with one press; a look asks for a note.
+    for (let n = await page.getByRole('button', { name: 'Send as is…' }).count(); n > 0; n -= 1) {
+      await page.getByRole('button', { name: 'Send as is…' }).first().click();
+      await page.getByRole('textbox', { name: /note/i }).last().fill('Seen on the bench.');
+      await page
+        .getByRole('button', { name: /^Send( it)?( to review)?$/ })
+        .last()
+        .click();
+      await page.waitForTimeout(300);
+    }
+    const send = page.getByRole('button', { name: /^Send [1-9]\d* to review/ });
+    if (await send.count()) await send.click();
+    await page
+      .getByText(/sent to review/)
+      .first()
+      .waitFor();
+  });
+
+  test('frames are listed, filtered by state and found by serial; the address keeps it', async () => {
+    const { page } = technician;
+    await page.goto('/frames?state=refused&days=0');
+    await page.getByText('U-104').first().waitFor();
+    expect(await page.getByText('U-101').count()).toBe(0);
+    await page.goto('/frames?find=U-102&days=0');
+    await page.getByText('U-102').first().waitFor();
+    expect(await page.getByText('U-104').count()).toBe(0);
+    await technician.expectAccessible();
+  });
+
+  test('the reviewer sees the value, changes the region and keeps it, answers looks and accepts with the password', async () => {
+    const { page } = reviewer;
+    await reviewer.signIn(EMAIL.reviewer);
+    await page.waitForURL(/\/review/);
+    await page.goto('/frames?find=U-101&days=0');
+    await page.getByRole('link', { name: /U-101/ }).first().click();
+    await page.waitForURL(/\/(review|frames)\/\d+/);
+    const frameUrl = page.url();
+    if (frameUrl.includes('/frames/'))
+      await page
+        .getByRole('link', { name: /review/i })
+        .last()
+        .click();
+    await page.waitForURL(/\/review\/\d+/);
+    const shown = Number((await page.locator('.qty.result b').first().innerText()).replace(/\s/g, ''));
+    expect(Math.abs(shown - TRUE_NM)).toBeLessThan(1);
+    await reviewer.expectAccessible();
+
+    const height = page.getByLabel(/^Height/).first();
+    await height.fill('90');
+    await height.press('Enter');
+    await page.getByRole('button', { name: 'Keep this region' }).click();
+    await page.waitForURL((url) => url.href !== frameUrl && /\/review\/\d+/.test(url.pathname));
+    await page.getByText('Readings of this frame').waitFor();
+
+    await answerLooks(reviewer);
+    await page.getByRole('button', { name: 'Accept', exact: true }).click();
+    await page.getByLabel('Your password signs it').fill('not the password');
+    await page.getByRole('button', { name: 'Sign and accept' }).click();
+    await page
+      .getByText(/password/i)
+      .filter({ hasText: /not|wrong/i })
+      .first()
+      .waitFor();
+    await page.getByLabel('Your password signs it').fill(PASSWORD);
+    await page.getByRole('button', { name: 'Sign and accept' }).click();
+    await page
+      .getByText(/accepted/i)
+      .first()
+      .waitFor();
+  });
+
+  test('whoever took the frame cannot accept it, whatever roles they hold', async () => {
+    const { page } = both;
+    await both.signIn(EMAIL.both);
+    await page.goto('/intake');
+    await page
+      .getByRole('button', { name: /Bench 7/ })
+      .last()
+      .click();
+    await page
+      .locator('input[type=file][multiple]')
+      .first()
+      .setInputFiles([await fixture('frames/clean.png', 'b7-U-105-2.png')]);
+    await page
+      .getByRole('listitem')
+      .filter({ hasText: 'U-105-2' })
+      .getByText('Fitted', { exact: true })
+      .waitFor({ timeout: 60_000 });
+    const send = page.getByRole('button', { name: /^Send [1-9]\d* to review/ });
+    if (await send.count()) await send.click();
+    else {
+      await page.getByRole('button', { name: 'Send as is…' }).click();
+      await page.getByRole('textbox', { name: /note/i }).last().fill('Seen.');
+      await page
+        .getByRole('button', { name: /^Send( it)?( to review)?$/ })
+        .last()
+        .click();
+    }
+    await page
+      .getByText(/sent to review/)
+      .first()
+      .waitFor();
+    await page.goto('/frames?find=U-105&state=review&days=0');
+    await page.getByRole('link', { name: /U-105/ }).first().click();
+    await page.waitForURL(/\/(review|frames)\/\d+/);
+    if (page.url().includes('/frames/'))
+      await page
+        .getByRole('link', { name: /review/i })
+        .last()
+        .click();
+    await page.waitForURL(/\/review\/\d+/);
+    await page
+      .getByText(/took|uploaded/i)
+      .first()
+      .waitFor();
+    expect(await page.getByRole('button', { name: 'Accept', exact: true }).isDisabled()).toBe(true);
+  });
+
+  test('two at once: the second is told and nothing is overwritten', async () => {
+    const first = reviewer.page;
+    await first.goto('/frames?find=U-102&state=review&days=0');
+    await first.getByRole('link', { name: /U-102/ }).first().click();
+    await first.waitForURL(/\/(review|frames)\/\d+/);
+    if (first.url().includes('/frames/'))
+      await first
+        .getByRole('link', { name: /review/i })
+        .last()
+        .click();
+    await first.waitForURL(/\/review\/\d+/);
+    const second = both.page;
+    await second.goto(first.url());
+    await answerLooks(reviewer);
+    await answerLooks(both);
+    await first.getByRole('button', { name: 'Accept', exact: true }).click();
+    await first.getByLabel('Your password signs it').fill(PASSWORD);
+    await second.getByRole('button', { name: 'Accept', exact: true }).click();
+    await second.getByLabel('Your password signs it').fill(PASSWORD);
+    await first.getByRole('button', { name: 'Sign and accept' }).click();
+    await first
+      .getByText(/accepted/i)
+      .first()
+      .waitFor();
+    await second.getByRole('button', { name: 'Sign and accept' }).click();
+    await second
+      .getByRole('alert')
+      .or(second.getByRole('status'))
+      .filter({ hasText: /Reviewer R|meanwhile|accepted/ })
+      .first()
+      .waitFor();
+  });
+
+  test('a reading goes back with a reason and stands on the technician’s frame', async () => {
+    const { page } = reviewer;
+    await page.goto('/frames?find=U-103&state=review&days=0');
+    await page.getByRole('link', { name: /U-103/ }).first().click();
+    await page.waitForURL(/\/(review|frames)\/\d+/);
+    if (page.url().includes('/frames/'))
+      await page
+        .getByRole('link', { name: /review/i })
+        .last()
+        .click();
+    await page.getByRole('button', { name: 'Return…' }).click();
+    await page.getByRole('button', { name: 'Take the frame again' }).click();
+    await page.getByLabel('For the technician').fill('Nearer, and without the lamp.');
+    await page.getByRole('button', { name: /^Return U-103/ }).click();
+    await page
+      .getByText(/returned/i)
+      .first()
+      .waitFor();
+    await technician.page.goto('/frames?find=U-103&state=returned&days=0');
+    await technician.page.getByRole('link', { name: /U-103/ }).first().click();
+    await technician.page.getByText('Nearer, and without the lamp.').waitFor();
+    await technician.expectAccessible();
+  });
+
+  test('QA sees the accepted readings over time, their table and CSV, and the log', async () => {
+    const { page } = qa;
+    await qa.signIn(EMAIL.qa);
+    await page.waitForURL('**/over-time**');
+    await page.getByRole('heading', { name: 'Over time' }).waitFor();
+    const csv = await page.getByRole('link', { name: 'Save as CSV' }).getAttribute('href');
+    const answer = await page.request.get(new URL(csv ?? '', SITE()).href);
+    expect(answer.status()).toBe(200);
+    const lines = (await answer.text()).trim().split(/\r?\n/);
+    expect(lines).toHaveLength(3); // a head and two accepted readings
+    await qa.expectAccessible();
+    await page.goto('/log');
+    await page
+      .getByText(/accept/i)
+      .first()
+      .waitFor();
+    await qa.expectAccessible();
+  });
+
+  test('roles end at their doors, on pages and on routes', async () => {
+    await technician.page.goto('/people');
+    expect(new URL(technician.page.url()).pathname).toBe('/not-allowed');
+    await technician.page.goto('/log');
+    expect(new URL(technician.page.url()).pathname).toBe('/not-allowed');
+    const upload = await qa.page.request.post(`${SITE()}/api/upload?name=a.png&benchId=1`, {
+      data: Buffer.from('x'),
+      headers: { origin: SITE() },
+    });
+    expect(upload.status()).toBe(403);
+    const outsider = await Desk.open(browser);
+    expect((await outsider.page.request.get(`${SITE()}/api/frames/1/photo`)).status()).toBe(401);
+    await outsider.page.goto('/frames/1');
+    expect(new URL(outsider.page.url()).pathname).toBe('/sign-in');
+    await outsider.close();
+  });
+
+  test('switching a person off ends their session at once', async () => {
+    const { page } = admin;
+    await page.goto('/people');
+    await page.getByRole('button', { name: 'Change Technician T' }).click();
+    await page.getByRole('checkbox', { name: 'May sign in' }).uncheck();
+    await page.getByRole('button', { name: 'Keep the change' }).click();
+    await page.getByText('switched off', { exact: true }).waitFor();
+    await technician.page.goto('/intake');
+    expect(new URL(technician.page.url()).pathname).toBe('/sign-in');
+  });
+
+  test('phone and tablet, paper and Goggles keep everything on the page', async () => {
+    for (const viewport of [
+      { width: 1180, height: 820 },
+      { width: 390, height: 844 },
+      { width: 320, height: 700 },
+    ]) {
+      await reviewer.page.setViewportSize(viewport);
+      for (const place of ['/frames?days=0', '/review', '/over-time', '/benches', '/lots']) {
+        await reviewer.page.goto(place);
+        await reviewer.page.waitForLoadState('networkidle');
+        await reviewer.expectAccessible();
+      }
+    }
+    await reviewer.page.setViewportSize({ width: 1440, height: 900 });
+    await reviewer.page.getByRole('button', { name: /paper/i }).click();
+    await reviewer.page.getByRole('button', { name: /Goggles/ }).click();
+    for (const place of ['/frames?days=0', '/over-time', '/benches']) {
+      await reviewer.page.goto(place);
+      await reviewer.page.waitForLoadState('networkidle');
+      expect(
+        await reviewer.page.evaluate(() => [
+          document.documentElement.dataset.theme,
+          document.documentElement.dataset.light,
+        ]),
+      ).toEqual(['paper', 'neutral']);
+      await reviewer.expectAccessible();
+    }
+  });
+});
+
+/** Gives every open look an answer and a reason. */
+async function answerLooks(desk: Desk): Promise<void> {
+  const looks = desk.page.getByRole('group', { name: /^Answer:/ });
+  for (let i = 0; i < (await looks.count()); i += 1) {
+    await looks.nth(i).getByRole('button', { name: 'Accept as is' }).click();
+    await desk.page
+      .getByLabel(/^Reason for the answer/)
+      .nth(i)
+      .fill('Small against U.');
+  }
+}
