@@ -12,20 +12,14 @@ import { Refused } from '@/lib/imaging/refused';
 import { curvesOf, stripOf } from './curves';
 import { ENGINE_VERSION } from './engine-version';
 import { findingsOf } from './findings';
-import { judgePlace, noFringes, type Evidence } from './judge';
+import { judgePlace, noFringes } from './judge';
 import { refuseByLight } from './light';
+import type { Measured } from './measured';
 import { fitPlace, trimPlace, type PlaceFit } from './place';
-import { wavelengthOf } from './wavelength';
+import { frameEffects, wavelengthOf } from './wavelength';
 
 /** Milliseconds from any fixed moment; time is an argument so that the engine itself has no clock. */
 export type Clock = () => number;
-
-/** A place that has been fitted and found to hold two-slit fringes. */
-export interface Measured {
-  place: PlaceFit;
-  spread: Spread;
-  evidence: Evidence;
-}
 
 const PLACES_TRIED = 3;
 
@@ -83,11 +77,12 @@ function measurePlace(picture: Picture, quick: PlaceFit, prior: CurvePrior | nul
   const rect = options.region ? quick.rect : trimPlace(picture, quick);
   const place = fitPlace(picture, rect, spacing, prior, leftOutBy(options, quick), false, options.zeroShift ?? 0);
   if (place === null) throw noFringes();
+  const plainSpacingPx = place.band.fit.result.parameters[0] * place.band.fit.unitPx;
   place.band = chooseTerms(place.band, { curve: !setup.distanceMm, tone: true, chirp: true });
   const spread = spreadOf(place.band);
   const evidence = judgePlace(place, spread);
   if (spread === null) throw noFringes();
-  return { place, spread, evidence };
+  return { place, spread, evidence, plainSpacingPx };
 }
 
 /** Places near orders the person wants left out, as the quick fit sees them. */
@@ -126,7 +121,7 @@ function resultOf(picture: Picture, measured: Measured, setup: SetupValues, opti
   const uVisibility = visibilityU(p, spread.covariance, size);
   const curves = curvesOf(place, toAlong);
   const known = spread.from === 'noise' ? 'noise model' : `type A, scatter of ${Math.round(spread.groups)} bands`;
-  const wavelength = wavelengthOf({ spacingPx, uSpacingPx, dof: spread.dof, known }, setup, []);
+  const wavelength = wavelengthOf({ spacingPx, uSpacingPx, dof: spread.dof, known }, setup, frameEffects(picture, setup, spacingPx));
   const result: ReadingResult = {
     ok: true,
     code: 'OK',
@@ -162,7 +157,7 @@ function resultOf(picture: Picture, measured: Measured, setup: SetupValues, opti
     strip: stripOf(curves),
     ms,
   };
-  result.findings = findingsOf(result, measured, picture, setup);
+  result.findings = findingsOf({ result, measured, picture, setup });
   result.message = messageFor(result);
   return result;
 }

@@ -1,4 +1,5 @@
 import type { BudgetRow, SetupValues } from '@/lib/domain/reading-result';
+import type { Picture } from '@/lib/imaging/picture';
 import { vacuumFromAir } from '@/lib/quantity/air-index';
 import { combineBudget, type BudgetInput } from '@/lib/quantity/budget';
 import { wavelengthFromSpacing } from '@/lib/quantity/two-slit';
@@ -32,6 +33,31 @@ export interface FrameEffect {
   symbol: string;
   uNm: number;
   known: string;
+}
+
+/** Effect of a colour sensor's missing sites, from simulation: 0.128 / (px per fringe)^2 of the wavelength. */
+export function demosaicRelative(spacingPx: number): number {
+  return 0.128 / (spacingPx * spacingPx);
+}
+
+/**
+ * Far-field formula at a finite distance, from simulation with Fresnel integrals: 0.18 (w^2/(lambda L))^2 of the wavelength
+ * when the region scales with L.
+ */
+export function nearFieldRelative(widthUm: number, wavelengthNm: number, distanceMm: number): number {
+  const number = (widthUm * widthUm) / (wavelengthNm * distanceMm);
+  return 0.18 * number * number;
+}
+
+/** What the frame itself adds to the budget: each largest effect taken as a half width (rectangular, / sqrt 3). */
+export function frameEffects(picture: Picture, setup: SetupValues, spacingPx: number): FrameEffect[] {
+  const { scaleUmPerPx: scale, separationUm: separation, distanceMm: distance, widthUm: width } = setup;
+  if (!scale || !separation || !distance) return [];
+  const airNm = wavelengthFromSpacing({ spacingPx, scaleUmPerPx: scale.value, separationUm: separation.value, distanceMm: distance.value });
+  const effects: FrameEffect[] = [];
+  if (width) effects.push({ key: 'near-field', name: 'Finite distance', symbol: '', uNm: (airNm * nearFieldRelative(width.value, airNm, distance.value)) / Math.sqrt(3), known: 'rectangular, far-field formula' });
+  if (picture.source.colour) effects.push({ key: 'demosaic', name: 'Colour sensor', symbol: '', uNm: (airNm * demosaicRelative(spacingPx)) / Math.sqrt(3), known: 'rectangular, filled-in pixels' });
+  return effects;
 }
 
 /**

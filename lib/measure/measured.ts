@@ -1,0 +1,12 @@
+import type { Spread } from '@/lib/fit/spread';
+import type { Evidence } from './judge';
+import type { PlaceFit } from './place';
+
+/** A place that has been fitted and found to hold two-slit fringes. */
+export interface Measured {
+  place: PlaceFit;
+  spread: Spread;
+  evidence: Evidence;
+  /** Spacing in px before optional terms were added to the model. */
+  plainSpacingPx: number;
+}
