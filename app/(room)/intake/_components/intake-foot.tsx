@@ -21,7 +21,7 @@ interface Props {
   onSend: () => void;
 }
 
-/** "5 frames, newest last: 2 fitted, 2 on the way, 1 unreadable" */
+/** "5 frames: 2 fitted, 2 on the way, 1 unreadable" */
 function summary(frames: readonly FrameRow[], items: readonly UploadItem[]): string {
   const all = frames.length + items.length;
   if (!all) return 'No frames in this intake yet';
@@ -34,7 +34,7 @@ function summary(frames: readonly FrameRow[], items: readonly UploadItem[]): str
     [of((f) => f.state === 'unreadable'), 'unreadable'],
     [failed, 'not copied'],
   ];
-  return `${count(all, 'frame')}, newest last: ${parts
+  return `${count(all, 'frame')}: ${parts
     .filter(([n]) => n > 0)
     .map(([n, word]) => `${n} ${word}`)
     .join(', ')}`;
@@ -70,7 +70,15 @@ export function IntakeFoot({ frames, items, said, clear, waiting, closed, onAdd,
         Add frames
       </ChooseFiles>
       <div className="min-w-0 text-ink-2">
-        <p>{text}</p>
+        <p>
+          {text}
+          {frames.length + items.length > 1 ? (
+            <>
+              <span className="not-phone-inline">, newest last</span>
+              <span className="phone-inline">, newest first</span>
+            </>
+          ) : null}
+        </p>
         <p className="only-heard" aria-live="polite">
           {slow}
         </p>
@@ -105,8 +113,10 @@ export function IntakeFoot({ frames, items, said, clear, waiting, closed, onAdd,
           onClick={onSend}
           className="send-clear"
         >
-          Send {clear}
-          <span className="not-phone-inline"> to review</span>
+          <span>
+            Send {clear}
+            <span className="not-phone-inline"> to review</span>
+          </span>
         </Button>
       </div>
     </div>

@@ -1,6 +1,6 @@
 'use client';
 
-import { useEffect, useState } from 'react';
+import { useEffect, useRef, useState } from 'react';
 import type { UploadItem } from '@/lib/client/use-uploads';
 import type { FrameRow } from '@/lib/domain/views';
 import { FrameLine, ItemLine } from './intake-rows';
@@ -32,6 +32,11 @@ function useNow(running: boolean): number {
 export function IntakeList(props: Props) {
   const { frames, items, sameAs, spanMm } = props;
   const nowMs = useNow(items.some((item) => item.state === 'sending'));
+  const end = useRef<HTMLDivElement>(null);
+  // Newest last: a file just added would else come to stand below the edge of the screen.
+  useEffect(() => {
+    if (items.length) end.current?.scrollIntoView({ block: 'nearest' });
+  }, [items.length]);
   if (!frames.length && !items.length) return null;
   return (
     <div className="intake-list" role="list" aria-label="Frames of this intake">
@@ -55,6 +60,7 @@ export function IntakeList(props: Props) {
           onReplace={(file) => props.onReplaceItem(item, file)}
         />
       ))}
+      <div ref={end} className="list-end" />
     </div>
   );
 }

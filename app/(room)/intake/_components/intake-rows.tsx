@@ -242,7 +242,7 @@ function FailedActs({ item, onRetry, onRemove, onReplace }: ItemLineProps) {
   }
   const fileAtFault = code === 'TOO_LARGE' || code === 'NOT_A_PICTURE';
   return (
-    <span className="do">
+    <span className="do below">
       {fileAtFault ? (
         <ChooseFiles single className="button" onFiles={(files) => files[0] && onReplace(files[0])}>
           Replace
