@@ -102,7 +102,7 @@ export function gainIn(data: BandData, state: BandState, band: number, cell: num
  * with weights pixels * gain^2 / variance(light of the fit), never of the observed light.
  * `expected` is the light the last fit expects on the same grid; absent before the first fit.
  */
-export function combineBands(data: BandData, state: BandState, grid: CommonGrid, expected: Float64Array | null): Profile {
+export function combineBands(data: BandData, state: BandState, grid: CommonGrid, expected: Float64Array | null, spacingPx: number): Profile {
   const n = grid.bins;
   const sw = new Float64Array(n);
   const sz = new Float64Array(n);
@@ -132,10 +132,10 @@ export function combineBands(data: BandData, state: BandState, grid: CommonGrid,
       sv[k] += w * data.varU[cell];
     }
   }
-  return profileFrom(data, { sw, sz, su, suu, sv });
+  return profileFrom(data, { sw, sz, su, suu, sv }, spacingPx);
 }
 
-function profileFrom(data: BandData, sums: Record<'sw' | 'sz' | 'su' | 'suu' | 'sv', Float64Array>): Profile {
+function profileFrom(data: BandData, sums: Record<'sw' | 'sz' | 'su' | 'suu' | 'sv', Float64Array>, spacingPx: number): Profile {
   const n = sums.sw.length;
   const profile: Profile = { u: new Float64Array(n), node: new Float64Array(n), nodeWeight: new Float64Array(n), light: new Float64Array(n), sigma: new Float64Array(n).fill(Infinity), size: n };
   for (let k = 0; k < n; k++) {
@@ -146,7 +146,7 @@ function profileFrom(data: BandData, sums: Record<'sw' | 'sz' | 'su' | 'suu' | '
     profile.u[k] = u;
     profile.light[k] = sums.sz[k] / w;
     profile.sigma[k] = 1 / Math.sqrt(w);
-    const { node, weight } = averagingNodes(data.pixelVar + bin, data.pixelFourth + 1.8 * bin * bin + 6 * data.pixelVar * bin);
+    const { node, weight } = averagingNodes(data.pixelVar + bin, data.pixelFourth + 1.8 * bin * bin + 6 * data.pixelVar * bin, spacingPx);
     profile.node[k] = node;
     profile.nodeWeight[k] = weight;
   }
@@ -158,6 +158,8 @@ export class FitTable {
   readonly light: Float64Array;
   readonly slope: Float64Array;
   private readonly step: number;
+  /** Last index an interval may start at. */
+  private readonly last: number;
 
   constructor(
     fit: ProfileFit,
@@ -169,10 +171,11 @@ export class FitTable {
     const spacing = fit.result.parameters[0] * fit.unitPx;
     this.step = Math.min(pitchPx, spacing / 20);
     const n = Math.max(2, Math.ceil((to - from) / this.step) + 2);
+    this.last = n - 2;
     this.light = new Float64Array(n);
     this.slope = new Float64Array(n);
     const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
-    const { node, weight } = averagingNodes(extent.variance, extent.fourth);
+    const { node, weight } = averagingNodes(extent.variance, extent.fourth, spacing);
     for (let i = 0; i < n; i++) {
       const x = (from + i * this.step - fit.originPx) / fit.unitPx;
       if (!model.evaluate(fit.result.parameters, x, node / fit.unitPx, weight, false)) continue;
@@ -181,27 +184,22 @@ export class FitTable {
     }
   }
 
-  /** Index and fraction of u; kept inside the table. */
-  private place(u: number): { i: number; f: number } {
-    const t = (u - this.from) / this.step;
-    const i = Math.max(0, Math.min(this.light.length - 2, Math.floor(t)));
-    return { i, f: Math.max(0, Math.min(1, t - i)) };
-  }
-
   lightAt(u: number): number {
-    const { i, f } = this.place(u);
-    const h = this.step;
+    const t = (u - this.from) / this.step;
+    const i = t < 0 ? 0 : t > this.last ? this.last : t | 0;
+    const f = t - i < 0 ? 0 : t - i > 1 ? 1 : t - i;
     const a = this.light[i];
     const b = this.light[i + 1];
-    const c = this.slope[i] * h;
-    const d = this.slope[i + 1] * h;
-    const f2 = f * f;
-    const f3 = f2 * f;
-    return a * (2 * f3 - 3 * f2 + 1) + c * (f3 - 2 * f2 + f) + b * (3 * f2 - 2 * f3) + d * (f3 - f2);
+    const c = this.slope[i] * this.step;
+    const d = this.slope[i + 1] * this.step;
+    // Cubic with the values and slopes at both ends.
+    return a + f * (c + f * (3 * (b - a) - 2 * c - d + f * (2 * (a - b) + c + d)));
   }
 
   slopeAt(u: number): number {
-    const { i, f } = this.place(u);
+    const t = (u - this.from) / this.step;
+    const i = t < 0 ? 0 : t > this.last ? this.last : t | 0;
+    const f = t - i < 0 ? 0 : t - i > 1 ? 1 : t - i;
     return this.slope[i] + f * (this.slope[i + 1] - this.slope[i]);
   }
 }

@@ -1,6 +1,7 @@
 import { chainGains, combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
-import { fitProfile, rebase, refit, type CurvePrior, type ProfileFit } from './fit-profile';
+import { fitFrom, fitProfile, plainTerms, rebase, refit, type CurvePrior, type ProfileFit } from './fit-profile';
 import { fitNoise, varianceAt, type Noise } from './noise';
+import type { StartValues } from './start-values';
 import type { Profile } from './profile';
 import type { ModelTerms } from './two-slit-model';
 import { weightedLine } from './small-matrix';
@@ -11,6 +12,13 @@ export interface LightLimits {
   floor: number;
   /** Smallest variance of a pixel: rounding to codes. */
   leastVariance: number;
+}
+
+/** How a fit starts: from values of an earlier one or from a scan, with how many rounds, and a person's zero order. */
+export interface FitStart {
+  from: StartValues | null;
+  rounds: number;
+  zeroShift: number;
 }
 
 export interface BandFit {
@@ -27,7 +35,6 @@ export interface BandFit {
   zeroShift: number;
 }
 
-const ROUNDS = 3;
 const OUTLIER_SIGMAS = 5;
 const NEIGHBOUR_SIGMAS = 3.5;
 /** Before there is a fit, cells this near the white level count as clipped. */
@@ -38,7 +45,7 @@ const FEWEST_POINTS = 12;
  * Fits all bands with one pattern: profile -> fit -> bands against the fit (gain, stray light) -> noise and cells to leave
  * out -> better profile, a few times over. Null when no start leads anywhere.
  */
-export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | null, limits: LightLimits, leaveOut: (u: number) => boolean, zeroShift = 0): BandFit | null {
+export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | null, limits: LightLimits, leaveOut: (u: number) => boolean, how: FitStart): BandFit | null {
   const state = freshState(data);
   const grid = gridOf(data);
   for (let cell = 0; cell < state.left.length; cell++) {
@@ -46,15 +53,15 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
     else if (data.light[cell] > NEAR_WHITE * limits.clip) state.left[cell] = LEFT.clipped;
   }
   if (state.left.some((why) => why === LEFT.clipped)) chainGains(data, state);
-  const profile = scaledFirst(combineBands(data, state, grid, null));
+  const profile = scaledFirst(combineBands(data, state, grid, null, aroundPx));
   if (countUsed(profile) < FEWEST_POINTS) return null;
-  const first = fitProfile(profile, aroundPx, prior);
+  const first = how.from === null ? fitProfile(profile, aroundPx, prior) : fitFrom(profile, how.from, plainTerms(prior), prior);
   if (first === null) return null;
-  const fit = rebase(profile, first, zeroShift);
+  const fit = rebase(profile, first, how.zeroShift);
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table);
-  let band: BandFit = { data, fit, profile, state, grid, table, shifts, limits, leaveOut, zeroShift };
-  for (let round = 0; round < ROUNDS; round++) {
+  let band: BandFit = { data, fit, profile, state, grid, table, shifts, limits, leaveOut, zeroShift: how.zeroShift };
+  for (let round = 0; round < how.rounds; round++) {
     const next = refineBands(band, band.fit.layout.terms);
     if (next === null) return null;
     band = next;
@@ -65,11 +72,12 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
 /** One more round: noise and masks from the bands' agreement, a new profile, the fit with these terms, the bands again. */
 export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null {
   const { data, state, grid, limits } = before;
-  const agreed = combineBands(data, state, grid, expectedOn(grid, before.table));
+  const spacing = before.fit.result.parameters[0] * before.fit.unitPx;
+  const agreed = combineBands(data, state, grid, expectedOn(grid, before.table), spacing);
   measureNoise(before, agreed);
   maskCells(before, agreed);
   maskBins(before, agreed);
-  const profile = combineBands(data, state, grid, expectedOn(grid, before.table));
+  const profile = combineBands(data, state, grid, expectedOn(grid, before.table), spacing);
   if (countUsed(profile) < FEWEST_POINTS) return null;
   const fit = rebase(profile, refit(profile, before.fit, terms), before.zeroShift);
   const table = tableFor(data, grid, fit);
@@ -112,13 +120,15 @@ function agreedIn(band: BandFit, agreed: Profile, b: number, cell: number): numb
   return state.offset[b] + (state.slope[b] * u) / grid.half + gainIn(data, state, b, cell) * light;
 }
 
-const NOISE_CELLS = 12000;
+const NOISE_CELLS = 6000;
 
 function measureNoise(band: BandFit, agreed: Profile): void {
   const { data, state, limits } = band;
   const step = Math.max(1, Math.floor((data.bins * data.bands) / NOISE_CELLS));
-  const light: number[] = [];
-  const q: number[] = [];
+  const most = Math.ceil(data.light.length / step);
+  const light = new Float64Array(most);
+  const q = new Float64Array(most);
+  let n = 0;
   // Each band spends five parameters on its bins, each bin of the profile one on its bands.
   const rest = Math.max(0.2, 1 - 5 / data.bins - 1 / Math.max(2, data.bands));
   for (let cell = 0; cell < data.light.length; cell += step) {
@@ -127,10 +137,10 @@ function measureNoise(band: BandFit, agreed: Profile): void {
     const expected = agreedIn(band, agreed, b, cell);
     if (!Number.isFinite(expected)) continue;
     const r = data.light[cell] - expected;
-    light.push(expected);
-    q.push((r * r * data.pixels[cell]) / rest);
+    light[n] = expected;
+    q[n++] = (r * r * data.pixels[cell]) / rest;
   }
-  state.noise = fitNoise(Float64Array.from(light), Float64Array.from(q), limits.leastVariance);
+  state.noise = fitNoise(light.subarray(0, n), q.subarray(0, n), limits.leastVariance);
 }
 
 /** Marks cells that are clipped, at the floor, or differ from what the other bands show there. */

@@ -25,6 +25,8 @@ export interface LeastSquaresOptions {
   gradientTolerance?: number;
   /** Relative reduction of the sum of squares below which a step counts as none. */
   reductionTolerance?: number;
+  /** Reduction of the sum of squares that is not worth another step; for residuals in units of their own uncertainty. */
+  enough?: number;
 }
 
 export type LeastSquaresStatus = 'converged' | 'evaluation-limit' | 'stalled' | 'singular' | 'no-value';
@@ -56,6 +58,7 @@ export function leastSquares(problem: LeastSquaresProblem, start: ArrayLike<numb
   const limit = options.maxEvaluations ?? 400;
   const gradientTolerance = options.gradientTolerance ?? 1e-10;
   const reductionTolerance = options.reductionTolerance ?? 1e-15;
+  const enough = options.enough ?? 0;
   const lower = options.lower;
   const upper = options.upper;
   let p = clamp(Float64Array.from(start), lower, upper);
@@ -105,6 +108,10 @@ export function leastSquares(problem: LeastSquaresProblem, start: ArrayLike<numb
       for (let i = 0; i < free.length; i++) trial[free[i]] += step[i];
       clamp(trial, lower, upper);
       const predicted = predictedReduction(R, qtb, free, p, trial);
+      if (predicted >= 0 && predicted < enough && damping < 1e-2) {
+        status = 'converged';
+        break outer;
+      }
       const ok = problem.evaluate(trial, trialR, null);
       evaluations++;
       const trialCost = ok ? sumSquares(trialR) : Infinity;

@@ -24,23 +24,33 @@ const MEDIAN_CHI1 = 0.4549364;
  * `least` is the smallest variance possible, from rounding to codes.
  */
 export function fitNoise(light: Float64Array, q: Float64Array, least: number): Noise {
-  const order = Array.from({ length: light.length }, (_, i) => i).sort((a, b) => light[a] - light[b]);
+  const n = light.length;
+  if (n < 10) return { constant: least, shot: 0, grain: 0 };
+  const bounds = Float64Array.from(light).sort();
+  const levels = Math.max(1, Math.min(LEVELS, Math.floor(n / 30)));
+  const edges = Array.from({ length: levels - 1 }, (_, k) => bounds[Math.floor(((k + 1) * n) / levels)]);
+  const members: number[][] = Array.from({ length: levels }, () => []);
+  for (let i = 0; i < n; i++) {
+    let k = 0;
+    while (k < edges.length && light[i] >= edges[k]) k++;
+    members[k].push(i);
+  }
   const means: number[] = [];
   const variances: number[] = [];
-  const per = Math.max(20, Math.floor(order.length / LEVELS));
-  for (let from = 0; from + 10 < order.length; from += per) {
-    const part = order.slice(from, Math.min(order.length, from + per));
-    const sorted = part.map((i) => q[i]).sort((a, b) => a - b);
+  for (const part of members) {
+    if (part.length < 10) continue;
+    const sorted = Float64Array.from(part, (i) => q[i]).sort();
     const limit = (9 * sorted[sorted.length >> 1]) / MEDIAN_CHI1;
     let s = 0;
-    let n = 0;
-    for (const v of sorted) {
-      if (v > limit) break;
-      s += v;
-      n++;
+    let count = 0;
+    for (let i = 0; i < sorted.length && sorted[i] <= limit; i++) {
+      s += sorted[i];
+      count++;
     }
-    means.push(part.reduce((sum, i) => sum + light[i], 0) / part.length);
-    variances.push(Math.max(least, n > 0 ? s / n / CUT_AT_3 : least));
+    let mean = 0;
+    for (const i of part) mean += light[i];
+    means.push(mean / part.length);
+    variances.push(Math.max(least, count > 0 ? s / count / CUT_AT_3 : least));
   }
   if (means.length === 0) return { constant: least, shot: 0, grain: 0 };
   const noise = bestNonNegative(means, variances);

@@ -15,7 +15,7 @@ import { findingsOf } from './findings';
 import { judgePlace, noFringes } from './judge';
 import { refuseByLight } from './light';
 import type { Measured } from './measured';
-import { fitPlace, trimPlace, type PlaceFit } from './place';
+import { fitPlace, lookAtPlace, trimPlace, type PlaceFit } from './place';
 import { frameEffects, wavelengthOf } from './wavelength';
 
 /** Milliseconds from any fixed moment; time is an argument so that the engine itself has no clock. */
@@ -57,7 +57,8 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
   for (const place of places.slice(0, PLACES_TRIED)) {
     try {
       const before = clock();
-      const quick = fitPlace(picture, place.rect, place.spacingPx, prior, () => false, true);
+      const ask = { picture, rect: place.rect, spacingPx: place.spacingPx, prior, leaveOut: () => false, zeroShift: options.zeroShift ?? 0 };
+      const quick = lookAtPlace(ask);
       timed(clock() - before);
       if (quick === null) continue;
       judgePlace(quick, spreadOf(quick.band));
@@ -73,9 +74,9 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
 
 /** The full measurement of a place that the quick look found good. */
 function measurePlace(picture: Picture, quick: PlaceFit, prior: CurvePrior | null, setup: SetupValues, options: FitOptions): Measured {
-  const spacing = quick.band.fit.result.parameters[0] * quick.band.fit.unitPx;
+  const spacingPx = quick.band.fit.result.parameters[0] * quick.band.fit.unitPx;
   const rect = options.region ? quick.rect : trimPlace(picture, quick);
-  const place = fitPlace(picture, rect, spacing, prior, leftOutBy(options, quick), false, options.zeroShift ?? 0);
+  const place = fitPlace({ picture, rect, spacingPx, prior, leaveOut: leftOutBy(options, quick), zeroShift: options.zeroShift ?? 0 }, quick);
   if (place === null) throw noFringes();
   const plainSpacingPx = place.band.fit.result.parameters[0] * place.band.fit.unitPx;
   place.band = chooseTerms(place.band, { curve: !setup.distanceMm, tone: true, chirp: true });

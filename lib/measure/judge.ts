@@ -115,7 +115,8 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   if (spacing < FINEST_PX) {
     throw new Refused('TOO_FINE', `The fringes are ${spacing.toFixed(1)} px apart; below ${FINEST_PX} px the camera cannot hold them. Move the camera back or use a finer pixel scale.`);
   }
-  const one = fitOneSlit(place.band.profile, fit);
+  const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
+  const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
   if (fit.result.parameters[2] > 0.8 || (one !== null && one.chiSquare < 1.15 * fit.result.chiSquare + 10)) {
     throw new Refused('ONE_SLIT', 'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.');
   }

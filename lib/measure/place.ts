@@ -1,5 +1,6 @@
 import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { fitBands, fitTilt, type BandFit, type LightLimits, type TiltFit } from '@/lib/fit/fit-bands';
+import type { StartValues } from '@/lib/fit/start-values';
 import { leanOfBands } from '@/lib/fit/lean';
 import { coordinatesIn, pointAlong, toDegrees, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
 import type { Picture } from '@/lib/imaging/picture';
@@ -43,26 +44,61 @@ export function lightLimits(picture: Picture): LightLimits {
   return { clip, floor, leastVariance: (step * step) / 12 };
 }
 
-/** Straightens and fits, turning the region until the fringes stand square in it. Null where nothing can be fitted. */
-export function fitPlace(picture: Picture, rect: Rectangle, spacingPx: number, prior: CurvePrior | null, leaveOut: (u: number) => boolean, quick: boolean, zeroShift = 0): PlaceFit | null {
+export interface PlaceAsk {
+  picture: Picture;
+  rect: Rectangle;
+  spacingPx: number;
+  prior: CurvePrior | null;
+  leaveOut: (u: number) => boolean;
+  zeroShift: number;
+}
+
+/** A first look: coarse bands, few rows, one round. Null where nothing can be fitted. */
+export function lookAtPlace(ask: PlaceAsk): PlaceFit | null {
+  const { picture, spacingPx, prior, leaveOut, zeroShift } = ask;
+  const rect = leanIn(picture, ask.rect, spacingPx);
+  const stack = straighten(picture, rect, gridFor(rect, spacingPx, true));
+  const band = fitBands(stack, spacingPx, prior, lightLimits(picture), leaveOut, { from: null, rounds: 2, zeroShift });
+  if (band === null) return null;
+  return { rect, stack, band, tilt: fitTilt(stack, band.shifts) };
+}
+
+/** Straightens and fits from a first look, turning the region until the fringes stand square in it. */
+export function fitPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit | null {
+  const { picture, prior, leaveOut, zeroShift } = ask;
   const limits = lightLimits(picture);
-  let here = quick ? leanIn(picture, rect, spacingPx) : rect;
-  let around = spacingPx;
+  let here = { ...ask.rect, angleDeg: turned(look.rect.angleDeg, look.tilt) };
+  let before = look;
   let last: PlaceFit | null = null;
   for (let turn = 0; turn < STRAIGHTENINGS; turn++) {
-    const stack = straighten(picture, here, gridFor(here, around, quick));
-    const band = fitBands(stack, around, prior, limits, leaveOut, zeroShift);
+    const from = startFrom(before, here);
+    const stack = straighten(picture, here, gridFor(here, from.spacing, false));
+    const band = fitBands(stack, from.spacing, prior, limits, leaveOut, { from, rounds: turn === 0 ? 2 : 1, zeroShift });
     if (band === null) return last;
     const tilt = fitTilt(stack, band.shifts);
     last = { rect: here, stack, band, tilt };
-    around = band.fit.result.parameters[0] * band.fit.unitPx;
+    before = last;
     const lean = toDegrees(Math.atan(tilt.slope));
     const known = toDegrees(tilt.uSlope);
-    if (!Number.isFinite(lean) || Math.abs(lean) < Math.max(TILT_STEP_DEG, 0.2 * known) || Math.abs(lean) > 20) break;
-    here = { ...here, angleDeg: wrapAngleDeg(here.angleDeg - lean) };
-    if (quick && turn === 1) break;
+    if (!Number.isFinite(lean) || Math.abs(lean) < Math.max(TILT_STEP_DEG, 0.3 * known) || Math.abs(lean) > 20) break;
+    here = { ...here, angleDeg: turned(here.angleDeg, tilt) };
   }
   return last;
+}
+
+function turned(angleDeg: number, tilt: TiltFit): number {
+  const lean = toDegrees(Math.atan(tilt.slope));
+  return Number.isFinite(lean) && Math.abs(lean) < 20 ? wrapAngleDeg(angleDeg - lean) : angleDeg;
+}
+
+/** The fitted pattern as a start in another rectangle. */
+function startFrom(fitted: PlaceFit, rect: Rectangle): StartValues {
+  const { fit } = fitted.band;
+  const p = fit.result.parameters;
+  const spacing = p[0] * fit.unitPx;
+  const zero = pointAlong(fitted.rect, fit.originPx + p[1] * fit.unitPx);
+  const there = coordinatesIn(rect, zero.xPx, zero.yPx).u;
+  return { spacing, zero: there, ratio: p[2], middle: there + p[3] * spacing, a: p[4] * fit.unitLight, b: p[5] * fit.unitLight, background: p[6] * fit.unitLight, slope: p[7] * fit.unitLight, rest: 0 };
 }
 
 const LEANINGS = 4;
