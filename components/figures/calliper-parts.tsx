@@ -50,8 +50,8 @@ export function Jaws({ w, h, large, reach }: Drawn & { reach: number }) {
 
 const ARC_DEG = 12;
 
-/** Arc scale fixed to the picture: a mark each 2°, longer at each 10°, about the nearest whole 20°. */
-export function ArcScale({ w, angleDeg, reach }: Drawn & { reach: number }) {
+/** Arc scale fixed to the picture: a mark each 2°, longer at each 10°, about the nearest whole 20°. `topPx`: the picture's upper edge. */
+export function ArcScale({ w, angleDeg, reach, topPx }: Drawn & { reach: number; topPx: number }) {
   const base = Math.round(angleDeg / 20) * 20;
   const point = (r: number, deg: number) => {
     const q = (deg * Math.PI) / 180;
@@ -70,7 +70,7 @@ export function ArcScale({ w, angleDeg, reach }: Drawn & { reach: number }) {
       />
       <text
         x={(w + 13) * Math.cos(top) - 6}
-        y={reach * Math.sin(top) - 9}
+        y={Math.max(topPx + 14, reach * Math.sin(top) - 9)}
         style={{ fill: BONE, paintOrder: 'stroke', stroke: '#000', strokeWidth: 3 }}
       >
         {formatNumber(angleDeg, 2)}°

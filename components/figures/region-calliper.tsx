@@ -197,7 +197,7 @@ export function RegionCalliper({ region, picture, zoom, width, height, onChange 
         )}
       </g>
       <g transform={`translate(${region.cxPx * zoom} ${region.cyPx * zoom})`}>
-        <ArcScale {...drawn} reach={reach} />
+        <ArcScale {...drawn} reach={reach} topPx={-region.cyPx * zoom} />
         <g transform={`rotate(${region.angleDeg})`}>
           {handle(
             'tilt',

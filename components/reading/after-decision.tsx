@@ -20,6 +20,11 @@ export function AfterDecision({ frame, done, left, nextId }: Props) {
   const medium = reading ? MEDIUM_SHORT[reading.medium] : 'air';
   const value = reading && reading.wavelengthNm !== null ? ` at ${valueText(reading)} nm (${medium})` : '';
   const unit = frame.outcome ? `Unit ${OUTCOME_WORDS[frame.outcome.outcome].toLowerCase()}. ` : '';
+  const needsOutcome =
+    done === 'accepted' &&
+    !frame.outcome &&
+    reading?.judgement != null &&
+    reading.judgement.verdict !== 'within';
   return (
     <Notice
       live
@@ -40,6 +45,7 @@ export function AfterDecision({ frame, done, left, nextId }: Props) {
       }
     >
       {unit}
+      {needsOutcome ? 'The unit needs an outcome before the lot is closed. ' : ''}
       {left === 0
         ? 'Nothing is left to review.'
         : `${count(left, 'reading is', 'readings are')} left to review.`}

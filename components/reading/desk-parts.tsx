@@ -31,7 +31,12 @@ export function PhotoPart({ frame, desk, mayFit, onKeys }: PhotoProps) {
     <>
       <div className="cap">
         <h2>Photo</h2>
-        <a className="link" href={`/api/frames/${frame.id}/original`} download={frame.fileName}>
+        <a
+          className="link"
+          href={`/api/frames/${frame.id}/original`}
+          download={frame.fileName}
+          title={frame.fileName}
+        >
           {formatNumber(picture.widthPx, 0)} × {formatNumber(picture.heightPx, 0)} px, original
         </a>
       </div>

@@ -13,9 +13,7 @@ export function RecordBar({ frame, middle }: { frame: FrameView; middle?: ReactN
       </div>
       <div className="turnover">{middle}</div>
       <div className="facts">
-        <span className="opt truncate">
-          {frame.fileName}, {frame.uploadedBy.name}
-        </span>
+        <span className="opt truncate">{frame.uploadedBy.name}</span>
         <span>
           <When at={frame.receivedAt} /> · {frame.bench.name}, setup {frame.setupNumber}
         </span>

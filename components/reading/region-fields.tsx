@@ -11,10 +11,10 @@ type Key = keyof Region;
 
 const FIELDS: readonly { key: Key; label: [string, string]; heard: string; unit: string; places: number }[] =
   [
-    { key: 'cxPx', label: ['Centre ', 'x'], heard: 'Centre x, px', unit: 'px', places: 1 },
-    { key: 'cyPx', label: ['Centre ', 'y'], heard: 'Centre y, px', unit: 'px', places: 1 },
-    { key: 'lengthPx', label: ['', 'Length'], heard: 'Length across the fringes, px', unit: 'px', places: 1 },
-    { key: 'heightPx', label: ['', 'Height'], heard: 'Height along the fringes, px', unit: 'px', places: 1 },
+    { key: 'cxPx', label: ['Centre ', 'x'], heard: 'Centre x, px', unit: 'px', places: 0 },
+    { key: 'cyPx', label: ['Centre ', 'y'], heard: 'Centre y, px', unit: 'px', places: 0 },
+    { key: 'lengthPx', label: ['', 'Length'], heard: 'Length across the fringes, px', unit: 'px', places: 0 },
+    { key: 'heightPx', label: ['', 'Height'], heard: 'Height along the fringes, px', unit: 'px', places: 0 },
     { key: 'angleDeg', label: ['', 'Tilt'], heard: 'Tilt, degrees', unit: '°', places: 2 },
   ];
 
@@ -62,7 +62,6 @@ export function RegionFields({ region, onChange, onKeys }: Props) {
             heard={field.heard}
             unit={field.unit}
             places={field.places}
-            fixed={field.key === 'angleDeg'}
             value={region[field.key]}
             chosen={chosen === field.key}
             disabled={!onChange}

@@ -10,8 +10,6 @@ interface Props {
   unit: string;
   value: number;
   places: number;
-  /** Keeps trailing zeros: for angles. */
-  fixed?: boolean;
   chosen: boolean;
   disabled?: boolean;
   onChoose: () => void;
@@ -25,13 +23,12 @@ export function NumberField({
   unit,
   value,
   places,
-  fixed = false,
   chosen,
   disabled,
   onChoose,
   onChange,
 }: Props) {
-  const shown = (fixed ? value.toFixed(places) : String(Number(value.toFixed(places)))).replace('-', '−');
+  const shown = value.toFixed(places).replace('-', '−');
   // What is being typed, and the value it was typed over: a new value from elsewhere wins.
   const [typed, setTyped] = useState<{ text: string; over: number } | null>(null);
   const text = typed && typed.over === value ? typed.text : null;

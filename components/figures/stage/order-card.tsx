@@ -8,13 +8,12 @@ interface Props {
   out: boolean;
   top: number;
   side: 'left' | 'right';
-  onClose: () => void;
   onToggle?: () => void;
   onZero?: () => void;
 }
 
 /** What the reading line crosses: centre, its uncertainty, the pull, and whether the fit uses it. */
-export function OrderCard({ order, out, top, side, onClose, onToggle, onZero }: Props) {
+export function OrderCard({ order, out, top, side, onToggle, onZero }: Props) {
   return (
     <div className="order-card" style={{ top, [side]: 0 }} role="status">
       <dl>
@@ -27,16 +26,12 @@ export function OrderCard({ order, out, top, side, onClose, onToggle, onZero }: 
         <dt>pull</dt>
         <dd>{order.pullMm === null ? 'no raw middle' : `${formatSigned(order.pullMm, 3)} mm`}</dd>
       </dl>
-      {onToggle ? <Button onClick={onToggle}>{out ? 'Take it back' : 'Leave it out'}</Button> : null}
-      {onZero ? <Button onClick={onZero}>Count from here</Button> : null}
-      <button
-        type="button"
-        className="card-close"
-        onClick={onClose}
-        aria-label="Close the card of this order"
-      >
-        Close
-      </button>
+      {onToggle || onZero ? (
+        <div className="acts">
+          {onToggle ? <Button onClick={onToggle}>{out ? 'Take it back' : 'Leave it out'}</Button> : null}
+          {onZero ? <Button onClick={onZero}>Zero here</Button> : null}
+        </div>
+      ) : null}
     </div>
   );
 }

@@ -53,7 +53,7 @@ export function OrderLadder({ orders, leaveOut, picked, onPick, x, width, view, 
     event.stopPropagation();
     const sorted = [...orders].sort((a, b) => a.m - b.m);
     const next = step === 0 ? m : (sorted[sorted.findIndex((o) => o.m === m) + step]?.m ?? m);
-    onPick(next);
+    if (step === 0 || next !== m) onPick(next);
     group.current?.querySelector<SVGGElement>(`[data-order="${next}"]`)?.focus();
   };
 
@@ -166,7 +166,7 @@ function Axis({ x, width, view, y }: AxisProps) {
         return (
           <g key={mm}>
             <path d={`M${at} ${y}v${named ? 8 : 5}`} className="l-edge" />
-            {named && at < width - 24 ? (
+            {named && at > 12 && at < width - 44 ? (
               <text x={at} y={y + 24} textAnchor="middle">
                 {Math.abs(mm) < step / 4 ? formatNumber(0, 0) : formatSigned(mm, places)}
               </text>

@@ -39,7 +39,8 @@ export function stageData(result: ReadingResult, scaleUmPerPx: number): StageDat
     data: curves.data[i],
     fit: curves.fit[i],
     envelope: curves.envelope[i],
-    misfit: curves.misfit[i],
+    // A point left out has no part in the fit, but how far it lies from it is what one wants to see.
+    misfit: curves.left[i] === 1 ? (curves.data[i] - curves.fit[i]) / curves.uData[i] : curves.misfit[i],
     left: curves.left[i] === 1,
   }));
   const half = result.region.lengthPx / 2;

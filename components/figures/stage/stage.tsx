@@ -33,6 +33,8 @@ interface Props {
 
 /** Room one dot needs, px; closer points are thinned and the caption says so. */
 const DOT_ROOM = 2.6;
+/** Width the card of an order takes; it never covers the order's own line. */
+const CARD_ROOM_PX = 232;
 
 /** Strip, profile, misfit and order ladder on one axis, the zero order in the middle. */
 export function Stage(props: Props) {
@@ -112,7 +114,7 @@ function Drawing({
           orders={data.orders}
           leaveOut={leaveOut}
           picked={picked}
-          onPick={onPick}
+          onPick={(m) => onPick(m === picked ? null : m)}
           x={x}
           width={width}
           view={view}
@@ -129,8 +131,7 @@ function Drawing({
           order={order}
           out={isOut(order, leaveOut)}
           top={layout.profile[0] + 6}
-          side={x(order.mm) > width * 0.62 ? (x(order.mm) > width - 180 ? 'left' : 'right') : 'right'}
-          onClose={() => onPick(null)}
+          side={x(order.mm) > width - CARD_ROOM_PX ? 'left' : 'right'}
           onToggle={onToggleOrder ? () => onToggleOrder(order.m) : undefined}
           onZero={
             onZeroHere && order.kind === 'bright' && order.m !== 0 ? () => onZeroHere(order.m) : undefined
