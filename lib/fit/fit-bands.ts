@@ -1,5 +1,6 @@
 import { chainGains, combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
 import { fitFrom, fitProfile, plainTerms, rebase, refit, type CurvePrior, type ProfileFit } from './fit-profile';
+import { chooseZero } from './zero-order';
 import { fitNoise, varianceAt, type Noise } from './noise';
 import type { StartValues } from './start-values';
 import type { Profile } from './profile';
@@ -66,7 +67,21 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
     if (next === null) return null;
     band = next;
   }
-  return band;
+  return how.zeroShift === 0 ? withBestZero(band) : band;
+}
+
+/** Where the exact geometry tells fringes apart, the zero order is the one with which the pattern fits best. */
+function withBestZero(band: BandFit): BandFit | null {
+  const { fit } = band;
+  const p = fit.result.parameters;
+  const covariance = fit.result.covariance;
+  const curve = fit.layout.curve >= 0 ? p[fit.layout.curve] : fit.fixed.curve;
+  if (covariance === null || !(1.5 * (curve * p[0]) ** 2 > 0.2 * Math.sqrt(covariance[0]))) return band;
+  const choice = chooseZero(band.profile, fit);
+  if (choice.fit === fit) return band;
+  const table = tableFor(band.data, band.grid, choice.fit);
+  const zeroShift = Math.round(choice.fit.result.parameters[3]);
+  return refineBands({ ...band, fit: choice.fit, table, zeroShift }, fit.layout.terms);
 }
 
 /** One more round: noise and masks from the bands' agreement, a new profile, the fit with these terms, the bands again. */

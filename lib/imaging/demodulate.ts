@@ -46,9 +46,9 @@ export function planeFor(planes: Plane[], periodPx: number): Plane {
 }
 
 /** Demodulates one wave in cells, grows the patch of continuous phase from its strongest cell and fits its phase. */
-export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true): FringePatch | null {
+export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true, thin = false): FringePatch | null {
   const f = plane.factor;
-  const map = demodulateCells(plane, wave.kx * f, wave.ky * f);
+  const map = demodulateCells(plane, wave.kx * f, wave.ky * f, thin);
   const cells = growPatch(map);
   if (cells.length < 3) return null;
   const centre = (i: number) => ({ x: ((i % map.nx) + 0.5) * map.wide * f, y: (Math.floor(i / map.nx) + 0.5) * map.high * f });
@@ -69,10 +69,15 @@ export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true): 
   const ky = wave.ky + surface.gy;
   const shift = Math.hypot(surface.gx, surface.gy) / Math.hypot(wave.kx, wave.ky);
   // A wave vector that moved far was not demodulated well: once more with the better one.
-  if (mayRetry && shift > 0.02 && shift < 0.6) return tracePatch(plane, { kx, ky, weight: wave.weight }, false);
+  if (mayRetry && shift > 0.02 && shift < 0.6) return tracePatch(plane, { kx, ky, weight: wave.weight }, false, thin);
   const k = Math.hypot(kx, ky);
   const moved = k / Math.hypot(wave.kx, wave.ky);
   if (!(moved > 0.6 && moved < 1.7)) return null;
+  // A pattern only a few cells high says little about its direction: once more with flatter cells.
+  if (!thin && rowsOf(cells, map, Math.abs(wave.kx) >= Math.abs(wave.ky)) < FEWEST_ROWS) {
+    const finer = tracePatch(plane, { kx, ky, weight: wave.weight }, true, true);
+    if (finer !== null && finer.cells.length >= cells.length) return finer;
+  }
   const ux = kx / k;
   const uy = ky / k;
   return {
@@ -93,12 +98,19 @@ export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true): 
   };
 }
 
+const FEWEST_ROWS = 6;
+
+/** Over how many rows of cells (columns for a wave running down) the patch extends. */
+function rowsOf(cells: { index: number }[], map: CellMap, alongX: boolean): number {
+  return new Set(cells.map((c) => (alongX ? Math.floor(c.index / map.nx) : c.index % map.nx))).size;
+}
+
 /** Complex amplitude of the wave in cells about a period wide, smoothed over 3 x 3 cells, local mean removed. */
-function demodulateCells(plane: Plane, kx: number, ky: number): CellMap {
+function demodulateCells(plane: Plane, kx: number, ky: number, thin: boolean): CellMap {
   const period = 1 / Math.hypot(kx, ky);
   // About a period long where the wave runs, and short enough across it for several cells in a flat pattern.
   const size = Math.max(4, Math.round(0.9 * period));
-  const short = (side: number) => Math.max(2, Math.min(size, Math.floor(side / 6)));
+  const short = (side: number) => Math.max(2, Math.min(thin ? Math.round(size / 4) : size, Math.floor(side / 6)));
   const long = (side: number) => Math.max(2, Math.min(size, Math.floor(side / 3)));
   const wide = Math.abs(kx) >= Math.abs(ky) ? long(plane.widthPx) : short(plane.widthPx);
   const high = Math.abs(kx) >= Math.abs(ky) ? short(plane.heightPx) : long(plane.heightPx);

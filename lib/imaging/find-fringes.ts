@@ -58,7 +58,7 @@ function placeOf(picture: Picture, patch: FringePatch, within: Rectangle | null)
   if (kept.length === 0) return null;
   const from = Math.min(...kept);
   const to = Math.max(...kept);
-  const margin = 0.25 * (to - from) + 1.5 * spacingPx;
+  const margin = 0.1 * (to - from) + spacingPx;
   const frame = frameExtent(picture, patch.cx, patch.cy, c, s);
   const u0 = Math.max(frame.u0, from - margin);
   const u1 = Math.min(frame.u1, to + margin);

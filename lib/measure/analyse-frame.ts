@@ -3,7 +3,9 @@ import { REFUSALS, type FitOptions, type FrameAnswer, type OrderCentre, type Rea
 import { chooseTerms } from '@/lib/fit/choose-terms';
 import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { listOrders } from '@/lib/fit/orders';
+import { tableFor } from '@/lib/fit/bands';
 import { spreadOf, type Spread } from '@/lib/fit/spread';
+import { chooseZero, type ZeroChoice } from '@/lib/fit/zero-order';
 import { decodePicture } from '@/lib/imaging/decode';
 import { findFringes, type FringePlace } from '@/lib/imaging/find-fringes';
 import { pointAlong, toRadians, type Rectangle } from '@/lib/imaging/geometry';
@@ -15,7 +17,7 @@ import { findingsOf } from './findings';
 import { judgePlace, noFringes } from './judge';
 import { refuseByLight } from './light';
 import type { Measured } from './measured';
-import { fitPlace, lookAtPlace, trimPlace, type PlaceFit } from './place';
+import { fitPlace, growPlace, lookAtPlace, trimPlace, type PlaceFit } from './place';
 import { frameEffects, wavelengthOf } from './wavelength';
 
 /** Milliseconds from any fixed moment; time is an argument so that the engine itself has no clock. */
@@ -62,7 +64,7 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
       timed(clock() - before);
       if (quick === null) continue;
       judgePlace(quick, spreadOf(quick.band));
-      return measurePlace(picture, quick, prior, setup, options);
+      return measurePlace(picture, options.region ? quick : growPlace(ask, quick), prior, setup, options);
     } catch (error) {
       if (!(error instanceof Refused)) throw error;
       refused = refused === null || refused.code === 'NO_FRINGES' ? error : refused;
@@ -80,10 +82,32 @@ function measurePlace(picture: Picture, quick: PlaceFit, prior: CurvePrior | nul
   if (place === null) throw noFringes();
   const plainSpacingPx = place.band.fit.result.parameters[0] * place.band.fit.unitPx;
   place.band = chooseTerms(place.band, { curve: !setup.distanceMm, tone: true, chirp: true });
-  const spread = spreadOf(place.band);
+  const zero = settleZero(place, options);
+  const spread = withZeroDoubt(spreadOf(place.band), zero);
   const evidence = judgePlace(place, spread);
   if (spread === null) throw noFringes();
-  return { place, spread, evidence, plainSpacingPx };
+  return { zero, place, spread, evidence, plainSpacingPx };
+}
+
+/** The zero order by envelope and geometry; a person's own choice stands. */
+function settleZero(place: PlaceFit, options: FitOptions): ZeroChoice {
+  const { fit } = place.band;
+  const choice = chooseZero(place.band.profile, fit);
+  // A fitted perspective takes up what the geometry would say: the choice made before it stands.
+  if (fit.layout.chirp >= 0) return { ...choice, fit, uSpacing: 0 };
+  if (options.zeroShift) return { ...choice, fit: place.band.fit, probability: 1, next: 0, uSpacing: 0 };
+  if (choice.fit !== place.band.fit) {
+    place.band = { ...place.band, fit: choice.fit, table: tableFor(place.stack, place.band.grid, choice.fit) };
+  }
+  return choice;
+}
+
+/** What doubt about the zero order adds to the spacing's uncertainty. */
+function withZeroDoubt(spread: Spread | null, zero: ZeroChoice): Spread | null {
+  if (spread === null || zero.uSpacing === 0) return spread;
+  const covariance = Float64Array.from(spread.covariance);
+  covariance[0] += zero.uSpacing * zero.uSpacing;
+  return { ...spread, covariance };
 }
 
 /** Places near orders the person wants left out, as the quick fit sees them. */

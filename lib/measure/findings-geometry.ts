@@ -36,20 +36,13 @@ function yaw(c: FindingContext): Finding {
   });
 }
 
-/** Odds of the order nearest the envelope's middle against the next one, for an offset in orders and its uncertainty. */
-export function zeroOrderOdds(offset: number, u: number): number {
-  const spread = Math.hypot(u, 0.25);
-  return Math.exp(Math.min(700, (1 - 2 * Math.abs(offset)) / (2 * spread * spread)));
-}
-
 function zeroOrder(c: FindingContext): Finding {
   const { fit } = c.measured.place.band;
   const p = fit.result.parameters;
-  const n = fit.layout.size;
-  const u = Math.sqrt(Math.max(0, c.measured.spread.covariance[3 * n + 3]));
   const curve = fit.layout.curve >= 0 ? p[fit.layout.curve] : fit.fixed.curve;
   const relative = 1.5 * (curve * p[0]) ** 2;
-  const odds = zeroOrderOdds(p[3], u);
+  const { probability, next } = c.measured.zero;
+  const odds = next > 0 ? Math.min(9999, probability / next) : 9999;
   const sure = odds > 20;
   return finding(c, {
     check: 'zero-order', word: sure ? 'clear' : 'look', relative,

@@ -1,4 +1,4 @@
-import { fitOneSlit } from '@/lib/fit/fit-profile';
+import { fitOneSlit, type ProfileFit } from '@/lib/fit/fit-profile';
 import { AveragedModel } from '@/lib/fit/fit-profile';
 import { ModelPoint, orderAt } from '@/lib/fit/two-slit-model';
 import { solveSymmetric } from '@/lib/fit/small-matrix';
@@ -12,7 +12,11 @@ const FEWEST_FRINGES = 3;
 const LEAST_SWING_SIGMAS = 6;
 const MOST_RELATIVE_U = 0.02;
 const MOST_MISFIT = 0.3;
+/** Slits wider than this share of their separation are one slit with a bar in it. */
+const MOST_RATIO = 0.8;
 const MOST_HARMONIC = 0.2;
+const LEAST_GAIN = 60;
+const LEAST_VISIBILITY = 0.03;
 const MOST_BOW = 0.22;
 
 export interface Evidence {
@@ -106,6 +110,13 @@ function secondHarmonic(place: PlaceFit): number {
   return x === null || !(x[3] > 0) ? 0 : x[4] / x[3];
 }
 
+/** Does one slit describe the data as well? The second must improve chi-square well beyond its own noise. */
+function oneSlitSuffices(oneSlit: number, fit: ProfileFit, evidence: Evidence): boolean {
+  const two = fit.result.chiSquare;
+  const scale = Math.max(1, two / Math.max(1, fit.result.dof));
+  return oneSlit < 1.15 * two + 10 && ((oneSlit - two) / scale < LEAST_GAIN || evidence.visibility < LEAST_VISIBILITY);
+}
+
 /** Throws the refusal that fits, or returns the evidence of a pattern that can be answered. */
 export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   const { fit } = place.band;
@@ -115,14 +126,15 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   if (spacing < FINEST_PX) {
     throw new Refused('TOO_FINE', `The fringes are ${spacing.toFixed(1)} px apart; below ${FINEST_PX} px the camera cannot hold them. Move the camera back or use a finer pixel scale.`);
   }
-  const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
-  const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
-  if (fit.result.parameters[2] > 0.8 || (one !== null && one.chiSquare < 1.15 * fit.result.chiSquare + 10)) {
-    throw new Refused('ONE_SLIT', 'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.');
-  }
+  const oneSlit = () =>
+    new Refused('ONE_SLIT', 'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.');
+  if (fit.result.parameters[2] > MOST_RATIO) throw oneSlit();
   if (evidence.harmonic > MOST_HARMONIC) {
     throw new Refused('MANY_SLITS', 'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.');
   }
+  const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
+  const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
+  if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence)) throw oneSlit();
   const bow = Math.abs(place.tilt.bowPx) * 1.5;
   if (bow > MOST_BOW * spacing && bow > 6 * place.tilt.uBowPx) {
     throw new Refused('RINGS', 'The fringes are bent like rings, so this is not the pattern of two slits. Look for a second reflection, a window or dust in the beam.');

@@ -1,4 +1,5 @@
 import type { Spread } from '@/lib/fit/spread';
+import type { ZeroChoice } from '@/lib/fit/zero-order';
 import type { Evidence } from './judge';
 import type { PlaceFit } from './place';
 
@@ -7,6 +8,7 @@ export interface Measured {
   place: PlaceFit;
   spread: Spread;
   evidence: Evidence;
+  zero: ZeroChoice;
   /** Spacing in px before optional terms were added to the model. */
   plainSpacingPx: number;
 }

@@ -1,5 +1,6 @@
 import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { fitBands, fitTilt, type BandFit, type LightLimits, type TiltFit } from '@/lib/fit/fit-bands';
+import { spreadOf } from '@/lib/fit/spread';
 import type { StartValues } from '@/lib/fit/start-values';
 import { leanOfBands } from '@/lib/fit/lean';
 import { coordinatesIn, pointAlong, toDegrees, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
@@ -61,6 +62,52 @@ export function lookAtPlace(ask: PlaceAsk): PlaceFit | null {
   const band = fitBands(stack, spacingPx, prior, lightLimits(picture), leaveOut, { from: null, rounds: 2, zeroShift });
   if (band === null) return null;
   return { rect, stack, band, tilt: fitTilt(stack, band.shifts) };
+}
+
+/** Shares of the way from the region that was found to the frame's edge that are tried, longest first. */
+const GROWTHS = [1, 0.35];
+/** A longer region must not make the spacing less sure than this ratio. */
+const NOT_WORSE = 1.02;
+
+/**
+ * Tries the same pattern in a longer region, up to the frame's edges: weak outer fringes and the light beside the pattern
+ * make the spacing surer, clutter makes it less sure. What counts is the honest uncertainty, misfit included.
+ */
+export function growPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit {
+  const sure = relativeU(look);
+  for (const share of GROWTHS) {
+    const rect = lengthened(ask.picture, look.rect, share);
+    if (rect.lengthPx < 1.06 * look.rect.lengthPx) continue;
+    const from = startFrom(look, rect);
+    const stack = straighten(ask.picture, rect, gridFor(rect, from.spacing, true));
+    const band = fitBands(stack, from.spacing, ask.prior, lightLimits(ask.picture), ask.leaveOut, { from, rounds: 2, zeroShift: ask.zeroShift });
+    if (band === null) continue;
+    const longer: PlaceFit = { rect, stack, band, tilt: fitTilt(stack, band.shifts) };
+    const spacing = band.fit.result.parameters[0] * band.fit.unitPx;
+    if (Math.abs(spacing / from.spacing - 1) < 0.03 && relativeU(longer) < NOT_WORSE * sure) return longer;
+  }
+  return look;
+}
+
+function relativeU(place: PlaceFit): number {
+  const spread = spreadOf(place.band);
+  return spread === null ? Infinity : Math.sqrt(spread.covariance[0]) / place.band.fit.result.parameters[0];
+}
+
+/** The rectangle lengthened at both ends by a share of what is missing to the frame's edge. */
+function lengthened(picture: Picture, rect: Rectangle, share: number): Rectangle {
+  const corners = [
+    [0, 0],
+    [picture.widthPx, 0],
+    [0, picture.heightPx],
+    [picture.widthPx, picture.heightPx],
+  ].map(([x, y]) => coordinatesIn(rect, x, y).u);
+  const from = -rect.lengthPx / 2;
+  const to = rect.lengthPx / 2;
+  const u0 = from + share * Math.min(0, Math.min(...corners) - from);
+  const u1 = to + share * Math.max(0, Math.max(...corners) - to);
+  const centre = pointAlong(rect, (u0 + u1) / 2);
+  return { ...rect, cxPx: centre.xPx, cyPx: centre.yPx, lengthPx: u1 - u0 };
 }
 
 /** Straightens and fits from a first look, turning the region until the fringes stand square in it. */
