@@ -69,6 +69,10 @@ export class Desk {
       .analyze();
     const serious = violations.filter((v) => v.impact === 'serious' || v.impact === 'critical');
     expect(serious.map((v) => `${v.id}: ${v.nodes.map((n) => n.target.join(' ')).join(', ')}`)).toEqual([]);
+    await this.expectNoSideways();
+  }
+
+  async expectNoSideways(): Promise<void> {
     const over = await this.page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth);
     expect(over).toBeLessThanOrEqual(0);
   }

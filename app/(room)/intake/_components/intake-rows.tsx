@@ -65,8 +65,9 @@ const ON_THE_WAY: Record<string, string> = {
 export function FrameLine({ frame, spanMm, sameAs, onSend, onReplace }: FrameLineProps) {
   const [asking, setAsking] = useState(false);
   const { reading } = frame;
-  const state = stateOf(frame);
   const drafted = reading?.status === 'draft';
+  // Here it is the frame one waits for: a fitted frame whose reading is still a draft is fitted.
+  const state = stateOf(drafted ? { state: frame.state, reading: null } : frame);
   const again = sameAs === null ? '' : 'The same file was here already; nothing was stored twice. ';
   return (
     <Line
