@@ -11,6 +11,8 @@ import { RegionFields } from './region-fields';
 
 /** Size of the frame, from the row or from the fit; null for a file without a picture. */
 export function pictureOf(frame: FrameView): { widthPx: number; heightPx: number } | null {
+  // A file that breaks off may still have said its size; there is nothing to lay a calliper on.
+  if (frame.state === 'unreadable') return null;
   if (frame.widthPx && frame.heightPx) return { widthPx: frame.widthPx, heightPx: frame.heightPx };
   return frame.shown?.result.picture ?? null;
 }
@@ -25,7 +27,19 @@ interface PhotoProps {
 /** Photo with the calliper, and the same region in numbers. */
 export function PhotoPart({ frame, desk, mayFit, onKeys }: PhotoProps) {
   const picture = pictureOf(frame);
-  if (!picture) return <p className="text-small text-ink-2">The file gives no picture.</p>;
+  if (!picture) {
+    return (
+      <>
+        <div className="cap">
+          <h2>Photo</h2>
+          <a className="link" href={`/api/frames/${frame.id}/original`} download={frame.fileName}>
+            the file as received
+          </a>
+        </div>
+        <p className="text-small text-ink-2">The file gives no picture.</p>
+      </>
+    );
+  }
   const change = mayFit ? (region: Region) => desk.setRegion(region) : undefined;
   return (
     <>

@@ -1,9 +1,10 @@
 'use client';
 
 import { useState } from 'react';
+import { Button } from '@/components/ui/button';
 import { FRAME_WORDS } from '@/lib/domain/life-cycle';
 import type { FrameView, May } from '@/lib/domain/views';
-import { specificationOf } from '@/lib/client/words';
+import { publishedOf, specificationOf } from '@/lib/client/words';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
 import { TILT_STEP_DEG, turn } from '@/lib/client/region';
@@ -18,7 +19,7 @@ import { ReadingsOfFrame } from './readings-of-frame';
 import { Budget, Result } from './result';
 import { SendBox } from './send-box';
 import { FrameStory } from './frame-story';
-import { NewFitStage, scaleOfFit } from './new-fit-stage';
+import { NewFitStage, scaleOfFit, uScaleOfFit } from './new-fit-stage';
 
 interface Props {
   frame: FrameView;
@@ -57,10 +58,15 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
           <p className="mb-2 text-lead font-medium text-ink">{FRAME_WORDS[frame.state]}</p>
           <p>{frame.message ?? 'The frame is not fitted yet.'}</p>
           {may.fit && pictureOf(frame) ? (
-            <p className="mt-3">
-              Where the fringes can be seen, set the calliper on them: the region is then fitted as you set
-              it.
-            </p>
+            <>
+              <p className="mt-3">
+                Where the fringes can be seen, set the calliper on them: the region is then fitted as you set
+                it.
+              </p>
+              <Button className="mt-4" busy={desk.preview.working} onClick={desk.fitAsItStands}>
+                Fit the region as it stands
+              </Button>
+            </>
           ) : null}
         </StageNote>
       )}
@@ -99,7 +105,8 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
               judgement={shown.judgement}
               specification={specificationOf(frame.subject)}
               scaleUmPerPx={reading?.setup.scaleUmPerPx.value ?? (fit ? scaleOfFit(fit) : 0)}
-              uScaleUmPerPx={reading?.setup.scaleUmPerPx.u ?? 0}
+              uScaleUmPerPx={reading?.setup.scaleUmPerPx.u ?? (fit ? uScaleOfFit(fit) : 0)}
+              publishedVacuumNm={publishedOf(frame.subject)}
             />
             <Budget result={shown.result} />
           </>

@@ -9,6 +9,11 @@ export function scaleOfFit(fit: FitPreview): number {
   return fit.result.budget.find((row) => row.unit === 'µm/px')?.value ?? 0;
 }
 
+/** Its standard uncertainty. */
+export function uScaleOfFit(fit: FitPreview): number {
+  return fit.result.budget.find((row) => row.unit === 'µm/px')?.u ?? 0;
+}
+
 interface Props {
   fit: FitPreview;
   desk: RegionDesk;

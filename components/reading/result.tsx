@@ -5,7 +5,7 @@ import { BudgetBars } from '@/components/figures/budget-bars';
 import { RULE_WORDS } from '@/lib/client/words';
 import type { ReadingResult } from '@/lib/domain/reading-result';
 import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
-import { formatNumber, formatQuantity } from '@/lib/quantity/format';
+import { formatNumber, formatQuantity, formatSigned, placesFor } from '@/lib/quantity/format';
 
 export interface ResultProps {
   result: ReadingResult;
@@ -18,6 +18,8 @@ export interface ResultProps {
   scaleUmPerPx: number;
   /** Standard uncertainty of the scale, for the spacing in mm. */
   uScaleUmPerPx: number;
+  /** For a reference source: its published wavelength in vacuum, nm. */
+  publishedVacuumNm: number | null;
 }
 
 /** Verdict, value and where it stands; the largest thing on the page. */
@@ -68,15 +70,19 @@ export function Result(props: ResultProps) {
   );
 }
 
-function Lines({ result, wavelengthNm, medium, scaleUmPerPx, uScaleUmPerPx }: ResultProps) {
+function Lines({
+  result,
+  wavelengthNm,
+  medium,
+  scaleUmPerPx,
+  uScaleUmPerPx,
+  publishedVacuumNm,
+}: ResultProps) {
   const spacingMm = (result.spacingPx * scaleUmPerPx) / 1000;
   const relative = Math.hypot(result.uSpacingPx / result.spacingPx, uScaleUmPerPx / scaleUmPerPx);
   const spacing = formatQuantity(spacingMm, 2 * spacingMm * relative);
   const other = medium === 'air' ? result.wavelengthVacuumNm : result.wavelengthNm;
-  const places =
-    wavelengthNm !== null && result.expandedNm
-      ? Math.max(2, formatQuantity(0, result.expandedNm).value.length - 2)
-      : 2;
+  const places = placesFor(result.expandedNm ?? 0.5);
   return (
     <p className="res-k">
       {result.k === null ? '' : `k = ${formatNumber(result.k, 2)}`}
@@ -88,6 +94,13 @@ function Lines({ result, wavelengthNm, medium, scaleUmPerPx, uScaleUmPerPx }: Re
       <b>
         {spacing.value} ± {spacing.uncertainty} mm
       </b>
+      {publishedVacuumNm !== null && result.wavelengthVacuumNm !== null ? (
+        <>
+          <br />
+          From the published value{' '}
+          <b>{formatSigned(result.wavelengthVacuumNm - publishedVacuumNm, places)} nm</b>
+        </>
+      ) : null}
     </p>
   );
 }

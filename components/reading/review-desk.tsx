@@ -4,7 +4,7 @@ import { useRouter } from 'next/navigation';
 import { useState } from 'react';
 import { readingMay } from '@/lib/domain/life-cycle';
 import type { ReadingView, ReviewView } from '@/lib/domain/views';
-import { specificationOf, subjectName } from '@/lib/client/words';
+import { publishedOf, specificationOf, subjectName } from '@/lib/client/words';
 import { TILT_STEP_DEG, turn } from '@/lib/client/region';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
@@ -137,6 +137,7 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             specification={specificationOf(frame.subject)}
             scaleUmPerPx={reading.setup.scaleUmPerPx.value}
             uScaleUmPerPx={reading.setup.scaleUmPerPx.u}
+            publishedVacuumNm={publishedOf(frame.subject)}
           />
           <Budget result={shown.result} />
           <ReadingsOfFrame

@@ -18,6 +18,8 @@ export interface RegionDesk {
   /** Counts all orders from the one that now has this number. */
   zeroAt: (m: number) => void;
   drop: () => void;
+  /** Fits the region as it stands, where there is no reading yet to differ from. */
+  fitAsItStands: () => void;
 }
 
 interface Start {
@@ -39,16 +41,16 @@ export function useRegionChange({ frameId, picture, reading }: Start): RegionDes
     }),
     [reading, picture],
   );
-  const [state, setState] = useState({ from: reading?.id ?? null, now: start });
+  const [state, setState] = useState({ from: reading?.id ?? null, now: start, asked: false });
   // Another reading is shown: start again from it.
-  if (state.from !== (reading?.id ?? null)) setState({ from: reading?.id ?? null, now: start });
+  if (state.from !== (reading?.id ?? null)) setState({ from: reading?.id ?? null, now: start, asked: false });
 
   const { region, leaveOut, zeroShift } = state.now;
   const changed =
     !sameRegion(region, start.region) ||
     !sameNumbers(leaveOut, start.leaveOut) ||
     zeroShift !== start.zeroShift;
-  const change = changed ? state.now : null;
+  const change = changed || state.asked ? state.now : null;
   const preview = usePreviewFit(frameId, reading?.id ?? null, change);
   const set = (part: Partial<RegionChange>) =>
     setState((before) => ({ ...before, now: { ...before.now, ...part } }));
@@ -63,6 +65,7 @@ export function useRegionChange({ frameId, picture, reading }: Start): RegionDes
     toggleOrder: (m) =>
       set({ leaveOut: leaveOut.includes(m) ? leaveOut.filter((o) => o !== m) : [...leaveOut, m] }),
     zeroAt: (m) => set({ zeroShift: zeroShift - m, leaveOut: leaveOut.map((o) => o - m) }),
-    drop: () => set(start),
+    drop: () => setState((before) => ({ ...before, now: start, asked: false })),
+    fitAsItStands: () => setState((before) => ({ ...before, asked: true })),
   };
 }

@@ -45,6 +45,11 @@ export function specificationOf(subject: Subject): Specification | null {
   return subject.kind === 'unit' ? subject.specification : null;
 }
 
+/** Published wavelength in vacuum of a reference source, nm. */
+export function publishedOf(subject: Subject): number | null {
+  return subject.kind === 'source' ? subject.vacuumNm : null;
+}
+
 export function count(n: number, one: string, many = `${one}s`): string {
   return `${formatNumber(n, 0)} ${n === 1 ? one : many}`;
 }
