@@ -2,6 +2,7 @@
 import { z } from 'zod';
 import { LIMITS } from './limits';
 import { ROLES } from './roles';
+import { SCALE_KINDS } from './scale-result';
 import { OUTCOMES, RETURN_REASONS } from './views';
 
 const finite = (what: string) =>
@@ -196,17 +197,45 @@ export const nothingSchema = z.void();
 
 /** ---- what routes take from path and query, where everything comes as text ---- */
 const idText = z.coerce.number<string>().int().positive();
-const maybeIdText = z.preprocess((text) => (text === '' || text === undefined ? null : text), idText.nullable());
+const maybeIdText = z.preprocess(
+  (text) => (text === '' || text === undefined ? null : text),
+  idText.nullable(),
+);
 export const frameIdSchema = z.object({ id: idText });
 export const uploadSchema = z.object({
   name: z.string().min(1, 'The file has no name.').max(1000),
   benchId: idText,
   lotId: maybeIdText,
-  serial: z.string().trim().max(LIMITS.serialLength).default('').transform((serial) => serial || null),
+  serial: z
+    .string()
+    .trim()
+    .max(LIMITS.serialLength)
+    .default('')
+    .transform((serial) => serial || null),
   sourceId: maybeIdText,
 });
 export const statusSchema = z.object({
-  ids: z.string().transform((text) => text.split(',')).pipe(z.array(idText).min(1).max(LIMITS.filesAtOnce)),
+  ids: z
+    .string()
+    .transform((text) => text.split(','))
+    .pipe(z.array(idText).min(1).max(LIMITS.filesAtOnce)),
 });
-export const previewFitSchema = regionChangeSchema.extend({ id: idText, readingId: id.nullable().default(null) });
-export const overTimeSchema = z.object({ bench: maybeIdText, choice: z.string().max(40).default(''), last: z.coerce.number().int().min(0).max(100_000).default(0) });
+export const previewFitSchema = regionChangeSchema.extend({
+  id: idText,
+  readingId: id.nullable().default(null),
+});
+export const overTimeSchema = z.object({
+  bench: maybeIdText,
+  choice: z.string().max(40).default(''),
+  last: z.coerce.number().int().min(0).max(100_000).default(0),
+});
+export const scaleSchema = z.object({
+  kind: z.enum(SCALE_KINDS),
+  pitchMm: z.coerce.number().pipe(positive('The pitch')),
+  /** Expanded uncertainty (k = 2) of the pitch in per cent of it, as a ruler's maker states it. */
+  pitchPercent: z.coerce
+    .number()
+    .min(0, 'The ± of the pitch is not negative.')
+    .max(10, 'A scale this uncertain is no scale.')
+    .default(0),
+});

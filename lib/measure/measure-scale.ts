@@ -36,6 +36,7 @@ export function measureScale(
   const scaleUmPerPx = (pitchMm * 1000) / answer.pitchPx;
   const uRelative = Math.hypot(answer.uPitchPx / answer.pitchPx, uPitchRelative);
   return {
+    ok: true,
     kind,
     pitchMm,
     scaleUmPerPx,
@@ -48,7 +49,7 @@ export function measureScale(
 
 type Geometry = Omit<
   ScaleAnswer,
-  'kind' | 'pitchMm' | 'scaleUmPerPx' | 'uScaleUmPerPx' | 'widthPx' | 'heightPx'
+  'ok' | 'kind' | 'pitchMm' | 'scaleUmPerPx' | 'uScaleUmPerPx' | 'widthPx' | 'heightPx'
 >;
 
 function notFound(what: string): Refused {

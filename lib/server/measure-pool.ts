@@ -1,6 +1,7 @@
 import 'server-only';
 import { Piscina } from 'piscina';
 import type { FitOptions, FrameAnswer, SetupValues } from '@/lib/domain/reading-result';
+import type { ScaleAnswer, ScaleKind, ScaleRefusal } from '@/lib/domain/scale-result';
 import { env } from './env';
 
 export interface PreviewPicture {
@@ -41,6 +42,18 @@ export async function analyseInPool(
 export async function previewInPool(bytes: Uint8Array<ArrayBuffer>): Promise<PreviewPicture | null> {
   const answer: unknown = await pool().run({ task: 'preview', bytes }, { transferList: [bytes.buffer] });
   return answer as PreviewPicture | null;
+}
+
+/** The pixel scale of a photographed ruler or grid. The bytes are handed over. */
+export async function scaleInPool(
+  bytes: Uint8Array<ArrayBuffer>,
+  wanted: { kind: ScaleKind; pitchMm: number; uPitchRelative: number },
+): Promise<ScaleAnswer | ScaleRefusal> {
+  const answer: unknown = await pool().run(
+    { task: 'scale', bytes, ...wanted },
+    { transferList: [bytes.buffer] },
+  );
+  return answer as ScaleAnswer | ScaleRefusal;
 }
 
 export async function closePool(): Promise<void> {

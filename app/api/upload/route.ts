@@ -3,6 +3,7 @@ import { LIMITS } from '@/lib/domain/limits';
 import { uploadSchema } from '@/lib/domain/schemas';
 import { receiveFrame, tooLarge } from '@/lib/server/commands/receive-frame';
 import { defineRoute } from '@/lib/server/define-route';
+import { bodyOf, readAway } from '@/lib/server/request-body';
 import { framesByIds } from '@/lib/server/queries/frames';
 
 /** One file per call, its bytes as the body. Answers 201 when bytes and row are both durable. */
@@ -32,28 +33,8 @@ export const POST = defineRoute({
       const [frame] = await framesByIds([frameId]);
       return Response.json({ frameId, sameAs, frame }, { status: 201 });
     } catch (problem) {
-      // A browser shows an answer that comes before it has sent everything as a broken line, so the rest is read away.
       await readAway(body);
       throw problem;
     }
   },
 });
-
-/** The body part by part, once: a refusal half way can go on where it stopped. */
-function bodyOf(request: Request): AsyncIterableIterator<Uint8Array> {
-  const reader = request.body?.getReader();
-  return {
-    async next() {
-      const part = await reader?.read();
-      return part?.value ? { done: false, value: part.value } : { done: true, value: undefined };
-    },
-    [Symbol.asyncIterator]() {
-      return this;
-    },
-  };
-}
-
-async function readAway(body: AsyncIterableIterator<Uint8Array>): Promise<void> {
-  let part = await body.next();
-  while (!part.done) part = await body.next();
-}

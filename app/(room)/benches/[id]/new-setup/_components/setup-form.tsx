@@ -10,7 +10,8 @@ import { useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import type { SetupView } from '@/lib/domain/views';
 import { SETUP_VALUES } from '../../../_components/setup-values';
-import { changesOf, inputOf, startText, type SetupInput } from './setup-text';
+import { changesOf, inputOf, scaleText, startText, type SetupInput } from './setup-text';
+import { ScalePhoto } from './scale-photo';
 import { ValueBlock } from './value-block';
 
 interface Props {
@@ -62,6 +63,16 @@ export function SetupForm({ benchId, before, addSetup }: Props) {
           onChange={(value) => setText({ ...text, values: { ...text.values, [spec.key]: value } })}
         />
       ))}
+      <div className="py-4">
+        <ScalePhoto
+          onUse={(reading) =>
+            setText({
+              ...text,
+              values: { ...text.values, scaleUmPerPx: scaleText(reading, text.values.scaleUmPerPx) },
+            })
+          }
+        />
+      </div>
       <div className="value-block">
         <Field
           label="Re-mount, standard uncertainty, nm"

@@ -2,8 +2,9 @@
 import type { z } from 'zod';
 import { parseMaybe, parseNumber } from '@/lib/client/use-submit';
 import type { setupSchema } from '@/lib/domain/schemas';
+import { SCALE_WORDS, type ScaleReading } from '@/lib/domain/scale-result';
 import type { SetupView, StatedValue } from '@/lib/domain/views';
-import { formatNumber, formatPercent, formatQuantity } from '@/lib/quantity/format';
+import { formatNumber, formatPercent, formatQuantity, placesFor } from '@/lib/quantity/format';
 import { SETUP_VALUES, type ValueKey } from '../../../_components/setup-values';
 
 export interface ValueText {
@@ -74,6 +75,19 @@ export function inputOf(benchId: number, before: SetupView | null, text: SetupTe
     remountNm: remount === null ? null : { u: remount, dof: parseMaybe(text.remountDof) },
     tone: text.tone,
     why: text.why,
+  };
+}
+
+/** The pixel scale's fields from a photographed scale; the certificate names the stored picture by its fingerprint. */
+export function scaleText({ scale, sha256 }: ScaleReading, before: ValueText): ValueText {
+  const places = placesFor(2 * scale.uScaleUmPerPx) + 1;
+  const what = scale.kind === 'lines' ? 'lines' : 'corners';
+  return {
+    ...before,
+    value: scale.scaleUmPerPx.toFixed(places),
+    stated: (2 * scale.uScaleUmPerPx).toFixed(places),
+    k: '2',
+    certificate: `${SCALE_WORDS[scale.kind]} photographed, ${scale.points.length} ${what} ${scale.pitchMm} mm apart, picture ${sha256.slice(0, 16)}`,
   };
 }
 
