@@ -84,6 +84,35 @@ async function frames(): Promise<void> {
   await writeFile(path.join(FRAMES, 'truth.json'), `${JSON.stringify(truth, null, 1)}\n`);
 }
 
+/** Pitch of the drawn ruler's ticks, px; with ticks 1 mm apart the scale is 1000 / 17.3 µm/px. */
+const RULER_PITCH_PX = 17.3;
+
+/** A light ruler with ticks of three lengths, turned by 4°, drawn with soft edges and 4 × 4 points a pixel. */
+async function ruler(): Promise<void> {
+  const width = 700;
+  const height = 360;
+  const angle = (4 * Math.PI) / 180;
+  const light = (x: number, y: number): number => {
+    const u = ((x - width / 2) * Math.cos(angle) + (y - height / 2) * Math.sin(angle)) / RULER_PITCH_PX;
+    const v = -(x - width / 2) * Math.sin(angle) + (y - height / 2) * Math.cos(angle);
+    if (Math.abs(v) > 120) return 0.3;
+    const n = Math.round(u);
+    const length = n % 10 === 0 ? 95 : n % 5 === 0 ? 72 : 50;
+    const dark = v < -120 + length ? 1 / (1 + Math.exp((Math.abs(u - n) * RULER_PITCH_PX - 1.3) / 0.5)) : 0;
+    return 0.75 - 0.6 * dark;
+  };
+  const points = [0.125, 0.375, 0.625, 0.875];
+  const samples = new Uint8Array(width * height);
+  for (let i = 0; i < samples.length; i += 1) {
+    const [x, y] = [i % width, Math.floor(i / width)];
+    let sum = 0;
+    for (const dy of points) for (const dx of points) sum += light(x + dx, y + dy) / 16;
+    samples[i] = Math.round(255 * sum);
+  }
+  const image = sharp(samples, { raw: { width, height, channels: 1 } }).toColourspace('b-w');
+  await writeFile(path.join(FRAMES, 'ruler.png'), await image.png().toBuffer());
+}
+
 /** A PNG header that claims a size no memory holds, with an honest checksum and no pixels. */
 function pictureBomb(): Buffer {
   const chunk = (name: string, data: Buffer): Buffer => {
@@ -139,6 +168,7 @@ async function main(): Promise<void> {
   await mkdir(FRAMES, { recursive: true });
   await mkdir(HOSTILE, { recursive: true });
   await frames();
+  await ruler();
   await hostile();
 }
 

@@ -128,6 +128,38 @@ describe('the main job', () => {
     await admin.expectAccessible();
   });
 
+  test('the pixel scale comes from a photographed ruler and names the stored picture', async () => {
+    const { page } = admin;
+    await page.goto('/benches');
+    await page
+      .getByRole('link', { name: /Bench 7/ })
+      .first()
+      .click();
+    await page.waitForURL(/\/benches\/\d+$/);
+    await page.goto(`${new URL(page.url()).pathname}/new-setup`);
+    await page.getByRole('button', { name: 'Pixel scale from a photographed scale…' }).click();
+    await page
+      .getByLabel('Picture of the scale')
+      .setInputFiles([await fixture('frames/ruler.png', 'ruler.png')]);
+    // The ruler of fixtures/ is drawn with 17.3 px from tick to tick, 1 mm apart: 57.803 µm/px.
+    await page.getByText(/lines found, 1\.00 mm apart/).waitFor();
+    await admin.expectAccessible();
+    await page.getByRole('button', { name: 'Use this value' }).click();
+    const value = Number(
+      await page
+        .getByLabel(/^Pixel scale/)
+        .first()
+        .inputValue(),
+    );
+    expect(Math.abs(value - 1000 / 17.3)).toBeLessThan(0.02);
+    expect(
+      await page
+        .getByRole('group', { name: /^Pixel scale/ })
+        .getByLabel('Certificate')
+        .inputValue(),
+    ).toMatch(/picture [0-9a-f]{16}/);
+  });
+
   test('the technician takes frames; each says what became of it without a reload', async () => {
     const { page } = technician;
     await technician.signIn(EMAIL.technician);
