@@ -69,13 +69,14 @@ const line = new Float64Array(2 * N);
 const lineOut = new Float64Array(2 * N);
 const grid = new Float64Array(2 * N * N);
 
-/** Power spectrum of one tile after removal of its mean and slopes, under a Hann window. Entry [ky * N + kx]. */
+/** Power spectrum of one tile after removal of its mean and slopes, under a sine window. Entry [ky * N + kx]. */
 function tilePower(plane: Plane, x0: number, y0: number, power: Float32Array): void {
   const tw = Math.min(N, plane.widthPx);
   const th = Math.min(N, plane.heightPx);
   const { mean, sx, sy } = tilt(plane, x0, y0, tw, th);
-  const wx = hann(tw);
-  const wy = hann(th);
+  // A tile that is the whole picture keeps more of its ends: there are only a few fringes to tell from the outline.
+  const wx = taper(tw, tw === plane.widthPx ? 1 : 2);
+  const wy = taper(th, th === plane.heightPx ? 1 : 2);
   grid.fill(0);
   for (let y = 0; y < th; y++) {
     line.fill(0);
@@ -95,8 +96,8 @@ function tilePower(plane: Plane, x0: number, y0: number, power: Float32Array): v
   }
 }
 
-function hann(n: number): Float64Array {
-  return Float64Array.from({ length: n }, (_, i) => Math.sin((Math.PI * (i + 0.5)) / n) ** 2);
+function taper(n: number, power: number): Float64Array {
+  return Float64Array.from({ length: n }, (_, i) => Math.sin((Math.PI * (i + 0.5)) / n) ** power);
 }
 
 function tilt(plane: Plane, x0: number, y0: number, tw: number, th: number): { mean: number; sx: number; sy: number } {
@@ -117,57 +118,69 @@ function tilt(plane: Plane, x0: number, y0: number, tw: number, th: number): { m
   return { mean: s / n, sx: bx / ((n * (tw * tw - 1)) / 12), sy: by / ((n * (th * th - 1)) / 12) };
 }
 
-/** Up to two peaks of the half plane kx >= 0, weighted by amplitude, by their share of the energy and by the tile's size. */
+const PEAKS_PER_TILE = 3;
+/** A peak must stand this far above the median power of its tile. */
+const PROMINENCE = 10;
+
+/**
+ * Local peaks of the half plane kx >= 0, those at finer periods preferred where power is alike (the light's own outline fills
+ * the low end), weighted by amplitude, by their share of the energy that is not coarser than they are, and by the tile's size.
+ */
 function tilePeaks(power: Float32Array, plane: Plane): WaveCandidate[] {
   const highest = plane.factor === 1 ? N / FINEST_PERIOD_PX : N / 3.6;
-  let total = 0;
-  const found: WaveCandidate[] = [];
-  const inRange = (kx: number, ky: number) => {
-    const k = Math.hypot(kx, ky);
-    return k >= LOWEST_BIN && k <= highest;
-  };
-  for (let y = 0; y < N; y++) {
-    const ky = y < N / 2 ? y : y - N;
-    for (let kx = 0; kx <= N / 2; kx++) if (Math.hypot(kx, ky) >= 1.5) total += power[y * N + kx];
-  }
-  if (total === 0) return [];
-  const at = (kx: number, ky: number) => power[((ky + N) % N) * N + kx];
-  for (let n = 0; n < 2; n++) {
-    let best = 0;
-    let bx = 0;
-    let by = 0;
+  const at = (kx: number, ky: number) => power[((ky + N) % N) * N + (kx < 0 ? -kx : kx)];
+  const sorted = Float32Array.from(power.subarray(0, N * N)).sort();
+  const noise = sorted[Math.floor(0.75 * N * N)];
+  // Energy by distance from the middle, so that the share of what is not coarser is a sum of a few rings.
+  const rings = new Float64Array(N);
+  const peaks: { kx: number; ky: number; k: number; rank: number }[] = [];
+  for (let ky = -N / 2 + 1; ky < N / 2; ky++) {
     for (let kx = 0; kx <= N / 2; kx++) {
-      for (let ky = -N / 2 + 1; ky < N / 2; ky++) {
-        if (kx === 0 && ky <= 0) continue;
-        const p = at(kx, ky);
-        if (p > best && inRange(kx, ky) && !found.some((f) => Math.hypot(f.kx * plane.factor * N - kx, f.ky * plane.factor * N - ky) < 3)) {
-          best = p;
-          bx = kx;
-          by = ky;
-        }
-      }
+      const p = at(kx, ky);
+      const k = Math.hypot(kx, ky);
+      rings[Math.floor(k)] += p;
+      if (k < LOWEST_BIN || k > highest || (kx === 0 && ky <= 0) || !(p > PROMINENCE * noise)) continue;
+      if (!isLocalPeak(power, kx, ky)) continue;
+      peaks.push({ kx, ky, k, rank: p * k * k });
     }
-    if (best === 0) break;
+  }
+  peaks.sort((a, b) => b.rank - a.rank);
+  // A tile with few rows or columns smears its peak over that many bins.
+  const rx = Math.max(1, Math.round((0.6 * N) / Math.min(N, plane.widthPx)));
+  const ry = Math.max(1, Math.round((0.6 * N) / Math.min(N, plane.heightPx)));
+  return peaks.slice(0, PEAKS_PER_TILE).map((peak) => {
     let e = 0;
     let mx = 0;
     let my = 0;
-    // A tile with few rows or columns smears its peak over that many bins.
-    const rx = Math.max(1, Math.round((0.6 * N) / Math.min(N, plane.widthPx)));
-    const ry = Math.max(1, Math.round((0.6 * N) / Math.min(N, plane.heightPx)));
     for (let dx = -rx; dx <= rx; dx++) {
       for (let dy = -ry; dy <= ry; dy++) {
-        const kx = bx + dx;
-        if (kx < 0 || kx > N / 2 || Math.abs(by + dy) >= N / 2) continue;
-        const p = at(kx, by + dy);
+        const kx = peak.kx + dx;
+        if (kx < 0 || kx > N / 2 || Math.abs(peak.ky + dy) >= N / 2) continue;
+        const p = at(kx, peak.ky + dy);
         e += p;
         mx += p * kx;
-        my += p * (by + dy);
+        my += p * (peak.ky + dy);
       }
     }
-    const share = e / total;
-    found.push({ kx: mx / e / N / plane.factor, ky: my / e / N / plane.factor, weight: Math.sqrt(e) * share * plane.factor });
+    let total = e;
+    for (let r = Math.floor(0.7 * peak.k); r < N; r++) total += rings[r];
+    return { kx: mx / e / N / plane.factor, ky: my / e / N / plane.factor, weight: Math.sqrt(e) * ((2 * e) / total) * plane.factor };
+  });
+}
+
+function isLocalPeak(power: Float32Array, kx: number, ky: number): boolean {
+  const here = power[((ky + N) % N) * N + kx];
+  for (let dy = -1; dy <= 1; dy++) {
+    for (let dx = -1; dx <= 1; dx++) {
+      if (dx === 0 && dy === 0) continue;
+      // The spectrum of a real picture: P(-kx, ky) = P(kx, -ky); beyond the last column there is nothing to compare.
+      const x = kx + dx;
+      const y = x < 0 ? -(ky + dy) : ky + dy;
+      if (x > N / 2) continue;
+      if (power[((y + 2 * N) % N) * N + Math.abs(x)] > here) return false;
+    }
   }
-  return found;
+  return true;
 }
 
 /** Greedy clusters of votes whose wave vectors agree to a fifth, strongest first. */
