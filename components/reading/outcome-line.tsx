@@ -12,6 +12,8 @@ interface Props {
   outcome: UnitRow['outcome'];
   mayChange: boolean;
   setOutcome: SetOutcome;
+  /** In a list: the word stands once over the column, so each row only says it aloud. */
+  compactFor?: string;
 }
 
 function isOutcome(word: string): word is Outcome {
@@ -19,7 +21,7 @@ function isOutcome(word: string): word is Outcome {
 }
 
 /** What becomes of the unit: its own line, apart from the decision about the fit. */
-export function OutcomeLine({ unitId, outcome, mayChange, setOutcome }: Props) {
+export function OutcomeLine({ unitId, outcome, mayChange, setOutcome, compactFor }: Props) {
   const router = useRouter();
   const id = useId();
   const kept = outcome?.outcome ?? '';
@@ -45,9 +47,15 @@ export function OutcomeLine({ unitId, outcome, mayChange, setOutcome }: Props) {
     });
   return (
     <div>
-      <div className="outcome">
-        <label htmlFor={id}>
-          Outcome<small>of the unit</small>
+      <div className={compactFor ? undefined : 'outcome'}>
+        <label htmlFor={id} className={compactFor ? 'only-heard' : undefined}>
+          {compactFor ? (
+            `Outcome of ${compactFor}`
+          ) : (
+            <>
+              Outcome<small>of the unit</small>
+            </>
+          )}
         </label>
         <select
           id={id}

@@ -72,7 +72,21 @@ export default async function Lot({ params, searchParams }: Props) {
       {can(me, 'units.add') && !lot.closedAt ? <AddUnits lotId={id} addUnits={addUnits} /> : null}
       {lot.rows.length ? (
         <>
-          <div className="plain-list" style={{ borderBottom: 0 }} role="list" aria-label="Units, by serial">
+          <div className="unit-row unit-heads" aria-hidden="true">
+            <span>Serial</span>
+            <span>
+              Wavelength <span className="sym">λ</span>, k = 2
+            </span>
+            <span>Against tolerance</span>
+            <span className="pl-2.5">Verdict</span>
+            <span>Outcome of the unit</span>
+          </div>
+          <div
+            className="plain-list"
+            style={{ borderBottom: 0, marginTop: 0 }}
+            role="list"
+            aria-label="Units, by serial"
+          >
             {lot.rows.map((unit) => (
               <UnitLine
                 key={unit.id}

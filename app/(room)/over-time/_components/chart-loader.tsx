@@ -6,7 +6,7 @@ import type { OverTimeView } from '@/lib/domain/views';
 
 // The chart library is large: it comes only with this page, and only in the browser.
 const ControlChart = dynamic(
-  () => import('@/components/figures/control-chart').then((module) => module.ControlChart),
+  () => import('@/components/figures/control-chart/control-chart').then((module) => module.ControlChart),
   {
     ssr: false,
     loading: () => (

@@ -62,7 +62,13 @@ export function UnitLine({ unit, specification, lotId, mayOutcome, setOutcome }:
       <div className="pl-2.5">
         {reading?.judgement ? <SaidVerdict verdict={reading.judgement.verdict} /> : null}
       </div>
-      <OutcomeLine unitId={unit.id} outcome={unit.outcome} mayChange={mayOutcome} setOutcome={setOutcome} />
+      <OutcomeLine
+        compactFor={unit.serial}
+        unitId={unit.id}
+        outcome={unit.outcome}
+        mayChange={mayOutcome}
+        setOutcome={setOutcome}
+      />
     </div>
   );
 }

@@ -7,8 +7,8 @@ import { useLook } from '@/lib/client/look';
 import { useSize } from '@/lib/client/use-size';
 import type { OverTimeView } from '@/lib/domain/views';
 import { formatNumber } from '@/lib/quantity/format';
-import { chartColours } from './control-chart-colours';
-import { controlChartFigure } from './control-chart-figure';
+import { chartColours } from './colours';
+import { controlChartFigure } from './figure';
 
 const Plot = createPlotlyComponent(Plotly);
 
