@@ -8,7 +8,7 @@ import { clearHalfMadeDemo, demoAccountLines, seedWhenEmpty } from './services/d
 import { ensureMariadb } from './services/mariadb.mjs';
 import { ensurePackages, requireNode, requireRoom, whileLocked } from './services/packages.mjs';
 import { isFree } from './services/ports.mjs';
-import { lockFolder, stopEverything, stopLeftOvers } from './services/processes.mjs';
+import { endWithNpm, lockFolder, stopEverything, stopLeftOvers } from './services/processes.mjs';
 import { Stop, say } from './services/say.mjs';
 import { migrateDatabase, startServices } from './services/stack.mjs';
 import { startWeb } from './services/web.mjs';
@@ -90,6 +90,8 @@ for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
     void shutDown(0);
   });
 }
+
+endWithNpm(() => void shutDown(0));
 
 start().catch((problem) => {
   if (stopping) return;

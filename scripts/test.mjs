@@ -16,7 +16,7 @@ import {
   whileLocked,
 } from './services/packages.mjs';
 import { rememberedPorts } from './services/ports.mjs';
-import { lockFolder, run, stopEverything, stopLeftOvers } from './services/processes.mjs';
+import { endWithNpm, lockFolder, run, stopEverything, stopLeftOvers } from './services/processes.mjs';
 import { Stop, say } from './services/say.mjs';
 import { emptyData, migrateDatabase, startServices } from './services/stack.mjs';
 import { startWeb } from './services/web.mjs';
@@ -125,6 +125,8 @@ async function test() {
 }
 
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, () => void shutDown(130));
+
+endWithNpm(() => void shutDown(130));
 
 test().then(
   async ({ passed, failed }) => {

@@ -1,4 +1,5 @@
 import 'server-only';
+import { describe, log } from './log';
 
 /** The body part by part, once: a refusal half way can go on where it stopped. */
 export function bodyOf(request: Request): AsyncIterableIterator<Uint8Array> {
@@ -16,9 +17,13 @@ export function bodyOf(request: Request): AsyncIterableIterator<Uint8Array> {
 
 /**
  * Takes the rest of a body that is refused: a browser shows an answer that comes before it has sent everything as a
- * broken line.
+ * broken line. A line that is broken itself has no rest.
  */
 export async function readAway(body: AsyncIterableIterator<Uint8Array>): Promise<void> {
-  let part = await body.next();
-  while (!part.done) part = await body.next();
+  try {
+    let part = await body.next();
+    while (!part.done) part = await body.next();
+  } catch (problem) {
+    log().debug({ problem: describe(problem) }, 'a refused body broke off');
+  }
 }

@@ -43,11 +43,30 @@ export async function spoolBody(body: AsyncIterable<Uint8Array>, capBytes: numbe
   } catch (problem) {
     await handle.close();
     await dropSpool(file);
-    throw problem;
+    throw broken(problem);
   }
   await handle.close();
   await syncFolder(folder);
   return { path: file, sha256: hash.digest('hex'), bytes, mediaType };
+}
+
+/** What stopped a body half way, in words: a full disk, or a line that broke. */
+function broken(problem: unknown): unknown {
+  if (problem instanceof AppError || !(problem instanceof Error)) return problem;
+  const { code } = problem as NodeJS.ErrnoException;
+  if (code === 'ENOSPC' || code === 'EDQUOT') {
+    const full = new AppError(
+      'STORE_DOWN',
+      'The disk of the server is full, so the file was not taken. Tell whoever looks after it.',
+    );
+    return Object.assign(full, { cause: problem });
+  }
+  const lineBroke = code === 'ECONNRESET' || code === 'ECONNABORTED' || /abort/i.test(problem.name);
+  return lineBroke ? brokeOff() : problem;
+}
+
+export function brokeOff(): AppError {
+  return new AppError('BAD_INPUT', 'The upload broke off before the whole file was here. Send it again.');
 }
 
 /** A new file is durable only when its folder is. */

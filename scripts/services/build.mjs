@@ -45,7 +45,7 @@ async function sourcesHash(root) {
 
 /** The thread that decodes and fits, as one file beside the build. Takes a fraction of a second. */
 export async function bundleWorker(root, outfile) {
-  const { build } = await import('esbuild');
+  const { build, stop } = await import('esbuild');
   await mkdir(path.dirname(outfile), { recursive: true });
   await build({
     absWorkingDir: root,
@@ -58,6 +58,7 @@ export async function bundleWorker(root, outfile) {
     external: ['sharp'],
     logLevel: 'error',
   });
+  await stop(); // its helper process has nothing more to do
 }
 
 /** Builds the pages into `folder` (inside the clone) unless it was built from these very sources. */

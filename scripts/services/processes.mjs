@@ -75,6 +75,15 @@ export async function stopEverything() {
   await Promise.all([...running].map((one) => stopChild(one, 15_000)));
 }
 
+/** Under npm, ends with it: when npm is killed, its shell may leave this process behind without a word. */
+export function endWithNpm(end) {
+  if (!process.env.npm_lifecycle_event) return;
+  const parent = process.ppid;
+  setInterval(() => {
+    if (process.ppid !== parent) end();
+  }, 500).unref();
+}
+
 /** One start per data folder. A lock whose process is gone is no lock. */
 export async function lockFolder(data) {
   const file = path.join(data, 'run', 'start.json');

@@ -1,9 +1,10 @@
 import { randomBytes } from 'node:crypto';
-import { chmod, readFile, rename, writeFile } from 'node:fs/promises';
+import { chmod, mkdir, readFile, rename, writeFile } from 'node:fs/promises';
 import path from 'node:path';
 
 /** Passwords and keys of the local services, made once and kept where only this user reads them. */
 export async function localSecrets(data) {
+  await mkdir(data, { recursive: true });
   const file = path.join(data, 'secrets.json');
   const kept = await readFile(file, 'utf8').then(JSON.parse, () => ({}));
   const secrets = { ...kept };

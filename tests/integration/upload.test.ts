@@ -128,6 +128,7 @@ describe('refused with a sentence, and nothing is left', () => {
       'TOO_LARGE',
       /200 MB/,
     ],
+    ['less than was announced', file(100), {}, { 'content-length': '101' }, 'BAD_INPUT', /broke off/],
     ['a name without a serial', file(100), { name: 'IMG_0001.png' }, {}, 'BAD_INPUT', /No unit of lot 0931/],
     [
       'a serial that only is part of a word',

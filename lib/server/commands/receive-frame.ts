@@ -6,7 +6,7 @@ import { LIMITS } from '@/lib/domain/limits';
 import type { CommandContext } from '../context';
 import { db, select } from '../db';
 import { nudgeQueue } from '../queue';
-import { dropSpool, spoolBody, type Spooled } from '../spool';
+import { brokeOff, dropSpool, spoolBody, type Spooled } from '../spool';
 import { findSubject, type FrameSubject, type SubjectChoice } from '../subject';
 import { landFrame } from './land-frame';
 
@@ -31,6 +31,10 @@ export async function receiveFrame(
   const setup = await setupInForce(incoming.benchId);
   const subject = await findSubject(fileName, incoming);
   const spooled = await spoolBody(incoming.body, LIMITS.fileBytes);
+  if (spooled.bytes !== incoming.declaredBytes) {
+    await dropSpool(spooled.path);
+    throw brokeOff();
+  }
   const frame = await db()
     .tables.frames.create({
       benchId: incoming.benchId,
