@@ -7,7 +7,7 @@ import { tableFor } from '@/lib/fit/bands';
 import { spreadOf, type Spread } from '@/lib/fit/spread';
 import { chooseZero, type ZeroChoice } from '@/lib/fit/zero-order';
 import { decodePicture } from '@/lib/imaging/decode';
-import { findFringes, type FringePlace } from '@/lib/imaging/find-fringes';
+import { angleBetween, findFringes, type FringePlace } from '@/lib/imaging/find-fringes';
 import { pointAlong, toRadians, type Rectangle } from '@/lib/imaging/geometry';
 import type { Picture } from '@/lib/imaging/picture';
 import { Refused } from '@/lib/imaging/refused';
@@ -24,6 +24,7 @@ import { frameEffects, wavelengthOf } from './wavelength';
 export type Clock = () => number;
 
 const PLACES_TRIED = 3;
+const CROSSING_ENERGY = 0.4;
 
 /**
  * The whole way of one frame: bytes -> picture -> fringes found -> bands -> fit -> wavelength and findings.
@@ -55,6 +56,7 @@ export async function analyseFrame(bytes: Uint8Array, setup: SetupValues, option
 /** Tries the likeliest places and keeps the first that stands; else the refusal of the likeliest. */
 function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues, options: FitOptions, timed: (profile: number) => void, clock: Clock): Measured {
   const prior = curvePrior(setup);
+  refuseCrossed(places);
   let refused: Refused | null = null;
   for (const place of places.slice(0, PLACES_TRIED)) {
     try {
@@ -72,6 +74,15 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
   }
   if (refused === null || refused.code === 'NO_FRINGES') refuseByLight(picture);
   throw refused ?? noFringes();
+}
+
+/** Two systems of one spacing that cross: a chessboard, cloth, a pixel screen, but no two-slit pattern. */
+function refuseCrossed(places: FringePlace[]): void {
+  const [first, ...others] = places;
+  const crossing = others.some(
+    (o) => o.patch.energy > CROSSING_ENERGY * first.patch.energy && Math.abs(Math.log(o.spacingPx / first.spacingPx)) < 0.15 && angleBetween(o.rect.angleDeg, first.rect.angleDeg) > 30,
+  );
+  if (crossing) throw noFringes();
 }
 
 /** The full measurement of a place that the quick look found good. */

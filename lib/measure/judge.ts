@@ -18,6 +18,7 @@ const MOST_HARMONIC = 0.2;
 const LEAST_GAIN = 60;
 const LEAST_VISIBILITY = 0.03;
 const MOST_BOW = 0.22;
+const MOST_BARREL = 0.03;
 
 export interface Evidence {
   /** Bright orders that can be seen in the region. */
@@ -82,12 +83,34 @@ function countFringes(place: PlaceFit): number {
   }
   const top = Math.max(...height.values(), 0);
   let count = 0;
+  let first = Infinity;
+  let last = -Infinity;
   for (const [m, h] of height) {
     // A fringe counts when light is seen on both sides of its centre.
     const seen = [0, 1, 2, 3].filter((q) => used.has(q + 8 * m)).length;
-    if (h > 0.04 * top && seen >= 2) count++;
+    if (h > 0.04 * top && seen >= 2) {
+      count++;
+      first = Math.min(first, m);
+      last = Math.max(last, m);
+    }
   }
-  return count;
+  // Two half fringes at the edges are one fringe, not two.
+  const reach = spanInOrders(place, first - 0.5, last + 0.5);
+  return Math.min(count, Math.floor(reach + 0.35));
+}
+
+/** Length of the used profile between two orders, in orders. */
+function spanInOrders(place: PlaceFit, first: number, last: number): number {
+  const { fit, profile } = place.band;
+  let low = Infinity;
+  let high = -Infinity;
+  for (let k = 0; k < profile.size; k++) {
+    if (!Number.isFinite(profile.sigma[k])) continue;
+    const m = orderAt(fit.layout, fit.fixed, fit.result.parameters, toModel(fit, profile.u[k]));
+    low = Math.min(low, Math.max(first, m));
+    high = Math.max(high, Math.min(last, m));
+  }
+  return Math.max(0, high - low);
 }
 
 /** Weighted regression of the profile on 1, z, E, E cos, E cos 2: second coefficient over first. */
@@ -128,15 +151,16 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   }
   const oneSlit = () =>
     new Refused('ONE_SLIT', 'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.');
-  if (fit.result.parameters[2] > MOST_RATIO) throw oneSlit();
   if (evidence.harmonic > MOST_HARMONIC) {
     throw new Refused('MANY_SLITS', 'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.');
   }
+  if (fit.result.parameters[2] > MOST_RATIO) throw oneSlit();
   const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
   const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
   if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence)) throw oneSlit();
   const bow = Math.abs(place.tilt.bowPx) * 1.5;
-  if (bow > MOST_BOW * spacing && bow > 6 * place.tilt.uBowPx) {
+  const barrel = Math.abs(place.tilt.barrel);
+  if ((bow > MOST_BOW * spacing && bow > 6 * place.tilt.uBowPx) || (barrel > MOST_BARREL && barrel > 4 * place.tilt.uBarrel)) {
     throw new Refused('RINGS', 'The fringes are bent like rings, so this is not the pattern of two slits. Look for a second reflection, a window or dust in the beam.');
   }
   if (evidence.fringes < FEWEST_FRINGES) {
