@@ -258,6 +258,9 @@ export interface TiltFit {
   /** Change of spacing along the fringes, relative per px. */
   fan: number;
   uFan: number;
+  /** The same bow in the spacing: relative change of spacing over half the height, even in v. Rings have it. */
+  barrel: number;
+  uBarrel: number;
 }
 
 /** Straight line and parabola through the bands' shifts, straight line through their stretches. */
@@ -270,5 +273,6 @@ export function fitTilt(data: BandData, shifts: BandShifts): TiltFit {
   const squares = data.bandV.map((v) => (v / half) ** 2 - 1 / 3);
   const rest = shifts.shift.map((s, i) => s - line.a - line.b * data.bandV[i]);
   const bow = weightedLine(squares, rest, shifts.shiftWeight);
-  return { slope: line.b, uSlope: line.ub * Math.sqrt(scatter), bowPx: bow.b, uBowPx: bow.ub * Math.sqrt(scatter), fan: fan.b, uFan: fan.ub * Math.sqrt(fanScatter) };
+  const barrel = weightedLine(squares, shifts.stretch.map((s, i) => s - fan.a - fan.b * data.bandV[i]), shifts.stretchWeight);
+  return { barrel: barrel.b, uBarrel: barrel.ub * Math.sqrt(fanScatter), slope: line.b, uSlope: line.ub * Math.sqrt(scatter), bowPx: bow.b, uBowPx: bow.ub * Math.sqrt(scatter), fan: fan.b, uFan: fan.ub * Math.sqrt(fanScatter) };
 }

@@ -65,8 +65,9 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
       const quick = lookAtPlace(ask);
       timed(clock() - before);
       if (quick === null) continue;
-      judgePlace(quick, spreadOf(quick.band));
-      return measurePlace(picture, options.region ? quick : growPlace(ask, quick), prior, setup, options);
+      const look = options.region ? quick : growPlace(ask, quick);
+      judgePlace(look, spreadOf(look.band));
+      return measurePlace(picture, look, prior, setup, options);
     } catch (error) {
       if (!(error instanceof Refused)) throw error;
       refused = refused === null || refused.code === 'NO_FRINGES' ? error : refused;

@@ -133,6 +133,14 @@ function secondHarmonic(place: PlaceFit): number {
   return x === null || !(x[3] > 0) ? 0 : x[4] / x[3];
 }
 
+/** A single slit is named only where its side maxima can be seen; otherwise the light is just a spot or an outline. */
+function showsLobes(place: PlaceFit, evidence: Evidence): boolean {
+  const { fit, grid } = place.band;
+  const p = fit.result.parameters;
+  const lobe = (p[0] * fit.unitPx) / p[2];
+  return evidence.swingSigmas > 15 && 2 * grid.half > 2.6 * lobe && p[2] < 1.19;
+}
+
 /** Does one slit describe the data as well? The second must improve chi-square well beyond its own noise. */
 function oneSlitSuffices(oneSlit: number, fit: ProfileFit, evidence: Evidence): boolean {
   const two = fit.result.chiSquare;
@@ -154,10 +162,10 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   if (evidence.harmonic > MOST_HARMONIC) {
     throw new Refused('MANY_SLITS', 'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.');
   }
-  if (fit.result.parameters[2] > MOST_RATIO) throw oneSlit();
+  if (fit.result.parameters[2] > MOST_RATIO) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
   const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
-  if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence)) throw oneSlit();
+  if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence)) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const bow = Math.abs(place.tilt.bowPx) * 1.5;
   const barrel = Math.abs(place.tilt.barrel);
   if ((bow > MOST_BOW * spacing && bow > 6 * place.tilt.uBowPx) || (barrel > MOST_BARREL && barrel > 4 * place.tilt.uBarrel)) {
