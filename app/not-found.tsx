@@ -6,6 +6,7 @@ export default function NotFound() {
   return (
     <div className="page py-8">
       <Empty
+        page
         searched
         title="There is nothing at this address"
         acts={

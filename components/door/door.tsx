@@ -15,13 +15,19 @@ export function Door({ heading, children }: { heading: string; children: ReactNo
       <div className="look-switches">
         <LookSwitches icons={false} />
       </div>
-      <header className="head">
-        <Logo label="" />
-        <p className="name">Midfringe</p>
+      <header className="contents">
+        <div className="head">
+          <Logo label="" />
+          <p className="name">Midfringe</p>
+        </div>
+        <div className="band">
+          <LightBand
+            light={LIGHT}
+            nm={DRAWN.wavelengthNm}
+            label="Two-slit fringes drawn at 632.82 nm in air"
+          />
+        </div>
       </header>
-      <div className="band">
-        <LightBand light={LIGHT} nm={DRAWN.wavelengthNm} label="Two-slit fringes drawn at 632.82 nm in air" />
-      </div>
       <main className="form">
         <h1 className="only-heard">{heading}</h1>
         {children}

@@ -85,6 +85,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
           <>
             <BeforeAfter before={reading} preview={desk.preview} />
             <KeepChange
+              mayKeep={may.fit}
               main
               frameId={frame.id}
               reading={reading}

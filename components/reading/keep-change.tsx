@@ -22,12 +22,23 @@ interface Props {
   /** Address of the new reading. */
   hrefOf: (readingId: number) => string;
   onRefused: (refusal: Refusal | null) => void;
+  /** The reading can still be changed by this person. */
+  mayKeep: boolean;
   /** Solid where keeping is what the screen is for. */
   main?: boolean;
 }
 
 /** Keeps the change as a new reading, or drops it. What is typed stays if the service refuses. */
-export function KeepChange({ frameId, reading, desk, keepFit, hrefOf, onRefused, main = false }: Props) {
+export function KeepChange({
+  frameId,
+  reading,
+  desk,
+  keepFit,
+  hrefOf,
+  onRefused,
+  mayKeep,
+  main = false,
+}: Props) {
   const router = useRouter();
   const [waiting, start] = useTransition();
   const [kept, setKept] = useState(false);
@@ -50,7 +61,7 @@ export function KeepChange({ frameId, reading, desk, keepFit, hrefOf, onRefused,
       setKept(true);
       router.replace(hrefOf(answer.value.readingId), { scroll: false });
     });
-  const ready = desk.preview.fit !== null && !desk.preview.working;
+  const ready = mayKeep && desk.preview.fit !== null && !desk.preview.working;
   return (
     <div className="mb-3 grid grid-cols-2 gap-2">
       <Button

@@ -30,7 +30,10 @@ export function RegionFields({ region, onChange, onKeys }: Props) {
   const [big, setBig] = useState(false);
   const step = (chosen === 'angleDeg' ? TILT_STEP_DEG : 1) * (big ? 10 : 1);
   const move = (sign: 1 | -1) => onChange?.({ ...region, [chosen]: region[chosen] + sign * step });
-  const name = FIELDS.find((field) => field.key === chosen)?.heard ?? '';
+  const name =
+    FIELDS.find((field) => field.key === chosen)
+      ?.label.join('')
+      .toLowerCase() ?? '';
   return (
     <>
       <div className="region-head">
@@ -70,10 +73,10 @@ export function RegionFields({ region, onChange, onKeys }: Props) {
           />
         ))}
         <div className="pair-keys">
-          <Button aria-label={`Less: ${name}`} disabled={!onChange} onClick={() => move(-1)}>
+          <Button aria-label={`Less ${name}`} disabled={!onChange} onClick={() => move(-1)}>
             −
           </Button>
-          <Button aria-label={`More: ${name}`} disabled={!onChange} onClick={() => move(1)}>
+          <Button aria-label={`More ${name}`} disabled={!onChange} onClick={() => move(1)}>
             +
           </Button>
         </div>

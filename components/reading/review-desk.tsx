@@ -119,6 +119,7 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             <>
               <BeforeAfter before={reading} preview={desk.preview} />
               <KeepChange
+                mayKeep={mayFit}
                 frameId={frame.id}
                 reading={reading}
                 desk={desk}

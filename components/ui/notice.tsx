@@ -16,7 +16,7 @@ export function Notice({ mark, title, children, act, stop = false, live = false 
   return (
     <div className={stop ? 'notice stop' : 'notice'} role={live ? (stop ? 'alert' : 'status') : undefined}>
       {mark ?? <span />}
-      <h3>{title}</h3>
+      <h2>{title}</h2>
       {children ? <p>{children}</p> : null}
       {act ? <div className="act">{act}</div> : null}
     </div>

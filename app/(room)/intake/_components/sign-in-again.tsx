@@ -39,9 +39,9 @@ export function SignInAgain({ open, email, onClose, onSignedIn }: Props) {
         }}
       >
         <p className="text-ink-2">
-          The session has ended. The list is kept; the frames go on once you have signed in.
+          The session of {email} has ended. The list is kept; the frames go on once you have signed in.
         </p>
-        <Field label="E-mail" type="email" value={email} readOnly autoComplete="username" />
+        <input type="email" autoComplete="username" value={email} readOnly hidden />
         <Field
           label="Password"
           type="password"
