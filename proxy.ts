@@ -1,5 +1,12 @@
 import { NextResponse, type NextRequest } from 'next/server';
 
+/** Path and query as the person sees them; what the framework adds for its own requests is left out. */
+function askedAddress(url: NextRequest['nextUrl']): string {
+  const query = new URLSearchParams(url.search);
+  query.delete('_rsc');
+  return query.size ? `${url.pathname}?${query}` : url.pathname;
+}
+
 /**
  * Headers of every page: a content policy with a fresh nonce, and what browsers need to be told beside it.
  * Routes under /api are left out: matched here, a body over 10 MB would be cut without an error. They set their own.
@@ -24,6 +31,8 @@ export function proxy(request: NextRequest): NextResponse {
   ].join('; ');
   const headers = new Headers(request.headers);
   headers.set('x-nonce', nonce);
+  // Where the person wanted to go, so that signing in can lead there.
+  headers.set('x-asked', askedAddress(request.nextUrl));
   // Next reads the nonce for its own scripts from the policy of the request.
   headers.set('content-security-policy', policy);
   const response = NextResponse.next({ request: { headers } });

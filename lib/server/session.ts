@@ -56,10 +56,16 @@ export const getMe = cache(async (): Promise<Me | null> => {
   return personOfToken(jar.get(sessionCookie().name)?.value);
 });
 
+/** The sign-in page, told which page was asked for. */
+async function doorFor(): Promise<string> {
+  const asked = (await headers()).get('x-asked') ?? '/';
+  return asked === '/' ? '/sign-in' : `/sign-in?next=${encodeURIComponent(asked)}`;
+}
+
 /** For pages: the signed-in person, who may do this; anyone else is led to the right door. */
 export async function requireMe(action?: Action): Promise<Me> {
   const me = await getMe();
-  if (!me) redirect('/sign-in');
+  if (!me) redirect(await doorFor());
   if (action && !can(me, action)) redirect('/not-allowed');
   return me;
 }
