@@ -34,6 +34,7 @@ export function OutcomeLine({ unitId, outcome, mayChange, setOutcome, compactFor
     setFrom(kept);
     setChosen(kept);
   }
+  if (!mayChange) return <Shown outcome={outcome} compact={compactFor !== undefined} />;
   const changed = chosen !== kept && isOutcome(chosen);
   const save = () =>
     start(async () => {
@@ -61,7 +62,7 @@ export function OutcomeLine({ unitId, outcome, mayChange, setOutcome, compactFor
           id={id}
           className="field"
           value={chosen}
-          disabled={!mayChange || waiting}
+          disabled={waiting}
           onChange={(event) => setChosen(event.target.value)}
         >
           {kept ? null : <option value="">Not set</option>}
@@ -90,6 +91,25 @@ export function OutcomeLine({ unitId, outcome, mayChange, setOutcome, compactFor
       <p className="only-heard" role="status">
         {said}
       </p>
+    </div>
+  );
+}
+
+/** The outcome as text, for those who do not set it. */
+function Shown({ outcome, compact }: { outcome: UnitRow['outcome']; compact: boolean }) {
+  const word = outcome ? OUTCOME_WORDS[outcome.outcome] : 'Not set';
+  const by = outcome ? `${outcome.by.name}${outcome.reason ? `: ${outcome.reason}` : ''}` : '';
+  return (
+    <div className={compact ? undefined : 'outcome'}>
+      {compact ? null : (
+        <span className="label-like">
+          Outcome<small>of the unit</small>
+        </span>
+      )}
+      <span className={outcome ? undefined : 'text-ink-3'}>
+        {word}
+        {by ? <small className="block text-small text-ink-2">{by}</small> : null}
+      </span>
     </div>
   );
 }

@@ -83,11 +83,10 @@ export function IntakeFoot({ frames, items, said, clear, waiting, closed, onAdd,
           {slow}
         </p>
         <p className="text-small text-ink-3">Laser light: keep to the rules of your laser safety officer.</p>
-        {said || closed ? (
-          <p className="mt-1 text-small font-medium text-ink" role="status">
-            {said || closed}
-          </p>
-        ) : null}
+        <p className="mt-1 text-small font-medium text-ink empty:hidden" role="status">
+          {said}
+        </p>
+        {closed ? <p className="phone-inline text-small font-medium text-ink">{closed}</p> : null}
       </div>
       <div className="do">
         <ChooseFiles
