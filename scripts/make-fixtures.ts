@@ -145,6 +145,8 @@ async function hostile(): Promise<void> {
   });
   const colour = await grey.clone().toColourspace('srgb').png().toBuffer();
   const page = await sharp(colour).resize(120, 40).png().toBuffer();
+  // Frames that are alike would be stored as one.
+  const turned = await sharp(page).flop().negate().png().toBuffer();
   const put = (name: string, bytes: Buffer | string) => writeFile(path.join(HOSTILE, name), bytes);
   await put('truncated.png', png.subarray(0, Math.floor(png.length * 0.4)));
   await put('truncated.jpg', jpeg.subarray(0, Math.floor(jpeg.length * 0.5)));
@@ -155,7 +157,7 @@ async function hostile(): Promise<void> {
   await put('cmyk.jpg', await sharp(colour).toColourspace('cmyk').jpeg().toBuffer());
   await put(
     'animated.webp',
-    await sharp([page, page, page], { join: { animated: true } })
+    await sharp([page, turned, page], { join: { animated: true } })
       .webp({ delay: [100, 100, 100] })
       .toBuffer(),
   );
