@@ -1,4 +1,5 @@
 import type { Plane } from './picture';
+import { withoutOutline } from './pyramid';
 import type { WaveCandidate } from './spectrum';
 
 /** Where one wave lives in the frame and how its phase runs there. Lengths in px of the frame. */
@@ -48,7 +49,10 @@ export function planeFor(planes: Plane[], periodPx: number): Plane {
 /** Demodulates one wave in cells, grows the patch of continuous phase from its strongest cell and fits its phase. */
 export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true, thin = false): FringePatch | null {
   const f = plane.factor;
-  const map = demodulateCells(plane, wave.kx * f, wave.ky * f, thin);
+  // Without the mean over one period what is left is the fringes; a bright outline would leak into faint ones.
+  const period = 1 / (f * Math.hypot(wave.kx, wave.ky));
+  const clean = period >= FINE_PERIOD ? withoutOutline(plane, Math.max(1, Math.round((period - 1) / 2))) : plane;
+  const map = demodulateCells(clean, wave.kx * f, wave.ky * f, thin);
   const cells = growPatch(map);
   if (cells.length < 3) return null;
   const centre = (i: number) => ({ x: ((i % map.nx) + 0.5) * map.wide * f, y: (Math.floor(i / map.nx) + 0.5) * map.high * f });
@@ -99,6 +103,7 @@ export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true, t
 }
 
 const FEWEST_ROWS = 6;
+const FINE_PERIOD = 5;
 
 /** Over how many rows of cells (columns for a wave running down) the patch extends. */
 function rowsOf(cells: { index: number }[], map: CellMap, alongX: boolean): number {

@@ -66,3 +66,35 @@ export function cutPlane(picture: Picture, x0: number, y0: number, widthPx: numb
   }
   return { widthPx, heightPx, data, factor: 1 };
 }
+
+/** The plane minus its mean over a square of 2 r + 1 px about each pixel: the light's own outline goes, fringes up to that size stay. */
+export function withoutOutline(plane: Plane, r: number): Plane {
+  const { widthPx: w, heightPx: h } = plane;
+  const across = new Float32Array(w * h);
+  const data = new Float32Array(w * h);
+  for (let y = 0; y < h; y++) boxMeans(plane.data, across, y * w, 1, w, r);
+  for (let x = 0; x < w; x++) boxMeans(across, data, x, w, h, r);
+  for (let i = 0; i < data.length; i++) data[i] = plane.data[i] - data[i];
+  return { ...plane, data };
+}
+
+/** Running means over up to 2 r + 1 samples of one line; at its ends over the samples there are. */
+function boxMeans(from: Float32Array, to: Float32Array, start: number, stride: number, n: number, r: number): void {
+  let sum = 0;
+  let count = 0;
+  for (let i = 0; i < Math.min(r, n); i++) {
+    sum += from[start + i * stride];
+    count++;
+  }
+  for (let i = 0; i < n; i++) {
+    if (i + r < n) {
+      sum += from[start + (i + r) * stride];
+      count++;
+    }
+    if (i - r - 1 >= 0) {
+      sum -= from[start + (i - r - 1) * stride];
+      count--;
+    }
+    to[start + i * stride] = sum / count;
+  }
+}

@@ -1,5 +1,6 @@
 import FFT from 'fft.js';
 import type { Plane } from './picture';
+import { withoutOutline } from './pyramid';
 
 /** A possible fringe system: wave vector in cycles per px of the frame, pointing to the right (or straight down). */
 export interface WaveCandidate {
@@ -15,11 +16,15 @@ const LOWEST_BIN = 2.1;
 const FINEST_PERIOD_PX = 2.2;
 const TILES_PER_PLANE = 36;
 
+const OUTLINE_PX = 9;
+
 /** Votes for wave vectors from windowed tiles on every plane, gathered into the few that stand out. */
 export function findWaves(planes: Plane[], keep: number): WaveCandidate[] {
   const votes: WaveCandidate[] = [];
   const power = new Float32Array(N * N);
-  for (const plane of planes) {
+  for (const whole of planes) {
+    // The finest plane is large and its fringes are finer than any outline.
+    const plane = whole === planes[0] && planes.length > 1 ? whole : withoutOutline(whole, OUTLINE_PX);
     for (const [x, y] of chooseTiles(plane)) {
       tilePower(plane, x, y, power);
       votes.push(...tilePeaks(power, plane));

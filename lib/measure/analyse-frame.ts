@@ -23,8 +23,9 @@ import { frameEffects, wavelengthOf } from './wavelength';
 /** Milliseconds from any fixed moment; time is an argument so that the engine itself has no clock. */
 export type Clock = () => number;
 
-const PLACES_TRIED = 3;
+const PLACES_TRIED = 4;
 const CROSSING_ENERGY = 0.4;
+const CROSSING_FRINGES = 4;
 
 /**
  * The whole way of one frame: bytes -> picture -> fringes found -> bands -> fit -> wavelength and findings.
@@ -81,7 +82,7 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
 function refuseCrossed(places: FringePlace[]): void {
   const [first, ...others] = places;
   const crossing = others.some(
-    (o) => o.patch.energy > CROSSING_ENERGY * first.patch.energy && Math.abs(Math.log(o.spacingPx / first.spacingPx)) < 0.15 && angleBetween(o.rect.angleDeg, first.rect.angleDeg) > 30,
+    (o) => o.rect.lengthPx > CROSSING_FRINGES * o.spacingPx && o.patch.energy > CROSSING_ENERGY * first.patch.energy && Math.abs(Math.log(o.spacingPx / first.spacingPx)) < 0.15 && angleBetween(o.rect.angleDeg, first.rect.angleDeg) > 30,
   );
   if (crossing) throw noFringes();
 }
