@@ -3,7 +3,7 @@ import { TopBar } from '@/components/bar/top-bar';
 import { listBenchChoices } from '@/lib/server/queries/benches';
 import { listFakeMails } from '@/lib/server/queries/mail';
 import { benchInUse, requireMe } from '@/lib/server/session';
-import { chooseBench } from './actions';
+import { chooseBench, signOutEverywhere } from './actions';
 
 export default async function RoomLayout({ children }: { children: ReactNode }) {
   const me = await requireMe();
@@ -19,6 +19,7 @@ export default async function RoomLayout({ children }: { children: ReactNode }) 
         benchInUse={inUse}
         mailPage={mails !== null}
         chooseBench={chooseBench}
+        signOutEverywhere={signOutEverywhere}
       />
       <main id="main" tabIndex={-1}>
         {children}

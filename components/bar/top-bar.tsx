@@ -6,6 +6,8 @@ import { signOut } from 'next-auth/react';
 import { Logo } from '@/components/figures/logo';
 import { Chevron } from '@/components/ui/icons';
 import { Menu } from '@/components/ui/menu';
+import { callAction } from '@/lib/client/call-action';
+import type { ActionAnswer } from '@/lib/domain/errors';
 import { ROLE_WORDS } from '@/lib/domain/roles';
 import type { BenchChoice, Me } from '@/lib/domain/views';
 import { BenchPicker, type ChooseBench } from './bench-picker';
@@ -18,9 +20,10 @@ interface Props {
   benchInUse: number | null;
   mailPage: boolean;
   chooseBench: ChooseBench;
+  signOutEverywhere: () => Promise<ActionAnswer<unknown>>;
 }
 
-export function TopBar({ me, benches, benchInUse, mailPage, chooseBench }: Props) {
+export function TopBar({ me, benches, benchInUse, mailPage, chooseBench, signOutEverywhere }: Props) {
   const path = usePathname();
   const link = (place: Place) => (
     <Link
@@ -39,7 +42,7 @@ export function TopBar({ me, benches, benchInUse, mailPage, chooseBench }: Props
           <BenchPicker benches={benches} inUse={benchInUse} chooseBench={chooseBench} />
         </div>
         <div className="only-phone">
-          <PersonMenu me={me} mailPage={mailPage} side="left" />
+          <PersonMenu me={me} mailPage={mailPage} side="left" signOutEverywhere={signOutEverywhere} />
         </div>
       </div>
       <nav className="places" aria-label="Places">
@@ -52,21 +55,24 @@ export function TopBar({ me, benches, benchInUse, mailPage, chooseBench }: Props
       <div className="top-right">
         <LookSwitches />
         <div className="not-phone">
-          <PersonMenu me={me} mailPage={mailPage} side="right" />
+          <PersonMenu me={me} mailPage={mailPage} side="right" signOutEverywhere={signOutEverywhere} />
         </div>
       </div>
     </header>
   );
 }
 
+const leave = () => signOut({ callbackUrl: '/sign-in' });
+
 interface PersonProps {
   me: Me;
   mailPage: boolean;
+  signOutEverywhere: Props['signOutEverywhere'];
   /** On the left it is the phone's menu and also holds the six places. */
   side: 'left' | 'right';
 }
 
-function PersonMenu({ me, mailPage, side }: PersonProps) {
+function PersonMenu({ me, mailPage, side, signOutEverywhere }: PersonProps) {
   const path = usePathname();
   const places =
     side === 'left' ? [...BEFORE, ...AFTER, ...menuPlaces(me, mailPage)] : menuPlaces(me, mailPage);
@@ -100,12 +106,15 @@ function PersonMenu({ me, mailPage, side }: PersonProps) {
               {place.word}
             </Link>
           ))}
+          <button type="button" className="menu-item" onClick={() => void leave()}>
+            Sign out
+          </button>
           <button
             type="button"
             className="menu-item"
-            onClick={() => void signOut({ callbackUrl: '/sign-in' })}
+            onClick={() => void callAction(signOutEverywhere).then(leave)}
           >
-            Sign out
+            Sign out everywhere
           </button>
         </>
       )}

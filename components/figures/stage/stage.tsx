@@ -10,6 +10,7 @@ import { LightBand } from '../fringe-strip';
 import { stripEndsMm } from '../strip-scale';
 import { MisfitBand } from './misfit-band';
 import { OrderCard } from './order-card';
+import { OrderTable } from './order-table';
 import { isOut, OrderLadder } from './order-ladder';
 import type { Scale } from './paths';
 import { ProfileBand } from './profile-band';
@@ -125,6 +126,7 @@ function Drawing({
           <ReadingLine x={x(order.mm)} layout={layout} bright={order.kind === 'bright'} />
         ) : null}
       </svg>
+      <OrderTable orders={data.orders} leaveOut={leaveOut} top={layout.ladder[0] - 37} />
       <StageZoom zoom={zoom} halfMm={data.halfMm} onZoom={setZoom} top={layout.profile[0] - 40} />
       {order ? (
         <OrderCard
