@@ -5,7 +5,7 @@ import { iccToneCurve } from './icc';
 import { findLevels, histogram } from './levels';
 import type { Picture, SourceFacts } from './picture';
 import { Refused, type PictureBrief } from './refused';
-import { jpegQuality, readPng, sniffKind, type FileKind, type PngFacts } from './sniff';
+import { jpegQuality, readPng, readTiff, sniffKind, type FileKind, type PngFacts } from './sniff';
 import { LINEAR, SRGB, exponentCurve, lightTable, type ToneCurve } from './tone';
 
 export interface DecodeLimits {
@@ -47,6 +47,10 @@ export async function decodePicture(bytes: Uint8Array, wish: ToneWish, limits: D
 async function readHeader(bytes: Uint8Array, limits: DecodeLimits): Promise<Header> {
   const kind = sniffKind(bytes);
   const png = kind === 'PNG' ? readPng(bytes) : null;
+  if (png && png.widthPx * png.heightPx > limits.filePixels) throw tooManyPixels(limits, { widthPx: png.widthPx, heightPx: png.heightPx, format: kind });
+  const tiff = kind === 'TIFF' ? readTiff(bytes) : null;
+  if (tiff?.palette) throw paletteRefusal(null);
+  if (tiff && (tiff.floating || tiff.wide)) throw samplesRefusal(tiff.floating, null);
   let meta: Metadata;
   try {
     meta = await open(bytes, limits).metadata();
@@ -67,18 +71,26 @@ function refuseUnmeasurable(kind: FileKind, meta: Metadata, png: PngFacts | null
     throw new Refused('ANIMATED', 'The file holds several pictures. Save the one to be measured as a file of its own.', brief);
   }
   if (png?.colourType === 3 || meta.isPalette === true) {
-    throw new Refused('PALETTE', 'The file holds picked colours from a palette, not measured light. Save the frame as 8 or 16 bit grey or colour.', brief);
+    throw paletteRefusal(brief);
   }
   if (meta.space === 'cmyk') {
     throw new Refused('CMYK', 'The file is made for printing (CMYK); its numbers are ink, not light. Save the camera frame as RGB or grey.', brief);
   }
   if (meta.depth && !['uchar', 'ushort', 'char', 'short'].includes(meta.depth)) {
-    throw new Refused('FLOAT_SAMPLES', `The file stores ${meta.depth === 'float' || meta.depth === 'double' ? 'floating-point' : '32 bit'} samples, which cannot be read safely. Save it as 16 bit PNG or TIFF.`, brief);
+    throw samplesRefusal(meta.depth === 'float' || meta.depth === 'double', brief);
   }
   if (Math.min(brief.widthPx, brief.heightPx) < SMALLEST_SIDE_PX || Math.max(brief.widthPx, brief.heightPx) < SMALLEST_LONG_SIDE_PX) {
     throw new Refused('TOO_SMALL', `The picture has ${brief.widthPx} by ${brief.heightPx} px. At least ${SMALLEST_LONG_SIDE_PX} by ${SMALLEST_SIDE_PX} px are needed.`, brief);
   }
   if (kind === 'PNG' && png && !png.complete) throw truncated(brief);
+}
+
+function paletteRefusal(brief: PictureBrief | null): Refused {
+  return new Refused('PALETTE', 'The file holds picked colours from a palette, not measured light. Save the frame as 8 or 16 bit grey or colour.', brief);
+}
+
+function samplesRefusal(floating: boolean, brief: PictureBrief | null): Refused {
+  return new Refused('FLOAT_SAMPLES', `The file stores ${floating ? 'floating-point' : '32 bit'} samples, which cannot be read safely. Save it as 16 bit PNG or TIFF.`, brief);
 }
 
 async function decodeChannel(bytes: Uint8Array, header: Header, wish: ToneWish, limits: DecodeLimits): Promise<Picture> {

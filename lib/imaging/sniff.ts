@@ -40,6 +40,8 @@ function text(b: Uint8Array, at: number, length: number): string {
 }
 
 export interface PngFacts {
+  widthPx: number;
+  heightPx: number;
   colourType: number;
   bitDepth: number;
   animated: boolean;
@@ -52,7 +54,7 @@ export interface PngFacts {
 /** Header facts of a PNG that decide whether it may be decoded. Source: PNG specification, third edition. */
 export function readPng(b: Uint8Array): PngFacts {
   const view = new DataView(b.buffer, b.byteOffset, b.byteLength);
-  const facts: PngFacts = { colourType: b[25] ?? 0, bitDepth: b[24] ?? 0, animated: false, complete: false, gamma: null, srgb: false };
+  const facts: PngFacts = { widthPx: b.length >= 24 ? view.getUint32(16) : 0, heightPx: b.length >= 24 ? view.getUint32(20) : 0, colourType: b[25] ?? 0, bitDepth: b[24] ?? 0, animated: false, complete: false, gamma: null, srgb: false };
   let at = 8;
   while (at + 8 <= b.length) {
     const length = view.getUint32(at);
@@ -94,4 +96,36 @@ export function jpegQuality(b: Uint8Array): number | null {
     at += 2 + length;
   }
   return null;
+}
+
+export interface TiffFacts {
+  palette: boolean;
+  /** Samples are not whole numbers of 8 or 16 bits. */
+  floating: boolean;
+  wide: boolean;
+}
+
+/** First directory of a TIFF: PhotometricInterpretation 262, BitsPerSample 258, SampleFormat 339. Source: TIFF 6.0, section 8. */
+export function readTiff(b: Uint8Array): TiffFacts {
+  const facts: TiffFacts = { palette: false, floating: false, wide: false };
+  const view = new DataView(b.buffer, b.byteOffset, b.byteLength);
+  const little = b[0] === 0x49;
+  if (b[2] === 0x2b || b[3] === 0x2b || b.length < 16) return facts;
+  const directory = view.getUint32(4, little);
+  if (directory + 2 > b.length) return facts;
+  const entries = view.getUint16(directory, little);
+  for (let i = 0; i < entries; i++) {
+    const at = directory + 2 + 12 * i;
+    if (at + 12 > b.length) return facts;
+    const tag = view.getUint16(at, little);
+    const count = view.getUint32(at + 4, little);
+    // Up to two 16-bit values stand in the entry itself, more of them elsewhere.
+    const place = count > 2 ? view.getUint32(at + 8, little) : at + 8;
+    if (place + 2 > b.length) continue;
+    const value = view.getUint16(place, little);
+    if (tag === 262) facts.palette = value === 3;
+    if (tag === 339) facts.floating = value === 3;
+    if (tag === 258) facts.wide = value > 16;
+  }
+  return facts;
 }

@@ -5,6 +5,7 @@ import { Refused } from '@/lib/imaging/refused';
 
 const LOOK_SIDE = 400;
 const BLACK_SHARE = 0.012;
+const DARK_SHARE = 0.1;
 const BURNT_SHARE = 0.25;
 
 /** Where no fringes were found: too little or too much light is named as the reason when it is one. */
@@ -18,7 +19,7 @@ export function refuseByLight(picture: Picture): void {
   if (burnt / (picture.samples.length / 3) > BURNT_SHARE) {
     throw new Refused('BURNT_OUT', `${Math.round((300 * burnt) / picture.samples.length)} % of the picture is at the white level, so the fringes are burnt out. Reduce the exposure until the brightest fringe stands at 50 to 80 %.`);
   }
-  if (high - low < BLACK_SHARE) {
+  if (high - low < BLACK_SHARE && high < DARK_SHARE) {
     throw new Refused('TOO_DARK', `The brightest part of the picture is ${(100 * high).toFixed(1)} % of full scale and nothing stands out. Check the beam, open the shutter or expose longer.`);
   }
 }
