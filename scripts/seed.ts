@@ -257,7 +257,7 @@ async function main(): Promise<void> {
   }
   // One mail in the developer's mail page, the way a forgotten password sends it.
   await askReset(
-    { actor: PRODUCT, at: daysAgo(1) },
+    { actor: PRODUCT, at: daysAgo(0.5) },
     { email: DEMO_PEOPLE[2].email, site: env().NEXTAUTH_URL.replace(/\/$/, '') },
   );
 }

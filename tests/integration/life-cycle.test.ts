@@ -249,6 +249,18 @@ describe('re-fits', () => {
   });
 });
 
+test('returning mails the reason to whoever sent it', async () => {
+  const { frameId, readingId } = await inReview();
+  const words = 'Nearer, and without the lamp.';
+  await returnReading(as(world.people.reviewer), { readingId, version: 1, reason: 'take-again', words });
+  const [mail] = await rows<{ to_address: string; body_text: string }>(
+    'SELECT to_address, body_text FROM outbox ORDER BY id DESC LIMIT 1',
+  );
+  expect(mail.to_address).toBe(world.people.technician.email);
+  expect(mail.body_text).toContain(`Take the frame again. ${words}`);
+  expect(mail.body_text).toContain(`/frames/${frameId}`);
+});
+
 test('sending many: what cannot be sent is said and does not hold up the others', async () => {
   const draft = await makeReading(world, as(world.people.technician));
   const sent = await inReview();

@@ -1,13 +1,14 @@
 import 'server-only';
 import { AppError } from '@/lib/domain/errors';
 import { READING_STEPS } from '@/lib/domain/life-cycle';
-import type { ReturnReason } from '@/lib/domain/views';
+import { RETURN_WORDS, type ReturnReason } from '@/lib/domain/views';
 import type { CommandContext } from '../context';
 import { db } from '../db';
-import { findReading, readingText, stepReading } from '../reading-facts';
-import { inTransaction } from '../transaction';
+import { env } from '../env';
+import { findReading, readingText, stepReading, type ReadingFacts } from '../reading-facts';
+import { inTransaction, type Work } from '../transaction';
 
-/** Gives a reading back to the technician, with the reason. */
+/** Gives a reading back to the technician, with the reason, and mails it to whoever sent it. */
 export async function returnReading(
   context: CommandContext,
   {
@@ -33,6 +34,33 @@ export async function returnReading(
       before: { status: facts.status },
       after: { status: READING_STEPS.return.to, reason, words },
     });
+    await mailSender(work, context, facts, `${RETURN_WORDS[reason]}.${words ? ` ${words}` : ''}`);
     return { readingId, version: version + 1 };
+  });
+}
+
+async function mailSender(
+  work: Work,
+  context: CommandContext,
+  facts: ReadingFacts,
+  why: string,
+): Promise<void> {
+  const sender = await db().tables.people.findByPk(facts.sentBy ?? facts.uploadedBy, {
+    transaction: work.transaction,
+    rejectOnEmpty: true,
+  });
+  if (!sender.active) return;
+  await work.mail({
+    to: sender.email,
+    subject: `Returned: ${readingText(facts)}`,
+    text: [
+      `Hello ${sender.name},`,
+      '',
+      `${context.actor.name} returned ${readingText(facts)}:`,
+      '',
+      why,
+      '',
+      `${env().NEXTAUTH_URL.replace(/\/$/, '')}/frames/${facts.frameId}`,
+    ].join('\n'),
   });
 }
