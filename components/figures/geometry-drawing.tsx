@@ -44,6 +44,8 @@ function ordersOnScreen(setup: SetupView, nm: number, halfMm: number): { m: numb
 function Drawing({ setup, nm, drawnFrom, width: W, height: H }: Props & { width: number; height: number }) {
   const { theme, goggles } = useLook();
   const small = W < 820;
+  // On a phone the values stand in the list below; the drawing keeps its shapes only.
+  const tiny = W < 640;
   const y = H / 2 - 8;
   const plateX = W * (small ? 0.24 : 0.2);
   const screenX = W * (small ? 0.76 : 0.8);
@@ -132,8 +134,10 @@ function Drawing({ setup, nm, drawnFrom, width: W, height: H }: Props & { width:
       </text>
       <Distance from={plateX} to={screenX} y={H - 24} text={statedText(setup.distanceMm, 'mm')} />
       <path d={`M${plateX} ${y + 84}V${H - 36}M${screenX} ${y + half + 8}V${H - 36}`} className="l-line" />
-      <Slits x={plateX} y={y} setup={setup} />
-      <Camera x={screenX} y={y} half={half} text={statedText(setup.scaleUmPerPx, 'µm/px')} named={!small} />
+      {tiny ? null : <Slits x={plateX} y={y} setup={setup} />}
+      {tiny ? null : (
+        <Camera x={screenX} y={y} half={half} text={statedText(setup.scaleUmPerPx, 'µm/px')} named={!small} />
+      )}
       <Spacing
         x={screenX}
         y={y}
@@ -141,6 +145,7 @@ function Drawing({ setup, nm, drawnFrom, width: W, height: H }: Props & { width:
         mm={spacingMm}
         nm={nm}
         drawnFrom={drawnFrom}
+        named={!tiny}
       />
     </svg>
   );
@@ -198,6 +203,7 @@ function Camera({ x, y, half, text, named }: CameraProps) {
 }
 
 interface SpacingProps {
+  named: boolean;
   x: number;
   y: number;
   /** Spacing as drawn, px. */
@@ -207,7 +213,7 @@ interface SpacingProps {
   drawnFrom: 'reading' | 'example';
 }
 
-function Spacing({ x, y, up, mm, nm, drawnFrom }: SpacingProps) {
+function Spacing({ x, y, up, mm, nm, drawnFrom, named }: SpacingProps) {
   return (
     <>
       <path
@@ -216,29 +222,35 @@ function Spacing({ x, y, up, mm, nm, drawnFrom }: SpacingProps) {
         strokeWidth="1.5"
         fill="none"
       />
-      <text x={x + 66} y={y - 46} className="t-2 s14">
-        spacing Λ
-      </text>
-      <text x={x + 66} y={y - 25} className="t-ink t-500 s16">
-        {formatNumber(mm, 4)} mm
-      </text>
-      <text x={x + 66} y={y - 7} className="t-2 s14">
-        at {formatNumber(nm, 2)} nm (air)
-      </text>
-      <text x={x + 66} y={y + 20} className="s14">
-        {drawnFrom === 'reading' ? 'the last accepted' : 'an example'}
-      </text>
+      {named ? (
+        <>
+          <text x={x + 66} y={y - 46} className="t-2 s14">
+            spacing Λ
+          </text>
+          <text x={x + 66} y={y - 25} className="t-ink t-500 s16">
+            {formatNumber(mm, 4)} mm
+          </text>
+          <text x={x + 66} y={y - 7} className="t-2 s14">
+            at {formatNumber(nm, 2)} nm (air)
+          </text>
+          <text x={x + 66} y={y + 20} className="s14">
+            {drawnFrom === 'reading' ? 'the last accepted' : 'an example'}
+          </text>
+        </>
+      ) : null}
     </>
   );
 }
 
 function Distance({ from, to, y, text }: { from: number; to: number; y: number; text: string }) {
   const middle = (from + to) / 2;
+  // Where the text does not fit into the line it stands over it.
+  const gap = to - from > 300 ? 128 : 0;
   return (
     <>
       <path d={`M${from} ${y - 9}v18M${to} ${y - 9}v18`} className="l-ink" strokeWidth="1.5" />
       <path
-        d={`M${from} ${y}H${middle - 128}M${middle + 128} ${y}H${to}`}
+        d={`M${from} ${y}H${middle - gap}M${middle + gap} ${y}H${to}`}
         className="l-ink"
         strokeWidth="1.25"
       />
@@ -248,7 +260,7 @@ function Distance({ from, to, y, text }: { from: number; to: number; y: number; 
         className="l-ink"
         strokeWidth="1.5"
       />
-      <text x={middle} y={y + 6} textAnchor="middle" className="t-2 s15">
+      <text x={middle} y={gap ? y + 6 : y - 14} textAnchor="middle" className="t-2 s15">
         distance L
         <tspan dx="10" className="t-ink t-500 s18">
           {text}

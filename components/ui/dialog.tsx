@@ -16,7 +16,11 @@ export function Dialog({ open, onClose, title, children }: Props) {
   useEffect(() => {
     const dialog = ref.current;
     if (!dialog) return;
-    if (open && !dialog.open) dialog.showModal();
+    if (open && !dialog.open) {
+      dialog.showModal();
+      // The first control may lie further down; the sheet still opens at its title.
+      dialog.scrollTop = 0;
+    }
     if (!open && dialog.open) dialog.close();
   }, [open]);
   return (

@@ -127,7 +127,7 @@ function Drawing({
         ) : null}
       </svg>
       <OrderTable orders={data.orders} leaveOut={leaveOut} top={layout.ladder[0] - 37} />
-      <StageZoom zoom={zoom} halfMm={data.halfMm} onZoom={setZoom} top={layout.profile[0] - 40} />
+      <StageZoom zoom={zoom} halfMm={data.halfMm} onZoom={setZoom} top={layout.band[0] - 39} />
       {order ? (
         <OrderCard
           order={order}

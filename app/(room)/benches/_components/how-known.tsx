@@ -42,7 +42,7 @@ export function HowKnown({ setup }: { setup: SetupView }) {
                 <b>
                   {name} <span className="sym">{symbol}</span>
                 </b>
-                : ± {formatNumber(value.stated, placesFor(value.stated))} {unit},
+                : ± {formatNumber(value.stated, placesFor(value.stated))} {unit}, k ={' '}
                 {groupThousands(String(value.k))}. {sentence(value.certificate)} {due.text}
               </div>
             </li>
