@@ -18,6 +18,8 @@ export interface LightLimits {
 /** How a fit starts: from values of an earlier one or from a scan, with how many rounds, and a person's zero order. */
 export interface FitStart {
   from: StartValues | null;
+  /** The start values are a fit of the same region: masks are made with them before anything is fitted. */
+  asItIs: boolean;
   rounds: number;
   zeroShift: number;
 }
@@ -56,7 +58,7 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
   if (state.left.some((why) => why === LEFT.clipped)) chainGains(data, state);
   const profile = scaledFirst(combineBands(data, state, grid, null, aroundPx));
   if (countUsed(profile) < FEWEST_POINTS) return null;
-  const first = how.from === null ? fitProfile(profile, aroundPx, prior) : fitFrom(profile, how.from, plainTerms(prior), prior);
+  const first = how.from === null ? fitProfile(profile, aroundPx, prior) : fitFrom(profile, how.from, plainTerms(prior), prior, how.asItIs);
   if (first === null) return null;
   const fit = rebase(profile, first, how.zeroShift);
   const table = tableFor(data, grid, fit);
@@ -88,11 +90,12 @@ function withBestZero(band: BandFit): BandFit | null {
 export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null {
   const { data, state, grid, limits } = before;
   const spacing = before.fit.result.parameters[0] * before.fit.unitPx;
-  const agreed = combineBands(data, state, grid, expectedOn(grid, before.table), spacing);
+  const agreed = agreeOn(before);
   measureNoise(before, agreed);
   maskCells(before, agreed);
-  maskBins(before, agreed);
-  const profile = combineBands(data, state, grid, expectedOn(grid, before.table), spacing);
+  const expected = expectedOn(grid, before.table);
+  const whole = combineBands(data, state, grid, expected, spacing);
+  const profile = maskBins(before, whole) ? combineBands(data, state, grid, expected, spacing) : whole;
   if (countUsed(profile) < FEWEST_POINTS) return null;
   const fit = rebase(profile, refit(profile, before.fit, terms), before.zeroShift);
   const table = tableFor(data, grid, fit);
@@ -124,20 +127,48 @@ export function expectedOn(grid: CommonGrid, table: FitTable): Float64Array {
   return Float64Array.from({ length: grid.bins }, (_, k) => table.lightAt(grid.from + (k + 0.5) * grid.pitchPx));
 }
 
-/** Light the bands agree on at a cell: the profile's own, carried from its bin's mean place to the cell's. */
-function agreedIn(band: BandFit, agreed: Profile, b: number, cell: number): number {
+/**
+ * Light the bands agree on at the middle of each bin: their median, so that what only some of them show (dust, marks) does
+ * not count; the fit's light where fewer than three bands say anything.
+ */
+function agreeOn(band: BandFit): Float64Array {
+  const { data, state, grid, table } = band;
+  const values: number[][] = Array.from({ length: grid.bins }, () => []);
+  for (let b = 0; b < data.bands; b++) {
+    if (!(state.gain[b] > 0)) continue;
+    for (let j = 0; j < data.bins; j++) {
+      const cell = b * data.bins + j;
+      const why = state.left[cell];
+      if (data.pixels[cell] === 0 || (why !== LEFT.used && why !== LEFT.outlier)) continue;
+      const u = commonU(data, state, b, cell);
+      const k = Math.floor((u - grid.from) / grid.pitchPx);
+      if (k < 0 || k >= grid.bins) continue;
+      const own = (data.light[cell] - state.offset[b] - (state.slope[b] * u) / grid.half) / gainIn(data, state, b, cell);
+      values[k].push(own - table.lightAt(u) + table.lightAt(grid.from + (k + 0.5) * grid.pitchPx));
+    }
+  }
+  return Float64Array.from(values, (v, k) => (v.length < 3 ? table.lightAt(grid.from + (k + 0.5) * grid.pitchPx) : medianOf(v)));
+}
+
+function medianOf(values: number[]): number {
+  const sorted = Float64Array.from(values).sort();
+  const mid = sorted.length >> 1;
+  return sorted.length % 2 === 1 ? sorted[mid] : 0.5 * (sorted[mid - 1] + sorted[mid]);
+}
+
+/** The same light at a cell: carried from the middle of its bin to its own place, with the band's gain and stray light. */
+function agreedIn(band: BandFit, agreed: Float64Array, b: number, cell: number): number {
   const { data, state, grid, table } = band;
   const u = commonU(data, state, b, cell);
   const k = Math.floor((u - grid.from) / grid.pitchPx);
   if (k < 0 || k >= grid.bins) return NaN;
-  // Where every band is left out only the fit knows.
-  const light = Number.isFinite(agreed.sigma[k]) ? agreed.light[k] + table.lightAt(u) - table.lightAt(agreed.u[k]) : table.lightAt(u);
+  const light = agreed[k] + table.lightAt(u) - table.lightAt(grid.from + (k + 0.5) * grid.pitchPx);
   return state.offset[b] + (state.slope[b] * u) / grid.half + gainIn(data, state, b, cell) * light;
 }
 
 const NOISE_CELLS = 6000;
 
-function measureNoise(band: BandFit, agreed: Profile): void {
+function measureNoise(band: BandFit, agreed: Float64Array): void {
   const { data, state, limits } = band;
   const step = Math.max(1, Math.floor((data.bins * data.bands) / NOISE_CELLS));
   const most = Math.ceil(data.light.length / step);
@@ -159,7 +190,7 @@ function measureNoise(band: BandFit, agreed: Profile): void {
 }
 
 /** Marks cells that are clipped, at the floor, or differ from what the other bands show there. */
-function maskCells(band: BandFit, agreed: Profile): void {
+function maskCells(band: BandFit, agreed: Float64Array): void {
   const { data, state, limits, leaveOut } = band;
   const noise = state.noise;
   if (noise === null) return;
@@ -205,12 +236,14 @@ function reachesWhite(noise: Noise, light: number, clip: number): boolean {
 
 const LONGEST_RUN_FRINGES = 1.2;
 const MOST_BINS_LEFT = 0.25;
+/** A run ends where the misfit has fallen to this share of its peak. */
+const RUN_EDGE = 0.1;
 
 /**
  * Leaves out what all bands show in one place and the fit does not: a dead column, a pen line. Only where most of the profile
  * follows the fit (the yardstick is the median misfit), so that a wrong model does not mask the data that speak against it.
  */
-function maskBins(band: BandFit, agreed: Profile): void {
+function maskBins(band: BandFit, agreed: Profile): boolean {
   const { data, state, grid, table, fit } = band;
   const z = new Float64Array(grid.bins);
   const sizes: number[] = [];
@@ -219,7 +252,7 @@ function maskBins(band: BandFit, agreed: Profile): void {
     z[k] = Math.abs(agreed.light[k] - table.lightAt(agreed.u[k])) / agreed.sigma[k];
     sizes.push(z[k]);
   }
-  if (sizes.length === 0) return;
+  if (sizes.length === 0) return false;
   sizes.sort((a, b) => a - b);
   const scale = Math.max(1, sizes[sizes.length >> 1] / 0.6745);
   const longest = (LONGEST_RUN_FRINGES * fit.result.parameters[0] * fit.unitPx) / grid.pitchPx;
@@ -227,17 +260,21 @@ function maskBins(band: BandFit, agreed: Profile): void {
   let count = 0;
   for (let k = 0; k < grid.bins; k++) {
     if (!(z[k] > OUTLIER_SIGMAS * scale)) continue;
-    let from = k;
-    let to = k;
-    while (from > 0 && z[from - 1] > NEIGHBOUR_SIGMAS * 0.7 * scale) from--;
-    while (to + 1 < grid.bins && z[to + 1] > NEIGHBOUR_SIGMAS * 0.7 * scale) to++;
+    let peak = k;
+    while (peak + 1 < grid.bins && z[peak + 1] > z[peak]) peak++;
+    // What a spike does to the fit beside it does not belong to it.
+    const edge = Math.max(NEIGHBOUR_SIGMAS * 0.7 * scale, RUN_EDGE * z[peak]);
+    let from = peak;
+    let to = peak;
+    while (from > 0 && z[from - 1] > edge) from--;
+    while (to + 1 < grid.bins && z[to + 1] > edge) to++;
     if (to - from + 1 <= longest) {
       out.fill(1, Math.max(0, from - 1), Math.min(grid.bins, to + 2));
       count += to - from + 3;
     }
-    k = to;
+    k = Math.max(k, to);
   }
-  if (count === 0 || count > MOST_BINS_LEFT * sizes.length) return;
+  if (count === 0 || count > MOST_BINS_LEFT * sizes.length) return false;
   for (let b = 0; b < data.bands; b++) {
     for (let j = 0; j < data.bins; j++) {
       const cell = b * data.bins + j;
@@ -246,6 +283,7 @@ function maskBins(band: BandFit, agreed: Profile): void {
       if (k >= 0 && k < grid.bins && out[k] === 1) state.left[cell] = LEFT.outlier;
     }
   }
+  return true;
 }
 
 export interface TiltFit {

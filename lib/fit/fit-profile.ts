@@ -37,8 +37,8 @@ export function fitProfile(profile: Profile, around: number, prior: CurvePrior |
   return best;
 }
 
-/** One fit from start values in px. */
-export function fitFrom(profile: Profile, start: StartValues, terms: ModelTerms, prior: CurvePrior | null): ProfileFit {
+/** One fit from start values in px; `asItIs` takes them over unchanged. */
+export function fitFrom(profile: Profile, start: StartValues, terms: ModelTerms, prior: CurvePrior | null, asItIs = false): ProfileFit {
   const layout = layoutOf(terms);
   const unitPx = start.spacing;
   const unitLight = Math.max(1e-9, start.a + Math.max(0, start.background));
@@ -54,7 +54,7 @@ export function fitFrom(profile: Profile, start: StartValues, terms: ModelTerms,
   if (terms.background > 1) p[7] = start.slope / unitLight;
   if (layout.curve >= 0 && prior) p[layout.curve] = prior.value * unitPx;
   if (layout.tone >= 0) p[layout.tone] = 1;
-  return run(profile, { layout, prior, originPx, unitPx, unitLight }, p);
+  return run(profile, { layout, prior, originPx, unitPx, unitLight, asItIs }, p);
 }
 
 /** The same fit carried on: new data, or more terms. Parameters that are new start at their neutral value. */
@@ -132,6 +132,7 @@ interface Frame {
   unitLight: number;
   /** Parameters that keep their start value. */
   hold?: number[];
+  asItIs?: boolean;
 }
 
 function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
@@ -165,7 +166,7 @@ function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
       },
     },
     start,
-    { ...boundsFor(layout, fixed, start, frame.hold ?? []), maxEvaluations: 120, reductionTolerance: 1e-12, gradientTolerance: 1e-9, enough: ENOUGH },
+    { ...boundsFor(layout, fixed, start, frame.hold ?? []), maxEvaluations: frame.asItIs ? 1 : 120, reductionTolerance: 1e-12, gradientTolerance: 1e-9, enough: ENOUGH },
   );
   return { layout, fixed, result, originPx, unitPx, unitLight, points: n, curvePrior: prior };
 }

@@ -59,7 +59,7 @@ export function lookAtPlace(ask: PlaceAsk): PlaceFit | null {
   const { picture, spacingPx, prior, leaveOut, zeroShift } = ask;
   const rect = leanIn(picture, ask.rect, spacingPx);
   const stack = straighten(picture, rect, gridFor(rect, spacingPx, true));
-  const band = fitBands(stack, spacingPx, prior, lightLimits(picture), leaveOut, { from: null, rounds: 2, zeroShift });
+  const band = fitBands(stack, spacingPx, prior, lightLimits(picture), leaveOut, { from: null, asItIs: false, rounds: 2, zeroShift });
   if (band === null) return null;
   return { rect, stack, band, tilt: fitTilt(stack, band.shifts) };
 }
@@ -80,7 +80,7 @@ export function growPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit {
     if (rect.lengthPx < 1.06 * look.rect.lengthPx) continue;
     const from = startFrom(look, rect);
     const stack = straighten(ask.picture, rect, gridFor(rect, from.spacing, true));
-    const band = fitBands(stack, from.spacing, ask.prior, lightLimits(ask.picture), ask.leaveOut, { from, rounds: 2, zeroShift: ask.zeroShift });
+    const band = fitBands(stack, from.spacing, ask.prior, lightLimits(ask.picture), ask.leaveOut, { from, asItIs: false, rounds: 2, zeroShift: ask.zeroShift });
     if (band === null) continue;
     const longer: PlaceFit = { rect, stack, band, tilt: fitTilt(stack, band.shifts) };
     const spacing = band.fit.result.parameters[0] * band.fit.unitPx;
@@ -120,7 +120,7 @@ export function fitPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit | null {
   for (let turn = 0; turn < STRAIGHTENINGS; turn++) {
     const from = startFrom(before, here);
     const stack = straighten(picture, here, gridFor(here, from.spacing, false));
-    const band = fitBands(stack, from.spacing, prior, limits, leaveOut, { from, rounds: turn === 0 ? 2 : 1, zeroShift });
+    const band = fitBands(stack, from.spacing, prior, limits, leaveOut, { from, asItIs: true, rounds: turn === 0 ? 2 : 1, zeroShift });
     if (band === null) return last;
     const tilt = fitTilt(stack, band.shifts);
     last = { rect: here, stack, band, tilt };
