@@ -26,8 +26,13 @@ export interface BandState {
   gainSlope: Float64Array;
   offset: Float64Array;
   slope: Float64Array;
+  /** Share of the fitted background's bend that this band has beyond its gain; the bend itself is `bendOf`. */
+  bend: Float64Array;
+  bendOf: ((u: number) => number) | null;
   shift: Float64Array;
   stretch: Float64Array;
+  /** Tangent of the lean that `shift` undoes so far: shift = lean * v. */
+  lean: number;
   /** Why a cell is left out; 0 is used. */
   left: Uint8Array;
   noise: Noise | null;
@@ -37,7 +42,7 @@ export const LEFT = { used: 0, clipped: 1, floor: 2, outlier: 3, person: 4, outs
 
 export function freshState(data: BandData): BandState {
   const line = (v: number) => new Float64Array(data.bands).fill(v);
-  return { gain: line(1), gainSlope: line(0), offset: line(0), slope: line(0), shift: line(0), stretch: line(0), left: new Uint8Array(data.bins * data.bands), noise: null };
+  return { gain: line(1), gainSlope: line(0), offset: line(0), slope: line(0), bend: line(0), bendOf: null, shift: line(0), stretch: line(0), lean: 0, left: new Uint8Array(data.bins * data.bands), noise: null };
 }
 
 /**
@@ -91,6 +96,32 @@ export function commonU(data: BandData, state: BandState, band: number, cell: nu
   return (data.u[cell] - state.shift[band]) / (1 + state.stretch[band]);
 }
 
+/** Stray light of a band at u beyond its share of the common profile. */
+export function strayIn(state: BandState, grid: CommonGrid, band: number, u: number): number {
+  const plain = state.offset[band] + (state.slope[band] * u) / grid.half;
+  return state.bendOf === null ? plain : plain + state.bend[band] * state.bendOf(u);
+}
+
+/** Bend of the fitted background (its terms of second order and up) in light of the profile; null where it has none. */
+function bendOf(fit: ProfileFit): ((u: number) => number) | null {
+  const n = fit.layout.terms.background;
+  const p = fit.result.parameters;
+  if (n < 3) return null;
+  return (u) => {
+    const z = ((u - fit.originPx) / fit.unitPx - fit.fixed.centre) / fit.fixed.half;
+    let before = 1;
+    let here = z;
+    let sum = 0;
+    for (let k = 2; k < n; k++) {
+      const next = ((2 * k - 1) * z * here - (k - 1) * before) / k;
+      before = here;
+      here = next;
+      sum += p[6 + k] * next;
+    }
+    return sum * fit.unitLight;
+  };
+}
+
 /** The gain at a cell's own place along the fringes. */
 export function gainIn(data: BandData, state: BandState, band: number, cell: number): number {
   const g = state.gain[band];
@@ -120,8 +151,7 @@ export function combineBands(data: BandData, state: BandState, grid: CommonGrid,
       const g = gainIn(data, state, b, cell);
       const k = Math.floor((u - grid.from) * scale);
       if (k < 0 || k >= n) continue;
-      const z = u / grid.half;
-      const extra = state.offset[b] + state.slope[b] * z;
+      const extra = strayIn(state, grid, b, u);
       let variance = 1;
       if (expected && state.noise) variance = varianceAt(state.noise, g * expected[k] + extra);
       const w = (pixels * g * g) / variance;
@@ -235,16 +265,19 @@ export interface BandShifts {
 }
 
 /**
- * Fits every band as offset + slope z + gain P(u) - shift P' - stretch u P' and renews the state's gain, offset and slope.
+ * Fits every band as offset + slope z + gain P(u) - shift P' - stretch u P', with its own share of a bent background, and
+ * renews the state's gain and stray light.
  * Shift and stretch are answered, not applied. Bands too poor for it get weight 0 and keep gain 0.
  */
-export function regressBands(data: BandData, state: BandState, grid: CommonGrid, table: FitTable): BandShifts {
+export function regressBands(data: BandData, state: BandState, grid: CommonGrid, table: FitTable, fit: ProfileFit): BandShifts {
   const n = data.bands;
   const out: BandShifts = { shift: new Float64Array(n), shiftWeight: new Float64Array(n), stretch: new Float64Array(n), stretchWeight: new Float64Array(n) };
-  const T = 5;
+  const bend = bendOf(fit);
+  const T = bend === null ? 5 : 6;
   const a = new Float64Array(T * T);
   const rhs = new Float64Array(T);
   const t = new Float64Array(T);
+  const renewed = new Float64Array(n);
   for (let b = 0; b < n; b++) {
     a.fill(0);
     rhs.fill(0);
@@ -257,12 +290,13 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
       const along = state.gain[b] > 0 ? gainIn(data, state, b, cell) / state.gain[b] : 1;
       const p = along * table.lightAt(u);
       const slope = along * table.slopeAt(u);
-      const w = data.pixels[cell] / (state.noise ? varianceAt(state.noise, g * p + state.offset[b] + (state.slope[b] * u) / grid.half) : 1);
+      const w = data.pixels[cell] / (state.noise ? varianceAt(state.noise, g * p + strayIn(state, grid, b, u)) : 1);
       t[0] = 1;
       t[1] = u / grid.half;
       t[2] = p;
       t[3] = -slope;
       t[4] = (-slope * u) / grid.half;
+      if (bend !== null) t[5] = bend(u);
       for (let k = 0; k < T; k++) {
         const wt = w * t[k];
         rhs[k] += wt * data.light[cell];
@@ -278,12 +312,15 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
     }
     state.offset[b] = x[0];
     state.slope[b] = x[1];
+    renewed[b] = bend === null ? 0 : x[5];
     state.gain[b] = x[2];
     out.shift[b] = x[3] / x[2];
     out.shiftWeight[b] = informationOf(a, T, 3) * x[2] * x[2];
     out.stretch[b] = x[4] / x[2] / grid.half;
     out.stretchWeight[b] = informationOf(a, T, 4) * x[2] * x[2] * grid.half * grid.half;
   }
+  state.bend = renewed;
+  state.bendOf = bend;
   normalise(data, state);
   return out;
 }
@@ -310,15 +347,18 @@ function normalise(data: BandData, state: BandState): void {
   let gg = 0;
   let go = 0;
   let gs = 0;
+  let gb = 0;
   for (let b = 0; b < data.bands; b++) {
     state.gain[b] *= n / g;
     gg += state.gain[b] ** 2;
     go += state.gain[b] * state.offset[b];
     gs += state.gain[b] * state.slope[b];
+    gb += state.gain[b] * state.bend[b];
   }
   for (let b = 0; b < data.bands; b++) {
     state.offset[b] -= (state.gain[b] * go) / gg;
     state.slope[b] -= (state.gain[b] * gs) / gg;
+    state.bend[b] -= (state.gain[b] * gb) / gg;
   }
   for (let b = 0; b < data.bands; b++) {
     const before = b > 0 && state.gain[b - 1] > 0 ? b - 1 : b;

@@ -14,7 +14,8 @@ const MARGIN = 4;
  */
 export function chooseTerms(band: BandFit, allow: { curve: boolean; tone: boolean; chirp: boolean }): BandFit {
   let now = band;
-  for (let added = 0; added < MOST_ADDED; added++) {
+  for (let added = 0; ; added++) {
+    if (added >= MOST_ADDED) return now;
     let best: { terms: ModelTerms; gain: number } | null = null;
     for (const terms of offers(now.fit.layout.terms, allow)) {
       const trial = refit(now.profile, now.fit, terms);
@@ -24,12 +25,12 @@ export function chooseTerms(band: BandFit, allow: { curve: boolean; tone: boolea
       const gain = (now.fit.result.chiSquare - trial.result.chiSquare) / scale - extra * Math.log(trial.points) - MARGIN;
       if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain };
     }
-    if (best === null) return now;
+    // Noise and masks once more with the bands' share of what was added.
+    if (best === null) return added === 0 ? now : (refineBands(now, now.fit.layout.terms) ?? now);
     const next = refineBands(now, best.terms);
     if (next === null) return now;
     now = next;
   }
-  return now;
 }
 
 function offers(terms: ModelTerms, allow: { curve: boolean; tone: boolean; chirp: boolean }): ModelTerms[] {

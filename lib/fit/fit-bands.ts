@@ -1,4 +1,4 @@
-import { chainGains, combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
+import { chainGains, combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, strayIn, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
 import { fitFrom, fitProfile, plainTerms, rebase, refit, type CurvePrior, type ProfileFit } from './fit-profile';
 import { chooseZero } from './zero-order';
 import { fitNoise, varianceAt, type Noise } from './noise';
@@ -62,7 +62,8 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
   if (first === null) return null;
   const fit = rebase(profile, first, how.zeroShift);
   const table = tableFor(data, grid, fit);
-  const shifts = regressBands(data, state, grid, table);
+  const shifts = regressBands(data, state, grid, table, fit);
+  undoLean(data, state, shifts);
   let band: BandFit = { data, fit, profile, state, grid, table, shifts, limits, leaveOut, zeroShift: how.zeroShift };
   for (let round = 0; round < how.rounds; round++) {
     const next = refineBands(band, band.fit.layout.terms);
@@ -71,6 +72,23 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
   }
   return how.zeroShift === 0 ? withBestZero(band) : band;
 }
+
+/**
+ * Bands are compared with each other only after a lean between them is undone: displaced fringes would count as outliers,
+ * and what shows the lean would be masked.
+ */
+function undoLean(data: BandData, state: BandState, shifts: BandShifts): void {
+  const { b } = weightedLine(data.bandV, shifts.shift, shifts.shiftWeight);
+  if (!Number.isFinite(b) || Math.abs(state.lean + b) > MOST_LEAN) return;
+  state.lean += b;
+  for (let k = 0; k < data.bands; k++) {
+    state.shift[k] = state.lean * data.bandV[k];
+    // What is undone now is no longer beyond the state.
+    shifts.shift[k] -= b * data.bandV[k];
+  }
+}
+
+const MOST_LEAN = 0.3;
 
 /** Where the exact geometry tells fringes apart, the zero order is the one with which the pattern fits best. */
 function withBestZero(band: BandFit): BandFit | null {
@@ -99,7 +117,8 @@ export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null 
   if (countUsed(profile) < FEWEST_POINTS) return null;
   const fit = rebase(profile, refit(profile, before.fit, terms), before.zeroShift);
   const table = tableFor(data, grid, fit);
-  const shifts = regressBands(data, state, grid, table);
+  const shifts = regressBands(data, state, grid, table, fit);
+  undoLean(data, state, shifts);
   return { ...before, fit, profile, table, shifts, limits };
 }
 
@@ -143,7 +162,7 @@ function agreeOn(band: BandFit): Float64Array {
       const u = commonU(data, state, b, cell);
       const k = Math.floor((u - grid.from) / grid.pitchPx);
       if (k < 0 || k >= grid.bins) continue;
-      const own = (data.light[cell] - state.offset[b] - (state.slope[b] * u) / grid.half) / gainIn(data, state, b, cell);
+      const own = (data.light[cell] - strayIn(state, grid, b, u)) / gainIn(data, state, b, cell);
       values[k].push(own - table.lightAt(u) + table.lightAt(grid.from + (k + 0.5) * grid.pitchPx));
     }
   }
@@ -163,7 +182,7 @@ function agreedIn(band: BandFit, agreed: Float64Array, b: number, cell: number):
   const k = Math.floor((u - grid.from) / grid.pitchPx);
   if (k < 0 || k >= grid.bins) return NaN;
   const light = agreed[k] + table.lightAt(u) - table.lightAt(grid.from + (k + 0.5) * grid.pitchPx);
-  return state.offset[b] + (state.slope[b] * u) / grid.half + gainIn(data, state, b, cell) * light;
+  return strayIn(state, grid, b, u) + gainIn(data, state, b, cell) * light;
 }
 
 const NOISE_CELLS = 6000;
@@ -302,7 +321,8 @@ export interface TiltFit {
 }
 
 /** Straight line and parabola through the bands' shifts, straight line through their stretches. */
-export function fitTilt(data: BandData, shifts: BandShifts): TiltFit {
+export function fitTilt(band: BandFit): TiltFit {
+  const { data, shifts, state } = band;
   const line = weightedLine(data.bandV, shifts.shift, shifts.shiftWeight);
   const scatter = Math.max(1, line.chiSquare / Math.max(1, line.n - 2));
   const fan = weightedLine(data.bandV, shifts.stretch, shifts.stretchWeight);
@@ -312,5 +332,5 @@ export function fitTilt(data: BandData, shifts: BandShifts): TiltFit {
   const rest = shifts.shift.map((s, i) => s - line.a - line.b * data.bandV[i]);
   const bow = weightedLine(squares, rest, shifts.shiftWeight);
   const barrel = weightedLine(squares, shifts.stretch.map((s, i) => s - fan.a - fan.b * data.bandV[i]), shifts.stretchWeight);
-  return { barrel: barrel.b, uBarrel: barrel.ub * Math.sqrt(fanScatter), slope: line.b, uSlope: line.ub * Math.sqrt(scatter), bowPx: bow.b, uBowPx: bow.ub * Math.sqrt(scatter), fan: fan.b, uFan: fan.ub * Math.sqrt(fanScatter) };
+  return { barrel: barrel.b, uBarrel: barrel.ub * Math.sqrt(fanScatter), slope: state.lean + line.b, uSlope: line.ub * Math.sqrt(scatter), bowPx: bow.b, uBowPx: bow.ub * Math.sqrt(scatter), fan: fan.b, uFan: fan.ub * Math.sqrt(fanScatter) };
 }

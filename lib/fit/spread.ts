@@ -1,4 +1,4 @@
-import { commonU, gainIn, LEFT } from './bands';
+import { commonU, gainIn, LEFT, strayIn } from './bands';
 import { expectedOn, type BandFit } from './fit-bands';
 import { AveragedModel } from './fit-profile';
 import { varianceAt } from './noise';
@@ -79,7 +79,7 @@ function bandInfluences(band: BandFit, c: Float64Array, n: number): Float64Array
       const g = gainIn(data, state, b, cell);
       const k = Math.floor((u - grid.from) / grid.pitchPx);
       if (k < 0 || k >= grid.bins) continue;
-      const extra = state.offset[b] + (state.slope[b] * u) / grid.half;
+      const extra = strayIn(state, grid, b, u);
       const w = (data.pixels[cell] * g * g) / varianceAt(state.noise, g * expected[k] + extra);
       const r = (data.light[cell] - extra) / g - table.lightAt(u);
       const wr = w * r * fit.unitLight;

@@ -61,7 +61,7 @@ export function lookAtPlace(ask: PlaceAsk): PlaceFit | null {
   const stack = straighten(picture, rect, gridFor(rect, spacingPx, true));
   const band = fitBands(stack, spacingPx, prior, lightLimits(picture), leaveOut, { from: null, asItIs: false, rounds: 2, zeroShift });
   if (band === null) return null;
-  return { rect, stack, band, tilt: fitTilt(stack, band.shifts) };
+  return { rect, stack, band, tilt: fitTilt(band) };
 }
 
 /** Shares of the way from the region that was found to the frame's edge that are tried, longest first. */
@@ -82,7 +82,7 @@ export function growPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit {
     const stack = straighten(ask.picture, rect, gridFor(rect, from.spacing, true));
     const band = fitBands(stack, from.spacing, ask.prior, lightLimits(ask.picture), ask.leaveOut, { from, asItIs: false, rounds: 2, zeroShift: ask.zeroShift });
     if (band === null) continue;
-    const longer: PlaceFit = { rect, stack, band, tilt: fitTilt(stack, band.shifts) };
+    const longer: PlaceFit = { rect, stack, band, tilt: fitTilt(band) };
     const spacing = band.fit.result.parameters[0] * band.fit.unitPx;
     if (Math.abs(spacing / from.spacing - 1) < 0.03 && relativeU(longer) < NOT_WORSE * sure) return longer;
   }
@@ -122,7 +122,7 @@ export function fitPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit | null {
     const stack = straighten(picture, here, gridFor(here, from.spacing, false));
     const band = fitBands(stack, from.spacing, prior, limits, leaveOut, { from, asItIs: true, rounds: turn === 0 ? 2 : 1, zeroShift });
     if (band === null) return last;
-    const tilt = fitTilt(stack, band.shifts);
+    const tilt = fitTilt(band);
     last = { rect: here, stack, band, tilt };
     before = last;
     const lean = toDegrees(Math.atan(tilt.slope));
