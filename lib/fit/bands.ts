@@ -24,6 +24,8 @@ export interface BandState {
   gain: Float64Array;
   /** Change of the gain along the fringes, per px: cells of a band do not all have its mean v. */
   gainSlope: Float64Array;
+  /** Change of the gain along the band, per half length: the edge of the light need not run along the bands. */
+  gainAlong: Float64Array;
   offset: Float64Array;
   slope: Float64Array;
   /** Share of the fitted background's bend that this band has beyond its gain; the bend itself is `bendOf`. */
@@ -42,7 +44,7 @@ export const LEFT = { used: 0, clipped: 1, floor: 2, outlier: 3, person: 4, outs
 
 export function freshState(data: BandData): BandState {
   const line = (v: number) => new Float64Array(data.bands).fill(v);
-  return { gain: line(1), gainSlope: line(0), offset: line(0), slope: line(0), bend: line(0), bendOf: null, shift: line(0), stretch: line(0), lean: 0, left: new Uint8Array(data.bins * data.bands), noise: null };
+  return { gain: line(1), gainSlope: line(0), gainAlong: line(0), offset: line(0), slope: line(0), bend: line(0), bendOf: null, shift: line(0), stretch: line(0), lean: 0, left: new Uint8Array(data.bins * data.bands), noise: null };
 }
 
 /**
@@ -123,9 +125,9 @@ function bendOf(fit: ProfileFit): ((u: number) => number) | null {
 }
 
 /** The gain at a cell's own place along the fringes. */
-export function gainIn(data: BandData, state: BandState, band: number, cell: number): number {
+export function gainIn(data: BandData, state: BandState, grid: CommonGrid, band: number, cell: number): number {
   const g = state.gain[band];
-  return Math.max(0.05 * g, g + state.gainSlope[band] * data.dv[cell]);
+  return Math.max(0.05 * g, g + state.gainSlope[band] * data.dv[cell] + (state.gainAlong[band] * data.u[cell]) / grid.half);
 }
 
 /**
@@ -148,7 +150,7 @@ export function combineBands(data: BandData, state: BandState, grid: CommonGrid,
       const pixels = data.pixels[cell];
       if (pixels === 0 || state.left[cell] !== LEFT.used) continue;
       const u = commonU(data, state, b, cell);
-      const g = gainIn(data, state, b, cell);
+      const g = gainIn(data, state, grid, b, cell);
       const k = Math.floor((u - grid.from) * scale);
       if (k < 0 || k >= n) continue;
       const extra = strayIn(state, grid, b, u);
@@ -265,7 +267,7 @@ export interface BandShifts {
 }
 
 /**
- * Fits every band as offset + slope z + gain P(u) - shift P' - stretch u P', with its own share of a bent background, and
+ * Fits every band as offset + slope z + gain P(u) (1 + along z) - shift P' - stretch u P', with its own share of a bent background, and
  * renews the state's gain and stray light.
  * Shift and stretch are answered, not applied. Bands too poor for it get weight 0 and keep gain 0.
  */
@@ -273,7 +275,7 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
   const n = data.bands;
   const out: BandShifts = { shift: new Float64Array(n), shiftWeight: new Float64Array(n), stretch: new Float64Array(n), stretchWeight: new Float64Array(n) };
   const bend = bendOf(fit);
-  const T = bend === null ? 5 : 6;
+  const T = bend === null ? 6 : 7;
   const a = new Float64Array(T * T);
   const rhs = new Float64Array(T);
   const t = new Float64Array(T);
@@ -286,8 +288,8 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
       const cell = b * data.bins + j;
       if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used) continue;
       const u = commonU(data, state, b, cell);
-      // What the gain's slope adds within the band is put into the pattern the band is compared with.
-      const along = state.gain[b] > 0 ? gainIn(data, state, b, cell) / state.gain[b] : 1;
+      // What the gain's slope across the bands adds within this one is put into the pattern it is compared with.
+      const along = state.gain[b] > 0 ? 1 + (state.gainSlope[b] * data.dv[cell]) / state.gain[b] : 1;
       const p = along * table.lightAt(u);
       const slope = along * table.slopeAt(u);
       const w = data.pixels[cell] / (state.noise ? varianceAt(state.noise, g * p + strayIn(state, grid, b, u)) : 1);
@@ -296,7 +298,8 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
       t[2] = p;
       t[3] = -slope;
       t[4] = (-slope * u) / grid.half;
-      if (bend !== null) t[5] = bend(u);
+      t[5] = (p * u) / grid.half;
+      if (bend !== null) t[6] = bend(u);
       for (let k = 0; k < T; k++) {
         const wt = w * t[k];
         rhs[k] += wt * data.light[cell];
@@ -308,11 +311,13 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
     const noisy = state.noise ? 1 : a[0] > 0 ? (OWN_NOISE * OWN_NOISE * rhs[0] * rhs[0]) / (a[0] * a[0]) : 1;
     if (x === null || !(x[2] > 0.01) || !(informationOf(a, T, 2) * x[2] * x[2] > LEAST_GAIN_INFORMATION * noisy)) {
       state.gain[b] = 0;
+      state.gainAlong[b] = 0;
       continue;
     }
     state.offset[b] = x[0];
     state.slope[b] = x[1];
-    renewed[b] = bend === null ? 0 : x[5];
+    state.gainAlong[b] = x[5];
+    renewed[b] = bend === null ? 0 : x[6];
     state.gain[b] = x[2];
     out.shift[b] = x[3] / x[2];
     out.shiftWeight[b] = informationOf(a, T, 3) * x[2] * x[2];
@@ -348,17 +353,21 @@ function normalise(data: BandData, state: BandState): void {
   let go = 0;
   let gs = 0;
   let gb = 0;
+  let ga = 0;
   for (let b = 0; b < data.bands; b++) {
     state.gain[b] *= n / g;
+    state.gainAlong[b] *= n / g;
     gg += state.gain[b] ** 2;
     go += state.gain[b] * state.offset[b];
     gs += state.gain[b] * state.slope[b];
     gb += state.gain[b] * state.bend[b];
+    ga += state.gain[b] * state.gainAlong[b];
   }
   for (let b = 0; b < data.bands; b++) {
     state.offset[b] -= (state.gain[b] * go) / gg;
     state.slope[b] -= (state.gain[b] * gs) / gg;
     state.bend[b] -= (state.gain[b] * gb) / gg;
+    state.gainAlong[b] -= (state.gain[b] * ga) / gg;
   }
   for (let b = 0; b < data.bands; b++) {
     const before = b > 0 && state.gain[b - 1] > 0 ? b - 1 : b;

@@ -162,7 +162,7 @@ function agreeOn(band: BandFit): Float64Array {
       const u = commonU(data, state, b, cell);
       const k = Math.floor((u - grid.from) / grid.pitchPx);
       if (k < 0 || k >= grid.bins) continue;
-      const own = (data.light[cell] - strayIn(state, grid, b, u)) / gainIn(data, state, b, cell);
+      const own = (data.light[cell] - strayIn(state, grid, b, u)) / gainIn(data, state, grid, b, cell);
       values[k].push(own - table.lightAt(u) + table.lightAt(grid.from + (k + 0.5) * grid.pitchPx));
     }
   }
@@ -182,7 +182,7 @@ function agreedIn(band: BandFit, agreed: Float64Array, b: number, cell: number):
   const k = Math.floor((u - grid.from) / grid.pitchPx);
   if (k < 0 || k >= grid.bins) return NaN;
   const light = agreed[k] + table.lightAt(u) - table.lightAt(grid.from + (k + 0.5) * grid.pitchPx);
-  return strayIn(state, grid, b, u) + gainIn(data, state, b, cell) * light;
+  return strayIn(state, grid, b, u) + gainIn(data, state, grid, b, cell) * light;
 }
 
 const NOISE_CELLS = 6000;

@@ -76,7 +76,7 @@ function bandInfluences(band: BandFit, c: Float64Array, n: number): Float64Array
       const cell = b * data.bins + j;
       if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used) continue;
       const u = commonU(data, state, b, cell);
-      const g = gainIn(data, state, b, cell);
+      const g = gainIn(data, state, grid, b, cell);
       const k = Math.floor((u - grid.from) / grid.pitchPx);
       if (k < 0 || k >= grid.bins) continue;
       const extra = strayIn(state, grid, b, u);
