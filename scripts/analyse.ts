@@ -2,12 +2,14 @@ import { readFile } from 'node:fs/promises';
 import { performance } from 'node:perf_hooks';
 import type { Estimate, FrameAnswer, SetupValues, ToneChoice } from '@/lib/domain/reading-result';
 import { analyseFrame } from '@/lib/measure/analyse-frame';
+import { analyseScan, type ScanRefusal, type ScanResult } from '@/lib/measure/analyse-scan';
 import { ENGINE_VERSION } from '@/lib/measure/engine-version';
 
 const USAGE = `Usage: npm run --silent analyse -- FILE... [--list FILE.jsonl]
   [--scale-um-per-px N] [--separation-um N] [--width-um N] [--distance-mm N]
   [--u-scale-um-per-px N] [--u-separation-um N] [--u-width-um N] [--u-distance-mm N]
   [--linear | --srgb]
+       npm run --silent analyse -- --scan FILE [--detector-mm N] --separation-um N --distance-mm N
 One JSON line per frame. Values in a list override those of the command line.
 `;
 
@@ -27,13 +29,21 @@ type Numbers = Partial<Record<NumberKey, number>>;
 interface Job {
   file: string;
   numbers: Numbers;
+  /** A line scan: position in mm and intensity in two columns. */
+  scan: boolean;
+}
+
+interface Plan {
+  jobs: Job[];
+  tone: ToneChoice;
+  detectorMm: number;
 }
 
 class WrongUsage extends Error {}
 
 /** Runs the command; answers the exit code. */
 export async function main(args: string[]): Promise<number> {
-  let plan: { jobs: Job[]; tone: ToneChoice };
+  let plan: Plan;
   try {
     plan = await readArguments(args);
   } catch (error) {
@@ -42,15 +52,17 @@ export async function main(args: string[]): Promise<number> {
     return 2;
   }
   for (const job of plan.jobs) {
-    const line = await analyseFile(job, plan.tone);
+    const line = await analyseFile(job, plan);
     await new Promise<void>((resolve, reject) => process.stdout.write(`${JSON.stringify(line)}\n`, (e) => (e ? reject(e) : resolve())));
   }
   return 0;
 }
 
-async function readArguments(args: string[]): Promise<{ jobs: Job[]; tone: ToneChoice }> {
+async function readArguments(args: string[]): Promise<Plan> {
   const files: string[] = [];
   const lists: string[] = [];
+  const scans: string[] = [];
+  let detectorMm = 0;
   const numbers: Numbers = {};
   let tone: ToneChoice = 'auto';
   for (let i = 0; i < args.length; i++) {
@@ -59,6 +71,11 @@ async function readArguments(args: string[]): Promise<{ jobs: Job[]; tone: ToneC
       const wish: ToneChoice = arg === '--linear' ? 'linear' : 'srgb';
       if (tone !== 'auto' && tone !== wish) throw new WrongUsage('Choose --linear or --srgb, not both.');
       tone = wish;
+    } else if (arg === '--scan') {
+      if (i + 1 >= args.length) throw new WrongUsage('--scan needs a file.');
+      scans.push(args[++i]);
+    } else if (arg === '--detector-mm') {
+      detectorMm = positive(arg, args[++i]);
     } else if (arg === '--list') {
       if (i + 1 >= args.length) throw new WrongUsage('--list needs a file.');
       lists.push(args[++i]);
@@ -67,10 +84,10 @@ async function readArguments(args: string[]): Promise<{ jobs: Job[]; tone: ToneC
     } else if (arg.startsWith('--')) throw new WrongUsage(`${arg} is not known.`);
     else files.push(arg);
   }
-  const jobs: Job[] = files.map((file) => ({ file, numbers }));
+  const jobs: Job[] = [...files.map((file) => ({ file, numbers, scan: false })), ...scans.map((file) => ({ file, numbers, scan: true }))];
   for (const list of lists) jobs.push(...(await readList(list, numbers)));
   if (jobs.length === 0 && lists.length === 0) throw new WrongUsage('Name at least one frame.');
-  return { jobs, tone };
+  return { jobs, tone, detectorMm };
 }
 
 function positive(name: string, text: string | undefined): number {
@@ -105,7 +122,7 @@ async function readList(path: string, common: Numbers): Promise<Job[]> {
       if (typeof value !== 'number' || !Number.isFinite(value) || !(value > 0)) throw new WrongUsage(`${where}: ${key} must be a number larger than 0.`);
       numbers[key] = value;
     }
-    jobs.push({ file: entry.file, numbers });
+    jobs.push({ file: entry.file, numbers, scan: false });
   });
   return jobs;
 }
@@ -120,7 +137,7 @@ function setupOf(n: Numbers): SetupValues {
   };
 }
 
-async function analyseFile(job: Job, tone: ToneChoice): Promise<object> {
+async function analyseFile(job: Job, plan: Plan): Promise<object> {
   let bytes: Uint8Array;
   try {
     bytes = await readFile(job.file);
@@ -129,7 +146,17 @@ async function analyseFile(job: Job, tone: ToneChoice): Promise<object> {
     const message = missing ? 'There is no such file. Check the name and the folder.' : 'The file cannot be read. Check that it is a file and that it may be read.';
     return { file: job.file, ok: false, code: missing ? 'NO_SUCH_FILE' : 'UNREADABLE_FILE', message, engine: ENGINE_VERSION, ms: { decode: 0, find: 0, profile: 0, fit: 0, total: 0 } };
   }
-  return lineFor(job.file, await analyseFrame(bytes, setupOf(job.numbers), { tone }, () => performance.now()));
+  const clock = () => performance.now();
+  if (job.scan) return scanLine(job.file, analyseScan(new TextDecoder().decode(bytes), plan.detectorMm, setupOf(job.numbers), clock));
+  return lineFor(job.file, await analyseFrame(bytes, setupOf(job.numbers), { tone: plan.tone }, clock));
+}
+
+/** The line of one scan: a frame's keys with mm in place of px. */
+function scanLine(file: string, answer: ScanResult | ScanRefusal): object {
+  const { ms, ...rest } = answer;
+  const rounded = Object.fromEntries(Object.entries(ms).map(([k, v]) => [k, Math.round(v * 1000) / 1000]));
+  const present = Object.fromEntries(Object.entries(rest).filter(([key, v]) => key !== 'budget' && (v !== null || key === 'dofSpacing')));
+  return { file, ...present, ms: rounded };
 }
 
 /** The line of one frame: the keys of the command's description first, further ones at the end. */

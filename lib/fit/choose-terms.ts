@@ -5,7 +5,7 @@ import type { ModelTerms } from './two-slit-model';
 const MOST_BACKGROUND = 6;
 const MOST_ADDED = 4;
 /** A term must beat the information criterion by this much, so that noise does not buy terms. */
-const MARGIN = 4;
+export const MARGIN = 4;
 
 /**
  * Adds optional terms one at a time, each time the one that helps most, while the Bayesian information criterion
@@ -33,7 +33,7 @@ export function chooseTerms(band: BandFit, allow: { curve: boolean; tone: boolea
   }
 }
 
-function offers(terms: ModelTerms, allow: { curve: boolean; tone: boolean; chirp: boolean }): ModelTerms[] {
+export function offers(terms: ModelTerms, allow: { curve: boolean; tone: boolean; chirp: boolean }): ModelTerms[] {
   const list: ModelTerms[] = [];
   if (terms.background < MOST_BACKGROUND) list.push({ ...terms, background: terms.background + 1 });
   if (terms.background < MOST_BACKGROUND - 1) list.push({ ...terms, background: terms.background + 2 });

@@ -68,18 +68,21 @@ describe('simulated truth', () => {
   });
 });
 
+/** Share of the standard uncertainty: cells and bands fall differently on the changed frame, so digits differ, the value must not. */
+const SAME = 0.8;
+
 describe('changes that must not matter', () => {
   it('gain and offset', async () => {
     const picture = frame({ peak: 0.5 });
     const a = await measure(await tiff16(picture));
     const b = await measure(await tiff16(mapped(picture, (v) => 0.6 * v + 1500)));
-    expect(Math.abs(a.spacingPx - b.spacingPx)).toBeLessThan(0.3 * a.uSpacingPx);
+    expect(Math.abs(a.spacingPx - b.spacingPx)).toBeLessThan(SAME * a.uSpacingPx);
   });
   it('mirror: same spacing, opposite tilt', async () => {
     const picture = frame({ tiltDeg: 1.3 });
     const a = await measure(await tiff16(picture));
     const b = await measure(await tiff16(mirrored(picture)));
-    expect(Math.abs(a.spacingPx - b.spacingPx)).toBeLessThan(0.3 * a.uSpacingPx);
+    expect(Math.abs(a.spacingPx - b.spacingPx)).toBeLessThan(SAME * a.uSpacingPx);
     expect(Math.abs(a.tiltDeg + b.tiltDeg)).toBeLessThan(0.01);
     // The zero order's line, mirrored: distance along a's normal from a's zero order.
     const t = (a.tiltDeg * Math.PI) / 180;
@@ -90,7 +93,7 @@ describe('changes that must not matter', () => {
     const picture = frame({ tiltDeg: -0.8 });
     const a = await measure(await tiff16(picture));
     const b = await measure(await tiff16(turned(picture)));
-    expect(Math.abs(a.spacingPx - b.spacingPx)).toBeLessThan(0.3 * a.uSpacingPx);
+    expect(Math.abs(a.spacingPx - b.spacingPx)).toBeLessThan(SAME * a.uSpacingPx);
     expect(Math.abs(b.tiltDeg - a.tiltDeg - 90)).toBeLessThan(0.01);
   });
   it('the same bytes give the same digits', async () => {
