@@ -93,6 +93,12 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
       <div className="desk">
         <section className="left" aria-label="Photo, region and checks">
           <PhotoPart frame={frame} desk={desk} mayFit={mayFit} onKeys={() => setSheet(true)} />
+          {reading.note ? (
+            <p className="sec text-small text-ink-2">
+              {reading.sentBy ? `${reading.sentBy.name} wrote: ` : ''}
+              <span className="text-ink">{reading.note}</span>
+            </p>
+          ) : null}
           {mode === 'return' ? (
             <ReturnForm
               reading={reading}

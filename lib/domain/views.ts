@@ -237,6 +237,8 @@ export interface ReadingView extends ReadingBrief {
   replacedBy: number | null;
   sentBy: PersonRef | null;
   sentAt: Instant | null;
+  /** What the technician wrote when sending it; '' for nothing. */
+  note: string;
   returned: { reason: ReturnReason; words: string; by: PersonRef; at: Instant } | null;
   signature: SignatureView | null;
   zeroShift: number;

@@ -79,13 +79,13 @@ function partsIn(iso: string, timeZone: string): Record<string, string> {
 /** "12 Nov 2026, 09:42" in the lab's time zone. */
 export function formatInstant(iso: string, timeZone: string): string {
   const p = partsIn(iso, timeZone);
-  return `${p.day} ${MONTHS[Number(p.month) - 1]} ${p.year}, ${p.hour}:${p.minute}`;
+  return `${Number(p.day)} ${MONTHS[Number(p.month) - 1]} ${p.year}, ${p.hour}:${p.minute}`;
 }
 
 /** "12 Nov 2026" in the lab's time zone. */
 export function formatDay(iso: string, timeZone: string): string {
   const p = partsIn(iso, timeZone);
-  return `${p.day} ${MONTHS[Number(p.month) - 1]} ${p.year}`;
+  return `${Number(p.day)} ${MONTHS[Number(p.month) - 1]} ${p.year}`;
 }
 
 /** A calendar date yyyy-mm-dd as "12 Nov 2026"; it has no time zone. */

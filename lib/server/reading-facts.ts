@@ -106,7 +106,7 @@ export async function stepReading(
   columns: ReadingColumns = {},
 ): Promise<void> {
   const { from, to } = READING_STEPS[step];
-  if (facts.version !== expectedVersion) throw changedMeanwhile();
+  if (facts.version !== expectedVersion) throw await changedMeanwhile('reading', facts.readingId);
   if (!(from as readonly ReadingState[]).includes(facts.status)) throw wrongState(facts.status);
   const sets = Object.keys(columns).map((column) => `, ${column} = :${column}`);
   const moved = await change(
@@ -115,13 +115,28 @@ export async function stepReading(
     { ...columns, to, at, readingId: facts.readingId, status: facts.status, version: expectedVersion },
     work.transaction,
   );
-  if (moved !== 1) throw changedMeanwhile();
+  if (moved !== 1) throw await changedMeanwhile('reading', facts.readingId);
 }
 
-export function changedMeanwhile(): AppError {
+const DID: Record<string, string> = {
+  'reading.accept': 'accepted',
+  'reading.return': 'returned',
+  'reading.send': 'sent',
+  'reading.refit': 'fitted',
+};
+
+/** The refusal of the second of two, with who was first and when (read outside the transaction, from the log). */
+export async function changedMeanwhile(kind: 'reading' | 'frame', id: number): Promise<AppError> {
+  const [last] = await select<{ who: string; action: string; at: Date }>(
+    `SELECT who, action, at FROM audit_rows WHERE subject_kind = :kind AND subject_id = :id ORDER BY id DESC LIMIT 1`,
+    { kind, id },
+  );
+  const first = last
+    ? `${last.who} ${DID[last.action] ?? 'changed'} this ${kind} at ${last.at.toISOString().slice(11, 16)} UTC.`
+    : `Somebody else changed this ${kind} meanwhile.`;
   return new AppError(
     'CHANGED_MEANWHILE',
-    'Somebody else changed this reading meanwhile. Nothing of theirs or yours is lost: load the page to see where it stands.',
+    `${first} Nothing of theirs or yours is lost: load the page to see where it stands.`,
   );
 }
 

@@ -1,6 +1,7 @@
 import 'server-only';
 import type { Estimate, SetupValues, ToneChoice } from '@/lib/domain/reading-result';
 import type { BenchFitness, StatedValue } from '@/lib/domain/views';
+import { formatQuantity } from '@/lib/quantity/format';
 
 /** The columns of a setup that say what the bench is. */
 export interface SetupConstants {
@@ -133,7 +134,11 @@ export function changeBetween(
   if (before.plate !== now.plate) parts.push(`plate ${before.plate} to ${now.plate}`);
   for (const [key, name, unit] of NAMES) {
     const step = is[key].value - was[key].value;
-    if (step !== 0) parts.push(`${name} ${was[key].value} to ${is[key].value} ${unit}`);
+    if (step !== 0) {
+      const from = formatQuantity(was[key].value, 2 * was[key].u).value;
+      const to = formatQuantity(is[key].value, 2 * is[key].u).value;
+      parts.push(`${name} ${from} became ${to} ${unit}`);
+    }
     // Another plate has another separation and width by right; they are not compared.
     const sameThing = before.plate === now.plate || key === 'scaleUmPerPx' || key === 'distanceMm';
     if (sameThing && Math.abs(step) > 2 * Math.hypot(was[key].u, is[key].u)) changeIsLook = true;

@@ -4,7 +4,8 @@ import { returnReading } from '@/lib/server/commands/return-reading';
 import { sendReading, sendReadings } from '@/lib/server/commands/send-reading';
 import { db } from '@/lib/server/db';
 import { fitFacts, loadFrame } from '@/lib/server/frame-facts';
-import { changedMeanwhile, findReading, stepReading } from '@/lib/server/reading-facts';
+import { readingView } from '@/lib/server/queries/readings';
+import { findReading, stepReading } from '@/lib/server/reading-facts';
 import { inTransaction } from '@/lib/server/transaction';
 import { storeReading } from '@/lib/server/commands/store-reading';
 import { rows } from './support/database';
@@ -243,7 +244,7 @@ describe('re-fits', () => {
   test('of an old version are refused', async () => {
     const { frameId, readingId } = await inReview();
     await expect(refit(world.people.reviewer, frameId, readingId, 0, true)).rejects.toMatchObject({
-      code: changedMeanwhile().code,
+      code: 'CHANGED_MEANWHILE',
     });
     expect(await rows('SELECT id FROM readings WHERE frame_id = :frameId', { frameId })).toHaveLength(1);
   });
@@ -259,6 +260,21 @@ test('returning mails the reason to whoever sent it', async () => {
   expect(mail.to_address).toBe(world.people.technician.email);
   expect(mail.body_text).toContain(`Take the frame again. ${words}`);
   expect(mail.body_text).toContain(`/frames/${frameId}`);
+});
+
+test('the note written when sending stands on the reading', async () => {
+  const { readingId } = await makeReading(world, as(world.people.technician));
+  await sendReading(as(world.people.technician), { readingId, version: 0, note: 'Dust on the screen.' });
+  expect((await readingView(readingId))?.note).toBe('Dust on the screen.');
+});
+
+test('the second of two is told who was first', async () => {
+  const { readingId } = await inReview();
+  await accept(world.people.reviewer, readingId);
+  await expect(accept(world.people.reviewer2, readingId)).rejects.toMatchObject({
+    code: 'CHANGED_MEANWHILE',
+    message: expect.stringMatching(/accepted this reading at \d\d:\d\d UTC/) as string,
+  });
 });
 
 test('sending many: what cannot be sent is said and does not hold up the others', async () => {

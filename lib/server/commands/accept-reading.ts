@@ -33,7 +33,7 @@ export async function acceptReading(
   const facts = await findReading(wanted.readingId);
   const barred = await whyBarred(context.actor.id, facts);
   if (barred) throw new AppError('NOT_ALLOWED', barred);
-  if (facts.version !== wanted.version) throw changedMeanwhile();
+  if (facts.version !== wanted.version) throw await changedMeanwhile('reading', wanted.readingId);
   await requireAcceptable(context, facts, wanted.answers);
   await checkOwnPassword(context.actor.id, wanted.password, context.at);
   const { tables } = db();

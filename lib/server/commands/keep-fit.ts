@@ -40,26 +40,27 @@ export async function keepFit(
 ): Promise<{ readingId: number; version: number }> {
   const frame = await loadFrame(wanted.frameId);
   const before = wanted.fromReadingId === null ? null : await findReading(wanted.fromReadingId);
-  requireRight(context, frame, before, wanted.fromVersion);
+  await requireRight(context, frame, before, wanted.fromVersion);
   const facts = await fitFacts(frame);
   const result = await fitWith(frame, facts, wanted);
   return inTransaction(context, (work) => store(work, context, frame, before, facts, result, wanted));
 }
 
-function requireRight(
+async function requireRight(
   context: CommandContext,
   frame: FrameRow,
   before: ReadingFacts | null,
   version: number,
-): void {
+): Promise<void> {
   if (!before) {
-    if (!frameMay('fit', frame.state)) throw changedMeanwhile();
+    if (!frameMay('fit', frame.state)) throw await changedMeanwhile('frame', frame.id);
     if (!can(context.actor, 'readings.send'))
       throw new AppError('NOT_ALLOWED', 'Before review, a technician makes the fits.');
     return;
   }
   if (before.frameId !== frame.id) throw new AppError('BAD_INPUT', 'This reading is of another frame.');
-  if (before.currentReadingId !== before.readingId || before.version !== version) throw changedMeanwhile();
+  if (before.currentReadingId !== before.readingId || before.version !== version)
+    throw await changedMeanwhile('reading', before.readingId);
   if (isInReview(before)) {
     if (!can(context.actor, 'readings.return'))
       throw new AppError('NOT_ALLOWED', 'In review, a reviewer makes the fits.');
@@ -162,5 +163,5 @@ async function pointFrameAt(
     { readingId, frameId: frame.id, before: before.readingId, state: FRAME_STEPS.fit.to },
     work.transaction,
   );
-  if (moved !== 1) throw changedMeanwhile();
+  if (moved !== 1) throw await changedMeanwhile('reading', before.readingId);
 }

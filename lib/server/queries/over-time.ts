@@ -141,7 +141,7 @@ interface PointRow {
 
 async function pointsOf(benchId: number, { kind, id }: Choice, last: number): Promise<Point[]> {
   const rows = await select<PointRow>(
-    `SELECT r.id AS reading_id, r.frame_id, COALESCE(u.serial, f.file_name) AS label, f.received_at, st.accepted_at,
+    `SELECT r.id AS reading_id, r.frame_id, COALESCE(u.serial, CONCAT('Reading ', r.id)) AS label, f.received_at, st.accepted_at,
        r.value_nm, r.u_nm, r.setup_id, s.number AS setup_number
      FROM readings r JOIN reading_states st ON st.reading_id = r.id AND st.status = :accepted
      JOIN frames f ON f.id = r.frame_id JOIN setups s ON s.id = r.setup_id LEFT JOIN units u ON u.id = r.unit_id

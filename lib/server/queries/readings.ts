@@ -23,6 +23,7 @@ interface ViewColumns extends BriefColumns {
   replaces_id: number | null;
   replaced_by: number | null;
   sent_at: Date | null;
+  note: string;
   sender_id: number | null;
   sender: string | null;
 }
@@ -32,7 +33,7 @@ export async function readingView(readingId: number): Promise<ReadingView | null
   const [row] = await select<ViewColumns>(
     `SELECT ${BRIEF_COLUMNS}, rr.result_json, r.options_json, r.setup_id, r.bench_id, r.replaces_id,
        (SELECT MAX(n.id) FROM readings n WHERE n.replaces_id = r.id) AS replaced_by,
-       st.sent_at, sn.id AS sender_id, sn.name AS sender
+       st.sent_at, st.note, sn.id AS sender_id, sn.name AS sender
      FROM readings r ${BRIEF_JOINS} LEFT JOIN people sn ON sn.id = st.sent_by WHERE r.id = :readingId`,
     { readingId },
   );
@@ -52,6 +53,7 @@ export async function readingView(readingId: number): Promise<ReadingView | null
     replacedBy: row.replaced_by,
     sentBy: row.sender_id !== null && row.sender !== null ? { id: row.sender_id, name: row.sender } : null,
     sentAt: row.sent_at?.toISOString() ?? null,
+    note: row.note,
     returned: await returnOf(readingId),
     signature: await signatureOf(readingId),
     zeroShift: options.zeroShift ?? 0,

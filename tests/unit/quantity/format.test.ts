@@ -39,6 +39,7 @@ describe('numbers as text', () => {
   test('times stand in the lab’s time zone', () => {
     expect(formatInstant('2026-11-12T08:42:00.000Z', 'Europe/Berlin')).toBe('12 Nov 2026, 09:42');
     expect(formatDay('2026-11-12T23:42:00.000Z', 'Europe/Berlin')).toBe('13 Nov 2026');
+    expect(formatDay('2026-09-02T10:00:00.000Z', 'UTC')).toBe('2 Sep 2026');
     expect(formatCalendarDate('2027-03-01')).toBe('1 Mar 2027');
   });
 });
