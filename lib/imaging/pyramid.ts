@@ -72,29 +72,46 @@ export function withoutOutline(plane: Plane, r: number): Plane {
   const { widthPx: w, heightPx: h } = plane;
   const across = new Float32Array(w * h);
   const data = new Float32Array(w * h);
-  for (let y = 0; y < h; y++) boxMeans(plane.data, across, y * w, 1, w, r);
-  for (let x = 0; x < w; x++) boxMeans(across, data, x, w, h, r);
-  for (let i = 0; i < data.length; i++) data[i] = plane.data[i] - data[i];
+  for (let y = 0; y < h; y++) boxMeans(plane.data, across, y * w, w, r);
+  // Down the columns with one running sum for each, row by row.
+  const sums = new Float64Array(w);
+  let count = 0;
+  for (let y = -r; y < h; y++) {
+    if (y + r < h) {
+      const from = (y + r) * w;
+      for (let x = 0; x < w; x++) sums[x] += across[from + x];
+      count++;
+    }
+    if (y - r - 1 >= 0) {
+      const from = (y - r - 1) * w;
+      for (let x = 0; x < w; x++) sums[x] -= across[from + x];
+      count--;
+    }
+    if (y < 0) continue;
+    const scale = 1 / count;
+    const at = y * w;
+    for (let x = 0; x < w; x++) data[at + x] = plane.data[at + x] - sums[x] * scale;
+  }
   return { ...plane, data };
 }
 
-/** Running means over up to 2 r + 1 samples of one line; at its ends over the samples there are. */
-function boxMeans(from: Float32Array, to: Float32Array, start: number, stride: number, n: number, r: number): void {
+/** Running means over up to 2 r + 1 samples of one row; at its ends over the samples there are. */
+function boxMeans(from: Float32Array, to: Float32Array, start: number, n: number, r: number): void {
   let sum = 0;
   let count = 0;
   for (let i = 0; i < Math.min(r, n); i++) {
-    sum += from[start + i * stride];
+    sum += from[start + i];
     count++;
   }
   for (let i = 0; i < n; i++) {
     if (i + r < n) {
-      sum += from[start + (i + r) * stride];
+      sum += from[start + i + r];
       count++;
     }
     if (i - r - 1 >= 0) {
-      sum -= from[start + (i - r - 1) * stride];
+      sum -= from[start + i - r - 1];
       count--;
     }
-    to[start + i * stride] = sum / count;
+    to[start + i] = sum / count;
   }
 }

@@ -123,6 +123,9 @@ function tilt(plane: Plane, x0: number, y0: number, tw: number, th: number): { m
   return { mean: s / n, sx: bx / ((n * (tw * tw - 1)) / 12), sy: by / ((n * (th * th - 1)) / 12) };
 }
 
+const SAMPLED = 512;
+const STRIDE = (N * N) / SAMPLED;
+const sample = new Float32Array(SAMPLED);
 const PEAKS_PER_TILE = 3;
 /** A peak must stand this far above the median power of its tile. */
 const PROMINENCE = 10;
@@ -134,16 +137,18 @@ const PROMINENCE = 10;
 function tilePeaks(power: Float32Array, plane: Plane): WaveCandidate[] {
   const highest = plane.factor === 1 ? N / FINEST_PERIOD_PX : N / 3.6;
   const at = (kx: number, ky: number) => power[((ky + N) % N) * N + (kx < 0 ? -kx : kx)];
-  const sorted = Float32Array.from(power.subarray(0, N * N)).sort();
-  const noise = sorted[Math.floor(0.75 * N * N)];
+  for (let i = 0; i < SAMPLED; i++) sample[i] = power[i * STRIDE + (i % STRIDE)];
+  sample.sort();
+  // Half of the grid is empty, so that this is the median of the spectrum.
+  const noise = sample[Math.floor(0.75 * SAMPLED)];
   // Energy by distance from the middle, so that the share of what is not coarser is a sum of a few rings.
   const rings = new Float64Array(N);
   const peaks: { kx: number; ky: number; k: number; rank: number }[] = [];
   for (let ky = -N / 2 + 1; ky < N / 2; ky++) {
     for (let kx = 0; kx <= N / 2; kx++) {
-      const p = at(kx, ky);
-      const k = Math.hypot(kx, ky);
-      rings[Math.floor(k)] += p;
+      const p = power[((ky + N) % N) * N + kx];
+      const k = Math.sqrt(kx * kx + ky * ky);
+      rings[k | 0] += p;
       if (k < LOWEST_BIN || k > highest || (kx === 0 && ky <= 0) || !(p > PROMINENCE * noise)) continue;
       if (!isLocalPeak(power, kx, ky)) continue;
       peaks.push({ kx, ky, k, rank: p * k * k });
