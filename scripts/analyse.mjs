@@ -18,7 +18,8 @@ if (!existsSync(path.join(root, 'node_modules', 'sharp'))) {
 function newestSource() {
   let newest = statSync(path.join(root, 'scripts', 'analyse.ts')).mtimeMs;
   for (const folder of folders) {
-    for (const name of readdirSync(path.join(root, folder))) newest = Math.max(newest, statSync(path.join(root, folder, name)).mtimeMs);
+    for (const name of readdirSync(path.join(root, folder)))
+      newest = Math.max(newest, statSync(path.join(root, folder, name)).mtimeMs);
   }
   return newest;
 }
@@ -38,7 +39,9 @@ if (!existsSync(bundle) || statSync(bundle).mtimeMs < newestSource()) {
     target: 'node20',
     external: ['sharp'],
     alias: { '@': root },
-    banner: { js: "import { createRequire } from 'node:module'; const require = createRequire(import.meta.url);" },
+    banner: {
+      js: "import { createRequire } from 'node:module'; const require = createRequire(import.meta.url);",
+    },
     logLevel: 'error',
   });
   renameSync(fresh, bundle);

@@ -53,7 +53,9 @@ export async function main(args: string[]): Promise<number> {
   }
   for (const job of plan.jobs) {
     const line = await analyseFile(job, plan);
-    await new Promise<void>((resolve, reject) => process.stdout.write(`${JSON.stringify(line)}\n`, (e) => (e ? reject(e) : resolve())));
+    await new Promise<void>((resolve, reject) =>
+      process.stdout.write(`${JSON.stringify(line)}\n`, (e) => (e ? reject(e) : resolve())),
+    );
   }
   return 0;
 }
@@ -84,7 +86,10 @@ async function readArguments(args: string[]): Promise<Plan> {
     } else if (arg.startsWith('--')) throw new WrongUsage(`${arg} is not known.`);
     else files.push(arg);
   }
-  const jobs: Job[] = [...files.map((file) => ({ file, numbers, scan: false })), ...scans.map((file) => ({ file, numbers, scan: true }))];
+  const jobs: Job[] = [
+    ...files.map((file) => ({ file, numbers, scan: false })),
+    ...scans.map((file) => ({ file, numbers, scan: true })),
+  ];
   for (const list of lists) jobs.push(...(await readList(list, numbers)));
   if (jobs.length === 0 && lists.length === 0) throw new WrongUsage('Name at least one frame.');
   return { jobs, tone, detectorMm };
@@ -92,7 +97,8 @@ async function readArguments(args: string[]): Promise<Plan> {
 
 function positive(name: string, text: string | undefined): number {
   const value = Number(text);
-  if (text === undefined || text.trim() === '' || !Number.isFinite(value) || !(value > 0)) throw new WrongUsage(`${name} needs a number larger than 0.`);
+  if (text === undefined || text.trim() === '' || !Number.isFinite(value) || !(value > 0))
+    throw new WrongUsage(`${name} needs a number larger than 0.`);
   return value;
 }
 
@@ -113,13 +119,15 @@ async function readList(path: string, common: Numbers): Promise<Job[]> {
     } catch {
       throw new WrongUsage(`${where} is not JSON.`);
     }
-    if (typeof entry !== 'object' || entry === null || !('file' in entry) || typeof entry.file !== 'string') throw new WrongUsage(`${where} names no file.`);
+    if (typeof entry !== 'object' || entry === null || !('file' in entry) || typeof entry.file !== 'string')
+      throw new WrongUsage(`${where} names no file.`);
     const numbers: Numbers = { ...common };
     const fields = entry as Record<string, unknown>;
     for (const key of Object.values(NUMBERS)) {
       const value = fields[key];
       if (value === undefined || value === null) continue;
-      if (typeof value !== 'number' || !Number.isFinite(value) || !(value > 0)) throw new WrongUsage(`${where}: ${key} must be a number larger than 0.`);
+      if (typeof value !== 'number' || !Number.isFinite(value) || !(value > 0))
+        throw new WrongUsage(`${where}: ${key} must be a number larger than 0.`);
       numbers[key] = value;
     }
     jobs.push({ file: entry.file, numbers, scan: false });
@@ -128,7 +136,8 @@ async function readList(path: string, common: Numbers): Promise<Job[]> {
 }
 
 function setupOf(n: Numbers): SetupValues {
-  const pair = (value: number | undefined, u: number | undefined): Estimate | undefined => (value === undefined ? undefined : { value, u: u ?? null });
+  const pair = (value: number | undefined, u: number | undefined): Estimate | undefined =>
+    value === undefined ? undefined : { value, u: u ?? null };
   return {
     scaleUmPerPx: pair(n.scaleUmPerPx, n.uScaleUmPerPx),
     separationUm: pair(n.separationUm, n.uSeparationUm),
@@ -143,11 +152,24 @@ async function analyseFile(job: Job, plan: Plan): Promise<object> {
     bytes = await readFile(job.file);
   } catch (error) {
     const missing = error instanceof Error && 'code' in error && error.code === 'ENOENT';
-    const message = missing ? 'There is no such file. Check the name and the folder.' : 'The file cannot be read. Check that it is a file and that it may be read.';
-    return { file: job.file, ok: false, code: missing ? 'NO_SUCH_FILE' : 'UNREADABLE_FILE', message, engine: ENGINE_VERSION, ms: { decode: 0, find: 0, profile: 0, fit: 0, total: 0 } };
+    const message = missing
+      ? 'There is no such file. Check the name and the folder.'
+      : 'The file cannot be read. Check that it is a file and that it may be read.';
+    return {
+      file: job.file,
+      ok: false,
+      code: missing ? 'NO_SUCH_FILE' : 'UNREADABLE_FILE',
+      message,
+      engine: ENGINE_VERSION,
+      ms: { decode: 0, find: 0, profile: 0, fit: 0, total: 0 },
+    };
   }
   const clock = () => performance.now();
-  if (job.scan) return scanLine(job.file, analyseScan(new TextDecoder().decode(bytes), plan.detectorMm, setupOf(job.numbers), clock));
+  if (job.scan)
+    return scanLine(
+      job.file,
+      analyseScan(new TextDecoder().decode(bytes), plan.detectorMm, setupOf(job.numbers), clock),
+    );
   return lineFor(job.file, await analyseFrame(bytes, setupOf(job.numbers), { tone: plan.tone }, clock));
 }
 
@@ -155,14 +177,26 @@ async function analyseFile(job: Job, plan: Plan): Promise<object> {
 function scanLine(file: string, answer: ScanResult | ScanRefusal): object {
   const { ms, ...rest } = answer;
   const rounded = Object.fromEntries(Object.entries(ms).map(([k, v]) => [k, Math.round(v * 1000) / 1000]));
-  const present = Object.fromEntries(Object.entries(rest).filter(([key, v]) => key !== 'budget' && (v !== null || key === 'dofSpacing')));
+  const present = Object.fromEntries(
+    Object.entries(rest).filter(([key, v]) => key !== 'budget' && (v !== null || key === 'dofSpacing')),
+  );
   return { file, ...present, ms: rounded };
 }
 
 /** The line of one frame: the keys of the command's description first, further ones at the end. */
 export function lineFor(file: string, answer: FrameAnswer): object {
   const ms = Object.fromEntries(Object.entries(answer.ms).map(([k, v]) => [k, Math.round(v * 1000) / 1000]));
-  if (!answer.ok) return { file, ok: false, code: answer.code, message: answer.message, engine: answer.engine, ms, fileAtFault: answer.fileAtFault, picture: answer.picture };
+  if (!answer.ok)
+    return {
+      file,
+      ok: false,
+      code: answer.code,
+      message: answer.message,
+      engine: answer.engine,
+      ms,
+      fileAtFault: answer.fileAtFault,
+      picture: answer.picture,
+    };
   const given = <T>(key: string, value: T | null) => (value === null ? {} : { [key]: value });
   return {
     file,
@@ -196,4 +230,3 @@ export function lineFor(file: string, answer: FrameAnswer): object {
     picture: answer.picture,
   };
 }
-

@@ -44,7 +44,20 @@ export const LEFT = { used: 0, clipped: 1, floor: 2, outlier: 3, person: 4, outs
 
 export function freshState(data: BandData): BandState {
   const line = (v: number) => new Float64Array(data.bands).fill(v);
-  return { gain: line(1), gainSlope: line(0), gainAlong: line(0), offset: line(0), slope: line(0), bend: line(0), bendOf: null, shift: line(0), stretch: line(0), lean: 0, left: new Uint8Array(data.bins * data.bands), noise: null };
+  return {
+    gain: line(1),
+    gainSlope: line(0),
+    gainAlong: line(0),
+    offset: line(0),
+    slope: line(0),
+    bend: line(0),
+    bendOf: null,
+    shift: line(0),
+    stretch: line(0),
+    lean: 0,
+    left: new Uint8Array(data.bins * data.bands),
+    noise: null,
+  };
 }
 
 /**
@@ -58,7 +71,13 @@ export function chainGains(data: BandData, state: BandState): void {
     for (let j = 0; j < data.bins; j++) {
       const here = b * data.bins + j;
       const before = here - data.bins;
-      if (data.pixels[here] === 0 || data.pixels[before] === 0 || state.left[here] !== LEFT.used || state.left[before] !== LEFT.used) continue;
+      if (
+        data.pixels[here] === 0 ||
+        data.pixels[before] === 0 ||
+        state.left[here] !== LEFT.used ||
+        state.left[before] !== LEFT.used
+      )
+        continue;
       s.n++;
       s.x += data.light[before];
       s.y += data.light[here];
@@ -90,7 +109,12 @@ export function gridOf(data: BandData): CommonGrid {
     if (data.u[i] > high) high = data.u[i];
   }
   const bins = Math.max(1, Math.ceil((high - low) / data.pitchPx) + 1);
-  return { from: low - data.pitchPx / 2, half: Math.max(1e-9, (high - low) / 2), bins, pitchPx: data.pitchPx };
+  return {
+    from: low - data.pitchPx / 2,
+    half: Math.max(1e-9, (high - low) / 2),
+    bins,
+    pitchPx: data.pitchPx,
+  };
 }
 
 /** The common coordinate of a cell: the band's own shift and stretch undone. */
@@ -125,9 +149,18 @@ function bendOf(fit: ProfileFit): ((u: number) => number) | null {
 }
 
 /** The gain at a cell's own place along the fringes. */
-export function gainIn(data: BandData, state: BandState, grid: CommonGrid, band: number, cell: number): number {
+export function gainIn(
+  data: BandData,
+  state: BandState,
+  grid: CommonGrid,
+  band: number,
+  cell: number,
+): number {
   const g = state.gain[band];
-  return Math.max(0.05 * g, g + state.gainSlope[band] * data.dv[cell] + (state.gainAlong[band] * data.u[cell]) / grid.half);
+  return Math.max(
+    0.05 * g,
+    g + state.gainSlope[band] * data.dv[cell] + (state.gainAlong[band] * data.u[cell]) / grid.half,
+  );
 }
 
 /**
@@ -135,7 +168,13 @@ export function gainIn(data: BandData, state: BandState, grid: CommonGrid, band:
  * with weights pixels * gain^2 / variance(light of the fit), never of the observed light.
  * `expected` is the light the last fit expects on the same grid; absent before the first fit.
  */
-export function combineBands(data: BandData, state: BandState, grid: CommonGrid, expected: Float64Array | null, spacingPx: number): Profile {
+export function combineBands(
+  data: BandData,
+  state: BandState,
+  grid: CommonGrid,
+  expected: Float64Array | null,
+  spacingPx: number,
+): Profile {
   const n = grid.bins;
   const sw = new Float64Array(n);
   const sz = new Float64Array(n);
@@ -167,9 +206,20 @@ export function combineBands(data: BandData, state: BandState, grid: CommonGrid,
   return profileFrom(data, { sw, sz, su, suu, sv }, spacingPx);
 }
 
-function profileFrom(data: BandData, sums: Record<'sw' | 'sz' | 'su' | 'suu' | 'sv', Float64Array>, spacingPx: number): Profile {
+function profileFrom(
+  data: BandData,
+  sums: Record<'sw' | 'sz' | 'su' | 'suu' | 'sv', Float64Array>,
+  spacingPx: number,
+): Profile {
   const n = sums.sw.length;
-  const profile: Profile = { u: new Float64Array(n), node: new Float64Array(n), nodeWeight: new Float64Array(n), light: new Float64Array(n), sigma: new Float64Array(n).fill(Infinity), size: n };
+  const profile: Profile = {
+    u: new Float64Array(n),
+    node: new Float64Array(n),
+    nodeWeight: new Float64Array(n),
+    light: new Float64Array(n),
+    sigma: new Float64Array(n).fill(Infinity),
+    size: n,
+  };
   for (let k = 0; k < n; k++) {
     const w = sums.sw[k];
     if (!(w > 0)) continue;
@@ -178,7 +228,11 @@ function profileFrom(data: BandData, sums: Record<'sw' | 'sz' | 'su' | 'suu' | '
     profile.u[k] = u;
     profile.light[k] = sums.sz[k] / w;
     profile.sigma[k] = 1 / Math.sqrt(w);
-    const { node, weight } = averagingNodes(data.pixelVar + bin, data.pixelFourth + 1.8 * bin * bin + 6 * data.pixelVar * bin, spacingPx);
+    const { node, weight } = averagingNodes(
+      data.pixelVar + bin,
+      data.pixelFourth + 1.8 * bin * bin + 6 * data.pixelVar * bin,
+      spacingPx,
+    );
     profile.node[k] = node;
     profile.nodeWeight[k] = weight;
   }
@@ -271,9 +325,20 @@ export interface BandShifts {
  * renews the state's gain and stray light.
  * Shift and stretch are answered, not applied. Bands too poor for it get weight 0 and keep gain 0.
  */
-export function regressBands(data: BandData, state: BandState, grid: CommonGrid, table: FitTable, fit: ProfileFit): BandShifts {
+export function regressBands(
+  data: BandData,
+  state: BandState,
+  grid: CommonGrid,
+  table: FitTable,
+  fit: ProfileFit,
+): BandShifts {
   const n = data.bands;
-  const out: BandShifts = { shift: new Float64Array(n), shiftWeight: new Float64Array(n), stretch: new Float64Array(n), stretchWeight: new Float64Array(n) };
+  const out: BandShifts = {
+    shift: new Float64Array(n),
+    shiftWeight: new Float64Array(n),
+    stretch: new Float64Array(n),
+    stretchWeight: new Float64Array(n),
+  };
   const bend = bendOf(fit);
   const T = bend === null ? 6 : 7;
   const a = new Float64Array(T * T);
@@ -292,7 +357,8 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
       const along = state.gain[b] > 0 ? 1 + (state.gainSlope[b] * data.dv[cell]) / state.gain[b] : 1;
       const p = along * table.lightAt(u);
       const slope = along * table.slopeAt(u);
-      const w = data.pixels[cell] / (state.noise ? varianceAt(state.noise, g * p + strayIn(state, grid, b, u)) : 1);
+      const w =
+        data.pixels[cell] / (state.noise ? varianceAt(state.noise, g * p + strayIn(state, grid, b, u)) : 1);
       t[0] = 1;
       t[1] = u / grid.half;
       t[2] = p;
@@ -309,7 +375,11 @@ export function regressBands(data: BandData, state: BandState, grid: CommonGrid,
     for (let k = 0; k < T; k++) for (let l = 0; l < k; l++) a[k * T + l] = a[l * T + k];
     const x = solveSymmetric(a, rhs, T);
     const noisy = state.noise ? 1 : a[0] > 0 ? (OWN_NOISE * OWN_NOISE * rhs[0] * rhs[0]) / (a[0] * a[0]) : 1;
-    if (x === null || !(x[2] > 0.01) || !(informationOf(a, T, 2) * x[2] * x[2] > LEAST_GAIN_INFORMATION * noisy)) {
+    if (
+      x === null ||
+      !(x[2] > 0.01) ||
+      !(informationOf(a, T, 2) * x[2] * x[2] > LEAST_GAIN_INFORMATION * noisy)
+    ) {
       state.gain[b] = 0;
       state.gainAlong[b] = 0;
       continue;
@@ -372,6 +442,9 @@ function normalise(data: BandData, state: BandState): void {
   for (let b = 0; b < data.bands; b++) {
     const before = b > 0 && state.gain[b - 1] > 0 ? b - 1 : b;
     const after = b + 1 < data.bands && state.gain[b + 1] > 0 ? b + 1 : b;
-    state.gainSlope[b] = state.gain[b] > 0 && after > before ? (state.gain[after] - state.gain[before]) / (data.bandV[after] - data.bandV[before]) : 0;
+    state.gainSlope[b] =
+      state.gain[b] > 0 && after > before
+        ? (state.gain[after] - state.gain[before]) / (data.bandV[after] - data.bandV[before])
+        : 0;
   }
 }

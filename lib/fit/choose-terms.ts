@@ -12,7 +12,10 @@ export const MARGIN = 4;
  * (Schwarz 1978: chi-square + parameters * ln points) falls by more than a margin. Chi-square is scaled by what the best
  * model leaves, so that structure no term describes does not buy terms either.
  */
-export function chooseTerms(band: BandFit, allow: { curve: boolean; tone: boolean; chirp: boolean }): BandFit {
+export function chooseTerms(
+  band: BandFit,
+  allow: { curve: boolean; tone: boolean; chirp: boolean },
+): BandFit {
   let now = band;
   for (let added = 0; ; added++) {
     if (added >= MOST_ADDED) return now;
@@ -22,7 +25,8 @@ export function chooseTerms(band: BandFit, allow: { curve: boolean; tone: boolea
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));
       const extra = trial.layout.size - now.fit.layout.size;
-      const gain = (now.fit.result.chiSquare - trial.result.chiSquare) / scale - extra * Math.log(trial.points) - MARGIN;
+      const gain =
+        (now.fit.result.chiSquare - trial.result.chiSquare) / scale - extra * Math.log(trial.points) - MARGIN;
       if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain };
     }
     // Noise and masks once more with the bands' share of what was added.
@@ -33,7 +37,10 @@ export function chooseTerms(band: BandFit, allow: { curve: boolean; tone: boolea
   }
 }
 
-export function offers(terms: ModelTerms, allow: { curve: boolean; tone: boolean; chirp: boolean }): ModelTerms[] {
+export function offers(
+  terms: ModelTerms,
+  allow: { curve: boolean; tone: boolean; chirp: boolean },
+): ModelTerms[] {
   const list: ModelTerms[] = [];
   if (terms.background < MOST_BACKGROUND) list.push({ ...terms, background: terms.background + 1 });
   if (terms.background < MOST_BACKGROUND - 1) list.push({ ...terms, background: terms.background + 2 });

@@ -1,5 +1,29 @@
-import { chainGains, combineBands, commonU, freshState, gainIn, gridOf, LEFT, regressBands, strayIn, tableFor, type BandData, type BandShifts, type BandState, type CommonGrid, type FitTable } from './bands';
-import { fitFrom, fitProfile, plainTerms, rebase, refit, type CurvePrior, type ProfileFit } from './fit-profile';
+import {
+  chainGains,
+  combineBands,
+  commonU,
+  freshState,
+  gainIn,
+  gridOf,
+  LEFT,
+  regressBands,
+  strayIn,
+  tableFor,
+  type BandData,
+  type BandShifts,
+  type BandState,
+  type CommonGrid,
+  type FitTable,
+} from './bands';
+import {
+  fitFrom,
+  fitProfile,
+  plainTerms,
+  rebase,
+  refit,
+  type CurvePrior,
+  type ProfileFit,
+} from './fit-profile';
 import { chooseZero } from './zero-order';
 import { fitNoise, varianceAt, type Noise } from './noise';
 import type { StartValues } from './start-values';
@@ -48,7 +72,14 @@ const FEWEST_POINTS = 12;
  * Fits all bands with one pattern: profile -> fit -> bands against the fit (gain, stray light) -> noise and cells to leave
  * out -> better profile, a few times over. Null when no start leads anywhere.
  */
-export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | null, limits: LightLimits, leaveOut: (u: number) => boolean, how: FitStart): BandFit | null {
+export function fitBands(
+  data: BandData,
+  aroundPx: number,
+  prior: CurvePrior | null,
+  limits: LightLimits,
+  leaveOut: (u: number) => boolean,
+  how: FitStart,
+): BandFit | null {
   const state = freshState(data);
   const grid = gridOf(data);
   for (let cell = 0; cell < state.left.length; cell++) {
@@ -58,13 +89,27 @@ export function fitBands(data: BandData, aroundPx: number, prior: CurvePrior | n
   if (state.left.some((why) => why === LEFT.clipped)) chainGains(data, state);
   const profile = scaledFirst(combineBands(data, state, grid, null, aroundPx));
   if (countUsed(profile) < FEWEST_POINTS) return null;
-  const first = how.from === null ? fitProfile(profile, aroundPx, prior) : fitFrom(profile, how.from, plainTerms(prior), prior, how.asItIs);
+  const first =
+    how.from === null
+      ? fitProfile(profile, aroundPx, prior)
+      : fitFrom(profile, how.from, plainTerms(prior), prior, how.asItIs);
   if (first === null) return null;
   const fit = rebase(profile, first, how.zeroShift);
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
   undoLean(data, state, shifts);
-  let band: BandFit = { data, fit, profile, state, grid, table, shifts, limits, leaveOut, zeroShift: how.zeroShift };
+  let band: BandFit = {
+    data,
+    fit,
+    profile,
+    state,
+    grid,
+    table,
+    shifts,
+    limits,
+    leaveOut,
+    zeroShift: how.zeroShift,
+  };
   for (let round = 0; round < how.rounds; round++) {
     const next = refineBands(band, band.fit.layout.terms);
     if (next === null) return null;
@@ -128,7 +173,10 @@ function scaledFirst(profile: Profile): Profile {
   for (let i = 2; i < profile.size; i++) {
     const [a, b, c] = [profile.sigma[i - 2], profile.sigma[i - 1], profile.sigma[i]];
     if (Number.isFinite(a) && Number.isFinite(b) && Number.isFinite(c)) {
-      steps.push(Math.abs(profile.light[i] - 2 * profile.light[i - 1] + profile.light[i - 2]) / Math.sqrt(a * a + 4 * b * b + c * c));
+      steps.push(
+        Math.abs(profile.light[i] - 2 * profile.light[i - 1] + profile.light[i - 2]) /
+          Math.sqrt(a * a + 4 * b * b + c * c),
+      );
     }
   }
   steps.sort((a, b) => a - b);
@@ -143,7 +191,9 @@ function countUsed(profile: Profile): number {
 }
 
 export function expectedOn(grid: CommonGrid, table: FitTable): Float64Array {
-  return Float64Array.from({ length: grid.bins }, (_, k) => table.lightAt(grid.from + (k + 0.5) * grid.pitchPx));
+  return Float64Array.from({ length: grid.bins }, (_, k) =>
+    table.lightAt(grid.from + (k + 0.5) * grid.pitchPx),
+  );
 }
 
 /**
@@ -166,7 +216,9 @@ function agreeOn(band: BandFit): Float64Array {
       values[k].push(own - table.lightAt(u) + table.lightAt(grid.from + (k + 0.5) * grid.pitchPx));
     }
   }
-  return Float64Array.from(values, (v, k) => (v.length < 3 ? table.lightAt(grid.from + (k + 0.5) * grid.pitchPx) : medianOf(v)));
+  return Float64Array.from(values, (v, k) =>
+    v.length < 3 ? table.lightAt(grid.from + (k + 0.5) * grid.pitchPx) : medianOf(v),
+  );
 }
 
 function medianOf(values: number[]): number {
@@ -228,7 +280,9 @@ function maskCells(band: BandFit, agreed: Float64Array): void {
       const expected = agreedIn(band, agreed, b, cell);
       if (reachesWhite(noise, expected, limits.clip)) state.left[cell] = LEFT.clipped;
       else if (expected < black) state.left[cell] = LEFT.floor;
-      else far[cell] = Math.abs(data.light[cell] - expected) / Math.sqrt(varianceAt(noise, expected) / data.pixels[cell]);
+      else
+        far[cell] =
+          Math.abs(data.light[cell] - expected) / Math.sqrt(varianceAt(noise, expected) / data.pixels[cell]);
     }
   }
   for (let b = 0; b < data.bands; b++) {
@@ -237,7 +291,8 @@ function maskCells(band: BandFit, agreed: Float64Array): void {
       if (!(far[cell] > OUTLIER_SIGMAS)) continue;
       state.left[cell] = LEFT.outlier;
       for (let d = -1; d <= 1; d += 2) {
-        for (let k = j + d; k >= 0 && k < data.bins && far[b * data.bins + k] > NEIGHBOUR_SIGMAS; k += d) state.left[b * data.bins + k] = LEFT.outlier;
+        for (let k = j + d; k >= 0 && k < data.bins && far[b * data.bins + k] > NEIGHBOUR_SIGMAS; k += d)
+          state.left[b * data.bins + k] = LEFT.outlier;
       }
     }
   }
@@ -331,6 +386,19 @@ export function fitTilt(band: BandFit): TiltFit {
   const squares = data.bandV.map((v) => (v / half) ** 2 - 1 / 3);
   const rest = shifts.shift.map((s, i) => s - line.a - line.b * data.bandV[i]);
   const bow = weightedLine(squares, rest, shifts.shiftWeight);
-  const barrel = weightedLine(squares, shifts.stretch.map((s, i) => s - fan.a - fan.b * data.bandV[i]), shifts.stretchWeight);
-  return { barrel: barrel.b, uBarrel: barrel.ub * Math.sqrt(fanScatter), slope: state.lean + line.b, uSlope: line.ub * Math.sqrt(scatter), bowPx: bow.b, uBowPx: bow.ub * Math.sqrt(scatter), fan: fan.b, uFan: fan.ub * Math.sqrt(fanScatter) };
+  const barrel = weightedLine(
+    squares,
+    shifts.stretch.map((s, i) => s - fan.a - fan.b * data.bandV[i]),
+    shifts.stretchWeight,
+  );
+  return {
+    barrel: barrel.b,
+    uBarrel: barrel.ub * Math.sqrt(fanScatter),
+    slope: state.lean + line.b,
+    uSlope: line.ub * Math.sqrt(scatter),
+    bowPx: bow.b,
+    uBowPx: bow.ub * Math.sqrt(scatter),
+    fan: fan.b,
+    uFan: fan.ub * Math.sqrt(fanScatter),
+  };
 }

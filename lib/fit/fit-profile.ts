@@ -1,7 +1,14 @@
 import { leastSquares, type LeastSquaresResult } from './least-squares';
 import type { Profile } from './profile';
 import { scanStartValues, type StartValues } from './start-values';
-import { layoutOf, ModelPoint, placeOfOrder, type ModelFixed, type ModelLayout, type ModelTerms } from './two-slit-model';
+import {
+  layoutOf,
+  ModelPoint,
+  placeOfOrder,
+  type ModelFixed,
+  type ModelLayout,
+  type ModelTerms,
+} from './two-slit-model';
 
 /** Prior knowledge of the wide-angle curvature s/L, per px; u null: known exactly; absent: nothing known. */
 export interface CurvePrior {
@@ -24,7 +31,13 @@ export interface ProfileFit {
 
 /** The plainest model for a given knowledge of the geometry. */
 export function plainTerms(prior: CurvePrior | null): ModelTerms {
-  return { background: 2, curve: prior !== null && prior.u !== null && prior.u > 0, chirp: false, tone: false, fade: false };
+  return {
+    background: 2,
+    curve: prior !== null && prior.u !== null && prior.u > 0,
+    chirp: false,
+    tone: false,
+    fade: false,
+  };
 }
 
 /** Best of several starts; `around` is the spacing in px the search believes in. Null when nothing starts. */
@@ -38,7 +51,13 @@ export function fitProfile(profile: Profile, around: number, prior: CurvePrior |
 }
 
 /** One fit from start values in px; `asItIs` takes them over unchanged. */
-export function fitFrom(profile: Profile, start: StartValues, terms: ModelTerms, prior: CurvePrior | null, asItIs = false): ProfileFit {
+export function fitFrom(
+  profile: Profile,
+  start: StartValues,
+  terms: ModelTerms,
+  prior: CurvePrior | null,
+  asItIs = false,
+): ProfileFit {
   const layout = layoutOf(terms);
   const unitPx = start.spacing;
   const unitLight = Math.max(1e-9, start.a + Math.max(0, start.background));
@@ -71,7 +90,17 @@ export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms): 
   carry(layout.chirp, before.layout.chirp, 0);
   carry(layout.tone, before.layout.tone, 1);
   carry(layout.fade, before.layout.fade, 0.05);
-  return run(profile, { layout, prior: before.curvePrior, originPx: before.originPx, unitPx: before.unitPx, unitLight: before.unitLight }, p);
+  return run(
+    profile,
+    {
+      layout,
+      prior: before.curvePrior,
+      originPx: before.originPx,
+      unitPx: before.unitPx,
+      unitLight: before.unitLight,
+    },
+    p,
+  );
 }
 
 /**
@@ -102,7 +131,8 @@ export function fitOneSlit(profile: Profile, two: ProfileFit): LeastSquaresResul
   const layout = layoutOf(plainTerms(null));
   const old = two.result.parameters;
   let brightest = 0;
-  for (let i = 0; i < profile.size; i++) if (Number.isFinite(profile.sigma[i]) && profile.light[i] > profile.light[brightest]) brightest = i;
+  for (let i = 0; i < profile.size; i++)
+    if (Number.isFinite(profile.sigma[i]) && profile.light[i] > profile.light[brightest]) brightest = i;
   const peak = (profile.u[brightest] - two.originPx) / two.unitPx;
   let best: LeastSquaresResult | null = null;
   for (const middle of [old[3], peak]) {
@@ -114,7 +144,18 @@ export function fitOneSlit(profile: Profile, two: ProfileFit): LeastSquaresResul
       p[4] = Math.max(old[4], 0.2);
       p[6] = old[6];
       p[7] = old[7];
-      const { result } = run(profile, { layout, prior: null, originPx: two.originPx, unitPx: two.unitPx, unitLight: two.unitLight, hold: [0, 1, 5] }, p);
+      const { result } = run(
+        profile,
+        {
+          layout,
+          prior: null,
+          originPx: two.originPx,
+          unitPx: two.unitPx,
+          unitLight: two.unitLight,
+          hold: [0, 1, 5],
+        },
+        p,
+      );
       if (best === null || result.chiSquare < best.chiSquare) best = result;
     }
   }
@@ -142,7 +183,11 @@ function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
   const n = index.length;
   const from = (profile.u[index[0]] - originPx) / unitPx;
   const to = (profile.u[index[n - 1]] - originPx) / unitPx;
-  const fixed: ModelFixed = { curve: prior ? prior.value * unitPx : 0, centre: (from + to) / 2, half: Math.max(1e-9, (to - from) / 2) };
+  const fixed: ModelFixed = {
+    curve: prior ? prior.value * unitPx : 0,
+    centre: (from + to) / 2,
+    half: Math.max(1e-9, (to - from) / 2),
+  };
   const priors = priorRows(layout, frame, fixed);
   const rows = n + priors.length;
   const averaged = new AveragedModel(new ModelPoint(layout, fixed));
@@ -152,37 +197,64 @@ function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
       evaluate(p, r, jacobian) {
         for (let k = 0; k < n; k++) {
           const i = index[k];
-          if (!averaged.evaluate(p, (profile.u[i] - originPx) / unitPx, profile.node[i] / unitPx, profile.nodeWeight[i], jacobian !== null)) return false;
+          if (
+            !averaged.evaluate(
+              p,
+              (profile.u[i] - originPx) / unitPx,
+              profile.node[i] / unitPx,
+              profile.nodeWeight[i],
+              jacobian !== null,
+            )
+          )
+            return false;
           const w = unitLight / profile.sigma[i];
           r[k] = (profile.light[i] / unitLight - averaged.light) * w;
-          if (jacobian) for (let j = 0; j < layout.size; j++) jacobian[j * rows + k] = averaged.gradient[j] * w;
+          if (jacobian)
+            for (let j = 0; j < layout.size; j++) jacobian[j * rows + k] = averaged.gradient[j] * w;
         }
         for (let k = 0; k < priors.length; k++) {
           const { parameter, value, u } = priors[k];
           r[n + k] = (value - p[parameter]) / u;
-          if (jacobian) for (let j = 0; j < layout.size; j++) jacobian[j * rows + n + k] = j === parameter ? 1 / u : 0;
+          if (jacobian)
+            for (let j = 0; j < layout.size; j++) jacobian[j * rows + n + k] = j === parameter ? 1 / u : 0;
         }
         return true;
       },
     },
     start,
-    { ...boundsFor(layout, fixed, start, frame.hold ?? []), maxEvaluations: frame.asItIs ? 1 : 120, reductionTolerance: 1e-12, gradientTolerance: 1e-9, enough: ENOUGH },
+    {
+      ...boundsFor(layout, fixed, start, frame.hold ?? []),
+      maxEvaluations: frame.asItIs ? 1 : 120,
+      reductionTolerance: 1e-12,
+      gradientTolerance: 1e-9,
+      enough: ENOUGH,
+    },
   );
   return { layout, fixed, result, originPx, unitPx, unitLight, points: n, curvePrior: prior };
 }
 
 /** Weak knowledge that keeps a flat envelope from wandering, and the stated geometry. */
-function priorRows(layout: ModelLayout, frame: Frame, fixed: ModelFixed): { parameter: number; value: number; u: number }[] {
+function priorRows(
+  layout: ModelLayout,
+  frame: Frame,
+  fixed: ModelFixed,
+): { parameter: number; value: number; u: number }[] {
   const rows: { parameter: number; value: number; u: number }[] = [
     { parameter: layout.middle, value: fixed.centre, u: 40 * Math.max(1, fixed.half) },
     { parameter: layout.ratio, value: 0.25, u: 5 },
   ];
   const { prior, unitPx } = frame;
-  if (layout.curve >= 0 && prior?.u) rows.push({ parameter: layout.curve, value: prior.value * unitPx, u: prior.u * unitPx });
+  if (layout.curve >= 0 && prior?.u)
+    rows.push({ parameter: layout.curve, value: prior.value * unitPx, u: prior.u * unitPx });
   return rows;
 }
 
-function boundsFor(layout: ModelLayout, fixed: ModelFixed, start: Float64Array, hold: number[]): { lower: Float64Array; upper: Float64Array } {
+function boundsFor(
+  layout: ModelLayout,
+  fixed: ModelFixed,
+  start: Float64Array,
+  hold: number[],
+): { lower: Float64Array; upper: Float64Array } {
   const lower = new Float64Array(layout.size).fill(-Infinity);
   const upper = new Float64Array(layout.size).fill(Infinity);
   lower[0] = 0.4;
@@ -263,7 +335,8 @@ export class AveragedModel {
     this.fringes = 0.5 * (this.fringes + point.fringes);
     this.envelope = 0.5 * (this.envelope + point.envelope);
     this.slope = 0.5 * (this.slope + point.slope);
-    if (wantGradient) for (let j = 0; j < gradient.length; j++) gradient[j] = 0.5 * (gradient[j] + point.gradient[j]);
+    if (wantGradient)
+      for (let j = 0; j < gradient.length; j++) gradient[j] = 0.5 * (gradient[j] + point.gradient[j]);
     return true;
   }
 }

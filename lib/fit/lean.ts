@@ -38,7 +38,14 @@ export function leanOfBands(data: BandData, spacingPx: number): number | null {
 }
 
 /** Phasor of one band at the spacing, its running mean over one spacing removed. */
-function bandPhasor(data: BandData, band: number, width: number, spacingPx: number, re: Float64Array, im: Float64Array): void {
+function bandPhasor(
+  data: BandData,
+  band: number,
+  width: number,
+  spacingPx: number,
+  re: Float64Array,
+  im: Float64Array,
+): void {
   const { bins } = data;
   const at = band * bins;
   let sum = 0;

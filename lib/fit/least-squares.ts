@@ -52,7 +52,11 @@ const SINGULAR = 1e-11;
 const COLLAPSED = 1e-8;
 
 /** Minimises the sum of squares from `start`. Not converging is a status, not an exception. */
-export function leastSquares(problem: LeastSquaresProblem, start: ArrayLike<number>, options: LeastSquaresOptions = {}): LeastSquaresResult {
+export function leastSquares(
+  problem: LeastSquaresProblem,
+  start: ArrayLike<number>,
+  options: LeastSquaresOptions = {},
+): LeastSquaresResult {
   const n = start.length;
   const m = problem.residuals;
   const limit = options.maxEvaluations ?? 400;
@@ -87,7 +91,8 @@ export function leastSquares(problem: LeastSquaresProblem, start: ArrayLike<numb
       if (upper && p[k] >= upper[k] && gradient[k] > 0) continue;
       free.push(k);
       scale[k] = Math.max(scale[k], norms[k]);
-      if (norms[k] > 0 && rNorm > 0) gradientNorm = Math.max(gradientNorm, Math.abs(gradient[k]) / (norms[k] * rNorm));
+      if (norms[k] > 0 && rNorm > 0)
+        gradientNorm = Math.max(gradientNorm, Math.abs(gradient[k]) / (norms[k] * rNorm));
     }
     if (free.some((k) => norms[k] < COLLAPSED * scale[k])) {
       status = 'singular';
@@ -126,7 +131,8 @@ export function leastSquares(problem: LeastSquaresProblem, start: ArrayLike<numb
         evaluations++;
         damping *= Math.max(1 / 3, 1 - (2 * ratio - 1) ** 3);
         growth = 2;
-        quiet = relative <= reductionTolerance && predicted / cost <= 1e3 * reductionTolerance ? quiet + 1 : 0;
+        quiet =
+          relative <= reductionTolerance && predicted / cost <= 1e3 * reductionTolerance ? quiet + 1 : 0;
         if (quiet >= 2) {
           status = 'converged';
           break outer;
@@ -181,12 +187,19 @@ function finish(
     gradientNorm,
     boundsHit,
     covariance,
-    noCovarianceBecause: covariance === null ? 'The data do not fix every parameter: the Jacobian is singular.' : null,
+    noCovarianceBecause:
+      covariance === null ? 'The data do not fix every parameter: the Jacobian is singular.' : null,
   };
 }
 
 /** Covariance with zero rows for parameters that are held. */
-function covarianceOf(jacobian: Float64Array, r: Float64Array, m: number, n: number, free: number[]): Float64Array | null {
+function covarianceOf(
+  jacobian: Float64Array,
+  r: Float64Array,
+  m: number,
+  n: number,
+  free: number[],
+): Float64Array | null {
   const nf = free.length;
   // Columns are scaled to unit length first, so that singular means dependent and not merely small.
   const scales = new Float64Array(nf);
@@ -203,18 +216,30 @@ function covarianceOf(jacobian: Float64Array, r: Float64Array, m: number, n: num
   const small = inverseGram(R, nf, SINGULAR);
   if (small === null) return null;
   const cov = new Float64Array(n * n);
-  for (let i = 0; i < nf; i++) for (let j = 0; j < nf; j++) cov[free[i] * n + free[j]] = small[i * nf + j] / (scales[i] * scales[j]);
+  for (let i = 0; i < nf; i++)
+    for (let j = 0; j < nf; j++) cov[free[i] * n + free[j]] = small[i * nf + j] / (scales[i] * scales[j]);
   return cov;
 }
 
-function factor(jacobian: Float64Array, r: Float64Array, m: number, free: number[]): { r: Float64Array; qtb: Float64Array } {
+function factor(
+  jacobian: Float64Array,
+  r: Float64Array,
+  m: number,
+  free: number[],
+): { r: Float64Array; qtb: Float64Array } {
   const a = new Float64Array(m * free.length);
   for (let i = 0; i < free.length; i++) a.set(jacobian.subarray(free[i] * m, free[i] * m + m), i * m);
   return qrReduce(a, m, free.length, Float64Array.from(r));
 }
 
 /** Solves (J^T J + damping D^2) step = J^T r through the factor R, stacked with sqrt(damping) D. */
-function dampedStep(R: Float64Array, qtb: Float64Array, free: number[], scale: Float64Array, damping: number): Float64Array | null {
+function dampedStep(
+  R: Float64Array,
+  qtb: Float64Array,
+  free: number[],
+  scale: Float64Array,
+  damping: number,
+): Float64Array | null {
   const n = free.length;
   const rows = 2 * n;
   const a = new Float64Array(rows * n);
@@ -231,7 +256,13 @@ function dampedStep(R: Float64Array, qtb: Float64Array, free: number[], scale: F
 }
 
 /** |r|^2 - |r - J step|^2 of the linear model for the step actually taken. */
-function predictedReduction(R: Float64Array, qtb: Float64Array, free: number[], p: Float64Array, trial: Float64Array): number {
+function predictedReduction(
+  R: Float64Array,
+  qtb: Float64Array,
+  free: number[],
+  p: Float64Array,
+  trial: Float64Array,
+): number {
   const n = free.length;
   let before = 0;
   let after = 0;
@@ -244,7 +275,11 @@ function predictedReduction(R: Float64Array, qtb: Float64Array, free: number[], 
   return before - after;
 }
 
-function clamp(p: Float64Array, lower: ArrayLike<number> | undefined, upper: ArrayLike<number> | undefined): Float64Array<ArrayBuffer> {
+function clamp(
+  p: Float64Array,
+  lower: ArrayLike<number> | undefined,
+  upper: ArrayLike<number> | undefined,
+): Float64Array<ArrayBuffer> {
   for (let k = 0; k < p.length; k++) {
     if (lower && p[k] < lower[k]) p[k] = lower[k];
     if (upper && p[k] > upper[k]) p[k] = upper[k];
@@ -280,7 +315,12 @@ function columnNorms(jacobian: Float64Array, m: number, n: number): Float64Array
   return norms;
 }
 
-function emptyResult(p: Float64Array, status: LeastSquaresStatus, evaluations: number, dof: number): LeastSquaresResult {
+function emptyResult(
+  p: Float64Array,
+  status: LeastSquaresStatus,
+  evaluations: number,
+  dof: number,
+): LeastSquaresResult {
   return {
     status,
     parameters: p,

@@ -84,6 +84,7 @@ function bestNonNegative(light: number[], variance: number[]): Noise {
     }
     if (best === null || rest < best.rest) best = { rest, c };
   }
-  if (best === null) return { constant: variance.reduce((s, v) => s + v, 0) / variance.length, shot: 0, grain: 0 };
+  if (best === null)
+    return { constant: variance.reduce((s, v) => s + v, 0) / variance.length, shot: 0, grain: 0 };
   return { constant: best.c[0], shot: best.c[1], grain: best.c[2] };
 }

@@ -19,7 +19,13 @@ export const toPx = (fit: ProfileFit, x: number) => fit.originPx + x * fit.unitP
 export const toModel = (fit: ProfileFit, u: number) => (u - fit.originPx) / fit.unitPx;
 
 /** All bright and dark orders between two places of the profile. */
-export function listOrders(fit: ProfileFit, profile: Profile, covariance: Float64Array, from: number, to: number): OrderPlace[] {
+export function listOrders(
+  fit: ProfileFit,
+  profile: Profile,
+  covariance: Float64Array,
+  from: number,
+  to: number,
+): OrderPlace[] {
   const p = fit.result.parameters;
   const first = Math.ceil(2 * orderAt(fit.layout, fit.fixed, p, toModel(fit, from)));
   const last = Math.floor(2 * orderAt(fit.layout, fit.fixed, p, toModel(fit, to)));
@@ -30,7 +36,13 @@ export function listOrders(fit: ProfileFit, profile: Profile, covariance: Float6
     if (!Number.isFinite(x)) continue;
     const u = toPx(fit, x);
     const bright = h % 2 === 0;
-    orders.push({ m: h / 2, kind: bright ? 'bright' : 'dark', u, uPx: placeUncertainty(fit, covariance, h / 2) * fit.unitPx, pullPx: pullOf(fit, profile, u, bright) });
+    orders.push({
+      m: h / 2,
+      kind: bright ? 'bright' : 'dark',
+      u,
+      uPx: placeUncertainty(fit, covariance, h / 2) * fit.unitPx,
+      pullPx: pullOf(fit, profile, u, bright),
+    });
   }
   return orders;
 }
@@ -46,10 +58,12 @@ function placeUncertainty(fit: ProfileFit, covariance: Float64Array, m: number):
     const down = Float64Array.from(fit.result.parameters);
     up[k] += h;
     down[k] -= h;
-    gradient[k] = (placeOfOrder(fit.layout, fit.fixed, up, m) - placeOfOrder(fit.layout, fit.fixed, down, m)) / (2 * h);
+    gradient[k] =
+      (placeOfOrder(fit.layout, fit.fixed, up, m) - placeOfOrder(fit.layout, fit.fixed, down, m)) / (2 * h);
   }
   let s = 0;
-  for (let i = 0; i < n; i++) for (let j = 0; j < n; j++) s += gradient[i] * covariance[i * n + j] * gradient[j];
+  for (let i = 0; i < n; i++)
+    for (let j = 0; j < n; j++) s += gradient[i] * covariance[i * n + j] * gradient[j];
   return Math.sqrt(Math.max(0, s));
 }
 
@@ -65,7 +79,10 @@ function pullOf(fit: ProfileFit, profile: Profile, u: number, bright: boolean): 
   const spacing = fit.result.parameters[0] * fit.unitPx;
   const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
   const node = spacing > 8 ? 0.4 : 0.3;
-  const light = (x: number) => (model.evaluate(fit.result.parameters, toModel(fit, x), node / fit.unitPx, 1 / 6, false) ? model.light : NaN);
+  const light = (x: number) =>
+    model.evaluate(fit.result.parameters, toModel(fit, x), node / fit.unitPx, 1 / 6, false)
+      ? model.light
+      : NaN;
   const sign = bright ? 1 : -1;
   const step = spacing / 40;
   let best = 0;

@@ -4,7 +4,12 @@
  */
 
 /** R (upper triangle, column-major n x n) and Q^T b (first n entries) of the m x n matrix `a`, both overwritten. */
-export function qrReduce(a: Float64Array, m: number, n: number, b: Float64Array): { r: Float64Array; qtb: Float64Array } {
+export function qrReduce(
+  a: Float64Array,
+  m: number,
+  n: number,
+  b: Float64Array,
+): { r: Float64Array; qtb: Float64Array } {
   for (let k = 0; k < n; k++) {
     const col = k * m;
     let norm = 0;
@@ -28,7 +33,15 @@ export function qrReduce(a: Float64Array, m: number, n: number, b: Float64Array)
   return { r, qtb: b.slice(0, n) };
 }
 
-function reflect(a: Float64Array, col: number, other: number, k: number, m: number, v0: number, beta: number): void {
+function reflect(
+  a: Float64Array,
+  col: number,
+  other: number,
+  k: number,
+  m: number,
+  v0: number,
+  beta: number,
+): void {
   let s = v0 * a[other + k];
   for (let i = k + 1; i < m; i++) s += a[col + i] * a[other + i];
   s *= beta;

@@ -26,7 +26,11 @@ export function solveSymmetric(a: Float64Array, b: Float64Array, n: number): Flo
 }
 
 /** Weighted straight line y = a + b t: coefficients and their standard uncertainties for weights 1/u^2. */
-export function weightedLine(t: ArrayLike<number>, y: ArrayLike<number>, w: ArrayLike<number>): { a: number; b: number; ub: number; chiSquare: number; n: number } {
+export function weightedLine(
+  t: ArrayLike<number>,
+  y: ArrayLike<number>,
+  w: ArrayLike<number>,
+): { a: number; b: number; ub: number; chiSquare: number; n: number } {
   let sw = 0;
   let st = 0;
   let sy = 0;

@@ -38,15 +38,30 @@ export function spreadOf(band: BandFit): Spread | null {
   const segments = profileInfluences(band, c, n);
   const chi = fit.result.chiSquare / Math.max(1, fit.result.dof);
   const misfit = chi > 1 + 3 * Math.sqrt(2 / Math.max(1, fit.result.dof));
-  const bySegments = sumOuter(segments, n, segments.length / Math.max(1, segments.length - Math.min(n, segments.length / 2)));
+  const bySegments = sumOuter(
+    segments,
+    n,
+    segments.length / Math.max(1, segments.length - Math.min(n, segments.length / 2)),
+  );
   const byNoise = Math.sqrt(c[0]);
   const byBands = Math.sqrt(byBandsMatrix[0]);
   const byProfile = misfit ? Math.sqrt(bySegments[0]) : 0;
   const common = { byNoise, byBands, byProfile, groups };
   if (byProfile > byNoise && byProfile > byBands) {
-    return { ...common, covariance: floored(bySegments, c, n), dof: Math.max(2, segments.length - Math.min(n, segments.length / 2)), from: 'profile' };
+    return {
+      ...common,
+      covariance: floored(bySegments, c, n),
+      dof: Math.max(2, segments.length - Math.min(n, segments.length / 2)),
+      from: 'profile',
+    };
   }
-  if (byBands > byNoise) return { ...common, covariance: floored(byBandsMatrix, c, n), dof: Math.max(1, groups - 1), from: 'bands' };
+  if (byBands > byNoise)
+    return {
+      ...common,
+      covariance: floored(byBandsMatrix, c, n),
+      dof: Math.max(1, groups - 1),
+      from: 'bands',
+    };
   return { ...common, covariance: Float64Array.from(c), dof: null, from: 'noise' };
 }
 
@@ -98,7 +113,16 @@ function gradientsOnGrid(band: BandFit): Float64Array {
   const out = new Float64Array(grid.bins * n);
   for (let k = 0; k < grid.bins; k++) {
     const u = Number.isFinite(profile.sigma[k]) ? profile.u[k] : grid.from + (k + 0.5) * grid.pitchPx;
-    if (!model.evaluate(fit.result.parameters, (u - fit.originPx) / fit.unitPx, profile.node[k] / fit.unitPx, profile.nodeWeight[k], true)) continue;
+    if (
+      !model.evaluate(
+        fit.result.parameters,
+        (u - fit.originPx) / fit.unitPx,
+        profile.node[k] / fit.unitPx,
+        profile.nodeWeight[k],
+        true,
+      )
+    )
+      continue;
     out.set(model.gradient, k * n);
   }
   return out;
@@ -160,7 +184,13 @@ function profileInfluences(band: BandFit, c: Float64Array, n: number): Float64Ar
       score = new Float64Array(n);
       segment = here;
     }
-    model.evaluate(fit.result.parameters, (profile.u[k] - fit.originPx) / fit.unitPx, profile.node[k] / fit.unitPx, profile.nodeWeight[k], false);
+    model.evaluate(
+      fit.result.parameters,
+      (profile.u[k] - fit.originPx) / fit.unitPx,
+      profile.node[k] / fit.unitPx,
+      profile.nodeWeight[k],
+      false,
+    );
     const r = profile.light[k] - model.light * fit.unitLight;
     const wr = (r * fit.unitLight) / (profile.sigma[k] * profile.sigma[k]);
     for (let i = 0; i < n; i++) score[i] += wr * gradients[k * n + i];
@@ -177,7 +207,7 @@ function multiply(c: Float64Array, v: Float64Array, n: number): Float64Array {
 
 function sumOuter(members: Float64Array[], n: number, factor: number): Float64Array {
   const out = new Float64Array(n * n);
-  for (const m of members) for (let i = 0; i < n; i++) for (let j = 0; j < n; j++) out[i * n + j] += factor * m[i] * m[j];
+  for (const m of members)
+    for (let i = 0; i < n; i++) for (let j = 0; j < n; j++) out[i * n + j] += factor * m[i] * m[j];
   return out;
 }
-

@@ -16,7 +16,9 @@ export interface StartValues {
   rest: number;
 }
 
-const RATIOS = [0.004, 0.03, 0.05, 0.075, 0.1, 0.13, 0.165, 0.2, 0.235, 0.27, 0.31, 0.36, 0.42, 0.5, 0.6, 0.72];
+const RATIOS = [
+  0.004, 0.03, 0.05, 0.075, 0.1, 0.13, 0.165, 0.2, 0.235, 0.27, 0.31, 0.36, 0.42, 0.5, 0.6, 0.72,
+];
 const MOST_POINTS = 420;
 
 interface Thin {
@@ -38,7 +40,9 @@ export function scanStartValues(profile: Profile, spacing: number, keep: number)
   const span = thin.to - thin.from;
   const offer = (s: StartValues | null) => {
     if (s === null) return;
-    const twin = best.findIndex((o) => Math.abs(Math.log(o.ratio / s.ratio)) < 0.25 && Math.abs(o.middle - s.middle) < 0.5 * spacing);
+    const twin = best.findIndex(
+      (o) => Math.abs(Math.log(o.ratio / s.ratio)) < 0.25 && Math.abs(o.middle - s.middle) < 0.5 * spacing,
+    );
     if (twin >= 0) {
       if (best[twin].rest <= s.rest) return;
       best.splice(twin, 1);
@@ -50,7 +54,8 @@ export function scanStartValues(profile: Profile, spacing: number, keep: number)
   for (const ratio of RATIOS) {
     const lobe = spacing / ratio;
     const step = Math.max(span / 48, Math.min(lobe / 3, span / 6));
-    for (let middle = thin.from; middle <= thin.to + 1e-9; middle += step) offer(solveAt(thin, spacing, ratio, middle));
+    for (let middle = thin.from; middle <= thin.to + 1e-9; middle += step)
+      offer(solveAt(thin, spacing, ratio, middle));
   }
   const fringes = span / spacing;
   const spacings = [-0.5, -0.25, 0.25, 0.5].map((d) => spacing * (1 + d / Math.max(2, fringes)));
@@ -58,8 +63,20 @@ export function scanStartValues(profile: Profile, spacing: number, keep: number)
   for (const s of [...best]) {
     for (let r = 0.5; r > 0.1; r /= 2) {
       const here = best[0] ?? s;
-      for (const [dr, dm] of [[1, 0], [-1, 0], [0, 1], [0, -1]]) {
-        offer(solveAt(thin, here.spacing, Math.min(0.95, here.ratio * 1.25 ** (dr * 2 * r)), here.middle + dm * r * 0.3 * (spacing / Math.max(0.05, here.ratio))));
+      for (const [dr, dm] of [
+        [1, 0],
+        [-1, 0],
+        [0, 1],
+        [0, -1],
+      ]) {
+        offer(
+          solveAt(
+            thin,
+            here.spacing,
+            Math.min(0.95, here.ratio * 1.25 ** (dr * 2 * r)),
+            here.middle + dm * r * 0.3 * (spacing / Math.max(0.05, here.ratio)),
+          ),
+        );
       }
     }
   }
@@ -130,5 +147,15 @@ function solveAt(thin: Thin, spacing: number, ratio: number, middle: number): St
   for (let j = 0; j < 5; j++) rest -= x[j] * b[j];
   const over = Math.max(0, swing / x[2] - 1.15);
   const turn = Math.atan2(x[4], x[3]) / (2 * Math.PI);
-  return { spacing, zero: middle + turn * spacing, ratio, middle, a: 2 * x[2], b: 2 * swing, background: x[0], slope: x[1], rest: Math.max(0, rest) * (1 + over) };
+  return {
+    spacing,
+    zero: middle + turn * spacing,
+    ratio,
+    middle,
+    a: 2 * x[2],
+    b: 2 * swing,
+    background: x[0],
+    slope: x[1],
+    rest: Math.max(0, rest) * (1 + over),
+  };
 }

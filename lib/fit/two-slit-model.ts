@@ -45,7 +45,21 @@ export function layoutOf(terms: ModelTerms): ModelLayout {
   const chirp = take(terms.chirp);
   const tone = take(terms.tone);
   const fade = take(terms.fade);
-  return { terms, size: next, spacing: 0, zero: 1, ratio: 2, middle: 3, a: 4, b: 5, background: 6, curve, chirp, tone, fade };
+  return {
+    terms,
+    size: next,
+    spacing: 0,
+    zero: 1,
+    ratio: 2,
+    middle: 3,
+    a: 4,
+    b: 5,
+    background: 6,
+    curve,
+    chirp,
+    tone,
+    fade,
+  };
 }
 
 /** Values that hold where their term is not fitted. */

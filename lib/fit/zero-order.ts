@@ -37,6 +37,9 @@ export function chooseZero(profile: Profile, fit: ProfileFit): ZeroChoice {
   const total = weights.reduce((s, w) => s + w, 0);
   const unit = best.fit.unitPx;
   const spacings = choices.map((c) => (c.fit.result.parameters[0] * c.fit.unitPx) / unit);
-  const variance = choices.reduce((s, _, i) => s + (weights[i] / total) * (spacings[i] - spacings[0]) ** 2, 0);
+  const variance = choices.reduce(
+    (s, _, i) => s + (weights[i] / total) * (spacings[i] - spacings[0]) ** 2,
+    0,
+  );
   return { fit: best.fit, probability: 1 / total, next: weights[1] / total, uSpacing: Math.sqrt(variance) };
 }

@@ -18,7 +18,13 @@ const CLIPPED_FROM = 0.985;
  * square of the share of the bright area that is not clipped.
  * `rgb` is interleaved, three codes a pixel, already reduced to a small picture; `toLinear` maps codes 0..1 to light.
  */
-export function chooseChannel(rgb: Uint8Array | Uint16Array, widthPx: number, heightPx: number, fullScale: number, toLinear: (c: number) => number): ChannelChoice {
+export function chooseChannel(
+  rgb: Uint8Array | Uint16Array,
+  widthPx: number,
+  heightPx: number,
+  fullScale: number,
+  toLinear: (c: number) => number,
+): ChannelChoice {
   const n = widthPx * heightPx;
   let differ = 0;
   for (let i = 0; i < n; i++) {
@@ -58,7 +64,8 @@ function localContrast(light: Float32Array, widthPx: number, heightPx: number): 
   for (let y = reach; y < heightPx - reach; y++) {
     for (let x = reach; x < widthPx - reach; x++) {
       const i = y * widthPx + x;
-      const around = (light[i - reach] + light[i + reach] + light[i - reach * widthPx] + light[i + reach * widthPx]) / 4;
+      const around =
+        (light[i - reach] + light[i + reach] + light[i - reach * widthPx] + light[i + reach * widthPx]) / 4;
       out[k++] = Math.abs(light[i] - around);
     }
   }

@@ -32,9 +32,16 @@ interface Header {
 }
 
 /** Decodes the channel that carries the light. Refuses, with a code and a sentence, what cannot be measured. */
-export async function decodePicture(bytes: Uint8Array, wish: ToneWish, limits: DecodeLimits): Promise<Picture> {
+export async function decodePicture(
+  bytes: Uint8Array,
+  wish: ToneWish,
+  limits: DecodeLimits,
+): Promise<Picture> {
   if (bytes.length > limits.fileBytes) {
-    throw new Refused('TOO_LARGE', `The file has ${Math.round(bytes.length / 1e6)} MB; at most ${Math.round(limits.fileBytes / 1048576)} MB are read. Crop the frame to the fringes or store it compressed without loss.`);
+    throw new Refused(
+      'TOO_LARGE',
+      `The file has ${Math.round(bytes.length / 1e6)} MB; at most ${Math.round(limits.fileBytes / 1048576)} MB are read. Crop the frame to the fringes or store it compressed without loss.`,
+    );
   }
   const header = await readHeader(bytes, limits);
   try {
@@ -47,7 +54,8 @@ export async function decodePicture(bytes: Uint8Array, wish: ToneWish, limits: D
 async function readHeader(bytes: Uint8Array, limits: DecodeLimits): Promise<Header> {
   const kind = sniffKind(bytes);
   const png = kind === 'PNG' ? readPng(bytes) : null;
-  if (png && png.widthPx * png.heightPx > limits.filePixels) throw tooManyPixels(limits, { widthPx: png.widthPx, heightPx: png.heightPx, format: kind });
+  if (png && png.widthPx * png.heightPx > limits.filePixels)
+    throw tooManyPixels(limits, { widthPx: png.widthPx, heightPx: png.heightPx, format: kind });
   const tiff = kind === 'TIFF' ? readTiff(bytes) : null;
   if (tiff?.palette) throw paletteRefusal(null);
   if (tiff && (tiff.floating || tiff.wide)) throw samplesRefusal(tiff.floating, null);
@@ -58,50 +66,96 @@ async function readHeader(bytes: Uint8Array, limits: DecodeLimits): Promise<Head
     throw asRefused(error, null, limits);
   }
   const turned = (meta.orientation ?? 1) >= 5;
-  const brief: PictureBrief = { widthPx: turned ? meta.height : meta.width, heightPx: turned ? meta.width : meta.height, format: kind };
+  const brief: PictureBrief = {
+    widthPx: turned ? meta.height : meta.width,
+    heightPx: turned ? meta.width : meta.height,
+    format: kind,
+  };
   refuseUnmeasurable(kind, meta, png, brief, limits);
   const bits = meta.depth === 'ushort' || meta.depth === 'short' ? 16 : 8;
   return { kind, meta, png, brief, bits, colour: (meta.channels ?? 3) >= 3 };
 }
 
-function refuseUnmeasurable(kind: FileKind, meta: Metadata, png: PngFacts | null, brief: PictureBrief, limits: DecodeLimits): void {
+function refuseUnmeasurable(
+  kind: FileKind,
+  meta: Metadata,
+  png: PngFacts | null,
+  brief: PictureBrief,
+  limits: DecodeLimits,
+): void {
   const pixels = brief.widthPx * brief.heightPx;
   if (pixels > limits.filePixels) throw tooManyPixels(limits, brief);
   if ((meta.pages ?? 1) > 1 || png?.animated) {
-    throw new Refused('ANIMATED', 'The file holds several pictures. Save the one to be measured as a file of its own.', brief);
+    throw new Refused(
+      'ANIMATED',
+      'The file holds several pictures. Save the one to be measured as a file of its own.',
+      brief,
+    );
   }
   if (png?.colourType === 3 || meta.isPalette === true) {
     throw paletteRefusal(brief);
   }
   if (meta.space === 'cmyk') {
-    throw new Refused('CMYK', 'The file is made for printing (CMYK); its numbers are ink, not light. Save the camera frame as RGB or grey.', brief);
+    throw new Refused(
+      'CMYK',
+      'The file is made for printing (CMYK); its numbers are ink, not light. Save the camera frame as RGB or grey.',
+      brief,
+    );
   }
   if (meta.depth && !['uchar', 'ushort', 'char', 'short'].includes(meta.depth)) {
     throw samplesRefusal(meta.depth === 'float' || meta.depth === 'double', brief);
   }
-  if (Math.min(brief.widthPx, brief.heightPx) < SMALLEST_SIDE_PX || Math.max(brief.widthPx, brief.heightPx) < SMALLEST_LONG_SIDE_PX) {
-    throw new Refused('TOO_SMALL', `The picture has ${brief.widthPx} by ${brief.heightPx} px. At least ${SMALLEST_LONG_SIDE_PX} by ${SMALLEST_SIDE_PX} px are needed.`, brief);
+  if (
+    Math.min(brief.widthPx, brief.heightPx) < SMALLEST_SIDE_PX ||
+    Math.max(brief.widthPx, brief.heightPx) < SMALLEST_LONG_SIDE_PX
+  ) {
+    throw new Refused(
+      'TOO_SMALL',
+      `The picture has ${brief.widthPx} by ${brief.heightPx} px. At least ${SMALLEST_LONG_SIDE_PX} by ${SMALLEST_SIDE_PX} px are needed.`,
+      brief,
+    );
   }
   if (kind === 'PNG' && png && !png.complete) throw truncated(brief);
 }
 
 function paletteRefusal(brief: PictureBrief | null): Refused {
-  return new Refused('PALETTE', 'The file holds picked colours from a palette, not measured light. Save the frame as 8 or 16 bit grey or colour.', brief);
+  return new Refused(
+    'PALETTE',
+    'The file holds picked colours from a palette, not measured light. Save the frame as 8 or 16 bit grey or colour.',
+    brief,
+  );
 }
 
 function samplesRefusal(floating: boolean, brief: PictureBrief | null): Refused {
-  return new Refused('FLOAT_SAMPLES', `The file stores ${floating ? 'floating-point' : '32 bit'} samples, which cannot be read safely. Save it as 16 bit PNG or TIFF.`, brief);
+  return new Refused(
+    'FLOAT_SAMPLES',
+    `The file stores ${floating ? 'floating-point' : '32 bit'} samples, which cannot be read safely. Save it as 16 bit PNG or TIFF.`,
+    brief,
+  );
 }
 
-async function decodeChannel(bytes: Uint8Array, header: Header, wish: ToneWish, limits: DecodeLimits): Promise<Picture> {
+async function decodeChannel(
+  bytes: Uint8Array,
+  header: Header,
+  wish: ToneWish,
+  limits: DecodeLimits,
+): Promise<Picture> {
   const { kind, meta, bits, colour, brief } = header;
   const curveOf = (channel: 'grey' | 'red' | 'green' | 'blue') => toneFor(header, wish, channel);
   let choice: ChannelChoice = { index: 0, name: 'grey', colour: false, clippedShare: [] };
   let samples: Uint8Array | Uint16Array;
   if (!colour) {
-    samples = await rawSamples(upright(open(bytes, limits), meta).extractChannel(0).toColourspace(bits === 16 ? 'grey16' : 'b-w'), bits);
+    samples = await rawSamples(
+      upright(open(bytes, limits), meta)
+        .extractChannel(0)
+        .toColourspace(bits === 16 ? 'grey16' : 'b-w'),
+      bits,
+    );
   } else if (kind === 'JPEG' && brief.widthPx * brief.heightPx > LOOK_FIRST_PIXELS) {
-    const { data, info } = await open(bytes, limits).resize({ width: LOOK_SIDE_PX, height: LOOK_SIDE_PX, fit: 'inside' }).raw().toBuffer({ resolveWithObject: true });
+    const { data, info } = await open(bytes, limits)
+      .resize({ width: LOOK_SIDE_PX, height: LOOK_SIDE_PX, fit: 'inside' })
+      .raw()
+      .toBuffer({ resolveWithObject: true });
     choice = chooseChannel(new Uint8Array(data), info.width, info.height, 255, curveOf('red').toLinear);
     samples = await rawSamples(upright(open(bytes, limits), meta).extractChannel(choice.index), 8);
   } else {
@@ -132,13 +186,24 @@ async function decodeChannel(bytes: Uint8Array, header: Header, wish: ToneWish, 
   };
 }
 
-const channelName = (choice: ChannelChoice) => (choice.name === 'red' || choice.name === 'green' || choice.name === 'blue' ? choice.name : 'grey');
+const channelName = (choice: ChannelChoice) =>
+  choice.name === 'red' || choice.name === 'green' || choice.name === 'blue' ? choice.name : 'grey';
 
 /** Small and lossless colour files: every channel is decoded once, then one is kept. */
-async function decodeAllChannels(bytes: Uint8Array, header: Header, limits: DecodeLimits, toLinear: (c: number) => number): Promise<{ choice: ChannelChoice; samples: Uint8Array | Uint16Array }> {
+async function decodeAllChannels(
+  bytes: Uint8Array,
+  header: Header,
+  limits: DecodeLimits,
+  toLinear: (c: number) => number,
+): Promise<{ choice: ChannelChoice; samples: Uint8Array | Uint16Array }> {
   const { meta, bits, brief } = header;
   const pipeline = upright(open(bytes, limits), meta);
-  const rgb = await rawSamples(meta.hasAlpha ? pipeline.toColourspace(bits === 16 ? 'rgb16' : 'srgb') : pipeline.removeAlpha().toColourspace(bits === 16 ? 'rgb16' : 'srgb'), bits);
+  const rgb = await rawSamples(
+    meta.hasAlpha
+      ? pipeline.toColourspace(bits === 16 ? 'rgb16' : 'srgb')
+      : pipeline.removeAlpha().toColourspace(bits === 16 ? 'rgb16' : 'srgb'),
+    bits,
+  );
   const n = brief.widthPx * brief.heightPx;
   const stride = Math.round(rgb.length / n);
   const look = Math.max(1, Math.floor(Math.max(brief.widthPx, brief.heightPx) / LOOK_SIDE_PX));
@@ -150,7 +215,13 @@ async function decodeAllChannels(bytes: Uint8Array, header: Header, limits: Deco
   return { choice, samples };
 }
 
-function thinned(rgb: Uint8Array | Uint16Array, widthPx: number, heightPx: number, stride: number, step: number): { rgb: Uint16Array; widthPx: number; heightPx: number } {
+function thinned(
+  rgb: Uint8Array | Uint16Array,
+  widthPx: number,
+  heightPx: number,
+  stride: number,
+  step: number,
+): { rgb: Uint16Array; widthPx: number; heightPx: number } {
   const w = Math.floor(widthPx / step);
   const h = Math.floor(heightPx / step);
   const out = new Uint16Array(3 * w * h);
@@ -166,7 +237,12 @@ function thinned(rgb: Uint8Array | Uint16Array, widthPx: number, heightPx: numbe
 }
 
 /** A file whose colour is one and the same everywhere while its transparency varies holds no measured light. */
-function refuseAlphaOnly(small: Uint16Array, all: Uint8Array | Uint16Array, n: number, brief: PictureBrief): void {
+function refuseAlphaOnly(
+  small: Uint16Array,
+  all: Uint8Array | Uint16Array,
+  n: number,
+  brief: PictureBrief,
+): void {
   for (let i = 3; i < small.length; i++) if (small[i] !== small[i - 3]) return;
   let low = Infinity;
   let high = -Infinity;
@@ -175,7 +251,12 @@ function refuseAlphaOnly(small: Uint16Array, all: Uint8Array | Uint16Array, n: n
     if (a < low) low = a;
     if (a > high) high = a;
   }
-  if (high > low) throw new Refused('ALPHA_ONLY', 'The picture is drawn in transparency only; its colours hold no light. Save it without transparency.', brief);
+  if (high > low)
+    throw new Refused(
+      'ALPHA_ONLY',
+      'The picture is drawn in transparency only; its colours hold no light. Save it without transparency.',
+      brief,
+    );
 }
 
 /** Tone in order of trust: the person's choice, the file's profile or chunks, the habit of its kind. */
@@ -188,7 +269,8 @@ function toneFor(header: Header, wish: ToneWish, channel: 'grey' | 'red' | 'gree
     if (curve) return curve;
   }
   if (png?.srgb) return SRGB('sRGB chunk in the file');
-  if (png && png.gamma !== null && png.gamma > 0) return exponentCurve(1 / png.gamma, `gamma chunk in the file (${png.gamma})`);
+  if (png && png.gamma !== null && png.gamma > 0)
+    return exponentCurve(1 / png.gamma, `gamma chunk in the file (${png.gamma})`);
   if (kind === 'JPEG' || kind === 'WebP') return SRGB(`${kind} without a profile is taken as sRGB`);
   if (colour && bits === 8) return SRGB('8 bit colour without a profile is taken as sRGB');
   return LINEAR(`${colour ? '16 bit colour' : 'grey'} ${kind} without a profile is taken as linear`);
@@ -213,11 +295,19 @@ async function rawSamples(pipeline: Sharp, bits: 8 | 16): Promise<Uint8Array | U
 }
 
 function tooManyPixels(limits: DecodeLimits, brief: PictureBrief | null): Refused {
-  return new Refused('TOO_MANY_PIXELS', `The picture has more than ${limits.filePixels / 1e6} megapixels. Crop it to the fringes or bin it in the camera.`, brief);
+  return new Refused(
+    'TOO_MANY_PIXELS',
+    `The picture has more than ${limits.filePixels / 1e6} megapixels. Crop it to the fringes or bin it in the camera.`,
+    brief,
+  );
 }
 
 function truncated(brief: PictureBrief | null): Refused {
-  return new Refused('TRUNCATED_FILE', 'The file breaks off before its end. Copy it again, then replace it.', brief);
+  return new Refused(
+    'TRUNCATED_FILE',
+    'The file breaks off before its end. Copy it again, then replace it.',
+    brief,
+  );
 }
 
 /** Turns what sharp says into a refusal; anything else goes on as it is. */
@@ -225,9 +315,18 @@ function asRefused(error: unknown, brief: PictureBrief | null, limits?: DecodeLi
   if (error instanceof Refused || !(error instanceof Error)) return error;
   const said = error.message;
   if (/pixel limit/i.test(said) && limits) return tooManyPixels(limits, brief);
-  if (/premature|truncat|end of|unexpected end|not enough|short read|read error|out of (data|bounds)/i.test(said)) return truncated(brief);
+  if (
+    /premature|truncat|end of|unexpected end|not enough|short read|read error|out of (data|bounds)/i.test(
+      said,
+    )
+  )
+    return truncated(brief);
   if (/unsupported|Input|Vips|png|jpeg|tiff|webp|libspng|bad|corrupt|invalid|unable/i.test(said)) {
-    return new Refused('BROKEN_FILE', 'The file is damaged and cannot be read. Copy it again or save the frame again.', brief);
+    return new Refused(
+      'BROKEN_FILE',
+      'The file is damaged and cannot be read. Copy it again or save the frame again.',
+      brief,
+    );
   }
   return error;
 }
@@ -246,7 +345,12 @@ export async function renderPreview(bytes: Uint8Array, limits: DecodeLimits): Pr
     sniffKind(bytes);
     const { data, info } = await sharp(bytes, { limitInputPixels: limits.filePixels })
       .autoOrient()
-      .resize({ width: PREVIEW_LONG_SIDE_PX, height: PREVIEW_LONG_SIDE_PX, fit: 'inside', withoutEnlargement: true })
+      .resize({
+        width: PREVIEW_LONG_SIDE_PX,
+        height: PREVIEW_LONG_SIDE_PX,
+        fit: 'inside',
+        withoutEnlargement: true,
+      })
       .webp({ quality: 82 })
       .toBuffer({ resolveWithObject: true });
     return { webp: new Uint8Array(data), widthPx: info.width, heightPx: info.height };

@@ -47,16 +47,29 @@ export function planeFor(planes: Plane[], periodPx: number): Plane {
 }
 
 /** Demodulates one wave in cells, grows the patch of continuous phase from its strongest cell and fits its phase. */
-export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true, thin = false): FringePatch | null {
+export function tracePatch(
+  plane: Plane,
+  wave: WaveCandidate,
+  mayRetry = true,
+  thin = false,
+): FringePatch | null {
   const f = plane.factor;
   // Without the mean over one period what is left is the fringes; a bright outline would leak into faint ones.
   const period = 1 / (f * Math.hypot(wave.kx, wave.ky));
-  const clean = period >= FINE_PERIOD ? withoutOutline(plane, Math.max(1, Math.round((period - 1) / 2))) : plane;
+  const clean =
+    period >= FINE_PERIOD ? withoutOutline(plane, Math.max(1, Math.round((period - 1) / 2))) : plane;
   const map = demodulateCells(clean, wave.kx * f, wave.ky * f, thin);
   const cells = growPatch(map);
   if (cells.length < 3) return null;
-  const centre = (i: number) => ({ x: ((i % map.nx) + 0.5) * map.wide * f, y: (Math.floor(i / map.nx) + 0.5) * map.high * f });
-  const list = cells.map(({ index, turns }) => ({ ...centre(index), amplitude: Math.hypot(map.re[index], map.im[index]), turns }));
+  const centre = (i: number) => ({
+    x: ((i % map.nx) + 0.5) * map.wide * f,
+    y: (Math.floor(i / map.nx) + 0.5) * map.high * f,
+  });
+  const list = cells.map(({ index, turns }) => ({
+    ...centre(index),
+    amplitude: Math.hypot(map.re[index], map.im[index]),
+    turns,
+  }));
   let w = 0;
   let cx = 0;
   let cy = 0;
@@ -73,7 +86,8 @@ export function tracePatch(plane: Plane, wave: WaveCandidate, mayRetry = true, t
   const ky = wave.ky + surface.gy;
   const shift = Math.hypot(surface.gx, surface.gy) / Math.hypot(wave.kx, wave.ky);
   // A wave vector that moved far was not demodulated well: once more with the better one.
-  if (mayRetry && shift > 0.02 && shift < 0.6) return tracePatch(plane, { kx, ky, weight: wave.weight }, false, thin);
+  if (mayRetry && shift > 0.02 && shift < 0.6)
+    return tracePatch(plane, { kx, ky, weight: wave.weight }, false, thin);
   const k = Math.hypot(kx, ky);
   const moved = k / Math.hypot(wave.kx, wave.ky);
   if (!(moved > 0.6 && moved < 1.7)) return null;
@@ -115,7 +129,8 @@ function demodulateCells(plane: Plane, kx: number, ky: number, thin: boolean): C
   const period = 1 / Math.hypot(kx, ky);
   // About a period long where the wave runs, and short enough across it for several cells in a flat pattern.
   const size = Math.max(4, Math.round(0.9 * period));
-  const short = (side: number) => Math.max(2, Math.min(thin ? Math.round(size / 4) : size, Math.floor(side / 6)));
+  const short = (side: number) =>
+    Math.max(2, Math.min(thin ? Math.round(size / 4) : size, Math.floor(side / 6)));
   const long = (side: number) => Math.max(2, Math.min(size, Math.floor(side / 3)));
   const wide = Math.abs(kx) >= Math.abs(ky) ? long(plane.widthPx) : short(plane.widthPx);
   const high = Math.abs(kx) >= Math.abs(ky) ? short(plane.heightPx) : long(plane.heightPx);
@@ -128,7 +143,14 @@ function demodulateCells(plane: Plane, kx: number, ky: number, thin: boolean): C
     sinX[x] = Math.sin(2 * Math.PI * kx * (x + 0.5));
   }
   const n = nx * ny;
-  const sums = { re: new Float64Array(n), im: new Float64Array(n), er: new Float64Array(n), ei: new Float64Array(n), one: new Float64Array(n), two: new Float64Array(n) };
+  const sums = {
+    re: new Float64Array(n),
+    im: new Float64Array(n),
+    er: new Float64Array(n),
+    ei: new Float64Array(n),
+    one: new Float64Array(n),
+    two: new Float64Array(n),
+  };
   for (let y = 0; y < ny * high; y++) {
     const cy = Math.cos(2 * Math.PI * ky * (y + 0.5));
     const sy = Math.sin(2 * Math.PI * ky * (y + 0.5));
@@ -165,7 +187,13 @@ function demodulateCells(plane: Plane, kx: number, ky: number, thin: boolean): C
   return smoothCells(sums, nx, ny, wide, high);
 }
 
-function smoothCells(sums: Record<'re' | 'im' | 'er' | 'ei' | 'one' | 'two', Float64Array>, nx: number, ny: number, wide: number, high: number): CellMap {
+function smoothCells(
+  sums: Record<'re' | 'im' | 'er' | 'ei' | 'one' | 'two', Float64Array>,
+  nx: number,
+  ny: number,
+  wide: number,
+  high: number,
+): CellMap {
   const re = new Float64Array(nx * ny);
   const im = new Float64Array(nx * ny);
   const snr = new Float64Array(nx * ny);
@@ -279,7 +307,14 @@ function fitPhase(cells: FringePatch['cells'], cx: number, cy: number, unit: num
     e += c.amplitude ** 2 * r * r;
   }
   const second = unit * unit;
-  return { gx: s[1] / unit, gy: s[2] / unit, xx: (s[3] ?? 0) / second, xy: (s[4] ?? 0) / second, yy: (s[5] ?? 0) / second, rough: Math.sqrt(e / w) };
+  return {
+    gx: s[1] / unit,
+    gy: s[2] / unit,
+    xx: (s[3] ?? 0) / second,
+    xy: (s[4] ?? 0) / second,
+    yy: (s[5] ?? 0) / second,
+    rough: Math.sqrt(e / w),
+  };
 }
 
 /** Gaussian elimination with a small ridge, for normal equations of a few unknowns. */

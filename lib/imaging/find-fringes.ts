@@ -25,7 +25,11 @@ export function findFringes(picture: Picture, within: Rectangle | null): FringeP
     if (patch === null) continue;
     const place = placeOf(picture, patch, within);
     if (place === null) continue;
-    const twin = places.findIndex((o) => Math.abs(Math.log(o.spacingPx / place.spacingPx)) < 0.1 && angleBetween(o.rect.angleDeg, place.rect.angleDeg) < 10);
+    const twin = places.findIndex(
+      (o) =>
+        Math.abs(Math.log(o.spacingPx / place.spacingPx)) < 0.1 &&
+        angleBetween(o.rect.angleDeg, place.rect.angleDeg) < 10,
+    );
     if (twin < 0) places.push(place);
     else if (places[twin].patch.energy < place.patch.energy) places[twin] = place;
   }
@@ -35,7 +39,9 @@ export function findFringes(picture: Picture, within: Rectangle | null): FringeP
 /** Energy counts for less where the phase is rough or there is little room for fringes. */
 function scoreOf(place: FringePlace): number {
   const fringes = place.rect.lengthPx / place.spacingPx;
-  return (Math.sqrt(place.patch.energy) * Math.min(1, fringes / 4)) / (1 + (place.patch.roughTurns / 0.08) ** 2);
+  return (
+    (Math.sqrt(place.patch.energy) * Math.min(1, fringes / 4)) / (1 + (place.patch.roughTurns / 0.08) ** 2)
+  );
 }
 
 export function angleBetween(a: number, b: number): number {
@@ -67,11 +73,26 @@ function placeOf(picture: Picture, patch: FringePatch, within: Rectangle | null)
   if (!(u1 > u0) || !(v1 > v0)) return null;
   const mu = (u0 + u1) / 2;
   const mv = (v0 + v1) / 2;
-  return { rect: { cxPx: patch.cx + mu * c - mv * s, cyPx: patch.cy + mu * s + mv * c, lengthPx: u1 - u0, heightPx: v1 - v0, angleDeg }, spacingPx, patch };
+  return {
+    rect: {
+      cxPx: patch.cx + mu * c - mv * s,
+      cyPx: patch.cy + mu * s + mv * c,
+      lengthPx: u1 - u0,
+      heightPx: v1 - v0,
+      angleDeg,
+    },
+    spacingPx,
+    patch,
+  };
 }
 
 /** Range of t in which the amplitude summed in slots stays above a share of its largest slot, gaps of one slot allowed. */
-function liveRange(t: number[], amplitude: number[], slot: number, share: number): { from: number; to: number } {
+function liveRange(
+  t: number[],
+  amplitude: number[],
+  slot: number,
+  share: number,
+): { from: number; to: number } {
   const low = Math.min(...t);
   const n = Math.floor((Math.max(...t) - low) / slot) + 1;
   const sums = new Float64Array(n);
@@ -87,7 +108,13 @@ function liveRange(t: number[], amplitude: number[], slot: number, share: number
 }
 
 /** Extent of the whole frame in coordinates along and across, about a point. */
-function frameExtent(picture: Picture, cx: number, cy: number, c: number, s: number): { u0: number; u1: number; v0: number; v1: number } {
+function frameExtent(
+  picture: Picture,
+  cx: number,
+  cy: number,
+  c: number,
+  s: number,
+): { u0: number; u1: number; v0: number; v1: number } {
   const corners = [
     [0, 0],
     [picture.widthPx, 0],

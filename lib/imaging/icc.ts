@@ -36,12 +36,18 @@ function curveAt(view: DataView, icc: Uint8Array, at: number): ToneCurve | null 
   const kind = view.getUint16(at + 8);
   const parameters = [1, 3, 4, 5, 7][kind];
   if (parameters === undefined || at + 12 + 4 * parameters > icc.length) return null;
-  const [g, a, b, c, d, e, f] = Array.from({ length: 7 }, (_, i) => (i < parameters ? view.getInt32(at + 12 + 4 * i) / 65536 : 0));
+  const [g, a, b, c, d, e, f] = Array.from({ length: 7 }, (_, i) =>
+    i < parameters ? view.getInt32(at + 12 + 4 * i) / 65536 : 0,
+  );
   if (kind === 0) return exponentCurve(g, BECAUSE);
   const straight = (x: number) => (kind === 1 ? 0 : kind === 2 ? c : kind === 3 ? c * x : c * x + f);
   const knee = kind <= 2 ? -b / a : d;
   const lift = kind === 2 ? c : kind === 4 ? e : 0;
-  return { kind: 'srgb', because: BECAUSE, toLinear: (x) => (x >= knee ? (a * x + b) ** g + lift : straight(x)) };
+  return {
+    kind: 'srgb',
+    because: BECAUSE,
+    toLinear: (x) => (x >= knee ? (a * x + b) ** g + lift : straight(x)),
+  };
 }
 
 function interpolate(table: Float64Array, c: number): number {

@@ -49,7 +49,12 @@ export function findLevels(counts: Uint32Array, bits: 8 | 16, lossy: boolean): L
     let clipped = 0;
     for (let i = from; i <= full; i++) clipped += counts[i];
     const piled = clipped > Math.max(16, PILE_SHARE * total);
-    return { whiteCode: full, clipCode: piled ? from : full + 1, floorCode, clippedShare: piled ? clipped / total : 0 };
+    return {
+      whiteCode: full,
+      clipCode: piled ? from : full + 1,
+      floorCode,
+      clippedShare: piled ? clipped / total : 0,
+    };
   }
   if (piledUp(counts, top, -1, total) || (top === full && counts[top] > 0)) {
     return { whiteCode: top, clipCode: top, floorCode, clippedShare: counts[top] / total };

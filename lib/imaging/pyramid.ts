@@ -15,7 +15,11 @@ export function buildPyramid(picture: Picture): Plane[] {
   const planes = [reducePicture(picture, factor)];
   for (;;) {
     const last = planes[planes.length - 1];
-    if (Math.max(last.widthPx, last.heightPx) <= SMALLEST_PLANE_PX || Math.min(last.widthPx, last.heightPx) < 8) return planes;
+    if (
+      Math.max(last.widthPx, last.heightPx) <= SMALLEST_PLANE_PX ||
+      Math.min(last.widthPx, last.heightPx) < 8
+    )
+      return planes;
     planes.push(halve(last));
   }
 }
@@ -52,7 +56,8 @@ function halve(plane: Plane): Plane {
   for (let y = 0; y < h; y++) {
     let a = 2 * y * plane.widthPx;
     let b = a + plane.widthPx;
-    for (let x = 0; x < w; x++, a += 2, b += 2) data[y * w + x] = 0.25 * (plane.data[a] + plane.data[a + 1] + plane.data[b] + plane.data[b + 1]);
+    for (let x = 0; x < w; x++, a += 2, b += 2)
+      data[y * w + x] = 0.25 * (plane.data[a] + plane.data[a + 1] + plane.data[b] + plane.data[b + 1]);
   }
   return { widthPx: w, heightPx: h, data, factor: 2 * plane.factor };
 }

@@ -6,18 +6,29 @@ const KEEP_AS = 'Save the frame as PNG or TIFF (16 bit) or JPEG and send that.';
 
 /** The kind of a file by its first bytes, never by its name. Refuses what is no picture the engine reads. */
 export function sniffKind(b: Uint8Array): FileKind {
-  if (b.length === 0) throw new Refused('NOT_A_PICTURE', 'The file is empty. Copy it again, then replace it.');
+  if (b.length === 0)
+    throw new Refused('NOT_A_PICTURE', 'The file is empty. Copy it again, then replace it.');
   if (starts(b, [0x89, 0x50, 0x4e, 0x47, 0x0d, 0x0a, 0x1a, 0x0a])) return 'PNG';
   if (starts(b, [0xff, 0xd8, 0xff])) return 'JPEG';
   if (starts(b, [0x52, 0x49, 0x46, 0x46]) && text(b, 8, 4) === 'WEBP') return 'WebP';
-  if (starts(b, [0x49, 0x49, 0x2a, 0]) || starts(b, [0x4d, 0x4d, 0, 0x2a]) || starts(b, [0x49, 0x49, 0x2b, 0]) || starts(b, [0x4d, 0x4d, 0, 0x2b])) {
-    if (text(b, 8, 2) === 'CR') throw new Refused('NOT_A_PICTURE', `This is a raw camera file, which cannot be read. ${KEEP_AS}`);
+  if (
+    starts(b, [0x49, 0x49, 0x2a, 0]) ||
+    starts(b, [0x4d, 0x4d, 0, 0x2a]) ||
+    starts(b, [0x49, 0x49, 0x2b, 0]) ||
+    starts(b, [0x4d, 0x4d, 0, 0x2b])
+  ) {
+    if (text(b, 8, 2) === 'CR')
+      throw new Refused('NOT_A_PICTURE', `This is a raw camera file, which cannot be read. ${KEEP_AS}`);
     return 'TIFF';
   }
   if (text(b, 4, 4) === 'ftyp') refuseContainer(text(b, 8, 4));
-  if (text(b, 0, 4) === 'GIF8') throw new Refused('PALETTE', `A GIF holds at most 256 picked colours, not measured light. ${KEEP_AS}`);
+  if (text(b, 0, 4) === 'GIF8')
+    throw new Refused('PALETTE', `A GIF holds at most 256 picked colours, not measured light. ${KEEP_AS}`);
   if (text(b, 0, 2) === 'BM') throw new Refused('NOT_A_PICTURE', `BMP files are not read. ${KEEP_AS}`);
-  throw new Refused('NOT_A_PICTURE', `This file is not a picture in PNG, TIFF, JPEG or WebP form. ${KEEP_AS}`);
+  throw new Refused(
+    'NOT_A_PICTURE',
+    `This file is not a picture in PNG, TIFF, JPEG or WebP form. ${KEEP_AS}`,
+  );
 }
 
 function refuseContainer(brand: string): never {
@@ -54,7 +65,16 @@ export interface PngFacts {
 /** Header facts of a PNG that decide whether it may be decoded. Source: PNG specification, third edition. */
 export function readPng(b: Uint8Array): PngFacts {
   const view = new DataView(b.buffer, b.byteOffset, b.byteLength);
-  const facts: PngFacts = { widthPx: b.length >= 24 ? view.getUint32(16) : 0, heightPx: b.length >= 24 ? view.getUint32(20) : 0, colourType: b[25] ?? 0, bitDepth: b[24] ?? 0, animated: false, complete: false, gamma: null, srgb: false };
+  const facts: PngFacts = {
+    widthPx: b.length >= 24 ? view.getUint32(16) : 0,
+    heightPx: b.length >= 24 ? view.getUint32(20) : 0,
+    colourType: b[25] ?? 0,
+    bitDepth: b[24] ?? 0,
+    animated: false,
+    complete: false,
+    gamma: null,
+    srgb: false,
+  };
   let at = 8;
   while (at + 8 <= b.length) {
     const length = view.getUint32(at);

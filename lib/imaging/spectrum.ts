@@ -87,7 +87,8 @@ function tilePower(plane: Plane, x0: number, y0: number, power: Float32Array): v
     line.fill(0);
     const row = (y0 + y) * plane.widthPx + x0;
     const dy = y - (th - 1) / 2;
-    for (let x = 0; x < tw; x++) line[2 * x] = (plane.data[row + x] - mean - sx * (x - (tw - 1) / 2) - sy * dy) * wx[x] * wy[y];
+    for (let x = 0; x < tw; x++)
+      line[2 * x] = (plane.data[row + x] - mean - sx * (x - (tw - 1) / 2) - sy * dy) * wx[x] * wy[y];
     fft.transform(lineOut, line);
     // Transposed on the way, so that the second pass runs along rows again.
     for (let k = 0; k < N; k++) {
@@ -105,7 +106,13 @@ function taper(n: number, power: number): Float64Array {
   return Float64Array.from({ length: n }, (_, i) => Math.sin((Math.PI * (i + 0.5)) / n) ** power);
 }
 
-function tilt(plane: Plane, x0: number, y0: number, tw: number, th: number): { mean: number; sx: number; sy: number } {
+function tilt(
+  plane: Plane,
+  x0: number,
+  y0: number,
+  tw: number,
+  th: number,
+): { mean: number; sx: number; sy: number } {
   let s = 0;
   let bx = 0;
   let by = 0;
@@ -174,7 +181,11 @@ function tilePeaks(power: Float32Array, plane: Plane): WaveCandidate[] {
     }
     let total = e;
     for (let r = Math.floor(0.7 * peak.k); r < N; r++) total += rings[r];
-    return { kx: mx / e / N / plane.factor, ky: my / e / N / plane.factor, weight: Math.sqrt(e) * ((2 * e) / total) * plane.factor };
+    return {
+      kx: mx / e / N / plane.factor,
+      ky: my / e / N / plane.factor,
+      weight: Math.sqrt(e) * ((2 * e) / total) * plane.factor,
+    };
   });
 }
 
@@ -199,7 +210,9 @@ function gather(votes: WaveCandidate[], keep: number): WaveCandidate[] {
   const clusters: { kx: number; ky: number; weight: number; sum: number }[] = [];
   for (const v of left) {
     const k = Math.hypot(v.kx, v.ky);
-    const home = clusters.find((c) => Math.min(Math.hypot(c.kx - v.kx, c.ky - v.ky), Math.hypot(c.kx + v.kx, c.ky + v.ky)) < 0.17 * k);
+    const home = clusters.find(
+      (c) => Math.min(Math.hypot(c.kx - v.kx, c.ky - v.ky), Math.hypot(c.kx + v.kx, c.ky + v.ky)) < 0.17 * k,
+    );
     if (!home) {
       clusters.push({ kx: v.kx, ky: v.ky, weight: v.weight, sum: v.weight });
       continue;

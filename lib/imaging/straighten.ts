@@ -60,7 +60,13 @@ export function straighten(picture: Picture, rect: Rectangle, options: Straighte
   const fine = Math.ceil(Math.abs(rect.lengthPx / step)) + 2;
   const bins = Math.floor(fine / merge);
   const stack = emptyStack(rect, bins, bands, Math.abs(step) * merge);
-  const line: FineLine = { sum: new Float64Array(fine + lanes), n: new Float64Array(fine + lanes), d: new Float64Array(fine + lanes), dd: new Float64Array(fine + lanes), v: new Float64Array(fine + lanes) };
+  const line: FineLine = {
+    sum: new Float64Array(fine + lanes),
+    n: new Float64Array(fine + lanes),
+    d: new Float64Array(fine + lanes),
+    dd: new Float64Array(fine + lanes),
+    v: new Float64Array(fine + lanes),
+  };
   for (let b = 0; b < bands; b++) {
     const low = -rect.heightPx / 2 + (b * rect.heightPx) / bands;
     const high = low + rect.heightPx / bands;
@@ -119,9 +125,29 @@ function scanOf(picture: Picture, rect: Rectangle): Scan {
   const u0 = (0.5 - rect.cxPx) * c + (0.5 - rect.cyPx) * s;
   const v0 = -(0.5 - rect.cxPx) * s + (0.5 - rect.cyPx) * c;
   if (Math.abs(c) >= Math.abs(s)) {
-    return { samples: picture.samples, width: picture.widthPx, rows: picture.heightPx, u0, up: c, uq: s, v0, vp: -s, vq: c };
+    return {
+      samples: picture.samples,
+      width: picture.widthPx,
+      rows: picture.heightPx,
+      u0,
+      up: c,
+      uq: s,
+      v0,
+      vp: -s,
+      vq: c,
+    };
   }
-  return { samples: transposed(picture), width: picture.heightPx, rows: picture.widthPx, u0, up: s, uq: c, v0, vp: c, vq: -s };
+  return {
+    samples: transposed(picture),
+    width: picture.heightPx,
+    rows: picture.widthPx,
+    u0,
+    up: s,
+    uq: c,
+    v0,
+    vp: c,
+    vq: -s,
+  };
 }
 
 function transposed(picture: Picture): Uint8Array | Uint16Array {
@@ -206,7 +232,12 @@ function addRange(line: FineLine, i: number, end: number, offset: number, v: num
   line.dd[end] -= offset * offset;
 }
 
-function mergeBins(stack: BandStack, band: number, line: FineLine, grid: { first: number; step: number; merge: number; vPerBin: number }): void {
+function mergeBins(
+  stack: BandStack,
+  band: number,
+  line: FineLine,
+  grid: { first: number; step: number; merge: number; vPerBin: number },
+): void {
   const { first, step, merge, vPerBin } = grid;
   const { bins } = stack;
   for (let k = 0; k < bins; k++) {

@@ -1,5 +1,14 @@
 import { LIMITS } from '@/lib/domain/limits';
-import { REFUSALS, type FitOptions, type FrameAnswer, type OrderCentre, type ReadingResult, type Refusal, type SetupValues, type Timing } from '@/lib/domain/reading-result';
+import {
+  REFUSALS,
+  type FitOptions,
+  type FrameAnswer,
+  type OrderCentre,
+  type ReadingResult,
+  type Refusal,
+  type SetupValues,
+  type Timing,
+} from '@/lib/domain/reading-result';
 import { chooseTerms } from '@/lib/fit/choose-terms';
 import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { listOrders } from '@/lib/fit/orders';
@@ -31,7 +40,12 @@ const CROSSING_FRINGES = 4;
  * The whole way of one frame: bytes -> picture -> fringes found -> bands -> fit -> wavelength and findings.
  * Bad input of any kind is an answer (`ok: false` with code and message), never an exception.
  */
-export async function analyseFrame(bytes: Uint8Array, setup: SetupValues, options: FitOptions, clock: Clock = () => 0): Promise<FrameAnswer> {
+export async function analyseFrame(
+  bytes: Uint8Array,
+  setup: SetupValues,
+  options: FitOptions,
+  clock: Clock = () => 0,
+): Promise<FrameAnswer> {
   const ms: Timing = { decode: 0, find: 0, profile: 0, fit: 0, total: 0 };
   const start = clock();
   let picture: Picture | null = null;
@@ -55,14 +69,28 @@ export async function analyseFrame(bytes: Uint8Array, setup: SetupValues, option
 }
 
 /** Tries the likeliest places and keeps the first that stands; else the refusal of the likeliest. */
-function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues, options: FitOptions, timed: (profile: number) => void, clock: Clock): Measured {
+function measureBest(
+  picture: Picture,
+  places: FringePlace[],
+  setup: SetupValues,
+  options: FitOptions,
+  timed: (profile: number) => void,
+  clock: Clock,
+): Measured {
   const prior = curvePrior(setup);
   refuseCrossed(places);
   let refused: Refused | null = null;
   for (const place of places.slice(0, PLACES_TRIED)) {
     try {
       const before = clock();
-      const ask = { picture, rect: place.rect, spacingPx: place.spacingPx, prior, leaveOut: () => false, zeroShift: options.zeroShift ?? 0 };
+      const ask = {
+        picture,
+        rect: place.rect,
+        spacingPx: place.spacingPx,
+        prior,
+        leaveOut: () => false,
+        zeroShift: options.zeroShift ?? 0,
+      };
       const quick = lookAtPlace(ask);
       timed(clock() - before);
       if (quick === null) continue;
@@ -82,16 +110,36 @@ function measureBest(picture: Picture, places: FringePlace[], setup: SetupValues
 function refuseCrossed(places: FringePlace[]): void {
   const [first, ...others] = places;
   const crossing = others.some(
-    (o) => o.rect.lengthPx > CROSSING_FRINGES * o.spacingPx && o.patch.energy > CROSSING_ENERGY * first.patch.energy && Math.abs(Math.log(o.spacingPx / first.spacingPx)) < 0.15 && angleBetween(o.rect.angleDeg, first.rect.angleDeg) > 30,
+    (o) =>
+      o.rect.lengthPx > CROSSING_FRINGES * o.spacingPx &&
+      o.patch.energy > CROSSING_ENERGY * first.patch.energy &&
+      Math.abs(Math.log(o.spacingPx / first.spacingPx)) < 0.15 &&
+      angleBetween(o.rect.angleDeg, first.rect.angleDeg) > 30,
   );
   if (crossing) throw noFringes();
 }
 
 /** The full measurement of a place that the quick look found good. */
-function measurePlace(picture: Picture, quick: PlaceFit, prior: CurvePrior | null, setup: SetupValues, options: FitOptions): Measured {
+function measurePlace(
+  picture: Picture,
+  quick: PlaceFit,
+  prior: CurvePrior | null,
+  setup: SetupValues,
+  options: FitOptions,
+): Measured {
   const spacingPx = quick.band.fit.result.parameters[0] * quick.band.fit.unitPx;
   const rect = options.region ? quick.rect : trimPlace(picture, quick);
-  const place = fitPlace({ picture, rect, spacingPx, prior, leaveOut: leftOutBy(options, quick), zeroShift: options.zeroShift ?? 0 }, quick);
+  const place = fitPlace(
+    {
+      picture,
+      rect,
+      spacingPx,
+      prior,
+      leaveOut: leftOutBy(options, quick),
+      zeroShift: options.zeroShift ?? 0,
+    },
+    quick,
+  );
   if (place === null) throw noFringes();
   const plainSpacingPx = place.band.fit.result.parameters[0] * place.band.fit.unitPx;
   place.band = chooseTerms(place.band, { curve: !setup.distanceMm, tone: true, chirp: true });
@@ -110,7 +158,11 @@ function settleZero(place: PlaceFit, options: FitOptions): ZeroChoice {
   if (fit.layout.chirp >= 0) return { ...choice, fit, uSpacing: 0 };
   if (options.zeroShift) return { ...choice, fit: place.band.fit, probability: 1, next: 0, uSpacing: 0 };
   if (choice.fit !== place.band.fit) {
-    place.band = { ...place.band, fit: choice.fit, table: tableFor(place.stack, place.band.grid, choice.fit) };
+    place.band = {
+      ...place.band,
+      fit: choice.fit,
+      table: tableFor(place.stack, place.band.grid, choice.fit),
+    };
   }
   return choice;
 }
@@ -130,7 +182,9 @@ function leftOutBy(options: FitOptions, quick: PlaceFit): (u: number) => boolean
   const { fit } = quick.band;
   const p = fit.result.parameters;
   const spacing = p[0] * fit.unitPx;
-  const places = orders.map((m) => fit.originPx + (p[1] + (m - (options.zeroShift ?? 0)) * p[0]) * fit.unitPx);
+  const places = orders.map(
+    (m) => fit.originPx + (p[1] + (m - (options.zeroShift ?? 0)) * p[0]) * fit.unitPx,
+  );
   return (u) => places.some((at) => Math.abs(u - at) < 0.5 * spacing);
 }
 
@@ -143,7 +197,13 @@ export function curvePrior(setup: SetupValues): CurvePrior | null {
   return { value, u: known ? value * Math.hypot((s.u ?? 0) / s.value, (l.u ?? 0) / l.value) : null };
 }
 
-function resultOf(picture: Picture, measured: Measured, setup: SetupValues, options: FitOptions, ms: Timing): ReadingResult {
+function resultOf(
+  picture: Picture,
+  measured: Measured,
+  setup: SetupValues,
+  options: FitOptions,
+  ms: Timing,
+): ReadingResult {
   const { place, spread, evidence } = measured;
   const { fit } = place.band;
   const p = fit.result.parameters;
@@ -158,8 +218,13 @@ function resultOf(picture: Picture, measured: Measured, setup: SetupValues, opti
   const visibility = Math.min(1, evidence.visibility);
   const uVisibility = visibilityU(p, spread.covariance, size);
   const curves = curvesOf(place, toAlong);
-  const known = spread.from === 'noise' ? 'noise model' : `type A, scatter of ${Math.round(spread.groups)} bands`;
-  const wavelength = wavelengthOf({ spacingPx, uSpacingPx, dof: spread.dof, known }, setup, frameEffects(picture, setup, spacingPx));
+  const known =
+    spread.from === 'noise' ? 'noise model' : `type A, scatter of ${Math.round(spread.groups)} bands`;
+  const wavelength = wavelengthOf(
+    { spacingPx, uSpacingPx, dof: spread.dof, known },
+    setup,
+    frameEffects(picture, setup, spacingPx),
+  );
   const result: ReadingResult = {
     ok: true,
     code: 'OK',
@@ -184,7 +249,15 @@ function resultOf(picture: Picture, measured: Measured, setup: SetupValues, opti
     budget: wavelength.budget,
     findings: [],
     engine: ENGINE_VERSION,
-    picture: { widthPx: picture.widthPx, heightPx: picture.heightPx, bits: picture.bits, format: picture.source.format, channel: picture.source.channel, tone: picture.source.tone, toneBecause: picture.source.toneBecause },
+    picture: {
+      widthPx: picture.widthPx,
+      heightPx: picture.heightPx,
+      bits: picture.bits,
+      format: picture.source.format,
+      channel: picture.source.channel,
+      tone: picture.source.tone,
+      toneBecause: picture.source.toneBecause,
+    },
     peakShare: Math.max(0, ...curves.fit.filter((_, i) => curves.left[i] === 0)),
     clippedShare: clippedShare(place),
     envelopeZeroOrder: p[2] > 0.02 && p[2] < 0.9 ? 1 / p[2] : null,
@@ -206,13 +279,29 @@ function alongIn(region: Rectangle, rect: Rectangle): (u: number) => number {
   return (u) => u / turn;
 }
 
-function ordersOf(place: PlaceFit, spread: Spread, region: Rectangle, toAlong: (u: number) => number, options: FitOptions): OrderCentre[] {
+function ordersOf(
+  place: PlaceFit,
+  spread: Spread,
+  region: Rectangle,
+  toAlong: (u: number) => number,
+  options: FitOptions,
+): OrderCentre[] {
   const { fit, profile, grid } = place.band;
   const left = options.leaveOut ?? [];
-  return listOrders(fit, profile, spread.covariance, grid.from, grid.from + grid.bins * grid.pitchPx).map((o) => {
-    const alongPx = toAlong(o.u);
-    return { m: o.m, kind: o.kind, ...pointAlong(region, alongPx), uPx: o.uPx, pullPx: o.pullPx, alongPx, used: !left.includes(o.m) };
-  });
+  return listOrders(fit, profile, spread.covariance, grid.from, grid.from + grid.bins * grid.pitchPx).map(
+    (o) => {
+      const alongPx = toAlong(o.u);
+      return {
+        m: o.m,
+        kind: o.kind,
+        ...pointAlong(region, alongPx),
+        uPx: o.uPx,
+        pullPx: o.pullPx,
+        alongPx,
+        used: !left.includes(o.m),
+      };
+    },
+  );
 }
 
 function visibilityU(p: Float64Array, c: Float64Array, n: number): number | null {
@@ -235,11 +324,24 @@ function clippedShare(place: PlaceFit): number {
 }
 
 function messageFor(result: ReadingResult): string {
-  const worst = result.findings.find((f) => f.word === 'stop') ?? result.findings.find((f) => f.word === 'look');
+  const worst =
+    result.findings.find((f) => f.word === 'stop') ?? result.findings.find((f) => f.word === 'look');
   return worst ? worst.message : 'The frame is fit for use.';
 }
 
 function refusal(error: Refused, picture: Picture | null, ms: Timing): Refusal {
-  const brief = error.picture ?? (picture ? { widthPx: picture.widthPx, heightPx: picture.heightPx, format: picture.source.format } : null);
-  return { ok: false, code: error.code, message: error.message, engine: ENGINE_VERSION, fileAtFault: REFUSALS[error.code], picture: brief, ms };
+  const brief =
+    error.picture ??
+    (picture
+      ? { widthPx: picture.widthPx, heightPx: picture.heightPx, format: picture.source.format }
+      : null);
+  return {
+    ok: false,
+    code: error.code,
+    message: error.message,
+    engine: ENGINE_VERSION,
+    fileAtFault: REFUSALS[error.code],
+    picture: brief,
+    ms,
+  };
 }

@@ -1,6 +1,14 @@
 import type { BudgetRow, RefusalCode, SetupValues, Timing } from '@/lib/domain/reading-result';
 import { MARGIN, offers } from '@/lib/fit/choose-terms';
-import { AveragedModel, fitFrom, plainTerms, rebase, refit, type CurvePrior, type ProfileFit } from '@/lib/fit/fit-profile';
+import {
+  AveragedModel,
+  fitFrom,
+  plainTerms,
+  rebase,
+  refit,
+  type CurvePrior,
+  type ProfileFit,
+} from '@/lib/fit/fit-profile';
 import { fitNoise, varianceAt } from '@/lib/fit/noise';
 import { listOrders, toModel } from '@/lib/fit/orders';
 import { averagingNodes, type Profile } from '@/lib/fit/profile';
@@ -53,7 +61,12 @@ const FEWEST_FRINGES = 3;
  * Measures a line scan with the same model as a frame; lengths in mm. `detectorMm` is the width of the detector, over which
  * the model is averaged. Noise is taken from the scatter about the fit and weighted by the fitted mean.
  */
-export function analyseScan(text: string, detectorMm: number, setup: SetupValues, clock: Clock = () => 0): ScanResult | ScanRefusal {
+export function analyseScan(
+  text: string,
+  detectorMm: number,
+  setup: SetupValues,
+  clock: Clock = () => 0,
+): ScanResult | ScanRefusal {
   const start = clock();
   const ms: Timing = { decode: 0, find: 0, profile: 0, fit: 0, total: 0 };
   try {
@@ -97,7 +110,9 @@ function scanPrior(setup: SetupValues): CurvePrior | null {
 
 function firstProfile(scan: Scan, detectorMm: number): Profile {
   const n = scan.positionMm.length;
-  const steps = Array.from({ length: n - 2 }, (_, i) => Math.abs(scan.intensity[i] - 2 * scan.intensity[i + 1] + scan.intensity[i + 2])).sort((a, b) => a - b);
+  const steps = Array.from({ length: n - 2 }, (_, i) =>
+    Math.abs(scan.intensity[i] - 2 * scan.intensity[i + 1] + scan.intensity[i + 2]),
+  ).sort((a, b) => a - b);
   const sigma = Math.max(1e-9, steps[steps.length >> 1] / 0.6745 / Math.sqrt(6));
   // A uniform slit of width D: variance D^2/12, fourth moment D^4/80.
   const { node, weight } = averagingNodes(detectorMm ** 2 / 12, detectorMm ** 4 / 80, 0);
@@ -118,7 +133,10 @@ function likelyStarts(profile: Profile): StartValues[] {
   const shortest = (4 * span) / (n - 1);
   const longest = 0.45 * span;
   const starts: StartValues[] = [];
-  for (let i = 0; i < SPACINGS_TRIED; i++) starts.push(...scanStartValues(profile, shortest * (longest / shortest) ** (i / (SPACINGS_TRIED - 1)), 1));
+  for (let i = 0; i < SPACINGS_TRIED; i++)
+    starts.push(
+      ...scanStartValues(profile, shortest * (longest / shortest) ** (i / (SPACINGS_TRIED - 1)), 1),
+    );
   return starts.sort((a, b) => a.rest - b.rest).slice(0, 8);
 }
 
@@ -130,12 +148,24 @@ function weighted(profile: Profile, scan: Scan, fit: ProfileFit): Profile {
   const q = new Float64Array(n);
   const rest = Math.max(0.3, 1 - fit.layout.size / n);
   for (let i = 0; i < n; i++) {
-    if (!model.evaluate(fit.result.parameters, toModel(fit, profile.u[i]), profile.node[i] / fit.unitPx, profile.nodeWeight[i], false)) continue;
+    if (
+      !model.evaluate(
+        fit.result.parameters,
+        toModel(fit, profile.u[i]),
+        profile.node[i] / fit.unitPx,
+        profile.nodeWeight[i],
+        false,
+      )
+    )
+      continue;
     light[i] = model.light * fit.unitLight;
     q[i] = ((profile.light[i] - light[i]) ** 2 * scan.repeats[i]) / rest;
   }
   const noise = fitNoise(light, q, 1e-12);
-  return { ...profile, sigma: Float64Array.from(light, (l, i) => Math.sqrt(varianceAt(noise, l) / scan.repeats[i])) };
+  return {
+    ...profile,
+    sigma: Float64Array.from(light, (l, i) => Math.sqrt(varianceAt(noise, l) / scan.repeats[i])),
+  };
 }
 
 /** Optional terms while the information criterion asks for them. */
@@ -147,7 +177,10 @@ function withTerms(profile: Profile, fit: ProfileFit): ProfileFit {
       const trial = refit(profile, now, terms);
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));
-      const gain = (now.result.chiSquare - trial.result.chiSquare) / scale - (trial.layout.size - now.layout.size) * Math.log(trial.points) - MARGIN;
+      const gain =
+        (now.result.chiSquare - trial.result.chiSquare) / scale -
+        (trial.layout.size - now.layout.size) * Math.log(trial.points) -
+        MARGIN;
       if (gain > 0 && (best === null || gain > best.gain)) best = { fit: trial, gain };
     }
     if (best === null) return now;
@@ -163,15 +196,28 @@ function resultOf(scan: Scan, profile: Profile, fit: ProfileFit, setup: SetupVal
   const covariance = fit.result.covariance === null ? null : fit.result.covariance.map((c) => c * scale);
   const from = scan.positionMm[0];
   const to = scan.positionMm[scan.positionMm.length - 1];
-  if (covariance === null || !(p[5] > LEAST_SWING_SIGMAS * Math.sqrt(covariance[5 * n + 5]))) throw nothingFound();
+  if (covariance === null || !(p[5] > LEAST_SWING_SIGMAS * Math.sqrt(covariance[5 * n + 5])))
+    throw nothingFound();
   const spacingMm = p[0] * fit.unitPx;
   const uSpacingMm = Math.sqrt(covariance[0]) * fit.unitPx;
-  if ((to - from) / spacingMm < FEWEST_FRINGES - 0.3) throw new Refused('TOO_FEW_FRINGES', 'The scan holds fewer than three fringes. Scan further.');
-  if (p[2] > 0.8) throw new Refused('ONE_SLIT', 'This is the pattern of a single slit. Let the beam meet both slits.');
-  if (!(uSpacingMm < 0.03 * spacingMm)) throw new Refused('PATTERN_CUT', 'The scan does not fix the spacing. Scan more of the pattern.');
+  if ((to - from) / spacingMm < FEWEST_FRINGES - 0.3)
+    throw new Refused('TOO_FEW_FRINGES', 'The scan holds fewer than three fringes. Scan further.');
+  if (p[2] > 0.8)
+    throw new Refused('ONE_SLIT', 'This is the pattern of a single slit. Let the beam meet both slits.');
+  if (!(uSpacingMm < 0.03 * spacingMm))
+    throw new Refused('PATTERN_CUT', 'The scan does not fix the spacing. Scan more of the pattern.');
   // One mm of the scan is one mm of the plane: the "pixel scale" is exact.
   const mm: SetupValues = { ...setup, scaleUmPerPx: { value: 1000, u: 0, known: 'positions of the scan' } };
-  const wavelength = wavelengthOf({ spacingPx: spacingMm, uSpacingPx: uSpacingMm, dof: fit.result.dof, known: 'type A, scatter about the fit' }, mm, []);
+  const wavelength = wavelengthOf(
+    {
+      spacingPx: spacingMm,
+      uSpacingPx: uSpacingMm,
+      dof: fit.result.dof,
+      known: 'type A, scatter about the fit',
+    },
+    mm,
+    [],
+  );
   return {
     ok: true,
     code: 'OK',
@@ -181,7 +227,13 @@ function resultOf(scan: Scan, profile: Profile, fit: ProfileFit, setup: SetupVal
     dofSpacing: fit.result.dof,
     visibility: Math.min(1, p[5] / p[4]),
     zeroOrder: { xMm: fit.originPx + p[1] * fit.unitPx },
-    orders: listOrders(fit, profile, covariance, from, to).map((o) => ({ m: o.m, kind: o.kind, xMm: o.u, uMm: o.uPx, pullMm: o.pullPx })),
+    orders: listOrders(fit, profile, covariance, from, to).map((o) => ({
+      m: o.m,
+      kind: o.kind,
+      xMm: o.u,
+      uMm: o.uPx,
+      pullMm: o.pullPx,
+    })),
     region: { fromMm: from, toMm: to },
     medium: 'air',
     wavelengthNm: wavelength.airNm,
@@ -202,7 +254,16 @@ function correlation(profile: Profile, fit: ProfileFit): number {
   const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
   const r: number[] = [];
   for (let i = 0; i < profile.size; i++) {
-    if (!model.evaluate(fit.result.parameters, toModel(fit, profile.u[i]), profile.node[i] / fit.unitPx, profile.nodeWeight[i], false)) continue;
+    if (
+      !model.evaluate(
+        fit.result.parameters,
+        toModel(fit, profile.u[i]),
+        profile.node[i] / fit.unitPx,
+        profile.nodeWeight[i],
+        false,
+      )
+    )
+      continue;
     r.push((profile.light[i] / fit.unitLight - model.light) / profile.sigma[i]);
   }
   const power = r.reduce((s, v) => s + v * v, 0);
@@ -217,5 +278,8 @@ function correlation(profile: Profile, fit: ProfileFit): number {
 }
 
 function nothingFound(): Refused {
-  return new Refused('NO_FRINGES', 'No two-slit fringes were found in this scan. Check columns (position in mm, intensity) and that both slits are lit.');
+  return new Refused(
+    'NO_FRINGES',
+    'No two-slit fringes were found in this scan. Check columns (position in mm, intensity) and that both slits are lit.',
+  );
 }

@@ -28,7 +28,16 @@ export function curvesOf(place: PlaceFit, alongFromU: (u: number) => number): Cu
     const left = w === 0;
     const centre = place.band.grid.from + ((from + to) / 2) * place.band.grid.pitchPx;
     const u = left ? centre : wu / w;
-    if (!model.evaluate(fit.result.parameters, toModel(fit, u), profile.node[from] / fit.unitPx, profile.nodeWeight[from], false)) continue;
+    if (
+      !model.evaluate(
+        fit.result.parameters,
+        toModel(fit, u),
+        profile.node[from] / fit.unitPx,
+        profile.nodeWeight[from],
+        false,
+      )
+    )
+      continue;
     const light = left ? table.lightAt(u) : wy / w;
     const sigma = left ? 0 : 1 / Math.sqrt(w);
     out.alongPx.push(alongFromU(u));
@@ -53,7 +62,10 @@ export function stripOf(curves: Curves): Strip {
   for (let i = 0, k = 0; i < count; i++) {
     const u = from + i * stepPx;
     while (k + 2 < n && curves.alongPx[k + 1] < u) k++;
-    const f = Math.min(1, Math.max(0, (u - curves.alongPx[k]) / (curves.alongPx[k + 1] - curves.alongPx[k] || 1)));
+    const f = Math.min(
+      1,
+      Math.max(0, (u - curves.alongPx[k]) / (curves.alongPx[k + 1] - curves.alongPx[k] || 1)),
+    );
     light.push(curves.data[k] + f * ((curves.data[k + 1] ?? curves.data[k]) - curves.data[k]));
   }
   const top = Math.max(...light, 1e-12);

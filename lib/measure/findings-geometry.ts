@@ -15,23 +15,38 @@ function tilt(c: FindingContext): Finding {
   const lean = Math.min(from, Math.abs(90 - from));
   const relative = 1 - Math.cos((lean * Math.PI) / 180);
   return finding(c, {
-    check: 'tilt', word: lean > 3 ? 'look' : 'clear', relative,
-    seen: `The fringes lean ${numberText(lean)}° against the sensor.`, size: 'Uncorrected that would be {size}.',
-    done: 'The frame was straightened; spacing is taken square to the fringes.', remedy: lean > 3 ? 'Straighten the camera to below 3°.' : 'Nothing to do.',
+    check: 'tilt',
+    word: lean > 3 ? 'look' : 'clear',
+    relative,
+    seen: `The fringes lean ${numberText(lean)}° against the sensor.`,
+    size: 'Uncorrected that would be {size}.',
+    done: 'The frame was straightened; spacing is taken square to the fringes.',
+    remedy: lean > 3 ? 'Straighten the camera to below 3°.' : 'Nothing to do.',
   });
 }
 
 function yaw(c: FindingContext): Finding {
   const { fit, grid } = c.measured.place.band;
   if (fit.layout.chirp < 0) {
-    return finding(c, { check: 'chirp', word: 'clear', relative: 0, seen: 'Fringes left and right of the middle are equally wide.', size: 'Effect {size}.', done: 'A change of spacing across the frame was looked for.', remedy: 'Nothing to do.' });
+    return finding(c, {
+      check: 'chirp',
+      word: 'clear',
+      relative: 0,
+      seen: 'Fringes left and right of the middle are equally wide.',
+      size: 'Effect {size}.',
+      done: 'A change of spacing across the frame was looked for.',
+      remedy: 'Nothing to do.',
+    });
   }
   const change = 2 * fit.result.parameters[fit.layout.chirp] * (grid.half / fit.unitPx) * 2;
   const moved = c.result.spacingPx / c.measured.plainSpacingPx - 1;
   return finding(c, {
-    check: 'chirp', word: Math.abs(change) > 0.002 ? 'look' : 'clear', relative: moved,
+    check: 'chirp',
+    word: Math.abs(change) > 0.002 ? 'look' : 'clear',
+    relative: moved,
     seen: `The spacing changes by ${percent(Math.abs(change))} across the region: screen or sensor is seen at an angle.`,
-    size: 'Allowing for it moved the wavelength by {size}.', done: 'The perspective was fitted; spacing and scale hold at the zero order.',
+    size: 'Allowing for it moved the wavelength by {size}.',
+    done: 'The perspective was fitted; spacing and scale hold at the zero order.',
     remedy: 'Square up camera and screen, and take the scale at the zero order.',
   });
 }
@@ -45,9 +60,14 @@ function zeroOrder(c: FindingContext): Finding {
   const odds = next > 0 ? Math.min(9999, probability / next) : 9999;
   const sure = odds > 20;
   return finding(c, {
-    check: 'zero-order', word: sure ? 'clear' : 'look', relative,
-    seen: sure ? 'The zero order stands at the middle of the envelope.' : `The zero order is most likely here; the next fringe is ${numberText(odds)} times less likely.`,
-    size: 'One order to the side would change the wavelength by {size}.', done: 'The order nearest the middle of the envelope was taken.',
+    check: 'zero-order',
+    word: sure ? 'clear' : 'look',
+    relative,
+    seen: sure
+      ? 'The zero order stands at the middle of the envelope.'
+      : `The zero order is most likely here; the next fringe is ${numberText(odds)} times less likely.`,
+    size: 'One order to the side would change the wavelength by {size}.',
+    done: 'The order nearest the middle of the envelope was taken.',
     remedy: sure ? 'Nothing to do.' : 'Mark the zero order yourself, or take a frame with white light.',
   });
 }
@@ -58,10 +78,15 @@ function regionOf(c: FindingContext): Finding {
   const right = bright.filter((o) => o.m > 0).length;
   const enough = bright.length >= 7 && left >= 3 && right >= 3;
   return finding(c, {
-    check: 'region', word: enough ? 'clear' : 'look', width: enough ? undefined : bright.length < 5 ? 'stop' : 'look',
+    check: 'region',
+    word: enough ? 'clear' : 'look',
+    width: enough ? undefined : bright.length < 5 ? 'stop' : 'look',
     relative: c.result.uSpacingPx / c.result.spacingPx,
-    seen: enough ? `The region holds ${bright.length} bright orders on both sides of the zero order.` : `The region holds ${bright.length} bright orders, ${left} to one side of the zero order and ${right} to the other.`,
-    size: 'The fit is sure to {size}.', done: 'All orders in the region were used.',
+    seen: enough
+      ? `The region holds ${bright.length} bright orders on both sides of the zero order.`
+      : `The region holds ${bright.length} bright orders, ${left} to one side of the zero order and ${right} to the other.`,
+    size: 'The fit is sure to {size}.',
+    done: 'All orders in the region were used.',
     remedy: enough ? 'Nothing to do.' : 'Widen the region to at least 7 bright orders, 3 on each side.',
   });
 }
@@ -73,8 +98,15 @@ function nearField(c: FindingContext): Finding | null {
   if (!widthUm || !distanceMm || nm === null) return null;
   const number = widthUm.value ** 2 / (nm * distanceMm.value);
   return finding(c, {
-    check: 'distance', word: number > 0.05 ? 'stop' : number > 0.02 ? 'look' : 'clear', relative: nearFieldRelative(widthUm.value, nm, distanceMm.value),
-    seen: number > 0.02 ? 'The slit plate is near for this slit width.' : 'The slit plate is far enough away for this slit width.',
-    size: 'The far-field formula is off by {size}.', done: 'The difference is in the budget.', remedy: number > 0.02 ? 'Use a longer distance or narrower slits.' : 'Nothing to do.',
+    check: 'distance',
+    word: number > 0.05 ? 'stop' : number > 0.02 ? 'look' : 'clear',
+    relative: nearFieldRelative(widthUm.value, nm, distanceMm.value),
+    seen:
+      number > 0.02
+        ? 'The slit plate is near for this slit width.'
+        : 'The slit plate is far enough away for this slit width.',
+    size: 'The far-field formula is off by {size}.',
+    done: 'The difference is in the budget.',
+    remedy: number > 0.02 ? 'Use a longer distance or narrower slits.' : 'Nothing to do.',
   });
 }

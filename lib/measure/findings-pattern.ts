@@ -20,9 +20,13 @@ function pull(c: FindingContext): Finding {
     largest = Math.max(...points.map((o) => Math.abs(o.pullPx ?? 0))) / c.result.spacingPx;
   }
   return finding(c, {
-    check: 'pull', word: 'clear', relative,
+    check: 'pull',
+    word: 'clear',
+    relative,
     seen: `Bright middles stand up to ${numberText(largest)} fringe away from their orders, pulled by the envelope.`,
-    size: 'A line through them would be off by {size}.', done: 'The fit accounts for it; raw middles and order centres are both given.', remedy: 'Nothing to do.',
+    size: 'A line through them would be off by {size}.',
+    done: 'The fit accounts for it; raw middles and order centres are both given.',
+    remedy: 'Nothing to do.',
   });
 }
 
@@ -30,10 +34,13 @@ function contrast(c: FindingContext): Finding {
   const v = c.result.visibility;
   const low = v < 0.3;
   return finding(c, {
-    check: 'contrast', word: low ? 'look' : 'clear', visibility: c.picture.source.tone === 'srgb' ? 'look' : undefined,
+    check: 'contrast',
+    word: low ? 'look' : 'clear',
+    visibility: c.picture.source.tone === 'srgb' ? 'look' : undefined,
     relative: c.result.uSpacingPx / c.result.spacingPx,
     seen: `Visibility ${v.toFixed(2)}${low ? ', alike in all orders: vibration, a wide source or unequal light on the slits' : ''}.`,
-    size: 'With it the fit is sure to {size}.', done: 'Visibility was fitted; it does not move the spacing.',
+    size: 'With it the fit is sure to {size}.',
+    done: 'Visibility was fitted; it does not move the spacing.',
     remedy: low ? 'Shorten the exposure, fix the mount, narrow the source slit.' : 'Nothing to do.',
   });
 }
@@ -49,7 +56,9 @@ function background(c: FindingContext): Finding {
   const much = level > 0.25 || bend > 0.12;
   const moved = terms > 2 ? c.result.spacingPx / c.measured.plainSpacingPx - 1 : 0;
   return finding(c, {
-    check: 'background', word: much ? 'look' : 'clear', relative: moved,
+    check: 'background',
+    word: much ? 'look' : 'clear',
+    relative: moved,
     seen: `Stray light of ${percent(Math.max(0, level))} of the peak${bend > 0.02 ? `, changing by ${percent(bend)} across the region` : ''}.`,
     size: terms > 2 ? 'Letting it bend moved the wavelength by {size}.' : 'Effect after the fit {size}.',
     done: terms > 2 ? `A background with ${terms} terms was fitted.` : 'A level and a slope were fitted.',
@@ -62,10 +71,18 @@ function misfit(c: FindingContext): Finding {
   const share = c.measured.evidence.misfit;
   const word = share > 0.12 ? 'stop' : share > 0.025 ? 'look' : 'clear';
   return finding(c, {
-    check: 'misfit', word, width: share > 0.025 ? 'stop' : undefined, relative: c.result.uSpacingPx / c.result.spacingPx,
-    seen: `Data and fit differ by ${percent(share)} of the fringes beyond the noise.`, size: 'The uncertainty that follows is {size}.',
-    done: word === 'clear' ? 'Nothing had to be done.' : 'The misfit along the profile is in the uncertainty.',
-    remedy: word === 'clear' ? 'Nothing to do.' : 'Look at the misfit curve; choose a cleaner region or take the frame again.',
+    check: 'misfit',
+    word,
+    width: share > 0.025 ? 'stop' : undefined,
+    relative: c.result.uSpacingPx / c.result.spacingPx,
+    seen: `Data and fit differ by ${percent(share)} of the fringes beyond the noise.`,
+    size: 'The uncertainty that follows is {size}.',
+    done:
+      word === 'clear' ? 'Nothing had to be done.' : 'The misfit along the profile is in the uncertainty.',
+    remedy:
+      word === 'clear'
+        ? 'Nothing to do.'
+        : 'Look at the misfit curve; choose a cleaner region or take the frame again.',
   });
 }
 
@@ -76,9 +93,13 @@ function missing(c: FindingContext): Finding | null {
   const reach = Math.max(0, ...c.result.orders.map((o) => Math.abs(o.m)));
   if (near < 2 || Math.abs(zero - near) > 0.25 || reach < near) return null;
   return finding(c, {
-    check: 'missing-order', word: 'clear', relative: 1 / near,
+    check: 'missing-order',
+    word: 'clear',
+    relative: 1 / near,
     seen: `Order ${near} is dark by design: the envelope is zero at order ${zero.toFixed(2)}.`,
-    size: 'Counting its neighbours as neighbours would cost {size}.', done: 'Orders are counted by phase, so the count holds across it.', remedy: 'Nothing to do.',
+    size: 'Counting its neighbours as neighbours would cost {size}.',
+    done: 'Orders are counted by phase, so the count holds across it.',
+    remedy: 'Nothing to do.',
   });
 }
 
@@ -90,13 +111,19 @@ function plate(c: FindingContext): Finding | null {
   const fitted = separationUm.value / zero;
   const off = fitted / widthUm.value - 1;
   const { fit } = c.measured.place.band;
-  const u = Math.sqrt(Math.max(0, c.measured.spread.covariance[2 * fit.layout.size + 2])) / fit.result.parameters[2];
+  const u =
+    Math.sqrt(Math.max(0, c.measured.spread.covariance[2 * fit.layout.size + 2])) / fit.result.parameters[2];
   const differs = Math.abs(off) > 0.03 && Math.abs(off) > 3 * Math.hypot(u, (widthUm.u ?? 0) / widthUm.value);
   const trusted = fit.layout.tone < 0 && c.result.clippedShare < 0.1;
   return finding(c, {
-    check: 'plate', word: differs && trusted && Math.abs(off) > 0.15 ? 'look' : 'clear', width: differs ? 'look' : undefined, relative: 0,
-    seen: `Fitted slit width ${numberText(fitted)} µm, the plate says ${numberText(widthUm.value)} µm.`, size: 'The width was free in the fit: effect {size}.',
-    done: 'The fit does not use the stated width.', remedy: differs ? 'Check that the right plate is mounted.' : 'Nothing to do.',
+    check: 'plate',
+    word: differs && trusted && Math.abs(off) > 0.15 ? 'look' : 'clear',
+    width: differs ? 'look' : undefined,
+    relative: 0,
+    seen: `Fitted slit width ${numberText(fitted)} µm, the plate says ${numberText(widthUm.value)} µm.`,
+    size: 'The width was free in the fit: effect {size}.',
+    done: 'The fit does not use the stated width.',
+    remedy: differs ? 'Check that the right plate is mounted.' : 'Nothing to do.',
   });
 }
 
@@ -106,11 +133,22 @@ function bandwidth(c: FindingContext): Finding | null {
   if (fit.layout.fade < 0) return null;
   const share = (fit.result.parameters[fit.layout.fade] * Math.sqrt(2 * Math.LN2)) / Math.PI;
   const nm = c.result.wavelengthNm === null ? null : share * c.result.wavelengthNm;
-  const line = nm === null ? `${percent(share)} of the wavelength` : nm < 5 ? 'below 5 nm' : `about ${numberText(nm)} nm`;
+  const line =
+    nm === null
+      ? `${percent(share)} of the wavelength`
+      : nm < 5
+        ? 'below 5 nm'
+        : `about ${numberText(nm)} nm`;
   const moved = c.result.spacingPx / c.measured.plainSpacingPx - 1;
   return finding(c, {
-    check: 'bandwidth', word: nm !== null && nm < 5 ? 'clear' : 'look', visibility: 'look', relative: moved,
-    seen: `Contrast fades outward: the line is ${line} wide.`, size: 'Allowing for it moved the wavelength by {size}.',
-    done: 'Visibility falling with order was fitted.', remedy: 'The result is the mean wavelength as this camera sees it; use a narrower line for a sharper one.',
+    check: 'bandwidth',
+    word: nm !== null && nm < 5 ? 'clear' : 'look',
+    visibility: 'look',
+    relative: moved,
+    seen: `Contrast fades outward: the line is ${line} wide.`,
+    size: 'Allowing for it moved the wavelength by {size}.',
+    done: 'Visibility falling with order was fitted.',
+    remedy:
+      'The result is the mean wavelength as this camera sees it; use a narrower line for a sharper one.',
   });
 }

@@ -42,7 +42,16 @@ export function weigh(place: PlaceFit): Evidence {
   let n = 0;
   for (let k = 0; k < profile.size; k++) {
     if (!Number.isFinite(profile.sigma[k])) continue;
-    if (!model.evaluate(p, toModel(fit, profile.u[k]), profile.node[k] / fit.unitPx, profile.nodeWeight[k], false)) continue;
+    if (
+      !model.evaluate(
+        p,
+        toModel(fit, profile.u[k]),
+        profile.node[k] / fit.unitPx,
+        profile.nodeWeight[k],
+        false,
+      )
+    )
+      continue;
     const w = (fit.unitLight / profile.sigma[k]) ** 2;
     const r = profile.light[k] / fit.unitLight - model.light;
     const e = 0.5 * p[5] * envelopeAt(place, profile.u[k]);
@@ -145,7 +154,10 @@ function showsLobes(place: PlaceFit, evidence: Evidence): boolean {
 function oneSlitSuffices(oneSlit: number, fit: ProfileFit, evidence: Evidence): boolean {
   const two = fit.result.chiSquare;
   const scale = Math.max(1, two / Math.max(1, fit.result.dof));
-  return oneSlit < 1.15 * two + 10 && ((oneSlit - two) / scale < LEAST_GAIN || evidence.visibility < LEAST_VISIBILITY);
+  return (
+    oneSlit < 1.15 * two + 10 &&
+    ((oneSlit - two) / scale < LEAST_GAIN || evidence.visibility < LEAST_VISIBILITY)
+  );
 }
 
 /** Throws the refusal that fits, or returns the evidence of a pattern that can be answered. */
@@ -155,36 +167,64 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   const evidence = weigh(place);
   if (!(evidence.swingSigmas > LEAST_SWING_SIGMAS) || spread === null) throw noFringes();
   if (spacing < FINEST_PX) {
-    throw new Refused('TOO_FINE', `The fringes are ${spacing.toFixed(1)} px apart; below ${FINEST_PX} px the camera cannot hold them. Move the camera back or use a finer pixel scale.`);
+    throw new Refused(
+      'TOO_FINE',
+      `The fringes are ${spacing.toFixed(1)} px apart; below ${FINEST_PX} px the camera cannot hold them. Move the camera back or use a finer pixel scale.`,
+    );
   }
   const oneSlit = () =>
-    new Refused('ONE_SLIT', 'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.');
+    new Refused(
+      'ONE_SLIT',
+      'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.',
+    );
   if (evidence.harmonic > MOST_HARMONIC) {
-    throw new Refused('MANY_SLITS', 'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.');
+    throw new Refused(
+      'MANY_SLITS',
+      'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.',
+    );
   }
   if (fit.result.parameters[2] > MOST_RATIO) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
   const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
-  if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence)) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
+  if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence))
+    throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const bow = Math.abs(place.tilt.bowPx) * 1.5;
   const barrel = Math.abs(place.tilt.barrel);
-  if ((bow > MOST_BOW * spacing && bow > 6 * place.tilt.uBowPx) || (barrel > MOST_BARREL && barrel > 4 * place.tilt.uBarrel)) {
-    throw new Refused('RINGS', 'The fringes are bent like rings, so this is not the pattern of two slits. Look for a second reflection, a window or dust in the beam.');
+  if (
+    (bow > MOST_BOW * spacing && bow > 6 * place.tilt.uBowPx) ||
+    (barrel > MOST_BARREL && barrel > 4 * place.tilt.uBarrel)
+  ) {
+    throw new Refused(
+      'RINGS',
+      'The fringes are bent like rings, so this is not the pattern of two slits. Look for a second reflection, a window or dust in the beam.',
+    );
   }
   if (evidence.fringes < FEWEST_FRINGES) {
-    throw new Refused('TOO_FEW_FRINGES', `Only ${evidence.fringes} bright ${evidence.fringes === 1 ? 'fringe is' : 'fringes are'} in the frame; at least ${FEWEST_FRINGES} are needed. Move the camera nearer or choose a wider region.`);
+    throw new Refused(
+      'TOO_FEW_FRINGES',
+      `Only ${evidence.fringes} bright ${evidence.fringes === 1 ? 'fringe is' : 'fringes are'} in the frame; at least ${FEWEST_FRINGES} are needed. Move the camera nearer or choose a wider region.`,
+    );
   }
   if (!(evidence.misfit < MOST_MISFIT)) throw noFringes();
   const u = Math.sqrt(spread.covariance[0]) / fit.result.parameters[0];
   if (!(u < MOST_RELATIVE_U)) {
-    throw new Refused('PATTERN_CUT', 'The part of the pattern in this frame does not fix the spacing. Take a frame with more of the pattern in it.');
+    throw new Refused(
+      'PATTERN_CUT',
+      'The part of the pattern in this frame does not fix the spacing. Take a frame with more of the pattern in it.',
+    );
   }
   if (fit.result.status !== 'converged' && fit.result.status !== 'stalled') {
-    throw new Refused('NOT_CONVERGED', 'The fit did not settle on one pattern. Choose the region by hand or take the frame again.');
+    throw new Refused(
+      'NOT_CONVERGED',
+      'The fit did not settle on one pattern. Choose the region by hand or take the frame again.',
+    );
   }
   return evidence;
 }
 
 export function noFringes(): Refused {
-  return new Refused('NO_FRINGES', 'No two-slit fringes were found in this frame. Check that the beam meets both slits and that the camera sees the pattern, in focus and still.');
+  return new Refused(
+    'NO_FRINGES',
+    'No two-slit fringes were found in this frame. Check that the beam meets both slits and that the camera sees the pattern, in focus and still.',
+  );
 }

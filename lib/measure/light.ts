@@ -17,9 +17,15 @@ export function refuseByLight(picture: Picture): void {
   let burnt = 0;
   for (let i = 0; i < picture.samples.length; i += 3) if (picture.samples[i] >= picture.clipCode) burnt++;
   if (burnt / (picture.samples.length / 3) > BURNT_SHARE) {
-    throw new Refused('BURNT_OUT', `${Math.round((300 * burnt) / picture.samples.length)} % of the picture is at the white level, so the fringes are burnt out. Reduce the exposure until the brightest fringe stands at 50 to 80 %.`);
+    throw new Refused(
+      'BURNT_OUT',
+      `${Math.round((300 * burnt) / picture.samples.length)} % of the picture is at the white level, so the fringes are burnt out. Reduce the exposure until the brightest fringe stands at 50 to 80 %.`,
+    );
   }
   if (high - low < BLACK_SHARE && high < DARK_SHARE) {
-    throw new Refused('TOO_DARK', `The brightest part of the picture is ${(100 * high).toFixed(1)} % of full scale and nothing stands out. Check the beam, open the shutter or expose longer.`);
+    throw new Refused(
+      'TOO_DARK',
+      `The brightest part of the picture is ${(100 * high).toFixed(1)} % of full scale and nothing stands out. Check the beam, open the shutter or expose longer.`,
+    );
   }
 }

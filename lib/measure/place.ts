@@ -3,7 +3,14 @@ import { fitBands, fitTilt, type BandFit, type LightLimits, type TiltFit } from 
 import { spreadOf } from '@/lib/fit/spread';
 import type { StartValues } from '@/lib/fit/start-values';
 import { leanOfBands } from '@/lib/fit/lean';
-import { coordinatesIn, pointAlong, toDegrees, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
+import {
+  coordinatesIn,
+  pointAlong,
+  toDegrees,
+  toRadians,
+  wrapAngleDeg,
+  type Rectangle,
+} from '@/lib/imaging/geometry';
 import type { Picture } from '@/lib/imaging/picture';
 import { straighten, type BandStack, type StraightenOptions } from '@/lib/imaging/straighten';
 
@@ -31,7 +38,12 @@ export function gridFor(rect: Rectangle, spacingPx: number, quick: boolean): Str
   const lanes = spacingPx < 7 ? 4 : spacingPx < 14 ? 2 : 1;
   const merge = Math.max(1, Math.floor((spacingPx / POINTS_PER_FRINGE / pitch) * lanes));
   const rowsPerBand = rect.heightPx / bands;
-  const rowStep = quick ? Math.max(1, Math.min(Math.floor(rowsPerBand / 2), Math.floor((rect.lengthPx * rect.heightPx) / QUICK_PIXELS))) : 1;
+  const rowStep = quick
+    ? Math.max(
+        1,
+        Math.min(Math.floor(rowsPerBand / 2), Math.floor((rect.lengthPx * rect.heightPx) / QUICK_PIXELS)),
+      )
+    : 1;
   return { bands, lanes, merge, rowStep };
 }
 
@@ -59,7 +71,12 @@ export function lookAtPlace(ask: PlaceAsk): PlaceFit | null {
   const { picture, spacingPx, prior, leaveOut, zeroShift } = ask;
   const rect = leanIn(picture, ask.rect, spacingPx);
   const stack = straighten(picture, rect, gridFor(rect, spacingPx, true));
-  const band = fitBands(stack, spacingPx, prior, lightLimits(picture), leaveOut, { from: null, asItIs: false, rounds: 2, zeroShift });
+  const band = fitBands(stack, spacingPx, prior, lightLimits(picture), leaveOut, {
+    from: null,
+    asItIs: false,
+    rounds: 2,
+    zeroShift,
+  });
   if (band === null) return null;
   return { rect, stack, band, tilt: fitTilt(band) };
 }
@@ -80,7 +97,12 @@ export function growPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit {
     if (rect.lengthPx < 1.06 * look.rect.lengthPx) continue;
     const from = startFrom(look, rect);
     const stack = straighten(ask.picture, rect, gridFor(rect, from.spacing, true));
-    const band = fitBands(stack, from.spacing, ask.prior, lightLimits(ask.picture), ask.leaveOut, { from, asItIs: false, rounds: 2, zeroShift: ask.zeroShift });
+    const band = fitBands(stack, from.spacing, ask.prior, lightLimits(ask.picture), ask.leaveOut, {
+      from,
+      asItIs: false,
+      rounds: 2,
+      zeroShift: ask.zeroShift,
+    });
     if (band === null) continue;
     const longer: PlaceFit = { rect, stack, band, tilt: fitTilt(band) };
     const spacing = band.fit.result.parameters[0] * band.fit.unitPx;
@@ -120,14 +142,24 @@ export function fitPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit | null {
   for (let turn = 0; turn < STRAIGHTENINGS; turn++) {
     const from = startFrom(before, here);
     const stack = straighten(picture, here, gridFor(here, from.spacing, false));
-    const band = fitBands(stack, from.spacing, prior, limits, leaveOut, { from, asItIs: true, rounds: turn === 0 ? 2 : 1, zeroShift });
+    const band = fitBands(stack, from.spacing, prior, limits, leaveOut, {
+      from,
+      asItIs: true,
+      rounds: turn === 0 ? 2 : 1,
+      zeroShift,
+    });
     if (band === null) return last;
     const tilt = fitTilt(band);
     last = { rect: here, stack, band, tilt };
     before = last;
     const lean = toDegrees(Math.atan(tilt.slope));
     const known = toDegrees(tilt.uSlope);
-    if (!Number.isFinite(lean) || Math.abs(lean) < Math.max(TILT_STEP_DEG, 0.3 * known) || Math.abs(lean) > 20) break;
+    if (
+      !Number.isFinite(lean) ||
+      Math.abs(lean) < Math.max(TILT_STEP_DEG, 0.3 * known) ||
+      Math.abs(lean) > 20
+    )
+      break;
     here = { ...here, angleDeg: turned(here.angleDeg, tilt) };
   }
   return last;
@@ -145,7 +177,17 @@ function startFrom(fitted: PlaceFit, rect: Rectangle): StartValues {
   const spacing = p[0] * fit.unitPx;
   const zero = pointAlong(fitted.rect, fit.originPx + p[1] * fit.unitPx);
   const there = coordinatesIn(rect, zero.xPx, zero.yPx).u;
-  return { spacing, zero: there, ratio: p[2], middle: there + p[3] * spacing, a: p[4] * fit.unitLight, b: p[5] * fit.unitLight, background: p[6] * fit.unitLight, slope: p[7] * fit.unitLight, rest: 0 };
+  return {
+    spacing,
+    zero: there,
+    ratio: p[2],
+    middle: there + p[3] * spacing,
+    a: p[4] * fit.unitLight,
+    b: p[5] * fit.unitLight,
+    background: p[6] * fit.unitLight,
+    slope: p[7] * fit.unitLight,
+    rest: 0,
+  };
 }
 
 const LEANINGS = 4;
@@ -200,5 +242,11 @@ function cutToFrame(picture: Picture, rect: Rectangle, v0: number, v1: number): 
   const high = Math.min(v1, Math.max(...corners.map((k) => k.v)));
   if (!(to > from) || !(high > low)) return rect;
   const centre = pointAlong(rect, (from + to) / 2, (low + high) / 2);
-  return { cxPx: centre.xPx, cyPx: centre.yPx, lengthPx: to - from, heightPx: high - low, angleDeg: rect.angleDeg };
+  return {
+    cxPx: centre.xPx,
+    cyPx: centre.yPx,
+    lengthPx: to - from,
+    heightPx: high - low,
+    angleDeg: rect.angleDeg,
+  };
 }

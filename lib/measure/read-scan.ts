@@ -17,15 +17,27 @@ export function readScan(text: string): Scan {
   text.split(/\r?\n/).forEach((line, index) => {
     const trimmed = line.trim();
     if (trimmed === '' || trimmed.startsWith('#')) return;
-    const cells = trimmed.split(/[;,\t ]+/).slice(0, 2).map(Number);
+    const cells = trimmed
+      .split(/[;,\t ]+/)
+      .slice(0, 2)
+      .map(Number);
     if (cells.length === 2 && cells.every(Number.isFinite)) {
       points.push([cells[0], cells[1]]);
       return;
     }
-    if (points.length > 0 || ++headings > 5) throw new Refused('BROKEN_FILE', `Line ${index + 1} does not hold two numbers (position in mm, intensity). Correct it and send the scan again.`);
+    if (points.length > 0 || ++headings > 5)
+      throw new Refused(
+        'BROKEN_FILE',
+        `Line ${index + 1} does not hold two numbers (position in mm, intensity). Correct it and send the scan again.`,
+      );
   });
-  if (points.length < FEWEST_POINTS) throw new Refused('TOO_SMALL', `The scan has ${points.length} points; at least ${FEWEST_POINTS} are needed.`);
-  if (points.length > MOST_POINTS) throw new Refused('TOO_LARGE', `The scan has more than ${MOST_POINTS} points. Thin it out.`);
+  if (points.length < FEWEST_POINTS)
+    throw new Refused(
+      'TOO_SMALL',
+      `The scan has ${points.length} points; at least ${FEWEST_POINTS} are needed.`,
+    );
+  if (points.length > MOST_POINTS)
+    throw new Refused('TOO_LARGE', `The scan has more than ${MOST_POINTS} points. Thin it out.`);
   points.sort((a, b) => a[0] - b[0]);
   const x: number[] = [];
   const sum: number[] = [];
@@ -41,5 +53,9 @@ export function readScan(text: string): Scan {
       n.push(1);
     }
   }
-  return { positionMm: Float64Array.from(x), intensity: Float64Array.from(sum, (s, i) => s / n[i]), repeats: Float64Array.from(n) };
+  return {
+    positionMm: Float64Array.from(x),
+    intensity: Float64Array.from(sum, (s, i) => s / n[i]),
+    repeats: Float64Array.from(n),
+  };
 }

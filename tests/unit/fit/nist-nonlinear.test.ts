@@ -55,8 +55,17 @@ const gauss: Model = (b, x) =>
     .add(bell(b[2], b[3], b[4], x))
     .add(bell(b[5], b[6], b[7], x));
 const rational: Model = (b, x) => {
-  const top = b[0].add(b[1].mul(x)).add(b[2].mul(x * x)).add(b[3].mul(x ** 3));
-  return top.div(b[4].mul(x).add(1).add(b[5].mul(x * x)).add(b[6].mul(x ** 3)));
+  const top = b[0]
+    .add(b[1].mul(x))
+    .add(b[2].mul(x * x))
+    .add(b[3].mul(x ** 3));
+  return top.div(
+    b[4]
+      .mul(x)
+      .add(1)
+      .add(b[5].mul(x * x))
+      .add(b[6].mul(x ** 3)),
+  );
 };
 const saturating: Model = (b, x) => b[0].mul(b[1].mul(-x).exp().mul(-1).add(1));
 const MODELS: Record<string, Model> = {
@@ -78,8 +87,18 @@ const MODELS: Record<string, Model> = {
       .add(b[7].mul(turn(b[6]).cos()))
       .add(b[8].mul(turn(b[6]).sin()));
   },
-  Lanczos3: (b, x) => b[0].mul(b[1].mul(-x).exp()).add(b[2].mul(b[3].mul(-x).exp())).add(b[4].mul(b[5].mul(-x).exp())),
-  MGH09: (b, x) => b[0].mul(b[1].mul(x).add(x * x)).div(b[2].mul(x).add(x * x).add(b[3])),
+  Lanczos3: (b, x) =>
+    b[0]
+      .mul(b[1].mul(-x).exp())
+      .add(b[2].mul(b[3].mul(-x).exp()))
+      .add(b[4].mul(b[5].mul(-x).exp())),
+  MGH09: (b, x) =>
+    b[0].mul(b[1].mul(x).add(x * x)).div(
+      b[2]
+        .mul(x)
+        .add(x * x)
+        .add(b[3]),
+    ),
   Eckerle4: (b, x) => {
     const t = b[2].mul(-1).add(x).div(b[1]);
     return b[0].div(b[1]).mul(t.mul(t).mul(-0.5).exp());
@@ -105,7 +124,14 @@ function problemOf(set: CertifiedSet): LeastSquaresProblem {
   return {
     residuals: set.y.length,
     evaluate(p, r, jacobian) {
-      const b = Array.from(p, (v, k) => new Dual(v, Array.from({ length: n }, (_, i) => (i === k ? 1 : 0))));
+      const b = Array.from(
+        p,
+        (v, k) =>
+          new Dual(
+            v,
+            Array.from({ length: n }, (_, i) => (i === k ? 1 : 0)),
+          ),
+      );
       for (let i = 0; i < set.y.length; i++) {
         const f = model(b, set.x[i]);
         if (!Number.isFinite(f.v) || !f.d.every(Number.isFinite)) return false;
@@ -138,7 +164,9 @@ describe('NIST nonlinear regression sets', () => {
         }
         const tolerance = 10 ** -digitsFor(set.name);
         expect(fit.dof).toBe(set.degreesOfFreedom);
-        expect(Math.abs(fit.chiSquare / set.residualSumOfSquares - 1)).toBeLessThan(set.name === 'Lanczos3' ? 1e-5 : 1e-8);
+        expect(Math.abs(fit.chiSquare / set.residualSumOfSquares - 1)).toBeLessThan(
+          set.name === 'Lanczos3' ? 1e-5 : 1e-8,
+        );
         const covariance = fit.covariance;
         if (covariance === null) throw new Error('A converged fit has a covariance.');
         set.parameters.forEach((q, k) => {

@@ -3,7 +3,9 @@ import { layoutOf, ModelPoint, placeOfOrder, orderAt } from '@/lib/fit/two-slit-
 const FULL = layoutOf({ background: 4, curve: true, chirp: true, tone: true, fade: true });
 const FIXED = { curve: 0, centre: 0.3, half: 6 };
 /** spacing, zero, ratio, middle, A, B, four backgrounds, curve, chirp, tone, fade */
-const VALUES = Float64Array.from([1.02, 0.1, 0.21, 0.15, 0.9, 0.8, 0.06, 0.01, -0.004, 0.003, 0.01, 0.002, 0.93, 0.05]);
+const VALUES = Float64Array.from([
+  1.02, 0.1, 0.21, 0.15, 0.9, 0.8, 0.06, 0.01, -0.004, 0.003, 0.01, 0.002, 0.93, 0.05,
+]);
 
 /** Light of two slits of width a and separation d at an angle, by the model: m = d sin/lambda, ratio = a/d. */
 function light(m: number, ratio: number, visibility = 1): number {
@@ -42,7 +44,8 @@ describe('two-slit model', () => {
   });
 
   it('places and orders undo each other', () => {
-    for (let m = -5; m <= 5; m += 0.5) expect(orderAt(FULL, FIXED, VALUES, placeOfOrder(FULL, FIXED, VALUES, m))).toBeCloseTo(m, 10);
+    for (let m = -5; m <= 5; m += 0.5)
+      expect(orderAt(FULL, FIXED, VALUES, placeOfOrder(FULL, FIXED, VALUES, m))).toBeCloseTo(m, 10);
   });
 
   // OpenStax University Physics vol. 3, ch. 4, double-slit diffraction, example with a = 2 lambda, d = 6 lambda: I(1) = 0.684 I0.

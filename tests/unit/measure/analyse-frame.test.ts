@@ -60,11 +60,14 @@ describe('simulated truth', () => {
   it('wavelength from scale, separation and distance, in air and in vacuum', async () => {
     const spacingPx = (0.635 * 500) / (250 * 0.0060692);
     const r = await measure(await tiff16(frame({ widthPx: 1600, zeroX: 800, spacingPx })), SETUP);
-    if (r.wavelengthNm === null || r.uWavelengthNm === null || r.wavelengthVacuumNm === null) throw new Error('no wavelength');
+    if (r.wavelengthNm === null || r.uWavelengthNm === null || r.wavelengthVacuumNm === null)
+      throw new Error('no wavelength');
     // The frame has no wide-angle curvature; at these angles (order 6: 0.015 rad) that is 6e-5 of the wavelength.
     expect(Math.abs(r.wavelengthNm - 635)).toBeLessThan(FAR * r.uWavelengthNm + 0.04);
     expect(r.wavelengthVacuumNm - r.wavelengthNm).toBeGreaterThan(0.16);
-    expect(r.budget.map((b) => b.key)).toEqual(expect.arrayContaining(['separation', 'distance', 'scale', 'fit']));
+    expect(r.budget.map((b) => b.key)).toEqual(
+      expect.arrayContaining(['separation', 'distance', 'scale', 'fit']),
+    );
   });
 });
 
@@ -86,7 +89,9 @@ describe('changes that must not matter', () => {
     expect(Math.abs(a.tiltDeg + b.tiltDeg)).toBeLessThan(0.01);
     // The zero order's line, mirrored: distance along a's normal from a's zero order.
     const t = (a.tiltDeg * Math.PI) / 180;
-    const along = (picture.widthPx - b.zeroOrder.xPx - a.zeroOrder.xPx) * Math.cos(t) + (b.zeroOrder.yPx - a.zeroOrder.yPx) * Math.sin(t);
+    const along =
+      (picture.widthPx - b.zeroOrder.xPx - a.zeroOrder.xPx) * Math.cos(t) +
+      (b.zeroOrder.yPx - a.zeroOrder.yPx) * Math.sin(t);
     expect(Math.abs(along)).toBeLessThan(0.02);
   });
   it('quarter turn: same spacing, tilt a quarter turn on', async () => {

@@ -9,9 +9,14 @@ const ROOT = path.resolve(__dirname, '../../..');
 
 function run(args: string[]): Promise<{ code: number; out: string; err: string }> {
   return new Promise((resolve) => {
-    execFile(process.execPath, [path.join(ROOT, 'scripts', 'analyse.mjs'), ...args], { cwd: ROOT }, (error, out, err) => {
-      resolve({ code: error ? Number(error.code ?? 1) : 0, out, err });
-    });
+    execFile(
+      process.execPath,
+      [path.join(ROOT, 'scripts', 'analyse.mjs'), ...args],
+      { cwd: ROOT },
+      (error, out, err) => {
+        resolve({ code: error ? Number(error.code ?? 1) : 0, out, err });
+      },
+    );
   });
 }
 
@@ -28,16 +33,43 @@ describe('npm run analyse', () => {
 
   it('answers every frame on a line of its own', async () => {
     const list = path.join(folder, 'list.jsonl');
-    await writeFile(list, `${JSON.stringify({ file: good, scaleUmPerPx: 24, separationUm: 250, distanceMm: 500, uScaleUmPerPx: 0.001, uSeparationUm: 0.1, uDistanceMm: 0.2 })}\n`);
-    const { code, out } = await run([good, path.join(folder, 'not.tiff'), path.join(folder, 'missing.tiff'), '--list', list]);
+    await writeFile(
+      list,
+      `${JSON.stringify({ file: good, scaleUmPerPx: 24, separationUm: 250, distanceMm: 500, uScaleUmPerPx: 0.001, uSeparationUm: 0.1, uDistanceMm: 0.2 })}\n`,
+    );
+    const { code, out } = await run([
+      good,
+      path.join(folder, 'not.tiff'),
+      path.join(folder, 'missing.tiff'),
+      '--list',
+      list,
+    ]);
     expect(code).toBe(0);
-    const lines = out.trimEnd().split('\n').map((l) => JSON.parse(l) as Record<string, unknown>);
+    const lines = out
+      .trimEnd()
+      .split('\n')
+      .map((l) => JSON.parse(l) as Record<string, unknown>);
     expect(lines.map((l) => l.ok)).toEqual([true, false, false, true]);
-    expect(Object.keys(lines[0]).slice(0, 13)).toEqual(['file', 'ok', 'code', 'message', 'spacingPx', 'uSpacingPx', 'dofSpacing', 'tiltDeg', 'visibility', 'zeroOrder', 'orders', 'region', 'medium']);
+    expect(Object.keys(lines[0]).slice(0, 13)).toEqual([
+      'file',
+      'ok',
+      'code',
+      'message',
+      'spacingPx',
+      'uSpacingPx',
+      'dofSpacing',
+      'tiltDeg',
+      'visibility',
+      'zeroOrder',
+      'orders',
+      'region',
+      'medium',
+    ]);
     expect(lines[0]).not.toHaveProperty('wavelengthNm');
     expect(lines[1]).toMatchObject({ code: 'NOT_A_PICTURE' });
     expect(lines[2]).toMatchObject({ code: 'NO_SUCH_FILE' });
-    for (const key of ['wavelengthNm', 'wavelengthVacuumNm', 'uWavelengthNm', 'expandedNm', 'k']) expect(typeof lines[3][key]).toBe('number');
+    for (const key of ['wavelengthNm', 'wavelengthVacuumNm', 'uWavelengthNm', 'expandedNm', 'k'])
+      expect(typeof lines[3][key]).toBe('number');
     expect(Object.keys(lines[3].ms as object)).toEqual(['decode', 'find', 'profile', 'fit', 'total']);
     const orders = lines[0].orders as Record<string, unknown>[];
     expect(Object.keys(orders[0])).toEqual(['m', 'kind', 'xPx', 'yPx', 'uPx', 'pullPx']);
@@ -45,7 +77,13 @@ describe('npm run analyse', () => {
     expect(out).not.toMatch(/NaN|Infinity/);
   });
 
-  it.each([[[]], [['--bogus', 'x']], [['a.png', '--scale-um-per-px', 'zero']], [['a.png', '--linear', '--srgb']], [['--list', '/nowhere.jsonl']]])('wrong usage %j ends with 2 and says how', async (args) => {
+  it.each([
+    [[]],
+    [['--bogus', 'x']],
+    [['a.png', '--scale-um-per-px', 'zero']],
+    [['a.png', '--linear', '--srgb']],
+    [['--list', '/nowhere.jsonl']],
+  ])('wrong usage %j ends with 2 and says how', async (args) => {
     const { code, out, err } = await run(args);
     expect(code).toBe(2);
     expect(out).toBe('');

@@ -8,7 +8,8 @@ const text = (s: string) => Uint8Array.from(s, (c) => c.charCodeAt(0));
 const rgb = (width: number, height: number, at: (x: number, y: number) => number[]) => {
   const channels = at(0, 0).length as 1 | 3 | 4;
   const data = new Uint8Array(width * height * channels);
-  for (let y = 0; y < height; y++) for (let x = 0; x < width; x++) data.set(at(x, y), (y * width + x) * channels);
+  for (let y = 0; y < height; y++)
+    for (let x = 0; x < width; x++) data.set(at(x, y), (y * width + x) * channels);
   return sharp(data, { raw: { width, height, channels } });
 };
 const stripes = (x: number) => [Math.round(120 + 100 * Math.cos(x / 4)), 20, 10];
@@ -31,7 +32,14 @@ function tiffWith(format: number, bits: number, photometric: number): Uint8Array
   const view = new DataView(b.buffer);
   b.set([0x49, 0x49, 0x2a, 0]);
   view.setUint32(4, 8, true);
-  const entries = [[256, 100], [257, 60], [258, bits], [262, photometric], [277, 1], [339, format]];
+  const entries = [
+    [256, 100],
+    [257, 60],
+    [258, bits],
+    [262, photometric],
+    [277, 1],
+    [339, format],
+  ];
   view.setUint16(8, entries.length, true);
   entries.forEach(([tag, value], i) => {
     view.setUint16(10 + 12 * i, tag, true);
@@ -46,18 +54,53 @@ const FILES: [string, RefusalCode[], () => Promise<Uint8Array>][] = [
   ['an empty file', ['NOT_A_PICTURE'], async () => new Uint8Array(0)],
   ['a text file', ['NOT_A_PICTURE'], async () => text('position, light\n1, 2\n')],
   ['a HEIC photo', ['HEIC'], async () => text('\0\0\0\x18ftypheic\0\0\0\0mif1heic')],
-  ['a GIF', ['PALETTE'], async () => sharp(await rgb(80, 60, stripes).png().toBuffer()).gif().toBuffer()],
-  ['a PNG with a palette', ['PALETTE'], async () => rgb(160, 60, stripes).png({ palette: true, colours: 16 }).toBuffer()],
+  [
+    'a GIF',
+    ['PALETTE'],
+    async () =>
+      sharp(await rgb(80, 60, stripes).png().toBuffer())
+        .gif()
+        .toBuffer(),
+  ],
+  [
+    'a PNG with a palette',
+    ['PALETTE'],
+    async () => rgb(160, 60, stripes).png({ palette: true, colours: 16 }).toBuffer(),
+  ],
   ['a CMYK JPEG', ['CMYK'], async () => rgb(160, 60, stripes).toColourspace('cmyk').jpeg().toBuffer()],
-  ['a PNG cut short', ['TRUNCATED_FILE'], async () => (await rgb(160, 60, stripes).png({ compressionLevel: 0 }).toBuffer()).subarray(0, 9000)],
-  ['a JPEG cut short', ['TRUNCATED_FILE', 'BROKEN_FILE'], async () => (await rgb(400, 300, stripes).jpeg({ quality: 95 }).toBuffer()).subarray(0, 3000)],
-  ['a TIFF cut short', ['TRUNCATED_FILE', 'BROKEN_FILE'], async () => (await tiff16(frame({}))).subarray(0, 20000)],
-  ['noise behind a JPEG head', ['BROKEN_FILE', 'TRUNCATED_FILE'], async () => Uint8Array.from({ length: 4000 }, (_, i) => (i < 3 ? [0xff, 0xd8, 0xff][i] : (i * 7919) & 255))],
+  [
+    'a PNG cut short',
+    ['TRUNCATED_FILE'],
+    async () => (await rgb(160, 60, stripes).png({ compressionLevel: 0 }).toBuffer()).subarray(0, 9000),
+  ],
+  [
+    'a JPEG cut short',
+    ['TRUNCATED_FILE', 'BROKEN_FILE'],
+    async () => (await rgb(400, 300, stripes).jpeg({ quality: 95 }).toBuffer()).subarray(0, 3000),
+  ],
+  [
+    'a TIFF cut short',
+    ['TRUNCATED_FILE', 'BROKEN_FILE'],
+    async () => (await tiff16(frame({}))).subarray(0, 20000),
+  ],
+  [
+    'noise behind a JPEG head',
+    ['BROKEN_FILE', 'TRUNCATED_FILE'],
+    async () =>
+      Uint8Array.from({ length: 4000 }, (_, i) => (i < 3 ? [0xff, 0xd8, 0xff][i] : (i * 7919) & 255)),
+  ],
   ['a picture bomb', ['TOO_MANY_PIXELS'], async () => bomb()],
   ['a thumbnail', ['TOO_SMALL'], async () => rgb(30, 20, stripes).png().toBuffer()],
   ['a floating-point TIFF', ['FLOAT_SAMPLES'], async () => tiffWith(3, 32, 1)],
   ['a TIFF with a palette', ['PALETTE'], async () => tiffWith(1, 8, 3)],
-  ['a drawing in transparency only', ['ALPHA_ONLY'], async () => rgb(160, 60, (x) => [9, 9, 9, stripes(x)[0]]).png().toBuffer()],
+  [
+    'a drawing in transparency only',
+    ['ALPHA_ONLY'],
+    async () =>
+      rgb(160, 60, (x) => [9, 9, 9, stripes(x)[0]])
+        .png()
+        .toBuffer(),
+  ],
 ];
 
 describe('files at fault', () => {
@@ -71,15 +114,34 @@ describe('files at fault', () => {
   });
 });
 
-const noise = (level: number) => mapped({ widthPx: 400, heightPx: 200, samples: new Uint16Array(80000) }, ((r) => () => level + 200 * r())(uniform(3)));
+const noise = (level: number) =>
+  mapped(
+    { widthPx: 400, heightPx: 200, samples: new Uint16Array(80000) },
+    (
+      (r) => () =>
+        level + 200 * r()
+    )(uniform(3)),
+  );
 const FRAMES: [string, RefusalCode[], () => Promise<Uint8Array>][] = [
   ['noise', ['NO_FRINGES'], () => tiff16(noise(20000))],
   ['darkness', ['TOO_DARK', 'NO_FRINGES'], () => tiff16(noise(100))],
   ['a burnt-out frame', ['BURNT_OUT'], () => tiff16(mapped(noise(20000), () => 65535))],
   ['one slit', ['ONE_SLIT'], () => tiff16(frame({ slits: 1, ratio: 1, spacingPx: 70 }))],
   ['five slits', ['MANY_SLITS'], () => tiff16(frame({ slits: 5, ratio: 6 }))],
-  ['a fringe and a half', ['TOO_FEW_FRINGES', 'NO_FRINGES', 'PATTERN_CUT'], () => tiff16(frame({ spacingPx: 420 }))],
-  ['a chessboard', ['NO_FRINGES'], () => rgb(400, 300, (x, y) => [(Math.floor(x / 25) + Math.floor(y / 25)) % 2 ? 210 : 40]).toColourspace('b-w').png().toBuffer()],
+  [
+    'a fringe and a half',
+    ['TOO_FEW_FRINGES', 'NO_FRINGES', 'PATTERN_CUT'],
+    () => tiff16(frame({ spacingPx: 420 })),
+  ],
+  [
+    'a chessboard',
+    ['NO_FRINGES'],
+    () =>
+      rgb(400, 300, (x, y) => [(Math.floor(x / 25) + Math.floor(y / 25)) % 2 ? 210 : 40])
+        .toColourspace('b-w')
+        .png()
+        .toBuffer(),
+  ],
 ];
 
 describe('frames without a two-slit answer', () => {
