@@ -1,4 +1,4 @@
-import { fullScale, countsPerElectron, noiseVariance, type Camera } from './camera';
+import { fullScale, countsPerElectron, grainAreaPx, noiseVariance, type Camera } from './camera';
 import { bandAt, rangeOfU, strayAt, Table, trueSpacingPx, type Scene } from './scene';
 
 /**
@@ -7,7 +7,8 @@ import { bandAt, rangeOfU, strayAt, Table, trueSpacingPx, type Scene } from './s
  *
  * Unknown, as in any fit: spacing, zero order, tilt, envelope width and middle, visibility, a brightness for
  * every row, background constant and slope, and the curvature s/L with the prior the bench states.
- * Grain, compression and dirt are not in it: the bound is what noise alone allows.
+ * Grain enters as what it is on scales beyond its own size: noise of (contrast · signal)² per grain, so that a
+ * pixel of a grain of area a counts with a times that variance. Compression, demosaicing and dirt are not in it.
  */
 export interface Bound {
   uSpacingPx: number;
@@ -89,6 +90,7 @@ function accumulate(scene: Scene, camera: Camera, mean: Table, tables: [number, 
   const sin = Math.sin(angle);
   const counts = countsPerElectron(camera) * camera.peakElectrons;
   const full = fullScale(camera);
+  const grain = camera.speckle.contrast ** 2 * grainAreaPx(camera.speckle.grainPx);
   const total = new Float64Array(COUNT * COUNT);
   const row = new Float64Array(COUNT * COUNT);
   const withBrightness = new Float64Array(COUNT);
@@ -106,7 +108,7 @@ function accumulate(scene: Scene, camera: Camera, mean: Table, tables: [number, 
       const light = mean.at(u);
       const signal = counts * (lit * light + strayAt(scene, c + 0.5));
       if (signal + camera.offsetCounts >= full) continue;
-      const weight = 1 / noiseVariance(camera, signal);
+      const weight = 1 / (noiseVariance(camera, signal) + grain * (counts * lit * light) ** 2);
       for (const [index, t] of tables) g[index] = counts * lit * t.at(u);
       g[TILT] = -g[ZERO] * v;
       g[CONSTANT] = counts;

@@ -123,7 +123,21 @@ function applySpeckle(mean: Float32Array, scene: Scene, camera: Camera, rnd: Ran
   for (let i = 0; i < mean.length; i += 1) mean[i] *= 1 - c + (c * (re[i] * re[i] + im[i] * im[i])) / power;
 }
 
-/** Three running means in each direction: close to a Gaussian of the given width. */
+/**
+ * Area of a grain in px: the sum of the light's correlation over all lags, which for a normal field is the squared
+ * correlation of the field itself. The field is smoothed by two running means, whose joint kernel is a triangle.
+ */
+export function grainAreaPx(grainPx: number): number {
+  const radius = Math.max(0, Math.round(grainPx / 2));
+  const side = 2 * radius + 1;
+  const kernel = Array.from({ length: 2 * side - 1 }, (_, k) => side - Math.abs(k - (side - 1)));
+  const at = (lag: number): number => kernel.reduce((sum, v, k) => sum + v * (kernel[k + lag] ?? 0), 0);
+  let sum = 0;
+  for (let lag = 1 - kernel.length; lag < kernel.length; lag += 1) sum += (at(Math.abs(lag)) / at(0)) ** 2;
+  return sum * sum;
+}
+
+/** Two running means in each direction: a triangle of about the given width. */
 function smooth(data: Float32Array, w: number, h: number, grainPx: number): Float32Array {
   const radius = Math.max(0, Math.round(grainPx / 2));
   if (radius === 0) return data;

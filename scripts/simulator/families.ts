@@ -234,7 +234,7 @@ export const FAMILIES: Family[] = [
       camera: camera(r),
     };
   }),
-  family('speckle', { ...LOOSE, efficiency: null, wrongBeyond: 1e-3 }, (r) => ({
+  family('speckle', { ...LOOSE, efficiency: 2, wrongBeyond: 1e-3 }, (r) => ({
     scene: plain(r),
     camera: camera(r, { speckle: { contrast: r.between(0.1, 0.6), grainPx: r.between(2, 6) } }),
   })),
@@ -264,7 +264,7 @@ export const FAMILIES: Family[] = [
     camera: camera(r, { tone: r.between(0.45, 1.1), offsetCounts: 0 }),
     kind: 'png',
   })),
-  family('phone JPEG', { ...LOOSE, frames: 50, efficiency: null, wrongBeyond: 1e-3 }, (r) => {
+  family('phone JPEG', { ...LOOSE, frames: 50, efficiency: 6, wrongBeyond: 1e-3 }, (r) => {
     const scene: Scene = {
       ...plain(r),
       widthPx: 2000,
