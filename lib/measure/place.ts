@@ -141,7 +141,10 @@ export function fitPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit | null {
   let last: PlaceFit | null = null;
   for (let turn = 0; turn < STRAIGHTENINGS; turn++) {
     const from = startFrom(before, here);
-    const stack = straighten(picture, here, gridFor(here, from.spacing, false));
+    const options = gridFor(here, from.spacing, false);
+    // A large frame is turned square on part of its rows; all of them are read once it stands.
+    const thin = turn === 0 ? thinning(here, options.bands) : 1;
+    const stack = straighten(picture, here, { ...options, rowStep: thin });
     const band = fitBands(stack, from.spacing, prior, limits, leaveOut, {
       from,
       asItIs: true,
@@ -154,15 +157,19 @@ export function fitPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit | null {
     before = last;
     const lean = toDegrees(Math.atan(tilt.slope));
     const known = toDegrees(tilt.uSlope);
-    if (
-      !Number.isFinite(lean) ||
-      Math.abs(lean) < Math.max(TILT_STEP_DEG, 0.3 * known) ||
-      Math.abs(lean) > 20
-    )
+    if (thin === 1 && !(Math.abs(lean) >= Math.max(TILT_STEP_DEG, 0.3 * known) && Math.abs(lean) <= 20))
       break;
     here = { ...here, angleDeg: turned(here.angleDeg, tilt) };
   }
   return last;
+}
+
+const LARGE_PIXELS = 1_500_000;
+
+/** Every how many rows of a large region are enough to turn it square: at least two a band stay. */
+function thinning(rect: Rectangle, bands: number): number {
+  const rows = Math.floor(rect.heightPx / bands / 2);
+  return Math.max(1, Math.min(rows, Math.floor((rect.lengthPx * rect.heightPx) / LARGE_PIXELS)));
 }
 
 function turned(angleDeg: number, tilt: TiltFit): number {
