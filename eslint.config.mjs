@@ -1,7 +1,7 @@
 import nextVitals from 'eslint-config-next/core-web-vitals';
 import nextTypescript from 'eslint-config-next/typescript';
 
-export default [
+const config = [
   {
     ignores: [
       'node_modules/**',
@@ -51,3 +51,5 @@ export default [
   },
   { files: ['scripts/**', 'tests/**', '*.mjs'], rules: { 'no-console': 'off' } },
 ];
+
+export default config;

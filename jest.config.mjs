@@ -42,7 +42,7 @@ function project(name, more = {}) {
   };
 }
 
-export default {
+const config = {
   maxWorkers: Math.max(1, Math.min(2, availableParallelism())),
   projects: [
     project('unit'),
@@ -57,3 +57,5 @@ export default {
     project('e2e', { setupFilesAfterEnv: [] }),
   ],
 };
+
+export default config;
