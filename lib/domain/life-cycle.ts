@@ -44,7 +44,10 @@ export const READING_STEPS = {
 } as const satisfies Record<string, { from: readonly ReadingState[]; to: ReadingState }>;
 
 /** Where each begins its life. */
-export const BORN = { frame: 'copying', reading: 'draft' } as const satisfies { frame: FrameState; reading: ReadingState };
+export const BORN = { frame: 'copying', reading: 'draft' } as const satisfies {
+  frame: FrameState;
+  reading: ReadingState;
+};
 
 export type FrameStep = keyof typeof FRAME_STEPS;
 export type ReadingStep = keyof typeof READING_STEPS;
