@@ -308,6 +308,8 @@ export function tableFor(data: BandData, grid: CommonGrid, fit: ProfileFit): Fit
 
 /** A band whose gain is known to less than 8 % says nothing about the pattern. */
 const LEAST_GAIN_INFORMATION = 150;
+/** A band whose light changes by more than this share from its middle to its end is half in the dark: it is not used. */
+const MOST_ALONG = 0.8;
 /** Relative scatter of a pixel assumed before the noise is known. */
 const OWN_NOISE = 0.1;
 
@@ -378,7 +380,8 @@ export function regressBands(
     if (
       x === null ||
       !(x[2] > 0.01) ||
-      !(informationOf(a, T, 2) * x[2] * x[2] > LEAST_GAIN_INFORMATION * noisy)
+      !(informationOf(a, T, 2) * x[2] * x[2] > LEAST_GAIN_INFORMATION * noisy) ||
+      Math.abs(x[5]) > MOST_ALONG * x[2]
     ) {
       state.gain[b] = 0;
       state.gainAlong[b] = 0;

@@ -97,7 +97,7 @@ export function fitBands(
   const fit = rebase(profile, first, how.zeroShift);
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
-  undoLean(data, state, shifts);
+  undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
   let band: BandFit = {
     data,
     fit,
@@ -122,9 +122,11 @@ export function fitBands(
  * Bands are compared with each other only after a lean between them is undone: displaced fringes would count as outliers,
  * and what shows the lean would be masked.
  */
-function undoLean(data: BandData, state: BandState, shifts: BandShifts): void {
-  const { b } = weightedLine(data.bandV, shifts.shift, shifts.shiftWeight);
-  if (!Number.isFinite(b) || Math.abs(state.lean + b) > MOST_LEAN) return;
+function undoLean(data: BandData, state: BandState, shifts: BandShifts, spacingPx: number): void {
+  const { b } = robustLine(data.bandV, shifts.shift, shifts.shiftWeight, spacingPx / 3);
+  const reach = Math.max(...data.bandV.map(Math.abs));
+  // A step that moves the outer bands by more than a third of a fringe is no measurement of this fringe any more.
+  if (!Number.isFinite(b) || Math.abs(b) * reach > spacingPx / 3) return;
   state.lean += b;
   for (let k = 0; k < data.bands; k++) {
     state.shift[k] = state.lean * data.bandV[k];
@@ -133,7 +135,24 @@ function undoLean(data: BandData, state: BandState, shifts: BandShifts): void {
   }
 }
 
-const MOST_LEAN = 0.3;
+/** Weighted line without values beyond `most`, then without those beyond four of the remaining ones' median distance. */
+function robustLine(
+  t: Float64Array,
+  y: Float64Array,
+  w: Float64Array,
+  most: number,
+): { a: number; b: number } {
+  const kept = w.map((v, i) => (Math.abs(y[i]) < most ? v : 0));
+  const first = weightedLine(t, y, kept);
+  const off = y.map((v, i) => Math.abs(v - first.a - first.b * t[i]) * Math.sqrt(kept[i]));
+  const sizes = off.filter((_, i) => kept[i] > 0).sort();
+  const limit = 4 * 1.48 * (sizes[sizes.length >> 1] ?? 0);
+  return weightedLine(
+    t,
+    y,
+    kept.map((v, i) => (off[i] <= limit ? v : 0)),
+  );
+}
 
 /** Where the exact geometry tells fringes apart, the zero order is the one with which the pattern fits best. */
 function withBestZero(band: BandFit): BandFit | null {
@@ -163,7 +182,7 @@ export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null 
   const fit = rebase(profile, refit(profile, before.fit, terms), before.zeroShift);
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
-  undoLean(data, state, shifts);
+  undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
   return { ...before, fit, profile, table, shifts, limits };
 }
 

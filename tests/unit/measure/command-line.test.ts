@@ -5,6 +5,9 @@ import os from 'node:os';
 import path from 'node:path';
 import { frame, tiff16 } from './helpers/frames';
 
+/** Starting Node a few times takes seconds on a busy machine. */
+jest.setTimeout(60_000);
+
 const ROOT = path.resolve(__dirname, '../../..');
 
 function run(args: string[]): Promise<{ code: number; out: string; err: string }> {
