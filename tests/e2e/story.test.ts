@@ -202,11 +202,8 @@ describe('the main job', () => {
     for (let n = await page.getByRole('button', { name: 'Send as is…' }).count(); n > 0; n -= 1) {
       await page.getByRole('button', { name: 'Send as is…' }).first().click();
       await page.getByRole('textbox', { name: /note/i }).last().fill('Seen on the bench.');
-      await page
-        .getByRole('button', { name: /^Send( it)?( to review)?$/ })
-        .last()
-        .click();
-      await page.waitForTimeout(300);
+      await page.getByRole('button', { name: 'Send as is', exact: true }).click();
+      await page.getByRole('button', { name: 'Send as is', exact: true }).waitFor({ state: 'detached' });
     }
     const send = page.getByRole('button', { name: /^Send [1-9]\d* to review/ });
     if (await send.count()) await send.click();
@@ -288,10 +285,7 @@ describe('the main job', () => {
     else {
       await page.getByRole('button', { name: 'Send as is…' }).click();
       await page.getByRole('textbox', { name: /note/i }).last().fill('Seen.');
-      await page
-        .getByRole('button', { name: /^Send( it)?( to review)?$/ })
-        .last()
-        .click();
+      await page.getByRole('button', { name: 'Send as is', exact: true }).click();
     }
     await page
       .getByText(/sent to review/)
