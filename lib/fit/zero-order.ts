@@ -12,7 +12,7 @@ export interface ZeroChoice {
 }
 
 /** How far the envelope's middle may stand from the zero order, in orders (common practice, no source). */
-const USUAL_OFFSET = 0.3;
+const USUAL_OFFSET = 0.18;
 const REACH = 2;
 
 /**
@@ -33,7 +33,7 @@ export function chooseZero(profile: Profile, fit: ProfileFit): ZeroChoice {
   }
   choices.sort((a, b) => a.cost - b.cost);
   const best = choices[0];
-  const weights = choices.map((c) => Math.exp(-0.5 * (c.cost - best.cost)));
+  const weights = choices.map((c) => likelihood(c.cost - best.cost));
   const total = weights.reduce((s, w) => s + w, 0);
   const unit = best.fit.unitPx;
   const spacings = choices.map((c) => (c.fit.result.parameters[0] * c.fit.unitPx) / unit);
@@ -42,4 +42,10 @@ export function chooseZero(profile: Profile, fit: ProfileFit): ZeroChoice {
     0,
   );
   return { fit: best.fit, probability: 1 / total, next: weights[1] / total, uSpacing: Math.sqrt(variance) };
+}
+
+/** Odds below one in ten thousand are not a doubt. */
+function likelihood(costBehind: number): number {
+  const odds = Math.exp(-0.5 * costBehind);
+  return odds < 1e-4 ? 0 : odds;
 }

@@ -10,7 +10,7 @@ import {
   type Timing,
 } from '@/lib/domain/reading-result';
 import { chooseTerms } from '@/lib/fit/choose-terms';
-import type { CurvePrior } from '@/lib/fit/fit-profile';
+import { rebase, type CurvePrior } from '@/lib/fit/fit-profile';
 import { listOrders } from '@/lib/fit/orders';
 import { tableFor } from '@/lib/fit/bands';
 import { spreadOf, type Spread } from '@/lib/fit/spread';
@@ -152,10 +152,19 @@ function measurePlace(
 
 /** The zero order by envelope and geometry; a person's own choice stands. */
 function settleZero(place: PlaceFit, options: FitOptions): ZeroChoice {
-  const { fit } = place.band;
-  const choice = chooseZero(place.band.profile, fit);
-  // A fitted perspective takes up what the geometry would say: the choice made before it stands.
-  if (fit.layout.chirp >= 0) return { ...choice, fit, uSpacing: 0 };
+  const { fit, profile } = place.band;
+  if (fit.layout.chirp >= 0 && !options.zeroShift) {
+    // A fitted perspective takes up what the geometry would say about the zero order: only the envelope tells.
+    const nearest = rebase(profile, fit, 0);
+    place.band = {
+      ...place.band,
+      fit: nearest,
+      table: tableFor(place.stack, place.band.grid, nearest),
+      zeroShift: 0,
+    };
+    return { ...chooseZero(profile, nearest), fit: nearest };
+  }
+  const choice = chooseZero(profile, fit);
   if (options.zeroShift) return { ...choice, fit: place.band.fit, probability: 1, next: 0, uSpacing: 0 };
   if (choice.fit !== place.band.fit) {
     place.band = {
