@@ -58,6 +58,10 @@ async function start() {
     ...services.env,
     NEXTAUTH_URL: process.env.NEXTAUTH_URL ?? `http://localhost:${port}`,
     MEASURE_WORKER: WORKER,
+    // The demo's people and their mails are invented, and its mails say so.
+    ...(demo && local && !process.env.MAIL_FROM
+      ? { MAIL_FROM: 'Midfringe, invented demo <midfringe@demo.example>' }
+      : {}),
   };
   await migrateDatabase(root, env);
   await whileLocked(root, () => buildWhenStale(root, '.next'));

@@ -123,6 +123,25 @@ function pixels(c: FindingContext): Finding {
   });
 }
 
+/** So many of the 14 cells around one (two bins to each side, one band up and down) make it part of a mark. */
+const CROWD = 4;
+
+function outliersAround(
+  left: ArrayLike<number>,
+  data: { bins: number; bands: number },
+  cell: number,
+): number {
+  const b = Math.floor(cell / data.bins);
+  const j = cell % data.bins;
+  let count = 0;
+  for (let k = Math.max(0, b - 1); k <= Math.min(data.bands - 1, b + 1); k++) {
+    for (let i = Math.max(0, j - 2); i <= Math.min(data.bins - 1, j + 2); i++) {
+      if ((k !== b || i !== j) && left[k * data.bins + i] === LEFT.outlier) count++;
+    }
+  }
+  return count;
+}
+
 function dust(c: FindingContext): Finding {
   const { state, data } = c.measured.place.band;
   let out = 0;
@@ -131,7 +150,8 @@ function dust(c: FindingContext): Finding {
   for (let i = 0; i < state.left.length; i++) {
     if (data.pixels[i] === 0) continue;
     all++;
-    if (state.left[i] !== LEFT.outlier) continue;
+    // Grain throws single cells far from the mean all over the frame; a speck or a mark puts many beside each other.
+    if (state.left[i] !== LEFT.outlier || outliersAround(state.left, data, i) < CROWD) continue;
     out++;
     at += data.u[i];
   }
