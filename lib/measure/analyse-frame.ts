@@ -17,13 +17,13 @@ import { spreadOf, type Spread } from '@/lib/fit/spread';
 import { chooseZero, type ZeroChoice } from '@/lib/fit/zero-order';
 import { decodePicture } from '@/lib/imaging/decode';
 import { angleBetween, findFringes, type FringePlace } from '@/lib/imaging/find-fringes';
-import { pointAlong, toRadians, type Rectangle } from '@/lib/imaging/geometry';
+import { pointAlong, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
 import type { Picture } from '@/lib/imaging/picture';
 import { Refused } from '@/lib/imaging/refused';
 import { curvesOf, stripOf } from './curves';
 import { ENGINE_VERSION } from './engine-version';
 import { findingsOf } from './findings';
-import { judgePlace, noFringes } from './judge';
+import { judgePlace, noFringes, ringsRefusal } from './judge';
 import { refuseByLight } from './light';
 import type { Measured } from './measured';
 import { fitPlace, growPlace, lookAtPlace, trimPlace, type PlaceFit } from './place';
@@ -35,6 +35,9 @@ export type Clock = () => number;
 const PLACES_TRIED = 4;
 const CROSSING_ENERGY = 0.4;
 const CROSSING_FRINGES = 4;
+const TURNING_ENERGY = 0.1;
+/** Only a system that is not weak itself says so. */
+const TURNING_SHARE = 0.25;
 
 /**
  * The whole way of one frame: bytes -> picture -> fringes found -> bands -> fit -> wavelength and findings.
@@ -78,6 +81,7 @@ function measureBest(
   clock: Clock,
 ): Measured {
   const prior = curvePrior(setup);
+  refuseTurning(places);
   refuseCrossed(places);
   let refused: Refused | null = null;
   for (const place of places.slice(0, PLACES_TRIED)) {
@@ -104,6 +108,23 @@ function measureBest(
   }
   if (refused === null || refused.code === 'NO_FRINGES') refuseByLight(picture);
   throw refused ?? noFringes();
+}
+
+/** One spacing at several angles to both sides: the fringes run round a centre. */
+function refuseTurning(places: FringePlace[]): void {
+  const most = Math.max(...places.map((p) => p.patch.energy));
+  for (const place of places.filter((p) => p.patch.energy > TURNING_SHARE * most)) {
+    const turned = places
+      .filter(
+        (o) =>
+          o !== place &&
+          Math.abs(Math.log(o.spacingPx / place.spacingPx)) < 0.1 &&
+          o.patch.energy > TURNING_ENERGY * place.patch.energy,
+      )
+      .map((o) => wrapAngleDeg(o.rect.angleDeg - place.rect.angleDeg))
+      .filter((a) => Math.abs(a) > 8 && Math.abs(a) < 80);
+    if (turned.some((a) => a > 0) && turned.some((a) => a < 0)) throw ringsRefusal();
+  }
 }
 
 /** Two systems of one spacing that cross: a chessboard, cloth, a pixel screen, but no two-slit pattern. */

@@ -194,10 +194,7 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
     (bow > MOST_BOW * spacing && bow > 6 * place.tilt.uBowPx) ||
     (barrel > MOST_BARREL && barrel > 4 * place.tilt.uBarrel)
   ) {
-    throw new Refused(
-      'RINGS',
-      'The fringes are bent like rings, so this is not the pattern of two slits. Look for a second reflection, a window or dust in the beam.',
-    );
+    throw ringsRefusal();
   }
   if (evidence.fringes < FEWEST_FRINGES) {
     throw new Refused(
@@ -226,5 +223,12 @@ export function noFringes(): Refused {
   return new Refused(
     'NO_FRINGES',
     'No two-slit fringes were found in this frame. Check that the beam meets both slits and that the camera sees the pattern, in focus and still.',
+  );
+}
+
+export function ringsRefusal(): Refused {
+  return new Refused(
+    'RINGS',
+    'The fringes are bent like rings, so this is not the pattern of two slits. Look for a second reflection, a window or dust in the beam.',
   );
 }
