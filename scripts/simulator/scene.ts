@@ -106,7 +106,8 @@ export function bandAt(scene: Scene, v: number): number {
 export function strayAt(scene: Scene, x: number): number {
   const { constant, slope, hump, humpXPx, humpSigmaPx } = scene.stray;
   const h = hump === 0 ? 0 : hump * Math.exp(-0.5 * ((x - humpXPx) / humpSigmaPx) ** 2);
-  return constant + slope * (x / scene.widthPx - 0.5) + h;
+  // Stray light is never less than none.
+  return Math.max(0, constant + slope * (x / scene.widthPx - 0.5) + h);
 }
 
 const GAUSS = [-Math.sqrt(0.6) / 2, 0, Math.sqrt(0.6) / 2];
