@@ -158,7 +158,7 @@ function missedTargets(family: Family, row: Row, z: number[]): string[] {
   if (zLow > 1.25 || zHigh < 0.6) missed.push('√mean z² outside 0.6 to 1.25');
   if (row.wrong > 0) missed.push(`${row.wrong} wrong`);
   if (wilson(row.answered, row.frames)[1] < family.answered) missed.push(`answered below ${family.answered}`);
-  if (family.orders && row.rmsOrder > 1.3 * 1.1) missed.push('order centres above 1.3 × bound');
+  if (family.orders && row.rmsOrder > 1.3) missed.push('order centres above 1.3 × bound');
   return missed;
 }
 
