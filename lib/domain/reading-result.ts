@@ -35,6 +35,34 @@ export interface SetupValues {
   air?: { temperatureC: number; pressurePa: number; humidityPercent: number; co2Ppm: number };
 }
 
+/**
+ * From which part of a frame its band stack is made, and how. The same bytes and plan give the same stack, so that a
+ * reading can be computed again.
+ */
+export interface StackPlan {
+  /** The straightened surroundings of `region`, long axis square to the fringes. */
+  rect: Region;
+  /** The region it was made for. */
+  region: Region;
+  bands: number;
+  /** Bins per px of the row, and bins put together. */
+  lanes: number;
+  merge: number;
+  /** The pattern as it was first seen: places in px along `rect` from its centre, light relative to full scale. */
+  start: {
+    spacingPx: number;
+    zeroPx: number;
+    middlePx: number;
+    ratio: number;
+    a: number;
+    b: number;
+    background: number;
+    slope: number;
+  };
+  /** The zero order that a person's shift counts from, px along `rect`. */
+  zeroPx: number;
+}
+
 export type ToneChoice = 'auto' | 'linear' | 'srgb';
 
 /** What a person may choose for one fit. */
@@ -46,6 +74,8 @@ export interface FitOptions {
   zeroShift?: number;
   /** Bright (integer) or dark (half-integer) orders whose surroundings are left out of the fit. */
   leaveOut?: number[];
+  /** The band stack to measure from; absent: one is made for the region. */
+  stack?: StackPlan;
 }
 
 export type FindingWord = 'clear' | 'look' | 'stop';
@@ -156,6 +186,8 @@ export interface ReadingResult {
   budget: BudgetRow[];
   findings: Finding[];
   engine: string;
+  /** The band stack these numbers were measured from; absent in readings of engines before 0.6. */
+  stack?: StackPlan;
   picture: {
     widthPx: number;
     heightPx: number;

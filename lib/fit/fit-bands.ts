@@ -21,6 +21,7 @@ import {
   plainTerms,
   rebase,
   refit,
+  stepsToZero,
   type CurvePrior,
   type ProfileFit,
 } from './fit-profile';
@@ -45,7 +46,8 @@ export interface FitStart {
   /** The start values are a fit of the same region: masks are made with them before anything is fitted. */
   asItIs: boolean;
   rounds: number;
-  zeroShift: number;
+  /** Where a person wants the zero order, px; null leaves it to the envelope and the geometry. */
+  zeroAtPx: number | null;
 }
 
 export interface BandFit {
@@ -58,8 +60,8 @@ export interface BandFit {
   shifts: BandShifts;
   limits: LightLimits;
   leaveOut: (u: number) => boolean;
-  /** Whole orders a person moved the zero order by. */
-  zeroShift: number;
+  /** A zero order that is settled, px; null follows the envelope. */
+  zeroAtPx: number | null;
 }
 
 const OUTLIER_SIGMAS = 5;
@@ -94,7 +96,7 @@ export function fitBands(
       ? fitProfile(profile, aroundPx, prior)
       : fitFrom(profile, how.from, plainTerms(prior), prior, how.asItIs);
   if (first === null) return null;
-  const fit = rebase(profile, first, how.zeroShift);
+  const fit = rebase(profile, first, stepsToZero(first, how.zeroAtPx));
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
   undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
@@ -108,14 +110,14 @@ export function fitBands(
     shifts,
     limits,
     leaveOut,
-    zeroShift: how.zeroShift,
+    zeroAtPx: how.zeroAtPx,
   };
   for (let round = 0; round < how.rounds; round++) {
     const next = refineBands(band, band.fit.layout.terms);
     if (next === null) return null;
     band = next;
   }
-  return how.zeroShift === 0 ? withBestZero(band) : band;
+  return how.zeroAtPx === null ? withBestZero(band) : band;
 }
 
 /**
@@ -164,8 +166,8 @@ function withBestZero(band: BandFit): BandFit | null {
   const choice = chooseZero(band.profile, fit);
   if (choice.fit === fit) return band;
   const table = tableFor(band.data, band.grid, choice.fit);
-  const zeroShift = Math.round(choice.fit.result.parameters[3]);
-  return refineBands({ ...band, fit: choice.fit, table, zeroShift }, fit.layout.terms);
+  const zeroAtPx = choice.fit.originPx + choice.fit.result.parameters[1] * choice.fit.unitPx;
+  return refineBands({ ...band, fit: choice.fit, table, zeroAtPx }, fit.layout.terms);
 }
 
 /** One more round: noise and masks from the bands' agreement, a new profile, the fit with these terms, the bands again. */
@@ -179,7 +181,8 @@ export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null 
   const whole = combineBands(data, state, grid, expected, spacing);
   const profile = maskBins(before, whole) ? combineBands(data, state, grid, expected, spacing) : whole;
   if (countUsed(profile) < FEWEST_POINTS) return null;
-  const fit = rebase(profile, refit(profile, before.fit, terms), before.zeroShift);
+  const next = refit(profile, before.fit, terms);
+  const fit = rebase(profile, next, stepsToZero(next, before.zeroAtPx));
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
   undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);

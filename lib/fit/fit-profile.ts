@@ -4,6 +4,7 @@ import { scanStartValues, type StartValues } from './start-values';
 import {
   layoutOf,
   ModelPoint,
+  orderAt,
   placeOfOrder,
   type ModelFixed,
   type ModelLayout,
@@ -103,14 +104,20 @@ export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms): 
   );
 }
 
-/**
- * Makes the order nearest the envelope's middle (moved by a person's whole orders) the model's order 0 and fits again: spacing
- * is the distance of orders there, and with wide angles or perspective the numbering is not free.
- */
-export function rebase(profile: Profile, fit: ProfileFit, zeroShift: number): ProfileFit {
+/** Orders from the model's order 0 to the one nearest the envelope's middle, or nearest to a place a person chose. */
+export function stepsToZero(fit: ProfileFit, zeroAtPx: number | null): number {
   const p = fit.result.parameters;
-  const steps = Math.round(p[3]) - zeroShift;
+  if (zeroAtPx === null) return Math.round(p[3]);
+  return Math.round(orderAt(fit.layout, fit.fixed, p, (zeroAtPx - fit.originPx) / fit.unitPx));
+}
+
+/**
+ * Makes the order so many steps away the model's order 0 and fits again: spacing is the distance of orders there, and with
+ * wide angles or perspective the numbering is not free.
+ */
+export function rebase(profile: Profile, fit: ProfileFit, steps: number): ProfileFit {
   if (steps === 0 || !Number.isFinite(steps)) return fit;
+  const p = fit.result.parameters;
   const place = placeOfOrder(fit.layout, fit.fixed, p, steps);
   const next = placeOfOrder(fit.layout, fit.fixed, p, steps + 0.01);
   if (!Number.isFinite(place) || !Number.isFinite(next)) return fit;

@@ -28,7 +28,7 @@ export function chooseZero(profile: Profile, fit: ProfileFit): ZeroChoice {
   const choices: { fit: ProfileFit; cost: number }[] = [];
   for (let step = -REACH; step <= REACH; step++) {
     // Moving the numbering by step leaves the envelope's middle at offset - step.
-    const moved = step === 0 ? fit : rebase(profile, fit, Math.round(offset) - step);
+    const moved = step === 0 ? fit : rebase(profile, fit, step);
     choices.push({ fit: moved, cost: moved.result.chiSquare / scale + ((offset - step) / spread) ** 2 });
   }
   choices.sort((a, b) => a.cost - b.cost);

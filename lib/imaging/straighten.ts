@@ -10,20 +10,20 @@ export interface BandStack {
   rect: Rectangle;
   bins: number;
   bands: number;
-  /** Distance of bin centres, px. */
+  /** Distance of bin centres and u of the first one's centre, px. */
   pitchPx: number;
+  fromPx: number;
   /** Mean v of each band, px from the rectangle's axis. */
   bandV: Float64Array;
-  /** Cell [band * bins + bin]: mean linear light, pixels in it, mean u (px), variance of u about it (px^2). */
-  light: Float64Array;
-  pixels: Float64Array;
-  u: Float64Array;
-  varU: Float64Array;
-  /** Mean v of the cell's pixels relative to its band's. */
-  dv: Float64Array;
-  /** Variance and fourth moment of a pixel's own extent along u: a square seen at the angle. */
-  pixelVar: number;
-  pixelFourth: number;
+  /**
+   * Cell [band * bins + bin]: mean linear light, pixels in it, mean u minus the bin's centre (px), variance of u about the
+   * mean (px^2), mean v of the cell's pixels minus its band's (px). Single precision: 6e-8 of the light is far below noise.
+   */
+  light: Float32Array;
+  pixels: Float32Array;
+  offset: Float32Array;
+  varU: Float32Array;
+  dv: Float32Array;
 }
 
 export interface StraightenOptions {
@@ -59,7 +59,8 @@ export function straighten(picture: Picture, rect: Rectangle, options: Straighte
   const first = Math.floor(Math.min(-half / step, half / step));
   const fine = Math.ceil(Math.abs(rect.lengthPx / step)) + 2;
   const bins = Math.floor(fine / merge);
-  const stack = emptyStack(rect, bins, bands, Math.abs(step) * merge);
+  const edge = step < 0 ? first + (bins - 1) * merge : first;
+  const stack = emptyStack(rect, bins, bands, Math.abs(step) * merge, (edge + merge / 2) * step);
   const line: FineLine = {
     sum: new Float64Array(fine + lanes),
     n: new Float64Array(fine + lanes),
@@ -82,7 +83,7 @@ export function straighten(picture: Picture, rect: Rectangle, options: Straighte
       line.dd[i] += line.dd[i - lanes];
       line.v[i] += line.v[i - lanes];
     }
-    mergeBins(stack, b, line, { first, step, merge, vPerBin: scan.vp / lanes });
+    mergeBins(stack, b, line, { step, merge, vPerBin: scan.vp / lanes });
     centreBand(stack, b, (low + high) / 2);
   }
   return stack;
@@ -97,24 +98,26 @@ interface FineLine {
   v: Float64Array;
 }
 
-function emptyStack(rect: Rectangle, bins: number, bands: number, pitchPx: number): BandStack {
-  const c = Math.cos(toRadians(rect.angleDeg)) ** 2;
-  const s = 1 - c;
+function emptyStack(
+  rect: Rectangle,
+  bins: number,
+  bands: number,
+  pitchPx: number,
+  fromPx: number,
+): BandStack {
   const cells = bins * bands;
   return {
     rect,
     bins,
     bands,
     pitchPx,
+    fromPx,
     bandV: new Float64Array(bands),
-    light: new Float64Array(cells),
-    pixels: new Float64Array(cells),
-    u: new Float64Array(cells),
-    varU: new Float64Array(cells),
-    dv: new Float64Array(cells),
-    pixelVar: 1 / 12,
-    // Two boxes of widths |cos| and |sin|: fourth moments a^4/80 each and 6 times the product of the variances.
-    pixelFourth: (c * c + s * s) / 80 + (6 * c * s) / 144,
+    light: new Float32Array(cells),
+    pixels: new Float32Array(cells),
+    offset: new Float32Array(cells),
+    varU: new Float32Array(cells),
+    dv: new Float32Array(cells),
   };
 }
 
@@ -150,7 +153,12 @@ function scanOf(picture: Picture, rect: Rectangle): Scan {
   };
 }
 
+/** Turned once for a frame, however often it is straightened. */
+const turnedPictures = new WeakMap<Picture, Uint8Array | Uint16Array>();
+
 function transposed(picture: Picture): Uint8Array | Uint16Array {
+  const known = turnedPictures.get(picture);
+  if (known) return known;
   const { samples, widthPx: w, heightPx: h } = picture;
   const out = picture.bits === 16 ? new Uint16Array(w * h) : new Uint8Array(w * h);
   const block = 32;
@@ -161,6 +169,7 @@ function transposed(picture: Picture): Uint8Array | Uint16Array {
       for (let y = y0; y < y1; y++) for (let x = x0; x < x1; x++) out[x * h + y] = samples[y * w + x];
     }
   }
+  turnedPictures.set(picture, out);
   return out;
 }
 
@@ -236,9 +245,9 @@ function mergeBins(
   stack: BandStack,
   band: number,
   line: FineLine,
-  grid: { first: number; step: number; merge: number; vPerBin: number },
+  grid: { step: number; merge: number; vPerBin: number },
 ): void {
-  const { first, step, merge, vPerBin } = grid;
+  const { step, merge, vPerBin } = grid;
   const { bins } = stack;
   for (let k = 0; k < bins; k++) {
     let n = 0;
@@ -264,7 +273,7 @@ function mergeBins(
     const mean = m / n;
     stack.light[cell] = s / n;
     stack.dv[cell] = v / n;
-    stack.u[cell] = (first + k * merge + mean) * step;
+    stack.offset[cell] = (mean - merge / 2) * step;
     stack.varU[cell] = Math.max(0, mm / n - mean * mean) * step * step;
   }
 }

@@ -6,6 +6,7 @@ import {
   plainTerms,
   rebase,
   refit,
+  stepsToZero,
   type CurvePrior,
   type ProfileFit,
 } from '@/lib/fit/fit-profile';
@@ -15,7 +16,7 @@ import { averagingNodes, type Profile } from '@/lib/fit/profile';
 import { scanStartValues, type StartValues } from '@/lib/fit/start-values';
 import { ModelPoint } from '@/lib/fit/two-slit-model';
 import { Refused } from '@/lib/imaging/refused';
-import type { Clock } from './analyse-frame';
+import type { Clock } from './measure-stack';
 import { ENGINE_VERSION } from './engine-version';
 import { readScan, type Scan } from './read-scan';
 import { wavelengthOf } from './wavelength';
@@ -96,7 +97,8 @@ function measureScan(scan: Scan, detectorMm: number, setup: SetupValues, ms: Tim
   let profile = first;
   for (let round = 0; round < ROUNDS; round++) {
     profile = weighted(profile, scan, fit);
-    fit = rebase(profile, withTerms(profile, refit(profile, fit, fit.layout.terms)), 0);
+    const next = withTerms(profile, refit(profile, fit, fit.layout.terms));
+    fit = rebase(profile, next, stepsToZero(next, null));
   }
   return resultOf(scan, profile, fit, setup, ms);
 }

@@ -1,12 +1,12 @@
 import type { Finding, FindingWord, ReadingResult, SetupValues } from '@/lib/domain/reading-result';
-import type { Picture } from '@/lib/imaging/picture';
+import type { PictureFacts } from './band-stack';
 import type { Measured } from './measured';
 
 /** What a check may look at. */
 export interface FindingContext {
   result: ReadingResult;
   measured: Measured;
-  picture: Picture;
+  picture: PictureFacts;
   setup: SetupValues;
 }
 
@@ -59,3 +59,9 @@ export function numberText(value: number): string {
 }
 
 export const percent = (share: number) => `${numberText(100 * share)} %`;
+
+/** How far the optional terms moved the spacing, relative. */
+export function movedBy(c: FindingContext): number {
+  const { fit } = c.measured.place.band;
+  return (fit.result.parameters[0] * fit.unitPx) / c.measured.plainSpacing - 1;
+}

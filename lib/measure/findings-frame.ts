@@ -1,7 +1,7 @@
 /** Checks of what the camera and the file did to the light. */
 import type { Finding } from '@/lib/domain/reading-result';
 import { LEFT } from '@/lib/fit/bands';
-import { finding, numberText, percent, type FindingContext } from './finding-context';
+import { finding, movedBy, numberText, percent, type FindingContext } from './finding-context';
 import { demosaicRelative } from './wavelength';
 
 export function frameFindings(c: FindingContext): Finding[] {
@@ -83,7 +83,7 @@ function tone(c: FindingContext): Finding {
       remedy: 'Nothing to do.',
     });
   }
-  const moved = c.result.spacingPx / c.measured.plainSpacingPx - 1;
+  const moved = movedBy(c);
   return finding(c, {
     check: 'tone',
     word: away > 0.15 ? 'look' : 'clear',

@@ -1,6 +1,6 @@
 /** Checks of how camera, screen and plate stand. */
 import type { Finding } from '@/lib/domain/reading-result';
-import { finding, numberText, percent, type FindingContext } from './finding-context';
+import { finding, movedBy, numberText, percent, type FindingContext } from './finding-context';
 import { nearFieldRelative } from './wavelength';
 
 export function geometryFindings(c: FindingContext): Finding[] {
@@ -39,7 +39,7 @@ function yaw(c: FindingContext): Finding {
     });
   }
   const change = 2 * fit.result.parameters[fit.layout.chirp] * (grid.half / fit.unitPx) * 2;
-  const moved = c.result.spacingPx / c.measured.plainSpacingPx - 1;
+  const moved = movedBy(c);
   return finding(c, {
     check: 'chirp',
     word: Math.abs(change) > 0.002 ? 'look' : 'clear',

@@ -1,6 +1,6 @@
 /** Checks of the pattern itself: envelope, contrast, stray light, misfit. */
 import type { Finding } from '@/lib/domain/reading-result';
-import { finding, numberText, percent, type FindingContext } from './finding-context';
+import { finding, movedBy, numberText, percent, type FindingContext } from './finding-context';
 
 export function patternFindings(c: FindingContext): Finding[] {
   const list = [pull(c), contrast(c), background(c), misfit(c)];
@@ -54,7 +54,7 @@ function background(c: FindingContext): Finding {
   for (let k = 1; k < terms; k++) bend += Math.abs(p[6 + k]);
   bend /= Math.max(1e-9, p[4]);
   const much = level > 0.25 || bend > 0.12;
-  const moved = terms > 2 ? c.result.spacingPx / c.measured.plainSpacingPx - 1 : 0;
+  const moved = terms > 2 ? movedBy(c) : 0;
   return finding(c, {
     check: 'background',
     word: much ? 'look' : 'clear',
@@ -139,7 +139,7 @@ function bandwidth(c: FindingContext): Finding | null {
       : nm < 5
         ? 'below 5 nm'
         : `about ${numberText(nm)} nm`;
-  const moved = c.result.spacingPx / c.measured.plainSpacingPx - 1;
+  const moved = movedBy(c);
   return finding(c, {
     check: 'bandwidth',
     word: nm !== null && nm < 5 ? 'clear' : 'look',

@@ -9,6 +9,6 @@ export interface Measured {
   spread: Spread;
   evidence: Evidence;
   zero: ZeroChoice;
-  /** Spacing in px before optional terms were added to the model. */
-  plainSpacingPx: number;
+  /** Spacing along the bands, px, before optional terms were added to the model. */
+  plainSpacing: number;
 }

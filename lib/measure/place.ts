@@ -1,3 +1,4 @@
+import type { StackPlan } from '@/lib/domain/reading-result';
 import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { fitBands, fitTilt, type BandFit, type LightLimits, type TiltFit } from '@/lib/fit/fit-bands';
 import { spreadOf } from '@/lib/fit/spread';
@@ -12,12 +13,13 @@ import {
   type Rectangle,
 } from '@/lib/imaging/geometry';
 import type { Picture } from '@/lib/imaging/picture';
-import { straighten, type BandStack, type StraightenOptions } from '@/lib/imaging/straighten';
+import { straighten, type StraightenOptions } from '@/lib/imaging/straighten';
+import { frameExtent, wholeStack, type FrameStack } from './band-stack';
+import { ENGINE_VERSION } from './engine-version';
 
 /** One place of the frame, straightened and fitted. */
 export interface PlaceFit {
   rect: Rectangle;
-  stack: BandStack;
   band: BandFit;
   tilt: TiltFit;
 }
@@ -26,9 +28,10 @@ const MOST_BANDS = 64;
 const ROWS_PER_BAND = 3;
 const QUICK_PIXELS = 400_000;
 const POINTS_PER_FRINGE = 24;
-/** Straightening stops when the tilt moves less than this or less than a fifth of its own uncertainty. */
-const TILT_STEP_DEG = 0.002;
-const STRAIGHTENINGS = 3;
+const LOOK_ROUNDS = 2;
+/** A lean that blurs a band of a few rows by no more than a hundredth of a px. */
+const SQUARE_ENOUGH_DEG = 0.05;
+const TURNS = 3;
 
 /** How finely a region is cut: bands along the fringes, bins across them. */
 export function gridFor(rect: Rectangle, spacingPx: number, quick: boolean): StraightenOptions {
@@ -62,23 +65,27 @@ export interface PlaceAsk {
   rect: Rectangle;
   spacingPx: number;
   prior: CurvePrior | null;
-  leaveOut: (u: number) => boolean;
-  zeroShift: number;
 }
 
-/** A first look: coarse bands, few rows, one round. Null where nothing can be fitted. */
+const nothing = () => false;
+
+/** A first look: coarse bands, few rows, two rounds. Null where nothing can be fitted. */
 export function lookAtPlace(ask: PlaceAsk): PlaceFit | null {
-  const { picture, spacingPx, prior, leaveOut, zeroShift } = ask;
-  const rect = leanIn(picture, ask.rect, spacingPx);
-  const stack = straighten(picture, rect, gridFor(rect, spacingPx, true));
-  const band = fitBands(stack, spacingPx, prior, lightLimits(picture), leaveOut, {
-    from: null,
-    asItIs: false,
-    rounds: 2,
-    zeroShift,
-  });
-  if (band === null) return null;
-  return { rect, stack, band, tilt: fitTilt(band) };
+  const rect = leanIn(ask.picture, ask.rect, ask.spacingPx);
+  return lookIn(ask, rect, ask.spacingPx, null, gridFor(rect, ask.spacingPx, true));
+}
+
+function lookIn(
+  ask: PlaceAsk,
+  rect: Rectangle,
+  spacingPx: number,
+  from: StartValues | null,
+  options: StraightenOptions,
+): PlaceFit | null {
+  const data = wholeStack(straighten(ask.picture, rect, options));
+  const how = { from, asItIs: false, rounds: LOOK_ROUNDS, zeroAtPx: null };
+  const band = fitBands(data, spacingPx, ask.prior, lightLimits(ask.picture), nothing, how);
+  return band === null ? null : { rect, band, tilt: fitTilt(band) };
 }
 
 /** Shares of the way from the region that was found to the frame's edge that are tried, longest first. */
@@ -96,16 +103,9 @@ export function growPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit {
     const rect = lengthened(ask.picture, look.rect, share);
     if (rect.lengthPx < 1.06 * look.rect.lengthPx) continue;
     const from = startFrom(look, rect);
-    const stack = straighten(ask.picture, rect, gridFor(rect, from.spacing, true));
-    const band = fitBands(stack, from.spacing, ask.prior, lightLimits(ask.picture), ask.leaveOut, {
-      from,
-      asItIs: false,
-      rounds: 2,
-      zeroShift: ask.zeroShift,
-    });
-    if (band === null) continue;
-    const longer: PlaceFit = { rect, stack, band, tilt: fitTilt(band) };
-    const spacing = band.fit.result.parameters[0] * band.fit.unitPx;
+    const longer = lookIn(ask, rect, from.spacing, from, gridFor(rect, from.spacing, true));
+    if (longer === null) continue;
+    const spacing = longer.band.fit.result.parameters[0] * longer.band.fit.unitPx;
     if (Math.abs(spacing / from.spacing - 1) < 0.03 && relativeU(longer) < NOT_WORSE * sure) return longer;
   }
   return look;
@@ -132,36 +132,97 @@ function lengthened(picture: Picture, rect: Rectangle, share: number): Rectangle
   return { ...rect, cxPx: centre.xPx, cyPx: centre.yPx, lengthPx: u1 - u0 };
 }
 
-/** Straightens and fits from a first look, turning the region until the fringes stand square in it. */
-export function fitPlace(ask: PlaceAsk, look: PlaceFit): PlaceFit | null {
-  const { picture, prior, leaveOut, zeroShift } = ask;
-  const limits = lightLimits(picture);
-  let here = { ...ask.rect, angleDeg: turned(look.rect.angleDeg, look.tilt) };
-  let before = look;
-  let last: PlaceFit | null = null;
-  for (let turn = 0; turn < STRAIGHTENINGS; turn++) {
-    const from = startFrom(before, here);
+/**
+ * Turns the region until the fringes stand nearly square in it, on part of its rows. What lean is left then is measured and
+ * allowed for; it only must not blur a band.
+ */
+function squareUp(ask: PlaceAsk, look: PlaceFit, region: Rectangle): PlaceFit {
+  let last = look;
+  for (let turn = 0; turn < TURNS; turn++) {
+    const lean = Math.abs(toDegrees(Math.atan(last.tilt.slope)));
+    if (turn > 0 && !(lean > SQUARE_ENOUGH_DEG && lean < 20)) break;
+    if (turn === 0 && lean < SQUARE_ENOUGH_DEG && toDegrees(last.tilt.uSlope) < SQUARE_ENOUGH_DEG / 3) break;
+    const here = { ...region, angleDeg: turned(last.rect.angleDeg, last.tilt) };
+    const from = startFrom(last, here);
     const options = gridFor(here, from.spacing, false);
-    // A large frame is turned square on part of its rows; all of them are read once it stands.
-    const thin = turn === 0 ? thinning(here, options.bands) : 1;
-    const stack = straighten(picture, here, { ...options, rowStep: thin });
-    const band = fitBands(stack, from.spacing, prior, limits, leaveOut, {
-      from,
-      asItIs: true,
-      rounds: turn === 0 ? 2 : 1,
-      zeroShift,
-    });
-    if (band === null) return last;
-    const tilt = fitTilt(band);
-    last = { rect: here, stack, band, tilt };
-    before = last;
-    const lean = toDegrees(Math.atan(tilt.slope));
-    const known = toDegrees(tilt.uSlope);
-    if (thin === 1 && !(Math.abs(lean) >= Math.max(TILT_STEP_DEG, 0.3 * known) && Math.abs(lean) <= 20))
-      break;
-    here = { ...here, angleDeg: turned(here.angleDeg, tilt) };
+    const rowStep = thinning(here, options.bands);
+    const next = lookIn(ask, here, from.spacing, from, { ...options, rowStep });
+    if (next === null) break;
+    last = next;
   }
   return last;
+}
+
+/** How far around the region its stack reaches, as a share of its length and height to each side. */
+const MARGIN = 0.25;
+const MOST_CELLS = 400_000;
+
+/** The stack for a place that was found good: its region (or the person's) and what lies around it. */
+export function planFor(ask: PlaceAsk, look: PlaceFit, wanted: Rectangle | null): StackPlan {
+  const trimmed = wanted ?? trimPlace(ask.picture, look);
+  const fitted = squareUp(ask, look, trimmed);
+  const angleDeg = turned(fitted.rect.angleDeg, fitted.tilt);
+  const region = wanted ?? { ...trimmed, angleDeg };
+  const spacing = fitted.band.fit.result.parameters[0] * fitted.band.fit.unitPx;
+  const core = { ...region, angleDeg };
+  const grid = gridFor(core, spacing, false);
+  const bandHeight = core.heightPx / grid.bands;
+  const { widthPx, heightPx } = ask.picture;
+  const frame = frameExtent(core, widthPx, heightPx);
+  const cells = ((core.lengthPx / grid.merge) * grid.lanes * grid.bands) / MOST_CELLS;
+  const margin = Math.max(0, Math.min(MARGIN, (1 / Math.sqrt(Math.max(cells, 1e-9)) - 1) / 2));
+  const half = core.lengthPx / 2;
+  const u0 = Math.min(-half, Math.max(-half - margin * core.lengthPx, frame.u0));
+  const u1 = Math.max(half, Math.min(half + margin * core.lengthPx, frame.u1));
+  // Whole bands above and below, so that the region's own edges stay edges of bands.
+  const room = (free: number) => Math.max(0, Math.ceil(Math.min(margin * core.heightPx, free) / bandHeight));
+  const above = room(-core.heightPx / 2 - frame.v0);
+  const below = room(frame.v1 - core.heightPx / 2);
+  const centre = pointAlong(core, (u0 + u1) / 2, ((below - above) * bandHeight) / 2);
+  const bands = grid.bands + above + below;
+  const rect = {
+    cxPx: centre.xPx,
+    cyPx: centre.yPx,
+    lengthPx: u1 - u0,
+    heightPx: bands * bandHeight,
+    angleDeg,
+  };
+  const s = startFrom(fitted, rect);
+  return {
+    rect,
+    region,
+    bands,
+    lanes: grid.lanes,
+    merge: grid.merge,
+    start: {
+      spacingPx: s.spacing,
+      zeroPx: s.zero,
+      middlePx: s.middle,
+      ratio: s.ratio,
+      a: s.a,
+      b: s.b,
+      background: s.background,
+      slope: s.slope,
+    },
+    zeroPx: s.zero,
+  };
+}
+
+/** The band stack of a plan: every row of its rectangle is read. */
+export function stackOf(picture: Picture, plan: StackPlan): FrameStack {
+  const { bands, lanes, merge } = plan;
+  return {
+    engine: ENGINE_VERSION,
+    plan,
+    picture: {
+      widthPx: picture.widthPx,
+      heightPx: picture.heightPx,
+      bits: picture.bits,
+      source: picture.source,
+    },
+    limits: lightLimits(picture),
+    bands: straighten(picture, plan.rect, { bands, lanes, merge, rowStep: 1 }),
+  };
 }
 
 const LARGE_PIXELS = 1_500_000;
@@ -204,7 +265,10 @@ const LEAN_ENOUGH_DEG = 0.15;
 function leanIn(picture: Picture, rect: Rectangle, spacingPx: number): Rectangle {
   let here = rect;
   for (let i = 0; i < LEANINGS; i++) {
-    const lean = leanOfBands(straighten(picture, here, gridFor(here, spacingPx, true)), spacingPx);
+    const lean = leanOfBands(
+      wholeStack(straighten(picture, here, gridFor(here, spacingPx, true))),
+      spacingPx,
+    );
     if (lean === null) return here;
     const degrees = toDegrees(Math.atan(lean));
     here = { ...here, angleDeg: wrapAngleDeg(here.angleDeg - degrees) };

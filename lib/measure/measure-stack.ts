@@ -1,0 +1,160 @@
+import type {
+  FitOptions,
+  FrameAnswer,
+  ReadingResult,
+  SetupValues,
+  Timing,
+} from '@/lib/domain/reading-result';
+import { tableFor } from '@/lib/fit/bands';
+import { chooseTerms } from '@/lib/fit/choose-terms';
+import { fitBands, fitTilt } from '@/lib/fit/fit-bands';
+import { rebase, stepsToZero, type CurvePrior } from '@/lib/fit/fit-profile';
+import { spreadOf, type Spread } from '@/lib/fit/spread';
+import type { StartValues } from '@/lib/fit/start-values';
+import { chooseZero, type ZeroChoice } from '@/lib/fit/zero-order';
+import { coordinatesIn, type Rectangle } from '@/lib/imaging/geometry';
+import { Refused } from '@/lib/imaging/refused';
+import { refusalOf, resultOf } from './answer';
+import { cutStack, type FrameStack } from './band-stack';
+import { judgePlace, noFringes } from './judge';
+import type { Measured } from './measured';
+import type { PlaceFit } from './place';
+
+/** Milliseconds from any fixed moment; time is an argument so that the engine itself has no clock. */
+export type Clock = () => number;
+
+export const noTime = (): Timing => ({ decode: 0, find: 0, profile: 0, fit: 0, total: 0 });
+
+const ROUNDS = 2;
+
+/**
+ * Measures a region from a band stack: plain arithmetic, the same digits on a server and in a browser. `options.region`
+ * must be covered by the stack (`stackCovers`); absent, it is the region the stack was made for.
+ */
+export function measureStack(
+  stack: FrameStack,
+  setup: SetupValues,
+  options: FitOptions,
+  clock: Clock = () => 0,
+): FrameAnswer {
+  const ms = noTime();
+  const start = clock();
+  try {
+    const result = resultFromStack(stack, setup, options, ms);
+    ms.fit = clock() - start;
+    ms.total = ms.fit;
+    return result;
+  } catch (error) {
+    if (!(error instanceof Refused)) throw error;
+    ms.total = clock() - start;
+    return refusalOf(error, stack.picture, ms);
+  }
+}
+
+/** As `measureStack`, but a refusal is thrown. */
+export function resultFromStack(
+  stack: FrameStack,
+  setup: SetupValues,
+  options: FitOptions,
+  ms: Timing,
+): ReadingResult {
+  const region = options.region ?? stack.plan.region;
+  const measured = measureRegion(stack, region, curvePrior(setup), options);
+  return resultOf({ stack, region, measured, setup, options, ms });
+}
+
+function measureRegion(
+  stack: FrameStack,
+  region: Rectangle,
+  prior: CurvePrior | null,
+  options: FitOptions,
+): Measured {
+  const { plan, limits } = stack;
+  const { rect, data } = cutStack(stack, region);
+  const from = startIn(stack, region);
+  const zeroAtPx = options.zeroShift ? zeroWanted(stack, region, options.zeroShift) : null;
+  const first = fitBands(data, plan.start.spacingPx, prior, limits, leftOutBy(options, from), {
+    from,
+    asItIs: true,
+    rounds: ROUNDS,
+    zeroAtPx,
+  });
+  if (first === null) throw noFringes();
+  const plainSpacing = first.fit.result.parameters[0] * first.fit.unitPx;
+  const band = chooseTerms(first, { curve: prior === null, tone: true, chirp: true });
+  const place: PlaceFit = { rect, band, tilt: fitTilt(band) };
+  const zero = settleZero(place, zeroAtPx);
+  place.tilt = fitTilt(place.band);
+  const spread = withZeroDoubt(spreadOf(place.band), zero);
+  const evidence = judgePlace(place, spread);
+  if (spread === null) throw noFringes();
+  return { zero, place, spread, evidence, plainSpacing };
+}
+
+/** The pattern as the stack's maker saw it, from this region's centre. */
+function startIn(stack: FrameStack, region: Rectangle): StartValues {
+  const { start, rect } = stack.plan;
+  const centre = coordinatesIn(rect, region.cxPx, region.cyPx).u;
+  return {
+    spacing: start.spacingPx,
+    zero: start.zeroPx - centre,
+    middle: start.middlePx - centre,
+    ratio: start.ratio,
+    a: start.a,
+    b: start.b,
+    background: start.background,
+    slope: start.slope,
+    rest: 0,
+  };
+}
+
+/** Where the shifted zero order stands from this region's centre. */
+function zeroWanted(stack: FrameStack, region: Rectangle, zeroShift: number): number {
+  const { zeroPx, start, rect } = stack.plan;
+  return zeroPx - zeroShift * start.spacingPx - coordinatesIn(rect, region.cxPx, region.cyPx).u;
+}
+
+/** Places near orders the person wants left out, as the stack's maker saw them. */
+function leftOutBy(options: FitOptions, from: StartValues): (u: number) => boolean {
+  const orders = options.leaveOut ?? [];
+  if (orders.length === 0) return () => false;
+  const places = orders.map((m) => from.zero + (m - (options.zeroShift ?? 0)) * from.spacing);
+  return (u) => places.some((at) => Math.abs(u - at) < 0.5 * from.spacing);
+}
+
+/** The zero order by envelope and geometry; a person's own choice stands. */
+function settleZero(place: PlaceFit, zeroAtPx: number | null): ZeroChoice {
+  const { fit, profile } = place.band;
+  const take = (chosen: typeof fit) => {
+    if (chosen === place.band.fit) return;
+    const { data, grid } = place.band;
+    place.band = { ...place.band, fit: chosen, table: tableFor(data, grid, chosen) };
+  };
+  if (fit.layout.chirp >= 0 && zeroAtPx === null) {
+    // A fitted perspective takes up what the geometry would say about the zero order: only the envelope tells.
+    const nearest = rebase(profile, fit, stepsToZero(fit, null));
+    take(nearest);
+    return { ...chooseZero(profile, nearest), fit: nearest };
+  }
+  const choice = chooseZero(profile, fit);
+  if (zeroAtPx !== null) return { ...choice, fit, probability: 1, next: 0, uSpacing: 0 };
+  take(choice.fit);
+  return choice;
+}
+
+/** What doubt about the zero order adds to the spacing's uncertainty. */
+function withZeroDoubt(spread: Spread | null, zero: ZeroChoice): Spread | null {
+  if (spread === null || zero.uSpacing === 0) return spread;
+  const covariance = Float64Array.from(spread.covariance);
+  covariance[0] += zero.uSpacing * zero.uSpacing;
+  return { ...spread, covariance };
+}
+
+/** Wide-angle curvature s/L from the bench's values, with the uncertainty they have. */
+export function curvePrior(setup: SetupValues): CurvePrior | null {
+  const { scaleUmPerPx: s, distanceMm: l } = setup;
+  if (!s || !l) return null;
+  const value = s.value / 1000 / l.value;
+  const known = s.u !== null && l.u !== null;
+  return { value, u: known ? value * Math.hypot((s.u ?? 0) / s.value, (l.u ?? 0) / l.value) : null };
+}
