@@ -347,3 +347,11 @@ export class AveragedModel {
     return true;
   }
 }
+
+/** Standard uncertainty of the visibility B/A by the law of propagation; infinite where the covariance does not say. */
+export function ratioU(p: Float64Array, c: Float64Array, n: number): number {
+  if (!(p[4] > 0)) return Infinity;
+  const v = p[5] / p[4];
+  const variance = (c[5 * n + 5] + v * v * c[4 * n + 4] - 2 * v * c[4 * n + 5]) / (p[4] * p[4]);
+  return variance >= 0 ? Math.sqrt(variance) : Infinity;
+}

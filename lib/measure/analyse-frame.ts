@@ -7,25 +7,30 @@ import type {
   SetupValues,
   Timing,
 } from '@/lib/domain/reading-result';
+import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { spreadOf } from '@/lib/fit/spread';
 import { decodePicture } from '@/lib/imaging/decode';
 import { angleBetween, findFringes, type FringePlace } from '@/lib/imaging/find-fringes';
-import { coordinatesIn, wrapAngleDeg } from '@/lib/imaging/geometry';
+import { coordinatesIn } from '@/lib/imaging/geometry';
 import type { Picture } from '@/lib/imaging/picture';
 import { Refused } from '@/lib/imaging/refused';
+import { looksLikeRings } from '@/lib/imaging/rings';
 import { refusalOf } from './answer';
 import type { FrameStack } from './band-stack';
-import { judgePlace, noFringes, ringsRefusal } from './judge';
+import { judgePlace, noFringes, ringsRefusal, tooFew, weigh } from './judge';
 import { refuseByLight } from './light';
 import { curvePrior, noTime, resultFromStack, type Clock } from './measure-stack';
-import { growPlace, lookAtPlace, planFor, stackOf } from './place';
+import { growPlace, lookAtPlace, planFor, stackOf, type PlaceAsk, type PlaceFit } from './place';
 
 const PLACES_TRIED = 4;
 const CROSSING_ENERGY = 0.4;
 const CROSSING_FRINGES = 4;
-const TURNING_ENERGY = 0.1;
-/** Only a system that is not weak itself says so. */
-const TURNING_SHARE = 0.25;
+/** Fringes over the frame that are tried where no wave was found, and how well one or two must fit. */
+const WIDE_FRINGES = 1.6;
+const WIDE_MISFIT = 0.02;
+const WIDE_SWING = 30;
+/** Misfit of a first look, relative to the fringes, up to which they are straight. */
+const PLAIN_MISFIT = 0.05;
 
 /** A frame that was measured, with the stack it was measured from. */
 export interface MeasuredFrame {
@@ -88,39 +93,66 @@ function measureBest(
   const start = clock();
   const places = findFringes(picture, options.region ?? null);
   ms.find = clock() - start;
-  refuseTurning(places);
-  refuseCrossed(places);
+  refuseCrossed(picture, places);
   let refused: Refused | null = null;
   for (const place of places.slice(0, PLACES_TRIED)) {
     try {
-      const measured = measureAt(picture, place, setup, options, ms, clock);
-      if (measured !== null) return measured;
+      const look = lookAt(picture, place, setup, options, ms, clock);
+      // Straight fringes that fit where most light is are no rings, whatever else is in the frame.
+      const plain = place === places[0] && look !== null && look.misfit < PLAIN_MISFIT;
+      if (look !== null && !plain && looksLikeRings(picture)) throw ringsRefusal();
+      if (look !== null) return measureLook(look, picture, setup, options, ms, clock);
     } catch (error) {
       if (!(error instanceof Refused)) throw error;
       refused = refused === null || refused.code === 'NO_FRINGES' ? error : refused;
     }
   }
-  if (refused === null || refused.code === 'NO_FRINGES') refuseByLight(picture);
+  if (looksLikeRings(picture)) throw ringsRefusal();
+  if (refused === null || refused.code === 'NO_FRINGES') {
+    refuseByLight(picture);
+    refuseTooFew(picture, curvePrior(setup));
+  }
   throw refused ?? noFringes();
 }
 
-/** First look, region, band stack and the measurement of one place; null where nothing can be fitted. */
-function measureAt(
+interface GoodLook {
+  ask: PlaceAsk;
+  look: PlaceFit;
+  misfit: number;
+}
+
+/** First look at one place and its region; null where nothing can be fitted. */
+function lookAt(
   picture: Picture,
   place: FringePlace,
   setup: SetupValues,
   options: FitOptions,
   ms: Timing,
   clock: Clock,
-): MeasuredFrame | null {
+): GoodLook | null {
   const before = clock();
   const ask = { picture, rect: place.rect, spacingPx: place.spacingPx, prior: curvePrior(setup) };
-  const quick = lookAtPlace(ask);
-  if (quick === null) return null;
-  const look = options.region ? quick : growPlace(ask, quick);
-  judgePlace(look, spreadOf(look.band));
-  const plan = planFor(ask, look, options.region ?? null);
-  const stack = stackOf(picture, plan);
+  try {
+    const quick = lookAtPlace(ask);
+    if (quick === null) return null;
+    const look = options.region ? quick : growPlace(ask, quick);
+    return { ask, look, misfit: judgePlace(look, spreadOf(look.band)).misfit };
+  } finally {
+    ms.profile += clock() - before;
+  }
+}
+
+/** The band stack of a good look and the measurement from it. */
+function measureLook(
+  { ask, look }: GoodLook,
+  picture: Picture,
+  setup: SetupValues,
+  options: FitOptions,
+  ms: Timing,
+  clock: Clock,
+): MeasuredFrame {
+  const before = clock();
+  const stack = stackOf(picture, planFor(ask, look, options.region ?? null));
   ms.profile += clock() - before;
   return withZero(stack, setup, options, ms);
 }
@@ -133,25 +165,24 @@ function withZero(stack: FrameStack, setup: SetupValues, options: FitOptions, ms
   return options.zeroShift ? fromPlan(stack, setup, options, ms) : { stack, result: plainly };
 }
 
-/** One spacing at several angles to both sides: the fringes run round a centre. */
-function refuseTurning(places: FringePlace[]): void {
-  const most = Math.max(...places.map((p) => p.patch.energy));
-  for (const place of places.filter((p) => p.patch.energy > TURNING_SHARE * most)) {
-    const turned = places
-      .filter(
-        (o) =>
-          o !== place &&
-          Math.abs(Math.log(o.spacingPx / place.spacingPx)) < 0.1 &&
-          o.patch.energy > TURNING_ENERGY * place.patch.energy,
-      )
-      .map((o) => wrapAngleDeg(o.rect.angleDeg - place.rect.angleDeg))
-      .filter((a) => Math.abs(a) > 8 && Math.abs(a) < 80);
-    if (turned.some((a) => a > 0) && turned.some((a) => a < 0)) throw ringsRefusal();
+/** Fringes too wide to be found as a wave: one or two that fit over the whole frame are named, not denied. */
+function refuseTooFew(picture: Picture, prior: CurvePrior | null): void {
+  const { widthPx, heightPx } = picture;
+  const rect = { cxPx: widthPx / 2, cyPx: heightPx / 2 };
+  for (const angleDeg of [0, 90]) {
+    const [lengthPx, across] = angleDeg === 0 ? [widthPx, heightPx] : [heightPx, widthPx];
+    const whole = { ...rect, lengthPx, heightPx: across, angleDeg };
+    const look = lookAtPlace({ picture, rect: whole, spacingPx: lengthPx / WIDE_FRINGES, prior });
+    if (look === null) continue;
+    const { fringes, misfit, swingSigmas } = weigh(look);
+    const plain = misfit < WIDE_MISFIT && swingSigmas > WIDE_SWING;
+    if (plain && fringes > 0 && fringes < 3 && look.band.fit.result.parameters[2] < 0.5)
+      throw tooFew(fringes);
   }
 }
 
 /** Two systems of one spacing that cross: a chessboard, cloth, a pixel screen, but no two-slit pattern. */
-function refuseCrossed(places: FringePlace[]): void {
+function refuseCrossed(picture: Picture, places: FringePlace[]): void {
   const [first, ...others] = places;
   const crossing = others.some(
     (o) =>
@@ -160,5 +191,5 @@ function refuseCrossed(places: FringePlace[]): void {
       Math.abs(Math.log(o.spacingPx / first.spacingPx)) < 0.15 &&
       angleBetween(o.rect.angleDeg, first.rect.angleDeg) > 30,
   );
-  if (crossing) throw noFringes();
+  if (crossing) throw looksLikeRings(picture) ? ringsRefusal() : noFringes();
 }

@@ -8,6 +8,7 @@ import {
   type SetupValues,
   type Timing,
 } from '@/lib/domain/reading-result';
+import { ratioU } from '@/lib/fit/fit-profile';
 import { listOrders } from '@/lib/fit/orders';
 import { pointAlong, toDegrees, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
 import type { Refused } from '@/lib/imaging/refused';
@@ -60,7 +61,7 @@ export function resultOf({ stack, region, measured, setup, options, ms }: Answer
     tiltDeg: wrapAngleDeg(place.rect.angleDeg - leanDeg),
     uTiltDeg: toDegrees(Math.atan(place.tilt.uSlope)),
     visibility: Math.min(1, evidence.visibility),
-    uVisibility: visibilityU(p, spread.covariance, fit.layout.size),
+    uVisibility: finiteOrNull(ratioU(p, spread.covariance, fit.layout.size)),
     zeroOrder: { xPx: zero.xPx, yPx: zero.yPx },
     orders,
     region,
@@ -129,13 +130,6 @@ function ordersOf(
   });
 }
 
-function visibilityU(p: Float64Array, c: Float64Array, n: number): number | null {
-  if (!(p[4] > 0)) return null;
-  const v = p[5] / p[4];
-  const variance = (c[5 * n + 5] + v * v * c[4 * n + 4] - 2 * v * c[4 * n + 5]) / (p[4] * p[4]);
-  return variance >= 0 && Number.isFinite(variance) ? Math.sqrt(variance) : null;
-}
-
 function clippedShare(place: PlaceFit): number {
   const { state, data } = place.band;
   let clipped = 0;
@@ -170,3 +164,5 @@ export function refusalOf(error: Refused, picture: PictureFacts | null, ms: Timi
     ms,
   };
 }
+
+const finiteOrNull = (v: number) => (Number.isFinite(v) ? v : null);

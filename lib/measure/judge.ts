@@ -1,5 +1,4 @@
-import { fitOneSlit, type ProfileFit } from '@/lib/fit/fit-profile';
-import { AveragedModel } from '@/lib/fit/fit-profile';
+import { AveragedModel, fitOneSlit, ratioU, type ProfileFit } from '@/lib/fit/fit-profile';
 import { ModelPoint, orderAt } from '@/lib/fit/two-slit-model';
 import { solveSymmetric } from '@/lib/fit/small-matrix';
 import { toModel } from '@/lib/fit/orders';
@@ -12,11 +11,17 @@ const FEWEST_FRINGES = 3;
 const LEAST_SWING_SIGMAS = 6;
 const MOST_RELATIVE_U = 0.02;
 const MOST_MISFIT = 0.3;
+/** One or two bumps are fringes only where they follow the pattern well. */
+const FEW_MISFIT = 0.1;
 /** Slits wider than this share of their separation are one slit with a bar in it. */
 const MOST_RATIO = 0.8;
 const MOST_HARMONIC = 0.2;
+const CLEAN_MISFIT = 0.02;
 const LEAST_GAIN = 60;
 const LEAST_VISIBILITY = 0.03;
+const MOST_VISIBILITY = 1.08;
+/** An envelope this flat has no end in the region. */
+const LEAST_RATIO = 0.01;
 const MOST_BOW = 0.22;
 const MOST_BARREL = 0.03;
 
@@ -147,7 +152,8 @@ function showsLobes(place: PlaceFit, evidence: Evidence): boolean {
   const { fit, grid } = place.band;
   const p = fit.result.parameters;
   const lobe = (p[0] * fit.unitPx) / p[2];
-  return evidence.swingSigmas > 15 && 2 * grid.half > 2.6 * lobe && p[2] < 1.19;
+  const enough = evidence.misfit < CLEAN_MISFIT ? 2.1 : 2.6;
+  return evidence.swingSigmas > 15 && 2 * grid.half > enough * lobe && p[2] < 1.19;
 }
 
 /** Does one slit describe the data as well? The second must improve chi-square well beyond its own noise. */
@@ -177,6 +183,9 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
       'ONE_SLIT',
       'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.',
     );
+  // Where the light is the same over the whole region, a sharp periodic thing is a blind or a wall, not a slit plate.
+  const bounded = fit.result.parameters[2] > LEAST_RATIO;
+  if (evidence.harmonic > MOST_HARMONIC && !bounded) throw noFringes();
   if (evidence.harmonic > MOST_HARMONIC) {
     throw new Refused(
       'MANY_SLITS',
@@ -188,6 +197,7 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
   if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence))
     throw showsLobes(place, evidence) ? oneSlit() : noFringes();
+  if (tooDeep(fit, evidence)) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const bow = Math.abs(place.tilt.bowPx) * 1.5;
   const barrel = Math.abs(place.tilt.barrel);
   if (
@@ -196,13 +206,9 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   ) {
     throw ringsRefusal();
   }
-  if (evidence.fringes < FEWEST_FRINGES) {
-    throw new Refused(
-      'TOO_FEW_FRINGES',
-      `Only ${evidence.fringes} bright ${evidence.fringes === 1 ? 'fringe is' : 'fringes are'} in the frame; at least ${FEWEST_FRINGES} are needed. Move the camera nearer or choose a wider region.`,
-    );
-  }
   if (!(evidence.misfit < MOST_MISFIT)) throw noFringes();
+  if (evidence.fringes < FEWEST_FRINGES)
+    throw evidence.misfit < FEW_MISFIT ? tooFew(evidence.fringes) : noFringes();
   const u = Math.sqrt(spread.covariance[0]) / fit.result.parameters[0];
   if (!(u < MOST_RELATIVE_U)) {
     throw new Refused(
@@ -217,6 +223,22 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
     );
   }
   return evidence;
+}
+
+/** Fringes deeper than their own light cannot be: the swing belongs to something else. */
+function tooDeep(fit: ProfileFit, evidence: Evidence): boolean {
+  const c = fit.result.covariance;
+  if (c === null || fit.layout.tone >= 0) return false;
+  const scale = Math.max(1, fit.result.chiSquare / Math.max(1, fit.result.dof));
+  const u = ratioU(fit.result.parameters, c, fit.layout.size) * Math.sqrt(scale);
+  return evidence.visibility > MOST_VISIBILITY && evidence.visibility - 1 > 5 * u;
+}
+
+export function tooFew(fringes: number): Refused {
+  return new Refused(
+    'TOO_FEW_FRINGES',
+    `Only ${fringes} bright ${fringes === 1 ? 'fringe is' : 'fringes are'} in the frame; at least ${FEWEST_FRINGES} are needed. Move the camera nearer or choose a wider region.`,
+  );
 }
 
 export function noFringes(): Refused {

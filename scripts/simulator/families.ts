@@ -63,6 +63,7 @@ function withSpacing(scene: Scene, px: number): Scene {
 function plain(r: Random): Scene {
   const widthPx = 1024;
   const heightPx = 192;
+  const constant = r.between(0, 0.04);
   const scene: Scene = {
     ...PLAIN_SCENE,
     widthPx,
@@ -76,8 +77,9 @@ function plain(r: Random): Scene {
     tiltDeg: r.between(-0.3, 0.3),
     bandHalfPx: r.uniform() < 0.5 ? Infinity : r.between(60, 90),
     stray: {
-      constant: r.between(0, 0.04),
-      slope: r.between(-0.02, 0.02),
+      constant,
+      // Light is never less than none, so its slope is at most what the constant part leaves room for.
+      slope: r.between(-1, 1) * Math.min(0.02, 2 * constant),
       hump: 0,
       humpXPx: 0,
       humpSigmaPx: 1,
@@ -224,7 +226,7 @@ export const FAMILIES: Family[] = [
       scene: {
         ...scene,
         stray: {
-          constant: 0.02,
+          constant: 0.07,
           slope: r.between(-0.1, 0.1),
           hump: r.between(0.05, 0.2),
           humpXPx: r.between(200, 800),
