@@ -1,5 +1,6 @@
 import { refineBands, type BandFit } from './fit-bands';
-import { refit } from './fit-profile';
+import { refit, type ProfileFit, type RippleStart } from './fit-profile';
+import { findRipple } from './ripple';
 import type { ModelTerms } from './two-slit-model';
 
 const MOST_BACKGROUND = 6;
@@ -12,34 +13,38 @@ export const MARGIN = 4;
  * (Schwarz 1978: chi-square + parameters * ln points) falls by more than a margin. Chi-square is scaled by what the best
  * model leaves, so that structure no term describes does not buy terms either.
  */
-export function chooseTerms(
-  band: BandFit,
-  allow: { curve: boolean; tone: boolean; chirp: boolean },
-): BandFit {
+export function chooseTerms(band: BandFit, allow: { tone: boolean; chirp: boolean }): BandFit {
   let now = band;
   for (let added = 0; ; added++) {
     if (added >= MOST_ADDED) return now;
-    let best: { terms: ModelTerms; gain: number } | null = null;
-    for (const terms of offers(now.fit.layout.terms, allow)) {
-      const trial = refit(now.profile, now.fit, terms);
+    let best: { terms: ModelTerms; gain: number; ripple: RippleStart | null } | null = null;
+    const ripple = misfits(now.fit) ? findRipple(now.profile, now.fit) : null;
+    for (const terms of offers(now.fit.layout.terms, { ...allow, ripple: ripple !== null })) {
+      const trial = refit(now.profile, now.fit, terms, ripple);
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));
       const extra = trial.layout.size - now.fit.layout.size;
       const gain =
         (now.fit.result.chiSquare - trial.result.chiSquare) / scale - extra * Math.log(trial.points) - MARGIN;
-      if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain };
+      if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain, ripple };
     }
     // Noise and masks once more with the bands' share of what was added.
     if (best === null) return added === 0 ? now : (refineBands(now, now.fit.layout.terms) ?? now);
-    const next = refineBands(now, best.terms);
+    const next = refineBands(now, best.terms, best.ripple);
     if (next === null) return now;
     now = next;
   }
 }
 
+/** Does the fit miss the data by more than their noise? */
+function misfits({ result }: ProfileFit): boolean {
+  const dof = Math.max(1, result.dof);
+  return result.chiSquare / dof > 1 + 3 * Math.sqrt(2 / dof);
+}
+
 export function offers(
   terms: ModelTerms,
-  allow: { curve: boolean; tone: boolean; chirp: boolean },
+  allow: { tone: boolean; chirp: boolean; ripple: boolean },
 ): ModelTerms[] {
   const list: ModelTerms[] = [];
   if (terms.background < MOST_BACKGROUND) list.push({ ...terms, background: terms.background + 1 });
@@ -47,5 +52,7 @@ export function offers(
   if (!terms.chirp && allow.chirp) list.push({ ...terms, chirp: true });
   if (!terms.tone && allow.tone) list.push({ ...terms, tone: true });
   if (!terms.fade) list.push({ ...terms, fade: true });
+  if (!terms.unequal) list.push({ ...terms, unequal: true });
+  if (!terms.ripple && allow.ripple) list.push({ ...terms, ripple: true });
   return list;
 }

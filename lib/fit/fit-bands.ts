@@ -24,6 +24,7 @@ import {
   stepsToZero,
   type CurvePrior,
   type ProfileFit,
+  type RippleStart,
 } from './fit-profile';
 import { chooseZero } from './zero-order';
 import { fitNoise, varianceAt, type Noise } from './noise';
@@ -100,6 +101,7 @@ export function fitBands(
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
   undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
+  undoFan(data, state, shifts);
   let band: BandFit = {
     data,
     fit,
@@ -137,6 +139,22 @@ function undoLean(data: BandData, state: BandState, shifts: BandShifts, spacingP
   }
 }
 
+const FAN_SIGMAS = 5;
+
+/**
+ * A view from above or below makes the spacing change along the fringes. Where that shows, every band is stretched back to
+ * the spacing in the middle of the region; mixed as they are, the outer orders would wash out.
+ */
+function undoFan(data: BandData, state: BandState, shifts: BandShifts): void {
+  const fan = weightedLine(data.bandV, shifts.stretch, shifts.stretchWeight);
+  const ub = fan.ub * Math.sqrt(Math.max(1, fan.chiSquare / Math.max(1, fan.n - 2)));
+  if (!Number.isFinite(fan.b) || !(Math.abs(fan.b) > FAN_SIGMAS * ub)) return;
+  for (let k = 0; k < data.bands; k++) {
+    state.stretch[k] += fan.b * data.bandV[k];
+    shifts.stretch[k] -= fan.b * data.bandV[k];
+  }
+}
+
 /** Weighted line without values beyond `most`, then without those beyond four of the remaining ones' median distance. */
 function robustLine(
   t: Float64Array,
@@ -171,7 +189,11 @@ function withBestZero(band: BandFit): BandFit | null {
 }
 
 /** One more round: noise and masks from the bands' agreement, a new profile, the fit with these terms, the bands again. */
-export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null {
+export function refineBands(
+  before: BandFit,
+  terms: ModelTerms,
+  ripple: RippleStart | null = null,
+): BandFit | null {
   const { data, state, grid, limits } = before;
   const spacing = before.fit.result.parameters[0] * before.fit.unitPx;
   const agreed = agreeOn(before);
@@ -181,11 +203,12 @@ export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null 
   const whole = combineBands(data, state, grid, expected, spacing);
   const profile = maskBins(before, whole) ? combineBands(data, state, grid, expected, spacing) : whole;
   if (countUsed(profile) < FEWEST_POINTS) return null;
-  const next = refit(profile, before.fit, terms);
+  const next = refit(profile, before.fit, terms, ripple);
   const fit = rebase(profile, next, stepsToZero(next, before.zeroAtPx));
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
   undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
+  undoFan(data, state, shifts);
   return { ...before, fit, profile, table, shifts, limits };
 }
 

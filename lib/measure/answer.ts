@@ -16,6 +16,7 @@ import type { FrameStack, PictureFacts } from './band-stack';
 import { curvesOf, stripOf } from './curves';
 import { ENGINE_VERSION } from './engine-version';
 import { findingsOf } from './findings';
+import { bandwidthOf, slitOf, wordsOf } from './further-results';
 import type { Measured } from './measured';
 import type { PlaceFit } from './place';
 import { frameEffects, wavelengthOf } from './wavelength';
@@ -95,7 +96,10 @@ export function resultOf({ stack, region, measured, setup, options, ms }: Answer
     strip: stripOf(curves),
     ms,
   };
+  result.bandwidth = bandwidthOf(measured, wavelength.airNm);
   result.findings = findingsOf({ result, measured, picture, setup });
+  result.words = wordsOf(result.findings);
+  result.slit = result.words.width === 'stop' ? null : slitOf(measured, setup);
   result.message = messageFor(result);
   return result;
 }

@@ -1,10 +1,11 @@
 /** Checks of the pattern itself: envelope, contrast, stray light, misfit. */
 import type { Finding } from '@/lib/domain/reading-result';
 import { finding, movedBy, numberText, percent, type FindingContext } from './finding-context';
+import { lineShare } from './further-results';
 
 export function patternFindings(c: FindingContext): Finding[] {
-  const list = [pull(c), contrast(c), background(c), misfit(c)];
-  for (const more of [missing(c), plate(c), bandwidth(c)]) if (more) list.push(more);
+  const list = [pull(c), contrast(c), background(c), misfit(c), lock(c), unequal(c), second(c), bandwidth(c)];
+  for (const more of [missing(c), plate(c)]) if (more) list.push(more);
   return list;
 }
 
@@ -127,24 +128,117 @@ function plate(c: FindingContext): Finding | null {
   });
 }
 
-/** Visibility falling with order as a Gaussian line: FWHM = width * lambda * sqrt(2 ln 2) / pi. */
-function bandwidth(c: FindingContext): Finding | null {
+/** Did the fit take every second fringe for two, or two for one? */
+function lock(c: FindingContext): Finding {
+  const { lock: share, harmonic } = c.measured.evidence;
+  const doubtful = share > 0.08 || Math.abs(harmonic) > 0.12;
+  return finding(c, {
+    check: 'lock',
+    word: doubtful ? 'look' : 'clear',
+    relative: doubtful ? (share > 0.08 ? 1 : 0.5) : 0,
+    seen: doubtful
+      ? 'Every second fringe looks different from its neighbours: the spacing may be half or double.'
+      : 'No swing at half or at double the spacing.',
+    size: doubtful ? 'The other choice would move the wavelength by {size}.' : 'Effect {size}.',
+    done: 'Both other spacings were compared with the one that was fitted.',
+    remedy: doubtful ? 'Look at the fringes beside the orders; choose a cleaner region.' : 'Nothing to do.',
+  });
+}
+
+function unequal(c: FindingContext): Finding {
   const { fit } = c.measured.place.band;
-  if (fit.layout.fade < 0) return null;
-  const share = (fit.result.parameters[fit.layout.fade] * Math.sqrt(2 * Math.LN2)) / Math.PI;
-  const nm = c.result.wavelengthNm === null ? null : share * c.result.wavelengthNm;
+  const { unequal: index } = fit.layout;
+  if (index < 0)
+    return finding(c, {
+      check: 'unequal',
+      word: 'clear',
+      relative: 0,
+      seen: 'No difference between the two slits shows.',
+      size: 'Effect {size}.',
+      done: 'Slits of unequal width were tried.',
+      remedy: 'Nothing to do.',
+    });
+  const share = 2 * fit.result.parameters[index];
+  return finding(c, {
+    check: 'unequal',
+    word: 'clear',
+    width: share > 0.1 ? 'look' : undefined,
+    visibility: share > 0.1 ? 'look' : undefined,
+    relative: movedBy(c),
+    seen: `The two slits differ by about ${percent(share)} in width.`,
+    size: 'Allowing for it moved the wavelength by {size}.',
+    done: 'Two widths were fitted; the width shown is their mean.',
+    remedy: share > 0.1 ? 'Clean the slit plate, and measure its slits again.' : 'Nothing to do.',
+  });
+}
+
+/** A second, weak fringe system: cover glass or a window. */
+function second(c: FindingContext): Finding {
+  const { fit } = c.measured.place.band;
+  const { ripple } = fit.layout;
+  if (ripple < 0)
+    return finding(c, {
+      check: 'second-system',
+      word: 'clear',
+      relative: 0,
+      seen: 'No second fringe system was found.',
+      size: 'Effect {size}.',
+      done: 'The misfit was searched for a wave of another spacing.',
+      remedy: 'Nothing to do.',
+    });
+  const p = fit.result.parameters;
+  const strength = Math.hypot(p[ripple + 1], p[ripple + 2]);
+  const period = fit.unitPx / p[ripple];
+  const scale = c.setup.scaleUmPerPx;
+  const width = scale ? `${numberText((period * scale.value) / 1000)} mm` : `${numberText(period)} px`;
+  return finding(c, {
+    check: 'second-system',
+    word: strength > 0.005 ? 'look' : 'clear',
+    width: 'look',
+    visibility: 'look',
+    relative: movedBy(c),
+    seen: `A second, weaker fringe system is in the frame (${percent(strength)}, period ${width}).`,
+    size: 'Allowing for it moved the wavelength by {size}.',
+    done: 'It was fitted together with the pattern.',
+    remedy: 'Take away or tilt the window or cover glass it comes from.',
+  });
+}
+
+const NARROW_NM = 5;
+
+/** Visibility falling with order. */
+function bandwidth(c: FindingContext): Finding {
+  const { fit } = c.measured.place.band;
+  const width = c.result.bandwidth ?? null;
+  if (fit.layout.fade < 0) {
+    const limit = width?.limitNm ?? null;
+    return finding(c, {
+      check: 'bandwidth',
+      word: 'clear',
+      relative: 0,
+      seen:
+        limit === null
+          ? 'The contrast does not fade with order as far as this frame can tell.'
+          : `The contrast does not fade with order: the line is narrower than ${numberText(Math.max(NARROW_NM, limit))} nm.`,
+      size: 'Effect {size}.',
+      done: 'Contrast falling with order was tried.',
+      remedy: 'Nothing to do.',
+    });
+  }
+  const share = lineShare(fit.result.parameters[fit.layout.fade]);
+  const nm = width?.fwhmNm ?? null;
+  const u = width?.uFwhmNm ?? null;
   const line =
     nm === null
       ? `${percent(share)} of the wavelength`
-      : nm < 5
-        ? 'below 5 nm'
-        : `about ${numberText(nm)} nm`;
-  const moved = movedBy(c);
+      : nm < NARROW_NM
+        ? `below ${NARROW_NM} nm`
+        : `about ${numberText(nm)}${u === null ? '' : ` ± ${numberText(2 * u)}`} nm`;
   return finding(c, {
     check: 'bandwidth',
-    word: nm !== null && nm < 5 ? 'clear' : 'look',
+    word: nm !== null && nm < NARROW_NM ? 'clear' : 'look',
     visibility: 'look',
-    relative: moved,
+    relative: movedBy(c),
     seen: `Contrast fades outward: the line is ${line} wide.`,
     size: 'Allowing for it moved the wavelength by {size}.',
     done: 'Visibility falling with order was fitted.',

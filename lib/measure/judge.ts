@@ -16,6 +16,7 @@ const FEW_MISFIT = 0.1;
 /** Slits wider than this share of their separation are one slit with a bar in it. */
 const MOST_RATIO = 0.8;
 const MOST_HARMONIC = 0.2;
+const MOST_LOCK = 0.3;
 const CLEAN_MISFIT = 0.02;
 const LEAST_GAIN = 60;
 const LEAST_VISIBILITY = 0.03;
@@ -35,6 +36,8 @@ export interface Evidence {
   /** Second harmonic over first: 0 for two slits, 0.5 for three. */
   harmonic: number;
   visibility: number;
+  /** Swing at half the fitted frequency over the swing at it: far above 0 where the fit locked on half the spacing. */
+  lock: number;
 }
 
 /** What speaks for two slits in a fitted place. */
@@ -72,8 +75,43 @@ export function weigh(place: PlaceFit): Evidence {
     swingSigmas: p[5] / uSwing,
     misfit: n > 0 && swing > 0 ? Math.sqrt(Math.max(0, rest - n) / swing) : Infinity,
     harmonic: secondHarmonic(place),
-    visibility: p[4] > 0 ? p[5] / p[4] : 0,
+    visibility: visibilityOf(fit),
+    lock: lockOn(place),
   };
+}
+
+/** Contrast of the light at the envelope's middle: B/A, less what slits of unequal width lose: (1 - e^2)/(1 + e^2). */
+function visibilityOf({ layout, result }: ProfileFit): number {
+  const p = result.parameters;
+  if (!(p[4] > 0)) return 0;
+  const e = layout.unequal < 0 ? 0 : p[layout.unequal];
+  return (p[5] / p[4]) * ((1 - e * e) / (1 + e * e));
+}
+
+/** Weighted regression of the misfit on E cos(pi m), E sin(pi m): fringes twice as wide as the fitted ones. */
+function lockOn(place: PlaceFit): number {
+  const { fit, profile } = place.band;
+  const p = fit.result.parameters;
+  const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
+  const s = { cc: 0, cs: 0, ss: 0, rc: 0, rs: 0 };
+  for (let k = 0; k < profile.size; k++) {
+    if (!Number.isFinite(profile.sigma[k])) continue;
+    const x = toModel(fit, profile.u[k]);
+    if (!model.evaluate(p, x, profile.node[k] / fit.unitPx, profile.nodeWeight[k], false)) continue;
+    const e = envelopeAt(place, profile.u[k]);
+    const phase = Math.PI * orderAt(fit.layout, fit.fixed, p, x);
+    const c = e * Math.cos(phase);
+    const q = e * Math.sin(phase);
+    const r = profile.light[k] / fit.unitLight - model.light;
+    s.cc += c * c;
+    s.cs += c * q;
+    s.ss += q * q;
+    s.rc += c * r;
+    s.rs += q * r;
+  }
+  const det = s.cc * s.ss - s.cs * s.cs;
+  if (!(det > 0) || !(p[5] > 0)) return 0;
+  return (2 * Math.hypot(s.ss * s.rc - s.cs * s.rs, s.cc * s.rs - s.cs * s.rc)) / det / p[5];
 }
 
 function envelopeAt(place: PlaceFit, u: number): number {
@@ -197,6 +235,8 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
   if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence))
     throw showsLobes(place, evidence) ? oneSlit() : noFringes();
+  // Fringes as strong at half the frequency: every second one was taken for two.
+  if (evidence.lock > MOST_LOCK) throw noFringes();
   if (tooDeep(fit, evidence)) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const bow = Math.abs(place.tilt.bowPx) * 1.5;
   const barrel = Math.abs(place.tilt.barrel);

@@ -81,7 +81,7 @@ function measureRegion(
   });
   if (first === null) throw noFringes();
   const plainSpacing = first.fit.result.parameters[0] * first.fit.unitPx;
-  const band = chooseTerms(first, { curve: prior === null, tone: true, chirp: true });
+  const band = chooseTerms(first, { tone: true, chirp: true });
   const place: PlaceFit = { rect, band, tilt: fitTilt(band) };
   const zero = settleZero(place, zeroAtPx);
   place.tilt = fitTilt(place.band);
