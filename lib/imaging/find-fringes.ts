@@ -1,4 +1,5 @@
 import { planeFor, tracePatch, type FringePatch } from './demodulate';
+import { fineLevels } from './fine-level';
 import { toDegrees, toRadians, wrapAngleDeg, type Rectangle } from './geometry';
 import type { Picture } from './picture';
 import { buildPyramid } from './pyramid';
@@ -12,16 +13,21 @@ export interface FringePlace {
 }
 
 const WAVES_TRIED = 7;
+/** Votes below this share of the strongest wave's are noise; fringes beside a livelier pattern have far more. */
+const WEAKEST_WAVE = 1e-3;
+/** Planes are made whole up to this size; of finer levels only tiles are read. */
+const COARSE_PIXELS = 400_000;
 /** Bands of cells with less than this share of the liveliest one's light are not part of the pattern. */
 const EDGE_SHARE = 0.1;
 
 /** Candidates for the pattern, the one with most coherent light first. Finer than 2.2 px is not looked for. */
 export function findFringes(picture: Picture, within: Rectangle | null): FringePlace[] {
-  const planes = buildPyramid(picture);
+  const planes = buildPyramid(picture, COARSE_PIXELS);
+  const levels = [...fineLevels(picture, planes[0].factor), ...planes];
+  const waves = findWaves(levels, WAVES_TRIED);
   const places: FringePlace[] = [];
-  for (const wave of findWaves(planes, WAVES_TRIED)) {
-    const period = 1 / Math.hypot(wave.kx, wave.ky);
-    const patch = tracePatch(planeFor(planes, period), wave);
+  for (const wave of waves.filter((w) => w.weight > WEAKEST_WAVE * waves[0].weight)) {
+    const patch = tracePatch(planeFor(levels, wave), wave);
     if (patch === null) continue;
     const place = placeOf(picture, patch, within);
     if (place === null) continue;

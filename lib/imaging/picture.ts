@@ -35,4 +35,7 @@ export interface Plane {
   data: Float32Array;
   /** Side of one of its pixels in px of the frame. */
   factor: number;
+  /** Its corner in the frame, px; 0 but for a window. */
+  x0Px: number;
+  y0Px: number;
 }
