@@ -3,6 +3,7 @@ import sharp, { type Metadata, type Sharp } from 'sharp';
 import { chooseChannel, type ChannelChoice } from './channel';
 import { iccToneCurve } from './icc';
 import { findLevels, histogram } from './levels';
+import { turnUpright } from './orientation';
 import type { Picture, SourceFacts } from './picture';
 import { Refused, type PictureBrief } from './refused';
 import { jpegQuality, readPng, readTiff, sniffKind, type FileKind, type PngFacts } from './sniff';
@@ -20,7 +21,9 @@ const SMALLEST_SIDE_PX = 24;
 const SMALLEST_LONG_SIDE_PX = 48;
 /** A lossy colour file above this size is looked at in small before the channel is decoded at full size. */
 const LOOK_FIRST_PIXELS = 1_500_000;
-const LOOK_SIDE_PX = 700;
+const LOOK_SIDE_PX = 500;
+/** Red: most two-slit frames are of red light. */
+const LIKELY_CHANNEL = 0;
 
 interface Header {
   kind: FileKind;
@@ -140,29 +143,14 @@ async function decodeChannel(
   wish: ToneWish,
   limits: DecodeLimits,
 ): Promise<Picture> {
-  const { kind, meta, bits, colour, brief } = header;
+  const { kind, meta, bits, brief } = header;
   const curveOf = (channel: 'grey' | 'red' | 'green' | 'blue') => toneFor(header, wish, channel);
-  let choice: ChannelChoice = { index: 0, name: 'grey', colour: false, clippedShare: [] };
-  let samples: Uint8Array | Uint16Array;
-  if (!colour) {
-    samples = await rawSamples(
-      upright(open(bytes, limits), meta)
-        .extractChannel(0)
-        .toColourspace(bits === 16 ? 'grey16' : 'b-w'),
-      bits,
-    );
-  } else if (kind === 'JPEG' && brief.widthPx * brief.heightPx > LOOK_FIRST_PIXELS) {
-    const { data, info } = await open(bytes, limits)
-      .resize({ width: LOOK_SIDE_PX, height: LOOK_SIDE_PX, fit: 'inside' })
-      .raw()
-      .toBuffer({ resolveWithObject: true });
-    choice = chooseChannel(new Uint8Array(data), info.width, info.height, 255, curveOf('red').toLinear);
-    samples = await rawSamples(upright(open(bytes, limits), meta).extractChannel(choice.index), 8);
-  } else {
-    ({ choice, samples } = await decodeAllChannels(bytes, header, limits, curveOf('red').toLinear));
-  }
+  const { choice, samples: stored } = await storedChannel(bytes, header, limits, () =>
+    lightTable(curveOf('red'), bits, bits === 16 ? 65535 : 255),
+  );
+  const samples = turnUpright(stored, meta.width, meta.height, meta.orientation ?? 1);
   const lossy = kind === 'JPEG' || kind === 'WebP';
-  const levels = findLevels(histogram(samples, bits), bits, lossy);
+  const levels = findLevels(histogram(samples, bits, brief.widthPx), bits, lossy);
   const curve = curveOf(channelName(choice));
   const source: SourceFacts = {
     format: `${kind}, ${bits} bit`,
@@ -186,6 +174,52 @@ async function decodeChannel(
   };
 }
 
+interface StoredChannel {
+  choice: ChannelChoice;
+  /** As the file has them, before the orientation tag. */
+  samples: Uint8Array | Uint16Array;
+}
+
+async function storedChannel(
+  bytes: Uint8Array,
+  header: Header,
+  limits: DecodeLimits,
+  lookLight: () => Float32Array,
+): Promise<StoredChannel> {
+  const { kind, bits, colour, brief } = header;
+  if (!colour) {
+    const grey = open(bytes, limits)
+      .extractChannel(0)
+      .toColourspace(bits === 16 ? 'grey16' : 'b-w');
+    return {
+      choice: { index: 0, name: 'grey', colour: false, clippedShare: [] },
+      samples: await rawSamples(grey, bits),
+    };
+  }
+  if (kind === 'JPEG' && brief.widthPx * brief.heightPx > LOOK_FIRST_PIXELS)
+    return decodeAfterLook(bytes, limits, lookLight());
+  return decodeAllChannels(bytes, header, limits, lookLight());
+}
+
+/**
+ * A large JPEG: the channel is chosen on a small picture, which costs little to decode. The channel that carries most
+ * lasers is decoded meanwhile, and another one only where the small picture says so.
+ */
+async function decodeAfterLook(
+  bytes: Uint8Array,
+  limits: DecodeLimits,
+  lookLight: Float32Array,
+): Promise<StoredChannel> {
+  const channel = (index: ChannelChoice['index']) => rawSamples(open(bytes, limits).extractChannel(index), 8);
+  const look = open(bytes, limits)
+    .resize({ width: LOOK_SIDE_PX, height: LOOK_SIDE_PX, fit: 'inside' })
+    .raw()
+    .toBuffer({ resolveWithObject: true })
+    .then(({ data, info }) => chooseChannel(new Uint8Array(data), info.width, info.height, lookLight));
+  const [choice, guessed] = await Promise.all([look, channel(LIKELY_CHANNEL)]);
+  return { choice, samples: choice.index === LIKELY_CHANNEL ? guessed : await channel(choice.index) };
+}
+
 const channelName = (choice: ChannelChoice) =>
   choice.name === 'red' || choice.name === 'green' || choice.name === 'blue' ? choice.name : 'grey';
 
@@ -194,22 +228,21 @@ async function decodeAllChannels(
   bytes: Uint8Array,
   header: Header,
   limits: DecodeLimits,
-  toLinear: (c: number) => number,
-): Promise<{ choice: ChannelChoice; samples: Uint8Array | Uint16Array }> {
+  lookLight: Float32Array,
+): Promise<StoredChannel> {
   const { meta, bits, brief } = header;
-  const pipeline = upright(open(bytes, limits), meta);
+  const { width, height } = meta;
+  const pipeline = open(bytes, limits);
   const rgb = await rawSamples(
-    meta.hasAlpha
-      ? pipeline.toColourspace(bits === 16 ? 'rgb16' : 'srgb')
-      : pipeline.removeAlpha().toColourspace(bits === 16 ? 'rgb16' : 'srgb'),
+    (meta.hasAlpha ? pipeline : pipeline.removeAlpha()).toColourspace(bits === 16 ? 'rgb16' : 'srgb'),
     bits,
   );
-  const n = brief.widthPx * brief.heightPx;
+  const n = width * height;
   const stride = Math.round(rgb.length / n);
-  const look = Math.max(1, Math.floor(Math.max(brief.widthPx, brief.heightPx) / LOOK_SIDE_PX));
-  const small = thinned(rgb, brief.widthPx, brief.heightPx, stride, look);
+  const look = Math.max(1, Math.floor(Math.max(width, height) / LOOK_SIDE_PX));
+  const small = thinned(rgb, width, height, stride, look);
   if (stride === 4) refuseAlphaOnly(small.rgb, rgb, n, brief);
-  const choice = chooseChannel(small.rgb, small.widthPx, small.heightPx, bits === 16 ? 65535 : 255, toLinear);
+  const choice = chooseChannel(small.rgb, small.widthPx, small.heightPx, lookLight);
   const samples = bits === 16 ? new Uint16Array(n) : new Uint8Array(n);
   for (let i = 0, j = choice.index; i < n; i++, j += stride) samples[i] = rgb[j];
   return { choice, samples };
@@ -278,10 +311,6 @@ function toneFor(header: Header, wish: ToneWish, channel: 'grey' | 'red' | 'gree
 
 function open(bytes: Uint8Array, limits: DecodeLimits): Sharp {
   return sharp(bytes, { limitInputPixels: limits.filePixels, ignoreIcc: true, failOn: 'warning' });
-}
-
-function upright(pipeline: Sharp, meta: Metadata): Sharp {
-  return (meta.orientation ?? 1) > 1 ? pipeline.autoOrient() : pipeline;
 }
 
 async function rawSamples(pipeline: Sharp, bits: 8 | 16): Promise<Uint8Array | Uint16Array> {

@@ -40,26 +40,32 @@ const SMALLEST_SNR = 3;
 const LARGEST_STEP_TURNS = 0.16;
 const REACH = 2;
 
-/** Plane on which a wave is sampled finely enough and not more than that. */
-export function planeFor(levels: readonly Level[], wave: WaveCandidate): Plane {
+/** Level on which a wave is sampled finely enough and not more than that. */
+export function levelFor(levels: readonly Level[], wave: WaveCandidate): Level {
   const periodPx = 1 / Math.hypot(wave.kx, wave.ky);
   let best = levels[0];
   for (const level of levels) if (periodPx / level.factor >= 5) best = level;
-  return 'picture' in best ? planeAt(best, wave.xPx, wave.yPx) : best;
+  return best;
 }
 
 /** Demodulates one wave in cells, grows the patch of continuous phase from its strongest cell and fits its phase. */
-export function tracePatch(
-  plane: Plane,
-  wave: WaveCandidate,
-  mayRetry = true,
-  thin = false,
-): FringePatch | null {
+export function tracePatch(level: Level, wave: WaveCandidate): FringePatch | null {
+  const plane = 'picture' in level ? planeAt(level, wave.xPx, wave.yPx) : level;
+  return trace(plane, wave, { mayRetry: true, thin: false, cleaned: new Map() });
+}
+
+interface Attempt {
+  mayRetry: boolean;
+  /** Flat cells. */
+  thin: boolean;
+  /** The plane without its outline, by the radius of the mean that was taken off. */
+  cleaned: Map<number, Plane>;
+}
+
+function trace(plane: Plane, wave: WaveCandidate, attempt: Attempt): FringePatch | null {
   const f = plane.factor;
-  // Without the mean over one period what is left is the fringes; a bright outline would leak into faint ones.
-  const period = 1 / (f * Math.hypot(wave.kx, wave.ky));
-  const clean =
-    period >= FINE_PERIOD ? withoutOutline(plane, Math.max(1, Math.round((period - 1) / 2))) : plane;
+  const { mayRetry, thin } = attempt;
+  const clean = cleanedPlane(plane, 1 / (f * Math.hypot(wave.kx, wave.ky)), attempt);
   const map = demodulateCells(clean, wave.kx * f, wave.ky * f, thin);
   const cells = growPatch(map);
   if (cells.length < 3) return null;
@@ -88,13 +94,14 @@ export function tracePatch(
   const ky = wave.ky + surface.gy;
   const shift = Math.hypot(surface.gx, surface.gy) / Math.hypot(wave.kx, wave.ky);
   // A wave vector that moved far was not demodulated well: once more with the better one.
-  if (mayRetry && shift > 0.02 && shift < 0.6) return tracePatch(plane, { ...wave, kx, ky }, false, thin);
+  if (mayRetry && shift > 0.02 && shift < 0.6)
+    return trace(plane, { ...wave, kx, ky }, { ...attempt, mayRetry: false });
   const k = Math.hypot(kx, ky);
   const moved = k / Math.hypot(wave.kx, wave.ky);
   if (!(moved > 0.6 && moved < 1.7)) return null;
   // A pattern only a few cells high says little about its direction: once more with flatter cells.
   if (!thin && rowsOf(cells, map, Math.abs(wave.kx) >= Math.abs(wave.ky)) < FEWEST_ROWS) {
-    const finer = tracePatch(plane, { ...wave, kx, ky }, true, true);
+    const finer = trace(plane, { ...wave, kx, ky }, { ...attempt, mayRetry: true, thin: true });
     if (finer !== null && finer.cells.length >= cells.length) return finer;
   }
   const ux = kx / k;
@@ -115,6 +122,15 @@ export function tracePatch(
       along: surface.xx * uy * uy - 2 * surface.xy * ux * uy + surface.yy * ux * ux,
     },
   };
+}
+
+/** Without the mean over one period what is left is the fringes; a bright outline would leak into faint ones. */
+function cleanedPlane(plane: Plane, period: number, attempt: Attempt): Plane {
+  if (period < FINE_PERIOD) return plane;
+  const radius = Math.max(1, Math.round((period - 1) / 2));
+  const clean = attempt.cleaned.get(radius) ?? withoutOutline(plane, radius);
+  attempt.cleaned.set(radius, clean);
+  return clean;
 }
 
 const FEWEST_ROWS = 6;

@@ -1,4 +1,4 @@
-import { planeFor, tracePatch, type FringePatch } from './demodulate';
+import { levelFor, tracePatch, type FringePatch } from './demodulate';
 import { fineLevels } from './fine-level';
 import { toDegrees, toRadians, wrapAngleDeg, type Rectangle } from './geometry';
 import type { Picture } from './picture';
@@ -13,6 +13,8 @@ export interface FringePlace {
 }
 
 const WAVES_TRIED = 7;
+/** Of those that need a finer level, which takes longer. */
+const FINE_TRIED = 4;
 /** Votes below this share of the strongest wave's are noise; fringes beside a livelier pattern have far more. */
 const WEAKEST_WAVE = 1e-3;
 /** Planes are made whole up to this size; of finer levels only tiles are read. */
@@ -26,8 +28,11 @@ export function findFringes(picture: Picture, within: Rectangle | null): FringeP
   const levels = [...fineLevels(picture, planes[0].factor), ...planes];
   const waves = findWaves(levels, WAVES_TRIED);
   const places: FringePlace[] = [];
+  let fine = 0;
   for (const wave of waves.filter((w) => w.weight > WEAKEST_WAVE * waves[0].weight)) {
-    const patch = tracePatch(planeFor(levels, wave), wave);
+    const level = levelFor(levels, wave);
+    if (level.factor < planes[0].factor && ++fine > FINE_TRIED) continue;
+    const patch = tracePatch(level, wave);
     if (patch === null) continue;
     const place = placeOf(picture, patch, within);
     if (place === null) continue;

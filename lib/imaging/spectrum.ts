@@ -23,8 +23,10 @@ const fft = new FFT(N);
 const LOWEST_BIN = 2.1;
 const FINEST_PERIOD_PX = 2.2;
 const TILES_PER_PLANE = 24;
+/** On a level that is read from the picture tiles take longer. */
+const TILES_PER_FINE_LEVEL = 16;
 /** Places of tiles on one level; a larger picture has them further apart. */
-const MOST_PLACES = 1100;
+const MOST_PLACES = 700;
 
 const OUTLINE_PX = 9;
 
@@ -58,10 +60,11 @@ function chooseTiles(level: Level): [number, number][] {
       tiles.push({ at: [x, y], energy: tileEnergy(level, x, y, tw, th) });
     }
   }
-  if (tiles.length <= TILES_PER_PLANE) return tiles.map((t) => t.at);
-  const lively = [...tiles].sort((a, b) => b.energy - a.energy).slice(0, TILES_PER_PLANE / 2);
-  const step = tiles.length / (TILES_PER_PLANE / 2);
-  const even = Array.from({ length: TILES_PER_PLANE / 2 }, (_, i) => tiles[Math.floor(i * step)]);
+  const many = 'picture' in level ? TILES_PER_FINE_LEVEL : TILES_PER_PLANE;
+  if (tiles.length <= many) return tiles.map((t) => t.at);
+  const lively = [...tiles].sort((a, b) => b.energy - a.energy).slice(0, many / 2);
+  const step = tiles.length / (many / 2);
+  const even = Array.from({ length: many / 2 }, (_, i) => tiles[Math.floor(i * step)]);
   return [...new Set([...lively, ...even])].map((t) => t.at);
 }
 
