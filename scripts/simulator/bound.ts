@@ -1,5 +1,5 @@
 import { fullScale, countsPerElectron, grainAreaPx, noiseVariance, type Camera } from './camera';
-import { bandAt, rangeOfU, strayAt, Table, trueSpacingPx, type Scene } from './scene';
+import { bandAt, rangeOfU, strayAt, Table, trueSpacingPx, unfanned, type Scene } from './scene';
 
 /**
  * Cramér–Rao bound of the spacing (and of the order centres) of one simulated frame: the inverse of
@@ -108,8 +108,8 @@ function accumulate(scene: Scene, camera: Camera, mean: Table, tables: [number, 
       const c = lying ? line : k;
       const x = c + 0.5 - scene.zeroXPx;
       const y = (lying ? k : line) + 0.5 - scene.zeroYPx;
-      const u = x * cos + y * sin;
       const v = -x * sin + y * cos;
+      const u = unfanned(scene, x * cos + y * sin, v);
       const lit = bandAt(scene, v);
       const light = mean.at(u);
       const signal = counts * (lit * light + strayAt(scene, c + 0.5));
