@@ -1,17 +1,12 @@
 import { measureFrame } from '@/lib/measure/analyse-frame';
 import { PLAIN_CAMERA, type Picture } from '../simulator/camera';
 import { encodeFile } from '../simulator/encode';
-import { setupOf } from '../simulator/family';
-import { PLAIN_SCENE, renderMean, trueSpacingPx, type Scene } from '../simulator/scene';
+import { setupOf, withSpacing } from '../simulator/family';
+import { PLAIN_SCENE, renderMean, type Scene } from '../simulator/scene';
 import { Table, type Section } from './section';
 
 const MOST_WAVELENGTH_NM = 0.01;
 const MOST_WIDTH_UM = 0.01;
-
-const withSpacing = (scene: Scene, px: number): Scene => ({
-  ...scene,
-  scaleUmPerPx: (scene.scaleUmPerPx * trueSpacingPx(scene)) / px,
-});
 
 const SCENES: Record<string, Scene> = {
   'd/w 5, 80 px a fringe': PLAIN_SCENE,

@@ -9,8 +9,8 @@ import { measureStack } from '@/lib/measure/measure-stack';
 import type { SetupValues } from '@/lib/domain/reading-result';
 import { photograph, PLAIN_CAMERA, type Camera } from '../simulator/camera';
 import { encodeFile } from '../simulator/encode';
-import { setupOf } from '../simulator/family';
-import { PLAIN_SCENE, trueSpacingPx, type Scene } from '../simulator/scene';
+import { setupOf, withSpacing } from '../simulator/family';
+import { PLAIN_SCENE, type Scene } from '../simulator/scene';
 import { Table, type Section } from './section';
 import { median, medianInterval } from './statistics';
 
@@ -42,10 +42,8 @@ const RUNS = 15;
 
 const clock = (): number => performance.now();
 
-function sceneOf(change: Partial<Scene>, spacingPx: number): Scene {
-  const scene = { ...PLAIN_SCENE, ...change };
-  return { ...scene, scaleUmPerPx: (scene.scaleUmPerPx * trueSpacingPx(scene)) / spacingPx };
-}
+const sceneOf = (change: Partial<Scene>, spacingPx: number): Scene =>
+  withSpacing({ ...PLAIN_SCENE, ...change }, spacingPx);
 
 async function timed(work: () => unknown): Promise<number> {
   const before = clock();
