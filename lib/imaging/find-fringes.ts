@@ -2,7 +2,7 @@ import { levelFor, tracePatch, type FringePatch } from './demodulate';
 import { fineLevels } from './fine-level';
 import { toDegrees, toRadians, wrapAngleDeg, type Rectangle } from './geometry';
 import type { Picture } from './picture';
-import { buildPyramid } from './pyramid';
+import { coarsePlanes } from './pyramid';
 import { findWaves } from './spectrum';
 
 /** A place in the frame that may hold two-slit fringes. */
@@ -14,17 +14,15 @@ export interface FringePlace {
 
 const WAVES_TRIED = 7;
 /** Of those that need a finer level, which takes longer. */
-const FINE_TRIED = 4;
+const FINE_TRIED = 3;
 /** Votes below this share of the strongest wave's are noise; fringes beside a livelier pattern have far more. */
 const WEAKEST_WAVE = 1e-3;
-/** Planes are made whole up to this size; of finer levels only tiles are read. */
-const COARSE_PIXELS = 400_000;
 /** Bands of cells with less than this share of the liveliest one's light are not part of the pattern. */
 const EDGE_SHARE = 0.1;
 
 /** Candidates for the pattern, the one with most coherent light first. Finer than 2.2 px is not looked for. */
 export function findFringes(picture: Picture, within: Rectangle | null): FringePlace[] {
-  const planes = buildPyramid(picture, COARSE_PIXELS);
+  const planes = coarsePlanes(picture);
   const levels = [...fineLevels(picture, planes[0].factor), ...planes];
   const waves = findWaves(levels, WAVES_TRIED);
   const places: FringePlace[] = [];

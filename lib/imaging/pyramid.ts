@@ -1,4 +1,4 @@
-import type { Picture, Plane } from './picture';
+import { COARSE_PIXELS, type Picture, type Plane } from './picture';
 
 /** Pixels a plane may have so that looking for fringes stays quick. */
 export const PLANE_PIXELS = 1_400_000;
@@ -6,13 +6,35 @@ export const PLANE_PIXELS = 1_400_000;
 const SMALLEST_PLANE_PX = 64;
 
 /**
- * Linear light reduced by whole-number block averages, from the finest that stays below `mostPixels` down to a
+ * Linear light reduced by whole-number block averages, from the finest that stays below PLANE_PIXELS down to a
  * plane of about 64 px. Light above the white level counts as white.
  */
-export function buildPyramid(picture: Picture, mostPixels = PLANE_PIXELS): Plane[] {
+export function buildPyramid(picture: Picture): Plane[] {
+  return halvings(reducePicture(picture, factorFor(picture, PLANE_PIXELS)));
+}
+
+/** As `buildPyramid`, from a coarser plane on, and from the small picture of the file where there is one. */
+export function coarsePlanes(picture: Picture): Plane[] {
+  const { small } = picture;
+  const factor = factorFor(picture, COARSE_PIXELS);
+  if (!small || small.factor > factor) return halvings(reducePicture(picture, factor));
+  const reduced = {
+    ...picture,
+    samples: small.samples,
+    widthPx: picture.widthPx / small.factor,
+    heightPx: picture.heightPx / small.factor,
+  };
+  return halvings({ ...reducePicture(reduced, factor / small.factor), factor });
+}
+
+function factorFor(picture: Picture, mostPixels: number): number {
   let factor = 1;
   while ((picture.widthPx / factor) * (picture.heightPx / factor) > mostPixels) factor *= 2;
-  const planes = [reducePicture(picture, factor)];
+  return factor;
+}
+
+function halvings(first: Plane): Plane[] {
+  const planes = [first];
   for (;;) {
     const last = planes[planes.length - 1];
     if (

@@ -1,7 +1,7 @@
 import { findFringes } from '@/lib/imaging/find-fringes';
 import { planeAt, fineLevels, readTile } from '@/lib/imaging/fine-level';
 import type { Picture } from '@/lib/imaging/picture';
-import { buildPyramid, reducePicture, withoutOutline } from '@/lib/imaging/pyramid';
+import { reducePicture, withoutOutline } from '@/lib/imaging/pyramid';
 import { histogram } from '@/lib/imaging/levels';
 
 /** A picture of cos² fringes of a given spacing and angle under a Gaussian band, 8 bit, with seeded noise. */
@@ -120,7 +120,7 @@ describe('levels of the pyramid', () => {
   });
 
   test('without its outline a pixel has lost the mean of the square about it, cut at the edges', () => {
-    const plane = buildPyramid(picture, 20_000)[0];
+    const plane = reducePicture(picture, 2);
     const r = 9;
     const clean = withoutOutline(plane, r);
     const { widthPx: w, heightPx: h } = plane;
