@@ -2,7 +2,7 @@ import { levelFor, tracePatch, type FringePatch } from './demodulate';
 import { fineLevels } from './fine-level';
 import { toDegrees, toRadians, wrapAngleDeg, type Rectangle } from './geometry';
 import type { Picture } from './picture';
-import { coarsePlanes } from './pyramid';
+import { coarsePlanes, PLANE_PIXELS } from './pyramid';
 import { findWaves } from './spectrum';
 
 /** A place in the frame that may hold two-slit fringes. */
@@ -13,8 +13,8 @@ export interface FringePlace {
 }
 
 const WAVES_TRIED = 7;
-/** Of those that need a finer level, which takes longer. */
-const FINE_TRIED = 3;
+/** Pixels of finer levels that are searched for them, which takes longest; a wave that is begun is finished. */
+const FINE_PIXELS = 3_000_000;
 /** Votes below this share of the strongest wave's are noise; fringes beside a livelier pattern have far more. */
 const WEAKEST_WAVE = 1e-3;
 /** Bands of cells with less than this share of the liveliest one's light are not part of the pattern. */
@@ -26,10 +26,13 @@ export function findFringes(picture: Picture, within: Rectangle | null): FringeP
   const levels = [...fineLevels(picture, planes[0].factor), ...planes];
   const waves = findWaves(levels, WAVES_TRIED);
   const places: FringePlace[] = [];
-  let fine = 0;
+  let finePixels = 0;
   for (const wave of waves.filter((w) => w.weight > WEAKEST_WAVE * waves[0].weight)) {
     const level = levelFor(levels, wave);
-    if (level.factor < planes[0].factor && ++fine > FINE_TRIED) continue;
+    if ('picture' in level) {
+      if (finePixels >= FINE_PIXELS) continue;
+      finePixels += Math.min(PLANE_PIXELS, level.widthPx * level.heightPx);
+    }
     const patch = tracePatch(level, wave);
     if (patch === null) continue;
     const place = placeOf(picture, patch, within);

@@ -3,6 +3,9 @@ import { COARSE_PIXELS, type Picture, type Plane } from './picture';
 /** Pixels a plane may have so that looking for fringes stays quick. */
 export const PLANE_PIXELS = 1_400_000;
 
+/** The same where the file gave no small picture: the less is made, the sooner it is searched. */
+const COARSE_PIXELS_READ = 150_000;
+
 const SMALLEST_PLANE_PX = 64;
 
 /**
@@ -16,7 +19,7 @@ export function buildPyramid(picture: Picture): Plane[] {
 /** As `buildPyramid`, from a coarser plane on, and from the small picture of the file where there is one. */
 export function coarsePlanes(picture: Picture): Plane[] {
   const { small } = picture;
-  const factor = factorFor(picture, COARSE_PIXELS);
+  const factor = factorFor(picture, small ? COARSE_PIXELS : COARSE_PIXELS_READ);
   if (!small || small.factor > factor) return halvings(reducePicture(picture, factor));
   const reduced = {
     ...picture,
