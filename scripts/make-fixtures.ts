@@ -8,7 +8,7 @@ import { crc32, deflateSync } from 'node:zlib';
 import sharp from 'sharp';
 import { photograph, PLAIN_CAMERA, type Camera } from './simulator/camera';
 import { encodeFile, type FileKind } from './simulator/encode';
-import { setupOf } from './simulator/families';
+import { setupOf } from './simulator/family';
 import { PLAIN_SCENE, trueSpacingPx, type Scene } from './simulator/scene';
 
 const FRAMES = path.join('fixtures', 'frames');

@@ -1,6 +1,6 @@
 import { PLAIN_CAMERA, type Camera } from '../simulator/camera';
 import type { FileKind } from '../simulator/encode';
-import type { FramePlan } from '../simulator/families';
+import type { FramePlan } from '../simulator/family';
 import { random, type Random } from '../simulator/random';
 import { PLAIN_SCENE, type Scene } from '../simulator/scene';
 
