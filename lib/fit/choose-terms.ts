@@ -20,7 +20,7 @@ export function chooseTerms(band: BandFit, allow: { tone: boolean; chirp: boolea
     let best: { terms: ModelTerms; gain: number; ripple: RippleStart | null } | null = null;
     const ripple = misfits(now.fit) ? findRipple(now.profile, now.fit) : null;
     for (const terms of offers(now.fit.layout.terms, { ...allow, ripple: ripple !== null })) {
-      const trial = refit(now.profile, now.fit, terms, ripple);
+      const trial = refit(now.profile, now.fit, terms, ripple, true);
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));
       const extra = trial.layout.size - now.fit.layout.size;

@@ -282,7 +282,7 @@ function agreedIn(band: BandFit, agreed: Float64Array, b: number, cell: number):
   return strayIn(state, grid, b, u) + gainIn(data, state, grid, b, cell) * light;
 }
 
-const NOISE_CELLS = 6000;
+const NOISE_CELLS = 4000;
 
 function measureNoise(band: BandFit, agreed: Float64Array): void {
   const { data, state, limits } = band;

@@ -92,6 +92,7 @@ export function refit(
   before: ProfileFit,
   terms: ModelTerms,
   ripple: RippleStart | null = null,
+  trial = false,
 ): ProfileFit {
   const layout = layoutOf(terms);
   const p = new Float64Array(layout.size);
@@ -120,6 +121,7 @@ export function refit(
       originPx: before.originPx,
       unitPx: before.unitPx,
       unitLight: before.unitLight,
+      trial,
     },
     p,
   );
@@ -192,6 +194,7 @@ export function fitOneSlit(profile: Profile, two: ProfileFit): LeastSquaresResul
 
 /** Chi-square that is not worth another step: parameters then stand within a few thousandths of their uncertainty. */
 const ENOUGH = 1e-5;
+const ENOUGH_FOR_TRIAL = 0.1;
 
 interface Frame {
   layout: ModelLayout;
@@ -202,6 +205,8 @@ interface Frame {
   /** Parameters that keep their start value. */
   hold?: number[];
   asItIs?: boolean;
+  /** Only chi-square is wanted, to a fraction of one. */
+  trial?: boolean;
 }
 
 function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
@@ -255,7 +260,7 @@ function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
       maxEvaluations: frame.asItIs ? 1 : 120,
       reductionTolerance: 1e-12,
       gradientTolerance: 1e-9,
-      enough: ENOUGH,
+      enough: frame.trial ? ENOUGH_FOR_TRIAL : ENOUGH,
     },
   );
   return { layout, fixed, result, originPx, unitPx, unitLight, points: n, curvePrior: prior };
