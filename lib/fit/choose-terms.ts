@@ -1,6 +1,5 @@
 import { refineBands, type BandFit } from './fit-bands';
-import { refit, type ProfileFit, type RippleStart } from './fit-profile';
-import { findRipple } from './ripple';
+import { refit } from './fit-profile';
 import type { ModelTerms } from './two-slit-model';
 
 const MOST_BACKGROUND = 6;
@@ -17,35 +16,25 @@ export function chooseTerms(band: BandFit, allow: { tone: boolean; chirp: boolea
   let now = band;
   for (let added = 0; ; added++) {
     if (added >= MOST_ADDED) return now;
-    let best: { terms: ModelTerms; gain: number; ripple: RippleStart | null } | null = null;
-    const ripple = misfits(now.fit) ? findRipple(now.profile, now.fit) : null;
-    for (const terms of offers(now.fit.layout.terms, { ...allow, ripple: ripple !== null })) {
-      const trial = refit(now.profile, now.fit, terms, ripple, true);
+    let best: { terms: ModelTerms; gain: number } | null = null;
+    for (const terms of offers(now.fit.layout.terms, allow)) {
+      const trial = refit(now.profile, now.fit, terms, true);
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));
       const extra = trial.layout.size - now.fit.layout.size;
       const gain =
         (now.fit.result.chiSquare - trial.result.chiSquare) / scale - extra * Math.log(trial.points) - MARGIN;
-      if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain, ripple };
+      if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain };
     }
     // Noise and masks once more with the bands' share of what was added.
     if (best === null) return added === 0 ? now : (refineBands(now, now.fit.layout.terms) ?? now);
-    const next = refineBands(now, best.terms, best.ripple);
+    const next = refineBands(now, best.terms);
     if (next === null) return now;
     now = next;
   }
 }
 
-/** Does the fit miss the data by more than their noise? */
-function misfits({ result }: ProfileFit): boolean {
-  const dof = Math.max(1, result.dof);
-  return result.chiSquare / dof > 1 + 3 * Math.sqrt(2 / dof);
-}
-
-export function offers(
-  terms: ModelTerms,
-  allow: { tone: boolean; chirp: boolean; ripple: boolean },
-): ModelTerms[] {
+export function offers(terms: ModelTerms, allow: { tone: boolean; chirp: boolean }): ModelTerms[] {
   const list: ModelTerms[] = [];
   if (terms.background < MOST_BACKGROUND) list.push({ ...terms, background: terms.background + 1 });
   if (terms.background < MOST_BACKGROUND - 1) list.push({ ...terms, background: terms.background + 2 });
@@ -53,6 +42,5 @@ export function offers(
   if (!terms.tone && allow.tone) list.push({ ...terms, tone: true });
   if (!terms.fade) list.push({ ...terms, fade: true });
   if (!terms.unequal) list.push({ ...terms, unequal: true });
-  if (!terms.ripple && allow.ripple) list.push({ ...terms, ripple: true });
   return list;
 }

@@ -24,7 +24,6 @@ import {
   stepsToZero,
   type CurvePrior,
   type ProfileFit,
-  type RippleStart,
 } from './fit-profile';
 import { chooseZero } from './zero-order';
 import { fitNoise, varianceAt, type Noise } from './noise';
@@ -189,11 +188,7 @@ function withBestZero(band: BandFit): BandFit | null {
 }
 
 /** One more round: noise and masks from the bands' agreement, a new profile, the fit with these terms, the bands again. */
-export function refineBands(
-  before: BandFit,
-  terms: ModelTerms,
-  ripple: RippleStart | null = null,
-): BandFit | null {
+export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null {
   const { data, state, grid, limits } = before;
   const spacing = before.fit.result.parameters[0] * before.fit.unitPx;
   const agreed = agreeOn(before);
@@ -203,7 +198,7 @@ export function refineBands(
   const whole = combineBands(data, state, grid, expected, spacing);
   const profile = maskBins(before, whole) ? combineBands(data, state, grid, expected, spacing) : whole;
   if (countUsed(profile) < FEWEST_POINTS) return null;
-  const next = refit(profile, before.fit, terms, ripple);
+  const next = refit(profile, before.fit, terms);
   const fit = rebase(profile, next, stepsToZero(next, before.zeroAtPx));
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);

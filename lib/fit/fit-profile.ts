@@ -39,7 +39,6 @@ export function plainTerms(prior: CurvePrior | null): ModelTerms {
     tone: false,
     fade: false,
     unequal: false,
-    ripple: false,
   };
 }
 
@@ -79,21 +78,8 @@ export function fitFrom(
   return run(profile, { layout, prior, originPx, unitPx, unitLight, asItIs }, p);
 }
 
-/** Start of the second fringe system: cycles per model unit, and its two amplitudes relative to the light. */
-export interface RippleStart {
-  q: number;
-  c: number;
-  s: number;
-}
-
 /** The same fit carried on: new data, or more terms. Parameters that are new start at their neutral value. */
-export function refit(
-  profile: Profile,
-  before: ProfileFit,
-  terms: ModelTerms,
-  ripple: RippleStart | null = null,
-  trial = false,
-): ProfileFit {
+export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms, trial = false): ProfileFit {
   const layout = layoutOf(terms);
   const p = new Float64Array(layout.size);
   const old = before.result.parameters;
@@ -107,12 +93,6 @@ export function refit(
   carry(layout.tone, before.layout.tone, 1);
   carry(layout.fade, before.layout.fade, 0.05);
   carry(layout.unequal, before.layout.unequal, 0.05);
-  if (layout.ripple >= 0) {
-    const known = before.layout.ripple;
-    p[layout.ripple] = known >= 0 ? old[known] : (ripple?.q ?? 0);
-    p[layout.ripple + 1] = known >= 0 ? old[known + 1] : (ripple?.c ?? 0);
-    p[layout.ripple + 2] = known >= 0 ? old[known + 2] : (ripple?.s ?? 0);
-  }
   return run(
     profile,
     {
@@ -312,12 +292,6 @@ function boundsFor(
   if (layout.unequal >= 0) {
     lower[layout.unequal] = 1e-4;
     upper[layout.unequal] = 0.6;
-  }
-  if (layout.ripple >= 0) {
-    lower[layout.ripple] = 0.05;
-    upper[layout.ripple] = 6;
-    lower[layout.ripple + 1] = lower[layout.ripple + 2] = -0.5;
-    upper[layout.ripple + 1] = upper[layout.ripple + 2] = 0.5;
   }
   if (layout.chirp >= 0) {
     lower[layout.chirp] = -0.5 / fixed.half;

@@ -5,8 +5,7 @@
  *   fringes   F = 1/2 * [A (s1^2 + s2^2)/2 + B fade(m) s1 s2 cos(2 pi m)],  fade = exp(-(width m)^2 / 2)
  *             s1,2 = (1 +- unequal) sinc((1 +- unequal) ratio (m - middle)): slits of the widths (1 +- unequal) w;
  *             without that term both are sinc(ratio (m - middle))
- *   light     I = ((background(x) + F) (1 + c cos(2 pi q x) + s sin(2 pi q x)))^tone,
- *             background = sum of Legendre polynomials over the region; q, c, s: a second, weak fringe system (a window's)
+ *   light     I = (background(x) + F)^tone,  background = sum of Legendre polynomials over the region
  *
  * With d, L, lambda and the scale s the order is d sin(theta)/lambda with X/L = tan(theta) exactly; spacing = lambda L/(d s)
  * and curve = s/L. The envelope has its own middle (in orders): the beam need not meet the plate squarely.
@@ -23,7 +22,6 @@ export interface ModelTerms {
   tone: boolean;
   fade: boolean;
   unequal: boolean;
-  ripple: boolean;
 }
 
 /** Index of every parameter in the vector; -1 for one that is not there. */
@@ -42,8 +40,6 @@ export interface ModelLayout {
   tone: number;
   fade: number;
   unequal: number;
-  /** Index of q; c and s follow. */
-  ripple: number;
 }
 
 export function layoutOf(terms: ModelTerms): ModelLayout {
@@ -54,8 +50,6 @@ export function layoutOf(terms: ModelTerms): ModelLayout {
   const tone = take(terms.tone);
   const fade = take(terms.fade);
   const unequal = take(terms.unequal);
-  const ripple = take(terms.ripple);
-  if (terms.ripple) next += 2;
   return {
     terms,
     size: next,
@@ -71,7 +65,6 @@ export function layoutOf(terms: ModelTerms): ModelLayout {
     tone,
     fade,
     unequal,
-    ripple,
   };
 }
 
@@ -148,37 +141,23 @@ export class ModelPoint {
     const fringes = 0.5 * (p[4] * even + swing * cross);
     const z = (x - fixed.centre) / fixed.half;
     const background = this.backgroundAt(p, z);
-    const alone = background + fringes;
+    const plain = background + fringes;
     // d(fringes)/dm through phase and fade, and through the envelope's argument
     const dm = 0.5 * cross * p[5] * fade * (-2 * Math.PI * sin - width * width * m * cos);
     const dt = 0.5 * (p[4] * evenSlope + swing * crossSlope);
     const dfdm = dm + p[2] * dt;
-    let ripple = 1;
-    let rippleSlope = 0;
-    let rc = 0;
-    let rs = 0;
-    if (at.ripple >= 0) {
-      const turn = 2 * Math.PI * p[at.ripple] * x;
-      rc = Math.cos(turn);
-      rs = Math.sin(turn);
-      ripple = 1 + p[at.ripple + 1] * rc + p[at.ripple + 2] * rs;
-      rippleSlope = 2 * Math.PI * (p[at.ripple + 2] * rc - p[at.ripple + 1] * rs);
-    }
-    const plain = alone * ripple;
-    let toned = 1;
+    let gain = 1;
     let light = plain;
     if (at.tone >= 0) {
       if (!(plain > 1e-9)) return false;
       light = plain ** p[at.tone];
-      toned = (p[at.tone] * light) / plain;
+      gain = (p[at.tone] * light) / plain;
     }
-    const gain = toned * ripple;
     this.light = light;
     this.fringes = fringes;
     this.envelope = background + 0.5 * (p[4] * even + Math.abs(p[5]) * fade * cross);
     this.order = m;
     this.slope = gain * (dfdm * dmdx + this.backgroundSlope(p));
-    if (at.ripple >= 0) this.slope += toned * alone * rippleSlope * p[at.ripple];
     if (!wantGradient) return true;
     const g = this.gradient;
     g[0] = (-gain * dfdm * m) / spacing;
@@ -193,11 +172,6 @@ export class ModelPoint {
     if (at.tone >= 0) g[at.tone] = light * Math.log(plain);
     if (at.fade >= 0) g[at.fade] = -gain * 0.5 * cross * p[5] * fade * cos * width * m * m;
     if (at.unequal >= 0) g[at.unequal] = gain * 0.5 * (p[4] * this.evenUnequal + swing * this.crossUnequal);
-    if (at.ripple >= 0) {
-      g[at.ripple] = toned * alone * rippleSlope * x;
-      g[at.ripple + 1] = toned * alone * rc;
-      g[at.ripple + 2] = toned * alone * rs;
-    }
     return true;
   }
 

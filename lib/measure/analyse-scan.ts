@@ -175,7 +175,7 @@ function withTerms(profile: Profile, fit: ProfileFit): ProfileFit {
   let now = fit;
   for (let added = 0; added < 3; added++) {
     let best: { fit: ProfileFit; gain: number } | null = null;
-    for (const terms of offers(now.layout.terms, { tone: false, chirp: false, ripple: false })) {
+    for (const terms of offers(now.layout.terms, { tone: false, chirp: false })) {
       const trial = refit(profile, now, terms);
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));

@@ -174,9 +174,8 @@ function unequal(c: FindingContext): Finding {
 
 /** A second, weak fringe system: cover glass or a window. */
 function second(c: FindingContext): Finding {
-  const { fit } = c.measured.place.band;
-  const { ripple } = fit.layout;
-  if (ripple < 0)
+  const { second: system } = c.measured;
+  if (system === null)
     return finding(c, {
       check: 'second-system',
       word: 'clear',
@@ -186,20 +185,22 @@ function second(c: FindingContext): Finding {
       done: 'The misfit was searched for a wave of another spacing.',
       remedy: 'Nothing to do.',
     });
-  const p = fit.result.parameters;
-  const strength = Math.hypot(p[ripple + 1], p[ripple + 2]);
-  const period = fit.unitPx / p[ripple];
+  const strength = Math.hypot(system.c, system.s);
+  const period = 1 / Math.hypot(system.q, system.t);
   const scale = c.setup.scaleUmPerPx;
   const width = scale ? `${numberText((period * scale.value) / 1000)} mm` : `${numberText(period)} px`;
   return finding(c, {
     check: 'second-system',
-    word: strength > 0.005 ? 'look' : 'clear',
+    word: c.result.chiSquareReduced > 5 ? 'stop' : strength > 0.005 ? 'look' : 'clear',
     width: 'look',
     visibility: 'look',
     relative: movedBy(c),
     seen: `A second, weaker fringe system is in the frame (${percent(strength)}, period ${width}).`,
     size: 'Allowing for it moved the wavelength by {size}.',
-    done: 'It was fitted together with the pattern.',
+    done:
+      c.result.chiSquareReduced > 1.5
+        ? 'It could be taken out in part only; what it can still pull is in the uncertainty.'
+        : 'It was divided out of the light before the fit.',
     remedy: 'Take away or tilt the window or cover glass it comes from.',
   });
 }

@@ -7,7 +7,7 @@ import type {
   SetupValues,
   SlitResult,
 } from '@/lib/domain/reading-result';
-import { fadeRoom } from '@/lib/fit/fade-limit';
+import { fadeRoom } from '@/lib/fit/linear-room';
 import type { Measured } from './measured';
 
 const RANK: Record<FindingWord, number> = { clear: 0, look: 1, stop: 2 };

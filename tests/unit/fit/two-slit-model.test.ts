@@ -7,13 +7,11 @@ const FULL = layoutOf({
   tone: true,
   fade: true,
   unequal: true,
-  ripple: true,
 });
 const FIXED = { curve: 0, centre: 0.3, half: 6 };
-/** spacing, zero, ratio, middle, A, B, four backgrounds, curve, chirp, tone, fade, unequal, three of the second system */
+/** spacing, zero, ratio, middle, A, B, four backgrounds, curve, chirp, tone, fade, unequal */
 const VALUES = Float64Array.from([
-  1.02, 0.1, 0.21, 0.15, 0.9, 0.8, 0.06, 0.01, -0.004, 0.003, 0.01, 0.002, 0.93, 0.05, 0.12, 0.71, 0.03,
-  -0.02,
+  1.02, 0.1, 0.21, 0.15, 0.9, 0.8, 0.06, 0.01, -0.004, 0.003, 0.01, 0.002, 0.93, 0.05, 0.12,
 ]);
 
 /** Light of two slits of width a and separation d at an angle, by the model: m = d sin/lambda, ratio = a/d. */
@@ -25,7 +23,6 @@ function light(m: number, ratio: number, visibility = 1): number {
     tone: false,
     fade: false,
     unequal: false,
-    ripple: false,
   });
   const point = new ModelPoint(layout, { curve: 0, centre: 0, half: 1 });
   const p = Float64Array.from([1, 0, ratio, 0, 1, visibility, 0]);
