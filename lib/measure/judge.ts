@@ -1,4 +1,5 @@
 import { AveragedModel, fitOneSlit, ratioU, type ProfileFit } from '@/lib/fit/fit-profile';
+import type { Profile } from '@/lib/fit/profile';
 import { ModelPoint, orderAt } from '@/lib/fit/two-slit-model';
 import { solveSymmetric } from '@/lib/fit/small-matrix';
 import { toModel } from '@/lib/fit/orders';
@@ -37,8 +38,13 @@ export interface Evidence {
   visibility: number;
 }
 
+/** A fit with its profile, of a place in a frame or of a scan. `half` is half the profile's length. */
+export interface FittedPattern {
+  band: { fit: ProfileFit; profile: Profile; grid: { half: number } };
+}
+
 /** What speaks for two slits in a fitted place. */
-export function weigh(place: PlaceFit): Evidence {
+export function weigh(place: FittedPattern): Evidence {
   const { fit, profile } = place.band;
   const p = fit.result.parameters;
   const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
@@ -76,7 +82,7 @@ export function weigh(place: PlaceFit): Evidence {
   };
 }
 
-function envelopeAt(place: PlaceFit, u: number): number {
+function envelopeAt(place: FittedPattern, u: number): number {
   const { fit } = place.band;
   const p = fit.result.parameters;
   const t = Math.PI * p[2] * (orderAt(fit.layout, fit.fixed, p, toModel(fit, u)) - p[3]);
@@ -84,7 +90,7 @@ function envelopeAt(place: PlaceFit, u: number): number {
 }
 
 /** Bright orders inside the used part of the profile whose envelope is at least 4 % of the highest there. */
-function countFringes(place: PlaceFit): number {
+function countFringes(place: FittedPattern): number {
   const { fit, profile } = place.band;
   const p = fit.result.parameters;
   const used = new Set<number>();
@@ -114,7 +120,7 @@ function countFringes(place: PlaceFit): number {
 }
 
 /** Length of the used profile between two orders, in orders. */
-function spanInOrders(place: PlaceFit, first: number, last: number): number {
+function spanInOrders(place: FittedPattern, first: number, last: number): number {
   const { fit, profile } = place.band;
   let low = Infinity;
   let high = -Infinity;
@@ -128,7 +134,7 @@ function spanInOrders(place: PlaceFit, first: number, last: number): number {
 }
 
 /** Weighted regression of the profile on 1, z, E, E cos, E cos 2: second coefficient over first. */
-function secondHarmonic(place: PlaceFit): number {
+function secondHarmonic(place: FittedPattern): number {
   const { fit, profile, grid } = place.band;
   const p = fit.result.parameters;
   const a = new Float64Array(25);
@@ -148,7 +154,7 @@ function secondHarmonic(place: PlaceFit): number {
 }
 
 /** A single slit is named only where its side maxima can be seen; otherwise the light is just a spot or an outline. */
-function showsLobes(place: PlaceFit, evidence: Evidence): boolean {
+function showsLobes(place: FittedPattern, evidence: Evidence): boolean {
   const { fit, grid } = place.band;
   const p = fit.result.parameters;
   const lobe = (p[0] * fit.unitPx) / p[2];
@@ -166,18 +172,9 @@ function oneSlitSuffices(oneSlit: number, fit: ProfileFit, evidence: Evidence): 
   );
 }
 
-/** Throws the refusal that fits, or returns the evidence of a pattern that can be answered. */
-export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
-  const { fit } = place.band;
-  const spacing = fit.result.parameters[0] * fit.unitPx;
-  const evidence = weigh(place);
-  if (!(evidence.swingSigmas > LEAST_SWING_SIGMAS) || spread === null) throw noFringes();
-  if (spacing < FINEST_PX) {
-    throw new Refused(
-      'TOO_FINE',
-      `The fringes are ${spacing.toFixed(1)} px apart; below ${FINEST_PX} px the camera cannot hold them. Move the camera back or use a finer pixel scale.`,
-    );
-  }
+/** Throws where the light is that of one slit, or of more than two. */
+export function refuseOtherSlits(place: FittedPattern, evidence: Evidence): void {
+  const { fit, profile } = place.band;
   const oneSlit = () =>
     new Refused(
       'ONE_SLIT',
@@ -194,9 +191,24 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   }
   if (fit.result.parameters[2] > MOST_RATIO) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
-  const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
+  const one = doubtful ? fitOneSlit(profile, fit) : null;
   if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence))
     throw showsLobes(place, evidence) ? oneSlit() : noFringes();
+}
+
+/** Throws the refusal that fits, or returns the evidence of a pattern that can be answered. */
+export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
+  const { fit } = place.band;
+  const spacing = fit.result.parameters[0] * fit.unitPx;
+  const evidence = weigh(place);
+  if (!(evidence.swingSigmas > LEAST_SWING_SIGMAS) || spread === null) throw noFringes();
+  if (spacing < FINEST_PX) {
+    throw new Refused(
+      'TOO_FINE',
+      `The fringes are ${spacing.toFixed(1)} px apart; below ${FINEST_PX} px the camera cannot hold them. Move the camera back or use a finer pixel scale.`,
+    );
+  }
+  refuseOtherSlits(place, evidence);
   if (tooDeep(fit, evidence)) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const bow = Math.abs(place.tilt.bowPx) * 1.5;
   const barrel = Math.abs(place.tilt.barrel);
