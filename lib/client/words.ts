@@ -50,6 +50,11 @@ export function publishedOf(subject: Subject): number | null {
   return subject.kind === 'source' ? subject.vacuumNm : null;
 }
 
+/** "detector 0.5 mm wide", or that it is a point. */
+export function detectorText(detectorMm: number | null): string {
+  return detectorMm === null ? 'point detector' : `detector ${plain(detectorMm)} mm wide`;
+}
+
 export function count(n: number, one: string, many = `${one}s`): string {
   return `${formatNumber(n, 0)} ${n === 1 ? one : many}`;
 }
