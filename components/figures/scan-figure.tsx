@@ -25,7 +25,7 @@ interface Props {
 /** Room beside the scan's ends, so that a jaw there can be held; above and below the light, px. */
 const SIDE = 24;
 const ABOVE = 26;
-const BELOW = 26;
+const BELOW = 38;
 /** The bed is dark in both themes, so the jaws are always bone. */
 const BONE = '#f4f0e7';
 
@@ -86,10 +86,10 @@ function Drawn({
         opacity=".38"
         pointerEvents="none"
       />
-      <text x={SIDE} y={height - 8} style={{ fill: '#c3bcaf' }}>
+      <text x={SIDE} y={height - 9} style={{ fill: '#c3bcaf' }}>
         {formatNumber(length.fromMm, 1)}
       </text>
-      <text x={width - SIDE} y={height - 8} textAnchor="end" style={{ fill: '#c3bcaf' }}>
+      <text x={width - SIDE} y={height - 9} textAnchor="end" style={{ fill: '#c3bcaf' }}>
         {formatNumber(length.toMm, 1)} mm
       </text>
       <Jaw side={-1} at={from} {...{ region, length, mmPerPx, top, bottom, svg, onChange }} />
@@ -171,7 +171,7 @@ function Jaw({ side, at, region, length, mmPerPx, top, bottom, svg, onChange }: 
   };
   const foot = 6 * side;
   const middle = (top + bottom) / 2;
-  const jaw = `M${at + foot} ${top - 10}H${at}V${bottom + 10}H${at + foot}`;
+  const jaw = `M${at + foot} ${top - 10}H${at}V${bottom + 8}H${at + foot}`;
   const strokes = [-6, 0, 6].map((dy) => `M${at + 4 * side} ${middle + dy}h${7 * side}`).join('');
   return (
     <g

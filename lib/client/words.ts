@@ -50,9 +50,9 @@ export function publishedOf(subject: Subject): number | null {
   return subject.kind === 'source' ? subject.vacuumNm : null;
 }
 
-/** "detector 0.5 mm wide", or that it is a point. */
+/** "0.5 mm detector", or that it is a point. */
 export function detectorText(detectorMm: number | null): string {
-  return detectorMm === null ? 'point detector' : `detector ${plain(detectorMm)} mm wide`;
+  return detectorMm === null ? 'point detector' : `${plain(detectorMm)} mm detector`;
 }
 
 export function count(n: number, one: string, many = `${one}s`): string {

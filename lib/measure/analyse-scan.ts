@@ -7,7 +7,6 @@ import type {
   ScanOrder,
   ScanResult,
 } from '@/lib/domain/scan-result';
-import type { Profile } from '@/lib/fit/profile';
 import { listOrders } from '@/lib/fit/orders';
 import { Refused } from '@/lib/imaging/refused';
 import { profileCurves, stripOf } from './curves';
@@ -132,7 +131,7 @@ function resultOf(
   const curves = profileCurves(
     fit,
     profile,
-    (from, to) => leftPoint(profile, from, to),
+    (from, to) => leftPoint(fitted, from, to),
     (u) => u,
   );
   const { fromPx, stepPx, light } = stripOf(curves);
@@ -229,9 +228,9 @@ function ordersOf(
   }));
 }
 
-function leftPoint({ u, light }: Profile, from: number, to: number) {
+function leftPoint({ profile, sigma }: ScanFit, from: number, to: number) {
   const middle = (from + to - 1) >> 1;
-  return { u: u[middle], light: light[middle], sigma: 0 };
+  return { u: profile.u[middle], light: profile.light[middle], sigma: sigma[middle] };
 }
 
 function inMm({ alongPx, ...curves }: ReturnType<typeof profileCurves>): ScanCurves {

@@ -24,6 +24,8 @@ import { scanNoise } from './scan-noise';
 export interface ScanFit {
   fit: ProfileFit;
   profile: Profile;
+  /** Sigma of every point by the noise of the others, also of those left out. */
+  sigma: Float64Array;
   zero: ZeroChoice;
   /** Spacing in mm before optional terms were added to the model. */
   plainSpacingMm: number;
@@ -60,8 +62,10 @@ export function fitScan(scan: Scan, options: ScanOptions, setup: SetupValues): S
   fit = rebase(first, fit, stepsToZero(fit, zeroAtMm));
   const left = placesLeftOut(fit, options.leaveOut ?? []);
   let profile = first;
+  let sigma = first.sigma;
   const again = (change: (p: Profile, f: ProfileFit) => ProfileFit) => {
-    profile = weighted(scan, profile, fit, left);
+    sigma = sigmaOf(scan, profile, fit, left);
+    profile = { ...profile, sigma: sigma.map((s, i) => (left(profile.u[i]) ? Infinity : s)) };
     const next = change(profile, fit);
     fit = rebase(profile, next, stepsToZero(next, zeroAtMm));
   };
@@ -71,7 +75,7 @@ export function fitScan(scan: Scan, options: ScanOptions, setup: SetupValues): S
     again((p, f) => withTerms(p, refit(p, f, f.layout.terms)));
   const choice = chooseZero(profile, fit);
   const zero = zeroAtMm === null ? choice : { fit, probability: 1, next: 0, uSpacing: 0 };
-  return { fit: zero.fit, profile, zero, plainSpacingMm, ...spreadOfScan(profile, zero) };
+  return { fit: zero.fit, profile, sigma, zero, plainSpacingMm, ...spreadOfScan(profile, zero) };
 }
 
 /** Half of the Gauss-Legendre rules on -1..1 (Abramowitz and Stegun, table 25.4): places and weights. */
@@ -211,7 +215,12 @@ function fitted(profile: Profile, fit: ProfileFit): { light: Float64Array; rest:
 }
 
 /** Sigma of every point at its fitted light, from residuals against the straight line through their neighbours'. */
-function weighted(scan: Scan, profile: Profile, fit: ProfileFit, left: (xMm: number) => boolean): Profile {
+function sigmaOf(
+  scan: Scan,
+  profile: Profile,
+  fit: ProfileFit,
+  left: (xMm: number) => boolean,
+): Float64Array {
   const { light, rest } = fitted(profile, fit);
   const n = profile.size;
   const { u } = profile;
@@ -228,10 +237,7 @@ function weighted(scan: Scan, profile: Profile, fit: ProfileFit, left: (xMm: num
     at.push(light[i]);
   }
   const noise = scanNoise(at, q, leastVariance(scan));
-  return {
-    ...profile,
-    sigma: light.map((l, i) => (left(u[i]) ? Infinity : Math.sqrt(varianceAt(noise, l) / scan.repeats[i]))),
-  };
+  return light.map((l, i) => Math.sqrt(varianceAt(noise, l) / scan.repeats[i]));
 }
 
 /** Optional terms while the information criterion asks for them. */

@@ -79,7 +79,11 @@ async function sameAgain(
     where: { sameKey: sameKey(spooled, benchId, subject) },
     rejectOnEmpty: true,
   });
-  if (isScan(spooled)) await takeDetector(context, frame, detectorMm);
+  if (isScan(spooled))
+    await takeDetector(context, frame, detectorMm).catch(async (problem: unknown) => {
+      await dropSpool(spooled.path);
+      throw problem;
+    });
   if (frameMay('land', frame.state)) {
     await landFrame(context, frame.id, spooled);
     nudgeQueue();

@@ -73,7 +73,7 @@ export function FrameLine({ frame, spanMm, sameAs, onSend, onReplace }: FrameLin
     <Line
       kind={state.kind}
       name={<Link href={`/frames/${frame.id}`}>{subjectName(frame)}</Link>}
-      file={frame.scan ? `${frame.fileName} · scan, ${detectorText(frame.scan.detectorMm)}` : frame.fileName}
+      file={frame.scan ? `Scan, ${detectorText(frame.scan.detectorMm)} · ${frame.fileName}` : frame.fileName}
       word={state.word}
       at={frame.receivedAt}
       picture={<FramePicture frame={frame} spanMm={spanMm} />}
