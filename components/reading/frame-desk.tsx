@@ -132,7 +132,13 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
           <SendBox reading={reading} changed={desk.change !== null} sendToReview={sendToReview} />
         ) : null}
       </section>
-      <KeysSheet open={sheet} onClose={() => setSheet(false)} on={keys.on} setOn={keys.setOn} />
+      <KeysSheet
+        open={sheet}
+        onClose={() => setSheet(false)}
+        on={keys.on}
+        setOn={keys.setOn}
+        scan={frame.scan !== null}
+      />
     </div>
   );
 }

@@ -186,7 +186,13 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
           </div>
         </section>
       </div>
-      <KeysSheet open={sheet} onClose={() => setSheet(false)} on={keys.on} setOn={keys.setOn} />
+      <KeysSheet
+        open={sheet}
+        onClose={() => setSheet(false)}
+        on={keys.on}
+        setOn={keys.setOn}
+        scan={frame.scan !== null}
+      />
     </>
   );
 }

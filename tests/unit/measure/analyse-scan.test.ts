@@ -5,6 +5,8 @@
 import type { SetupValues } from '@/lib/domain/reading-result';
 import type { ScanOptions, ScanResult } from '@/lib/domain/scan-result';
 import { analyseScan } from '@/lib/measure/analyse-scan';
+import { PLAIN_SCENE, type Scene } from '@/scripts/simulator/scene';
+import { scanText } from '@/scripts/simulator/scan';
 import { uniform } from './helpers/frames';
 
 const sinc = (t: number) => (Math.abs(t) < 1e-9 ? 1 : Math.sin(Math.PI * t) / (Math.PI * t));
@@ -116,6 +118,56 @@ describe('the spacing of a scan', () => {
     const content = text(points({ seed: 3, detector: 0.5 }));
     const again = measured(content, { detectorMm: 0.5 });
     expect({ ...measured(content, { detectorMm: 0.5 }), ms: null }).toEqual({ ...again, ms: null });
+  });
+});
+
+// Worked examples of OpenStax, University Physics vol. 3 (UP), chapters 3 and 4, and College Physics 2e (CP), chapter 27, as
+// simulated scans with a million counts: what is printed comes back within half a unit of its last digit.
+describe('published worked examples', () => {
+  const example = (scene: Partial<Scene>, reachMm: number): ScanResult => {
+    const plan = {
+      scene: { ...PLAIN_SCENE, visibility: 0.98, ...scene },
+      fromMm: -reachMm,
+      toMm: reachMm,
+      stepMm: reachMm / 150,
+      zeroMm: 0,
+      detectorMm: 0,
+      peakCounts: 1e6,
+      dark: 1000,
+      seed: 11,
+    };
+    const { separationUm, distanceMm } = plan.scene;
+    return measured(
+      scanText(plan),
+      {},
+      {
+        separationUm: { value: separationUm, u: 0 },
+        distanceMm: { value: distanceMm, u: 0 },
+      },
+    );
+  };
+  it('UP, CP: fringes 7.50 mm apart at 2.00 m, d 0.120 mm -> 450 nm', () => {
+    const r = example({ wavelengthNm: 450, separationUm: 120, widthUm: 30, distanceMm: 2000 }, 28);
+    expect(Math.abs(r.spacingMm - 7.5)).toBeLessThan(0.005);
+    expect(Math.abs((r.wavelengthNm ?? 0) - 450)).toBeLessThan(0.5);
+  });
+  it('UP: 633 nm, d 0.0800 mm, 3.00 m -> fringes 2.37 cm apart', () => {
+    const r = example({ wavelengthNm: 633, separationUm: 80, widthUm: 20, distanceMm: 3000 }, 90);
+    expect(Math.abs(r.spacingMm - 23.738)).toBeLessThan(0.01);
+  });
+  it('UP check of ex. 3.1: d 0.0100 mm, 633 nm: orders 1 and 2 at 3.63° and 7.27°, by exact angles', () => {
+    const r = example({ wavelengthNm: 633, separationUm: 10, widthUm: 2, distanceMm: 100 }, 26);
+    const angleDeg = (m: number) => {
+      const order = r.orders.find((o) => o.m === m);
+      return (Math.atan(((order?.xMm ?? NaN) - r.zeroOrder.xMm) / 100) * 180) / Math.PI;
+    };
+    expect(Math.abs(angleDeg(1) - 3.629)).toBeLessThan(0.005);
+    expect(Math.abs(angleDeg(2) - 7.273)).toBeLessThan(0.005);
+  });
+  it('UP ex. 4.4: a 0.020 mm, d 0.20 mm, 500 nm: order 10 is missing and named', () => {
+    const r = example({ wavelengthNm: 500, separationUm: 200, widthUm: 20, distanceMm: 1000 }, 32);
+    expect(Math.abs((r.envelopeZeroOrder ?? 0) - 10)).toBeLessThan(0.05);
+    expect(r.findings.find((f) => f.check === 'missing-order')?.seen).toMatch(/^Order 10 is dark by design/);
   });
 });
 
