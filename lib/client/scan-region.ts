@@ -22,14 +22,14 @@ export function keptInScan(region: ScanRegion, scan: ScanRegion, before: ScanReg
   return { fromMm, toMm: between(region.toMm, fromMm + shortest, scan.toMm) };
 }
 
-/** Places of decimals that tell two positions of the scan apart: one more than its length over a thousand needs. */
-export function placesOf(scan: ScanRegion): number {
-  return Math.max(0, Math.min(6, 3 - Math.floor(Math.log10(Math.max(1e-6, scan.toMm - scan.fromMm)))));
-}
-
 /** How far one press moves an edge: the power of ten below a hundredth of the scan. */
 export function pressMm(scan: ScanRegion): number {
   return 10 ** Math.floor(Math.log10((scan.toMm - scan.fromMm) / 100));
+}
+
+/** Places of decimals the edges are given with: those of one press. */
+export function placesOf(scan: ScanRegion): number {
+  return Math.max(0, Math.min(6, -Math.round(Math.log10(pressMm(scan)))));
 }
 
 /** Numbers a person can read back; a region that reaches to an end of the scan stays there. */

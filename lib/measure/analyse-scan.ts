@@ -7,6 +7,7 @@ import type {
   ScanOrder,
   ScanResult,
 } from '@/lib/domain/scan-result';
+import { fitOneSlit } from '@/lib/fit/fit-profile';
 import { listOrders } from '@/lib/fit/orders';
 import { Refused } from '@/lib/imaging/refused';
 import { profileCurves, stripOf } from './curves';
@@ -16,7 +17,7 @@ import { messageFor } from './findings';
 import { scanFindings } from './findings-scan';
 import { fitScan, spacingWith, type ScanFit } from './fit-scan';
 import type { Clock } from './measure-stack';
-import { refuseOtherSlits, weigh, type Evidence, type FittedPattern } from './judge';
+import { oneSlit, refuseOtherSlits, weigh, type Evidence, type FittedPattern } from './judge';
 import { readScan, scanFacts, scanWithin, textOf } from './read-scan';
 import { visibilityU } from './visibility';
 import { frameEffects, wavelengthOf, type Wavelength } from './wavelength';
@@ -26,6 +27,9 @@ const FEWEST_FRINGES = 3;
 const FINEST_STEPS = 2.5;
 const MOST_MISFIT = 0.3;
 const MOST_RELATIVE_U = 0.03;
+const MOST_ONE_SLIT_CHI = 4;
+const LEAST_TIMES_EVEN = 10;
+const LOBES = 2.6;
 /** A point of a scan has no extent beside its detector's, which is in the model. */
 const AS_IT_STANDS = { node: 0, weight: 0 };
 
@@ -89,7 +93,8 @@ function judgeScan(fitted: ScanFit, stepMm: number): Evidence {
   const { fit, covariance } = fitted;
   const pattern = patternOf(fitted);
   const evidence = weigh(pattern);
-  if (!(evidence.swingSigmas > LEAST_SWING_SIGMAS) || covariance === null) throw nothingFound();
+  if (!(evidence.swingSigmas > LEAST_SWING_SIGMAS) || covariance === null)
+    throw isOneSlit(fitted) ? oneSlit() : nothingFound();
   const spacingMm = fit.result.parameters[0] * fit.unitPx;
   if (spacingMm < FINEST_STEPS * stepMm)
     throw new Refused(
@@ -111,6 +116,17 @@ function judgeScan(fitted: ScanFit, stepMm: number): Evidence {
       'The fit did not settle on one pattern. Choose the region by hand or scan again.',
     );
   return evidence;
+}
+
+/** Light without fringes that one slit describes, far better than even light does, its first side maxima in the scan. */
+function isOneSlit({ fit, profile }: ScanFit): boolean {
+  const one = fitOneSlit(profile, fit);
+  if (one === null || !(one.chiSquare < MOST_ONE_SLIT_CHI * one.dof)) return false;
+  const { u, light, sigma, size } = profile;
+  const mean = light.reduce((s, v) => s + v, 0) / size;
+  const even = light.reduce((s, v, i) => s + ((v - mean) / sigma[i]) ** 2, 0);
+  const lobeMm = fit.unitPx / one.parameters[2];
+  return even > LEAST_TIMES_EVEN * one.chiSquare && u[size - 1] - u[0] > LOBES * lobeMm;
 }
 
 function resultOf(

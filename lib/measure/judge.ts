@@ -172,14 +172,16 @@ function oneSlitSuffices(oneSlit: number, fit: ProfileFit, evidence: Evidence): 
   );
 }
 
+export function oneSlit(): Refused {
+  return new Refused(
+    'ONE_SLIT',
+    'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.',
+  );
+}
+
 /** Throws where the light is that of one slit, or of more than two. */
 export function refuseOtherSlits(place: FittedPattern, evidence: Evidence): void {
   const { fit, profile } = place.band;
-  const oneSlit = () =>
-    new Refused(
-      'ONE_SLIT',
-      'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.',
-    );
   // Where the light is the same over the whole region, a sharp periodic thing is a blind or a wall, not a slit plate.
   const bounded = fit.result.parameters[2] > LEAST_RATIO;
   if (evidence.harmonic > MOST_HARMONIC && !bounded) throw noFringes();

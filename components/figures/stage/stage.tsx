@@ -149,7 +149,7 @@ function Drawing({
 /** Of a camera's full scale, or in the unit of the scan. */
 function peakWords(result: FitResult): string {
   if (!isScanResult(result)) return `Peak at ${formatPercent(result.peakShare)} of full scale`;
-  return `Peak at ${formatNumber(result.peak, result.peak < 100 ? 2 : 0)}, in the unit of the scan`;
+  return `Peak at ${formatNumber(result.peak, result.peak < 100 ? 2 : 0)}`;
 }
 
 function takenWords(result: FitResult): [name: string, more: string] {
