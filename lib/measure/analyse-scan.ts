@@ -7,7 +7,7 @@ import type {
   ScanOrder,
   ScanResult,
 } from '@/lib/domain/scan-result';
-import { fitOneSlit } from '@/lib/fit/fit-profile';
+import { fitOneSlit, ratioU } from '@/lib/fit/fit-profile';
 import { listOrders } from '@/lib/fit/orders';
 import { Refused } from '@/lib/imaging/refused';
 import { profileCurves, stripOf } from './curves';
@@ -19,7 +19,6 @@ import { fitScan, spacingWith, type ScanFit } from './fit-scan';
 import type { Clock } from './measure-stack';
 import { oneSlit, refuseOtherSlits, weigh, type Evidence, type FittedPattern } from './judge';
 import { readScan, scanFacts, scanWithin, textOf } from './read-scan';
-import { visibilityU } from './visibility';
 import { frameEffects, wavelengthOf, type Wavelength } from './wavelength';
 
 const LEAST_SWING_SIGMAS = 5;
@@ -152,6 +151,7 @@ function resultOf(
   );
   const { fromPx, stepPx, light } = stripOf(curves);
   const visibility = Math.min(1, evidence.visibility);
+  const uVisibility = ratioU(p, covariance, fit.layout.size);
   const envelopeZeroOrder = p[2] > 0.02 && p[2] < 0.9 ? 1 / p[2] : null;
   const context: PatternContext = {
     take: 'scan',
@@ -176,6 +176,7 @@ function resultOf(
   const findings = scanFindings(context, {
     stepMm: scan.stepMm,
     detectorMm: options.detectorMm,
+    uVisibility,
     otherSpacingMm: spacingWith(fitted, options.detectorMm === null ? 0.1 * spacingMm : null),
   });
   return {
@@ -186,7 +187,7 @@ function resultOf(
     uSpacingMm,
     dofSpacing: fitted.dof,
     visibility,
-    uVisibility: visibilityU(p, covariance, fit.layout.size),
+    uVisibility: Number.isFinite(uVisibility) ? uVisibility : null,
     zeroOrder: { xMm: orders.find((o) => o.m === 0)?.xMm ?? fit.originPx + p[1] * fit.unitPx },
     orders,
     region: options.region,

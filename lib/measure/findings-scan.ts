@@ -8,6 +8,7 @@ import { patternFindings } from './findings-pattern';
 export interface ScanTaking {
   stepMm: number;
   detectorMm: number | null;
+  uVisibility: number;
   /** Spacing with the detector taken as a point, or, where it is one, with a tenth of a fringe as its width. */
   otherSpacingMm: number;
 }
@@ -35,8 +36,10 @@ function sampling(c: PatternContext, { stepMm }: ScanTaking): Finding {
 
 const sinc = (t: number) => (t === 0 ? 1 : Math.sin(Math.PI * t) / (Math.PI * t));
 
+const TOO_DEEP_SIGMAS = 3;
+
 /** A detector of width D lowers the contrast to sinc(D / spacing); near a whole fringe nothing is left of it. */
-function detector(c: PatternContext, { detectorMm, otherSpacingMm }: ScanTaking): Finding {
+function detector(c: PatternContext, { detectorMm, uVisibility, otherSpacingMm }: ScanTaking): Finding {
   const relative = otherSpacingMm / c.result.spacingPx - 1;
   if (detectorMm === null)
     return finding(c, {
@@ -50,6 +53,20 @@ function detector(c: PatternContext, { detectorMm, otherSpacingMm }: ScanTaking)
     });
   const share = detectorMm / c.result.spacingPx;
   const wide = share > 0.75;
+  // Fringes cannot be deeper than the light they are made of.
+  const deep = c.measured.evidence.visibility - 1 > TOO_DEEP_SIGMAS * uVisibility;
+  if (deep)
+    return finding(c, {
+      check: 'detector',
+      word: 'look',
+      width: 'look',
+      visibility: 'stop',
+      relative,
+      seen: `The fringes are deeper than a detector ${numberText(share)} of a fringe wide can show them: it is narrower than stated.`,
+      size: 'Taken as a point it would move the wavelength by {size}.',
+      done: 'The model was averaged over the stated width.',
+      remedy: 'Correct the width of the detector and fit again.',
+    });
   return finding(c, {
     check: 'detector',
     word: wide ? 'look' : 'clear',

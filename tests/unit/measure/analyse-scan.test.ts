@@ -222,6 +222,12 @@ describe('what is said about a scan', () => {
     expect(findings(few).sampling.word).toBe('look');
     expect(findings(measured(text(points({})))).sampling.word).toBe('clear');
   });
+  it('a detector stated wider than it is, is a look', () => {
+    const content = text(points({ detector: 0.3, visibility: 0.95 }));
+    expect(findings(measured(content, { detectorMm: 0.3 })).detector.word).toBe('clear');
+    const wide = findings(measured(content, { detectorMm: 1.1 })).detector;
+    expect([wide.word, wide.seen]).toEqual(['look', expect.stringMatching(/narrower than stated/)]);
+  });
   it('a lopsided region is a look', () => {
     const r = measured(text(points({})), { region: { fromMm: -3, toMm: 10 } });
     expect(findings(r).region.word).toBe('look');
