@@ -1,4 +1,10 @@
-import { REFUSALS, type BudgetRow, type SetupValues, type Timing } from '@/lib/domain/reading-result';
+import {
+  REFUSALS,
+  type BudgetRow,
+  type Finding,
+  type SetupValues,
+  type Timing,
+} from '@/lib/domain/reading-result';
 import type {
   ScanAnswer,
   ScanCurves,
@@ -137,7 +143,7 @@ function resultOf(
   ms: Timing,
 ): ScanResult {
   const { fit, profile } = fitted;
-  const covariance = fitted.covariance ?? new Float64Array(fit.layout.size ** 2);
+  const covariance = covarianceOf(fitted);
   const p = fit.result.parameters;
   const spacingMm = p[0] * fit.unitPx;
   const uSpacingMm = Math.sqrt(covariance[0]) * fit.unitPx;
@@ -153,36 +159,10 @@ function resultOf(
   const visibility = Math.min(1, evidence.visibility);
   const uVisibility = ratioU(p, covariance, fit.layout.size);
   const envelopeZeroOrder = p[2] > 0.02 && p[2] < 0.9 ? 1 / p[2] : null;
-  const context: PatternContext = {
-    take: 'scan',
-    result: {
-      wavelengthNm: wavelength.airNm,
-      spacingPx: spacingMm,
-      uSpacingPx: uSpacingMm,
-      visibility,
-      envelopeZeroOrder,
-      clippedShare: 0,
-      orders: orders.map(({ m, kind, pullMm }) => ({ m, kind, pullPx: pullMm })),
-    },
-    measured: {
-      place: patternOf(fitted),
-      spread: { covariance },
-      evidence,
-      zero: fitted.zero,
-      plainSpacing: fitted.plainSpacingMm,
-    },
-    setup,
-  };
-  const findings = scanFindings(context, {
-    stepMm: scan.stepMm,
-    detectorMm: options.detectorMm,
-    uVisibility,
-    otherSpacingMm: spacingWith(fitted, options.detectorMm === null ? 0.1 * spacingMm : null),
-  });
-  return {
+  const result: ScanResult = {
     ok: true,
     code: 'OK',
-    message: messageFor('scan', findings),
+    message: '',
     spacingMm,
     uSpacingMm,
     dofSpacing: fitted.dof,
@@ -201,7 +181,7 @@ function resultOf(
     k: wavelength.k,
     dofWavelength: wavelength.dof,
     budget: wavelength.budget,
-    findings,
+    findings: [],
     engine: ENGINE_VERSION,
     peak: Math.max(...curves.fit),
     envelopeZeroOrder,
@@ -211,6 +191,45 @@ function resultOf(
     strip: { fromMm: fromPx, stepMm: stepPx, light },
     ms,
   };
+  result.findings = findingsFor(result, fitted, evidence, setup);
+  result.message = messageFor('scan', result.findings);
+  return result;
+}
+
+/** The checks see a scan as they see a frame, its mm in place of px. */
+function findingsFor(result: ScanResult, fitted: ScanFit, evidence: Evidence, setup: SetupValues): Finding[] {
+  const { wavelengthNm, spacingMm, uSpacingMm, visibility, envelopeZeroOrder, detectorMm } = result;
+  const context: PatternContext = {
+    take: 'scan',
+    result: {
+      wavelengthNm,
+      spacingPx: spacingMm,
+      uSpacingPx: uSpacingMm,
+      visibility,
+      envelopeZeroOrder,
+      clippedShare: 0,
+      orders: result.orders.map(({ m, kind, pullMm }) => ({ m, kind, pullPx: pullMm })),
+    },
+    measured: {
+      place: patternOf(fitted),
+      spread: { covariance: covarianceOf(fitted) },
+      evidence,
+      zero: fitted.zero,
+      plainSpacing: fitted.plainSpacingMm,
+    },
+    setup,
+  };
+  return scanFindings(context, {
+    stepMm: result.scan.stepMm,
+    detectorMm,
+    uVisibility: result.uVisibility ?? Infinity,
+    otherSpacingMm: spacingWith(fitted, detectorMm === null ? 0.1 * spacingMm : null),
+  });
+}
+
+/** A fit without a covariance has been refused before. */
+function covarianceOf({ fit, covariance }: ScanFit): Float64Array {
+  return covariance ?? new Float64Array(fit.layout.size ** 2);
 }
 
 /** One mm of the scan is one mm of the plane: as if a pixel were one mm, exactly. */

@@ -21,7 +21,9 @@ export async function frameOriginal(
 
 /** The small picture of a frame, made when it is first asked for. Its tag changes with the engine that drew it. */
 export async function framePhoto(frameId: number): Promise<{ webp: Uint8Array<ArrayBuffer>; tag: string }> {
-  const { sha256, state } = await loadFrame(frameId);
+  const frame = await loadFrame(frameId);
+  if (isScan(frame)) throw new AppError('NOT_FOUND', 'This frame is a line scan, no picture.');
+  const { sha256, state } = frame;
   const tag = `"${sha256.slice(0, 32)}-${ENGINE_VERSION}"`;
   const key = previewKey(sha256, ENGINE_VERSION);
   const kept = await readObject(key);

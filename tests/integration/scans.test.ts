@@ -1,6 +1,7 @@
 import { readdir } from 'node:fs/promises';
 import { POST as upload } from '@/app/api/upload/route';
 import { GET as original } from '@/app/api/frames/[id]/original/route';
+import { GET as photo } from '@/app/api/frames/[id]/photo/route';
 import { POST as previewFit } from '@/app/api/frames/[id]/preview-fit/route';
 import { GET as scanRoute } from '@/app/api/frames/[id]/scan/route';
 import { GET as overTimeCsv } from '@/app/api/over-time/route';
@@ -118,6 +119,8 @@ describe('from upload to a signature', () => {
     });
     expect(again.status).toBe(304);
     const picture = await send(await fringes(3), { serial: 'A6', name: 'A6.png' });
+    const noPhoto = await callRoute(photo, `/api/frames/${frameId}/photo`, call);
+    expect(noPhoto.status).toBe(404);
     const none = await callRoute(scanRoute, '/', {
       ...call,
       params: { id: String(picture.answer.frameId) },

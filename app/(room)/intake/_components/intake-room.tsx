@@ -102,7 +102,7 @@ export function IntakeRoom({
       lotId: subject.kind === 'unit' ? subject.lotId : null,
       sourceId: subject.kind === 'source' ? subject.sourceId : null,
       serial: subject.kind === 'unit' ? subject.serial : '',
-      detectorMm: null,
+      detectorMm: frame.scan?.detectorMm ?? null,
     });
     live.hide((f) => f.id !== frame.id);
   };
