@@ -201,6 +201,8 @@ function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
     centre: (from + to) / 2,
     half: Math.max(1e-9, (to - from) / 2),
   };
+  const { detector } = profile;
+  if (detector) fixed.detector = { ...detector, offset: detector.offset.map((d) => d / unitPx) };
   const priors = priorRows(layout, frame, fixed);
   const rows = n + priors.length;
   const averaged = new AveragedModel(new ModelPoint(layout, fixed));
@@ -318,6 +320,7 @@ export class AveragedModel {
 
   evaluate(p: Float64Array, x: number, node: number, weight: number, wantGradient: boolean): boolean {
     const { point, gradient } = this;
+    if (point.fixed.detector) return this.evaluateWide(point.fixed.detector, p, x, wantGradient);
     if (weight === 0.5) return this.evaluatePair(p, x, node, wantGradient);
     if (!point.evaluate(p, x, wantGradient)) return false;
     const mid = 1 - 2 * weight;
@@ -334,6 +337,31 @@ export class AveragedModel {
       this.envelope += weight * point.envelope;
       this.slope += weight * point.slope;
       if (wantGradient) for (let j = 0; j < gradient.length; j++) gradient[j] += weight * point.gradient[j];
+    }
+    return true;
+  }
+
+  /** All nodes of a wide detector. */
+  private evaluateWide(
+    { offset, weight }: NonNullable<ModelFixed['detector']>,
+    p: Float64Array,
+    x: number,
+    wantGradient: boolean,
+  ): boolean {
+    const { point, gradient } = this;
+    this.light = 0;
+    this.fringes = 0;
+    this.envelope = 0;
+    this.slope = 0;
+    if (wantGradient) gradient.fill(0);
+    for (let k = 0; k < offset.length; k++) {
+      const w = weight[k];
+      if (!point.evaluate(p, x + offset[k], wantGradient)) return false;
+      this.light += w * point.light;
+      this.fringes += w * point.fringes;
+      this.envelope += w * point.envelope;
+      this.slope += w * point.slope;
+      if (wantGradient) for (let j = 0; j < gradient.length; j++) gradient[j] += w * point.gradient[j];
     }
     return true;
   }

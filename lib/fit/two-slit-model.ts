@@ -74,6 +74,8 @@ export interface ModelFixed {
   /** Middle and half length of the region, for the background's polynomials. */
   centre: number;
   half: number;
+  /** A detector that moves through the pattern: places about its middle and their weights, which add up to one. */
+  detector?: { offset: Float64Array; weight: Float64Array };
 }
 
 const SLIT = { value: 1, slope: 0 };

@@ -1,16 +1,16 @@
 /** Checks of the pattern itself: envelope, contrast, stray light, misfit. */
 import type { Finding } from '@/lib/domain/reading-result';
-import { finding, movedBy, numberText, percent, type FindingContext } from './finding-context';
+import { finding, movedBy, numberText, percent, type PatternContext } from './finding-context';
 import { lineShare } from './further-results';
 
-export function patternFindings(c: FindingContext): Finding[] {
-  const list = [pull(c), contrast(c), background(c), misfit(c), lock(c), unequal(c), second(c), bandwidth(c)];
-  for (const more of [missing(c), plate(c)]) if (more) list.push(more);
+export function patternFindings(c: PatternContext): Finding[] {
+  const list = [pull(c), contrast(c), background(c), misfit(c), lock(c), unequal(c), bandwidth(c)];
+  for (const more of [second(c), missing(c), plate(c)]) if (more) list.push(more);
   return list;
 }
 
 /** What a straight line through the raw bright middles would make of this frame. */
-function pull(c: FindingContext): Finding {
+function pull(c: PatternContext): Finding {
   const points = c.result.orders.filter((o) => o.kind === 'bright' && o.pullPx !== null);
   let relative = 0;
   let largest = 0;
@@ -31,22 +31,24 @@ function pull(c: FindingContext): Finding {
   });
 }
 
-function contrast(c: FindingContext): Finding {
+function contrast(c: PatternContext): Finding {
   const v = c.result.visibility;
   const low = v < 0.3;
   return finding(c, {
     check: 'contrast',
     word: low ? 'look' : 'clear',
-    visibility: c.picture.source.tone === 'srgb' ? 'look' : undefined,
+    visibility: c.picture?.source.tone === 'srgb' ? 'look' : undefined,
     relative: c.result.uSpacingPx / c.result.spacingPx,
     seen: `Visibility ${v.toFixed(2)}${low ? ', alike in all orders: vibration, a wide source or unequal light on the slits' : ''}.`,
     size: 'With it the fit is sure to {size}.',
     done: 'Visibility was fitted; it does not move the spacing.',
-    remedy: low ? 'Shorten the exposure, fix the mount, narrow the source slit.' : 'Nothing to do.',
+    remedy: low
+      ? `${c.take === 'frame' ? 'Shorten the exposure, fix' : 'Fix'} the mount, narrow the source slit.`
+      : 'Nothing to do.',
   });
 }
 
-function background(c: FindingContext): Finding {
+function background(c: PatternContext): Finding {
   const { fit } = c.measured.place.band;
   const p = fit.result.parameters;
   const terms = fit.layout.terms.background;
@@ -63,12 +65,12 @@ function background(c: FindingContext): Finding {
     seen: `Stray light of ${percent(Math.max(0, level))} of the peak${bend > 0.02 ? `, changing by ${percent(bend)} across the region` : ''}.`,
     size: terms > 2 ? 'Letting it bend moved the wavelength by {size}.' : 'Effect after the fit {size}.',
     done: terms > 2 ? `A background with ${terms} terms was fitted.` : 'A level and a slope were fitted.',
-    remedy: much ? 'Dim the room, block reflections, take a dark frame.' : 'Nothing to do.',
+    remedy: much ? `Dim the room, block reflections, take a dark ${c.take}.` : 'Nothing to do.',
   });
 }
 
 /** Residual beyond noise relative to the fringes: at most 1 % is good, 2.5 % a look. */
-function misfit(c: FindingContext): Finding {
+function misfit(c: PatternContext): Finding {
   const share = c.measured.evidence.misfit;
   const word = share > 0.12 ? 'stop' : share > 0.025 ? 'look' : 'clear';
   return finding(c, {
@@ -83,11 +85,11 @@ function misfit(c: FindingContext): Finding {
     remedy:
       word === 'clear'
         ? 'Nothing to do.'
-        : 'Look at the misfit curve; choose a cleaner region or take the frame again.',
+        : `Look at the misfit curve; choose a cleaner region or take the ${c.take} again.`,
   });
 }
 
-function missing(c: FindingContext): Finding | null {
+function missing(c: PatternContext): Finding | null {
   const zero = c.result.envelopeZeroOrder;
   if (zero === null) return null;
   const near = Math.round(zero);
@@ -105,7 +107,7 @@ function missing(c: FindingContext): Finding | null {
 }
 
 /** Fitted slit width against the plate's. */
-function plate(c: FindingContext): Finding | null {
+function plate(c: PatternContext): Finding | null {
   const { separationUm, widthUm } = c.setup;
   const zero = c.result.envelopeZeroOrder;
   if (!separationUm || !widthUm || zero === null) return null;
@@ -129,7 +131,7 @@ function plate(c: FindingContext): Finding | null {
 }
 
 /** Did the fit take every second fringe for two, or two for one? */
-function lock(c: FindingContext): Finding {
+function lock(c: PatternContext): Finding {
   const { lock: share, harmonic } = c.measured.evidence;
   const doubtful = share > 0.08 || Math.abs(harmonic) > 0.12;
   return finding(c, {
@@ -145,7 +147,7 @@ function lock(c: FindingContext): Finding {
   });
 }
 
-function unequal(c: FindingContext): Finding {
+function unequal(c: PatternContext): Finding {
   const { fit } = c.measured.place.band;
   const { unequal: index } = fit.layout;
   if (index < 0)
@@ -173,8 +175,10 @@ function unequal(c: FindingContext): Finding {
 }
 
 /** A second, weak fringe system: cover glass or a window. */
-function second(c: FindingContext): Finding {
+function second(c: PatternContext): Finding | null {
   const { second: system } = c.measured;
+  // A scan has no bands that could tell one system from the other.
+  if (c.take === 'scan') return null;
   if (system === null)
     return finding(c, {
       check: 'second-system',
@@ -208,7 +212,7 @@ function second(c: FindingContext): Finding {
 const NARROW_NM = 5;
 
 /** Visibility falling with order. */
-function bandwidth(c: FindingContext): Finding {
+function bandwidth(c: PatternContext): Finding {
   const { fit } = c.measured.place.band;
   const width = c.result.bandwidth ?? null;
   if (fit.layout.fade < 0) {
@@ -243,7 +247,6 @@ function bandwidth(c: FindingContext): Finding {
     seen: `Contrast fades outward: the line is ${line} wide.`,
     size: 'Allowing for it moved the wavelength by {size}.',
     done: 'Visibility falling with order was fitted.',
-    remedy:
-      'The result is the mean wavelength as this camera sees it; use a narrower line for a sharper one.',
+    remedy: `The result is the mean wavelength as this ${c.take === 'frame' ? 'camera' : 'detector'} sees it; use a narrower line for a sharper one.`,
   });
 }

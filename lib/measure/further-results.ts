@@ -8,7 +8,9 @@ import type {
   SlitResult,
 } from '@/lib/domain/reading-result';
 import { fadeRoom } from '@/lib/fit/linear-room';
-import type { Measured } from './measured';
+import type { ProfileFit } from '@/lib/fit/fit-profile';
+import type { Profile } from '@/lib/fit/profile';
+import type { Spread } from '@/lib/fit/spread';
 
 const RANK: Record<FindingWord, number> = { clear: 0, look: 1, stop: 2 };
 
@@ -27,7 +29,11 @@ export function wordsOf(findings: Finding[]): Record<Measurand, FindingWord> {
  * Slit width w = ratio * d from the fitted envelope, u by the law of propagation with the plate's separation. Null where the
  * envelope's end does not show.
  */
-export function slitOf({ place, spread }: Measured, setup: SetupValues): SlitResult | null {
+export function slitOf(
+  place: { band: { fit: ProfileFit } },
+  spread: Pick<Spread, 'covariance' | 'dof'>,
+  setup: SetupValues,
+): SlitResult | null {
   const { fit } = place.band;
   const n = fit.layout.size;
   const p = fit.result.parameters;
@@ -58,14 +64,14 @@ export const lineShare = (width: number) => (width * Math.sqrt(2 * Math.LN2)) / 
 
 /** Line width, or the limit below which this frame cannot tell it. */
 export function bandwidthOf(
-  { place, spread }: Measured,
+  { fit, profile }: { fit: ProfileFit; profile: Profile },
+  covariance: Float64Array,
   wavelengthNm: number | null,
 ): BandwidthResult | null {
   if (wavelengthNm === null) return null;
-  const { fit, profile } = place.band;
   const { fade, size } = fit.layout;
   if (fade >= 0) {
-    const variance = spread.covariance[fade * size + fade];
+    const variance = covariance[fade * size + fade];
     return {
       fwhmNm: lineShare(fit.result.parameters[fade]) * wavelengthNm,
       uFwhmNm: variance > 0 ? lineShare(Math.sqrt(variance)) * wavelengthNm : null,

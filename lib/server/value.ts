@@ -1,5 +1,5 @@
 import 'server-only';
-import type { ReadingResult } from '@/lib/domain/reading-result';
+import type { FitResult } from '@/lib/domain/scan-result';
 import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
 import { judge } from '@/lib/quantity/verdict';
 
@@ -16,7 +16,7 @@ export interface ValueIn {
  * The value in the specification's medium (air without one). Uncertainties are scaled by the same index of air as
  * the value, λvac/λair. A source has no specification and gets no verdict.
  */
-export function valueIn(result: ReadingResult, specification: Specification | null): ValueIn {
+export function valueIn(result: FitResult, specification: Specification | null): ValueIn {
   const medium = specification?.medium ?? 'air';
   const valueNm = medium === 'air' ? result.wavelengthNm : result.wavelengthVacuumNm;
   if (valueNm === null || result.wavelengthNm === null) {

@@ -1,4 +1,3 @@
-import { formatPercent } from '@/lib/quantity/format';
 import type { StagePoint } from './stage-data';
 import { dotsPath, linePath, type Scale } from './paths';
 
@@ -7,7 +6,8 @@ interface Props {
   /** Every how many-th point is drawn as a dot. */
   every: number;
   top: number;
-  peakShare: number;
+  /** How high the brightest fringe stands, in words. */
+  peak: string;
   x: Scale;
   width: number;
   from: number;
@@ -16,7 +16,7 @@ interface Props {
 }
 
 /** Data as dots, the fit as a solid line in the light's colour, the envelope dashed. */
-export function ProfileBand({ points, every, top, peakShare, x, width, from, to, goggles }: Props) {
+export function ProfileBand({ points, every, top, peak, x, width, from, to, goggles }: Props) {
   const head = from + 6;
   const y: Scale = (v) => to - (v / top) * (to - head);
   const tone = goggles ? 'var(--edge)' : 'var(--ink)';
@@ -28,7 +28,7 @@ export function ProfileBand({ points, every, top, peakShare, x, width, from, to,
       ))}
       <path d={`M0 ${to}H${width}`} className="l-edge" />
       <text x="0" y={head + 10} className="s14">
-        Peak at {formatPercent(peakShare)} of full scale
+        {peak}
       </text>
       <path
         d={linePath(

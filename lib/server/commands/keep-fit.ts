@@ -3,14 +3,14 @@ import type { z } from 'zod';
 import { AppError } from '@/lib/domain/errors';
 import { BORN, FRAME_STEPS, READING_STEPS, frameMay } from '@/lib/domain/life-cycle';
 import { can } from '@/lib/domain/permissions';
-import type { FitOptions, ReadingResult } from '@/lib/domain/reading-result';
+import { isScanResult, type FitResult } from '@/lib/domain/scan-result';
 import type { refitSchema, regionChangeSchema } from '@/lib/domain/schemas';
 import type { FitPreview } from '@/lib/domain/views';
 import type { CommandContext } from '../context';
 import { change } from '../db';
 import { fitFacts, loadFrame, type FitFacts } from '../frame-facts';
-import { analyseInPool } from '../measure-pool';
 import { changedMeanwhile, findReading, readingText, stepReading, type ReadingFacts } from '../reading-facts';
+import { changedOptions, fitInPool, sizeColumns } from '../scan-frames';
 import { originalKey, readObject } from '../storage';
 import { inTransaction, type Work } from '../transaction';
 import { valueIn } from '../value';
@@ -73,16 +73,12 @@ function isInReview(reading: ReadingFacts): boolean {
   return reading.status === READING_STEPS.send.to;
 }
 
-async function fitWith(frame: FrameRow, facts: FitFacts, wanted: RegionChange): Promise<ReadingResult> {
+async function fitWith(frame: FrameRow, facts: FitFacts, wanted: RegionChange): Promise<FitResult> {
   const bytes = await readObject(originalKey(frame.sha256));
   if (!bytes) throw new AppError('NOT_FOUND', 'The stored bytes of this frame are gone.');
-  const answer = await analyseInPool(bytes, facts.setup, optionsOf(facts, wanted));
+  const answer = await fitInPool(bytes, facts.setup, changedOptions(frame, facts, wanted));
   if (!answer.ok) throw new AppError('CANNOT_FIT', answer.message);
   return answer;
-}
-
-function optionsOf({ tone }: FitFacts, { region, zeroShift, leaveOut }: RegionChange): FitOptions {
-  return { region, tone, zeroShift, leaveOut };
 }
 
 async function store(
@@ -91,7 +87,7 @@ async function store(
   frame: FrameRow,
   before: ReadingFacts | null,
   facts: FitFacts,
-  result: ReadingResult,
+  result: FitResult,
   wanted: Refit,
 ): Promise<{ readingId: number; version: number }> {
   const inReview = before !== null && isInReview(before);
@@ -102,7 +98,7 @@ async function store(
       result,
       setup: facts.setup,
       specification: facts.specification,
-      options: optionsOf(facts, wanted),
+      options: changedOptions(frame, facts, wanted),
       madeBy: context.actor.id,
       madeInReview: inReview,
       replacesId: before?.readingId ?? null,
@@ -133,6 +129,7 @@ async function store(
       readingId: reading.id,
       status: inReview ? READING_STEPS.send.to : BORN.reading,
       region: wanted.region,
+      ...(isScanResult(result) ? { detectorMm: result.detectorMm } : {}),
       zeroShift: wanted.zeroShift,
       leaveOut: wanted.leaveOut,
       valueNm: valueIn(result, facts.specification).valueNm,
@@ -146,21 +143,20 @@ async function pointFrameAt(
   frame: FrameRow,
   before: ReadingFacts | null,
   readingId: number,
-  result: ReadingResult,
+  result: FitResult,
 ): Promise<void> {
-  if (!before) {
-    const { widthPx, heightPx } = result.picture;
-    return stepFrame(work, frame.id, 'fit', {
-      reading_id: readingId,
-      width_px: widthPx,
-      height_px: heightPx,
-      code: null,
-      message: null,
-    });
-  }
+  const size = sizeColumns(result);
+  if (!before)
+    return stepFrame(work, frame.id, 'fit', { reading_id: readingId, ...size, code: null, message: null });
   const moved = await change(
-    'UPDATE frames SET reading_id = :readingId WHERE id = :frameId AND reading_id = :before AND state = :state',
-    { readingId, frameId: frame.id, before: before.readingId, state: FRAME_STEPS.fit.to },
+    'UPDATE frames SET reading_id = :readingId, detector_mm = :detectorMm WHERE id = :frameId AND reading_id = :before AND state = :state',
+    {
+      readingId,
+      detectorMm: size.detector_mm ?? null,
+      frameId: frame.id,
+      before: before.readingId,
+      state: FRAME_STEPS.fit.to,
+    },
     work.transaction,
   );
   if (moved !== 1) throw await changedMeanwhile('reading', before.readingId);

@@ -36,14 +36,21 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
   const readings = await readingsOf(frameId);
   const wanted = readingId ?? row.reading?.id ?? readings[0]?.id ?? null;
   if (readingId !== null && !readings.some(({ id }) => id === readingId)) return null;
-  const [size] = await select<{ width_px: number | null; height_px: number | null }>(
-    'SELECT width_px, height_px FROM frames WHERE id = :frameId',
-    { frameId },
-  );
+  const [size] = await select<{
+    width_px: number | null;
+    height_px: number | null;
+    scan_from_mm: number | null;
+    scan_to_mm: number | null;
+    scan_points: number | null;
+  }>('SELECT width_px, height_px, scan_from_mm, scan_to_mm, scan_points FROM frames WHERE id = :frameId', {
+    frameId,
+  });
+  const { scan_from_mm: fromMm, scan_to_mm: toMm, scan_points: points } = size;
   return {
     ...row,
     widthPx: size.width_px,
     heightPx: size.height_px,
+    scanLength: fromMm === null || toMm === null ? null : { fromMm, toMm, points: points ?? 0 },
     readings,
     shown: wanted === null ? null : await readingView(wanted),
     outcome: row.subject.kind === 'unit' ? await outcomeOf(row.subject.unitId) : null,
