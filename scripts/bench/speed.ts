@@ -142,7 +142,9 @@ async function refit(table: Table): Promise<void> {
     45,
   );
   const setup = setupOf(scene);
-  const measured = await measureFrame(await encodeFile(photograph(scene, PLAIN_CAMERA), 'tiff'), setup, {});
+  const file = await encodeFile(photograph(scene, PLAIN_CAMERA), 'tiff');
+  const whole = { cxPx: 2048, cyPx: 256, lengthPx: 4096, heightPx: 512, angleDeg: 0.2 };
+  const measured = await measureFrame(file, setup, { region: whole });
   if (!('result' in measured)) {
     table.add(['re-fit from a band stack', measured.code, '', '', ''], ['not answered']);
     return;

@@ -10,7 +10,7 @@ import { PLAIN_SCENE, renderMean, trueSpacingPx, type Scene } from '@/scripts/si
  * and a brightness for every line across the fringes.
  */
 const SHARED = 9;
-const DRAWS = 500;
+const DRAWS = 400;
 const STEPS = 2;
 
 const sinc = (t: number): number => {
