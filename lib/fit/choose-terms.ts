@@ -1,11 +1,14 @@
 import { refineBands, type BandFit } from './fit-bands';
 import { refit } from './fit-profile';
+import { promiseOf } from './promise';
 import type { ModelTerms } from './two-slit-model';
 
 const MOST_BACKGROUND = 6;
 const MOST_ADDED = 4;
 /** A term must beat the information criterion by this much, so that noise does not buy terms. */
 export const MARGIN = 4;
+/** One linear step must promise this share of the margin at least; a fit asks for the margin and the logarithm on top. */
+const WORTH_A_TRIAL = 0.75;
 
 /**
  * Adds optional terms one at a time, each time the one that helps most, while the Bayesian information criterion
@@ -17,7 +20,10 @@ export function chooseTerms(band: BandFit, allow: { tone: boolean; chirp: boolea
   for (let added = 0; ; added++) {
     if (added >= MOST_ADDED) return now;
     let best: { terms: ModelTerms; gain: number } | null = null;
+    const promise = promiseOf(now.profile, now.fit);
+    const left = Math.max(1, now.fit.result.chiSquare / Math.max(1, now.fit.result.dof));
     for (const terms of offers(now.fit.layout.terms, allow)) {
+      if (!(promise(terms) > WORTH_A_TRIAL * left * MARGIN)) continue;
       const trial = refit(now.profile, now.fit, terms, true);
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));

@@ -27,10 +27,12 @@ const MOST_GROUPS = 16;
 const LEAST_GAIN = 60;
 /** Grain and compression give peaks everywhere: a real system stands this far above the middle one. */
 const ABOVE_MIDDLE = 30;
-const LEAST_STRENGTH = 0.004;
+const LEAST_STRENGTH = 0.01;
 /** Where the light is less than this share of the brightest, its ratio to the fit says nothing. */
 const LEAST_LIGHT = 0.1;
 const REFININGS = 12;
+/** So many cells are enough to see which wave is the strongest. */
+const CELLS_FOR_SEARCH = 6000;
 
 /** Relative misfit of the cells, with weights that make chi-square of it. */
 interface Ratio {
@@ -138,14 +140,23 @@ function ratioOf(band: BandFit, light: Float64Array): Ratio | null {
   return ratio.size > 200 ? ratio : null;
 }
 
-/** Phasors of groups of bands at q, put together at the lean that gives most. */
+/** Every how many cells are looked at: no common factor with the bins, or only some places would ever be seen. */
+function strideFor(size: number, bins: number): number {
+  let every = Math.max(1, Math.floor(size / CELLS_FOR_SEARCH));
+  const common = (a: number, b: number): number => (b === 0 ? a : common(b, a % b));
+  while (common(bins, every) > 1) every++;
+  return every;
+}
+
+/** Phasors of groups of bands at q, from some of the cells, put together at the lean that gives most. */
 function bestLean(ratio: Ratio, q: number, band: BandFit): SecondSystem {
+  const every = strideFor(ratio.size, band.data.bins);
   const re = new Float64Array(ratio.groups);
   const im = new Float64Array(ratio.groups);
   const vs = new Float64Array(ratio.groups);
   const ws = new Float64Array(ratio.groups);
   let total = 0;
-  for (let i = 0; i < ratio.size; i++) {
+  for (let i = 0; i < ratio.size; i += every) {
     const turn = 2 * Math.PI * q * ratio.u[i];
     const g = ratio.group[i];
     const w = ratio.w[i];
@@ -168,7 +179,7 @@ function bestLean(ratio: Ratio, q: number, band: BandFit): SecondSystem {
       s += im[g] * Math.cos(turn) + re[g] * Math.sin(turn);
     }
     // Sums of w cos^2 and w sin^2 are half of the sum of w, up to what one turn more or less matters.
-    const gain = (2 * (c * c + s * s)) / total;
+    const gain = (2 * every * (c * c + s * s)) / total;
     if (gain > best.gain) best = { q, t, c: (2 * c) / total, s: (2 * s) / total, gain };
   }
   return best;

@@ -1,6 +1,7 @@
 /** From a measured region to the answer that is stored and shown. */
 import {
   REFUSALS,
+  type Curves,
   type FitOptions,
   type OrderCentre,
   type ReadingResult,
@@ -86,7 +87,7 @@ export function resultOf({ stack, region, measured, setup, options, ms }: Answer
       tone: picture.source.tone,
       toneBecause: picture.source.toneBecause,
     },
-    peakShare: Math.max(0, ...curves.fit.filter((_, i) => curves.left[i] === 0)),
+    peakShare: peakOf(measured, curves),
     clippedShare: clippedShare(place),
     envelopeZeroOrder: p[2] > 0.02 && p[2] < 0.9 ? 1 / p[2] : null,
     envelopeCentrePx: toAlong(fit.originPx + (p[1] + p[3] * p[0]) * fit.unitPx),
@@ -132,6 +133,12 @@ function ordersOf(
       used: !left.includes(o.m),
     };
   });
+}
+
+/** Brightest fringe of the brightest band: the region may be taller than the light. */
+function peakOf({ place }: Measured, curves: Curves): number {
+  const brightest = Math.max(0, ...curves.fit.filter((_, i) => curves.left[i] === 0));
+  return brightest * Math.max(1, ...place.band.state.gain);
 }
 
 function clippedShare(place: PlaceFit): number {

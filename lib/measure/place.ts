@@ -28,7 +28,7 @@ export interface PlaceFit {
 const MOST_BANDS = 64;
 const ROWS_PER_BAND = 3;
 const QUICK_PIXELS = 400_000;
-const POINTS_PER_FRINGE = 24;
+const POINTS_PER_FRINGE = 16;
 const LOOK_ROUNDS = 2;
 /** A lean that blurs a band of a few rows by no more than a hundredth of a px. */
 const SQUARE_ENOUGH_DEG = 0.05;
