@@ -6,6 +6,7 @@ import type {
   FindingWord,
   ReadingResult,
   Region,
+  SetupValues,
   Strip,
   ToneChoice,
 } from './reading-result';
@@ -253,6 +254,8 @@ export interface FrameView extends FrameRow {
   readings: ReadingBrief[];
   /** The reading shown: the asked one or the newest. */
   shown: ReadingView | null;
+  /** What a fit of this frame is made with. */
+  facts: FitFacts;
   outcome: UnitRow['outcome'];
 }
 
@@ -273,6 +276,13 @@ export interface ReviewView {
   queue: { at: number; of: number; previousId: number | null; nextId: number | null };
 }
 
+/** What a fit of a frame needs beside its bytes: the setup it was received under and what it is judged by. */
+export interface FitFacts {
+  setup: SetupValues;
+  tone: ToneChoice;
+  specification: Specification | null;
+}
+
 /** A fit that is shown and not kept. */
 export interface FitPreview {
   result: ReadingResult;
@@ -280,6 +290,19 @@ export interface FitPreview {
   expandedNm: number | null;
   medium: Medium;
   judgement: Judgement | null;
+}
+
+/** The same made by the server, with the hash of the band stack it was measured from. */
+export interface ServerFit extends FitPreview {
+  stackSha256: string;
+}
+
+/** The digits a person saw before keeping a fit, for the server to compare with its own. */
+export interface SeenDigits {
+  spacingPx: number;
+  uSpacingPx: number;
+  wavelengthNm: number | null;
+  expandedNm: number | null;
 }
 
 /** ---- over time ---- */

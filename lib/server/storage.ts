@@ -40,6 +40,11 @@ export function previewKey(sha256: string, engine: string): string {
   return `derived/${sha256}-${engine}.webp`;
 }
 
+/** Where a band stack lies: under the hash of its bytes. */
+export function stackKey(sha256: string): string {
+  return `stacks/${sha256}`;
+}
+
 /** The object's size in bytes, or null when there is none. */
 export async function sizeOf(key: string): Promise<number | null> {
   return reach(async () => {
