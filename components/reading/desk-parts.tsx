@@ -6,6 +6,7 @@ import type { RegionDesk } from '@/lib/client/use-region-change';
 import type { Region } from '@/lib/domain/reading-result';
 import type { FrameView, ReadingView } from '@/lib/domain/views';
 import { formatNumber } from '@/lib/quantity/format';
+import { LiveNote } from './live-note';
 import { PhotoRegion } from './photo-region';
 import { RegionFields } from './region-fields';
 
@@ -85,6 +86,7 @@ export function StagePart({ reading, desk, mayFit, picked, onPick }: StageProps)
       leaveOut={desk.leaveOut}
       picked={picked}
       onPick={onPick}
+      note={<LiveNote preview={desk.preview} />}
       onToggleOrder={mayFit ? desk.toggleOrder : undefined}
       onZeroHere={mayFit ? desk.zeroAt : undefined}
     />

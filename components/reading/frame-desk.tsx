@@ -31,7 +31,13 @@ interface Props {
 /** One frame as the technician sees it: photo, stage, result, and what can be done with it. */
 export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
   const reading = frame.shown;
-  const desk = useRegionChange({ frameId: frame.id, picture: pictureOf(frame), reading });
+  const desk = useRegionChange({
+    frameId: frame.id,
+    picture: pictureOf(frame),
+    reading,
+    facts: frame.facts,
+    mayFit: may.fit,
+  });
   const [picked, pick] = usePicked();
   const [refusal, setRefusal] = useState<Refusal | null>(null);
   const [sheet, setSheet] = useState(false);

@@ -37,7 +37,6 @@ interface Props {
 export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReading, setOutcome }: Props) {
   const { frame, may, queue } = view;
   const router = useRouter();
-  const desk = useRegionChange({ frameId: frame.id, picture: pictureOf(frame), reading });
   const [picked, pick] = usePicked();
   const [answers, setAnswers] = useState<Answers>({});
   const [mode, setMode] = useState<'checks' | 'return'>('checks');
@@ -47,6 +46,13 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
 
   const open = readingMay('accept', reading.status) && done === null;
   const mayFit = may.fit && open;
+  const desk = useRegionChange({
+    frameId: frame.id,
+    picture: pictureOf(frame),
+    reading,
+    facts: frame.facts,
+    mayFit,
+  });
   const go = (id: number | null) => id !== null && router.push(`/review/${id}`);
   const keys = useShortcuts({
     '[': () => mayFit && desk.setRegion(turn(desk.region, -TILT_STEP_DEG)),

@@ -2,7 +2,7 @@
 
 import { useMemo, useState } from 'react';
 import type { Region } from '@/lib/domain/reading-result';
-import type { ReadingView, RegionChange } from '@/lib/domain/views';
+import type { FitFacts, ReadingView, RegionChange } from '@/lib/domain/views';
 import { kept, rounded, sameRegion, startRegion, type Picture } from './region';
 import { usePreviewFit, type PreviewState } from './use-preview-fit';
 
@@ -26,13 +26,17 @@ interface Start {
   frameId: number;
   picture: Picture | null;
   reading: ReadingView | null;
+  /** What a fit of the frame is made with. */
+  facts: FitFacts;
+  /** This person may change the region now. */
+  mayFit: boolean;
 }
 
 const sameNumbers = (a: readonly number[], b: readonly number[]) =>
   a.length === b.length && [...a].sort().join() === [...b].sort().join();
 
 /** The region, the orders left out and the zero order as a person changes them, with the fit they would give. */
-export function useRegionChange({ frameId, picture, reading }: Start): RegionDesk {
+export function useRegionChange({ frameId, picture, reading, facts, mayFit }: Start): RegionDesk {
   const start = useMemo<RegionChange>(
     () => ({
       region: reading?.result.region ?? startRegion(picture ?? { widthPx: 1000, heightPx: 600 }),
@@ -51,7 +55,7 @@ export function useRegionChange({ frameId, picture, reading }: Start): RegionDes
     !sameNumbers(leaveOut, start.leaveOut) ||
     zeroShift !== start.zeroShift;
   const change = changed || state.asked ? state.now : null;
-  const preview = usePreviewFit(frameId, reading?.id ?? null, change);
+  const preview = usePreviewFit({ frameId, readingId: reading?.id ?? null, facts, mayFit }, change);
   const set = (part: Partial<RegionChange>) =>
     setState((before) => ({ ...before, now: { ...before.now, ...part } }));
 

@@ -1,6 +1,6 @@
 'use client';
 
-import { useMemo, useState } from 'react';
+import { useMemo, useState, type ReactNode } from 'react';
 import { lightLine } from '@/lib/client/light';
 import { useLook } from '@/lib/client/look';
 import { useSize } from '@/lib/client/use-size';
@@ -30,12 +30,16 @@ interface Props {
   onToggleOrder?: (m: number) => void;
   /** Counts all orders from this one. */
   onZeroHere?: (m: number) => void;
+  /** A few words on where the numbers come from. */
+  note?: ReactNode;
 }
 
 /** Room one dot needs, px; closer points are thinned and the caption says so. */
 const DOT_ROOM = 2.6;
 /** Width the card of an order takes; it never covers the order's own line. */
 const CARD_ROOM_PX = 232;
+/** From this width the captions are written out. */
+const ROOMY_PX = 520;
 
 /** Strip, profile, misfit and order ladder on one axis, the zero order in the middle. */
 export function Stage(props: Props) {
@@ -58,6 +62,7 @@ function Drawing({
   onPick,
   onToggleOrder,
   onZeroHere,
+  note,
   width,
   height,
 }: Props & { width: number; height: number }) {
@@ -126,6 +131,14 @@ function Drawing({
           <ReadingLine x={x(order.mm)} layout={layout} bright={order.kind === 'bright'} />
         ) : null}
       </svg>
+      {note ? (
+        <div
+          className={width > ROOMY_PX ? 'stage-note' : 'stage-note is-narrow'}
+          style={{ top: layout[width > ROOMY_PX ? 'misfit' : 'profile'][0] - 30 }}
+        >
+          {note}
+        </div>
+      ) : null}
       <OrderTable orders={data.orders} leaveOut={leaveOut} top={layout.ladder[0] - 37} />
       <StageZoom zoom={zoom} halfMm={data.halfMm} onZoom={setZoom} top={layout.band[0] - 39} />
       {order ? (
@@ -218,7 +231,7 @@ function Captions({ layout, width, result, used, total, every, goggles }: Captio
   const at = goggles ? 92 : 82;
   const tone = goggles ? 'var(--edge)' : 'var(--ink)';
   const zero = result.envelopeZeroOrder;
-  const roomy = width > 520;
+  const roomy = width > ROOMY_PX;
   return (
     <>
       {line(layout.band[0], '1 Fringes, straightened', `${formatNumber(result.rows, 0)} rows averaged`)}
