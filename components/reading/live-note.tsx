@@ -11,11 +11,11 @@ function wordsFor({ home, because }: PreviewState): Words | null {
     case 'loading':
       return { long: 'Getting the bands of this region…', short: 'Getting bands…' };
     case 'browser':
-      return { long: 'Numbers are live; the server confirms them on keeping', short: 'Live numbers' };
+      return { long: 'Live; the server confirms on keeping', short: 'Live numbers' };
     case 'making':
       return { long: 'Making new bands for this region…', short: 'New bands…' };
     case 'server':
-      return { long: `${because ?? ''} The server fits each change.`.trim(), short: 'The server fits' };
+      return { long: because ?? 'The server fits', short: 'The server fits' };
     case null:
       return null;
   }

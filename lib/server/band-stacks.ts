@@ -60,7 +60,8 @@ export async function stackForRegion(
   facts: FitFacts,
   { region, leaveOut, zeroShift }: RegionChange,
 ): Promise<StoredStack> {
-  const row = await findRow(frame, facts, (plan) => plan.includes(`"region":${canonicalJson(region)}`));
+  const text = canonicalJson(region);
+  const row = await findRow(frame, facts, (plan) => canonicalJson(plan.region) === text);
   if (row) return openStack(frame, facts, row);
   return once(frame.id, { region, leaveOut, zeroShift }, () =>
     make(frame, facts, { region, tone: facts.tone, leaveOut, zeroShift }),
@@ -90,23 +91,23 @@ async function namedStack(frame: FrameRow, facts: FitFacts, sha256: string): Pro
 /** The stack of a plan, from the store or made from the frame's bytes. */
 async function stackAfter(frame: FrameRow, facts: FitFacts, plan: StackPlan): Promise<StoredStack> {
   const text = canonicalJson(plan);
-  const row = await findRow(frame, facts, (kept) => kept === text);
+  const row = await findRow(frame, facts, (kept) => canonicalJson(kept) === text);
   if (row) return openStack(frame, facts, row);
   return once(frame.id, plan, () => make(frame, facts, { tone: facts.tone, stack: plan }));
 }
 
-/** The newest kept stack whose plan, as canonical JSON, is the wanted one. */
+/** The newest kept stack whose plan is the wanted one. */
 async function findRow(
   frame: FrameRow,
   facts: FitFacts,
-  isWanted: (plan: string) => boolean,
+  isWanted: (plan: StackPlan) => boolean,
 ): Promise<StackRow | undefined> {
   const rows = await db().tables.bandStacks.findAll({
     where: own(frame, facts),
     order: [['id', 'DESC']],
     limit: MOST_LOOKED_AT,
   });
-  return rows.find(({ planJson }) => isWanted(planJson));
+  return rows.find(({ planJson }) => isWanted(JSON.parse(planJson) as StackPlan));
 }
 
 /** What marks the rows this engine may measure from. */
@@ -133,7 +134,8 @@ async function make(frame: FrameRow, facts: FitFacts, options: FitOptions): Prom
   const sha256 = await sha256Of(bytes);
   await putObject(stackKey(sha256), bytes, bytes.length, 'application/octet-stream');
   // Two who make the same stack at once put the same bytes; one row is enough.
-  const planJson = canonicalJson(decodeStack(bytes).plan);
+  // In the order of the stack's own heading: made again from it, the bytes are the same to the last one.
+  const planJson = JSON.stringify(decodeStack(bytes).plan);
   await db().tables.bandStacks.bulkCreate(
     [{ ...own(frame, facts), planJson, sha256, bytes: bytes.length, createdAt: new Date() }],
     { ignoreDuplicates: true },

@@ -7,7 +7,10 @@ import type { StoredStack } from './band-stacks';
 const pack = promisify(gzip);
 const LEVEL = 1;
 
-/** The bytes of a band stack under their hash, packed where the client takes it. */
+/**
+ * The bytes of a band stack under their hash, packed where the client takes application/gzip. (A content encoding would
+ * be the usual way, but the framework takes that header away.)
+ */
 export async function stackResponse(
   { sha256, bytes }: StoredStack,
   request: Request,
@@ -19,17 +22,16 @@ export async function stackResponse(
     'x-stack-sha256': sha256,
     'cache-control': cacheControl,
     // A shared computer's cache must not answer the next person.
-    vary: 'cookie, accept-encoding',
+    vary: 'cookie, accept',
   };
   if (request.headers.get('if-none-match')?.includes(etag))
     return new Response(null, { status: 304, headers });
-  const takesGzip = /(^|,)\s*gzip\s*(;|,|$)/.test(request.headers.get('accept-encoding') ?? '');
+  const takesGzip = request.headers.get('accept')?.includes('application/gzip') ?? false;
   const body = takesGzip ? await pack(bytes, { level: LEVEL }) : bytes;
   return new Response(body, {
     headers: {
       ...headers,
-      ...(takesGzip ? { 'content-encoding': 'gzip' } : {}),
-      'content-type': 'application/octet-stream',
+      'content-type': takesGzip ? 'application/gzip' : 'application/octet-stream',
       'content-length': String(body.length),
     },
   });

@@ -35,8 +35,8 @@ export interface FitServices {
 
 /** A drag rests this long before the server is asked for anything. */
 export const REST_MS = 200;
-const NO_WORKER = 'This browser does not let the page fit by itself.';
-const BROKE_OFF = 'The fit in this browser broke off.';
+const NO_WORKER = 'This browser cannot fit; the server does';
+const BROKE_OFF = 'The fit here broke off; the server fits';
 
 const NOTHING: FitState = {
   home: null,
@@ -157,13 +157,10 @@ export class LiveFits {
   private fetch(): void {
     this.tell({ home: 'loading' });
     void this.run(null, 0, async (signal) => {
-      try {
-        this.take(await this.services.fetchStack(signal), null);
-      } catch (problem) {
-        // Without the reading's stack the first change gets one of its own, or says why there is none.
-        if (!(problem instanceof Refused)) throw problem;
-        this.tell({ home: null });
-      }
+      const sent = await this.services.fetchStack(signal).catch(() => null);
+      // Without the reading's stack the first change gets one of its own, or says why there is none.
+      if (sent) this.take(sent, null);
+      else if (!signal.aborted) this.tell({ home: null });
     });
   }
 
@@ -198,7 +195,7 @@ export class LiveFits {
     } catch (problem) {
       if (signal.aborted) return;
       const message = problem instanceof Refused ? problem.message : 'The fit could not be made. Try again.';
-      const home = this.state.home === 'making' ? this.restingHome() : this.state.home;
+      const home = this.state.home === 'server' ? 'server' : this.restingHome();
       this.tell({ home, change, fit: null, problem: message });
     } finally {
       if (this.errand === errand) this.errand = null;

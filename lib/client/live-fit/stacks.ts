@@ -32,9 +32,20 @@ async function ask(address: string, init: RequestInit): Promise<Response> {
   throw new Refused(typeof title === 'string' ? title : 'The fit could not be made. Try again.');
 }
 
+/** Packed where this browser can unpack. */
+const ACCEPT = (): string =>
+  'DecompressionStream' in globalThis
+    ? 'application/gzip, application/octet-stream'
+    : 'application/octet-stream';
+
 async function stackFrom(response: Response): Promise<SentStack> {
   const sha256 = response.headers.get('x-stack-sha256') ?? '';
-  return { sha256, bytes: await response.arrayBuffer() };
+  const isPacked = response.headers.get('content-type') === 'application/gzip';
+  const plain =
+    isPacked && response.body
+      ? new Response(response.body.pipeThrough(new DecompressionStream('gzip')))
+      : response;
+  return { sha256, bytes: await plain.arrayBuffer() };
 }
 
 /** The stack a reading was measured from. */
@@ -44,7 +55,9 @@ export async function fetchStack(
   signal: AbortSignal,
 ): Promise<SentStack> {
   const query = new URLSearchParams({ reading: String(readingId), engine: ENGINE_VERSION });
-  return stackFrom(await ask(`/api/frames/${frameId}/stack?${query}`, { signal }));
+  return stackFrom(
+    await ask(`/api/frames/${frameId}/stack?${query}`, { headers: { accept: ACCEPT() }, signal }),
+  );
 }
 
 /** A new stack, made for a region that the one at hand does not hold. */
@@ -55,7 +68,12 @@ export async function makeStack(
 ): Promise<SentStack> {
   const body = JSON.stringify({ ...change, engine: ENGINE_VERSION });
   return stackFrom(
-    await ask(`/api/frames/${frameId}/stack`, { method: 'POST', headers: JSON_BODY, body, signal }),
+    await ask(`/api/frames/${frameId}/stack`, {
+      method: 'POST',
+      headers: { ...JSON_BODY, accept: ACCEPT() },
+      body,
+      signal,
+    }),
   );
 }
 

@@ -190,7 +190,7 @@ describe('where the browser has no worker', () => {
     await settle();
     expect(on.fits.current()).toMatchObject({
       home: 'server',
-      because: expect.stringMatching(/\.$/) as string,
+      because: expect.stringMatching(/the server/) as string,
       change,
       fit: { wavelengthNm: 3 },
       stackSha256: 'third',
