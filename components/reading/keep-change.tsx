@@ -29,6 +29,9 @@ interface Props {
   main?: boolean;
 }
 
+/** The column of a tablet is narrow: smaller words there, on two lines where they must be. */
+const SMALL_ON_TABLET = 'px-2! max-[1240px]:px-0.5! max-[1240px]:text-small! max-[1240px]:whitespace-normal!';
+
 /** Keeps the change as a new reading, or drops it. What is typed stays if the service refuses. */
 export function KeepChange({
   frameId,
@@ -85,11 +88,11 @@ export function KeepChange({
         busy={waiting || kept !== null}
         disabled={!ready}
         onClick={keep}
-        className="px-2!"
+        className={SMALL_ON_TABLET}
       >
         Keep this region
       </Button>
-      <Button onClick={desk.drop} disabled={waiting} className="px-2!">
+      <Button onClick={desk.drop} disabled={waiting} className={SMALL_ON_TABLET}>
         Drop the change
       </Button>
     </div>

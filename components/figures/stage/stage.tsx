@@ -133,7 +133,7 @@ function Drawing({
       </svg>
       {note ? (
         <div
-          className={width > ROOMY_PX ? 'stage-note' : 'stage-note is-narrow'}
+          className={width > (goggles ? 1.4 : 1.1) * ROOMY_PX ? 'stage-note' : 'stage-note is-narrow'}
           style={{ top: layout[width > ROOMY_PX ? 'misfit' : 'profile'][0] - 30 }}
         >
           {note}
