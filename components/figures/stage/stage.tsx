@@ -1,6 +1,6 @@
 'use client';
 
-import { useMemo, useState, type ReactNode } from 'react';
+import { useCallback, useMemo, useState, type ReactNode } from 'react';
 import { lightLine } from '@/lib/client/light';
 import { useLook } from '@/lib/client/look';
 import { useSize } from '@/lib/client/use-size';
@@ -70,9 +70,16 @@ function Drawing({
   const [zoom, setZoom] = useState({ factor: 1, middleMm: 0 });
   const data = useMemo(() => stageData(result, scaleUmPerPx), [result, scaleUmPerPx]);
   const layout = stageLayout(height, goggles);
-  const view = zoomed(data.halfMm, zoom);
-  const x: Scale = (mm) => ((mm - view.fromMm) / (view.toMm - view.fromMm)) * width;
-  const seen = data.points.filter((p) => p.mm >= view.fromMm && p.mm <= view.toMm);
+  // A key press draws the page twice, for the region and for its numbers; the curves are drawn with the numbers only.
+  const view = useMemo(() => zoomed(data.halfMm, zoom), [data, zoom]);
+  const x: Scale = useCallback(
+    (mm) => ((mm - view.fromMm) / (view.toMm - view.fromMm)) * width,
+    [view, width],
+  );
+  const seen = useMemo(
+    () => data.points.filter((p) => p.mm >= view.fromMm && p.mm <= view.toMm),
+    [data, view],
+  );
   const every = Math.max(1, Math.round((seen.length * DOT_ROOM) / width));
   const order = data.orders.find((o) => o.m === picked) ?? null;
   const used = data.orders.filter((o) => !isOut(o, leaveOut)).length;
