@@ -8,7 +8,7 @@ import {
 } from 'sequelize';
 import type { FrameState } from '@/lib/domain/life-cycle';
 
-/** One picture as received. Its bytes lie in the store under their SHA-256. */
+/** One picture or line scan as received. Its bytes lie in the store under their SHA-256. */
 export interface Frame extends Model<InferAttributes<Frame>, InferCreationAttributes<Frame>> {
   id: CreationOptional<number>;
   benchId: number;
@@ -27,6 +27,11 @@ export interface Frame extends Model<InferAttributes<Frame>, InferCreationAttrib
   message: CreationOptional<string | null>;
   widthPx: CreationOptional<number | null>;
   heightPx: CreationOptional<number | null>;
+  /** Of a scan: width of its detector (null: a point) as its newest reading has it, first and last position. */
+  detectorMm: CreationOptional<number | null>;
+  scanFromMm: CreationOptional<number | null>;
+  scanToMm: CreationOptional<number | null>;
+  scanPoints: CreationOptional<number | null>;
   spoolPath: string | null;
   uploadedBy: number;
   receivedAt: Date;
@@ -57,6 +62,10 @@ export function defineFrame(sequelize: Sequelize) {
       message: { type: DataTypes.STRING(1000), allowNull: true },
       widthPx: { type: DataTypes.INTEGER.UNSIGNED, allowNull: true },
       heightPx: { type: DataTypes.INTEGER.UNSIGNED, allowNull: true },
+      detectorMm: { type: DataTypes.DOUBLE, allowNull: true },
+      scanFromMm: { type: DataTypes.DOUBLE, allowNull: true },
+      scanToMm: { type: DataTypes.DOUBLE, allowNull: true },
+      scanPoints: { type: DataTypes.INTEGER.UNSIGNED, allowNull: true },
       spoolPath: { type: DataTypes.STRING(500), allowNull: true },
       uploadedBy: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       receivedAt: { type: DataTypes.DATE(3), allowNull: false },

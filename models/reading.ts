@@ -42,10 +42,14 @@ export interface Reading extends Model<InferAttributes<Reading>, InferCreationAt
   word: FindingWord;
   wordText: string;
   orderCentres: number;
-  spacingPx: number;
-  uSpacingPx: number;
-  scaleUmPerPx: number;
-  zeroAlongPx: number;
+  /** px of a frame; null for a scan, which has them in mm. */
+  spacingPx: CreationOptional<number | null>;
+  uSpacingPx: CreationOptional<number | null>;
+  scaleUmPerPx: CreationOptional<number | null>;
+  zeroAlongPx: CreationOptional<number | null>;
+  spacingMm: CreationOptional<number | null>;
+  uSpacingMm: CreationOptional<number | null>;
+  zeroMm: CreationOptional<number | null>;
 }
 
 export function defineReading(sequelize: Sequelize) {
@@ -83,10 +87,13 @@ export function defineReading(sequelize: Sequelize) {
       word: { type: DataTypes.STRING(8), allowNull: false },
       wordText: { type: DataTypes.STRING(1000), allowNull: false },
       orderCentres: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
-      spacingPx: { type: DataTypes.DOUBLE, allowNull: false },
-      uSpacingPx: { type: DataTypes.DOUBLE, allowNull: false },
-      scaleUmPerPx: { type: DataTypes.DOUBLE, allowNull: false },
-      zeroAlongPx: { type: DataTypes.DOUBLE, allowNull: false },
+      spacingPx: { type: DataTypes.DOUBLE, allowNull: true },
+      uSpacingPx: { type: DataTypes.DOUBLE, allowNull: true },
+      scaleUmPerPx: { type: DataTypes.DOUBLE, allowNull: true },
+      zeroAlongPx: { type: DataTypes.DOUBLE, allowNull: true },
+      spacingMm: { type: DataTypes.DOUBLE, allowNull: true },
+      uSpacingMm: { type: DataTypes.DOUBLE, allowNull: true },
+      zeroMm: { type: DataTypes.DOUBLE, allowNull: true },
     },
     { tableName: 'readings', modelName: 'Reading' },
   );

@@ -1,8 +1,9 @@
 import { readFile } from 'node:fs/promises';
 import { performance } from 'node:perf_hooks';
-import type { Estimate, FrameAnswer, SetupValues, ToneChoice } from '@/lib/domain/reading-result';
+import type { Estimate, FrameAnswer, SetupValues, Timing, ToneChoice } from '@/lib/domain/reading-result';
+import type { FitResult, ScanAnswer } from '@/lib/domain/scan-result';
 import { analyseFrame } from '@/lib/measure/analyse-frame';
-import { analyseScan, type ScanRefusal, type ScanResult } from '@/lib/measure/analyse-scan';
+import { analyseScan } from '@/lib/measure/analyse-scan';
 import { ENGINE_VERSION } from '@/lib/measure/engine-version';
 
 const USAGE = `Usage: npm run --silent analyse -- FILE... [--list FILE.jsonl]
@@ -36,7 +37,7 @@ interface Job {
 interface Plan {
   jobs: Job[];
   tone: ToneChoice;
-  detectorMm: number;
+  detectorMm: number | null;
 }
 
 class WrongUsage extends Error {}
@@ -64,7 +65,7 @@ async function readArguments(args: string[]): Promise<Plan> {
   const files: string[] = [];
   const lists: string[] = [];
   const scans: string[] = [];
-  let detectorMm = 0;
+  let detectorMm: number | null = null;
   const numbers: Numbers = {};
   let tone: ToneChoice = 'auto';
   for (let i = 0; i < args.length; i++) {
@@ -168,24 +169,61 @@ async function analyseFile(job: Job, plan: Plan): Promise<object> {
   if (job.scan)
     return scanLine(
       job.file,
-      analyseScan(new TextDecoder().decode(bytes), plan.detectorMm, setupOf(job.numbers), clock),
+      analyseScan(bytes, setupOf(job.numbers), { detectorMm: plan.detectorMm }, clock),
     );
   return lineFor(job.file, await analyseFrame(bytes, setupOf(job.numbers), { tone: plan.tone }, clock));
 }
 
 /** The line of one scan: a frame's keys with mm in place of px. */
-function scanLine(file: string, answer: ScanResult | ScanRefusal): object {
-  const { ms, ...rest } = answer;
-  const rounded = Object.fromEntries(Object.entries(ms).map(([k, v]) => [k, Math.round(v * 1000) / 1000]));
-  const present = Object.fromEntries(
-    Object.entries(rest).filter(([key, v]) => key !== 'budget' && (v !== null || key === 'dofSpacing')),
-  );
-  return { file, ...present, ms: rounded };
+function scanLine(file: string, answer: ScanAnswer): object {
+  if (!answer.ok) {
+    const { ok, code, message, engine, fileAtFault, scan } = answer;
+    return { file, ok, code, message, engine, ms: rounded(answer.ms), fileAtFault, scan };
+  }
+  return {
+    file,
+    ok: true,
+    code: answer.code,
+    message: answer.message,
+    spacingMm: answer.spacingMm,
+    uSpacingMm: answer.uSpacingMm,
+    dofSpacing: answer.dofSpacing,
+    visibility: answer.visibility,
+    zeroOrder: answer.zeroOrder,
+    orders: answer.orders.map(({ m, kind, xMm, uMm, pullMm }) => ({ m, kind, xMm, uMm, pullMm })),
+    region: answer.region,
+    ...alike(answer),
+    uVisibility: answer.uVisibility,
+    dofWavelength: answer.dofWavelength,
+    envelopeZeroOrder: answer.envelopeZeroOrder,
+    peak: answer.peak,
+    chiSquareReduced: answer.chiSquareReduced,
+    scan: answer.scan,
+    detectorMm: answer.detectorMm,
+  };
+}
+
+const rounded = (ms: Timing) =>
+  Object.fromEntries(Object.entries(ms).map(([k, v]: [string, number]) => [k, Math.round(v * 1000) / 1000]));
+
+/** What the lines of a frame and of a scan have alike, in the order of the command's description. */
+function alike(answer: FitResult): object {
+  const given = <T>(key: string, value: T | null) => (value === null ? {} : { [key]: value });
+  return {
+    medium: answer.medium,
+    ...given('wavelengthNm', answer.wavelengthNm),
+    ...given('wavelengthVacuumNm', answer.wavelengthVacuumNm),
+    ...given('uWavelengthNm', answer.uWavelengthNm),
+    ...given('expandedNm', answer.expandedNm),
+    ...given('k', answer.k),
+    findings: answer.findings.map(({ check, word, message }) => ({ check, word, message })),
+    engine: answer.engine,
+    ms: rounded(answer.ms),
+  };
 }
 
 /** The line of one frame: the keys of the command's description first, further ones at the end. */
 export function lineFor(file: string, answer: FrameAnswer): object {
-  const ms = Object.fromEntries(Object.entries(answer.ms).map(([k, v]) => [k, Math.round(v * 1000) / 1000]));
   if (!answer.ok)
     return {
       file,
@@ -193,11 +231,10 @@ export function lineFor(file: string, answer: FrameAnswer): object {
       code: answer.code,
       message: answer.message,
       engine: answer.engine,
-      ms,
+      ms: rounded(answer.ms),
       fileAtFault: answer.fileAtFault,
       picture: answer.picture,
     };
-  const given = <T>(key: string, value: T | null) => (value === null ? {} : { [key]: value });
   return {
     file,
     ok: true,
@@ -211,15 +248,7 @@ export function lineFor(file: string, answer: FrameAnswer): object {
     zeroOrder: answer.zeroOrder,
     orders: answer.orders.map(({ m, kind, xPx, yPx, uPx, pullPx }) => ({ m, kind, xPx, yPx, uPx, pullPx })),
     region: answer.region,
-    medium: answer.medium,
-    ...given('wavelengthNm', answer.wavelengthNm),
-    ...given('wavelengthVacuumNm', answer.wavelengthVacuumNm),
-    ...given('uWavelengthNm', answer.uWavelengthNm),
-    ...given('expandedNm', answer.expandedNm),
-    ...given('k', answer.k),
-    findings: answer.findings.map(({ check, word, message }) => ({ check, word, message })),
-    engine: answer.engine,
-    ms,
+    ...alike(answer),
     uTiltDeg: answer.uTiltDeg,
     uVisibility: answer.uVisibility,
     dofWavelength: answer.dofWavelength,

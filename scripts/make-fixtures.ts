@@ -8,7 +8,7 @@ import { crc32, deflateSync } from 'node:zlib';
 import sharp from 'sharp';
 import { photograph, PLAIN_CAMERA, type Camera } from './simulator/camera';
 import { encodeFile, type FileKind } from './simulator/encode';
-import { setupOf } from './simulator/families';
+import { setupOf } from './simulator/family';
 import { PLAIN_SCENE, trueSpacingPx, type Scene } from './simulator/scene';
 
 const FRAMES = path.join('fixtures', 'frames');
@@ -150,7 +150,7 @@ async function hostile(): Promise<void> {
   const put = (name: string, bytes: Buffer | string) => writeFile(path.join(HOSTILE, name), bytes);
   await put('truncated.png', png.subarray(0, Math.floor(png.length * 0.4)));
   await put('truncated.jpg', jpeg.subarray(0, Math.floor(jpeg.length * 0.5)));
-  await put('not-a-picture.png', 'position,intensity\n0.0,12\n0.1,14\n');
+  await put('not-a-picture.png', 'A note beside the camera, and no picture.\n');
   await put('empty.tif', '');
   await put('bomb.png', pictureBomb());
   await put('palette.png', await sharp(colour).png({ palette: true, colours: 16 }).toBuffer());

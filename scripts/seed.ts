@@ -4,7 +4,7 @@
  * database, which it checks.
  */
 import type { Role } from '@/lib/domain/roles';
-import type { ReadingResult } from '@/lib/domain/reading-result';
+import type { FitResult } from '@/lib/domain/scan-result';
 import type { Outcome } from '@/lib/domain/views';
 import { acceptReading } from '@/lib/server/commands/accept-reading';
 import { addBench } from '@/lib/server/commands/add-bench';
@@ -35,6 +35,7 @@ import {
 } from './seed/plan';
 import { photograph } from './simulator/camera';
 import { encodeFile } from './simulator/encode';
+import { scanText } from './simulator/scan';
 
 const DAY_MS = 86_400_000;
 const MINUTE_MS = 60_000;
@@ -147,6 +148,7 @@ async function enterSetup(
 }
 
 async function fileOf(frame: DemoFrame): Promise<Buffer> {
+  if (!('camera' in frame.plan)) return Buffer.from(scanText(frame.plan));
   const { scene, camera, kind, quality } = frame.plan;
   const bytes = await encodeFile(photograph(scene, camera), kind, { quality });
   return frame.cutAt ? bytes.subarray(0, Math.floor(frame.cutAt * bytes.length)) : bytes;
@@ -172,7 +174,15 @@ async function takeFrame(
   })();
   const { frameId } = await receiveFrame(
     { actor: cast.technicians[frame.by], at: daysAgo(frame.daysAgo) },
-    { fileName: frame.fileName, benchId, ...subject, serial, declaredBytes: bytes.length, body },
+    {
+      fileName: frame.fileName,
+      benchId,
+      ...subject,
+      serial,
+      detectorMm: 'detectorMm' in frame.plan ? frame.plan.detectorMm : null,
+      declaredBytes: bytes.length,
+      body,
+    },
   );
   await fitFrame({ actor: PRODUCT, at: daysAgo(frame.daysAgo, 0.2) }, frameId);
   const [row] = await select<Fitted>(
@@ -227,9 +237,9 @@ const OUTCOME_OF: Record<string, Outcome> = {
   'no-verdict': 'held-for-qa',
 };
 
-async function findingsOf(readingId: number): Promise<ReadingResult['findings']> {
+async function findingsOf(readingId: number): Promise<FitResult['findings']> {
   const row = await db().tables.readingResults.findByPk(readingId, { rejectOnEmpty: true });
-  return (JSON.parse(row.resultJson) as ReadingResult).findings;
+  return (JSON.parse(row.resultJson) as FitResult).findings;
 }
 
 async function main(): Promise<void> {

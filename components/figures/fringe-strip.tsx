@@ -3,7 +3,7 @@
 import { useEffect, useRef } from 'react';
 import { encode, lightRgb, STRIP_EXPONENT, type Rgb } from '@/lib/client/light';
 import { useLook } from '@/lib/client/look';
-import { stripEndsMm, type StripPlace } from './strip-scale';
+import type { PlacedStrip } from '@/lib/domain/placed-strip';
 
 /** One pixel per sample, one high: the browser stretches it, so no size has to be measured. */
 function paint(canvas: HTMLCanvasElement, light: readonly number[], colour: Rgb) {
@@ -40,25 +40,21 @@ export function LightBand({ light, nm, label, style }: LightProps) {
   return <canvas ref={canvas} role="img" aria-label={label} style={style} />;
 }
 
-interface Props extends StripPlace {
+interface Props {
+  strip: PlacedStrip;
   spanMm: number;
   nm: number | null;
   label: string;
 }
 
 /** A strip on a list's scale, its zero order on the middle. */
-export function FringeStrip({ spanMm, nm, label, ...place }: Props) {
-  const [fromMm, toMm] = stripEndsMm(place);
+export function FringeStrip({ strip, spanMm, nm, label }: Props) {
+  const { fromMm, toMm, light } = strip;
   const left = 50 + (100 * fromMm) / spanMm;
   const width = (100 * (toMm - fromMm)) / spanMm;
   return (
     <div className="strip-bed">
-      <LightBand
-        light={place.strip.light}
-        nm={nm}
-        label={label}
-        style={{ left: `${left}%`, width: `${width}%` }}
-      />
+      <LightBand light={light} nm={nm} label={label} style={{ left: `${left}%`, width: `${width}%` }} />
     </div>
   );
 }

@@ -83,7 +83,11 @@ function Outcome({ frame }: { frame: FrameRow }) {
   if (reading.wavelengthNm === null) {
     return (
       <>
-        <Quantity value={reading.spacingPx} expanded={2 * reading.uSpacingPx} unit="px" />
+        <Quantity
+          value={reading.spacing.value}
+          expanded={2 * reading.spacing.u}
+          unit={reading.spacing.unit}
+        />
         <span className="text-small text-ink-2">spacing; the setup gives no wavelength</span>
         <span />
       </>

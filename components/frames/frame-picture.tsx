@@ -21,8 +21,6 @@ export function FramePicture({ frame, spanMm, sent }: Props) {
     return (
       <FringeStrip
         strip={reading.strip}
-        zeroAlongPx={reading.zeroAlongPx}
-        scaleUmPerPx={reading.scaleUmPerPx}
         spanMm={spanMm}
         nm={reading.wavelengthNm}
         label={`Fringe strip of ${subjectName(frame)}`}

@@ -1,4 +1,5 @@
 import { SaidVerdict } from '@/components/figures/marks';
+import { spacingOf } from '@/lib/domain/placed-strip';
 import type { ReadingView } from '@/lib/domain/views';
 import { formatNumber, formatSigned, placesFor } from '@/lib/quantity/format';
 import type { PreviewState } from '@/lib/client/use-preview-fit';
@@ -47,7 +48,7 @@ export function BeforeAfter({ before, preview }: Props) {
               <th scope="row">nm</th>
               <td>{before ? valueText(before) : 'none'}</td>
               <td>
-                <b>{fit ? valueText({ ...fit, spacingPx: fit.result.spacingPx }) : '…'}</b>
+                <b>{fit ? valueText({ ...fit, spacing: spacingOf(fit.result) }) : '…'}</b>
               </td>
             </tr>
             <tr>

@@ -1,21 +1,29 @@
 'use client';
 
-import { useState, type ReactNode } from 'react';
+import { useMemo, useState, type ReactNode } from 'react';
 import { Stage } from '@/components/figures/stage/stage';
 import type { RegionDesk } from '@/lib/client/use-region-change';
+import type { Picture } from '@/lib/client/region';
 import type { Region } from '@/lib/domain/reading-result';
+import { isScanRegion, type ScanRegion } from '@/lib/domain/scan-result';
 import type { FrameView, ReadingView } from '@/lib/domain/views';
 import { formatNumber } from '@/lib/quantity/format';
 import { LiveNote } from './live-note';
 import { PhotoRegion } from './photo-region';
 import { RegionFields } from './region-fields';
+import { ScanPart } from './scan-part';
 
-/** Size of the frame, from the row or from the fit; null for a file without a picture. */
-export function pictureOf(frame: FrameView): { widthPx: number; heightPx: number } | null {
+/** What a region can lie on: the picture's size or the scan's length; null for a file that gives neither. */
+export function boundsOf(frame: FrameView): Picture | ScanRegion | null {
   // A file that breaks off may still have said its size; there is nothing to lay a calliper on.
   if (frame.state === 'unreadable') return null;
-  if (frame.widthPx && frame.heightPx) return { widthPx: frame.widthPx, heightPx: frame.heightPx };
-  return frame.shown?.result.picture ?? null;
+  if (frame.scan) return frame.scanLength;
+  return frame.widthPx && frame.heightPx ? { widthPx: frame.widthPx, heightPx: frame.heightPx } : null;
+}
+
+/** The same, the same object while the frame is. */
+export function useBounds(frame: FrameView): Picture | ScanRegion | null {
+  return useMemo(() => boundsOf(frame), [frame]);
 }
 
 interface PhotoProps {
@@ -27,21 +35,24 @@ interface PhotoProps {
 
 /** Photo with the calliper, and the same region in numbers. */
 export function PhotoPart({ frame, desk, mayFit, onKeys }: PhotoProps) {
-  const picture = pictureOf(frame);
-  if (!picture) {
+  const { region } = desk;
+  const bounds = boundsOf(frame);
+  if (isScanRegion(region))
+    return <ScanPart frame={frame} region={region} desk={desk} mayFit={mayFit} onKeys={onKeys} />;
+  if (!bounds || 'fromMm' in bounds) {
     return (
       <>
         <div className="cap">
-          <h2>Photo</h2>
+          <h2>{frame.scan ? 'Scan' : 'Photo'}</h2>
           <a className="link" href={`/api/frames/${frame.id}/original`} download={frame.fileName}>
             the file as received
           </a>
         </div>
-        <p className="text-small text-ink-2">The file gives no picture.</p>
+        <p className="text-small text-ink-2">The file gives no {frame.scan ? 'scan' : 'picture'}.</p>
       </>
     );
   }
-  const change = mayFit ? (region: Region) => desk.setRegion(region) : undefined;
+  const change = mayFit ? (next: Region) => desk.setRegion(next) : undefined;
   return (
     <>
       <div className="cap">
@@ -52,17 +63,17 @@ export function PhotoPart({ frame, desk, mayFit, onKeys }: PhotoProps) {
           download={frame.fileName}
           title={frame.fileName}
         >
-          {formatNumber(picture.widthPx, 0)} × {formatNumber(picture.heightPx, 0)} px, original
+          {formatNumber(bounds.widthPx, 0)} × {formatNumber(bounds.heightPx, 0)} px, original
         </a>
       </div>
       <PhotoRegion
         frameId={frame.id}
-        picture={picture}
+        picture={bounds}
         alt={`Photo ${frame.fileName}`}
-        region={desk.region}
+        region={region}
         onChange={change}
       />
-      <RegionFields region={desk.region} onChange={change} onKeys={onKeys} />
+      <RegionFields region={region} onChange={change} onKeys={onKeys} />
     </>
   );
 }
@@ -81,7 +92,7 @@ export function StagePart({ reading, desk, mayFit, picked, onPick }: StageProps)
   return (
     <Stage
       result={fit?.result ?? reading.result}
-      scaleUmPerPx={reading.scaleUmPerPx}
+      scaleUmPerPx={reading.setup.scaleUmPerPx.value}
       nm={fit?.result.wavelengthNm ?? reading.result.wavelengthNm}
       leaveOut={desk.leaveOut}
       picked={picked}

@@ -7,11 +7,11 @@ import type { FrameView, May } from '@/lib/domain/views';
 import { publishedOf, specificationOf } from '@/lib/client/words';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
-import { TILT_STEP_DEG, turn } from '@/lib/client/region';
+import { TILT_STEP_DEG } from '@/lib/client/region';
 import type { KeepFit, SendToReview } from './actions';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
-import { PhotoPart, pictureOf, StageNote, StagePart, usePicked } from './desk-parts';
+import { boundsOf, PhotoPart, StageNote, StagePart, useBounds, usePicked } from './desk-parts';
 import { Findings } from './findings';
 import { KeepChange, type Refusal } from './keep-change';
 import { KeysSheet } from './keys-sheet';
@@ -33,7 +33,8 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
   const reading = frame.shown;
   const desk = useRegionChange({
     frameId: frame.id,
-    picture: pictureOf(frame),
+    bounds: useBounds(frame),
+    detectorMm: frame.scan?.detectorMm ?? null,
     reading,
     facts: frame.facts,
     mayFit: may.fit,
@@ -42,8 +43,8 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
   const [refusal, setRefusal] = useState<Refusal | null>(null);
   const [sheet, setSheet] = useState(false);
   const keys = useShortcuts({
-    '[': () => may.fit && desk.setRegion(turn(desk.region, -TILT_STEP_DEG)),
-    ']': () => may.fit && desk.setRegion(turn(desk.region, TILT_STEP_DEG)),
+    '[': () => may.fit && desk.turnBy(-TILT_STEP_DEG),
+    ']': () => may.fit && desk.turnBy(TILT_STEP_DEG),
     x: () => may.fit && picked !== null && desk.toggleOrder(picked),
     '?': () => setSheet(true),
   });
@@ -51,7 +52,10 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
   const shown = fit ?? reading;
   return (
     <div className="desk">
-      <section className="left" aria-label="Photo, region and checks">
+      <section
+        className="left"
+        aria-label={frame.scan ? 'Scan, region and checks' : 'Photo, region and checks'}
+      >
         <PhotoPart frame={frame} desk={desk} mayFit={may.fit} onKeys={() => setSheet(true)} />
         {shown ? <Findings findings={fit ? fit.result.findings : (reading?.findings ?? [])} /> : null}
       </section>
@@ -63,11 +67,12 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
         <StageNote>
           <p className="mb-2 text-lead font-medium text-ink">{FRAME_WORDS[frame.state]}</p>
           <p>{frame.message ?? 'The frame is not fitted yet.'}</p>
-          {may.fit && pictureOf(frame) ? (
+          {may.fit && boundsOf(frame) ? (
             <>
               <p className="mt-3">
-                Where the fringes can be seen, set the calliper on them: the region is then fitted as you set
-                it.
+                {frame.scan
+                  ? 'Where the fringes can be seen, set the jaws beside them: that part of the scan is then fitted.'
+                  : 'Where the fringes can be seen, set the calliper on them: the region is then fitted as you set it.'}
               </p>
               <Button className="mt-4" busy={desk.preview.working} onClick={desk.fitAsItStands}>
                 Fit the region as it stands
@@ -129,7 +134,13 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
           <SendBox reading={reading} changed={desk.change !== null} sendToReview={sendToReview} />
         ) : null}
       </section>
-      <KeysSheet open={sheet} onClose={() => setSheet(false)} on={keys.on} setOn={keys.setOn} />
+      <KeysSheet
+        open={sheet}
+        onClose={() => setSheet(false)}
+        on={keys.on}
+        setOn={keys.setOn}
+        scan={frame.scan !== null}
+      />
     </div>
   );
 }

@@ -8,13 +8,23 @@ interface Props {
   onClose: () => void;
   on: boolean;
   setOn: (on: boolean) => void;
+  /** Jaws of a scan in place of a calliper. */
+  scan: boolean;
 }
 
-const KEYS: readonly [string[], string][] = [
+type Keys = readonly [string[], string][];
+
+const CALLIPER: Keys = [
   [['←', '→', '↑', '↓'], 'on a part of the calliper: 1 px; on the orders: the next order'],
   [['Shift', '←'], 'on a part of the calliper: 10 px'],
   [['['], 'tilt 0.02° less'],
   [[']'], 'tilt 0.02° more'],
+];
+const JAWS: Keys = [
+  [['←', '→'], 'on a jaw: one step; on the orders: the next order'],
+  [['Shift', '←'], 'on a jaw: ten steps'],
+];
+const EVERYWHERE: Keys = [
   [['x'], 'leave the picked order out, or take it back'],
   [['n'], 'next in the queue'],
   [['p'], 'previous in the queue'],
@@ -22,11 +32,11 @@ const KEYS: readonly [string[], string][] = [
 ];
 
 /** The keys of a reading; the single ones can be switched off. */
-export function KeysSheet({ open, onClose, on, setOn }: Props) {
+export function KeysSheet({ open, onClose, on, setOn, scan }: Props) {
   return (
     <Dialog open={open} onClose={onClose} title="Keys">
       <dl className="grid grid-cols-[auto_1fr] items-baseline gap-x-5 gap-y-2">
-        {KEYS.map(([keys, what]) => (
+        {[...(scan ? JAWS : CALLIPER), ...EVERYWHERE].map(([keys, what]) => (
           <div key={what} className="contents">
             <dt className="flex gap-1">
               {keys.map((key) => (

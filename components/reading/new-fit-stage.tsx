@@ -2,6 +2,7 @@
 
 import { Stage } from '@/components/figures/stage/stage';
 import type { RegionDesk } from '@/lib/client/use-region-change';
+import { isScanResult } from '@/lib/domain/scan-result';
 import type { FitPreview } from '@/lib/domain/views';
 import { LiveNote } from './live-note';
 
@@ -25,7 +26,8 @@ interface Props {
 /** The stage of a frame's first fit: a region set by hand where the engine found none. */
 export function NewFitStage({ fit, desk, picked, onPick }: Props) {
   const scale = scaleOfFit(fit);
-  if (!(scale > 0)) return <section className="stage" aria-label="Fringes on one axis" />;
+  if (!(scale > 0) && !isScanResult(fit.result))
+    return <section className="stage" aria-label="Fringes on one axis" />;
   return (
     <Stage
       result={fit.result}

@@ -4,8 +4,9 @@ import type { ReadingBrief } from '@/lib/domain/views';
 import { formatNumber, formatQuantity } from '@/lib/quantity/format';
 import { MEDIUM_SHORT } from '@/components/figures/quantity';
 
-export function valueText(reading: Pick<ReadingBrief, 'wavelengthNm' | 'expandedNm' | 'spacingPx'>): string {
-  if (reading.wavelengthNm === null) return `${formatNumber(reading.spacingPx, 3)} px`;
+export function valueText(reading: Pick<ReadingBrief, 'wavelengthNm' | 'expandedNm' | 'spacing'>): string {
+  const { value, unit } = reading.spacing;
+  if (reading.wavelengthNm === null) return `${formatNumber(value, 3)} ${unit}`;
   if (!reading.expandedNm) return formatNumber(reading.wavelengthNm, 2);
   const text = formatQuantity(reading.wavelengthNm, reading.expandedNm);
   return `${text.value} ± ${text.uncertainty}`;

@@ -3,18 +3,20 @@ import { MEDIUM_SHORT, Quantity } from '@/components/figures/quantity';
 import { ToleranceWhisker } from '@/components/figures/tolerance-whisker';
 import { BudgetBars } from '@/components/figures/budget-bars';
 import { RULE_WORDS } from '@/lib/client/words';
-import type { ReadingResult } from '@/lib/domain/reading-result';
+import { spacingOf } from '@/lib/domain/placed-strip';
+import type { FitResult } from '@/lib/domain/scan-result';
 import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
 import { formatNumber, formatQuantity, formatSigned, placesFor } from '@/lib/quantity/format';
 
 export interface ResultProps {
-  result: ReadingResult;
+  result: FitResult;
   /** In the specification's medium. */
   wavelengthNm: number | null;
   expandedNm: number | null;
   medium: Medium;
   judgement: Judgement | null;
   specification: Specification | null;
+  /** Of a frame; a scan is in mm already. */
   scaleUmPerPx: number;
   /** Standard uncertainty of the scale, for the spacing in mm. */
   uScaleUmPerPx: number;
@@ -25,6 +27,7 @@ export interface ResultProps {
 /** Verdict, value and where it stands; the largest thing on the page. */
 export function Result(props: ResultProps) {
   const { result, wavelengthNm, expandedNm, medium, judgement, specification } = props;
+  const spacing = spacingOf(result);
   return (
     <div>
       <div className="cap items-center" style={{ marginBottom: 0 }}>
@@ -44,7 +47,7 @@ export function Result(props: ResultProps) {
       </div>
       <div className="mt-2">
         {wavelengthNm === null ? (
-          <Quantity value={result.spacingPx} expanded={2 * result.uSpacingPx} unit="px" size="result" />
+          <Quantity value={spacing.value} expanded={2 * spacing.u} unit={spacing.unit} size="result" />
         ) : (
           <Quantity value={wavelengthNm} expanded={expandedNm} medium={medium} size="result" />
         )}
@@ -78,8 +81,10 @@ function Lines({
   uScaleUmPerPx,
   publishedVacuumNm,
 }: ResultProps) {
-  const spacingMm = (result.spacingPx * scaleUmPerPx) / 1000;
-  const relative = Math.hypot(result.uSpacingPx / result.spacingPx, uScaleUmPerPx / scaleUmPerPx);
+  const own = spacingOf(result);
+  const inMm = own.unit === 'mm';
+  const spacingMm = inMm ? own.value : (own.value * scaleUmPerPx) / 1000;
+  const relative = Math.hypot(own.u / own.value, inMm ? 0 : uScaleUmPerPx / scaleUmPerPx);
   const spacing = formatQuantity(spacingMm, 2 * spacingMm * relative);
   const other = medium === 'air' ? result.wavelengthVacuumNm : result.wavelengthNm;
   const places = placesFor(result.expandedNm ?? 0.5);
@@ -106,7 +111,7 @@ function Lines({
 }
 
 /** What the ± is made of, or why there is none. */
-export function Budget({ result }: { result: ReadingResult }) {
+export function Budget({ result }: { result: FitResult }) {
   return (
     <div className="sec" style={{ marginTop: 6 }}>
       <div className="cap">

@@ -5,7 +5,7 @@ import { useState } from 'react';
 import { readingMay } from '@/lib/domain/life-cycle';
 import type { ReadingView, ReviewView } from '@/lib/domain/views';
 import { publishedOf, specificationOf, subjectName } from '@/lib/client/words';
-import { TILT_STEP_DEG, turn } from '@/lib/client/region';
+import { TILT_STEP_DEG } from '@/lib/client/region';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
 import type { AcceptReading, KeepFit, ReturnReading, SetOutcome } from './actions';
@@ -13,7 +13,7 @@ import { AfterDecision } from './after-decision';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
 import { Decision } from './decision';
-import { PhotoPart, pictureOf, StagePart, usePicked } from './desk-parts';
+import { PhotoPart, StagePart, useBounds, usePicked } from './desk-parts';
 import { Findings } from './findings';
 import { FrameStory } from './frame-story';
 import { KeepChange, type Refusal } from './keep-change';
@@ -37,6 +37,7 @@ interface Props {
 export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReading, setOutcome }: Props) {
   const { frame, may, queue } = view;
   const router = useRouter();
+  const bounds = useBounds(frame);
   const [picked, pick] = usePicked();
   const [answers, setAnswers] = useState<Answers>({});
   const [mode, setMode] = useState<'checks' | 'return'>('checks');
@@ -48,15 +49,16 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
   const mayFit = may.fit && open;
   const desk = useRegionChange({
     frameId: frame.id,
-    picture: pictureOf(frame),
+    bounds,
+    detectorMm: frame.scan?.detectorMm ?? null,
     reading,
     facts: frame.facts,
     mayFit,
   });
   const go = (id: number | null) => id !== null && router.push(`/review/${id}`);
   const keys = useShortcuts({
-    '[': () => mayFit && desk.setRegion(turn(desk.region, -TILT_STEP_DEG)),
-    ']': () => mayFit && desk.setRegion(turn(desk.region, TILT_STEP_DEG)),
+    '[': () => mayFit && desk.turnBy(-TILT_STEP_DEG),
+    ']': () => mayFit && desk.turnBy(TILT_STEP_DEG),
     x: () => mayFit && picked !== null && desk.toggleOrder(picked),
     n: () => go(queue.nextId),
     p: () => go(queue.previousId),
@@ -97,7 +99,10 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
         </div>
       ) : null}
       <div className="desk">
-        <section className="left" aria-label="Photo, region and checks">
+        <section
+          className="left"
+          aria-label={frame.scan ? 'Scan, region and checks' : 'Photo, region and checks'}
+        >
           <PhotoPart frame={frame} desk={desk} mayFit={mayFit} onKeys={() => setSheet(true)} />
           {reading.note ? (
             <p className="sec text-small text-ink-2">
@@ -184,7 +189,13 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
           </div>
         </section>
       </div>
-      <KeysSheet open={sheet} onClose={() => setSheet(false)} on={keys.on} setOn={keys.setOn} />
+      <KeysSheet
+        open={sheet}
+        onClose={() => setSheet(false)}
+        on={keys.on}
+        setOn={keys.setOn}
+        scan={frame.scan !== null}
+      />
     </>
   );
 }

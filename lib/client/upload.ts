@@ -6,6 +6,8 @@ export interface UploadTarget {
   lotId: number | null;
   sourceId: number | null;
   serial: string;
+  /** Width of a line scan's detector; null is a point, and nothing to a picture. */
+  detectorMm: number | null;
 }
 
 export type UploadAnswer =
@@ -45,6 +47,7 @@ export function upload(
   if (target.lotId !== null) query.set('lotId', String(target.lotId));
   if (target.sourceId !== null) query.set('sourceId', String(target.sourceId));
   if (target.serial) query.set('serial', target.serial);
+  if (target.detectorMm !== null) query.set('detectorMm', String(target.detectorMm));
   return new Promise((resolve) => {
     const request = new XMLHttpRequest();
     request.open('POST', `/api/upload?${query}`);

@@ -1,6 +1,7 @@
 'use client';
 
 import { useEffect, useMemo, useSyncExternalStore } from 'react';
+import { isScanResult } from '@/lib/domain/scan-result';
 import type { FitFacts, FitPreview, RegionChange, SeenDigits } from '@/lib/domain/views';
 import type { FitQuestion, FitReply } from './live-fit/fit-worker';
 import { LiveFits, type FitHome, type FitServices } from './live-fit/live-fits';
@@ -24,6 +25,8 @@ interface Ask {
   readingId: number | null;
   facts: FitFacts;
   mayFit: boolean;
+  /** A scan is fitted by the server: there are no bands to hold. */
+  isScan: boolean;
 }
 
 /** The engine on a thread of this browser. Its file is bundled from the address below. */
@@ -52,7 +55,7 @@ function servicesFor(frameId: number, readingId: number | null): FitServices {
 
 /** Fits a change of the region without keeping it. `change` is null while nothing is changed. */
 export function usePreviewFit(ask: Ask, change: RegionChange | null): PreviewState {
-  const { frameId, readingId, mayFit } = ask;
+  const { frameId, readingId, mayFit, isScan } = ask;
   const factsText = JSON.stringify(ask.facts);
   const fits = useMemo(
     () =>
@@ -61,9 +64,9 @@ export function usePreviewFit(ask: Ask, change: RegionChange | null): PreviewSta
   );
   useEffect(() => {
     if (!mayFit) return undefined;
-    fits.open();
+    fits.open(isScan);
     return () => fits.close();
-  }, [fits, mayFit]);
+  }, [fits, mayFit, isScan]);
   useEffect(() => fits.want(change), [fits, change]);
   const state = useSyncExternalStore(fits.subscribe, fits.current, fits.current);
   const { home, because, fit, problem, stackSha256 } = state;
@@ -71,7 +74,8 @@ export function usePreviewFit(ask: Ask, change: RegionChange | null): PreviewSta
 }
 
 /** The digits of a fit that the server is to confirm when it is kept. */
-export function digitsOf({ result }: FitPreview): SeenDigits {
+export function digitsOf({ result }: FitPreview): SeenDigits | null {
+  if (isScanResult(result)) return null;
   const { spacingPx, uSpacingPx, wavelengthNm, expandedNm } = result;
   return { spacingPx, uSpacingPx, wavelengthNm, expandedNm };
 }

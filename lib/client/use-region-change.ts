@@ -2,18 +2,28 @@
 
 import { useMemo, useState } from 'react';
 import type { Region } from '@/lib/domain/reading-result';
+import { isScanRegion, isScanResult, type ScanRegion } from '@/lib/domain/scan-result';
 import type { FitFacts, ReadingView, RegionChange } from '@/lib/domain/views';
-import { kept, rounded, sameRegion, startRegion, type Picture } from './region';
+import { kept, rounded, sameRegion, startRegion, turn, type Picture } from './region';
+import { keptInScan, roundedInScan } from './scan-region';
 import { usePreviewFit, type PreviewState } from './use-preview-fit';
 
+type AnyRegion = Region | ScanRegion;
+
 export interface RegionDesk {
-  region: Region;
+  /** A rectangle of a picture, or a part of a scan. */
+  region: AnyRegion;
+  /** Width of a scan's detector, null for a point. */
+  detectorMm: number | null;
   leaveOut: number[];
   zeroShift: number;
   /** What differs from the reading that is shown, or null. */
   change: RegionChange | null;
   preview: PreviewState;
-  setRegion: (region: Region) => void;
+  setRegion: (region: AnyRegion) => void;
+  /** Turns a picture's region. */
+  turnBy: (deg: number) => void;
+  setDetector: (detectorMm: number | null) => void;
   toggleOrder: (m: number) => void;
   /** Counts all orders from the one that now has this number. */
   zeroAt: (m: number) => void;
@@ -24,7 +34,10 @@ export interface RegionDesk {
 
 interface Start {
   frameId: number;
-  picture: Picture | null;
+  /** What the region lies on: a picture's size or a scan's length; null where the file gives neither. */
+  bounds: Picture | ScanRegion | null;
+  /** Of a scan, as it was uploaded. */
+  detectorMm: number | null;
   reading: ReadingView | null;
   /** What a fit of the frame is made with. */
   facts: FitFacts;
@@ -32,18 +45,43 @@ interface Start {
   mayFit: boolean;
 }
 
+const sameAny = (a: AnyRegion, b: AnyRegion) => {
+  if (!isScanRegion(a)) return !isScanRegion(b) && sameRegion(a, b);
+  return isScanRegion(b) && a.fromMm === b.fromMm && a.toMm === b.toMm;
+};
+
+const isLength = (bounds: Picture | ScanRegion | null): bounds is ScanRegion =>
+  bounds !== null && 'fromMm' in bounds;
+
+function startOn(bounds: Picture | ScanRegion | null): AnyRegion {
+  if (isLength(bounds)) return { fromMm: bounds.fromMm, toMm: bounds.toMm };
+  return startRegion(bounds ?? { widthPx: 1000, heightPx: 600 });
+}
+
+/** The region inside its bounds, in numbers a person can read back. */
+function tidy(next: AnyRegion, before: AnyRegion, bounds: Picture | ScanRegion | null): AnyRegion {
+  if (isScanRegion(next)) {
+    if (!isLength(bounds) || !isScanRegion(before)) return next;
+    return roundedInScan(keptInScan(next, bounds, before), bounds);
+  }
+  return rounded(bounds && !isLength(bounds) ? kept(next, bounds) : next);
+}
+
 const sameNumbers = (a: readonly number[], b: readonly number[]) =>
   a.length === b.length && [...a].sort().join() === [...b].sort().join();
 
 /** The region, the orders left out and the zero order as a person changes them, with the fit they would give. */
-export function useRegionChange({ frameId, picture, reading, facts, mayFit }: Start): RegionDesk {
+export function useRegionChange({ frameId, bounds, detectorMm, reading, facts, mayFit }: Start): RegionDesk {
   const start = useMemo<RegionChange>(
     () => ({
-      region: reading?.result.region ?? startRegion(picture ?? { widthPx: 1000, heightPx: 600 }),
+      region: reading?.result.region ?? startOn(bounds),
       leaveOut: reading?.leaveOut ?? [],
       zeroShift: reading?.zeroShift ?? 0,
+      ...(isLength(bounds)
+        ? { detectorMm: reading && isScanResult(reading.result) ? reading.result.detectorMm : detectorMm }
+        : {}),
     }),
-    [reading, picture],
+    [reading, bounds, detectorMm],
   );
   const [state, setState] = useState({ from: reading?.id ?? null, now: start, asked: false });
   // Another reading is shown: start again from it.
@@ -51,13 +89,19 @@ export function useRegionChange({ frameId, picture, reading, facts, mayFit }: St
 
   const { region, leaveOut, zeroShift } = state.now;
   const changed =
-    !sameRegion(region, start.region) ||
+    !sameAny(region, start.region) ||
+    state.now.detectorMm !== start.detectorMm ||
     !sameNumbers(leaveOut, start.leaveOut) ||
     zeroShift !== start.zeroShift;
   const change = changed || state.asked ? state.now : null;
-  const preview = usePreviewFit({ frameId, readingId: reading?.id ?? null, facts, mayFit }, change);
+  const preview = usePreviewFit(
+    { frameId, readingId: reading?.id ?? null, facts, mayFit, isScan: isLength(bounds) },
+    change,
+  );
   const set = (part: Partial<RegionChange>) =>
     setState((before) => ({ ...before, now: { ...before.now, ...part } }));
+
+  const setRegion = (next: AnyRegion) => set({ region: tidy(next, region, bounds) });
 
   return {
     region,
@@ -65,7 +109,12 @@ export function useRegionChange({ frameId, picture, reading, facts, mayFit }: St
     zeroShift,
     change,
     preview,
-    setRegion: (next) => set({ region: rounded(picture ? kept(next, picture) : next) }),
+    detectorMm: state.now.detectorMm ?? null,
+    setRegion,
+    turnBy: (deg) => {
+      if (!isScanRegion(region)) setRegion(turn(region, deg));
+    },
+    setDetector: (mm) => set({ detectorMm: mm }),
     toggleOrder: (m) =>
       set({ leaveOut: leaveOut.includes(m) ? leaveOut.filter((o) => o !== m) : [...leaveOut, m] }),
     zeroAt: (m) => set({ zeroShift: zeroShift - m, leaveOut: leaveOut.map((o) => o - m) }),

@@ -50,6 +50,11 @@ export function publishedOf(subject: Subject): number | null {
   return subject.kind === 'source' ? subject.vacuumNm : null;
 }
 
+/** "0.5 mm detector", or that it is a point. */
+export function detectorText(detectorMm: number | null): string {
+  return detectorMm === null ? 'point detector' : `${plain(detectorMm)} mm detector`;
+}
+
 export function count(n: number, one: string, many = `${one}s`): string {
   return `${formatNumber(n, 0)} ${n === 1 ? one : many}`;
 }

@@ -32,6 +32,8 @@ export const FRAME_STEPS = {
   putBack: { from: ['fitting'], to: 'waiting' },
   fit: { from: ['fitting', 'refused'], to: 'fitted' },
   refuse: { from: ['fitting'], to: 'refused' },
+  /** A scan without a reading is to be fitted with another detector. */
+  fitAnew: { from: ['waiting', 'refused'], to: 'waiting' },
   giveUp: { from: ['fitting'], to: 'unreadable' },
 } as const satisfies Record<string, { from: readonly FrameState[]; to: FrameState }>;
 

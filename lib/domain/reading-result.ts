@@ -131,6 +131,30 @@ export interface BudgetRow {
   share: number;
 }
 
+/** Slit width beside the wavelength, where the frame allows it. */
+export interface SlitResult {
+  /** w/d and its standard uncertainty. */
+  ratio: number;
+  uRatio: number;
+  /** Degrees of freedom; null is infinite. */
+  dof: number | null;
+  /** Mean width of the two slits; null where the setup states no separation. */
+  widthUm: number | null;
+  uWidthUm: number | null;
+  /** (w1 - w2)/w where the slits differ so much that it shows, else null. */
+  difference: number | null;
+  uDifference: number | null;
+}
+
+/** Width of the source's line (full width at half maximum of a Gaussian line). */
+export interface BandwidthResult {
+  /** null where the contrast does not fade: then only the limit stands. */
+  fwhmNm: number | null;
+  uFwhmNm: number | null;
+  /** A wider line (95 %) would have been seen; null where the frame sets no limit or a width is stated. */
+  limitNm: number | null;
+}
+
 /** The curves a stage draws, on the region's long axis (px from its centre). At most 1500 points. */
 export interface Curves {
   /** Coordinates along the long axis, px. */
@@ -173,6 +197,12 @@ export interface ReadingResult {
   uTiltDeg: number;
   visibility: number;
   uVisibility: number | null;
+  /** Null where a check stops the slit width; absent in readings of engines before 0.6. */
+  slit?: SlitResult | null;
+  /** Null where nothing can be said. */
+  bandwidth?: BandwidthResult | null;
+  /** The gravest word of the checks for each measurand. */
+  words?: Record<Measurand, FindingWord>;
   zeroOrder: { xPx: number; yPx: number };
   orders: OrderCentre[];
   region: Region;

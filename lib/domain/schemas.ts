@@ -34,8 +34,16 @@ export const regionSchema = z.object({
   heightPx: positive('Height'),
   angleDeg: finite('Tilt').refine((v) => v > -180 && v <= 180, 'Tilt lies between -180 and 180 degrees.'),
 });
+export const scanRegionSchema = z
+  .object({ fromMm: finite('From'), toMm: finite('To') })
+  .refine((region) => region.fromMm < region.toMm, 'The region ends before it begins.');
+const detectorMm = positive('The width of the detector').refine(
+  (mm) => mm <= 1000,
+  'A detector is at most 1000 mm wide.',
+);
 export const regionChangeSchema = z.object({
-  region: regionSchema,
+  region: z.union([regionSchema, scanRegionSchema]),
+  detectorMm: detectorMm.nullable().optional(),
   leaveOut: z
     .array(z.number().refine((m) => Number.isInteger(2 * m), 'An order is whole or half.'))
     .max(400)
@@ -226,6 +234,11 @@ export const uploadSchema = z.object({
     .default('')
     .transform((serial) => serial || null),
   sourceId: maybeIdText,
+  /** Of a line scan; a picture has none. */
+  detectorMm: z.preprocess(
+    (text) => (text === '' || text === undefined ? null : Number(text)),
+    detectorMm.nullable(),
+  ),
 });
 export const statusSchema = z.object({
   ids: z
@@ -240,7 +253,11 @@ export const previewFitSchema = regionChangeSchema.extend({
 /** Version of the engine that will measure from the stack. */
 const engineText = z.string().min(1).max(40);
 export const readingStackSchema = z.object({ id: idText, reading: idText, engine: engineText });
-export const regionStackSchema = regionChangeSchema.extend({ id: idText, engine: engineText });
+export const regionStackSchema = regionChangeSchema.extend({
+  id: idText,
+  engine: engineText,
+  region: regionSchema,
+});
 export const overTimeSchema = z.object({
   bench: maybeIdText,
   choice: z.string().max(40).default(''),

@@ -1,15 +1,8 @@
 /** What the pages are given: plain data, made by lib/server/queries and drawn by app and components. */
 import type { FrameState, ReadingState } from './life-cycle';
-import type {
-  BudgetRow,
-  Finding,
-  FindingWord,
-  ReadingResult,
-  Region,
-  SetupValues,
-  Strip,
-  ToneChoice,
-} from './reading-result';
+import type { BudgetRow, Finding, FindingWord, Region, SetupValues, ToneChoice } from './reading-result';
+import type { PlacedStrip } from './placed-strip';
+import type { FitResult, ScanRegion } from './scan-result';
 import type { Role } from './roles';
 import type { Judgement, Medium, Specification, Verdict } from './specification';
 
@@ -150,6 +143,13 @@ export const RETURN_WORDS: Record<ReturnReason, string> = {
 };
 
 /** ---- frames and readings ---- */
+/** A measured length with its standard uncertainty, in px of a frame or mm of a scan. */
+export interface Length {
+  value: number;
+  u: number;
+  unit: 'px' | 'mm';
+}
+
 export interface ReadingBrief {
   id: number;
   /** Number of the reading within its frame, from 1. */
@@ -167,12 +167,8 @@ export interface ReadingBrief {
   /** The gravest finding's message, or the calm sentence. */
   wordText: string;
   orderCentres: number;
-  spacingPx: number;
-  uSpacingPx: number;
-  scaleUmPerPx: number;
-  strip: Strip;
-  /** Position of the zero order on the strip's axis, px. */
-  zeroAlongPx: number;
+  spacing: Length;
+  strip: PlacedStrip;
   madeBy: PersonRef | null;
   madeAt: Instant;
 }
@@ -195,6 +191,8 @@ export interface FrameRow {
   bench: PersonRef;
   setupNumber: number;
   subject: Subject;
+  /** Only for a line scan: width of its detector, null for a point. */
+  scan: { detectorMm: number | null } | null;
   reading: ReadingBrief | null;
 }
 
@@ -230,7 +228,7 @@ export interface SignatureView {
 }
 
 export interface ReadingView extends ReadingBrief {
-  result: ReadingResult;
+  result: FitResult;
   budget: BudgetRow[];
   findings: Finding[];
   setup: SetupView;
@@ -250,6 +248,8 @@ export interface ReadingView extends ReadingBrief {
 export interface FrameView extends FrameRow {
   widthPx: number | null;
   heightPx: number | null;
+  /** Length of a scan, where the file gives one. */
+  scanLength: (ScanRegion & { points: number }) | null;
   /** Every reading of this frame, newest first. */
   readings: ReadingBrief[];
   /** The reading shown: the asked one or the newest. */
@@ -285,16 +285,16 @@ export interface FitFacts {
 
 /** A fit that is shown and not kept. */
 export interface FitPreview {
-  result: ReadingResult;
+  result: FitResult;
   wavelengthNm: number | null;
   expandedNm: number | null;
   medium: Medium;
   judgement: Judgement | null;
 }
 
-/** The same made by the server, with the hash of the band stack it was measured from. */
+/** The same made by the server, with the hash of the band stack it was measured from; null for a scan. */
 export interface ServerFit extends FitPreview {
-  stackSha256: string;
+  stackSha256: string | null;
 }
 
 /** The digits a person saw before keeping a fit, for the server to compare with its own. */
@@ -394,7 +394,9 @@ export interface LogPage {
 
 /** The change of region a person previews. */
 export interface RegionChange {
-  region: Region;
+  region: Region | ScanRegion;
   leaveOut: number[];
   zeroShift: number;
+  /** Of a scan: width of its detector, null for a point; absent: as it was. */
+  detectorMm?: number | null;
 }

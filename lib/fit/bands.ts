@@ -17,6 +17,8 @@ export interface BandData {
   dv: Float64Array;
   pixelVar: number;
   pixelFourth: number;
+  /** Mean of varU over the cells with pixels. */
+  meanVarU: number;
 }
 
 /** How each band differs from the common profile P: light = offset + slope z + gain P(u - shift). */
@@ -291,14 +293,7 @@ export class FitTable {
 }
 
 export function tableFor(data: BandData, grid: CommonGrid, fit: ProfileFit): FitTable {
-  let v = 0;
-  let n = 0;
-  for (let i = 0; i < data.varU.length; i++) {
-    if (data.pixels[i] === 0) continue;
-    v += data.varU[i];
-    n++;
-  }
-  const bin = n > 0 ? v / n : 0;
+  const bin = data.meanVarU;
   const margin = 3 * grid.pitchPx;
   return new FitTable(fit, grid.from - margin, grid.from + grid.bins * grid.pitchPx + margin, grid.pitchPx, {
     variance: data.pixelVar + bin,

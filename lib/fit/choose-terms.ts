@@ -12,16 +12,13 @@ export const MARGIN = 4;
  * (Schwarz 1978: chi-square + parameters * ln points) falls by more than a margin. Chi-square is scaled by what the best
  * model leaves, so that structure no term describes does not buy terms either.
  */
-export function chooseTerms(
-  band: BandFit,
-  allow: { curve: boolean; tone: boolean; chirp: boolean },
-): BandFit {
+export function chooseTerms(band: BandFit, allow: { tone: boolean; chirp: boolean }): BandFit {
   let now = band;
   for (let added = 0; ; added++) {
     if (added >= MOST_ADDED) return now;
     let best: { terms: ModelTerms; gain: number } | null = null;
     for (const terms of offers(now.fit.layout.terms, allow)) {
-      const trial = refit(now.profile, now.fit, terms);
+      const trial = refit(now.profile, now.fit, terms, true);
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));
       const extra = trial.layout.size - now.fit.layout.size;
@@ -37,15 +34,13 @@ export function chooseTerms(
   }
 }
 
-export function offers(
-  terms: ModelTerms,
-  allow: { curve: boolean; tone: boolean; chirp: boolean },
-): ModelTerms[] {
+export function offers(terms: ModelTerms, allow: { tone: boolean; chirp: boolean }): ModelTerms[] {
   const list: ModelTerms[] = [];
   if (terms.background < MOST_BACKGROUND) list.push({ ...terms, background: terms.background + 1 });
   if (terms.background < MOST_BACKGROUND - 1) list.push({ ...terms, background: terms.background + 2 });
   if (!terms.chirp && allow.chirp) list.push({ ...terms, chirp: true });
   if (!terms.tone && allow.tone) list.push({ ...terms, tone: true });
   if (!terms.fade) list.push({ ...terms, fade: true });
+  if (!terms.unequal) list.push({ ...terms, unequal: true });
   return list;
 }

@@ -100,6 +100,7 @@ export function fitBands(
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
   undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
+  undoFan(data, state, shifts);
   let band: BandFit = {
     data,
     fit,
@@ -134,6 +135,22 @@ function undoLean(data: BandData, state: BandState, shifts: BandShifts, spacingP
     state.shift[k] = state.lean * data.bandV[k];
     // What is undone now is no longer beyond the state.
     shifts.shift[k] -= b * data.bandV[k];
+  }
+}
+
+const FAN_SIGMAS = 5;
+
+/**
+ * A view from above or below makes the spacing change along the fringes. Where that shows, every band is stretched back to
+ * the spacing in the middle of the region; mixed as they are, the outer orders would wash out.
+ */
+function undoFan(data: BandData, state: BandState, shifts: BandShifts): void {
+  const fan = weightedLine(data.bandV, shifts.stretch, shifts.stretchWeight);
+  const ub = fan.ub * Math.sqrt(Math.max(1, fan.chiSquare / Math.max(1, fan.n - 2)));
+  if (!Number.isFinite(fan.b) || !(Math.abs(fan.b) > FAN_SIGMAS * ub)) return;
+  for (let k = 0; k < data.bands; k++) {
+    state.stretch[k] += fan.b * data.bandV[k];
+    shifts.stretch[k] -= fan.b * data.bandV[k];
   }
 }
 
@@ -186,6 +203,7 @@ export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null 
   const table = tableFor(data, grid, fit);
   const shifts = regressBands(data, state, grid, table, fit);
   undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
+  undoFan(data, state, shifts);
   return { ...before, fit, profile, table, shifts, limits };
 }
 
@@ -259,7 +277,7 @@ function agreedIn(band: BandFit, agreed: Float64Array, b: number, cell: number):
   return strayIn(state, grid, b, u) + gainIn(data, state, grid, b, cell) * light;
 }
 
-const NOISE_CELLS = 6000;
+const NOISE_CELLS = 4000;
 
 function measureNoise(band: BandFit, agreed: Float64Array): void {
   const { data, state, limits } = band;

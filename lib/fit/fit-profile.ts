@@ -38,6 +38,7 @@ export function plainTerms(prior: CurvePrior | null): ModelTerms {
     chirp: false,
     tone: false,
     fade: false,
+    unequal: false,
   };
 }
 
@@ -78,7 +79,7 @@ export function fitFrom(
 }
 
 /** The same fit carried on: new data, or more terms. Parameters that are new start at their neutral value. */
-export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms): ProfileFit {
+export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms, trial = false): ProfileFit {
   const layout = layoutOf(terms);
   const p = new Float64Array(layout.size);
   const old = before.result.parameters;
@@ -91,6 +92,7 @@ export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms): 
   carry(layout.chirp, before.layout.chirp, 0);
   carry(layout.tone, before.layout.tone, 1);
   carry(layout.fade, before.layout.fade, 0.05);
+  carry(layout.unequal, before.layout.unequal, 0.05);
   return run(
     profile,
     {
@@ -99,6 +101,7 @@ export function refit(profile: Profile, before: ProfileFit, terms: ModelTerms): 
       originPx: before.originPx,
       unitPx: before.unitPx,
       unitLight: before.unitLight,
+      trial,
     },
     p,
   );
@@ -171,6 +174,7 @@ export function fitOneSlit(profile: Profile, two: ProfileFit): LeastSquaresResul
 
 /** Chi-square that is not worth another step: parameters then stand within a few thousandths of their uncertainty. */
 const ENOUGH = 1e-5;
+const ENOUGH_FOR_TRIAL = 0.1;
 
 interface Frame {
   layout: ModelLayout;
@@ -181,6 +185,8 @@ interface Frame {
   /** Parameters that keep their start value. */
   hold?: number[];
   asItIs?: boolean;
+  /** Only chi-square is wanted, to a fraction of one. */
+  trial?: boolean;
 }
 
 function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
@@ -195,6 +201,8 @@ function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
     centre: (from + to) / 2,
     half: Math.max(1e-9, (to - from) / 2),
   };
+  const { detector } = profile;
+  if (detector) fixed.detector = { ...detector, offset: detector.offset.map((d) => d / unitPx) };
   const priors = priorRows(layout, frame, fixed);
   const rows = n + priors.length;
   const averaged = new AveragedModel(new ModelPoint(layout, fixed));
@@ -234,7 +242,7 @@ function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
       maxEvaluations: frame.asItIs ? 1 : 120,
       reductionTolerance: 1e-12,
       gradientTolerance: 1e-9,
-      enough: ENOUGH,
+      enough: frame.trial ? ENOUGH_FOR_TRIAL : ENOUGH,
     },
   );
   return { layout, fixed, result, originPx, unitPx, unitLight, points: n, curvePrior: prior };
@@ -283,6 +291,10 @@ function boundsFor(
     lower[layout.fade] = 1e-4;
     upper[layout.fade] = 1.5;
   }
+  if (layout.unequal >= 0) {
+    lower[layout.unequal] = 1e-4;
+    upper[layout.unequal] = 0.6;
+  }
   if (layout.chirp >= 0) {
     lower[layout.chirp] = -0.5 / fixed.half;
     upper[layout.chirp] = 0.5 / fixed.half;
@@ -308,6 +320,7 @@ export class AveragedModel {
 
   evaluate(p: Float64Array, x: number, node: number, weight: number, wantGradient: boolean): boolean {
     const { point, gradient } = this;
+    if (point.fixed.detector) return this.evaluateWide(point.fixed.detector, p, x, wantGradient);
     if (weight === 0.5) return this.evaluatePair(p, x, node, wantGradient);
     if (!point.evaluate(p, x, wantGradient)) return false;
     const mid = 1 - 2 * weight;
@@ -324,6 +337,31 @@ export class AveragedModel {
       this.envelope += weight * point.envelope;
       this.slope += weight * point.slope;
       if (wantGradient) for (let j = 0; j < gradient.length; j++) gradient[j] += weight * point.gradient[j];
+    }
+    return true;
+  }
+
+  /** All nodes of a wide detector. */
+  private evaluateWide(
+    { offset, weight }: NonNullable<ModelFixed['detector']>,
+    p: Float64Array,
+    x: number,
+    wantGradient: boolean,
+  ): boolean {
+    const { point, gradient } = this;
+    this.light = 0;
+    this.fringes = 0;
+    this.envelope = 0;
+    this.slope = 0;
+    if (wantGradient) gradient.fill(0);
+    for (let k = 0; k < offset.length; k++) {
+      const w = weight[k];
+      if (!point.evaluate(p, x + offset[k], wantGradient)) return false;
+      this.light += w * point.light;
+      this.fringes += w * point.fringes;
+      this.envelope += w * point.envelope;
+      this.slope += w * point.slope;
+      if (wantGradient) for (let j = 0; j < gradient.length; j++) gradient[j] += w * point.gradient[j];
     }
     return true;
   }

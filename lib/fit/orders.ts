@@ -18,6 +18,17 @@ const MOST_ORDERS = 800;
 export const toPx = (fit: ProfileFit, x: number) => fit.originPx + x * fit.unitPx;
 export const toModel = (fit: ProfileFit, u: number) => (u - fit.originPx) / fit.unitPx;
 
+/** Extent over which a middle is seen: half distance of the outer averaging nodes (px) and their weight. */
+export interface Extent {
+  node: number;
+  weight: number;
+}
+
+/** A point of a frame's profile is about one pixel long. */
+function pixelExtent(fit: ProfileFit): Extent {
+  return { node: fit.result.parameters[0] * fit.unitPx > 8 ? 0.4 : 0.3, weight: 1 / 6 };
+}
+
 /** All bright and dark orders between two places of the profile. */
 export function listOrders(
   fit: ProfileFit,
@@ -25,6 +36,7 @@ export function listOrders(
   covariance: Float64Array,
   from: number,
   to: number,
+  extent: Extent = pixelExtent(fit),
 ): OrderPlace[] {
   const p = fit.result.parameters;
   const first = Math.ceil(2 * orderAt(fit.layout, fit.fixed, p, toModel(fit, from)));
@@ -41,7 +53,7 @@ export function listOrders(
       kind: bright ? 'bright' : 'dark',
       u,
       uPx: placeUncertainty(fit, covariance, h / 2) * fit.unitPx,
-      pullPx: pullOf(fit, profile, u, bright),
+      pullPx: pullOf(fit, profile, u, bright, extent),
     });
   }
   return orders;
@@ -75,12 +87,17 @@ const LEAST_PROMINENCE = 4;
  * Raw middle by the data: the fitted curve's own maximum (minimum), moved by what the data's slope about the fit there
  * says. Null where the curve has no maximum inside the fringe or it does not stand out of the noise.
  */
-function pullOf(fit: ProfileFit, profile: Profile, u: number, bright: boolean): number | null {
+function pullOf(
+  fit: ProfileFit,
+  profile: Profile,
+  u: number,
+  bright: boolean,
+  { node, weight }: Extent,
+): number | null {
   const spacing = fit.result.parameters[0] * fit.unitPx;
   const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
-  const node = spacing > 8 ? 0.4 : 0.3;
   const light = (x: number) =>
-    model.evaluate(fit.result.parameters, toModel(fit, x), node / fit.unitPx, 1 / 6, false)
+    model.evaluate(fit.result.parameters, toModel(fit, x), node / fit.unitPx, weight, false)
       ? model.light
       : NaN;
   const sign = bright ? 1 : -1;

@@ -8,6 +8,8 @@ export interface Profile {
   /** Standard uncertainty by the noise model. */
   sigma: Float64Array;
   size: number;
+  /** A detector too wide for three nodes, the same at every point (px about its middle): it takes the place of `node`. */
+  detector?: { offset: Float64Array; weight: Float64Array };
 }
 
 /** Extents below this share of a fringe need two nodes only: what they miss is below 1e-6 of the visibility. */

@@ -25,6 +25,10 @@ interface Thin {
   u: Float64Array;
   y: Float64Array;
   w: Float64Array;
+  /** cos and sin of the fringes' phase at the spacing the scan believes in. */
+  cos: Float64Array;
+  sin: Float64Array;
+  spacing: number;
   from: number;
   to: number;
   n: number;
@@ -91,7 +95,8 @@ function thinned(profile: Profile, spacing: number): Thin {
   const wanted = Math.min(MOST_POINTS, Math.max(60, Math.ceil(((to - from) / spacing) * 6)));
   const group = Math.max(1, Math.floor(used.length / wanted));
   const n = Math.ceil(used.length / group);
-  const thin: Thin = { u: new Float64Array(n), y: new Float64Array(n), w: new Float64Array(n), from, to, n };
+  const line = () => new Float64Array(n);
+  const thin: Thin = { u: line(), y: line(), w: line(), cos: line(), sin: line(), spacing: 0, from, to, n };
   for (let g = 0; g < n; g++) {
     let w = 0;
     for (let k = g * group; k < Math.min(used.length, (g + 1) * group); k++) {
@@ -105,13 +110,28 @@ function thinned(profile: Profile, spacing: number): Thin {
     thin.y[g] /= w;
     thin.w[g] = w;
   }
+  turnTo(thin, spacing);
   return thin;
 }
 
+function turnTo(thin: Thin, spacing: number): void {
+  thin.spacing = spacing;
+  for (let i = 0; i < thin.n; i++) {
+    const phase = (2 * Math.PI * thin.u[i]) / spacing;
+    thin.cos[i] = Math.cos(phase);
+    thin.sin[i] = Math.sin(phase);
+  }
+}
+
+const NORMAL = new Float64Array(25);
+const RIGHT = new Float64Array(5);
+const TERMS = new Float64Array(5);
+
 function solveAt(thin: Thin, spacing: number, ratio: number, middle: number): StartValues | null {
-  const a = new Float64Array(25);
-  const b = new Float64Array(5);
-  const t = new Float64Array(5);
+  if (spacing !== thin.spacing) turnTo(thin, spacing);
+  const a = NORMAL.fill(0);
+  const b = RIGHT.fill(0);
+  const t = TERMS;
   const centre = (thin.from + thin.to) / 2;
   const half = (thin.to - thin.from) / 2;
   let yy = 0;
@@ -120,12 +140,11 @@ function solveAt(thin: Thin, spacing: number, ratio: number, middle: number): St
     const x = (Math.PI * ratio * d) / spacing;
     const s = Math.abs(x) < 1e-6 ? 1 : Math.sin(x) / x;
     const e = s * s;
-    const phase = (2 * Math.PI * d) / spacing;
     t[0] = 1;
     t[1] = (thin.u[i] - centre) / half;
     t[2] = e;
-    t[3] = e * Math.cos(phase);
-    t[4] = e * Math.sin(phase);
+    t[3] = e * thin.cos[i];
+    t[4] = e * thin.sin[i];
     const w = thin.w[i];
     const y = thin.y[i];
     yy += w * y * y;
@@ -149,7 +168,8 @@ function solveAt(thin: Thin, spacing: number, ratio: number, middle: number): St
   const turn = Math.atan2(x[4], x[3]) / (2 * Math.PI);
   return {
     spacing,
-    zero: middle + turn * spacing,
+    // The fringe nearest the envelope's middle.
+    zero: middle + (turn - middle / spacing - Math.round(turn - middle / spacing)) * spacing,
     ratio,
     middle,
     a: 2 * x[2],

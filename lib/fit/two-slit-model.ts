@@ -2,7 +2,9 @@
  * The two-slit pattern with everything that may be laid over it, and its derivatives.
  *
  *   order(x)  m = X / sqrt(1 + (curve X)^2) / spacing,  X = (x - zero) / (1 + chirp (x - zero))
- *   fringes   F = sinc^2(ratio (m - middle)) * 1/2 * [A + B fade(m) cos(2 pi m)],  fade = exp(-(width m)^2 / 2)
+ *   fringes   F = 1/2 * [A (s1^2 + s2^2)/2 + B fade(m) s1 s2 cos(2 pi m)],  fade = exp(-(width m)^2 / 2)
+ *             s1,2 = (1 +- unequal) sinc((1 +- unequal) ratio (m - middle)): slits of the widths (1 +- unequal) w;
+ *             without that term both are sinc(ratio (m - middle))
  *   light     I = (background(x) + F)^tone,  background = sum of Legendre polynomials over the region
  *
  * With d, L, lambda and the scale s the order is d sin(theta)/lambda with X/L = tan(theta) exactly; spacing = lambda L/(d s)
@@ -19,6 +21,7 @@ export interface ModelTerms {
   chirp: boolean;
   tone: boolean;
   fade: boolean;
+  unequal: boolean;
 }
 
 /** Index of every parameter in the vector; -1 for one that is not there. */
@@ -36,6 +39,7 @@ export interface ModelLayout {
   chirp: number;
   tone: number;
   fade: number;
+  unequal: number;
 }
 
 export function layoutOf(terms: ModelTerms): ModelLayout {
@@ -45,6 +49,7 @@ export function layoutOf(terms: ModelTerms): ModelLayout {
   const chirp = take(terms.chirp);
   const tone = take(terms.tone);
   const fade = take(terms.fade);
+  const unequal = take(terms.unequal);
   return {
     terms,
     size: next,
@@ -59,6 +64,7 @@ export function layoutOf(terms: ModelTerms): ModelLayout {
     chirp,
     tone,
     fade,
+    unequal,
   };
 }
 
@@ -68,6 +74,23 @@ export interface ModelFixed {
   /** Middle and half length of the region, for the background's polynomials. */
   centre: number;
   half: number;
+  /** A detector that moves through the pattern: places about its middle and their weights, which add up to one. */
+  detector?: { offset: Float64Array; weight: Float64Array };
+}
+
+const SLIT = { value: 1, slope: 0 };
+
+/** sinc(t) = sin(pi t)/(pi t) and its derivative by t. */
+function sincInto(out: { value: number; slope: number }, t: number): void {
+  const pt = Math.PI * t;
+  if (Math.abs(pt) < 1e-3) {
+    out.value = 1 - (pt * pt) / 6;
+    out.slope = (-Math.PI * pt) / 3;
+    return;
+  }
+  const value = Math.sin(pt) / pt;
+  out.value = value;
+  out.slope = (Math.PI * (Math.cos(pt) - value)) / pt;
 }
 
 /** Value and derivatives at one place; reused between calls. */
@@ -80,6 +103,12 @@ export class ModelPoint {
   order = 0;
   readonly gradient: Float64Array;
   private readonly legendre: Float64Array;
+  private even = 0;
+  private cross = 0;
+  private evenSlope = 0;
+  private crossSlope = 0;
+  private evenUnequal = 0;
+  private crossUnequal = 0;
 
   constructor(
     readonly layout: ModelLayout,
@@ -102,33 +131,22 @@ export class ModelPoint {
     const m = (X * flat) / spacing;
     const dmdX = (flat * flat * flat) / spacing;
     const dmdx = dmdX / (bend * bend);
-    const t = p[2] * (m - p[3]);
-    const pt = Math.PI * t;
-    let sinc: number;
-    let slope: number;
-    if (Math.abs(pt) < 1e-3) {
-      sinc = 1 - (pt * pt) / 6;
-      slope = (-Math.PI * pt) / 3;
-    } else {
-      const s = Math.sin(pt);
-      sinc = s / pt;
-      slope = (Math.PI * (Math.cos(pt) - sinc)) / pt;
-    }
-    const env = sinc * sinc;
-    const denv = 2 * sinc * slope;
+    const tau = m - p[3];
+    this.slits(p, tau);
+    const { even, cross, evenSlope, crossSlope } = this;
     const phase = 2 * Math.PI * m;
     const cos = Math.cos(phase);
     const sin = Math.sin(phase);
     const width = at.fade < 0 ? 0 : p[at.fade];
     const fade = width === 0 ? 1 : Math.exp(-0.5 * width * width * m * m);
-    const swing = p[4] + p[5] * fade * cos;
-    const fringes = 0.5 * env * swing;
+    const swing = p[5] * fade * cos;
+    const fringes = 0.5 * (p[4] * even + swing * cross);
     const z = (x - fixed.centre) / fixed.half;
     const background = this.backgroundAt(p, z);
     const plain = background + fringes;
     // d(fringes)/dm through phase and fade, and through the envelope's argument
-    const dm = 0.5 * env * p[5] * fade * (-2 * Math.PI * sin - width * width * m * cos);
-    const dt = 0.5 * denv * swing;
+    const dm = 0.5 * cross * p[5] * fade * (-2 * Math.PI * sin - width * width * m * cos);
+    const dt = 0.5 * (p[4] * evenSlope + swing * crossSlope);
     const dfdm = dm + p[2] * dt;
     let gain = 1;
     let light = plain;
@@ -139,23 +157,55 @@ export class ModelPoint {
     }
     this.light = light;
     this.fringes = fringes;
-    this.envelope = background + 0.5 * env * (p[4] + Math.abs(p[5]) * fade);
+    this.envelope = background + 0.5 * (p[4] * even + Math.abs(p[5]) * fade * cross);
     this.order = m;
     this.slope = gain * (dfdm * dmdx + this.backgroundSlope(p));
     if (!wantGradient) return true;
     const g = this.gradient;
     g[0] = (-gain * dfdm * m) / spacing;
     g[1] = -gain * dfdm * dmdx;
-    g[2] = gain * dt * (m - p[3]);
+    g[2] = gain * dt * tau;
     g[3] = -gain * dt * p[2];
-    g[4] = gain * 0.5 * env;
-    g[5] = gain * 0.5 * env * fade * cos;
+    g[4] = gain * 0.5 * even;
+    g[5] = gain * 0.5 * cross * fade * cos;
     for (let k = 0; k < at.terms.background; k++) g[6 + k] = gain * this.legendre[k];
     if (at.curve >= 0) g[at.curve] = (-gain * dfdm * curve * X * X * X * flat * flat * flat) / spacing;
     if (at.chirp >= 0) g[at.chirp] = -gain * dfdm * dmdX * X * X;
     if (at.tone >= 0) g[at.tone] = light * Math.log(plain);
-    if (at.fade >= 0) g[at.fade] = -gain * 0.5 * env * p[5] * fade * cos * width * m * m;
+    if (at.fade >= 0) g[at.fade] = -gain * 0.5 * cross * p[5] * fade * cos * width * m * m;
+    if (at.unequal >= 0) g[at.unequal] = gain * 0.5 * (p[4] * this.evenUnequal + swing * this.crossUnequal);
     return true;
+  }
+
+  /** Fills the slits' parts: (s1^2 + s2^2)/2 and s1 s2, their derivatives by ratio * tau and by unequal. */
+  private slits(p: Float64Array, tau: number): void {
+    const { unequal: index } = this.layout;
+    if (index < 0) {
+      sincInto(SLIT, p[2] * tau);
+      const { value, slope } = SLIT;
+      this.even = value * value;
+      this.cross = this.even;
+      this.evenSlope = 2 * value * slope;
+      this.crossSlope = this.evenSlope;
+      return;
+    }
+    const a = 1 + p[index];
+    const b = 1 - p[index];
+    const t = p[2] * tau;
+    sincInto(SLIT, a * t);
+    const s1 = a * SLIT.value;
+    const d1 = a * a * SLIT.slope;
+    const e1 = SLIT.value + a * t * SLIT.slope;
+    sincInto(SLIT, b * t);
+    const s2 = b * SLIT.value;
+    const d2 = b * b * SLIT.slope;
+    const e2 = -SLIT.value - b * t * SLIT.slope;
+    this.even = 0.5 * (s1 * s1 + s2 * s2);
+    this.cross = s1 * s2;
+    this.evenSlope = s1 * d1 + s2 * d2;
+    this.crossSlope = d1 * s2 + s1 * d2;
+    this.evenUnequal = s1 * e1 + s2 * e2;
+    this.crossUnequal = e1 * s2 + s1 * e2;
   }
 
   private backgroundAt(p: Float64Array, z: number): number {

@@ -16,15 +16,15 @@ const CLIPPED_FROM = 0.985;
 /**
  * Chooses by expected signal-to-noise: the strength of local contrast (photon noise grows with its root) times the
  * square of the share of the bright area that is not clipped.
- * `rgb` is interleaved, three codes a pixel, already reduced to a small picture; `toLinear` maps codes 0..1 to light.
+ * `rgb` is interleaved, three codes a pixel, already reduced to a small picture; `lightOf` maps codes to light.
  */
 export function chooseChannel(
   rgb: Uint8Array | Uint16Array,
   widthPx: number,
   heightPx: number,
-  fullScale: number,
-  toLinear: (c: number) => number,
+  lightOf: Float32Array,
 ): ChannelChoice {
+  const fullScale = lightOf.length - 1;
   const n = widthPx * heightPx;
   let differ = 0;
   for (let i = 0; i < n; i++) {
@@ -36,7 +36,7 @@ export function chooseChannel(
   const clippedShare: number[] = [];
   for (let c = 0; c < 3; c++) {
     const light = new Float32Array(n);
-    for (let i = 0; i < n; i++) light[i] = toLinear(rgb[3 * i + c] / fullScale);
+    for (let i = 0; i < n; i++) light[i] = lightOf[rgb[3 * i + c]];
     const contrast = localContrast(light, widthPx, heightPx);
     const high = quantile(light, 0.995);
     let bright = 0;

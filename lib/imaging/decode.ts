@@ -2,8 +2,10 @@
 import sharp, { type Metadata, type Sharp } from 'sharp';
 import { chooseChannel, type ChannelChoice } from './channel';
 import { iccToneCurve } from './icc';
+import { asRefused, paletteRefusal, samplesRefusal, tooManyPixels, truncated } from './file-refusals';
 import { findLevels, histogram } from './levels';
-import type { Picture, SourceFacts } from './picture';
+import { turnUpright } from './orientation';
+import { COARSE_PIXELS, type Picture, type SourceFacts } from './picture';
 import { Refused, type PictureBrief } from './refused';
 import { jpegQuality, readPng, readTiff, sniffKind, type FileKind, type PngFacts } from './sniff';
 import { LINEAR, SRGB, exponentCurve, lightTable, type ToneCurve } from './tone';
@@ -20,7 +22,11 @@ const SMALLEST_SIDE_PX = 24;
 const SMALLEST_LONG_SIDE_PX = 48;
 /** A lossy colour file above this size is looked at in small before the channel is decoded at full size. */
 const LOOK_FIRST_PIXELS = 1_500_000;
-const LOOK_SIDE_PX = 700;
+const LOOK_SIDE_PX = 500;
+/** Reductions that a JPEG decoder makes on its way, by computing fewer pixels of each block. */
+const DECODER_FACTORS = [4, 8];
+/** Red: most two-slit frames are of red light. */
+const LIKELY_CHANNEL = 0;
 
 interface Header {
   kind: FileKind;
@@ -118,51 +124,27 @@ function refuseUnmeasurable(
   if (kind === 'PNG' && png && !png.complete) throw truncated(brief);
 }
 
-function paletteRefusal(brief: PictureBrief | null): Refused {
-  return new Refused(
-    'PALETTE',
-    'The file holds picked colours from a palette, not measured light. Save the frame as 8 or 16 bit grey or colour.',
-    brief,
-  );
-}
-
-function samplesRefusal(floating: boolean, brief: PictureBrief | null): Refused {
-  return new Refused(
-    'FLOAT_SAMPLES',
-    `The file stores ${floating ? 'floating-point' : '32 bit'} samples, which cannot be read safely. Save it as 16 bit PNG or TIFF.`,
-    brief,
-  );
-}
-
 async function decodeChannel(
   bytes: Uint8Array,
   header: Header,
   wish: ToneWish,
   limits: DecodeLimits,
 ): Promise<Picture> {
-  const { kind, meta, bits, colour, brief } = header;
+  const { kind, meta, bits, brief } = header;
   const curveOf = (channel: 'grey' | 'red' | 'green' | 'blue') => toneFor(header, wish, channel);
-  let choice: ChannelChoice = { index: 0, name: 'grey', colour: false, clippedShare: [] };
-  let samples: Uint8Array | Uint16Array;
-  if (!colour) {
-    samples = await rawSamples(
-      upright(open(bytes, limits), meta)
-        .extractChannel(0)
-        .toColourspace(bits === 16 ? 'grey16' : 'b-w'),
-      bits,
-    );
-  } else if (kind === 'JPEG' && brief.widthPx * brief.heightPx > LOOK_FIRST_PIXELS) {
-    const { data, info } = await open(bytes, limits)
-      .resize({ width: LOOK_SIDE_PX, height: LOOK_SIDE_PX, fit: 'inside' })
-      .raw()
-      .toBuffer({ resolveWithObject: true });
-    choice = chooseChannel(new Uint8Array(data), info.width, info.height, 255, curveOf('red').toLinear);
-    samples = await rawSamples(upright(open(bytes, limits), meta).extractChannel(choice.index), 8);
-  } else {
-    ({ choice, samples } = await decodeAllChannels(bytes, header, limits, curveOf('red').toLinear));
-  }
+  const stored = await storedChannel(bytes, header, limits, () =>
+    lightTable(curveOf('red'), bits, bits === 16 ? 65535 : 255),
+  );
+  const { choice } = stored;
+  const upright = <T extends Uint8Array | Uint16Array>(codes: T, factor: number): T =>
+    turnUpright(codes, meta.width / factor, meta.height / factor, meta.orientation ?? 1);
+  const samples = upright(stored.samples, 1);
+  const small = stored.small && {
+    samples: upright(stored.small.samples, stored.small.factor),
+    factor: stored.small.factor,
+  };
   const lossy = kind === 'JPEG' || kind === 'WebP';
-  const levels = findLevels(histogram(samples, bits), bits, lossy);
+  const levels = findLevels(histogram(samples, bits, brief.widthPx), bits, lossy);
   const curve = curveOf(channelName(choice));
   const source: SourceFacts = {
     format: `${kind}, ${bits} bit`,
@@ -182,8 +164,80 @@ async function decodeChannel(
     light: lightTable(curve, bits, levels.whiteCode),
     clipCode: levels.clipCode,
     floorCode: levels.floorCode,
+    small,
     source,
   };
+}
+
+interface StoredChannel {
+  choice: ChannelChoice;
+  /** As the file has them, before the orientation tag. */
+  samples: Uint8Array | Uint16Array;
+  small: { samples: Uint8Array; factor: number } | null;
+}
+
+async function storedChannel(
+  bytes: Uint8Array,
+  header: Header,
+  limits: DecodeLimits,
+  lookLight: () => Float32Array,
+): Promise<StoredChannel> {
+  const { kind, bits, colour, brief } = header;
+  if (!colour) {
+    const grey = open(bytes, limits)
+      .extractChannel(0)
+      .toColourspace(bits === 16 ? 'grey16' : 'b-w');
+    return {
+      choice: { index: 0, name: 'grey', colour: false, clippedShare: [] },
+      samples: await rawSamples(grey, bits),
+      small: null,
+    };
+  }
+  if (kind === 'JPEG' && brief.widthPx * brief.heightPx > LOOK_FIRST_PIXELS)
+    return decodeAfterLook(bytes, header, limits, lookLight());
+  return decodeAllChannels(bytes, header, limits, lookLight());
+}
+
+/**
+ * A large JPEG: the channel is chosen on a small picture, which costs little to decode. The channel that carries most
+ * lasers is decoded meanwhile, and another one only where the small picture says so.
+ */
+async function decodeAfterLook(
+  bytes: Uint8Array,
+  header: Header,
+  limits: DecodeLimits,
+  lookLight: Float32Array,
+): Promise<StoredChannel> {
+  const channel = (index: ChannelChoice['index']) => rawSamples(open(bytes, limits).extractChannel(index), 8);
+  const [look, guessed] = await Promise.all([
+    lookAt(bytes, header.meta, limits, lookLight),
+    channel(LIKELY_CHANNEL),
+  ]);
+  const { choice, small } = look;
+  return { choice, small, samples: choice.index === LIKELY_CHANNEL ? guessed : await channel(choice.index) };
+}
+
+/** The small picture: a whole-number reduction that the decoder itself makes where the sides allow it, else any small size. */
+async function lookAt(
+  bytes: Uint8Array,
+  meta: Metadata,
+  limits: DecodeLimits,
+  lookLight: Float32Array,
+): Promise<Pick<StoredChannel, 'choice' | 'small'>> {
+  const { width, height } = meta;
+  const factor = DECODER_FACTORS.find(
+    (f) => width % f === 0 && height % f === 0 && (width / f) * (height / f) <= COARSE_PIXELS,
+  );
+  const size = factor
+    ? ({ width: width / factor, height: height / factor, fit: 'fill' } as const)
+    : ({ width: LOOK_SIDE_PX, height: LOOK_SIDE_PX, fit: 'inside' } as const);
+  const { data, info } = await open(bytes, limits).resize(size).raw().toBuffer({ resolveWithObject: true });
+  const rgb = new Uint8Array(data);
+  const choice = chooseChannel(rgb, info.width, info.height, lookLight);
+  if (!factor) return { choice, small: null };
+  const samples = new Uint8Array(info.width * info.height);
+  for (let i = 0, j: number = choice.index; i < samples.length; i++, j += info.channels) samples[i] = rgb[j];
+  return { choice, small: { samples, factor } };
 }
 
 const channelName = (choice: ChannelChoice) =>
@@ -194,25 +248,24 @@ async function decodeAllChannels(
   bytes: Uint8Array,
   header: Header,
   limits: DecodeLimits,
-  toLinear: (c: number) => number,
-): Promise<{ choice: ChannelChoice; samples: Uint8Array | Uint16Array }> {
+  lookLight: Float32Array,
+): Promise<StoredChannel> {
   const { meta, bits, brief } = header;
-  const pipeline = upright(open(bytes, limits), meta);
+  const { width, height } = meta;
+  const pipeline = open(bytes, limits);
   const rgb = await rawSamples(
-    meta.hasAlpha
-      ? pipeline.toColourspace(bits === 16 ? 'rgb16' : 'srgb')
-      : pipeline.removeAlpha().toColourspace(bits === 16 ? 'rgb16' : 'srgb'),
+    (meta.hasAlpha ? pipeline : pipeline.removeAlpha()).toColourspace(bits === 16 ? 'rgb16' : 'srgb'),
     bits,
   );
-  const n = brief.widthPx * brief.heightPx;
+  const n = width * height;
   const stride = Math.round(rgb.length / n);
-  const look = Math.max(1, Math.floor(Math.max(brief.widthPx, brief.heightPx) / LOOK_SIDE_PX));
-  const small = thinned(rgb, brief.widthPx, brief.heightPx, stride, look);
+  const look = Math.max(1, Math.floor(Math.max(width, height) / LOOK_SIDE_PX));
+  const small = thinned(rgb, width, height, stride, look);
   if (stride === 4) refuseAlphaOnly(small.rgb, rgb, n, brief);
-  const choice = chooseChannel(small.rgb, small.widthPx, small.heightPx, bits === 16 ? 65535 : 255, toLinear);
+  const choice = chooseChannel(small.rgb, small.widthPx, small.heightPx, lookLight);
   const samples = bits === 16 ? new Uint16Array(n) : new Uint8Array(n);
   for (let i = 0, j = choice.index; i < n; i++, j += stride) samples[i] = rgb[j];
-  return { choice, samples };
+  return { choice, samples, small: null };
 }
 
 function thinned(
@@ -280,10 +333,6 @@ function open(bytes: Uint8Array, limits: DecodeLimits): Sharp {
   return sharp(bytes, { limitInputPixels: limits.filePixels, ignoreIcc: true, failOn: 'warning' });
 }
 
-function upright(pipeline: Sharp, meta: Metadata): Sharp {
-  return (meta.orientation ?? 1) > 1 ? pipeline.autoOrient() : pipeline;
-}
-
 async function rawSamples(pipeline: Sharp, bits: 8 | 16): Promise<Uint8Array | Uint16Array> {
   if (bits === 8) {
     const data = await pipeline.raw().toBuffer();
@@ -292,43 +341,6 @@ async function rawSamples(pipeline: Sharp, bits: 8 | 16): Promise<Uint8Array | U
   const data = await pipeline.raw({ depth: 'ushort' }).toBuffer();
   const bytes = data.byteOffset % 2 === 0 ? data : Uint8Array.prototype.slice.call(data);
   return new Uint16Array(bytes.buffer, bytes.byteOffset, bytes.length / 2);
-}
-
-function tooManyPixels(limits: DecodeLimits, brief: PictureBrief | null): Refused {
-  return new Refused(
-    'TOO_MANY_PIXELS',
-    `The picture has more than ${limits.filePixels / 1e6} megapixels. Crop it to the fringes or bin it in the camera.`,
-    brief,
-  );
-}
-
-function truncated(brief: PictureBrief | null): Refused {
-  return new Refused(
-    'TRUNCATED_FILE',
-    'The file breaks off before its end. Copy it again, then replace it.',
-    brief,
-  );
-}
-
-/** Turns what sharp says into a refusal; anything else goes on as it is. */
-function asRefused(error: unknown, brief: PictureBrief | null, limits?: DecodeLimits): unknown {
-  if (error instanceof Refused || !(error instanceof Error)) return error;
-  const said = error.message;
-  if (/pixel limit/i.test(said) && limits) return tooManyPixels(limits, brief);
-  if (
-    /premature|truncat|end of|unexpected end|not enough|short read|read error|out of (data|bounds)/i.test(
-      said,
-    )
-  )
-    return truncated(brief);
-  if (/unsupported|Input|Vips|png|jpeg|tiff|webp|libspng|bad|corrupt|invalid|unable/i.test(said)) {
-    return new Refused(
-      'BROKEN_FILE',
-      'The file is damaged and cannot be read. Copy it again or save the frame again.',
-      brief,
-    );
-  }
-  return error;
 }
 
 export interface Preview {

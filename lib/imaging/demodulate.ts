@@ -1,6 +1,7 @@
+import { planeAt } from './fine-level';
 import type { Plane } from './picture';
 import { withoutOutline } from './pyramid';
-import type { WaveCandidate } from './spectrum';
+import type { Level, WaveCandidate } from './spectrum';
 
 /** Where one wave lives in the frame and how its phase runs there. Lengths in px of the frame. */
 export interface FringePatch {
@@ -39,31 +40,38 @@ const SMALLEST_SNR = 3;
 const LARGEST_STEP_TURNS = 0.16;
 const REACH = 2;
 
-/** Plane on which a period is sampled finely enough and not more than that. */
-export function planeFor(planes: Plane[], periodPx: number): Plane {
-  let best = planes[0];
-  for (const plane of planes) if (periodPx / plane.factor >= 5) best = plane;
+/** Level on which a wave is sampled finely enough and not more than that. */
+export function levelFor(levels: readonly Level[], wave: WaveCandidate): Level {
+  const periodPx = 1 / Math.hypot(wave.kx, wave.ky);
+  let best = levels[0];
+  for (const level of levels) if (periodPx / level.factor >= 5) best = level;
   return best;
 }
 
 /** Demodulates one wave in cells, grows the patch of continuous phase from its strongest cell and fits its phase. */
-export function tracePatch(
-  plane: Plane,
-  wave: WaveCandidate,
-  mayRetry = true,
-  thin = false,
-): FringePatch | null {
+export function tracePatch(level: Level, wave: WaveCandidate): FringePatch | null {
+  const plane = 'picture' in level ? planeAt(level, wave.xPx, wave.yPx) : level;
+  return trace(plane, wave, { mayRetry: true, thin: false, cleaned: new Map() });
+}
+
+interface Attempt {
+  mayRetry: boolean;
+  /** Flat cells. */
+  thin: boolean;
+  /** The plane without its outline, by the radius of the mean that was taken off. */
+  cleaned: Map<number, Plane>;
+}
+
+function trace(plane: Plane, wave: WaveCandidate, attempt: Attempt): FringePatch | null {
   const f = plane.factor;
-  // Without the mean over one period what is left is the fringes; a bright outline would leak into faint ones.
-  const period = 1 / (f * Math.hypot(wave.kx, wave.ky));
-  const clean =
-    period >= FINE_PERIOD ? withoutOutline(plane, Math.max(1, Math.round((period - 1) / 2))) : plane;
+  const { mayRetry, thin } = attempt;
+  const clean = cleanedPlane(plane, 1 / (f * Math.hypot(wave.kx, wave.ky)), attempt);
   const map = demodulateCells(clean, wave.kx * f, wave.ky * f, thin);
   const cells = growPatch(map);
   if (cells.length < 3) return null;
   const centre = (i: number) => ({
-    x: ((i % map.nx) + 0.5) * map.wide * f,
-    y: (Math.floor(i / map.nx) + 0.5) * map.high * f,
+    x: plane.x0Px + ((i % map.nx) + 0.5) * map.wide * f,
+    y: plane.y0Px + (Math.floor(i / map.nx) + 0.5) * map.high * f,
   });
   const list = cells.map(({ index, turns }) => ({
     ...centre(index),
@@ -87,13 +95,13 @@ export function tracePatch(
   const shift = Math.hypot(surface.gx, surface.gy) / Math.hypot(wave.kx, wave.ky);
   // A wave vector that moved far was not demodulated well: once more with the better one.
   if (mayRetry && shift > 0.02 && shift < 0.6)
-    return tracePatch(plane, { kx, ky, weight: wave.weight }, false, thin);
+    return trace(plane, { ...wave, kx, ky }, { ...attempt, mayRetry: false });
   const k = Math.hypot(kx, ky);
   const moved = k / Math.hypot(wave.kx, wave.ky);
   if (!(moved > 0.6 && moved < 1.7)) return null;
   // A pattern only a few cells high says little about its direction: once more with flatter cells.
   if (!thin && rowsOf(cells, map, Math.abs(wave.kx) >= Math.abs(wave.ky)) < FEWEST_ROWS) {
-    const finer = tracePatch(plane, { kx, ky, weight: wave.weight }, true, true);
+    const finer = trace(plane, { ...wave, kx, ky }, { ...attempt, mayRetry: true, thin: true });
     if (finer !== null && finer.cells.length >= cells.length) return finer;
   }
   const ux = kx / k;
@@ -114,6 +122,15 @@ export function tracePatch(
       along: surface.xx * uy * uy - 2 * surface.xy * ux * uy + surface.yy * ux * ux,
     },
   };
+}
+
+/** Without the mean over one period what is left is the fringes; a bright outline would leak into faint ones. */
+function cleanedPlane(plane: Plane, period: number, attempt: Attempt): Plane {
+  if (period < FINE_PERIOD) return plane;
+  const radius = Math.max(1, Math.round((period - 1) / 2));
+  const clean = attempt.cleaned.get(radius) ?? withoutOutline(plane, radius);
+  attempt.cleaned.set(radius, clean);
+  return clean;
 }
 
 const FEWEST_ROWS = 6;
@@ -142,35 +159,31 @@ function demodulateCells(plane: Plane, kx: number, ky: number, thin: boolean): C
     cosX[x] = Math.cos(2 * Math.PI * kx * (x + 0.5));
     sinX[x] = Math.sin(2 * Math.PI * kx * (x + 0.5));
   }
-  const n = nx * ny;
-  const sums = {
-    re: new Float64Array(n),
-    im: new Float64Array(n),
-    er: new Float64Array(n),
-    ei: new Float64Array(n),
-    one: new Float64Array(n),
-    two: new Float64Array(n),
-  };
+  // Sums of the wave itself over each cell's width; along y they only turn.
+  const waveC = new Float64Array(nx);
+  const waveS = new Float64Array(nx);
+  for (let x = 0; x < nx * wide; x++) {
+    const i = Math.floor(x / wide);
+    waveC[i] += cosX[x];
+    waveS[i] += sinX[x];
+  }
+  const sums = emptySums(nx * ny);
+  const { data, widthPx } = plane;
   for (let y = 0; y < ny * high; y++) {
     const cy = Math.cos(2 * Math.PI * ky * (y + 0.5));
     const sy = Math.sin(2 * Math.PI * ky * (y + 0.5));
     const cellRow = Math.floor(y / high) * nx;
+    let at = y * widthPx;
+    let x = 0;
     for (let i = 0; i < nx; i++) {
       let c = 0;
       let s = 0;
-      let ec = 0;
-      let es = 0;
       let one = 0;
       let two = 0;
-      const from = y * plane.widthPx + i * wide;
-      for (let d = 0; d < wide; d++) {
-        const v = plane.data[from + d];
-        const a = cosX[i * wide + d];
-        const b = sinX[i * wide + d];
-        c += v * a;
-        s += v * b;
-        ec += a;
-        es += b;
+      for (const end = x + wide; x < end; x++, at++) {
+        const v = data[at];
+        c += v * cosX[x];
+        s += v * sinX[x];
         one += v;
         two += v * v;
       }
@@ -178,8 +191,8 @@ function demodulateCells(plane: Plane, kx: number, ky: number, thin: boolean): C
       // exp(-i phi) with phi split into its x and y parts
       sums.re[k] += c * cy - s * sy;
       sums.im[k] -= s * cy + c * sy;
-      sums.er[k] += ec * cy - es * sy;
-      sums.ei[k] -= es * cy + ec * sy;
+      sums.er[k] += waveC[i] * cy - waveS[i] * sy;
+      sums.ei[k] -= waveS[i] * cy + waveC[i] * sy;
       sums.one[k] += one;
       sums.two[k] += two;
     }
@@ -187,44 +200,61 @@ function demodulateCells(plane: Plane, kx: number, ky: number, thin: boolean): C
   return smoothCells(sums, nx, ny, wide, high);
 }
 
-function smoothCells(
-  sums: Record<'re' | 'im' | 'er' | 'ei' | 'one' | 'two', Float64Array>,
-  nx: number,
-  ny: number,
-  wide: number,
-  high: number,
-): CellMap {
-  const re = new Float64Array(nx * ny);
-  const im = new Float64Array(nx * ny);
+interface CellSums {
+  re: Float64Array;
+  im: Float64Array;
+  /** The wave itself, for taking the local mean off. */
+  er: Float64Array;
+  ei: Float64Array;
+  one: Float64Array;
+  two: Float64Array;
+}
+
+const emptySums = (n: number): CellSums => ({
+  re: new Float64Array(n),
+  im: new Float64Array(n),
+  er: new Float64Array(n),
+  ei: new Float64Array(n),
+  one: new Float64Array(n),
+  two: new Float64Array(n),
+});
+
+/** Weights 1 2 1 over the cells there are, along the rows and then down the columns. */
+function spread121(from: Float64Array, nx: number, ny: number): Float64Array {
+  const across = new Float64Array(nx * ny);
+  for (let y = 0, i = 0; y < ny; y++)
+    for (let x = 0; x < nx; x++, i++)
+      across[i] = 2 * from[i] + (x > 0 ? from[i - 1] : 0) + (x + 1 < nx ? from[i + 1] : 0);
+  const out = new Float64Array(nx * ny);
+  for (let y = 0, i = 0; y < ny; y++)
+    for (let x = 0; x < nx; x++, i++)
+      out[i] = 2 * across[i] + (y > 0 ? across[i - nx] : 0) + (y + 1 < ny ? across[i + nx] : 0);
+  return out;
+}
+
+/** Sum of the weights 1 2 1 (to a power) of the cells there are about place i of n. */
+const weight121 = (i: number, n: number, exponent: number) =>
+  2 ** exponent + (i > 0 ? 1 : 0) + (i + 1 < n ? 1 : 0);
+
+function smoothCells(sums: CellSums, nx: number, ny: number, wide: number, high: number): CellMap {
+  const re = spread121(sums.re, nx, ny);
+  const im = spread121(sums.im, nx, ny);
+  const er = spread121(sums.er, nx, ny);
+  const ei = spread121(sums.ei, nx, ny);
+  const one = spread121(sums.one, nx, ny);
+  const two = spread121(sums.two, nx, ny);
   const snr = new Float64Array(nx * ny);
-  for (let y = 0; y < ny; y++) {
-    for (let x = 0; x < nx; x++) {
-      let w = 0;
-      let w2 = 0;
-      const t = { re: 0, im: 0, er: 0, ei: 0, one: 0, two: 0 };
-      for (let dy = -1; dy <= 1; dy++) {
-        for (let dx = -1; dx <= 1; dx++) {
-          if (x + dx < 0 || x + dx >= nx || y + dy < 0 || y + dy >= ny) continue;
-          const g = (2 - Math.abs(dx)) * (2 - Math.abs(dy));
-          const k = (y + dy) * nx + x + dx;
-          w += g;
-          w2 += g * g;
-          t.re += g * sums.re[k];
-          t.im += g * sums.im[k];
-          t.er += g * sums.er[k];
-          t.ei += g * sums.ei[k];
-          t.one += g * sums.one[k];
-          t.two += g * sums.two[k];
-        }
-      }
+  for (let y = 0, i = 0; y < ny; y++) {
+    for (let x = 0; x < nx; x++, i++) {
+      const w = weight121(x, nx, 1) * weight121(y, ny, 1);
+      const w2 = weight121(x, nx, 2) * weight121(y, ny, 2);
       const pixels = w * wide * high;
-      const mean = t.one / pixels;
-      const i = y * nx + x;
-      re[i] = (t.re - mean * t.er) / pixels;
-      im[i] = (t.im - mean * t.ei) / pixels;
-      const power = re[i] * re[i] + im[i] * im[i];
-      const rest = Math.max(1e-12, t.two / pixels - mean * mean - 2 * power);
-      snr[i] = Math.sqrt(power / ((rest * w2) / (w * pixels)));
+      const mean = one[i] / pixels;
+      re[i] = (re[i] - mean * er[i]) / pixels;
+      im[i] = (im[i] - mean * ei[i]) / pixels;
+      const strength = re[i] * re[i] + im[i] * im[i];
+      const rest = Math.max(1e-12, two[i] / pixels - mean * mean - 2 * strength);
+      snr[i] = Math.sqrt(strength / ((rest * w2) / (w * pixels)));
     }
   }
   return { nx, ny, wide, high, re, im, snr };
@@ -237,7 +267,7 @@ function growPatch(map: CellMap): { index: number; turns: number }[] {
   const amplitude = new Float64Array(n);
   let seed = 0;
   for (let i = 0; i < n; i++) {
-    amplitude[i] = Math.hypot(re[i], im[i]);
+    amplitude[i] = Math.sqrt(re[i] * re[i] + im[i] * im[i]);
     if (amplitude[i] > amplitude[seed]) seed = i;
   }
   const good = (i: number) => amplitude[i] > SMALLEST_SHARE * amplitude[seed] && snr[i] > SMALLEST_SNR;
@@ -259,7 +289,7 @@ function growPatch(map: CellMap): { index: number; turns: number }[] {
         if (!Number.isNaN(turns[j]) || !good(j)) continue;
         let step = turnsOf(j) - turns[i];
         step -= Math.round(step);
-        if (Math.abs(step) > LARGEST_STEP_TURNS * Math.max(1, Math.hypot(dx, dy) * 0.8)) continue;
+        if (Math.abs(step) > LARGEST_STEP_TURNS * Math.max(1, Math.sqrt(dx * dx + dy * dy) * 0.8)) continue;
         turns[j] = turns[i] + step;
         queue.push(j);
       }

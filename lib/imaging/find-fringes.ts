@@ -1,7 +1,8 @@
-import { planeFor, tracePatch, type FringePatch } from './demodulate';
+import { levelFor, tracePatch, type FringePatch } from './demodulate';
+import { fineLevels } from './fine-level';
 import { toDegrees, toRadians, wrapAngleDeg, type Rectangle } from './geometry';
 import type { Picture } from './picture';
-import { buildPyramid } from './pyramid';
+import { coarsePlanes, PLANE_PIXELS } from './pyramid';
 import { findWaves } from './spectrum';
 
 /** A place in the frame that may hold two-slit fringes. */
@@ -12,16 +13,27 @@ export interface FringePlace {
 }
 
 const WAVES_TRIED = 7;
+/** Pixels of finer levels that are searched for them, which takes longest; a wave that is begun is finished. */
+const FINE_PIXELS = 3_000_000;
+/** Votes below this share of the strongest wave's are noise; fringes beside a livelier pattern have far more. */
+const WEAKEST_WAVE = 1e-3;
 /** Bands of cells with less than this share of the liveliest one's light are not part of the pattern. */
 const EDGE_SHARE = 0.1;
 
 /** Candidates for the pattern, the one with most coherent light first. Finer than 2.2 px is not looked for. */
 export function findFringes(picture: Picture, within: Rectangle | null): FringePlace[] {
-  const planes = buildPyramid(picture);
+  const planes = coarsePlanes(picture);
+  const levels = [...fineLevels(picture, planes[0].factor), ...planes];
+  const waves = findWaves(levels, WAVES_TRIED);
   const places: FringePlace[] = [];
-  for (const wave of findWaves(planes, WAVES_TRIED)) {
-    const period = 1 / Math.hypot(wave.kx, wave.ky);
-    const patch = tracePatch(planeFor(planes, period), wave);
+  let finePixels = 0;
+  for (const wave of waves.filter((w) => w.weight > WEAKEST_WAVE * waves[0].weight)) {
+    const level = levelFor(levels, wave);
+    if ('picture' in level) {
+      if (finePixels >= FINE_PIXELS) continue;
+      finePixels += Math.min(PLANE_PIXELS, level.widthPx * level.heightPx);
+    }
+    const patch = tracePatch(level, wave);
     if (patch === null) continue;
     const place = placeOf(picture, patch, within);
     if (place === null) continue;

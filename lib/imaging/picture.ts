@@ -11,6 +11,8 @@ export interface Picture {
   clipCode: number;
   /** Lowest code that holds a pile of pixels, at or below which light is unknown; -1 where there is none. */
   floorCode: number;
+  /** Where the file gave it almost for nothing: the picture by block means of codes, to look for fringes on and nothing else. */
+  small?: { samples: Uint8Array; factor: number } | null;
   source: SourceFacts;
 }
 
@@ -28,6 +30,9 @@ export interface SourceFacts {
   lossy: boolean;
 }
 
+/** Planes are made whole up to this size when fringes are looked for; of finer levels only tiles are read. */
+export const COARSE_PIXELS = 400_000;
+
 /** A picture of linear light, reduced by block averages. */
 export interface Plane {
   widthPx: number;
@@ -35,4 +40,7 @@ export interface Plane {
   data: Float32Array;
   /** Side of one of its pixels in px of the frame. */
   factor: number;
+  /** Its corner in the frame, px; 0 but for a window. */
+  x0Px: number;
+  y0Px: number;
 }

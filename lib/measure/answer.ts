@@ -15,7 +15,8 @@ import type { Refused } from '@/lib/imaging/refused';
 import type { FrameStack, PictureFacts } from './band-stack';
 import { curvesOf, stripOf } from './curves';
 import { ENGINE_VERSION } from './engine-version';
-import { findingsOf } from './findings';
+import { findingsOf, messageFor } from './findings';
+import { bandwidthOf, slitOf, wordsOf } from './further-results';
 import type { Measured } from './measured';
 import type { PlaceFit } from './place';
 import { frameEffects, wavelengthOf } from './wavelength';
@@ -95,8 +96,11 @@ export function resultOf({ stack, region, measured, setup, options, ms }: Answer
     strip: stripOf(curves),
     ms,
   };
-  result.findings = findingsOf({ result, measured, picture, setup });
-  result.message = messageFor(result);
+  result.bandwidth = bandwidthOf(place.band, spread.covariance, wavelength.airNm);
+  result.findings = findingsOf({ take: 'frame', result, measured, picture, setup });
+  result.words = wordsOf(result.findings);
+  result.slit = result.words.width === 'stop' ? null : slitOf(place, spread, setup);
+  result.message = messageFor('frame', result.findings);
   return result;
 }
 
@@ -140,12 +144,6 @@ function clippedShare(place: PlaceFit): number {
     if (state.left[i] === 1) clipped++;
   }
   return all > 0 ? clipped / all : 0;
-}
-
-function messageFor(result: ReadingResult): string {
-  const worst =
-    result.findings.find((f) => f.word === 'stop') ?? result.findings.find((f) => f.word === 'look');
-  return worst ? worst.message : 'The frame is fit for use.';
 }
 
 export function refusalOf(error: Refused, picture: PictureFacts | null, ms: Timing): Refusal {

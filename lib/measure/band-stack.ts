@@ -137,7 +137,10 @@ function cutBands(s: BandStack, cut: Cut): BandData {
     // A square seen at the angle is two boxes of widths |cos| and |sin|: fourth moments a^4/80 each, and 6 times the
     // product of the variances.
     pixelFourth: (c * c + (1 - c) * (1 - c)) / 80 + (6 * c * (1 - c)) / 144,
+    meanVarU: 0,
   };
+  let spread = 0;
+  let filled = 0;
   for (let b = 0; b < bands; b++) {
     const from = (cut.firstBand + b) * s.bins + cut.firstBin;
     const to = b * bins;
@@ -145,9 +148,14 @@ function cutBands(s: BandStack, cut: Cut): BandData {
     data.pixels.set(s.pixels.subarray(from, from + bins), to);
     data.varU.set(s.varU.subarray(from, from + bins), to);
     data.dv.set(s.dv.subarray(from, from + bins), to);
-    for (let j = 0; j < bins; j++)
+    for (let j = 0; j < bins; j++) {
       data.u[to + j] = s.fromPx - cut.uc + (cut.firstBin + j) * s.pitchPx + s.offset[from + j];
+      if (data.pixels[to + j] === 0) continue;
+      spread += data.varU[to + j];
+      filled++;
+    }
   }
+  data.meanVarU = filled > 0 ? spread / filled : 0;
   return data;
 }
 

@@ -1,5 +1,6 @@
 import type { Curves, Strip } from '@/lib/domain/reading-result';
-import { AveragedModel } from '@/lib/fit/fit-profile';
+import { AveragedModel, type ProfileFit } from '@/lib/fit/fit-profile';
+import type { Profile } from '@/lib/fit/profile';
 import { toModel } from '@/lib/fit/orders';
 import { ModelPoint } from '@/lib/fit/two-slit-model';
 import type { PlaceFit } from './place';
@@ -9,7 +10,28 @@ const MOST_STRIP = 480;
 
 /** The curves of the stage, thinned to at most 1500 points by averaging neighbours. */
 export function curvesOf(place: PlaceFit, alongFromU: (u: number) => number): Curves {
-  const { fit, profile, table } = place.band;
+  const { fit, profile, table, grid } = place.band;
+  const leftOut = (from: number, to: number): LeftPoint => {
+    const u = grid.from + ((from + to) / 2) * grid.pitchPx;
+    return { u, light: table.lightAt(u), sigma: 0 };
+  };
+  return profileCurves(fit, profile, leftOut, alongFromU);
+}
+
+/** What is drawn where a group of points has no part in the fit. */
+export interface LeftPoint {
+  u: number;
+  light: number;
+  sigma: number;
+}
+
+/** The curves of any fitted profile; `leftOut` answers for points from..to that were left out. */
+export function profileCurves(
+  fit: ProfileFit,
+  profile: Profile,
+  leftOut: (from: number, to: number) => LeftPoint,
+  alongFromU: (u: number) => number,
+): Curves {
   const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
   const group = Math.max(1, Math.ceil(profile.size / MOST_POINTS));
   const out: Curves = { alongPx: [], data: [], uData: [], fit: [], envelope: [], misfit: [], left: [] };
@@ -26,8 +48,9 @@ export function curvesOf(place: PlaceFit, alongFromU: (u: number) => number): Cu
       wy += wk * profile.light[k];
     }
     const left = w === 0;
-    const centre = place.band.grid.from + ((from + to) / 2) * place.band.grid.pitchPx;
-    const u = left ? centre : wu / w;
+    const { u, light, sigma } = left
+      ? leftOut(from, to)
+      : { u: wu / w, light: wy / w, sigma: 1 / Math.sqrt(w) };
     if (
       !model.evaluate(
         fit.result.parameters,
@@ -38,8 +61,6 @@ export function curvesOf(place: PlaceFit, alongFromU: (u: number) => number): Cu
       )
     )
       continue;
-    const light = left ? table.lightAt(u) : wy / w;
-    const sigma = left ? 0 : 1 / Math.sqrt(w);
     out.alongPx.push(alongFromU(u));
     out.data.push(light);
     out.uData.push(sigma);

@@ -1,9 +1,39 @@
-import type { Finding, FindingWord, ReadingResult, SetupValues } from '@/lib/domain/reading-result';
+import type {
+  Finding,
+  FindingWord,
+  OrderCentre,
+  ReadingResult,
+  SetupValues,
+} from '@/lib/domain/reading-result';
+import type { ProfileFit } from '@/lib/fit/fit-profile';
 import type { PictureFacts } from './band-stack';
 import type { Measured } from './measured';
 
-/** What a check may look at. */
-export interface FindingContext {
+/** What a check of the pattern itself may look at: of a frame, or of a scan, whose lengths are then mm in place of px. */
+export interface PatternContext {
+  take: 'frame' | 'scan';
+  result: Pick<
+    ReadingResult,
+    'wavelengthNm' | 'spacingPx' | 'uSpacingPx' | 'visibility' | 'envelopeZeroOrder' | 'clippedShare'
+  > &
+    Pick<Partial<ReadingResult>, 'bandwidth'> & {
+      chiSquareReduced: number;
+      orders: Pick<OrderCentre, 'm' | 'kind' | 'pullPx'>[];
+    };
+  measured: {
+    place: { band: { fit: ProfileFit } };
+    spread: Pick<Measured['spread'], 'covariance'>;
+    evidence: Measured['evidence'];
+    zero: Pick<Measured['zero'], 'probability' | 'next'>;
+    plainSpacing: number;
+    second: Measured['second'];
+  };
+  setup: SetupValues;
+  picture?: PictureFacts;
+}
+
+/** What a check of a frame may look at. */
+export interface FindingContext extends PatternContext {
   result: ReadingResult;
   measured: Measured;
   picture: PictureFacts;
@@ -25,7 +55,7 @@ export interface FindingParts {
 }
 
 /** A finding with its size in nm where the wavelength is known, else as a share of the spacing. */
-export function finding(context: FindingContext, parts: FindingParts): Finding {
+export function finding(context: Pick<PatternContext, 'result'>, parts: FindingParts): Finding {
   const { wavelengthNm } = context.result;
   const sizeNm = parts.relative === null || wavelengthNm === null ? null : parts.relative * wavelengthNm;
   const size = parts.size.replace('{size}', sizeText(parts.relative, sizeNm));
@@ -61,7 +91,7 @@ export function numberText(value: number): string {
 export const percent = (share: number) => `${numberText(100 * share)} %`;
 
 /** How far the optional terms moved the spacing, relative. */
-export function movedBy(c: FindingContext): number {
+export function movedBy(c: Pick<PatternContext, 'measured'>): number {
   const { fit } = c.measured.place.band;
   return (fit.result.parameters[0] * fit.unitPx) / c.measured.plainSpacing - 1;
 }

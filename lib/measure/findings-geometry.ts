@@ -1,10 +1,22 @@
 /** Checks of how camera, screen and plate stand. */
 import type { Finding } from '@/lib/domain/reading-result';
-import { finding, movedBy, numberText, percent, type FindingContext } from './finding-context';
+import {
+  finding,
+  movedBy,
+  numberText,
+  percent,
+  type FindingContext,
+  type PatternContext,
+} from './finding-context';
 import { nearFieldRelative } from './wavelength';
 
 export function geometryFindings(c: FindingContext): Finding[] {
-  const list = [tilt(c), yaw(c), zeroOrder(c), regionOf(c)];
+  return [tilt(c), yaw(c), ...placeFindings(c)];
+}
+
+/** Checks of where region, zero order and plate stand: of a frame or a scan. */
+export function placeFindings(c: PatternContext): Finding[] {
+  const list = [zeroOrder(c), regionOf(c)];
   const near = nearField(c);
   if (near) list.push(near);
   return list;
@@ -51,7 +63,7 @@ function yaw(c: FindingContext): Finding {
   });
 }
 
-function zeroOrder(c: FindingContext): Finding {
+function zeroOrder(c: PatternContext): Finding {
   const { fit } = c.measured.place.band;
   const p = fit.result.parameters;
   const curve = fit.layout.curve >= 0 ? p[fit.layout.curve] : fit.fixed.curve;
@@ -68,11 +80,11 @@ function zeroOrder(c: FindingContext): Finding {
       : `The zero order is most likely here; the next fringe is ${numberText(odds)} times less likely.`,
     size: 'One order to the side would change the wavelength by {size}.',
     done: 'The order nearest the middle of the envelope was taken.',
-    remedy: sure ? 'Nothing to do.' : 'Mark the zero order yourself, or take a frame with white light.',
+    remedy: sure ? 'Nothing to do.' : `Mark the zero order yourself, or take a ${c.take} with white light.`,
   });
 }
 
-function regionOf(c: FindingContext): Finding {
+function regionOf(c: PatternContext): Finding {
   const bright = c.result.orders.filter((o) => o.kind === 'bright');
   const left = bright.filter((o) => o.m < 0).length;
   const right = bright.filter((o) => o.m > 0).length;
@@ -92,7 +104,7 @@ function regionOf(c: FindingContext): Finding {
 }
 
 /** w^2/(lambda L): how far the plane is from the far field of one slit. */
-function nearField(c: FindingContext): Finding | null {
+function nearField(c: PatternContext): Finding | null {
   const { widthUm, distanceMm } = c.setup;
   const nm = c.result.wavelengthNm;
   if (!widthUm || !distanceMm || nm === null) return null;

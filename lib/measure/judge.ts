@@ -1,4 +1,5 @@
 import { AveragedModel, fitOneSlit, ratioU, type ProfileFit } from '@/lib/fit/fit-profile';
+import type { Profile } from '@/lib/fit/profile';
 import { ModelPoint, orderAt } from '@/lib/fit/two-slit-model';
 import { solveSymmetric } from '@/lib/fit/small-matrix';
 import { toModel } from '@/lib/fit/orders';
@@ -16,6 +17,7 @@ const FEW_MISFIT = 0.1;
 /** Slits wider than this share of their separation are one slit with a bar in it. */
 const MOST_RATIO = 0.8;
 const MOST_HARMONIC = 0.2;
+const MOST_LOCK = 0.3;
 const CLEAN_MISFIT = 0.02;
 const LEAST_GAIN = 60;
 const LEAST_VISIBILITY = 0.03;
@@ -35,10 +37,17 @@ export interface Evidence {
   /** Second harmonic over first: 0 for two slits, 0.5 for three. */
   harmonic: number;
   visibility: number;
+  /** Swing at half the fitted frequency over the swing at it: far above 0 where the fit locked on half the spacing. */
+  lock: number;
+}
+
+/** A fit with its profile, of a place in a frame or of a scan. `half` is half the profile's length. */
+export interface FittedPattern {
+  band: { fit: ProfileFit; profile: Profile; grid: { half: number } };
 }
 
 /** What speaks for two slits in a fitted place. */
-export function weigh(place: PlaceFit): Evidence {
+export function weigh(place: FittedPattern): Evidence {
   const { fit, profile } = place.band;
   const p = fit.result.parameters;
   const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
@@ -72,11 +81,46 @@ export function weigh(place: PlaceFit): Evidence {
     swingSigmas: p[5] / uSwing,
     misfit: n > 0 && swing > 0 ? Math.sqrt(Math.max(0, rest - n) / swing) : Infinity,
     harmonic: secondHarmonic(place),
-    visibility: p[4] > 0 ? p[5] / p[4] : 0,
+    visibility: visibilityOf(fit),
+    lock: lockOn(place),
   };
 }
 
-function envelopeAt(place: PlaceFit, u: number): number {
+/** Contrast of the light at the envelope's middle: B/A, less what slits of unequal width lose: (1 - e^2)/(1 + e^2). */
+function visibilityOf({ layout, result }: ProfileFit): number {
+  const p = result.parameters;
+  if (!(p[4] > 0)) return 0;
+  const e = layout.unequal < 0 ? 0 : p[layout.unequal];
+  return (p[5] / p[4]) * ((1 - e * e) / (1 + e * e));
+}
+
+/** Weighted regression of the misfit on E cos(pi m), E sin(pi m): fringes twice as wide as the fitted ones. */
+function lockOn(place: FittedPattern): number {
+  const { fit, profile } = place.band;
+  const p = fit.result.parameters;
+  const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
+  const s = { cc: 0, cs: 0, ss: 0, rc: 0, rs: 0 };
+  for (let k = 0; k < profile.size; k++) {
+    if (!Number.isFinite(profile.sigma[k])) continue;
+    const x = toModel(fit, profile.u[k]);
+    if (!model.evaluate(p, x, profile.node[k] / fit.unitPx, profile.nodeWeight[k], false)) continue;
+    const e = envelopeAt(place, profile.u[k]);
+    const phase = Math.PI * orderAt(fit.layout, fit.fixed, p, x);
+    const c = e * Math.cos(phase);
+    const q = e * Math.sin(phase);
+    const r = profile.light[k] / fit.unitLight - model.light;
+    s.cc += c * c;
+    s.cs += c * q;
+    s.ss += q * q;
+    s.rc += c * r;
+    s.rs += q * r;
+  }
+  const det = s.cc * s.ss - s.cs * s.cs;
+  if (!(det > 0) || !(p[5] > 0)) return 0;
+  return (2 * Math.hypot(s.ss * s.rc - s.cs * s.rs, s.cc * s.rs - s.cs * s.rc)) / det / p[5];
+}
+
+function envelopeAt(place: FittedPattern, u: number): number {
   const { fit } = place.band;
   const p = fit.result.parameters;
   const t = Math.PI * p[2] * (orderAt(fit.layout, fit.fixed, p, toModel(fit, u)) - p[3]);
@@ -84,7 +128,7 @@ function envelopeAt(place: PlaceFit, u: number): number {
 }
 
 /** Bright orders inside the used part of the profile whose envelope is at least 4 % of the highest there. */
-function countFringes(place: PlaceFit): number {
+function countFringes(place: FittedPattern): number {
   const { fit, profile } = place.band;
   const p = fit.result.parameters;
   const used = new Set<number>();
@@ -114,7 +158,7 @@ function countFringes(place: PlaceFit): number {
 }
 
 /** Length of the used profile between two orders, in orders. */
-function spanInOrders(place: PlaceFit, first: number, last: number): number {
+function spanInOrders(place: FittedPattern, first: number, last: number): number {
   const { fit, profile } = place.band;
   let low = Infinity;
   let high = -Infinity;
@@ -128,7 +172,7 @@ function spanInOrders(place: PlaceFit, first: number, last: number): number {
 }
 
 /** Weighted regression of the profile on 1, z, E, E cos, E cos 2: second coefficient over first. */
-function secondHarmonic(place: PlaceFit): number {
+function secondHarmonic(place: FittedPattern): number {
   const { fit, profile, grid } = place.band;
   const p = fit.result.parameters;
   const a = new Float64Array(25);
@@ -148,7 +192,7 @@ function secondHarmonic(place: PlaceFit): number {
 }
 
 /** A single slit is named only where its side maxima can be seen; otherwise the light is just a spot or an outline. */
-function showsLobes(place: PlaceFit, evidence: Evidence): boolean {
+function showsLobes(place: FittedPattern, evidence: Evidence): boolean {
   const { fit, grid } = place.band;
   const p = fit.result.parameters;
   const lobe = (p[0] * fit.unitPx) / p[2];
@@ -166,6 +210,32 @@ function oneSlitSuffices(oneSlit: number, fit: ProfileFit, evidence: Evidence): 
   );
 }
 
+export function oneSlit(): Refused {
+  return new Refused(
+    'ONE_SLIT',
+    'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.',
+  );
+}
+
+/** Throws where the light is that of one slit, or of more than two. */
+export function refuseOtherSlits(place: FittedPattern, evidence: Evidence): void {
+  const { fit, profile } = place.band;
+  // Where the light is the same over the whole region, a sharp periodic thing is a blind or a wall, not a slit plate.
+  const bounded = fit.result.parameters[2] > LEAST_RATIO;
+  if (evidence.harmonic > MOST_HARMONIC && !bounded) throw noFringes();
+  if (evidence.harmonic > MOST_HARMONIC) {
+    throw new Refused(
+      'MANY_SLITS',
+      'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.',
+    );
+  }
+  if (fit.result.parameters[2] > MOST_RATIO) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
+  const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
+  const one = doubtful ? fitOneSlit(profile, fit) : null;
+  if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence))
+    throw showsLobes(place, evidence) ? oneSlit() : noFringes();
+}
+
 /** Throws the refusal that fits, or returns the evidence of a pattern that can be answered. */
 export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
   const { fit } = place.band;
@@ -178,25 +248,9 @@ export function judgePlace(place: PlaceFit, spread: Spread | null): Evidence {
       `The fringes are ${spacing.toFixed(1)} px apart; below ${FINEST_PX} px the camera cannot hold them. Move the camera back or use a finer pixel scale.`,
     );
   }
-  const oneSlit = () =>
-    new Refused(
-      'ONE_SLIT',
-      'This is the pattern of a single slit: its middle maximum is twice as wide as the others. Let the beam meet both slits.',
-    );
-  // Where the light is the same over the whole region, a sharp periodic thing is a blind or a wall, not a slit plate.
-  const bounded = fit.result.parameters[2] > LEAST_RATIO;
-  if (evidence.harmonic > MOST_HARMONIC && !bounded) throw noFringes();
-  if (evidence.harmonic > MOST_HARMONIC) {
-    throw new Refused(
-      'MANY_SLITS',
-      'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.',
-    );
-  }
-  if (fit.result.parameters[2] > MOST_RATIO) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
-  const doubtful = fit.result.parameters[2] > 0.42 || evidence.misfit > 0.06 || evidence.visibility < 0.1;
-  const one = doubtful ? fitOneSlit(place.band.profile, fit) : null;
-  if (one !== null && oneSlitSuffices(one.chiSquare, fit, evidence))
-    throw showsLobes(place, evidence) ? oneSlit() : noFringes();
+  refuseOtherSlits(place, evidence);
+  // Fringes as strong at half the frequency: every second one was taken for two.
+  if (evidence.lock > MOST_LOCK) throw noFringes();
   if (tooDeep(fit, evidence)) throw showsLobes(place, evidence) ? oneSlit() : noFringes();
   const bow = Math.abs(place.tilt.bowPx) * 1.5;
   const barrel = Math.abs(place.tilt.barrel);

@@ -5,10 +5,11 @@ import type {
   SetupValues,
   Timing,
 } from '@/lib/domain/reading-result';
-import { tableFor } from '@/lib/fit/bands';
+import { LEFT, tableFor, type BandData } from '@/lib/fit/bands';
 import { chooseTerms } from '@/lib/fit/choose-terms';
-import { fitBands, fitTilt } from '@/lib/fit/fit-bands';
+import { fitBands, fitTilt, type BandFit } from '@/lib/fit/fit-bands';
 import { rebase, stepsToZero, type CurvePrior } from '@/lib/fit/fit-profile';
+import { findSecondSystem, secondInflation, withoutSecond, type SecondSystem } from '@/lib/fit/second-system';
 import { spreadOf, type Spread } from '@/lib/fit/spread';
 import type { StartValues } from '@/lib/fit/start-values';
 import { chooseZero, type ZeroChoice } from '@/lib/fit/zero-order';
@@ -26,6 +27,13 @@ export type Clock = () => number;
 export const noTime = (): Timing => ({ decode: 0, find: 0, profile: 0, fit: 0, total: 0 });
 
 const ROUNDS = 2;
+const TERMS = { tone: true, chirp: true };
+const WINDOW_ROUNDS = 5;
+/** Chi-square a point up to which a second system counts as taken out. */
+const TAKEN_OUT = 1.5;
+/** Largest pull of the spacing by a second system near the first, relative to both strengths (simulation: 1.5e-3 for 3 %). */
+const PULL_OF_SECOND = 0.05;
+const FEW_CELLS = 0.002;
 
 /**
  * Measures a region from a band stack: plain arithmetic, the same digits on a server and in a browser. `options.region`
@@ -73,22 +81,68 @@ function measureRegion(
   const { rect, data } = cutStack(stack, region);
   const from = startIn(stack, region);
   const zeroAtPx = options.zeroShift ? zeroWanted(stack, region, options.zeroShift) : null;
-  const first = fitBands(data, plan.start.spacingPx, prior, limits, leftOutBy(options, from), {
-    from,
-    asItIs: true,
-    rounds: ROUNDS,
-    zeroAtPx,
+  const how = { from, asItIs: true, rounds: ROUNDS, zeroAtPx };
+  const fitted = (d: BandData) =>
+    fitBands(d, plan.start.spacingPx, prior, limits, leftOutBy(options, from), how);
+  const plainly = fitted(data);
+  if (plainly === null) throw noFringes();
+  const plainSpacing = plainly.fit.result.parameters[0] * plainly.fit.unitPx;
+  const { band, second } = withoutWindow(chooseTerms(plainly, TERMS), (d) => {
+    const again = fitted(d);
+    return again === null ? null : chooseTerms(again, TERMS);
   });
-  if (first === null) throw noFringes();
-  const plainSpacing = first.fit.result.parameters[0] * first.fit.unitPx;
-  const band = chooseTerms(first, { curve: prior === null, tone: true, chirp: true });
   const place: PlaceFit = { rect, band, tilt: fitTilt(band) };
   const zero = settleZero(place, zeroAtPx);
   place.tilt = fitTilt(place.band);
-  const spread = withZeroDoubt(spreadOf(place.band), zero);
-  const evidence = judgePlace(place, spread);
-  if (spread === null) throw noFringes();
-  return { zero, place, spread, evidence, plainSpacing };
+  const alone = withZeroDoubt(spreadOf(place.band), zero);
+  const evidence = judgePlace(place, alone);
+  if (alone === null) throw noFringes();
+  const spread = second === null ? alone : withSecondDoubt(alone, place, second, evidence.misfit);
+  return { zero, second, place, spread, evidence, plainSpacing };
+}
+
+/** The fit with a second fringe system divided out of the light, where one stands out of the misfit. */
+function withoutWindow(
+  plainly: BandFit,
+  fitted: (data: BandData) => BandFit | null,
+): { band: BandFit; second: SecondSystem | null } {
+  if (!missesCells(plainly)) return { band: plainly, second: null };
+  const { data } = plainly;
+  let band = plainly;
+  let second: SecondSystem | null = null;
+  for (let round = 0; round < WINDOW_ROUNDS; round++) {
+    const next = findSecondSystem(band, data.light);
+    if (next === null) break;
+    const better = fitted(withoutSecond(data, data.light, next));
+    if (better === null) break;
+    band = better;
+    second = next;
+  }
+  return { band, second };
+}
+
+/** More cells far from the fit than noise makes, or a profile that misses it. */
+function missesCells({ fit, state, data }: BandFit): boolean {
+  const dof = Math.max(1, fit.result.dof);
+  if (fit.result.chiSquare / dof > 1 + 3 * Math.sqrt(2 / dof)) return true;
+  let out = 0;
+  for (let i = 0; i < state.left.length; i++) if (state.left[i] === LEFT.outlier) out++;
+  return out > FEW_CELLS * data.bins * data.bands;
+}
+
+/**
+ * The spacing's variance grows by what the second system shares with the first; where misfit stays, part of it is still in the
+ * light, and its largest pull counts as the half width of a rectangle.
+ */
+function withSecondDoubt(spread: Spread, place: PlaceFit, second: SecondSystem, misfit: number): Spread {
+  const factor = secondInflation(place.band, second);
+  const covariance = spread.covariance.map((v) => v * factor);
+  const { result } = place.band.fit;
+  if (result.chiSquare > TAKEN_OUT * Math.max(1, result.dof)) {
+    const strength = Math.max(Math.hypot(second.c, second.s), 2 * misfit);
+    covariance[0] += (PULL_OF_SECOND * strength * result.parameters[0]) ** 2 / 3;
+  }
+  return { ...spread, covariance };
 }
 
 /** The pattern as the stack's maker saw it, from this region's centre. */

@@ -1,3 +1,4 @@
+import type { SecondSystem } from '@/lib/fit/second-system';
 import type { Spread } from '@/lib/fit/spread';
 import type { ZeroChoice } from '@/lib/fit/zero-order';
 import type { Evidence } from './judge';
@@ -9,6 +10,8 @@ export interface Measured {
   spread: Spread;
   evidence: Evidence;
   zero: ZeroChoice;
+  /** A second fringe system that was divided out of the light, or null. */
+  second: SecondSystem | null;
   /** Spacing along the bands, px, before optional terms were added to the model. */
   plainSpacing: number;
 }

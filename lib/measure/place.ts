@@ -3,6 +3,7 @@ import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { fitBands, fitTilt, type BandFit, type LightLimits, type TiltFit } from '@/lib/fit/fit-bands';
 import { spreadOf } from '@/lib/fit/spread';
 import type { StartValues } from '@/lib/fit/start-values';
+import type { BandData } from '@/lib/fit/bands';
 import { leanOfBands } from '@/lib/fit/lean';
 import {
   coordinatesIn,
@@ -71,8 +72,8 @@ const nothing = () => false;
 
 /** A first look: coarse bands, few rows, two rounds. Null where nothing can be fitted. */
 export function lookAtPlace(ask: PlaceAsk): PlaceFit | null {
-  const rect = leanIn(ask.picture, ask.rect, ask.spacingPx);
-  return lookIn(ask, rect, ask.spacingPx, null, gridFor(rect, ask.spacingPx, true));
+  const { rect, data } = leanIn(ask.picture, ask.rect, ask.spacingPx);
+  return fitLook(ask, rect, data, ask.spacingPx, null);
 }
 
 function lookIn(
@@ -82,7 +83,16 @@ function lookIn(
   from: StartValues | null,
   options: StraightenOptions,
 ): PlaceFit | null {
-  const data = wholeStack(straighten(ask.picture, rect, options));
+  return fitLook(ask, rect, wholeStack(straighten(ask.picture, rect, options)), spacingPx, from);
+}
+
+function fitLook(
+  ask: PlaceAsk,
+  rect: Rectangle,
+  data: BandData,
+  spacingPx: number,
+  from: StartValues | null,
+): PlaceFit | null {
   const how = { from, asItIs: false, rounds: LOOK_ROUNDS, zeroAtPx: null };
   const band = fitBands(data, spacingPx, ask.prior, lightLimits(ask.picture), nothing, how);
   return band === null ? null : { rect, band, tilt: fitTilt(band) };
@@ -262,19 +272,17 @@ const LEANINGS = 4;
 const LEAN_ENOUGH_DEG = 0.15;
 
 /** Turns the region by the phase of its bands until the fringes stand nearly square in it. */
-function leanIn(picture: Picture, rect: Rectangle, spacingPx: number): Rectangle {
+function leanIn(picture: Picture, rect: Rectangle, spacingPx: number): { rect: Rectangle; data: BandData } {
   let here = rect;
-  for (let i = 0; i < LEANINGS; i++) {
-    const lean = leanOfBands(
-      wholeStack(straighten(picture, here, gridFor(here, spacingPx, true))),
-      spacingPx,
-    );
-    if (lean === null) return here;
+  for (let i = 0; ; i++) {
+    const data = wholeStack(straighten(picture, here, gridFor(here, spacingPx, true)));
+    const lean = i < LEANINGS ? leanOfBands(data, spacingPx) : null;
+    if (lean === null) return { rect: here, data };
     const degrees = toDegrees(Math.atan(lean));
+    // What is left is measured with the fit.
+    if (Math.abs(degrees) < LEAN_ENOUGH_DEG) return { rect: here, data };
     here = { ...here, angleDeg: wrapAngleDeg(here.angleDeg - degrees) };
-    if (Math.abs(degrees) < LEAN_ENOUGH_DEG) return here;
   }
-  return here;
 }
 
 /** The region cut to the bands that carry the pattern and to the frame. */

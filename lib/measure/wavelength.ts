@@ -2,7 +2,6 @@ import type { BudgetRow, SetupValues } from '@/lib/domain/reading-result';
 import { vacuumFromAir } from '@/lib/quantity/air-index';
 import { combineBudget, type BudgetInput } from '@/lib/quantity/budget';
 import { wavelengthFromSpacing } from '@/lib/quantity/two-slit';
-import type { PictureFacts } from './band-stack';
 
 export interface Wavelength {
   airNm: number | null;
@@ -58,7 +57,11 @@ export function nearFieldRelative(widthUm: number, wavelengthNm: number, distanc
 }
 
 /** What the frame itself adds to the budget: each largest effect taken as a half width (rectangular, / sqrt 3). */
-export function frameEffects(picture: PictureFacts, setup: SetupValues, spacingPx: number): FrameEffect[] {
+export function frameEffects(
+  picture: { source: { colour: boolean } },
+  setup: SetupValues,
+  spacingPx: number,
+): FrameEffect[] {
   const { scaleUmPerPx: scale, separationUm: separation, distanceMm: distance, widthUm: width } = setup;
   if (!scale || !separation || !distance) return [];
   const airNm = wavelengthFromSpacing({

@@ -1,4 +1,4 @@
-import type { ReadingResult } from '@/lib/domain/reading-result';
+import type { FitResult } from '@/lib/domain/scan-result';
 import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
 import type { FitPreview } from '@/lib/domain/views';
 import { judge } from './verdict';
@@ -16,7 +16,7 @@ export interface ValueIn {
  * The value in the specification's medium (air without one). Uncertainties are scaled by the same index of air as
  * the value, λvac/λair. A source has no specification and gets no verdict.
  */
-export function valueIn(result: ReadingResult, specification: Specification | null): ValueIn {
+export function valueIn(result: FitResult, specification: Specification | null): ValueIn {
   const medium = specification?.medium ?? 'air';
   const valueNm = medium === 'air' ? result.wavelengthNm : result.wavelengthVacuumNm;
   if (valueNm === null || result.wavelengthNm === null) {
@@ -33,7 +33,7 @@ export function valueIn(result: ReadingResult, specification: Specification | nu
 }
 
 /** A fit as it is shown before it is kept. */
-export function previewOf(result: ReadingResult, specification: Specification | null): FitPreview {
+export function previewOf(result: FitResult, specification: Specification | null): FitPreview {
   const { medium, valueNm, expandedNm, judgement } = valueIn(result, specification);
   return { result, wavelengthNm: valueNm, expandedNm, medium, judgement };
 }

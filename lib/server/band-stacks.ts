@@ -2,7 +2,7 @@ import 'server-only';
 import { webcrypto } from 'node:crypto';
 import type { BandStackRow } from '@/models/band-stack';
 import { AppError } from '@/lib/domain/errors';
-import type { FitOptions, ReadingResult, StackPlan } from '@/lib/domain/reading-result';
+import type { FitOptions, ReadingResult, Region, StackPlan } from '@/lib/domain/reading-result';
 import type { FitFacts, RegionChange } from '@/lib/domain/views';
 import { stackCovers } from '@/lib/measure/band-stack';
 import { ENGINE_VERSION } from '@/lib/measure/engine-version';
@@ -15,6 +15,9 @@ import { stackInPool } from './measure-pool';
 import { originalKey, putObject, readObject, stackKey } from './storage';
 
 type FrameRow = Awaited<ReturnType<typeof loadFrame>>;
+
+/** A change of a picture's region. */
+type PictureChange = RegionChange & { region: Region };
 
 /** A band stack that is in the store, with its bytes. */
 export interface StoredStack {
@@ -58,7 +61,7 @@ export async function stackOfReading(
 export async function stackForRegion(
   frame: FrameRow,
   facts: FitFacts,
-  { region, leaveOut, zeroShift }: RegionChange,
+  { region, leaveOut, zeroShift }: PictureChange,
 ): Promise<StoredStack> {
   const text = canonicalJson(region);
   const row = await findRow(frame, facts, (plan) => canonicalJson(plan.region) === text);
@@ -75,7 +78,7 @@ export async function stackForRegion(
 export async function stackForFit(
   frame: FrameRow,
   facts: FitFacts,
-  wanted: RegionChange,
+  wanted: PictureChange,
   sha256: string | null,
 ): Promise<StoredStack> {
   const named = sha256 === null ? null : await namedStack(frame, facts, sha256);

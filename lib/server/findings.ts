@@ -1,5 +1,6 @@
 import 'server-only';
-import type { Finding, FindingWord, ReadingResult } from '@/lib/domain/reading-result';
+import type { Finding, FindingWord, ReadingResult, SetupValues } from '@/lib/domain/reading-result';
+import { isScanResult, type FitResult } from '@/lib/domain/scan-result';
 import type { Verdict } from '@/lib/domain/specification';
 
 const GRAVITY: Record<FindingWord, number> = { clear: 0, look: 1, stop: 2 };
@@ -12,7 +13,7 @@ export function gravest(findings: readonly Finding[]): { word: FindingWord; text
   }
   return worst
     ? { word: worst.word, text: worst.message }
-    : { word: 'clear', text: 'Nothing stands against this frame.' };
+    : { word: 'clear', text: 'Nothing stands against it.' };
 }
 
 const VERDICT_RISK: Record<Verdict, number> = { within: 0, undecided: 2, 'no-verdict': 2, outside: 3 };
@@ -22,8 +23,22 @@ export function riskOf(word: FindingWord, verdict: Verdict | null): number {
   return 10 * GRAVITY[word] + 7 * (verdict ? VERDICT_RISK[verdict] : 0);
 }
 
+/** Spacing and zero order as the columns of a reading: px of a frame with its scale, mm of a scan. */
+export function lengthColumns(result: FitResult, setup: SetupValues) {
+  if (isScanResult(result)) {
+    const { spacingMm, uSpacingMm, zeroOrder } = result;
+    return { spacingMm, uSpacingMm, zeroMm: zeroOrder.xMm };
+  }
+  return {
+    spacingPx: result.spacingPx,
+    uSpacingPx: result.uSpacingPx,
+    scaleUmPerPx: setup.scaleUmPerPx?.value ?? 0,
+    zeroAlongPx: zeroAlongPx(result),
+  };
+}
+
 /** Where the zero order lies on the region's long axis, px from its centre. */
-export function zeroAlongPx({ orders, zeroOrder, region }: ReadingResult): number {
+function zeroAlongPx({ orders, zeroOrder, region }: ReadingResult): number {
   const centre = orders.find((order) => order.m === 0);
   if (centre) return centre.alongPx;
   const angle = (region.angleDeg * Math.PI) / 180;

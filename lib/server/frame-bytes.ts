@@ -2,9 +2,11 @@ import 'server-only';
 import type { Readable } from 'node:stream';
 import { AppError } from '@/lib/domain/errors';
 import { FRAME_STEPS } from '@/lib/domain/life-cycle';
+import type { ScanDrawing } from '@/lib/domain/scan-result';
 import { ENGINE_VERSION } from '@/lib/measure/engine-version';
 import { loadFrame } from './frame-facts';
-import { previewInPool } from './measure-pool';
+import { drawScanInPool, previewInPool } from './measure-pool';
+import { isScan } from './scan-frames';
 import { openObject, originalKey, previewKey, putObject, readObject } from './storage';
 
 /** The bytes of a frame as received. Throws NOT_FOUND while they are not in the store. */
@@ -19,7 +21,9 @@ export async function frameOriginal(
 
 /** The small picture of a frame, made when it is first asked for. Its tag changes with the engine that drew it. */
 export async function framePhoto(frameId: number): Promise<{ webp: Uint8Array<ArrayBuffer>; tag: string }> {
-  const { sha256, state } = await loadFrame(frameId);
+  const frame = await loadFrame(frameId);
+  if (isScan(frame)) throw new AppError('NOT_FOUND', 'This frame is a line scan, no picture.');
+  const { sha256, state } = frame;
   const tag = `"${sha256.slice(0, 32)}-${ENGINE_VERSION}"`;
   const key = previewKey(sha256, ENGINE_VERSION);
   const kept = await readObject(key);
@@ -32,4 +36,19 @@ export async function framePhoto(frameId: number): Promise<{ webp: Uint8Array<Ar
   if (!picture) throw new AppError('NOT_FOUND', 'This file cannot be shown as a picture.');
   await putObject(key, picture.webp, picture.webp.length, 'image/webp');
   return { webp: new Uint8Array(picture.webp), tag };
+}
+
+/** The line scan of a frame; `draw` reads it. Throws NOT_FOUND where the frame is no scan or the file gives none. */
+export async function frameScan(
+  frameId: number,
+): Promise<{ sha256: string; draw: () => Promise<ScanDrawing> }> {
+  const frame = await loadFrame(frameId);
+  if (!isScan(frame)) throw new AppError('NOT_FOUND', 'This frame is a picture, no line scan.');
+  const draw = async () => {
+    const bytes = await readObject(originalKey(frame.sha256));
+    const drawing = bytes ? await drawScanInPool(bytes) : null;
+    if (!drawing) throw new AppError('NOT_FOUND', 'The file of this frame gives no scan.');
+    return drawing;
+  };
+  return { sha256: frame.sha256, draw };
 }

@@ -2,6 +2,7 @@ import 'server-only';
 import { Piscina } from 'piscina';
 import type { FitOptions, FrameAnswer, Refusal, SetupValues } from '@/lib/domain/reading-result';
 import type { ScaleAnswer, ScaleKind, ScaleRefusal } from '@/lib/domain/scale-result';
+import type { ScanAnswer, ScanDrawing, ScanOptions } from '@/lib/domain/scan-result';
 import { env } from './env';
 
 export interface PreviewPicture {
@@ -62,6 +63,25 @@ export async function refitInPool(
     { transferList: [stack.buffer] },
   );
   return answer as FrameAnswer;
+}
+
+/** Fits one line scan. The bytes are handed over. */
+export async function analyseScanInPool(
+  bytes: Uint8Array<ArrayBuffer>,
+  setup: SetupValues,
+  options: ScanOptions,
+): Promise<ScanAnswer> {
+  const answer: unknown = await pool().run(
+    { task: 'scan', bytes, setup, options },
+    { transferList: [bytes.buffer] },
+  );
+  return answer as ScanAnswer;
+}
+
+/** A whole scan to be drawn, or null when the file is none. The bytes are handed over. */
+export async function drawScanInPool(bytes: Uint8Array<ArrayBuffer>): Promise<ScanDrawing | null> {
+  const answer: unknown = await pool().run({ task: 'scan-drawing', bytes }, { transferList: [bytes.buffer] });
+  return answer as ScanDrawing | null;
 }
 
 /** The frame as a person sees it, or null when the file is no picture. The bytes are handed over. */

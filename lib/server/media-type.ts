@@ -1,17 +1,20 @@
 import 'server-only';
 import { AppError } from '@/lib/domain/errors';
+import { SCAN_MEDIA_TYPE } from '@/lib/domain/scan-result';
+import { looksLikeScan, textOf } from '@/lib/measure/read-scan';
 
-/** As many bytes as it takes to tell the kinds of file apart. */
-export const FIRST_BYTES = 16;
+/** As many bytes as it takes to tell the kinds of file apart: a scan may begin with a long heading. */
+export const FIRST_BYTES = 8192;
 
 const HEIC_BRANDS = ['heic', 'heix', 'hevc', 'hevx', 'heim', 'heis', 'mif1', 'msf1'];
 
 /**
  * The media type by a file's first bytes, never by its name. PNG (ISO/IEC 15948), JPEG (ISO/IEC 10918), TIFF 6.0
- * in both byte orders, WebP (RFC 9649). Throws NOT_A_PICTURE with what to do otherwise.
+ * in both byte orders, WebP (RFC 9649); a text that begins with two columns of numbers is a line scan (RFC 4180's type).
+ * Throws NOT_A_PICTURE with what to do otherwise.
  */
 export function mediaTypeOf(first: Uint8Array): string {
-  const text = Buffer.from(first).toString('latin1');
+  const text = Buffer.from(first.subarray(0, 16)).toString('latin1');
   if (text.startsWith('\x89PNG\r\n\x1a\n')) return 'image/png';
   if (text.startsWith('\xff\xd8\xff')) return 'image/jpeg';
   if (text.startsWith('II*\0') || text.startsWith('MM\0*')) return 'image/tiff';
@@ -24,6 +27,13 @@ export function mediaTypeOf(first: Uint8Array): string {
   }
   if (first.length === 0)
     throw new AppError('NOT_A_PICTURE', 'This file is empty. Copy it from the camera again.');
+  const words = textOf(first);
+  if (words !== null && looksLikeScan(words)) return SCAN_MEDIA_TYPE;
+  if (words !== null)
+    throw new AppError(
+      'NOT_A_PICTURE',
+      'This file is neither a picture nor a line scan: it is a text without a line of two numbers. Save a scan as two columns, position in mm and intensity, or a frame as PNG, JPEG, TIFF or WebP.',
+    );
   throw new AppError(
     'NOT_A_PICTURE',
     'This file is not a PNG, JPEG, TIFF or WebP picture. Save the frame as one of these, best as TIFF or PNG with 16 bits.',

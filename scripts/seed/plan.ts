@@ -1,7 +1,8 @@
 import { PLAIN_CAMERA, type Camera } from '../simulator/camera';
 import type { FileKind } from '../simulator/encode';
-import type { FramePlan } from '../simulator/families';
+import type { FramePlan } from '../simulator/family';
 import { random, type Random } from '../simulator/random';
+import type { ScanPlan } from '../simulator/scan';
 import { PLAIN_SCENE, type Scene } from '../simulator/scene';
 
 /**
@@ -19,7 +20,7 @@ export interface DemoFrame {
   bench: number;
   fileName: string;
   subject: { kind: 'source' } | { kind: 'unit'; lot: string; serial: string };
-  plan: FramePlan;
+  plan: FramePlan | ScanPlan;
   /** Cut the file off after this share of its bytes. */
   cutAt?: number;
   fate: Fate;
@@ -310,8 +311,34 @@ function units(r: Random): DemoFrame[] {
   return frames;
 }
 
+/** Two modules measured with a counter on a slide instead of the camera, in front of the same bench. */
+function scans(): DemoFrame[] {
+  const r = random(20_261_202);
+  const red = serialsOf(DEMO_LOTS[1]);
+  const scan = (serial: string, daysAgo: number, fate: Fate, wavelengthNm: number, detectorMm: number) => ({
+    daysAgo,
+    bench: 1,
+    fate,
+    by: 0 as const,
+    fileName: `b2-0931-${serial}-scan.csv`,
+    subject: { kind: 'unit' as const, lot: '0931', serial },
+    plan: {
+      scene: { ...truth(1, daysAgo, r), envelopeShiftPx: 0.4, wavelengthNm },
+      fromMm: -36,
+      toMm: 36,
+      stepMm: 0.2,
+      zeroMm: r.between(-2, 2),
+      detectorMm,
+      peakCounts: 26_000,
+      dark: 900,
+      seed: r.integer(1, 2 ** 30),
+    },
+  });
+  return [scan(red[21], 6.1, 'accept', 635.1, 0.5), scan(red[22], 0.7, 'review', 634.3, 1.5)];
+}
+
 /** All frames of the demo, oldest first. */
 export function demoFrames(): DemoFrame[] {
   const r = random(20_261_201);
-  return [...references(r), ...units(r)].sort((a, b) => b.daysAgo - a.daysAgo);
+  return [...references(r), ...units(r), ...scans()].sort((a, b) => b.daysAgo - a.daysAgo);
 }

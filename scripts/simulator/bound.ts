@@ -1,12 +1,13 @@
 import { fullScale, countsPerElectron, grainAreaPx, noiseVariance, type Camera } from './camera';
-import { bandAt, rangeOfU, strayAt, Table, trueSpacingPx, type Scene } from './scene';
+import { bandAt, rangeOfU, strayAt, Table, trueSpacingPx, unfanned, type Scene } from './scene';
 
 /**
  * Cramér–Rao bound of the spacing (and of the order centres) of one simulated frame: the inverse of
  * J = Σ (∂μ/∂p)(∂μ/∂p)ᵀ / σ² over every unclipped pixel, μ and σ² the true mean and noise of that pixel.
  *
  * Unknown, as in any fit: spacing, zero order, tilt, envelope width and middle, visibility, a brightness for
- * every row, background constant and slope, and the curvature s/L with the prior the bench states.
+ * every line of pixels across the fringes (row, or column where the fringes lie), background constant and slope
+ * across the fringes, and the curvature s/L with the prior the bench states.
  * Grain enters as what it is on scales beyond its own size: noise of (contrast · signal)² per grain, so that a
  * pixel of a grain of area a counts with a times that variance. Compression, demosaicing and dirt are not in it.
  */
@@ -95,24 +96,30 @@ function accumulate(scene: Scene, camera: Camera, mean: Table, tables: [number, 
   const row = new Float64Array(COUNT * COUNT);
   const withBrightness = new Float64Array(COUNT);
   const g = new Float64Array(COUNT);
-  for (let r = 0; r < scene.heightPx; r += 1) {
+  // Lines that run across the fringes: with one brightness for each, along the fringes nothing else is known.
+  const lying = Math.abs(sin) > Math.abs(cos);
+  const lines = lying ? scene.widthPx : scene.heightPx;
+  const length = lying ? scene.heightPx : scene.widthPx;
+  for (let line = 0; line < lines; line += 1) {
     row.fill(0);
     withBrightness.fill(0);
     let brightness = 0;
-    for (let c = 0; c < scene.widthPx; c += 1) {
+    for (let k = 0; k < length; k += 1) {
+      const c = lying ? line : k;
       const x = c + 0.5 - scene.zeroXPx;
-      const y = r + 0.5 - scene.zeroYPx;
-      const u = x * cos + y * sin;
+      const y = (lying ? k : line) + 0.5 - scene.zeroYPx;
       const v = -x * sin + y * cos;
+      const u = unfanned(scene, x * cos + y * sin, v);
       const lit = bandAt(scene, v);
       const light = mean.at(u);
       const signal = counts * (lit * light + strayAt(scene, c + 0.5));
       if (signal + camera.offsetCounts >= full) continue;
       const weight = 1 / (noiseVariance(camera, signal) + grain * (counts * lit * light) ** 2);
       for (const [index, t] of tables) g[index] = counts * lit * t.at(u);
-      g[TILT] = -g[ZERO] * v;
+      // Turning moves fringes and envelope alike.
+      g[TILT] = -(g[ZERO] + g[MIDDLE]) * v;
       g[CONSTANT] = counts;
-      g[SLOPE] = counts * (c / scene.widthPx - 0.5);
+      g[SLOPE] = (counts * u) / length;
       const gain = counts * lit * light;
       brightness += weight * gain * gain;
       for (let i = 0; i < COUNT; i += 1) {

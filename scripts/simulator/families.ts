@@ -1,135 +1,6 @@
-import type { RefusalCode, SetupValues } from '@/lib/domain/reading-result';
-import { PLAIN_CAMERA, type Camera } from './camera';
-import type { FileKind } from './encode';
-import { ghost, NO_FRINGES, penLine, ruledPaper, screenEdge, vignetting, type Paint } from './paintings';
-import { random, type Random } from './random';
-import { PLAIN_SCENE, trueSpacingPx, type Scene } from './scene';
-
-/** One frame to make: everything that decides its bytes. */
-export interface FramePlan {
-  scene: Scene;
-  camera: Camera;
-  kind: FileKind;
-  quality?: number;
-  orientation?: number;
-  paints?: Paint[];
-}
-
-/** What the benchmark asks of a family; see the table in DEVELOPERS.md. */
-export interface Family {
-  name: string;
-  frames: number;
-  /** √mean (error / bound)² at most; null where only the other figures count. */
-  efficiency: number | null;
-  /** Least and most coverage of the 95 % interval. */
-  coverage: [number, number];
-  /** Least share of answered frames. */
-  answered: number;
-  /** A wrong answer is off by more than 6 u and more than this share of the spacing. */
-  wrongBeyond: number;
-  /** Order centres are held against their bound. */
-  orders: boolean;
-  plan: (seed: number) => FramePlan;
-}
-
-/** A family whose frames must all be refused, each with one of these codes. */
-export interface Hopeless {
-  name: string;
-  codes: RefusalCode[];
-  plan: (seed: number) => FramePlan;
-}
-
-/** The standard uncertainties every simulated bench states. */
-export const BENCH_U = { separationUm: 0.1, scaleRelative: 1e-4, distanceMm: 0.17 };
-
-export function setupOf(scene: Scene): SetupValues {
-  return {
-    scaleUmPerPx: { value: scene.scaleUmPerPx, u: scene.scaleUmPerPx * BENCH_U.scaleRelative },
-    separationUm: { value: scene.separationUm, u: BENCH_U.separationUm },
-    widthUm: { value: scene.widthUm, u: 0.4 },
-    distanceMm: { value: scene.distanceMm, u: BENCH_U.distanceMm },
-  };
-}
-
-export function curvatureU(scene: Scene): number {
-  return Math.hypot(BENCH_U.scaleRelative, BENCH_U.distanceMm / scene.distanceMm);
-}
-
-/** Sets the scale so that a fringe has this many px. */
-function withSpacing(scene: Scene, px: number): Scene {
-  return { ...scene, scaleUmPerPx: (scene.scaleUmPerPx * trueSpacingPx(scene)) / px };
-}
-
-function plain(r: Random): Scene {
-  const widthPx = 1024;
-  const heightPx = 192;
-  const constant = r.between(0, 0.04);
-  const scene: Scene = {
-    ...PLAIN_SCENE,
-    widthPx,
-    heightPx,
-    wavelengthNm: r.between(440, 690),
-    widthUm: r.between(32, 62),
-    zeroXPx: widthPx / 2 + r.between(-60, 60),
-    zeroYPx: heightPx / 2 + r.between(-15, 15),
-    visibility: r.between(0.85, 0.98),
-    envelopeShiftPx: r.between(-4, 4),
-    tiltDeg: r.between(-0.3, 0.3),
-    bandHalfPx: r.uniform() < 0.5 ? Infinity : r.between(60, 90),
-    stray: {
-      constant,
-      // Light is never less than none, so its slope is at most what the constant part leaves room for.
-      slope: r.between(-1, 1) * Math.min(0.02, 2 * constant),
-      hump: 0,
-      humpXPx: 0,
-      humpSigmaPx: 1,
-    },
-  };
-  return withSpacing(scene, r.between(45, 130));
-}
-
-function camera(r: Random, change: Partial<Camera> = {}): Camera {
-  return {
-    ...PLAIN_CAMERA,
-    seed: r.integer(1, 2 ** 31),
-    peakElectrons: r.between(6000, 20_000),
-    peakShare: r.between(0.55, 0.85),
-    ...change,
-  };
-}
-
-const STRICT: Pick<Family, 'frames' | 'coverage' | 'answered' | 'wrongBeyond'> = {
-  frames: 200,
-  coverage: [0.92, 0.98],
-  answered: 0.98,
-  wrongBeyond: 1e-4,
-};
-const LOOSE = { ...STRICT, coverage: [0.9, 1] as [number, number] };
-
-function family(
-  name: string,
-  rules: Partial<Family>,
-  make: (r: Random) => {
-    scene: Scene;
-    camera: Camera;
-    kind?: FileKind;
-    quality?: number;
-    orientation?: number;
-    paints?: Paint[];
-  },
-): Family {
-  return {
-    ...STRICT,
-    efficiency: 1.1,
-    orders: false,
-    name,
-    ...rules,
-    plan: (seed) => {
-      const r = random(seed * 7919 + name.length * 104_729 + name.charCodeAt(0));
-      return { kind: 'tiff', ...make(r) };
-    },
-  };
-}
+import { camera, family, LOOSE, plain, withSpacing, type Family } from './family';
+import { ghost, parasiticFringes, penLine, ruledPaper, screenEdge, vignetting } from './paintings';
+import { trueSpacingPx, type Scene } from './scene';
 
 export const FAMILIES: Family[] = [
   family('clean', { orders: true }, (r) => ({ scene: plain(r), camera: camera(r) })),
@@ -333,54 +204,34 @@ export const FAMILIES: Family[] = [
     const scene = { ...plain(r), heightPx: 480, zeroYPx: 240, bandHalfPx: Infinity, tiltDeg: 0 };
     return { scene, camera: camera(r), paints: [penLine(r, trueSpacingPx(scene))] };
   }),
-];
-
-const hopeless = (
-  name: string,
-  codes: RefusalCode[],
-  change: (r: Random) => { scene?: Partial<Scene>; camera?: Partial<Camera>; paints?: Paint[] },
-): Hopeless => ({
-  name,
-  codes,
-  plan: (seed) => {
-    const r = random(seed * 6007 + name.length * 31);
-    const base = plain(r);
-    const asked = change(r);
-    return {
-      scene: { ...base, ...asked.scene },
-      camera: camera(r, asked.camera),
-      kind: 'tiff',
-      paints: asked.paints,
-    };
-  },
-});
-
-export const HOPELESS: Hopeless[] = [
-  hopeless('single slit', ['ONE_SLIT', 'NO_FRINGES'], (r) => ({
-    scene: { pattern: 'one', widthUm: r.between(40, 250) },
-  })),
-  hopeless('single slit, burnt out middle', ['ONE_SLIT', 'NO_FRINGES', 'BURNT_OUT'], (r) => ({
-    scene: { pattern: 'one', widthUm: r.between(120, 250) },
-    camera: { peakShare: 6 },
-  })),
-  hopeless('five slits', ['MANY_SLITS', 'NO_FRINGES'], () => ({ scene: { pattern: 'five' } })),
-  hopeless('rings', ['RINGS', 'NO_FRINGES'], (r) => ({
-    scene: { pattern: 'rings', heightPx: 700, zeroYPx: r.between(250, 450) },
-  })),
-  hopeless('noise only', ['NO_FRINGES', 'TOO_DARK'], () => ({ scene: { visibility: 0, widthUm: 0.01 } })),
-  hopeless('black', ['TOO_DARK', 'NO_FRINGES'], () => ({ camera: { peakShare: 0.0002, peakElectrons: 2 } })),
-  hopeless('burnt out', ['BURNT_OUT', 'NO_FRINGES'], () => ({
-    scene: { stray: { constant: 3, slope: 0, hump: 0, humpXPx: 0, humpSigmaPx: 1 } },
-  })),
-  hopeless('two fringes', ['TOO_FEW_FRINGES', 'NO_FRINGES', 'PATTERN_CUT'], (r) => {
-    const base = withSpacing(PLAIN_SCENE, 1024 / r.between(1.2, 2));
-    return { scene: { scaleUmPerPx: base.scaleUmPerPx, wavelengthNm: 635 } };
+  family('unequal slits', { ...LOOSE, efficiency: null }, (r) => {
+    const scene = plain(r);
+    const ratio = 1 + (r.uniform() < 0.5 ? -1 : 1) * r.between(0.05, 0.25);
+    return { scene: { ...scene, secondWidthUm: scene.widthUm * ratio }, camera: camera(r) };
   }),
-  ...Object.entries(NO_FRINGES).map(([name, paint]) =>
-    hopeless(name, ['NO_FRINGES', 'MANY_SLITS', 'RINGS', 'ONE_SLIT', 'TOO_FEW_FRINGES'], (r) => ({
-      scene: { widthPx: 900, heightPx: 600, zeroYPx: 300 },
-      camera: { bits: 8, offsetCounts: 3 },
-      paints: [paint(r)],
-    })),
-  ),
+  family('bandwidth', { ...LOOSE, efficiency: null }, (r) => {
+    // Narrow slits and many orders, so that the contrast's fall with order can be seen.
+    const scene = { ...plain(r), widthUm: r.between(14, 28), lineWidthNm: r.between(8, 25) };
+    return { scene: withSpacing(scene, r.between(26, 45)), camera: camera(r) };
+  }),
+  family('second fringe system', { ...LOOSE, efficiency: null, wrongBeyond: 1e-3 }, (r) => {
+    const scene = plain(r);
+    const ratio = r.uniform() < 0.4 ? r.between(0.8, 0.94) : r.between(1.07, 1.4);
+    return { scene, camera: camera(r), paints: [parasiticFringes(r, ratio * trueSpacingPx(scene))] };
+  }),
+  family('keystone', { ...LOOSE, efficiency: null }, (r) => {
+    const scene = { ...plain(r), heightPx: 256, zeroYPx: 128 };
+    const change = (r.uniform() < 0.5 ? -1 : 1) * r.between(0.005, 0.03);
+    return { scene: { ...scene, keystonePerPx: change / scene.heightPx }, camera: camera(r) };
+  }),
+  family('small frames', { answered: 0.9 }, (r) => {
+    const scene = {
+      ...plain(r),
+      widthPx: 400,
+      heightPx: 100,
+      zeroXPx: 200 + r.between(-30, 30),
+      zeroYPx: 50 + r.between(-10, 10),
+    };
+    return { scene: withSpacing(scene, r.between(16, 45)), camera: camera(r) };
+  }),
 ];

@@ -77,6 +77,19 @@ export function penLine(r: Random, spacingPx: number): Paint {
   };
 }
 
+/** Weak fringes of a cover glass or window: the light times 1 + c·cos(2π·u/Λ′ + φ), c 1 to 5 %, nearly along the others. */
+export function parasiticFringes(r: Random, periodPx: number): Paint {
+  const contrast = r.between(0.01, 0.05);
+  const phase = r.between(0, 2 * Math.PI);
+  const lean = (r.between(-4, 4) * Math.PI) / 180;
+  return (mean, scene) => {
+    const angle = (scene.tiltDeg * Math.PI) / 180 + lean;
+    const kx = (2 * Math.PI * Math.cos(angle)) / periodPx;
+    const ky = (2 * Math.PI * Math.sin(angle)) / periodPx;
+    each(mean, scene, (x, y, light) => light * (1 + contrast * Math.cos(kx * x + ky * y + phase)));
+  };
+}
+
 /** The screen's edge: beyond it the room. */
 export function screenEdge(r: Random): Paint {
   const at = r.between(0.03, 0.12);

@@ -29,6 +29,8 @@ export interface Scene {
   stray: { constant: number; slope: number; hump: number; humpXPx: number; humpSigmaPx: number };
   /** Projective shortening along the fringe normal: X = s·u/(1 − q·u), u from the zero order, q in 1/px. */
   obliquePerPx: number;
+  /** Fringes that fan out, from a view oblique along them: u·1/(1 − k·v) in place of u, v along the fringes from the zero order, k in 1/px. */
+  keystonePerPx?: number;
   /** 'two' slits; 'one', 'five' or 'rings' for frames that must be refused. */
   pattern: 'two' | 'one' | 'five' | 'rings';
 }
@@ -89,6 +91,16 @@ export function trueSpacingPx(scene: Scene): number {
   return (scene.wavelengthNm * scene.distanceMm) / (scene.separationUm * scene.scaleUmPerPx);
 }
 
+/** The spacing at v px along the fringes from the zero order: Λ·(1 − k·v). */
+export function spacingAtPx(scene: Scene, v: number): number {
+  return trueSpacingPx(scene) * (1 - (scene.keystonePerPx ?? 0) * v);
+}
+
+/** Where a point seen at (u, v) would stand without keystone: u/(1 − k·v). */
+export function unfanned(scene: Scene, u: number, v: number): number {
+  return u / (1 - (scene.keystonePerPx ?? 0) * v);
+}
+
 /** Where order m stands, px from the zero order along the fringe normal. */
 export function trueOrderPx(scene: Scene, m: number): number {
   const mm = scene.distanceMm * Math.tan(Math.asin((m * scene.wavelengthNm * 1e-3) / scene.separationUm));
@@ -147,7 +159,11 @@ export function rangeOfU(scene: Scene): { from: number; to: number } {
     [scene.widthPx, 0],
     [0, scene.heightPx],
     [scene.widthPx, scene.heightPx],
-  ].map(([x, y]) => (x - scene.zeroXPx) * Math.cos(t) + (y - scene.zeroYPx) * Math.sin(t));
+  ].map(([cx, cy]) => {
+    const x = cx - scene.zeroXPx;
+    const y = cy - scene.zeroYPx;
+    return unfanned(scene, x * Math.cos(t) + y * Math.sin(t), -x * Math.sin(t) + y * Math.cos(t));
+  });
   return { from: Math.min(...corners) - 4, to: Math.max(...corners) + 4 };
 }
 
@@ -173,7 +189,8 @@ export function renderMean(scene: Scene): Float32Array {
         const y = r + 0.5 + GAUSS[j] - scene.zeroYPx;
         for (let i = 0; i < 3; i += 1) {
           const x = c + 0.5 + GAUSS[i] - scene.zeroXPx;
-          const light = table ? table.at(x * cos + y * sin) : ringsAt(scene, Math.hypot(x, y));
+          const u = unfanned(scene, x * cos + y * sin, -x * sin + y * cos);
+          const light = table ? table.at(u) : ringsAt(scene, Math.hypot(x, y));
           sum += WEIGHT[i] * WEIGHT[j] * light;
         }
       }

@@ -1,4 +1,6 @@
 import type { Browser, Page, Request } from 'playwright-core';
+import { PLAIN_SCENE } from '@/scripts/simulator/scene';
+import { scanText, type ScanPlan } from '@/scripts/simulator/scan';
 import { Desk, fixture, openBrowser, PASSWORD, SITE } from './support/browser';
 
 /**
@@ -15,6 +17,19 @@ const EMAIL = {
   qa: 'qa@story.example',
 };
 const TRUE_NM = 635;
+
+/** An invented counter on a slide before the same bench: 1.27 mm from fringe to fringe. */
+const SCAN: ScanPlan = {
+  scene: { ...PLAIN_SCENE, wavelengthNm: TRUE_NM },
+  fromMm: -8,
+  toMm: 8,
+  stepMm: 0.05,
+  zeroMm: 0.4,
+  detectorMm: 0.2,
+  peakCounts: 30_000,
+  dark: 300,
+  seed: 20_261_203,
+};
 
 describe('the main job', () => {
   let browser: Browser;
@@ -209,6 +224,50 @@ describe('the main job', () => {
     if (await send.count()) await send.click();
     await page
       .getByText(/sent to review/)
+      .first()
+      .waitFor();
+  });
+
+  test('a line scan is asked for its detector, fitted in mm, corrected on its page and sent to review', async () => {
+    const { page } = technician;
+    const input = page.locator('input[type=file][multiple]').first();
+    const row = page.getByRole('listitem').filter({ hasText: 'U-104 scan.csv' });
+    await input.setInputFiles([
+      { name: 'U-104 scan.csv', mimeType: 'text/csv', buffer: Buffer.from(scanText(SCAN)) },
+      { name: 'U-103 table.csv', mimeType: 'text/csv', buffer: Buffer.from('unit,verdict\nU-103,within\n') },
+    ]);
+    await page
+      .getByRole('listitem')
+      .filter({ hasText: 'U-103 table.csv' })
+      .getByText(/neither a picture nor a line scan/)
+      .waitFor();
+    await page.getByText('1 line scan').waitFor();
+    await technician.expectAccessible();
+    await page.getByLabel('Width of the detector, mm').fill('0,3');
+    await page.getByRole('button', { name: 'Add the scan' }).click();
+    await row.getByText('Fitted', { exact: true }).waitFor({ timeout: 60_000 });
+    await row.getByText(/0\.3 mm detector/).waitFor();
+
+    await row.getByRole('link', { name: 'U-104' }).click();
+    await page.waitForURL(/\/frames\/\d+/);
+    const value = page.locator('.qty.result b').first();
+    const shown = async () => Number((await value.innerText()).replace(/\s/g, ''));
+    expect(Math.abs((await shown()) - TRUE_NM)).toBeLessThan(1);
+    await page.getByRole('img', { name: 'Scan U-104 scan.csv' }).waitFor();
+    await technician.expectAccessible();
+
+    await page.getByRole('slider', { name: 'Left jaw' }).press('Shift+ArrowRight');
+    await page.getByLabel(/^Width of the detector/).fill('0.2');
+    await page.getByLabel(/^Width of the detector/).press('Enter');
+    await page.getByRole('button', { name: 'Keep this region' }).click();
+    await page.waitForURL(/reading=\d+/);
+    expect(await page.getByLabel('From, mm').inputValue()).toBe('−7.0');
+    expect(Math.abs((await shown()) - TRUE_NM)).toBeLessThan(1);
+    const note = page.getByLabel('Note for the reviewer');
+    if (await note.isVisible()) await note.fill('A scan, taken with the counter.');
+    await page.getByRole('button', { name: /^Send to review/ }).click();
+    await page
+      .getByText(/to review/i)
       .first()
       .waitFor();
   });

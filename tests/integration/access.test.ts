@@ -8,6 +8,7 @@ import { POST as upload } from '@/app/api/upload/route';
 import { GET as status } from '@/app/api/frames/status/route';
 import { GET as original } from '@/app/api/frames/[id]/original/route';
 import { GET as photo } from '@/app/api/frames/[id]/photo/route';
+import { GET as scan } from '@/app/api/frames/[id]/scan/route';
 import { POST as previewFit } from '@/app/api/frames/[id]/preview-fit/route';
 import { GET as stack, POST as newStack } from '@/app/api/frames/[id]/stack/route';
 import { GET as overTimeCsv } from '@/app/api/over-time/route';
@@ -40,6 +41,7 @@ const MATRIX: Record<string, Who[]> = {
   'GET status': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   'GET photo': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   'GET original': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  'GET scan': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   'POST preview-fit': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'POST stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
@@ -121,6 +123,7 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     'GET status': () => route(status, 'GET', '/api/frames/status?ids=4000000'),
     'GET photo': () => route(photo, 'GET', '/api/frames/4000000/photo'),
     'GET original': () => route(original, 'GET', '/api/frames/4000000/original'),
+    'GET scan': () => route(scan, 'GET', '/api/frames/4000000/scan'),
     'POST preview-fit': () =>
       route(previewFit, 'POST', '/api/frames/4000000/preview-fit', JSON.stringify({ region })),
     'GET stack': () => route(stack, 'GET', '/api/frames/4000000/stack?reading=4000000&engine=x'),

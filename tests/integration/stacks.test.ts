@@ -3,6 +3,7 @@ import { S3Client } from '@aws-sdk/client-s3';
 import { POST as upload } from '@/app/api/upload/route';
 import { GET, POST } from '@/app/api/frames/[id]/stack/route';
 import type { FitOptions, ReadingResult, Region } from '@/lib/domain/reading-result';
+import { isScanResult } from '@/lib/domain/scan-result';
 import { fitFrame } from '@/lib/server/commands/fit-frame';
 import { keepFit } from '@/lib/server/commands/keep-fit';
 import { storeReading } from '@/lib/server/commands/store-reading';
@@ -47,7 +48,10 @@ async function receive(seed: number, name: string): Promise<number> {
 async function shownOf(id: number) {
   const frame = await findFrame(id, null);
   if (!frame?.shown) throw new Error('The frame has no reading.');
-  return { frame, shown: frame.shown };
+  const { shown } = frame;
+  const { result } = shown;
+  if (isScanResult(result)) throw new Error('This is a scan.');
+  return { frame, shown: { ...shown, result } };
 }
 
 interface Asked {

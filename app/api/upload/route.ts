@@ -18,7 +18,7 @@ export const POST = defineRoute({
     if (!Number.isInteger(declaredBytes))
       throw new AppError('BAD_INPUT', 'The upload does not say how large the file is.');
     if (declaredBytes > LIMITS.fileBytes) throw tooLarge();
-    const { name, benchId, lotId, serial, sourceId } = input;
+    const { name, benchId, lotId, serial, sourceId, detectorMm } = input;
     const body = bodyOf(request);
     try {
       const { frameId, sameAs } = await receiveFrame(context, {
@@ -27,6 +27,7 @@ export const POST = defineRoute({
         lotId,
         serial,
         sourceId,
+        detectorMm,
         declaredBytes,
         body,
       });

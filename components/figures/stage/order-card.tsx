@@ -5,6 +5,8 @@ import type { StageOrder } from './stage-data';
 
 interface Props {
   order: StageOrder;
+  /** Unit of the fit's own lengths. */
+  unit: 'px' | 'mm';
   out: boolean;
   top: number;
   side: 'left' | 'right';
@@ -13,7 +15,7 @@ interface Props {
 }
 
 /** What the reading line crosses: centre, its uncertainty, the pull, and whether the fit uses it. */
-export function OrderCard({ order, out, top, side, onToggle, onZero }: Props) {
+export function OrderCard({ order, unit, out, top, side, onToggle, onZero }: Props) {
   return (
     <div className="order-card" style={{ top, [side]: 0 }} role="status">
       <dl>
@@ -22,7 +24,9 @@ export function OrderCard({ order, out, top, side, onToggle, onZero }: Props) {
         <dt>centre</dt>
         <dd>{formatSigned(order.mm, 3)} mm</dd>
         <dt>u of centre</dt>
-        <dd>{formatNumber(order.uPx, 3)} px</dd>
+        <dd>
+          {formatNumber(order.u, unit === 'px' ? 3 : 4)} {unit}
+        </dd>
         <dt>pull</dt>
         <dd>{order.pullMm === null ? 'no raw middle' : `${formatSigned(order.pullMm, 3)} mm`}</dd>
       </dl>

@@ -8,14 +8,17 @@ import type { StageOrder } from './stage-data';
 
 interface Props {
   orders: readonly StageOrder[];
+  /** Unit of the fit's own lengths. */
+  unit: 'px' | 'mm';
   leaveOut: readonly number[];
   /** Where its button stands on the stage, px. */
   top: number;
 }
 
 /** The order centres of the stage as a table, opened on demand. */
-export function OrderTable({ orders, leaveOut, top }: Props) {
+export function OrderTable({ orders, unit, leaveOut, top }: Props) {
   const [open, setOpen] = useState(false);
+  const [places, uPlaces] = unit === 'px' ? [2, 3] : [3, 4];
   return (
     <>
       <button type="button" className="stage-word stage-table" style={{ top }} onClick={() => setOpen(true)}>
@@ -29,16 +32,16 @@ export function OrderTable({ orders, leaveOut, top }: Props) {
                 <th scope="col">Order</th>
                 <th scope="col">Kind</th>
                 <th scope="col" className="num">
-                  x, y in px
+                  {unit === 'px' ? 'x, y in px' : 'Position, mm'}
                 </th>
                 <th scope="col" className="num">
                   From zero, mm
                 </th>
                 <th scope="col" className="num">
-                  u, px
+                  u, {unit}
                 </th>
                 <th scope="col" className="num">
-                  Pull, px
+                  Pull, {unit}
                 </th>
                 <th scope="col">In the fit</th>
               </tr>
@@ -51,11 +54,13 @@ export function OrderTable({ orders, leaveOut, top }: Props) {
                     <td>{orderName(order.m)}</td>
                     <td>{order.kind}</td>
                     <td className="num whitespace-nowrap">
-                      {formatNumber(order.xPx, 2)}, {formatNumber(order.yPx, 2)}
+                      {order.at.map((v) => formatNumber(v, places)).join(', ')}
                     </td>
                     <td className="num">{formatSigned(order.mm, 3)}</td>
-                    <td className="num">{formatNumber(order.uPx, 3)}</td>
-                    <td className="num">{order.pullPx === null ? 'none' : formatSigned(order.pullPx, 3)}</td>
+                    <td className="num">{formatNumber(order.u, uPlaces)}</td>
+                    <td className="num">
+                      {order.pull === null ? 'none' : formatSigned(order.pull, uPlaces)}
+                    </td>
                     <td>{isOut(order, leaveOut) ? 'left out' : 'yes'}</td>
                   </tr>
                 ))}

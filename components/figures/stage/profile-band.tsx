@@ -1,5 +1,4 @@
 import { memo } from 'react';
-import { formatPercent } from '@/lib/quantity/format';
 import type { StagePoint } from './stage-data';
 import { dotsPath, linePath, type Scale } from './paths';
 
@@ -8,7 +7,8 @@ interface Props {
   /** Every how many-th point is drawn as a dot. */
   every: number;
   top: number;
-  peakShare: number;
+  /** How high the brightest fringe stands, in words. */
+  peak: string;
   x: Scale;
   width: number;
   from: number;
@@ -21,7 +21,7 @@ export const ProfileBand = memo(function ProfileBand({
   points,
   every,
   top,
-  peakShare,
+  peak,
   x,
   width,
   from,
@@ -39,7 +39,7 @@ export const ProfileBand = memo(function ProfileBand({
       ))}
       <path d={`M0 ${to}H${width}`} className="l-edge" />
       <text x="0" y={head + 10} className="s14">
-        Peak at {formatPercent(peakShare)} of full scale
+        {peak}
       </text>
       <path
         d={linePath(

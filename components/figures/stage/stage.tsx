@@ -4,22 +4,23 @@ import { useCallback, useMemo, useState, type ReactNode } from 'react';
 import { lightLine } from '@/lib/client/light';
 import { useLook } from '@/lib/client/look';
 import { useSize } from '@/lib/client/use-size';
-import type { ReadingResult } from '@/lib/domain/reading-result';
-import { formatNumber } from '@/lib/quantity/format';
+import type { PlacedStrip } from '@/lib/domain/placed-strip';
+import { isScanResult, type FitResult } from '@/lib/domain/scan-result';
+import { formatNumber, formatPercent } from '@/lib/quantity/format';
 import { LightBand } from '../fringe-strip';
-import { stripEndsMm } from '../strip-scale';
 import { MisfitBand } from './misfit-band';
 import { OrderCard } from './order-card';
 import { OrderTable } from './order-table';
 import { isOut, OrderLadder } from './order-ladder';
 import type { Scale } from './paths';
 import { ProfileBand } from './profile-band';
-import { stageData, zeroAlongPx } from './stage-data';
+import { stageData } from './stage-data';
 import { stageLayout, type AxisView, type StageLayout } from './stage-layout';
 import { StageZoom, zoomed } from './stage-zoom';
 
 interface Props {
-  result: ReadingResult;
+  result: FitResult;
+  /** Of a frame; a scan is in mm already. */
   scaleUmPerPx: number;
   /** Wavelength in air that colours the light; null before one is known. */
   nm: number | null;
@@ -89,7 +90,7 @@ function Drawing({
 
   return (
     <>
-      <Band result={result} scaleUmPerPx={scaleUmPerPx} nm={nm} layout={layout} view={view} width={width} />
+      <Band strip={data.strip} nm={nm} layout={layout} view={view} width={width} />
       <svg className="fig" width={width} height={height} style={style}>
         <g role="img" aria-label={describe(result, used, data.orders.length)}>
           <Captions
@@ -106,7 +107,7 @@ function Drawing({
             points={seen}
             every={every}
             top={data.top}
-            peakShare={result.peakShare}
+            peak={peakWords(result)}
             x={x}
             width={width}
             from={layout.profile[0]}
@@ -146,11 +147,12 @@ function Drawing({
           {note}
         </div>
       ) : null}
-      <OrderTable orders={data.orders} leaveOut={leaveOut} top={layout.ladder[0] - 37} />
+      <OrderTable orders={data.orders} unit={data.unit} leaveOut={leaveOut} top={layout.ladder[0] - 37} />
       <StageZoom zoom={zoom} halfMm={data.halfMm} onZoom={setZoom} top={layout.band[0] - 39} />
       {order ? (
         <OrderCard
           order={order}
+          unit={data.unit}
           out={isOut(order, leaveOut)}
           top={layout.profile[0] + 6}
           side={x(order.mm) > width - CARD_ROOM_PX ? 'left' : 'right'}
@@ -164,28 +166,40 @@ function Drawing({
   );
 }
 
-function describe(result: ReadingResult, used: number, total: number): string {
-  return `Straightened fringes, profile with the fitted curve, misfit over its uncertainty. ${used} of ${total} order centres used, visibility ${formatNumber(result.visibility, 2)}.`;
+/** Of a camera's full scale, or in the unit of the scan. */
+function peakWords(result: FitResult): string {
+  if (!isScanResult(result)) return `Peak at ${formatPercent(result.peakShare)} of full scale`;
+  return `Peak at ${formatNumber(result.peak, result.peak < 100 ? 2 : 0)}`;
+}
+
+function takenWords(result: FitResult): [name: string, more: string] {
+  if (!isScanResult(result))
+    return ['Fringes, straightened', `${formatNumber(result.rows, 0)} rows averaged`];
+  const points = result.curves.xMm.length;
+  return ['Fringes, along the scan', `${formatNumber(points, 0)} points`];
+}
+
+function describe(result: FitResult, used: number, total: number): string {
+  return `${takenWords(result)[0]}, profile with the fitted curve, misfit over its uncertainty. ${used} of ${total} order centres used, visibility ${formatNumber(result.visibility, 2)}.`;
 }
 
 interface BandProps {
-  result: ReadingResult;
-  scaleUmPerPx: number;
+  strip: PlacedStrip;
   nm: number | null;
   layout: StageLayout;
   view: AxisView;
   width: number;
 }
 
-function Band({ result, scaleUmPerPx, nm, layout, view, width }: BandProps) {
-  const [from, to] = stripEndsMm({ strip: result.strip, zeroAlongPx: zeroAlongPx(result), scaleUmPerPx });
+function Band({ strip, nm, layout, view, width }: BandProps) {
+  const { fromMm: from, toMm: to, light } = strip;
   const share = (mm: number) => (100 * mm) / (view.toMm - view.fromMm);
   return (
     <div className="band" style={{ top: layout.band[0], height: layout.band[1] - layout.band[0], width }}>
       <LightBand
-        light={result.strip.light}
+        light={light}
         nm={nm}
-        label="Fringes, straightened and averaged"
+        label="Fringes, averaged along their length"
         style={{ left: `${share(from - view.fromMm)}%`, width: `${share(to - from)}%` }}
       />
     </div>
@@ -220,7 +234,7 @@ function ReadingLine({ x, layout, bright }: { x: number; layout: StageLayout; br
 interface CaptionsProps {
   layout: StageLayout;
   width: number;
-  result: ReadingResult;
+  result: FitResult;
   used: number;
   total: number;
   every: number;
@@ -239,9 +253,10 @@ function Captions({ layout, width, result, used, total, every, goggles }: Captio
   const tone = goggles ? 'var(--edge)' : 'var(--ink)';
   const zero = result.envelopeZeroOrder;
   const roomy = width > ROOMY_PX;
+  const [taken, more] = takenWords(result);
   return (
     <>
-      {line(layout.band[0], '1 Fringes, straightened', `${formatNumber(result.rows, 0)} rows averaged`)}
+      {line(layout.band[0], `1 ${taken}`, more)}
       {line(layout.profile[0], '2 Profile', '')}
       {line(layout.misfit[0], '3 Misfit over its uncertainty', every > 1 ? `1 of ${every} points drawn` : '')}
       {line(layout.ladder[0], '4 Orders', `${used} of ${total} centres used`)}

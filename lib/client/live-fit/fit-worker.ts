@@ -3,6 +3,7 @@
  * the engine's plain arithmetic. Messages are handled one after another, so an answer belongs to the oldest question.
  */
 import type { FrameAnswer, SetupValues } from '@/lib/domain/reading-result';
+import { isScanRegion } from '@/lib/domain/scan-result';
 import type { Specification } from '@/lib/domain/specification';
 import type { FitFacts, FitPreview, RegionChange } from '@/lib/domain/views';
 import type { FrameStack } from '@/lib/measure/band-stack';
@@ -47,6 +48,7 @@ function hold(bytes: ArrayBuffer, { setup, specification }: FitFacts): void {
 }
 
 function replyTo({ region, leaveOut, zeroShift }: RegionChange): FitReply {
+  if (isScanRegion(region)) throw new Error('A scan has no bands.');
   if (!held) throw new Error('There are no bands to fit.');
   const { stack, setup, specification } = held;
   const answer: FrameAnswer = measureStack(stack, setup, { region, leaveOut, zeroShift });

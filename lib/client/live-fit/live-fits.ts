@@ -1,4 +1,5 @@
 import type { FitFacts, FitPreview, RegionChange, ServerFit } from '@/lib/domain/views';
+import { isScanRegion } from '@/lib/domain/scan-result';
 import { stackCovers, type FrameStack } from '@/lib/measure/band-stack';
 import { decodeStack } from '@/lib/measure/stack-file';
 import type { FitQuestion, FitReply } from './fit-worker';
@@ -83,7 +84,11 @@ export class LiveFits {
   readonly current = (): FitState => this.state;
 
   /** Starts the worker and fetches the stack of the reading that is shown. */
-  open(): void {
+  open(isScan = false): void {
+    if (isScan) {
+      this.turnToServer('The server fits scans');
+      return;
+    }
     try {
       this.worker = this.services.startWorker(
         (reply) => this.hear(reply),
@@ -237,6 +242,7 @@ export class LiveFits {
 
 /** What was made for a region is good for it, whatever its edges were rounded to. */
 function holds(held: Held, change: RegionChange): boolean {
+  if (isScanRegion(change.region)) return false;
   return held.madeFor === change || stackCovers(held, change.region);
 }
 

@@ -1,12 +1,13 @@
 import 'server-only';
 import { AppError } from '@/lib/domain/errors';
 import { BORN, FRAME_STEPS, type FrameState, type FrameStep } from '@/lib/domain/life-cycle';
-import type { FrameAnswer, ReadingResult, Refusal } from '@/lib/domain/reading-result';
+import type { FrameAnswer, Refusal } from '@/lib/domain/reading-result';
+import type { FitResult, ScanAnswer } from '@/lib/domain/scan-result';
 import type { CommandContext } from '../context';
 import { change } from '../db';
 import { fitFacts, loadFrame, type FitFacts } from '../frame-facts';
 import { describe, log } from '../log';
-import { analyseInPool } from '../measure-pool';
+import { firstOptions, fitInPool, sizeColumns, type SizeColumns } from '../scan-frames';
 import { originalKey, readObject } from '../storage';
 import { inTransaction, isDatabaseDown, type Work } from '../transaction';
 import { storeReading } from './store-reading';
@@ -49,16 +50,16 @@ export async function fitFrame(context: CommandContext, frameId: number): Promis
   }
 }
 
-async function analyse(frame: FrameRow, { setup, tone }: FitFacts): Promise<FrameAnswer | null> {
+async function analyse(frame: FrameRow, facts: FitFacts): Promise<FrameAnswer | ScanAnswer | null> {
   const bytes = await readObject(originalKey(frame.sha256));
-  return bytes ? analyseInPool(bytes, setup, { tone }) : null;
+  return bytes ? fitInPool(bytes, facts.setup, firstOptions(frame, facts)) : null;
 }
 
 async function settle(
   context: CommandContext,
   frame: FrameRow,
   facts: FitFacts,
-  answer: FrameAnswer | null,
+  answer: FrameAnswer | ScanAnswer | null,
 ): Promise<FrameState> {
   if (!answer)
     return giveUp(
@@ -68,8 +69,9 @@ async function settle(
       'The stored bytes of this frame are gone. Send the file again.',
     );
   if (answer.ok) return inTransaction(context, (work) => keepFirstFit(work, context, frame, facts, answer));
-  const { code, message, picture } = answer satisfies Refusal;
-  return endWithout(context, frame, answer.fileAtFault ? 'giveUp' : 'refuse', code, message, picture);
+  const { code, message } = answer satisfies Refusal;
+  const step = answer.fileAtFault ? 'giveUp' : 'refuse';
+  return endWithout(context, frame, step, code, message, sizeColumns(answer));
 }
 
 async function keepFirstFit(
@@ -77,7 +79,7 @@ async function keepFirstFit(
   context: CommandContext,
   frame: FrameRow,
   facts: FitFacts,
-  result: ReadingResult,
+  result: FitResult,
 ): Promise<FrameState> {
   const reading = await storeReading(
     {
@@ -85,7 +87,7 @@ async function keepFirstFit(
       result,
       setup: facts.setup,
       specification: facts.specification,
-      options: { tone: facts.tone },
+      options: firstOptions(frame, facts),
       madeBy: null,
       madeInReview: false,
       replacesId: null,
@@ -96,8 +98,7 @@ async function keepFirstFit(
   );
   await stepFrame(work, frame.id, 'fit', {
     reading_id: reading.id,
-    width_px: result.picture.widthPx,
-    height_px: result.picture.heightPx,
+    ...sizeColumns(result),
     code: null,
     message: null,
   });
@@ -122,7 +123,7 @@ function giveUp(
   code: string,
   message: string,
 ): Promise<FrameState> {
-  return endWithout(context, frame, 'giveUp', code, message, null, true);
+  return endWithout(context, frame, 'giveUp', code, message, {}, true);
 }
 
 /** The frame ends without a reading. `forget`: the same file may be sent again and is then a new frame. */
@@ -132,15 +133,14 @@ async function endWithout(
   step: FrameStep,
   code: string,
   message: string,
-  picture: { widthPx: number; heightPx: number } | null,
+  size: SizeColumns,
   forget = false,
 ): Promise<FrameState> {
   await inTransaction(context, async (work) => {
     await stepFrame(work, frame.id, step, {
       code,
       message: message.slice(0, 1000),
-      width_px: picture?.widthPx ?? null,
-      height_px: picture?.heightPx ?? null,
+      ...size,
       ...(forget ? { same_key: null } : {}),
     });
     work.audit({
@@ -155,7 +155,7 @@ async function endWithout(
 
 type Columns = Partial<
   Record<
-    'reading_id' | 'width_px' | 'height_px' | 'code' | 'message' | 'same_key' | 'spool_path',
+    'reading_id' | 'code' | 'message' | 'same_key' | 'spool_path' | keyof SizeColumns,
     string | number | null
   >
 >;

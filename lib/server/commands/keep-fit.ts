@@ -3,7 +3,8 @@ import type { z } from 'zod';
 import { AppError } from '@/lib/domain/errors';
 import { BORN, FRAME_STEPS, READING_STEPS, frameMay } from '@/lib/domain/life-cycle';
 import { can } from '@/lib/domain/permissions';
-import type { FitOptions, ReadingResult } from '@/lib/domain/reading-result';
+import type { FitOptions } from '@/lib/domain/reading-result';
+import { isScanRegion, isScanResult, type FitResult, type ScanOptions } from '@/lib/domain/scan-result';
 import type { refitSchema } from '@/lib/domain/schemas';
 import type { RegionChange, SeenDigits, ServerFit } from '@/lib/domain/views';
 import { previewOf, valueIn } from '@/lib/quantity/value-in';
@@ -14,11 +15,15 @@ import { fitFacts, loadFrame, type FitFacts } from '../frame-facts';
 import { log } from '../log';
 import { refitInPool } from '../measure-pool';
 import { changedMeanwhile, findReading, readingText, stepReading, type ReadingFacts } from '../reading-facts';
+import { changedOptions, fitInPool, sizeColumns } from '../scan-frames';
+import { originalKey, readObject } from '../storage';
 import { inTransaction, type Work } from '../transaction';
 import { stepFrame } from './fit-frame';
 import { storeReading } from './store-reading';
 
-type Refit = z.output<typeof refitSchema>;
+/** Where the change was not fitted in a browser, there is no stack and nothing was seen. */
+type Refit = Omit<z.output<typeof refitSchema>, 'stackSha256' | 'seen'> &
+  Partial<Pick<z.output<typeof refitSchema>, 'stackSha256' | 'seen'>>;
 type FrameRow = Awaited<ReturnType<typeof loadFrame>>;
 
 /** A new reading, and what is to be said where the person saw other numbers than the server keeps. */
@@ -53,14 +58,15 @@ export async function keepFit(context: CommandContext, wanted: Refit): Promise<K
   const kept = await inTransaction(context, (work) =>
     store(work, context, frame, before, facts, fit, wanted),
   );
-  return { ...kept, differs: wanted.seen && tellDifference(frame, wanted.seen, fit.result) };
+  return { ...kept, differs: wanted.seen ? tellDifference(frame, wanted.seen, fit.result) : null };
 }
 
 /** Same stack, same digits: browser and server may differ by this share of a number. */
 const SAME_DIGITS = 1e-9;
 
 /** A sentence where the digits a person saw are not those that were kept; it is logged as well. */
-function tellDifference(frame: FrameRow, seen: SeenDigits, kept: ReadingResult): string | null {
+function tellDifference(frame: FrameRow, seen: SeenDigits, kept: FitResult): string | null {
+  if (isScanResult(kept)) return null;
   const { spacingPx, uSpacingPx, wavelengthNm, expandedNm } = kept;
   const digits: SeenDigits = { spacingPx, uSpacingPx, wavelengthNm, expandedNm };
   const isSame = (Object.keys(digits) as (keyof SeenDigits)[]).every((key) => {
@@ -101,22 +107,37 @@ function isInReview(reading: ReadingFacts): boolean {
 
 /** A fit by the server, with the options that give it again from the frame's bytes. */
 interface MadeFit {
-  result: ReadingResult;
-  options: FitOptions;
-  stackSha256: string;
+  result: FitResult;
+  options: FitOptions | ScanOptions;
+  stackSha256: string | null;
 }
 
 async function fitWith(
   frame: FrameRow,
   facts: FitFacts,
-  wanted: RegionChange & { stackSha256: string | null },
+  wanted: RegionChange & { stackSha256?: string | null },
 ): Promise<MadeFit> {
-  const { region, zeroShift, leaveOut } = wanted;
-  const { sha256, bytes } = await stackForFit(frame, facts, wanted, wanted.stackSha256);
-  const options = { region, tone: facts.tone, zeroShift, leaveOut };
-  const result = await refitInPool(bytes, facts.setup, options);
+  const options = changedOptions(frame, facts, wanted);
+  const { region, leaveOut, zeroShift } = wanted;
+  if (isScanRegion(region)) return { ...(await scanFit(frame, facts, options)), options, stackSha256: null };
+  const stack = await stackForFit(frame, facts, { region, leaveOut, zeroShift }, wanted.stackSha256 ?? null);
+  const pictured = { region, tone: facts.tone, zeroShift, leaveOut };
+  const result = await refitInPool(stack.bytes, facts.setup, pictured);
   if (!result.ok) throw new AppError('CANNOT_FIT', result.message);
-  return { result, options: { ...options, stack: result.stack }, stackSha256: sha256 };
+  return { result, options: { ...pictured, stack: result.stack }, stackSha256: stack.sha256 };
+}
+
+/** A scan is small: it is fitted from its bytes each time. */
+async function scanFit(
+  frame: FrameRow,
+  facts: FitFacts,
+  options: FitOptions | ScanOptions,
+): Promise<{ result: FitResult }> {
+  const bytes = await readObject(originalKey(frame.sha256));
+  if (!bytes) throw new AppError('NOT_FOUND', 'The stored bytes of this frame are gone.');
+  const result = await fitInPool(bytes, facts.setup, options);
+  if (!result.ok) throw new AppError('CANNOT_FIT', result.message);
+  return { result };
 }
 
 async function store(
@@ -167,6 +188,7 @@ async function store(
       readingId: reading.id,
       status: inReview ? READING_STEPS.send.to : BORN.reading,
       region: wanted.region,
+      ...(isScanResult(result) ? { detectorMm: result.detectorMm } : {}),
       zeroShift: wanted.zeroShift,
       leaveOut: wanted.leaveOut,
       valueNm: valueIn(result, facts.specification).valueNm,
@@ -180,21 +202,20 @@ async function pointFrameAt(
   frame: FrameRow,
   before: ReadingFacts | null,
   readingId: number,
-  result: ReadingResult,
+  result: FitResult,
 ): Promise<void> {
-  if (!before) {
-    const { widthPx, heightPx } = result.picture;
-    return stepFrame(work, frame.id, 'fit', {
-      reading_id: readingId,
-      width_px: widthPx,
-      height_px: heightPx,
-      code: null,
-      message: null,
-    });
-  }
+  const size = sizeColumns(result);
+  if (!before)
+    return stepFrame(work, frame.id, 'fit', { reading_id: readingId, ...size, code: null, message: null });
   const moved = await change(
-    'UPDATE frames SET reading_id = :readingId WHERE id = :frameId AND reading_id = :before AND state = :state',
-    { readingId, frameId: frame.id, before: before.readingId, state: FRAME_STEPS.fit.to },
+    'UPDATE frames SET reading_id = :readingId, detector_mm = :detectorMm WHERE id = :frameId AND reading_id = :before AND state = :state',
+    {
+      readingId,
+      detectorMm: size.detector_mm ?? null,
+      frameId: frame.id,
+      before: before.readingId,
+      state: FRAME_STEPS.fit.to,
+    },
     work.transaction,
   );
   if (moved !== 1) throw await changedMeanwhile('reading', before.readingId);

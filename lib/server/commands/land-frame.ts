@@ -4,6 +4,7 @@ import { FRAME_STEPS } from '@/lib/domain/life-cycle';
 import type { CommandContext } from '../context';
 import { change, db } from '../db';
 import { dropSpool, type Spooled } from '../spool';
+import { isScan } from '../scan-frames';
 import { originalKey, putObject, sizeOf } from '../storage';
 import { inTransaction } from '../transaction';
 
@@ -48,6 +49,7 @@ export async function markLanded(context: CommandContext, frameId: number): Prom
         setupId: frame.setupId,
         unitId: frame.unitId,
         sourceId: frame.sourceId,
+        ...(isScan(frame) ? { detectorMm: frame.detectorMm } : {}),
       },
     });
     return true;

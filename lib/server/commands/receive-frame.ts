@@ -7,8 +7,10 @@ import type { CommandContext } from '../context';
 import { db, select } from '../db';
 import { nudgeQueue } from '../queue';
 import { brokeOff, dropSpool, spoolBody, type Spooled } from '../spool';
+import { isScan } from '../scan-frames';
 import { findSubject, type FrameSubject, type SubjectChoice } from '../subject';
 import { landFrame } from './land-frame';
+import { takeDetector } from './take-detector';
 
 export interface Incoming extends SubjectChoice {
   fileName: string;
@@ -16,6 +18,8 @@ export interface Incoming extends SubjectChoice {
   /** What Content-Length says. */
   declaredBytes: number;
   body: AsyncIterable<Uint8Array>;
+  /** Width of a scan's detector, null for a point; nothing to a picture. */
+  detectorMm: number | null;
 }
 
 /**
@@ -49,6 +53,7 @@ export async function receiveFrame(
       mediaType: spooled.mediaType,
       sameKey: sameKey(spooled, incoming.benchId, subject),
       state: BORN.frame,
+      detectorMm: isScan(spooled) ? incoming.detectorMm : null,
       spoolPath: spooled.path,
       uploadedBy: context.actor.id,
       receivedAt: context.at,
@@ -57,18 +62,28 @@ export async function receiveFrame(
       if (problem instanceof UniqueConstraintError) return null;
       throw problem;
     });
-  if (!frame) return sameAgain(context, spooled, incoming.benchId, subject);
+  if (!frame) return sameAgain(context, spooled, incoming, subject);
   await landFrame(context, frame.id, spooled);
   nudgeQueue();
   return { frameId: frame.id, sameAs: null };
 }
 
 /** The same bytes for the same bench and subject are there already; a copy that had broken off is finished. */
-async function sameAgain(context: CommandContext, spooled: Spooled, benchId: number, subject: FrameSubject) {
+async function sameAgain(
+  context: CommandContext,
+  spooled: Spooled,
+  { benchId, detectorMm }: Incoming,
+  subject: FrameSubject,
+) {
   const frame = await db().tables.frames.findOne({
     where: { sameKey: sameKey(spooled, benchId, subject) },
     rejectOnEmpty: true,
   });
+  if (isScan(spooled))
+    await takeDetector(context, frame, detectorMm).catch(async (problem: unknown) => {
+      await dropSpool(spooled.path);
+      throw problem;
+    });
   if (frameMay('land', frame.state)) {
     await landFrame(context, frame.id, spooled);
     nudgeQueue();

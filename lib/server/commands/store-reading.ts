@@ -1,11 +1,12 @@
 import 'server-only';
 import type { Transaction } from 'sequelize';
 import type { ReadingState } from '@/lib/domain/life-cycle';
-import type { FitOptions, ReadingResult, SetupValues } from '@/lib/domain/reading-result';
+import type { FitOptions, SetupValues } from '@/lib/domain/reading-result';
+import type { FitResult, ScanOptions } from '@/lib/domain/scan-result';
 import type { Specification } from '@/lib/domain/specification';
 import { canonicalJson, sha256 } from '../canonical';
 import { db, select } from '../db';
-import { gravest, riskOf, zeroAlongPx } from '../findings';
+import { gravest, lengthColumns, riskOf } from '../findings';
 import { valueIn } from '@/lib/quantity/value-in';
 
 /** What a new reading is made from. */
@@ -19,10 +20,10 @@ export interface NewReading {
     unitId: number | null;
     sourceId: number | null;
   };
-  result: ReadingResult;
+  result: FitResult;
   setup: SetupValues;
   specification: Specification | null;
-  options: FitOptions;
+  options: FitOptions | ScanOptions;
   /** null: the product's own first fit. */
   madeBy: number | null;
   madeInReview: boolean;
@@ -77,10 +78,7 @@ export async function storeReading(
       word,
       wordText: text.slice(0, 1000),
       orderCentres: result.orders.length,
-      spacingPx: result.spacingPx,
-      uSpacingPx: result.uSpacingPx,
-      scaleUmPerPx: setup.scaleUmPerPx?.value ?? 0,
-      zeroAlongPx: zeroAlongPx(result),
+      ...lengthColumns(result, setup),
     },
     { transaction },
   );
@@ -105,10 +103,10 @@ export async function storeReading(
 /** SHA-256 over everything a signature stands for: bytes, result, setup, specification, options. */
 export function digestOf(content: {
   frameSha256: string;
-  result: ReadingResult;
+  result: FitResult;
   setup: SetupValues;
   specification: Specification | null;
-  options: FitOptions;
+  options: FitOptions | ScanOptions;
 }): string {
   return sha256(canonicalJson(content));
 }

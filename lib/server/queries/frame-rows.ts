@@ -2,6 +2,7 @@ import 'server-only';
 import type { FrameState } from '@/lib/domain/life-cycle';
 import type { FrameRow, Subject } from '@/lib/domain/views';
 import { select } from '../db';
+import { isScan } from '../scan-frames';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
 import { SPECIFICATION_COLUMNS, specificationOf, type SpecificationColumns } from './specification-columns';
 
@@ -15,6 +16,8 @@ interface Row extends BriefColumns, MaybeSpecification {
   state: FrameState;
   code: string | null;
   message: string | null;
+  media_type: string;
+  detector_mm: number | null;
   received_at: Date;
   uploaded_by: number;
   uploader: string;
@@ -34,7 +37,7 @@ interface Row extends BriefColumns, MaybeSpecification {
 export async function frameRows(ids: readonly number[]): Promise<FrameRow[]> {
   if (!ids.length) return [];
   const rows = await select<Row>(
-    `SELECT f.id, f.file_name, f.bytes, f.sha256, f.state, f.code, f.message, f.received_at, f.uploaded_by,
+    `SELECT f.id, f.file_name, f.bytes, f.sha256, f.state, f.code, f.message, f.media_type, f.detector_mm, f.received_at, f.uploaded_by,
        up.name AS uploader, f.bench_id, b.name AS bench, su.number AS setup_number, f.unit_id, un.serial, f.lot_id,
        lo.number AS lot, f.source_id, so.name AS source, so.vacuum_nm, ${SPECIFICATION_COLUMNS}, ${BRIEF_COLUMNS}
      FROM frames f
@@ -63,6 +66,7 @@ function frameOf(row: Row): FrameRow {
     bench: { id: row.bench_id, name: row.bench },
     setupNumber: row.setup_number,
     subject: subjectOf(row),
+    scan: isScan({ mediaType: row.media_type }) ? { detectorMm: row.detector_mm } : null,
     reading: briefOf(row),
   };
 }

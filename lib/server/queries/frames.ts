@@ -35,6 +35,9 @@ interface FrameColumns {
   height_px: number | null;
   setup_id: number;
   lot_id: number | null;
+  scan_from_mm: number | null;
+  scan_to_mm: number | null;
+  scan_points: number | null;
 }
 
 /** A frame with all its readings and one of them in full: the asked one, or the newest. */
@@ -45,13 +48,16 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
   const wanted = readingId ?? row.reading?.id ?? readings[0]?.id ?? null;
   if (readingId !== null && !readings.some(({ id }) => id === readingId)) return null;
   const [columns] = await select<FrameColumns>(
-    'SELECT width_px, height_px, setup_id, lot_id FROM frames WHERE id = :frameId',
+    `SELECT width_px, height_px, setup_id, lot_id, scan_from_mm, scan_to_mm, scan_points
+     FROM frames WHERE id = :frameId`,
     { frameId },
   );
+  const { scan_from_mm: fromMm, scan_to_mm: toMm, scan_points: points } = columns;
   return {
     ...row,
     widthPx: columns.width_px,
     heightPx: columns.height_px,
+    scanLength: fromMm === null || toMm === null ? null : { fromMm, toMm, points: points ?? 0 },
     readings,
     shown: wanted === null ? null : await readingView(wanted),
     facts: await fitFacts({ setupId: columns.setup_id, lotId: columns.lot_id }),

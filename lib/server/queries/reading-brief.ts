@@ -1,8 +1,10 @@
 import 'server-only';
 import type { ReadingState } from '@/lib/domain/life-cycle';
+import { placeStrip } from '@/lib/domain/placed-strip';
 import type { FindingWord, Strip } from '@/lib/domain/reading-result';
+import type { ScanStrip } from '@/lib/domain/scan-result';
 import type { Judgement, Medium } from '@/lib/domain/specification';
-import type { ReadingBrief } from '@/lib/domain/views';
+import type { Length, ReadingBrief } from '@/lib/domain/views';
 
 /** The columns of a reading a list needs; the curves stay where they are. */
 export const BRIEF_COLUMNS = `
@@ -10,7 +12,8 @@ export const BRIEF_COLUMNS = `
   r.value_nm AS r_value_nm, r.u_nm AS r_u_nm, r.expanded_nm AS r_expanded_nm, r.k AS r_k,
   r.judgement_json AS r_judgement, r.word AS r_word, r.word_text AS r_word_text, r.order_centres AS r_order_centres,
   r.spacing_px AS r_spacing_px, r.u_spacing_px AS r_u_spacing_px, r.scale_um_per_px AS r_scale,
-  r.zero_along_px AS r_zero, rr.strip_json AS r_strip, r.made_at AS r_made_at, mb.id AS r_made_by, mb.name AS r_made_by_name`;
+  r.zero_along_px AS r_zero, r.spacing_mm AS r_spacing_mm,
+  r.u_spacing_mm AS r_u_spacing_mm, r.zero_mm AS r_zero_mm, rr.strip_json AS r_strip, r.made_at AS r_made_at, mb.id AS r_made_by, mb.name AS r_made_by_name`;
 
 /** Joins for a query that has `r`; LEFT so that frames without a reading stay. */
 export const BRIEF_JOINS = `
@@ -32,10 +35,13 @@ export interface BriefColumns {
   r_word: FindingWord;
   r_word_text: string;
   r_order_centres: number;
-  r_spacing_px: number;
-  r_u_spacing_px: number;
-  r_scale: number;
-  r_zero: number;
+  r_spacing_px: number | null;
+  r_u_spacing_px: number | null;
+  r_scale: number | null;
+  r_zero: number | null;
+  r_spacing_mm: number | null;
+  r_u_spacing_mm: number | null;
+  r_zero_mm: number | null;
   r_strip: string;
   r_made_at: Date;
   r_made_by: number | null;
@@ -58,15 +64,22 @@ export function briefOf(row: BriefColumns): ReadingBrief | null {
     word: row.r_word,
     wordText: row.r_word_text,
     orderCentres: row.r_order_centres,
-    spacingPx: row.r_spacing_px,
-    uSpacingPx: row.r_u_spacing_px,
-    scaleUmPerPx: row.r_scale,
-    strip: JSON.parse(row.r_strip) as Strip,
-    zeroAlongPx: row.r_zero,
+    spacing: spacingOf(row),
+    strip: placeStrip(
+      JSON.parse(row.r_strip) as Strip | ScanStrip,
+      row.r_zero_mm ?? row.r_zero ?? 0,
+      row.r_scale ?? 0,
+    ),
     madeBy:
       row.r_made_by !== null && row.r_made_by_name !== null
         ? { id: row.r_made_by, name: row.r_made_by_name }
         : null,
     madeAt: row.r_made_at.toISOString(),
   };
+}
+
+function spacingOf(row: BriefColumns): Length {
+  return row.r_spacing_mm === null
+    ? { value: row.r_spacing_px ?? 0, u: row.r_u_spacing_px ?? 0, unit: 'px' }
+    : { value: row.r_spacing_mm, u: row.r_u_spacing_mm ?? 0, unit: 'mm' };
 }

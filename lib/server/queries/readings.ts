@@ -1,5 +1,6 @@
 import 'server-only';
-import type { FitOptions, ReadingResult } from '@/lib/domain/reading-result';
+import type { FitOptions } from '@/lib/domain/reading-result';
+import type { FitResult } from '@/lib/domain/scan-result';
 import type { Role } from '@/lib/domain/roles';
 import type { ReadingBrief, ReadingView, ReturnReason } from '@/lib/domain/views';
 import { select } from '../db';
@@ -41,7 +42,7 @@ export async function readingView(readingId: number): Promise<ReadingView | null
   if (!brief) return null;
   const setup = (await setupViews(row.bench_id)).find(({ id }) => id === row.setup_id);
   if (!setup) throw new Error(`Reading ${readingId} names a setup its bench does not have.`);
-  const result = JSON.parse(row.result_json) as ReadingResult;
+  const result = JSON.parse(row.result_json) as FitResult;
   const options = JSON.parse(row.options_json) as FitOptions;
   return {
     ...brief,

@@ -1,15 +1,29 @@
 import { layoutOf, ModelPoint, placeOfOrder, orderAt } from '@/lib/fit/two-slit-model';
 
-const FULL = layoutOf({ background: 4, curve: true, chirp: true, tone: true, fade: true });
+const FULL = layoutOf({
+  background: 4,
+  curve: true,
+  chirp: true,
+  tone: true,
+  fade: true,
+  unequal: true,
+});
 const FIXED = { curve: 0, centre: 0.3, half: 6 };
-/** spacing, zero, ratio, middle, A, B, four backgrounds, curve, chirp, tone, fade */
+/** spacing, zero, ratio, middle, A, B, four backgrounds, curve, chirp, tone, fade, unequal */
 const VALUES = Float64Array.from([
-  1.02, 0.1, 0.21, 0.15, 0.9, 0.8, 0.06, 0.01, -0.004, 0.003, 0.01, 0.002, 0.93, 0.05,
+  1.02, 0.1, 0.21, 0.15, 0.9, 0.8, 0.06, 0.01, -0.004, 0.003, 0.01, 0.002, 0.93, 0.05, 0.12,
 ]);
 
 /** Light of two slits of width a and separation d at an angle, by the model: m = d sin/lambda, ratio = a/d. */
 function light(m: number, ratio: number, visibility = 1): number {
-  const layout = layoutOf({ background: 1, curve: false, chirp: false, tone: false, fade: false });
+  const layout = layoutOf({
+    background: 1,
+    curve: false,
+    chirp: false,
+    tone: false,
+    fade: false,
+    unequal: false,
+  });
   const point = new ModelPoint(layout, { curve: 0, centre: 0, half: 1 });
   const p = Float64Array.from([1, 0, ratio, 0, 1, visibility, 0]);
   expect(point.evaluate(p, m, false)).toBe(true);

@@ -3,7 +3,9 @@
 import { useRef, type ReactNode } from 'react';
 
 /** Named one by one, so that a phone hands over a JPEG and not its own format. */
-const ACCEPT = 'image/png,image/jpeg,image/tiff,image/webp,.png,.jpg,.jpeg,.tif,.tiff,.webp';
+const PICTURES = 'image/png,image/jpeg,image/tiff,image/webp,.png,.jpg,.jpeg,.tif,.tiff,.webp';
+const SCANS = 'text/csv,text/plain,text/tab-separated-values,.csv,.txt,.tsv,.dat';
+const ACCEPT = `${PICTURES},${SCANS}`;
 
 interface Props {
   onFiles: (files: File[]) => void;

@@ -37,7 +37,18 @@ export function DropZone({ onFiles, closed, share, shareText }: Props) {
       <HollowOrders of={ORDERS} lit={share === null ? 0 : litFor(share, ORDERS)} />
       <div className="hole">
         <h2>{isDragActive ? 'Let go to add them' : 'Drop frames here'}</h2>
-        <p>{closed ?? (share === null ? 'PNG, TIFF, JPEG or WebP, 8 or 16 bit, up to 200 MB' : shareText)}</p>
+        <p>
+          {closed ??
+            (share === null ? (
+              <>
+                PNG, TIFF, JPEG or WebP, 8 or 16 bit, up to 200 MB
+                <br />
+                or a line scan as CSV: position in mm, intensity
+              </>
+            ) : (
+              shareText
+            ))}
+        </p>
         {share === null ? null : (
           <div
             role="progressbar"

@@ -20,6 +20,7 @@ import { DropZone } from './drop-zone';
 import { IntakeFoot } from './intake-foot';
 import { IntakeList } from './intake-list';
 import { PhoneFrom } from './phone-from';
+import { ScanQuestion, useHeldScans } from './scan-question';
 import { shareOf, shareWords, useBatch } from './batch';
 import { SignInAgain } from './sign-in-again';
 import { SubjectChoice, type Chosen } from './subject-choice';
@@ -56,6 +57,7 @@ export function IntakeRoom({
     if (sameAs !== null) setSame((before) => ({ ...before, [frame.id]: sameAs }));
   });
   const batch = useBatch(uploads.items);
+  const scans = useHeldScans(uploads.add);
   const [chosen, setChosen] = useState<Chosen>(
     lots[0] ? { kind: 'lot', id: lots[0].id } : sources[0] ? { kind: 'source', id: sources[0].id } : null,
   );
@@ -79,26 +81,28 @@ export function IntakeRoom({
           lotId: chosen.kind === 'lot' ? chosen.id : null,
           sourceId: chosen.kind === 'source' ? chosen.id : null,
           serial,
+          detectorMm: null,
         }
       : null;
   const add = (files: File[], serial = '') => {
     const target = targetFor(serial);
     if (!target || !files.length) return;
-    const room = LIMITS.filesAtOnce - uploads.items.length;
+    const room = LIMITS.filesAtOnce - uploads.items.length - scans.held.length;
     setSaid(
       files.length > room
         ? `At most ${LIMITS.filesAtOnce} frames at once: ${files.length - room} were not added. Add them later.`
         : '',
     );
-    uploads.add(files.slice(0, Math.max(0, room)), target);
+    void scans.add(files.slice(0, Math.max(0, room)), target);
   };
   const replace = (frame: FrameRow, file: File) => {
     const { subject } = frame;
-    uploads.add([file], {
+    void scans.add([file], {
       benchId: frame.bench.id,
       lotId: subject.kind === 'unit' ? subject.lotId : null,
       sourceId: subject.kind === 'source' ? subject.sourceId : null,
       serial: subject.kind === 'unit' ? subject.serial : '',
+      detectorMm: frame.scan?.detectorMm ?? null,
     });
     live.hide((f) => f.id !== frame.id);
   };
@@ -185,6 +189,7 @@ export function IntakeRoom({
           </Notice>
         </div>
       ) : null}
+      {scans.held.length ? <ScanQuestion held={scans.held} onGo={scans.go} onDrop={scans.drop} /> : null}
       <IntakeList
         frames={live.frames}
         items={uploads.items}
@@ -195,7 +200,7 @@ export function IntakeRoom({
         onRetry={(key, serial) => uploads.retry(key, serial === undefined ? undefined : { serial })}
         onRemove={uploads.remove}
         onReplaceItem={(item, file) => {
-          uploads.add([file], item.target);
+          void scans.add([file], item.target);
           uploads.remove(item.key);
         }}
       />

@@ -9,7 +9,7 @@ import { When } from '@/components/figures/when';
 import { Button } from '@/components/ui/button';
 import { Field } from '@/components/ui/field';
 import type { UploadItem } from '@/lib/client/use-uploads';
-import { subjectName } from '@/lib/client/words';
+import { detectorText, subjectName } from '@/lib/client/words';
 import { frameIsMoving } from '@/lib/domain/life-cycle';
 import type { FrameRow } from '@/lib/domain/views';
 import { formatBytes, formatNumber } from '@/lib/quantity/format';
@@ -73,7 +73,7 @@ export function FrameLine({ frame, spanMm, sameAs, onSend, onReplace }: FrameLin
     <Line
       kind={state.kind}
       name={<Link href={`/frames/${frame.id}`}>{subjectName(frame)}</Link>}
-      file={frame.fileName}
+      file={frame.scan ? `Scan, ${detectorText(frame.scan.detectorMm)} · ${frame.fileName}` : frame.fileName}
       word={state.word}
       at={frame.receivedAt}
       picture={<FramePicture frame={frame} spanMm={spanMm} />}

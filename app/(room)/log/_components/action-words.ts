@@ -2,6 +2,7 @@
 const WORDS: Record<string, string> = {
   'bench.add': 'Bench added',
   'frame.break-off': 'Frame broke off',
+  'frame.detector': 'Detector of a scan changed',
   'frame.fit': 'Frame fitted',
   'frame.refuse': 'Frame refused',
   'frame.give-up': 'Frame unreadable',

@@ -15,6 +15,9 @@ const NAMES: Record<string, string> = {
   lengthPx: 'length, px',
   heightPx: 'height, px',
   angleDeg: 'tilt, degrees',
+  fromMm: 'from, mm',
+  toMm: 'to, mm',
+  detectorMm: 'detector, mm',
   sha256: 'SHA-256',
 };
 
