@@ -26,11 +26,11 @@ const truth = JSON.parse(readFileSync(path.join(FRAMES, 'truth.json'), 'utf8')) 
 const PINNED = {
   engine: '0.6.0',
   digests: {
-    'clean.tif': 'd9cc3893d156b8629036cd12885590b4b60aa10f8bd7c30879406d81a39d37a7',
-    'tilted.tif, a region of its own': 'd2dbd20b064146f84c4ac4909d378bdc10ffd7eebcbbdc1938513a66c0a6e179',
-    'clipped.tif, orders left out': 'ad40d80f3b6252e3b9241e49baa9c95f8498731d384e2e233e20b1caa99731cd',
-    'photo.jpg': '39f0a5c0c4be4f083a325cbe257941493d57314b8db008479f04047face8a7b1',
-    'photo-turned.jpg': '196a695d60ade512efc27925adb72a00e92f3833735f23322c738103d76bd143',
+    'clean.tif': 'bba8f86956a4e3c457580878ccc2c1b0f2c5cf60cb4a627e6c898dda8c402f51',
+    'tilted.tif, a region of its own': 'e30f5e4caeb6756fd2982c0b624702b0d18cd1c24912ec7ebd2eae7d4ecb0a71',
+    'clipped.tif, orders left out': 'e84128ee6aacd5708011e09e809e9f5881e40975da824b2a7672be83f4c6ecf5',
+    'photo.jpg': 'f13a9035277773d13506457436eeb0e71621c4aabf8bcc918dcffbb13329cbc2',
+    'photo-turned.jpg': 'e23b911eb21d5831cb3565450e718d368d4e09dff0eafe96629a4c870b4be0c0',
     'one-slit.tif': 'e3bcd7bc07c45506d06282ae1b9322bfac547e030be886d5fe09c78c6e10c01c',
   } as Record<string, string>,
 };
