@@ -1,6 +1,7 @@
 import type { Sequelize } from 'sequelize';
 import { defineAuditHead } from './audit-head';
 import { defineAuditRow } from './audit-row';
+import { defineBandStack } from './band-stack';
 import { defineBench } from './bench';
 import { defineFrame } from './frame';
 import { defineLookAnswer } from './look-answer';
@@ -29,6 +30,7 @@ export function defineTables(sequelize: Sequelize) {
   const tables = {
     auditHead: defineAuditHead(sequelize),
     auditRows: defineAuditRow(sequelize),
+    bandStacks: defineBandStack(sequelize),
     benches: defineBench(sequelize),
     frames: defineFrame(sequelize),
     lookAnswers: defineLookAnswer(sequelize),

@@ -11,7 +11,7 @@ import type {
 
 export type KeepFit = (
   input: z.input<typeof refitSchema>,
-) => Promise<ActionAnswer<{ readingId: number; version: number }>>;
+) => Promise<ActionAnswer<{ readingId: number; version: number; differs: string | null }>>;
 export type SendToReview = (
   input: z.input<typeof sendSchema>,
 ) => Promise<ActionAnswer<{ sent: number; problems: string[] }>>;

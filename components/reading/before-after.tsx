@@ -38,7 +38,9 @@ export function BeforeAfter({ before, preview }: Props) {
                 <span className="only-heard">What</span>
               </th>
               <th scope="col">{before ? `Reading ${before.number}` : 'Before'}</th>
-              <th scope="col">{preview.working ? 'Fitting…' : 'With the change'}</th>
+              <th scope="col">
+                {preview.home === 'making' ? 'New bands…' : preview.working ? 'Fitting…' : 'With the change'}
+              </th>
             </tr>
           </thead>
           <tbody>

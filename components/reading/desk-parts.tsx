@@ -8,6 +8,7 @@ import type { Region } from '@/lib/domain/reading-result';
 import { isScanRegion, type ScanRegion } from '@/lib/domain/scan-result';
 import type { FrameView, ReadingView } from '@/lib/domain/views';
 import { formatNumber } from '@/lib/quantity/format';
+import { LiveNote } from './live-note';
 import { PhotoRegion } from './photo-region';
 import { RegionFields } from './region-fields';
 import { ScanPart } from './scan-part';
@@ -96,6 +97,7 @@ export function StagePart({ reading, desk, mayFit, picked, onPick }: StageProps)
       leaveOut={desk.leaveOut}
       picked={picked}
       onPick={onPick}
+      note={<LiveNote preview={desk.preview} />}
       onToggleOrder={mayFit ? desk.toggleOrder : undefined}
       onZeroHere={mayFit ? desk.zeroAt : undefined}
     />

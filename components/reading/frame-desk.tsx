@@ -36,6 +36,8 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
     bounds: useBounds(frame),
     detectorMm: frame.scan?.detectorMm ?? null,
     reading,
+    facts: frame.facts,
+    mayFit: may.fit,
   });
   const [picked, pick] = usePicked();
   const [refusal, setRefusal] = useState<Refusal | null>(null);

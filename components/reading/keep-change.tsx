@@ -4,6 +4,7 @@ import { useRouter } from 'next/navigation';
 import { useState, useTransition } from 'react';
 import { Button } from '@/components/ui/button';
 import { callAction } from '@/lib/client/call-action';
+import { digitsOf } from '@/lib/client/use-preview-fit';
 import type { RegionDesk } from '@/lib/client/use-region-change';
 import type { ErrorCode } from '@/lib/domain/errors';
 import type { ReadingView } from '@/lib/domain/views';
@@ -28,6 +29,9 @@ interface Props {
   main?: boolean;
 }
 
+/** The column of a tablet is narrow: smaller words there, on two lines where they must be. */
+const SMALL_ON_TABLET = 'px-2! max-[1240px]:px-0.5! max-[1240px]:text-small! max-[1240px]:whitespace-normal!';
+
 /** Keeps the change as a new reading, or drops it. What is typed stays if the service refuses. */
 export function KeepChange({
   frameId,
@@ -41,13 +45,17 @@ export function KeepChange({
 }: Props) {
   const router = useRouter();
   const [waiting, start] = useTransition();
-  const [kept, setKept] = useState(false);
+  const [kept, setKept] = useState<{ differs: string | null; readingId: number } | null>(null);
+  const { preview } = desk;
+  const show = (readingId: number) => router.replace(hrefOf(readingId), { scroll: false });
   const keep = () =>
     start(async () => {
       if (!desk.change) return;
       const answer = await callAction(() =>
         keepFit({
           ...desk.change!,
+          stackSha256: preview.stackSha256,
+          seen: preview.fit && digitsOf(preview.fit),
           frameId,
           fromReadingId: reading?.id ?? null,
           fromVersion: reading?.version ?? 0,
@@ -58,22 +66,33 @@ export function KeepChange({
         return;
       }
       onRefused(null);
-      setKept(true);
-      router.replace(hrefOf(answer.value.readingId), { scroll: false });
+      setKept(answer.value);
+      // What differs from the numbers on this page is to be read before they are gone.
+      if (answer.value.differs === null) show(answer.value.readingId);
     });
-  const ready = mayKeep && desk.preview.fit !== null && !desk.preview.working;
+  const ready = mayKeep && preview.fit !== null && !preview.working;
+  if (kept && kept.differs !== null) {
+    return (
+      <div className="ask mb-3" role="alert">
+        <p className="mb-2 text-small">
+          <b>Kept, with other digits than shown.</b> <span className="text-ink-2">{kept.differs}</span>
+        </p>
+        <Button onClick={() => show(kept.readingId)}>Show the kept reading</Button>
+      </div>
+    );
+  }
   return (
     <div className="mb-3 grid grid-cols-2 gap-2">
       <Button
         kind={main ? 'main' : 'plain'}
-        busy={waiting || kept}
+        busy={waiting || kept !== null}
         disabled={!ready}
         onClick={keep}
-        className="px-2!"
+        className={SMALL_ON_TABLET}
       >
         Keep this region
       </Button>
-      <Button onClick={desk.drop} disabled={waiting} className="px-2!">
+      <Button onClick={desk.drop} disabled={waiting} className={SMALL_ON_TABLET}>
         Drop the change
       </Button>
     </div>

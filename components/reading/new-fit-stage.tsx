@@ -4,6 +4,7 @@ import { Stage } from '@/components/figures/stage/stage';
 import type { RegionDesk } from '@/lib/client/use-region-change';
 import { isScanResult } from '@/lib/domain/scan-result';
 import type { FitPreview } from '@/lib/domain/views';
+import { LiveNote } from './live-note';
 
 /** The pixel scale a fit was made with, from its own budget. */
 export function scaleOfFit(fit: FitPreview): number {
@@ -35,6 +36,7 @@ export function NewFitStage({ fit, desk, picked, onPick }: Props) {
       leaveOut={desk.leaveOut}
       picked={picked}
       onPick={onPick}
+      note={<LiveNote preview={desk.preview} />}
       onToggleOrder={desk.toggleOrder}
       onZeroHere={desk.zeroAt}
     />

@@ -37,12 +37,7 @@ interface Props {
 export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReading, setOutcome }: Props) {
   const { frame, may, queue } = view;
   const router = useRouter();
-  const desk = useRegionChange({
-    frameId: frame.id,
-    bounds: useBounds(frame),
-    detectorMm: frame.scan?.detectorMm ?? null,
-    reading,
-  });
+  const bounds = useBounds(frame);
   const [picked, pick] = usePicked();
   const [answers, setAnswers] = useState<Answers>({});
   const [mode, setMode] = useState<'checks' | 'return'>('checks');
@@ -52,6 +47,14 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
 
   const open = readingMay('accept', reading.status) && done === null;
   const mayFit = may.fit && open;
+  const desk = useRegionChange({
+    frameId: frame.id,
+    bounds,
+    detectorMm: frame.scan?.detectorMm ?? null,
+    reading,
+    facts: frame.facts,
+    mayFit,
+  });
   const go = (id: number | null) => id !== null && router.push(`/review/${id}`);
   const keys = useShortcuts({
     '[': () => mayFit && desk.turnBy(-TILT_STEP_DEG),

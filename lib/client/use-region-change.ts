@@ -3,7 +3,7 @@
 import { useMemo, useState } from 'react';
 import type { Region } from '@/lib/domain/reading-result';
 import { isScanRegion, isScanResult, type ScanRegion } from '@/lib/domain/scan-result';
-import type { ReadingView, RegionChange } from '@/lib/domain/views';
+import type { FitFacts, ReadingView, RegionChange } from '@/lib/domain/views';
 import { kept, rounded, sameRegion, startRegion, turn, type Picture } from './region';
 import { keptInScan, roundedInScan } from './scan-region';
 import { usePreviewFit, type PreviewState } from './use-preview-fit';
@@ -39,6 +39,10 @@ interface Start {
   /** Of a scan, as it was uploaded. */
   detectorMm: number | null;
   reading: ReadingView | null;
+  /** What a fit of the frame is made with. */
+  facts: FitFacts;
+  /** This person may change the region now. */
+  mayFit: boolean;
 }
 
 const sameAny = (a: AnyRegion, b: AnyRegion) => {
@@ -67,7 +71,7 @@ const sameNumbers = (a: readonly number[], b: readonly number[]) =>
   a.length === b.length && [...a].sort().join() === [...b].sort().join();
 
 /** The region, the orders left out and the zero order as a person changes them, with the fit they would give. */
-export function useRegionChange({ frameId, bounds, detectorMm, reading }: Start): RegionDesk {
+export function useRegionChange({ frameId, bounds, detectorMm, reading, facts, mayFit }: Start): RegionDesk {
   const start = useMemo<RegionChange>(
     () => ({
       region: reading?.result.region ?? startOn(bounds),
@@ -90,7 +94,10 @@ export function useRegionChange({ frameId, bounds, detectorMm, reading }: Start)
     !sameNumbers(leaveOut, start.leaveOut) ||
     zeroShift !== start.zeroShift;
   const change = changed || state.asked ? state.now : null;
-  const preview = usePreviewFit(frameId, reading?.id ?? null, change);
+  const preview = usePreviewFit(
+    { frameId, readingId: reading?.id ?? null, facts, mayFit, isScan: isLength(bounds) },
+    change,
+  );
   const set = (part: Partial<RegionChange>) =>
     setState((before) => ({ ...before, now: { ...before.now, ...part } }));
 

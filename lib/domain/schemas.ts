@@ -50,7 +50,20 @@ export const regionChangeSchema = z.object({
     .default([]),
   zeroShift: z.number().int().min(-400).max(400).default(0),
 });
+const sha256Text = z.string().regex(/^[0-9a-f]{64}$/, 'This is not a SHA-256.');
 export const refitSchema = regionChangeSchema.extend({
+  /** The band stack the person's numbers came from; null: the server makes one for the region. */
+  stackSha256: sha256Text.nullable().default(null),
+  /** The numbers the person saw, in the engine's own digits. */
+  seen: z
+    .object({
+      spacingPx: z.number(),
+      uSpacingPx: z.number(),
+      wavelengthNm: z.number().nullable(),
+      expandedNm: z.number().nullable(),
+    })
+    .nullable()
+    .default(null),
   frameId: id,
   fromReadingId: id.nullable(),
   fromVersion: z.number().int().min(0),
@@ -235,7 +248,15 @@ export const statusSchema = z.object({
 });
 export const previewFitSchema = regionChangeSchema.extend({
   id: idText,
-  readingId: id.nullable().default(null),
+  stackSha256: sha256Text.nullable().default(null),
+});
+/** Version of the engine that will measure from the stack. */
+const engineText = z.string().min(1).max(40);
+export const readingStackSchema = z.object({ id: idText, reading: idText, engine: engineText });
+export const regionStackSchema = regionChangeSchema.extend({
+  id: idText,
+  engine: engineText,
+  region: regionSchema,
 });
 export const overTimeSchema = z.object({
   bench: maybeIdText,

@@ -1,6 +1,6 @@
 /** What the pages are given: plain data, made by lib/server/queries and drawn by app and components. */
 import type { FrameState, ReadingState } from './life-cycle';
-import type { BudgetRow, Finding, FindingWord, Region, ToneChoice } from './reading-result';
+import type { BudgetRow, Finding, FindingWord, Region, SetupValues, ToneChoice } from './reading-result';
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
 import type { Role } from './roles';
@@ -254,6 +254,8 @@ export interface FrameView extends FrameRow {
   readings: ReadingBrief[];
   /** The reading shown: the asked one or the newest. */
   shown: ReadingView | null;
+  /** What a fit of this frame is made with. */
+  facts: FitFacts;
   outcome: UnitRow['outcome'];
 }
 
@@ -274,6 +276,13 @@ export interface ReviewView {
   queue: { at: number; of: number; previousId: number | null; nextId: number | null };
 }
 
+/** What a fit of a frame needs beside its bytes: the setup it was received under and what it is judged by. */
+export interface FitFacts {
+  setup: SetupValues;
+  tone: ToneChoice;
+  specification: Specification | null;
+}
+
 /** A fit that is shown and not kept. */
 export interface FitPreview {
   result: FitResult;
@@ -281,6 +290,19 @@ export interface FitPreview {
   expandedNm: number | null;
   medium: Medium;
   judgement: Judgement | null;
+}
+
+/** The same made by the server, with the hash of the band stack it was measured from; null for a scan. */
+export interface ServerFit extends FitPreview {
+  stackSha256: string | null;
+}
+
+/** The digits a person saw before keeping a fit, for the server to compare with its own. */
+export interface SeenDigits {
+  spacingPx: number;
+  uSpacingPx: number;
+  wavelengthNm: number | null;
+  expandedNm: number | null;
 }
 
 /** ---- over time ---- */

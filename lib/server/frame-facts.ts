@@ -1,17 +1,12 @@
 import 'server-only';
 import type { Transaction } from 'sequelize';
 import { AppError } from '@/lib/domain/errors';
-import type { FitOptions, SetupValues } from '@/lib/domain/reading-result';
 import type { Specification } from '@/lib/domain/specification';
+import type { FitFacts } from '@/lib/domain/views';
 import { db } from './db';
 import { setupValues } from './setups';
 
-/** What a fit of a frame needs beside its bytes: the setup it was received under and what it is judged by. */
-export interface FitFacts {
-  setup: SetupValues;
-  tone: FitOptions['tone'];
-  specification: Specification | null;
-}
+export type { FitFacts };
 
 export async function fitFacts(
   frame: { setupId: number; lotId: number | null },

@@ -1,6 +1,6 @@
 import 'server-only';
 import { Piscina } from 'piscina';
-import type { FitOptions, FrameAnswer, SetupValues } from '@/lib/domain/reading-result';
+import type { FitOptions, FrameAnswer, Refusal, SetupValues } from '@/lib/domain/reading-result';
 import type { ScaleAnswer, ScaleKind, ScaleRefusal } from '@/lib/domain/scale-result';
 import type { ScanAnswer, ScanDrawing, ScanOptions } from '@/lib/domain/scan-result';
 import { env } from './env';
@@ -35,6 +35,32 @@ export async function analyseInPool(
   const answer: unknown = await pool().run(
     { task: 'analyse', bytes, setup, options },
     { transferList: [bytes.buffer] },
+  );
+  return answer as FrameAnswer;
+}
+
+/** The band stack of a frame for `options.region` or after `options.stack`, or why there is none. The bytes are handed over. */
+export async function stackInPool(
+  bytes: Uint8Array<ArrayBuffer>,
+  setup: SetupValues,
+  options: FitOptions,
+): Promise<{ ok: true; stack: Uint8Array<ArrayBuffer> } | Refusal> {
+  const answer: unknown = await pool().run(
+    { task: 'stack', bytes, setup, options },
+    { transferList: [bytes.buffer] },
+  );
+  return answer as { ok: true; stack: Uint8Array<ArrayBuffer> } | Refusal;
+}
+
+/** Fits a region from a band stack. The stack is handed over. */
+export async function refitInPool(
+  stack: Uint8Array<ArrayBuffer>,
+  setup: SetupValues,
+  options: FitOptions,
+): Promise<FrameAnswer> {
+  const answer: unknown = await pool().run(
+    { task: 'refit', stack, setup, options },
+    { transferList: [stack.buffer] },
   );
   return answer as FrameAnswer;
 }

@@ -1,5 +1,6 @@
 import 'server-only';
 import type { Readable } from 'node:stream';
+import { setImmediate as nextTurn } from 'node:timers/promises';
 import {
   GetObjectCommand,
   HeadBucketCommand,
@@ -38,6 +39,11 @@ export function originalKey(sha256: string): string {
 
 export function previewKey(sha256: string, engine: string): string {
   return `derived/${sha256}-${engine}.webp`;
+}
+
+/** Where a band stack lies: under the hash of its bytes. */
+export function stackKey(sha256: string): string {
+  return `stacks/${sha256}`;
 }
 
 /** The object's size in bytes, or null when there is none. */
@@ -85,6 +91,9 @@ export async function openObject(key: string): Promise<{ body: Readable; bytes: 
   });
 }
 
+/** So much of an object is taken in before others have their turn: some milliseconds' work. */
+const TURN_BYTES = 512 * 1024;
+
 /** The whole object in memory: for the fit, which needs all of it at once. */
 export async function readObject(key: string): Promise<Uint8Array<ArrayBuffer> | null> {
   const open = await openObject(key);
@@ -94,6 +103,8 @@ export async function readObject(key: string): Promise<Uint8Array<ArrayBuffer> |
   for await (const part of open.body as AsyncIterable<Uint8Array>) {
     bytes.set(part, at);
     at += part.length;
+    // A store nearby delivers faster than it is taken in: the loop would never wait, and nobody else would be heard.
+    if (Math.floor(at / TURN_BYTES) > Math.floor((at - part.length) / TURN_BYTES)) await nextTurn();
   }
   if (at !== open.bytes)
     throw new AppError('STORE_DOWN', 'The store broke off while a frame was read. Try again.');

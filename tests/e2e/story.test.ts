@@ -1,4 +1,4 @@
-import type { Browser } from 'playwright-core';
+import type { Browser, Page, Request } from 'playwright-core';
 import { PLAIN_SCENE } from '@/scripts/simulator/scene';
 import { scanText, type ScanPlan } from '@/scripts/simulator/scan';
 import { Desk, fixture, openBrowser, PASSWORD, SITE } from './support/browser';
@@ -301,9 +301,31 @@ describe('the main job', () => {
     expect(Math.abs(shown - TRUE_NM)).toBeLessThan(1);
     await reviewer.expectAccessible();
 
-    const height = page.getByLabel(/^Height/).first();
-    await height.fill('90');
-    await height.press('Enter');
+    // Once the bands are here, a change is fitted by this browser: the numbers change and nothing is asked of the server.
+    await page.getByText('Live; the server confirms on keeping').waitFor();
+    await page.waitForLoadState('networkidle');
+    const asked: string[] = [];
+    const listen = (request: Request) => asked.push(`${request.method()} ${new URL(request.url()).pathname}`);
+    page.on('request', listen);
+    const change = page.getByRole('region', { name: 'Before and after the change' });
+    const centres = change.getByRole('row', { name: /^centres/ });
+    await setField(page, /^Length/, '400');
+    await change.getByRole('columnheader', { name: 'With the change' }).waitFor();
+    const few = (await centres.innerText()).split(/\s+/).at(-1);
+    await setField(page, /^Length/, '600');
+    await centres.filter({ hasNotText: new RegExp(`${few}$`) }).waitFor();
+    expect(asked).toEqual([]);
+    // Turned by more than 0.1 degrees, the region needs bands of its own; the browser goes on from them.
+    await setField(page, /^Tilt/, '0.9');
+    await page.getByText('Making new bands for this region…').waitFor();
+    await page.getByText('Live; the server confirms on keeping').waitFor();
+    await change.getByRole('columnheader', { name: 'With the change' }).waitFor();
+    expect(asked).toEqual([expect.stringMatching(/^POST \/api\/frames\/\d+\/stack$/)]);
+    page.off('request', listen);
+    await reviewer.expectAccessible();
+    await page.getByRole('button', { name: 'Drop the change' }).click();
+
+    await setField(page, /^Height/, '90');
     await page.getByRole('button', { name: 'Keep this region' }).click();
     await page.waitForURL((url) => url.href !== frameUrl && /\/review\/\d+/.test(url.pathname));
     await page.getByText('Readings of this frame').waitFor();
@@ -515,4 +537,11 @@ async function answerLooks(desk: Desk): Promise<void> {
       .nth(i)
       .fill('Small against U.');
   }
+}
+
+/** Types a number into a field of the region. */
+async function setField(page: Page, name: RegExp, value: string): Promise<void> {
+  const field = page.getByRole('spinbutton', { name }).or(page.getByRole('textbox', { name })).first();
+  await field.fill(value);
+  await field.press('Enter');
 }

@@ -94,13 +94,13 @@ test('the small picture is made once and then only fetched', async () => {
 
 describe('with another region', () => {
   const region = { cxPx: 512, cyPx: 128, lengthPx: 800, heightPx: 100, angleDeg: 0 };
+  const unseen = { leaveOut: [], zeroShift: 0, stackSha256: null, seen: null };
 
   test('a preview answers a whole result and keeps nothing', async () => {
-    const { shown } = await shownOf(frameId);
     const response = await callRoute(previewFit, `/api/frames/${frameId}/preview-fit`, {
       person: world.people.technician,
       method: 'POST',
-      body: JSON.stringify({ region, readingId: shown.id }),
+      body: JSON.stringify({ region }),
       params: { id: String(frameId) },
     });
     const preview = (await response.json()) as FitPreview;
@@ -113,7 +113,7 @@ describe('with another region', () => {
     const response = await callRoute(previewFit, `/api/frames/${frameId}/preview-fit`, {
       person: world.people.technician,
       method: 'POST',
-      body: JSON.stringify({ region: { ...region, lengthPx: 12, heightPx: 4 }, readingId: null }),
+      body: JSON.stringify({ region: { ...region, lengthPx: 12, heightPx: 4 } }),
       params: { id: String(frameId) },
     });
     expect(response.status).toBe(422);
@@ -122,7 +122,7 @@ describe('with another region', () => {
 
   test('keeping it makes a new reading that names the old one', async () => {
     const { shown: before } = await shownOf(frameId);
-    const refit = { frameId, fromReadingId: before.id, fromVersion: 0, region, leaveOut: [], zeroShift: 0 };
+    const refit = { ...unseen, frameId, fromReadingId: before.id, fromVersion: 0, region };
     const kept = await keepFit(as(world.people.technician), refit);
     const { frame, shown } = await shownOf(frameId);
     expect(shown).toMatchObject({ id: kept.readingId, number: 2, replaces: before.id, status: 'draft' });
@@ -136,7 +136,7 @@ describe('with another region', () => {
 
   test('before review only a technician keeps a fit, in review only a reviewer, whose fit stays in review', async () => {
     const { shown } = await shownOf(frameId);
-    const refit = { frameId, fromReadingId: shown.id, fromVersion: 0, region, leaveOut: [], zeroShift: 0 };
+    const refit = { ...unseen, frameId, fromReadingId: shown.id, fromVersion: 0, region };
     await expect(keepFit(as(world.people.reviewer), refit)).rejects.toMatchObject({ code: 'NOT_ALLOWED' });
     await sendReading(as(world.people.technician), { readingId: shown.id, version: 0, note: '' });
     await expect(keepFit(as(world.people.technician), { ...refit, fromVersion: 1 })).rejects.toMatchObject({

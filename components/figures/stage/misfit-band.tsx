@@ -1,3 +1,4 @@
+import { memo } from 'react';
 import { formatSigned } from '@/lib/quantity/format';
 import { dotsPath, type Scale } from './paths';
 import type { StagePoint } from './stage-data';
@@ -16,7 +17,7 @@ interface Props {
 const REACH = 4.2;
 
 /** Misfit over its uncertainty: lines at 0 and ±3, a bed at ±2; what lies beyond is drawn at the edge. */
-export function MisfitBand({ points, every, x, width, from, to, goggles }: Props) {
+export const MisfitBand = memo(function MisfitBand({ points, every, x, width, from, to, goggles }: Props) {
   const middle = (from + to) / 2;
   const y: Scale = (v) => middle - (Math.max(-REACH, Math.min(REACH, v)) / REACH) * ((to - from) / 2);
   const tone = goggles ? 'var(--edge)' : 'var(--ink)';
@@ -62,4 +63,4 @@ export function MisfitBand({ points, every, x, width, from, to, goggles }: Props
         ))}
     </g>
   );
-}
+});

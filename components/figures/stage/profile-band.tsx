@@ -1,3 +1,4 @@
+import { memo } from 'react';
 import type { StagePoint } from './stage-data';
 import { dotsPath, linePath, type Scale } from './paths';
 
@@ -16,7 +17,17 @@ interface Props {
 }
 
 /** Data as dots, the fit as a solid line in the light's colour, the envelope dashed. */
-export function ProfileBand({ points, every, top, peak, x, width, from, to, goggles }: Props) {
+export const ProfileBand = memo(function ProfileBand({
+  points,
+  every,
+  top,
+  peak,
+  x,
+  width,
+  from,
+  to,
+  goggles,
+}: Props) {
   const head = from + 6;
   const y: Scale = (v) => to - (v / top) * (to - head);
   const tone = goggles ? 'var(--edge)' : 'var(--ink)';
@@ -78,4 +89,4 @@ export function ProfileBand({ points, every, top, peak, x, width, from, to, gogg
         ))}
     </g>
   );
-}
+});

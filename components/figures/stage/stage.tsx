@@ -1,6 +1,6 @@
 'use client';
 
-import { useMemo, useState } from 'react';
+import { useCallback, useMemo, useState, type ReactNode } from 'react';
 import { lightLine } from '@/lib/client/light';
 import { useLook } from '@/lib/client/look';
 import { useSize } from '@/lib/client/use-size';
@@ -31,12 +31,16 @@ interface Props {
   onToggleOrder?: (m: number) => void;
   /** Counts all orders from this one. */
   onZeroHere?: (m: number) => void;
+  /** A few words on where the numbers come from. */
+  note?: ReactNode;
 }
 
 /** Room one dot needs, px; closer points are thinned and the caption says so. */
 const DOT_ROOM = 2.6;
 /** Width the card of an order takes; it never covers the order's own line. */
 const CARD_ROOM_PX = 232;
+/** From this width the captions are written out. */
+const ROOMY_PX = 520;
 
 /** Strip, profile, misfit and order ladder on one axis, the zero order in the middle. */
 export function Stage(props: Props) {
@@ -59,6 +63,7 @@ function Drawing({
   onPick,
   onToggleOrder,
   onZeroHere,
+  note,
   width,
   height,
 }: Props & { width: number; height: number }) {
@@ -66,9 +71,16 @@ function Drawing({
   const [zoom, setZoom] = useState({ factor: 1, middleMm: 0 });
   const data = useMemo(() => stageData(result, scaleUmPerPx), [result, scaleUmPerPx]);
   const layout = stageLayout(height, goggles);
-  const view = zoomed(data.halfMm, zoom);
-  const x: Scale = (mm) => ((mm - view.fromMm) / (view.toMm - view.fromMm)) * width;
-  const seen = data.points.filter((p) => p.mm >= view.fromMm && p.mm <= view.toMm);
+  // A key press draws the page twice, for the region and for its numbers; the curves are drawn with the numbers only.
+  const view = useMemo(() => zoomed(data.halfMm, zoom), [data, zoom]);
+  const x: Scale = useCallback(
+    (mm) => ((mm - view.fromMm) / (view.toMm - view.fromMm)) * width,
+    [view, width],
+  );
+  const seen = useMemo(
+    () => data.points.filter((p) => p.mm >= view.fromMm && p.mm <= view.toMm),
+    [data, view],
+  );
   const every = Math.max(1, Math.round((seen.length * DOT_ROOM) / width));
   const order = data.orders.find((o) => o.m === picked) ?? null;
   const used = data.orders.filter((o) => !isOut(o, leaveOut)).length;
@@ -127,6 +139,14 @@ function Drawing({
           <ReadingLine x={x(order.mm)} layout={layout} bright={order.kind === 'bright'} />
         ) : null}
       </svg>
+      {note ? (
+        <div
+          className={width > (goggles ? 1.4 : 1.1) * ROOMY_PX ? 'stage-note' : 'stage-note is-narrow'}
+          style={{ top: layout[width > ROOMY_PX ? 'misfit' : 'profile'][0] - 30 }}
+        >
+          {note}
+        </div>
+      ) : null}
       <OrderTable orders={data.orders} unit={data.unit} leaveOut={leaveOut} top={layout.ladder[0] - 37} />
       <StageZoom zoom={zoom} halfMm={data.halfMm} onZoom={setZoom} top={layout.band[0] - 39} />
       {order ? (
@@ -232,7 +252,7 @@ function Captions({ layout, width, result, used, total, every, goggles }: Captio
   const at = goggles ? 92 : 82;
   const tone = goggles ? 'var(--edge)' : 'var(--ink)';
   const zero = result.envelopeZeroOrder;
-  const roomy = width > 520;
+  const roomy = width > ROOMY_PX;
   const [taken, more] = takenWords(result);
   return (
     <>

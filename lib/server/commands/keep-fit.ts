@@ -3,47 +3,79 @@ import type { z } from 'zod';
 import { AppError } from '@/lib/domain/errors';
 import { BORN, FRAME_STEPS, READING_STEPS, frameMay } from '@/lib/domain/life-cycle';
 import { can } from '@/lib/domain/permissions';
-import { isScanResult, type FitResult } from '@/lib/domain/scan-result';
-import type { refitSchema, regionChangeSchema } from '@/lib/domain/schemas';
-import type { FitPreview } from '@/lib/domain/views';
+import type { FitOptions } from '@/lib/domain/reading-result';
+import { isScanRegion, isScanResult, type FitResult, type ScanOptions } from '@/lib/domain/scan-result';
+import type { refitSchema } from '@/lib/domain/schemas';
+import type { RegionChange, SeenDigits, ServerFit } from '@/lib/domain/views';
+import { previewOf, valueIn } from '@/lib/quantity/value-in';
 import type { CommandContext } from '../context';
+import { stackForFit } from '../band-stacks';
 import { change } from '../db';
 import { fitFacts, loadFrame, type FitFacts } from '../frame-facts';
+import { log } from '../log';
+import { refitInPool } from '../measure-pool';
 import { changedMeanwhile, findReading, readingText, stepReading, type ReadingFacts } from '../reading-facts';
 import { changedOptions, fitInPool, sizeColumns } from '../scan-frames';
 import { originalKey, readObject } from '../storage';
 import { inTransaction, type Work } from '../transaction';
-import { valueIn } from '../value';
 import { stepFrame } from './fit-frame';
 import { storeReading } from './store-reading';
 
-type Refit = z.output<typeof refitSchema>;
-type RegionChange = z.output<typeof regionChangeSchema>;
+/** Where the change was not fitted in a browser, there is no stack and nothing was seen. */
+type Refit = Omit<z.output<typeof refitSchema>, 'stackSha256' | 'seen'> &
+  Partial<Pick<z.output<typeof refitSchema>, 'stackSha256' | 'seen'>>;
 type FrameRow = Awaited<ReturnType<typeof loadFrame>>;
 
-/** A fit with the person's region, shown and not kept. */
-export async function previewFit(frameId: number, wanted: RegionChange): Promise<FitPreview> {
+/** A new reading, and what is to be said where the person saw other numbers than the server keeps. */
+export interface KeptFit {
+  readingId: number;
+  version: number;
+  differs: string | null;
+}
+
+/** A fit with the person's region, shown and not kept: for browsers that cannot make it themselves. */
+export async function previewFit(
+  frameId: number,
+  wanted: RegionChange & { stackSha256: string | null },
+): Promise<ServerFit> {
   const frame = await loadFrame(frameId);
   const facts = await fitFacts(frame);
-  const result = await fitWith(frame, facts, wanted);
-  const { medium, valueNm, expandedNm, judgement } = valueIn(result, facts.specification);
-  return { result, wavelengthNm: valueNm, expandedNm, medium, judgement };
+  const { result, stackSha256 } = await fitWith(frame, facts, wanted);
+  return { ...previewOf(result, facts.specification), stackSha256 };
 }
 
 /**
  * Fits again on the server with the person's region and keeps it as a new reading, which names the one it replaces.
- * In review it goes straight back to review and keeps its sender.
+ * In review it goes straight back to review and keeps its sender. The server measures from its own copy of the band
+ * stack the person's browser measured from, so the digits are the same; where they are not, it says so.
  */
-export async function keepFit(
-  context: CommandContext,
-  wanted: Refit,
-): Promise<{ readingId: number; version: number }> {
+export async function keepFit(context: CommandContext, wanted: Refit): Promise<KeptFit> {
   const frame = await loadFrame(wanted.frameId);
   const before = wanted.fromReadingId === null ? null : await findReading(wanted.fromReadingId);
   await requireRight(context, frame, before, wanted.fromVersion);
   const facts = await fitFacts(frame);
-  const result = await fitWith(frame, facts, wanted);
-  return inTransaction(context, (work) => store(work, context, frame, before, facts, result, wanted));
+  const fit = await fitWith(frame, facts, wanted);
+  const kept = await inTransaction(context, (work) =>
+    store(work, context, frame, before, facts, fit, wanted),
+  );
+  return { ...kept, differs: wanted.seen ? tellDifference(frame, wanted.seen, fit.result) : null };
+}
+
+/** Same stack, same digits: browser and server may differ by this share of a number. */
+const SAME_DIGITS = 1e-9;
+
+/** A sentence where the digits a person saw are not those that were kept; it is logged as well. */
+function tellDifference(frame: FrameRow, seen: SeenDigits, kept: FitResult): string | null {
+  if (isScanResult(kept)) return null;
+  const { spacingPx, uSpacingPx, wavelengthNm, expandedNm } = kept;
+  const digits: SeenDigits = { spacingPx, uSpacingPx, wavelengthNm, expandedNm };
+  const isSame = (Object.keys(digits) as (keyof SeenDigits)[]).every((key) => {
+    const [a, b] = [seen[key], digits[key]];
+    return a === b || (a !== null && b !== null && Math.abs(a - b) <= SAME_DIGITS * Math.abs(b));
+  });
+  if (isSame) return null;
+  log().warn({ frame: frame.id, engine: kept.engine, seen, kept: digits }, 'browser and server differ');
+  return `The server’s fit gives a spacing of ${spacingPx.toFixed(6)} px, this page showed ${seen.spacingPx.toFixed(6)} px. The server’s numbers are the ones kept; look at them before you go on.`;
 }
 
 async function requireRight(
@@ -73,12 +105,39 @@ function isInReview(reading: ReadingFacts): boolean {
   return reading.status === READING_STEPS.send.to;
 }
 
-async function fitWith(frame: FrameRow, facts: FitFacts, wanted: RegionChange): Promise<FitResult> {
+/** A fit by the server, with the options that give it again from the frame's bytes. */
+interface MadeFit {
+  result: FitResult;
+  options: FitOptions | ScanOptions;
+  stackSha256: string | null;
+}
+
+async function fitWith(
+  frame: FrameRow,
+  facts: FitFacts,
+  wanted: RegionChange & { stackSha256?: string | null },
+): Promise<MadeFit> {
+  const options = changedOptions(frame, facts, wanted);
+  const { region, leaveOut, zeroShift } = wanted;
+  if (isScanRegion(region)) return { ...(await scanFit(frame, facts, options)), options, stackSha256: null };
+  const stack = await stackForFit(frame, facts, { region, leaveOut, zeroShift }, wanted.stackSha256 ?? null);
+  const pictured = { region, tone: facts.tone, zeroShift, leaveOut };
+  const result = await refitInPool(stack.bytes, facts.setup, pictured);
+  if (!result.ok) throw new AppError('CANNOT_FIT', result.message);
+  return { result, options: { ...pictured, stack: result.stack }, stackSha256: stack.sha256 };
+}
+
+/** A scan is small: it is fitted from its bytes each time. */
+async function scanFit(
+  frame: FrameRow,
+  facts: FitFacts,
+  options: FitOptions | ScanOptions,
+): Promise<{ result: FitResult }> {
   const bytes = await readObject(originalKey(frame.sha256));
   if (!bytes) throw new AppError('NOT_FOUND', 'The stored bytes of this frame are gone.');
-  const answer = await fitInPool(bytes, facts.setup, changedOptions(frame, facts, wanted));
-  if (!answer.ok) throw new AppError('CANNOT_FIT', answer.message);
-  return answer;
+  const result = await fitInPool(bytes, facts.setup, options);
+  if (!result.ok) throw new AppError('CANNOT_FIT', result.message);
+  return { result };
 }
 
 async function store(
@@ -87,7 +146,7 @@ async function store(
   frame: FrameRow,
   before: ReadingFacts | null,
   facts: FitFacts,
-  result: FitResult,
+  { result, options }: MadeFit,
   wanted: Refit,
 ): Promise<{ readingId: number; version: number }> {
   const inReview = before !== null && isInReview(before);
@@ -98,7 +157,7 @@ async function store(
       result,
       setup: facts.setup,
       specification: facts.specification,
-      options: changedOptions(frame, facts, wanted),
+      options,
       madeBy: context.actor.id,
       madeInReview: inReview,
       replacesId: before?.readingId ?? null,

@@ -7,7 +7,7 @@ import type { Specification } from '@/lib/domain/specification';
 import { canonicalJson, sha256 } from '../canonical';
 import { db, select } from '../db';
 import { gravest, lengthColumns, riskOf } from '../findings';
-import { valueIn } from '../value';
+import { valueIn } from '@/lib/quantity/value-in';
 
 /** What a new reading is made from. */
 export interface NewReading {

@@ -3,6 +3,7 @@ import { frameIsMoving, frameMay, readingMay } from '@/lib/domain/life-cycle';
 import { can } from '@/lib/domain/permissions';
 import type { FrameRow, FramesPage, FramesQuery, FrameView, May, Me } from '@/lib/domain/views';
 import { select } from '../db';
+import { fitFacts } from '../frame-facts';
 import { getMe } from '../session';
 import { findReading, whyBarred } from '../reading-facts';
 import { frameRows } from './frame-rows';
@@ -29,6 +30,16 @@ export async function intakeFrames(personId: number): Promise<FrameRow[]> {
   return frameRows(ids.map(({ id }) => id).reverse());
 }
 
+interface FrameColumns {
+  width_px: number | null;
+  height_px: number | null;
+  setup_id: number;
+  lot_id: number | null;
+  scan_from_mm: number | null;
+  scan_to_mm: number | null;
+  scan_points: number | null;
+}
+
 /** A frame with all its readings and one of them in full: the asked one, or the newest. */
 export async function findFrame(frameId: number, readingId: number | null): Promise<FrameView | null> {
   const [row] = await frameRows([frameId]);
@@ -36,23 +47,20 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
   const readings = await readingsOf(frameId);
   const wanted = readingId ?? row.reading?.id ?? readings[0]?.id ?? null;
   if (readingId !== null && !readings.some(({ id }) => id === readingId)) return null;
-  const [size] = await select<{
-    width_px: number | null;
-    height_px: number | null;
-    scan_from_mm: number | null;
-    scan_to_mm: number | null;
-    scan_points: number | null;
-  }>('SELECT width_px, height_px, scan_from_mm, scan_to_mm, scan_points FROM frames WHERE id = :frameId', {
-    frameId,
-  });
-  const { scan_from_mm: fromMm, scan_to_mm: toMm, scan_points: points } = size;
+  const [columns] = await select<FrameColumns>(
+    `SELECT width_px, height_px, setup_id, lot_id, scan_from_mm, scan_to_mm, scan_points
+     FROM frames WHERE id = :frameId`,
+    { frameId },
+  );
+  const { scan_from_mm: fromMm, scan_to_mm: toMm, scan_points: points } = columns;
   return {
     ...row,
-    widthPx: size.width_px,
-    heightPx: size.height_px,
+    widthPx: columns.width_px,
+    heightPx: columns.height_px,
     scanLength: fromMm === null || toMm === null ? null : { fromMm, toMm, points: points ?? 0 },
     readings,
     shown: wanted === null ? null : await readingView(wanted),
+    facts: await fitFacts({ setupId: columns.setup_id, lotId: columns.lot_id }),
     outcome: row.subject.kind === 'unit' ? await outcomeOf(row.subject.unitId) : null,
   };
 }

@@ -1,7 +1,7 @@
-import 'server-only';
 import type { FitResult } from '@/lib/domain/scan-result';
 import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
-import { judge } from '@/lib/quantity/verdict';
+import type { FitPreview } from '@/lib/domain/views';
+import { judge } from './verdict';
 
 /** A reading's value in the medium it is judged in, and the verdict there. */
 export interface ValueIn {
@@ -30,4 +30,10 @@ export function valueIn(result: FitResult, specification: Specification | null):
       ? judge(valueNm, uNm, result.dofWavelength, expandedNm, specification)
       : null;
   return { medium, valueNm, uNm, expandedNm, judgement };
+}
+
+/** A fit as it is shown before it is kept. */
+export function previewOf(result: FitResult, specification: Specification | null): FitPreview {
+  const { medium, valueNm, expandedNm, judgement } = valueIn(result, specification);
+  return { result, wavelengthNm: valueNm, expandedNm, medium, judgement };
 }
