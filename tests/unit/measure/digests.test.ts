@@ -26,11 +26,11 @@ const truth = JSON.parse(readFileSync(path.join(FRAMES, 'truth.json'), 'utf8')) 
 const PINNED = {
   engine: '0.6.0',
   digests: {
-    'clean.tif': 'bba8f86956a4e3c457580878ccc2c1b0f2c5cf60cb4a627e6c898dda8c402f51',
-    'tilted.tif, a region of its own': 'e30f5e4caeb6756fd2982c0b624702b0d18cd1c24912ec7ebd2eae7d4ecb0a71',
-    'clipped.tif, orders left out': 'e84128ee6aacd5708011e09e809e9f5881e40975da824b2a7672be83f4c6ecf5',
-    'photo.jpg': 'f13a9035277773d13506457436eeb0e71621c4aabf8bcc918dcffbb13329cbc2',
-    'photo-turned.jpg': 'e23b911eb21d5831cb3565450e718d368d4e09dff0eafe96629a4c870b4be0c0',
+    'clean.tif': '5738efa2d3aeab0794243feff49d3a56a8bcfd1771c8fb06234d5e689cc76a2b',
+    'tilted.tif, a region of its own': '12d9d0efc2c7a5c6d539491214f1edde036bf773b0cc256c63ae000c0661d5c6',
+    'clipped.tif, orders left out': '6711ff7daed26578a40379084e29241f186f067c7a51c58e163aed247bce3cd0',
+    'photo.jpg': '5473ba542ed321b6b7bdf17d8a9dc14aefff40b8b332eabf49e2687a539ccd9f',
+    'photo-turned.jpg': '2de2503821bc6f6cfad2d0f61bcf12dd16865c27e499eeb1f102b548ad315adb',
     'one-slit.tif': 'e3bcd7bc07c45506d06282ae1b9322bfac547e030be886d5fe09c78c6e10c01c',
   } as Record<string, string>,
 };
