@@ -16,6 +16,7 @@ import { Findings } from './findings';
 import { KeepChange, type Refusal } from './keep-change';
 import { KeysSheet } from './keys-sheet';
 import { ReadingsOfFrame } from './readings-of-frame';
+import { Further } from './further';
 import { Budget, Result } from './result';
 import { SendBox } from './send-box';
 import { FrameStory } from './frame-story';
@@ -121,6 +122,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
               publishedVacuumNm={publishedOf(frame.subject)}
             />
             <Budget result={shown.result} />
+            <Further result={shown.result} />
           </>
         ) : null}
         {frame.readings.length ? (

@@ -21,6 +21,7 @@ import { KeysSheet } from './keys-sheet';
 import { LookAnswers, whyChecksClose, type Answers } from './look-answers';
 import { OutcomeLine } from './outcome-line';
 import { ReadingsOfFrame } from './readings-of-frame';
+import { Further } from './further';
 import { Budget, Result } from './result';
 import { ReturnForm } from './return-form';
 
@@ -158,6 +159,7 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             publishedVacuumNm={publishedOf(frame.subject)}
           />
           <Budget result={shown.result} />
+          <Further result={shown.result} />
           <ReadingsOfFrame
             readings={frame.readings}
             shownId={reading.id}
