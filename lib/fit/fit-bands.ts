@@ -279,9 +279,17 @@ function agreedIn(band: BandFit, agreed: Float64Array, b: number, cell: number):
 
 const NOISE_CELLS = 4000;
 
+/** Every how many cells are looked at: no common factor with the bins, or only some places would ever be seen. */
+export function strideOver(cells: number, wanted: number, bins: number): number {
+  const common = (a: number, b: number): number => (b === 0 ? a : common(b, a % b));
+  let every = Math.max(1, Math.floor(cells / wanted));
+  while (common(bins, every) > 1) every++;
+  return every;
+}
+
 function measureNoise(band: BandFit, agreed: Float64Array): void {
   const { data, state, limits } = band;
-  const step = Math.max(1, Math.floor((data.bins * data.bands) / NOISE_CELLS));
+  const step = strideOver(data.bins * data.bands, NOISE_CELLS, data.bins);
   const most = Math.ceil(data.light.length / step);
   const light = new Float64Array(most);
   const q = new Float64Array(most);

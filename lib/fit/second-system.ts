@@ -1,5 +1,5 @@
 import { commonU, gainIn, LEFT, strayIn, type BandData } from './bands';
-import type { BandFit } from './fit-bands';
+import { strideOver, type BandFit } from './fit-bands';
 import { linearRoom } from './linear-room';
 import { varianceAt } from './noise';
 
@@ -140,17 +140,9 @@ function ratioOf(band: BandFit, light: Float64Array): Ratio | null {
   return ratio.size > 200 ? ratio : null;
 }
 
-/** Every how many cells are looked at: no common factor with the bins, or only some places would ever be seen. */
-function strideFor(size: number, bins: number): number {
-  let every = Math.max(1, Math.floor(size / CELLS_FOR_SEARCH));
-  const common = (a: number, b: number): number => (b === 0 ? a : common(b, a % b));
-  while (common(bins, every) > 1) every++;
-  return every;
-}
-
 /** Phasors of groups of bands at q, from some of the cells, put together at the lean that gives most. */
 function bestLean(ratio: Ratio, q: number, band: BandFit): SecondSystem {
-  const every = strideFor(ratio.size, band.data.bins);
+  const every = strideOver(ratio.size, CELLS_FOR_SEARCH, band.data.bins);
   const re = new Float64Array(ratio.groups);
   const im = new Float64Array(ratio.groups);
   const vs = new Float64Array(ratio.groups);

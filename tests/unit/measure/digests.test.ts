@@ -26,11 +26,11 @@ const truth = JSON.parse(readFileSync(path.join(FRAMES, 'truth.json'), 'utf8')) 
 const PINNED = {
   engine: '0.6.0',
   digests: {
-    'clean.tif': '5738efa2d3aeab0794243feff49d3a56a8bcfd1771c8fb06234d5e689cc76a2b',
+    'clean.tif': '99047d5f76dc58222714b3c4f2b956cd6118182d801e2fb0db0bb09a665d97fd',
     'tilted.tif, a region of its own': '12d9d0efc2c7a5c6d539491214f1edde036bf773b0cc256c63ae000c0661d5c6',
-    'clipped.tif, orders left out': '6711ff7daed26578a40379084e29241f186f067c7a51c58e163aed247bce3cd0',
-    'photo.jpg': '5473ba542ed321b6b7bdf17d8a9dc14aefff40b8b332eabf49e2687a539ccd9f',
-    'photo-turned.jpg': '2de2503821bc6f6cfad2d0f61bcf12dd16865c27e499eeb1f102b548ad315adb',
+    'clipped.tif, orders left out': 'ff6529d990fd899d2b616c3e4e1aa11a9da0f0d5958a8e9458a7a0904bf03a0c',
+    'photo.jpg': 'c229e4044c4a46e59976b41b565e54f11e212572d6dce083b84a27322fb4544b',
+    'photo-turned.jpg': 'e6ac7b2f7c86399485bcf4ee370a4d8ac9f500916a0096b377f3289fb9699275',
     'one-slit.tif': 'e3bcd7bc07c45506d06282ae1b9322bfac547e030be886d5fe09c78c6e10c01c',
   } as Record<string, string>,
 };
