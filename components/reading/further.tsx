@@ -1,6 +1,6 @@
 import { CHECK_WORDS, Mark } from '@/components/figures/marks';
 import type { BandwidthResult, FindingWord } from '@/lib/domain/reading-result';
-import type { FitResult } from '@/lib/domain/scan-result';
+import { isScanResult, type FitResult } from '@/lib/domain/scan-result';
 import { formatNumber, formatQuantity } from '@/lib/quantity/format';
 import { coverageFactor } from '@/lib/quantity/student';
 
@@ -12,15 +12,17 @@ export function Further({ result }: { result: FitResult }) {
   const { words, slit, bandwidth } = result;
   if (!words) return null;
   const k = coverageFactor(result.dofSpacing);
+  const take = isScanResult(result) ? 'scan' : 'frame';
+  const nothing = `not from this ${take}`;
   return (
     <div className="sec">
       <div className="cap" style={{ marginBottom: 5 }}>
-        <h2>Also from this frame</h2>
+        <h2>Also from this {take}</h2>
         <span>k = {formatNumber(k, 2)}</span>
       </div>
       <dl className="further">
         <Row name="Slit width w" word={words.width}>
-          {slit ? widthText(slit.widthUm, slit.uWidthUm, slit.ratio, slit.uRatio, k) : 'not from this frame'}
+          {slit ? widthText(slit.widthUm, slit.uWidthUm, slit.ratio, slit.uRatio, k) : nothing}
         </Row>
         {slit?.difference ? (
           <Row name="Slits differ by" word={words.width}>
@@ -33,7 +35,7 @@ export function Further({ result }: { result: FitResult }) {
         ) : null}
         <Row name="Visibility V" word={words.visibility}>
           {words.visibility === 'stop'
-            ? 'not from this frame'
+            ? nothing
             : quantityText(
                 result.visibility,
                 result.uVisibility === null ? null : k * result.uVisibility,
