@@ -7,6 +7,8 @@ const MOST_BACKGROUND = 6;
 const MOST_ADDED = 4;
 /** A term must beat the information criterion by this much, so that noise does not buy terms. */
 export const MARGIN = 4;
+/** A chirp moves every outer order; too weak to show it hardly moves the spacing. */
+const CHIRP_MARGIN = 10;
 /** One linear step must promise this share of the margin at least; a fit asks for the margin and the logarithm on top. */
 const WORTH_A_TRIAL = 0.75;
 
@@ -28,8 +30,11 @@ export function chooseTerms(band: BandFit, allow: { tone: boolean; chirp: boolea
       if (trial.result.covariance === null) continue;
       const scale = Math.max(1, trial.result.chiSquare / Math.max(1, trial.result.dof));
       const extra = trial.layout.size - now.fit.layout.size;
+      const chirp = terms.chirp && !now.fit.layout.terms.chirp;
       const gain =
-        (now.fit.result.chiSquare - trial.result.chiSquare) / scale - extra * Math.log(trial.points) - MARGIN;
+        (now.fit.result.chiSquare - trial.result.chiSquare) / scale -
+        extra * Math.log(trial.points) -
+        (chirp ? CHIRP_MARGIN : MARGIN);
       if (gain > 0 && (best === null || gain > best.gain)) best = { terms, gain };
     }
     // Noise and masks once more with the bands' share of what was added.
