@@ -29,6 +29,8 @@ const MOST_BANDS = 64;
 const ROWS_PER_BAND = 3;
 const QUICK_PIXELS = 400_000;
 const POINTS_PER_FRINGE = 16;
+const FEWEST_POINTS = 10;
+const MOST_POINTS = 500;
 const LOOK_ROUNDS = 2;
 /** A lean that blurs a band of a few rows by no more than a hundredth of a px. */
 const SQUARE_ENOUGH_DEG = 0.05;
@@ -40,7 +42,10 @@ export function gridFor(rect: Rectangle, spacingPx: number, quick: boolean): Str
   const pitch = Math.max(c, Math.sqrt(1 - c * c));
   const bands = Math.max(1, Math.min(quick ? 24 : MOST_BANDS, Math.floor(rect.heightPx / ROWS_PER_BAND)));
   const lanes = spacingPx < 7 ? 4 : spacingPx < 14 ? 2 : 1;
-  const merge = Math.max(1, Math.floor((spacingPx / POINTS_PER_FRINGE / pitch) * lanes));
+  // Where there are many fringes, fewer points each say as much; the model is averaged over what a point covers.
+  const fringes = rect.lengthPx / spacingPx;
+  const points = Math.max(FEWEST_POINTS, Math.min(POINTS_PER_FRINGE, MOST_POINTS / fringes));
+  const merge = Math.max(1, Math.floor((spacingPx / points / pitch) * lanes));
   const rowsPerBand = rect.heightPx / bands;
   const rowStep = quick
     ? Math.max(
