@@ -98,6 +98,8 @@ export function fitBands(
   if (first === null) return null;
   const fit = rebase(profile, first, stepsToZero(first, how.zeroAtPx));
   const table = tableFor(data, grid, fit);
+  // A pen line would count as a change of every band's gain, and all of them be thrown out.
+  if (how.asItIs) maskBins({ data, state, grid, table, fit }, profile);
   const shifts = regressBands(data, state, grid, table, fit);
   undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
   undoFan(data, state, shifts);
@@ -365,7 +367,10 @@ const RUN_EDGE = 0.1;
  * Leaves out what all bands show in one place and the fit does not: a dead column, a pen line. Only where most of the profile
  * follows the fit (the yardstick is the median misfit), so that a wrong model does not mask the data that speak against it.
  */
-function maskBins(band: BandFit, agreed: Profile): boolean {
+function maskBins(
+  band: Pick<BandFit, 'data' | 'state' | 'grid' | 'table' | 'fit'>,
+  agreed: Profile,
+): boolean {
   const { data, state, grid, table, fit } = band;
   const z = new Float64Array(grid.bins);
   const sizes: number[] = [];
