@@ -72,7 +72,7 @@ function background(c: PatternContext): Finding {
 /** Residual beyond noise relative to the fringes: at most 1 % is good, 2.5 % a look. */
 function misfit(c: PatternContext): Finding {
   const share = c.measured.evidence.misfit;
-  const word = share > 0.12 ? 'stop' : share > 0.025 ? 'look' : 'clear';
+  const word = share > 0.12 ? 'stop' : share > 0.025 || c.result.chiSquareReduced > 5 ? 'look' : 'clear';
   return finding(c, {
     check: 'misfit',
     word,

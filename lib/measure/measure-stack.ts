@@ -31,6 +31,8 @@ const TERMS = { tone: true, chirp: true };
 const WINDOW_ROUNDS = 5;
 /** Chi-square a point up to which a second system counts as taken out. */
 const TAKEN_OUT = 1.5;
+/** Chi-square a point from which misfit is something that has no name. */
+const UNEXPLAINED = 5;
 /** Largest pull of the spacing by a second system near the first, relative to both strengths (simulation: 1.5e-3 for 3 %). */
 const PULL_OF_SECOND = 0.05;
 const FEW_CELLS = 0.002;
@@ -97,7 +99,7 @@ function measureRegion(
   const alone = withZeroDoubt(spreadOf(place.band), zero);
   const evidence = judgePlace(place, alone);
   if (alone === null) throw noFringes();
-  const spread = second === null ? alone : withSecondDoubt(alone, place, second, evidence.misfit);
+  const spread = withMisfitDoubt(alone, place, second, evidence.misfit);
   return { zero, second, place, spread, evidence, plainSpacing };
 }
 
@@ -131,15 +133,21 @@ function missesCells({ fit, state, data }: BandFit): boolean {
 }
 
 /**
- * The spacing's variance grows by what the second system shares with the first; where misfit stays, part of it is still in the
- * light, and its largest pull counts as the half width of a rectangle.
+ * The spacing's variance grows by what a second system shares with the first. Where misfit stays far above the noise, a wave
+ * that was not found or not quite taken out may be in it: its largest pull counts as the half width of a rectangle.
  */
-function withSecondDoubt(spread: Spread, place: PlaceFit, second: SecondSystem, misfit: number): Spread {
-  const factor = secondInflation(place.band, second);
+function withMisfitDoubt(
+  spread: Spread,
+  place: PlaceFit,
+  second: SecondSystem | null,
+  misfit: number,
+): Spread {
+  const factor = second === null ? 1 : secondInflation(place.band, second);
   const covariance = spread.covariance.map((v) => v * factor);
   const { result } = place.band.fit;
-  if (result.chiSquare > TAKEN_OUT * Math.max(1, result.dof)) {
-    const strength = Math.max(Math.hypot(second.c, second.s), 2 * misfit);
+  const most = second === null ? UNEXPLAINED : TAKEN_OUT;
+  if (result.chiSquare > most * Math.max(1, result.dof)) {
+    const strength = Math.max(second === null ? 0 : Math.hypot(second.c, second.s), 2 * misfit);
     covariance[0] += (PULL_OF_SECOND * strength * result.parameters[0]) ** 2 / 3;
   }
   return { ...spread, covariance };

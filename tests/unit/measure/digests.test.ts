@@ -29,8 +29,8 @@ const PINNED = {
     'clean.tif': '99047d5f76dc58222714b3c4f2b956cd6118182d801e2fb0db0bb09a665d97fd',
     'tilted.tif, a region of its own': '12d9d0efc2c7a5c6d539491214f1edde036bf773b0cc256c63ae000c0661d5c6',
     'clipped.tif, orders left out': 'a73bfc4a23ddd6149acce4485ca37c0a27577e22e74eb51404ed58622e1e6d08',
-    'photo.jpg': 'c229e4044c4a46e59976b41b565e54f11e212572d6dce083b84a27322fb4544b',
-    'photo-turned.jpg': 'e6ac7b2f7c86399485bcf4ee370a4d8ac9f500916a0096b377f3289fb9699275',
+    'photo.jpg': '9f77c28646189b4d84ff5cf46028124f68dd9d9b56582653bbce0fb6cf651a4c',
+    'photo-turned.jpg': '5aa76a866046e1bf7474dfe65226c548c99cdb5562fc767e1a8b25411b6ce1e6',
     'one-slit.tif': 'e3bcd7bc07c45506d06282ae1b9322bfac547e030be886d5fe09c78c6e10c01c',
   } as Record<string, string>,
 };
