@@ -37,6 +37,8 @@ export interface BandState {
   stretch: Float64Array;
   /** Tangent of the lean that `shift` undoes so far: shift = lean * v. */
   lean: number;
+  /** Relative change of spacing per px along the fringes that `stretch` undoes so far: stretch = fan * v. */
+  fan: number;
   /** Why a cell is left out; 0 is used. */
   left: Uint8Array;
   noise: Noise | null;
@@ -57,6 +59,7 @@ export function freshState(data: BandData): BandState {
     shift: line(0),
     stretch: line(0),
     lean: 0,
+    fan: 0,
     left: new Uint8Array(data.bins * data.bands),
     noise: null,
   };

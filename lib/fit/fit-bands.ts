@@ -150,8 +150,9 @@ function undoFan(data: BandData, state: BandState, shifts: BandShifts): void {
   const fan = weightedLine(data.bandV, shifts.stretch, shifts.stretchWeight);
   const ub = fan.ub * Math.sqrt(Math.max(1, fan.chiSquare / Math.max(1, fan.n - 2)));
   if (!Number.isFinite(fan.b) || !(Math.abs(fan.b) > FAN_SIGMAS * ub)) return;
+  state.fan += fan.b;
   for (let k = 0; k < data.bands; k++) {
-    state.stretch[k] += fan.b * data.bandV[k];
+    state.stretch[k] = state.fan * data.bandV[k];
     shifts.stretch[k] -= fan.b * data.bandV[k];
   }
 }
@@ -451,7 +452,7 @@ export function fitTilt(band: BandFit): TiltFit {
     uSlope: line.ub * Math.sqrt(scatter),
     bowPx: bow.b,
     uBowPx: bow.ub * Math.sqrt(scatter),
-    fan: fan.b,
+    fan: state.fan + fan.b,
     uFan: fan.ub * Math.sqrt(fanScatter),
   };
 }

@@ -157,12 +157,13 @@ function measureLook(
   return withZero(stack, setup, options, ms);
 }
 
-/** Measures once without a person's shift: what that finds is the zero order a shift counts from. */
+/** Measures once without a person's orders: what that finds is the zero order they are counted from. */
 function withZero(stack: FrameStack, setup: SetupValues, options: FitOptions, ms: Timing): MeasuredFrame {
-  const plainly = resultFromStack(stack, setup, { ...options, zeroShift: 0 }, ms);
+  const plainly = resultFromStack(stack, setup, { ...options, zeroShift: 0, leaveOut: [] }, ms);
   const { xPx, yPx } = plainly.zeroOrder;
   stack.plan.zeroPx = coordinatesIn(stack.plan.rect, xPx, yPx).u;
-  return options.zeroShift ? fromPlan(stack, setup, options, ms) : { stack, result: plainly };
+  const counted = options.zeroShift || options.leaveOut?.length;
+  return counted ? fromPlan(stack, setup, options, ms) : { stack, result: plainly };
 }
 
 /** Fringes too wide to be found as a wave: one or two that fit over the whole frame are named, not denied. */

@@ -11,7 +11,7 @@ import {
 import { nearFieldRelative } from './wavelength';
 
 export function geometryFindings(c: FindingContext): Finding[] {
-  return [tilt(c), yaw(c), ...placeFindings(c)];
+  return [tilt(c), yaw(c), keystone(c), ...placeFindings(c)];
 }
 
 /** Checks of where region, zero order and plate stand: of a frame or a scan. */
@@ -34,6 +34,29 @@ function tilt(c: FindingContext): Finding {
     size: 'Uncorrected that would be {size}.',
     done: 'The frame was straightened; spacing is taken square to the fringes.',
     remedy: lean > 3 ? 'Straighten the camera to below 3°.' : 'Nothing to do.',
+  });
+}
+
+/** A screen seen from above or below: the fringes fan out, and the spacing belongs to one height in the frame. */
+function keystone(c: FindingContext): Finding {
+  const { fan, uFan } = c.measured.place.tilt;
+  const height = c.measured.place.rect.heightPx;
+  const change = Math.abs(fan) * height;
+  const shows = change > 0.002 && Math.abs(fan) > 5 * uFan;
+  return finding(c, {
+    check: 'keystone',
+    word: shows ? 'look' : 'clear',
+    relative: shows ? change / 2 : 0,
+    seen: shows
+      ? `The spacing changes by ${percent(change)} along the fringes: the screen is seen from above or below.`
+      : 'The spacing is the same along the fringes.',
+    size: shows ? 'From the middle of the region to its edge that is {size}.' : 'Effect {size}.',
+    done: shows
+      ? 'Bands were stretched back; the spacing holds at the middle of the region.'
+      : 'The spacings of the bands were compared.',
+    remedy: shows
+      ? 'Square up camera and screen, and take the scale at the height of the region’s middle.'
+      : 'Nothing to do.',
   });
 }
 

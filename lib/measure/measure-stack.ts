@@ -85,7 +85,7 @@ function measureRegion(
   const zeroAtPx = options.zeroShift ? zeroWanted(stack, region, options.zeroShift) : null;
   const how = { from, asItIs: true, rounds: ROUNDS, zeroAtPx };
   const fitted = (d: BandData) =>
-    fitBands(d, plan.start.spacingPx, prior, limits, leftOutBy(options, from), how);
+    fitBands(d, plan.start.spacingPx, prior, limits, leftOutBy(stack, region, options), how);
   const plainly = fitted(data);
   if (plainly === null) throw noFringes();
   const plainSpacing = plainly.fit.result.parameters[0] * plainly.fit.unitPx;
@@ -170,18 +170,20 @@ function startIn(stack: FrameStack, region: Rectangle): StartValues {
   };
 }
 
-/** Where the shifted zero order stands from this region's centre. */
+/** Where the zero order stands from this region's centre once a person has moved it by so many orders. */
 function zeroWanted(stack: FrameStack, region: Rectangle, zeroShift: number): number {
   const { zeroPx, start, rect } = stack.plan;
   return zeroPx - zeroShift * start.spacingPx - coordinatesIn(rect, region.cxPx, region.cyPx).u;
 }
 
-/** Places near orders the person wants left out, as the stack's maker saw them. */
-function leftOutBy(options: FitOptions, from: StartValues): (u: number) => boolean {
+/** Places near orders the person wants left out, counted from the same zero order as the numbers the person saw. */
+function leftOutBy(stack: FrameStack, region: Rectangle, options: FitOptions): (u: number) => boolean {
   const orders = options.leaveOut ?? [];
   if (orders.length === 0) return () => false;
-  const places = orders.map((m) => from.zero + (m - (options.zeroShift ?? 0)) * from.spacing);
-  return (u) => places.some((at) => Math.abs(u - at) < 0.5 * from.spacing);
+  const zero = zeroWanted(stack, region, options.zeroShift ?? 0);
+  const { spacingPx } = stack.plan.start;
+  const places = orders.map((m) => zero + m * spacingPx);
+  return (u) => places.some((at) => Math.abs(u - at) < 0.5 * spacingPx);
 }
 
 /** The zero order by envelope and geometry; a person's own choice stands. */

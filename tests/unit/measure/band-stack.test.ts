@@ -107,4 +107,15 @@ describe('band stack', () => {
       .filter((p) => Math.abs(p.u - at) < 15);
     expect(near.every((p) => p.left === 1)).toBe(true);
   });
+
+  it('counts what is left out from the zero order of the plan, not from where the fit starts', () => {
+    const { plan } = first.stack;
+    const moved = { ...first.stack, plan: { ...plan, zeroPx: plan.zeroPx + plan.start.spacingPx } };
+    const { orders, curves } = answered(measureStack(moved, SETUP, { leaveOut: [1] }));
+    const left = (m: number) => {
+      const at = orders.find((o) => o.m === m)?.alongPx ?? NaN;
+      return curves.left.filter((_, i) => Math.abs(curves.alongPx[i] - at) < 10).every((l) => l === 1);
+    };
+    expect([left(1), left(2)]).toEqual([false, true]);
+  });
 });

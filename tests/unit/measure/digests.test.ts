@@ -24,14 +24,14 @@ const truth = JSON.parse(readFileSync(path.join(FRAMES, 'truth.json'), 'utf8')) 
 
 /** Pinned together: the version, and what that version answers. */
 const PINNED = {
-  engine: '0.6.0',
+  engine: '0.6.1',
   digests: {
-    'clean.tif': '99047d5f76dc58222714b3c4f2b956cd6118182d801e2fb0db0bb09a665d97fd',
-    'tilted.tif, a region of its own': '12d9d0efc2c7a5c6d539491214f1edde036bf773b0cc256c63ae000c0661d5c6',
-    'clipped.tif, orders left out': 'a73bfc4a23ddd6149acce4485ca37c0a27577e22e74eb51404ed58622e1e6d08',
-    'photo.jpg': '9f77c28646189b4d84ff5cf46028124f68dd9d9b56582653bbce0fb6cf651a4c',
-    'photo-turned.jpg': '5aa76a866046e1bf7474dfe65226c548c99cdb5562fc767e1a8b25411b6ce1e6',
-    'one-slit.tif': 'e3bcd7bc07c45506d06282ae1b9322bfac547e030be886d5fe09c78c6e10c01c',
+    'clean.tif': '43ec83e0cdc4fff9bd681d1b84db38b583c95bcdb88db13a2952101fccd45b43',
+    'tilted.tif, a region of its own': '3df1f9930261f67a4d53977c0af831f9080ab39cd4e0eb0e2f01afe4f62c4416',
+    'clipped.tif, orders left out': '14e2df58f13f110309bdc4add0dce1caa0370705d68ef47ecd7f9c451b85ea9e',
+    'photo.jpg': '031d0230bf04529d7521e4413382dc60cf822a9f3748a9d17f0a97d16d6813b4',
+    'photo-turned.jpg': '8d70143b0ba632ca9ec4968489b625b38329dd0ed3860248ea8278ebc3d127c6',
+    'one-slit.tif': '18c07e9c7a739830d250c0a6c1dd012a12a5b91c5813ba5cd835c4bd8d8d4b6c',
   } as Record<string, string>,
 };
 

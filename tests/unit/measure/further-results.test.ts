@@ -43,7 +43,7 @@ describe('beside the wavelength', () => {
     expect(Math.abs(r.visibility - 0.91)).toBeLessThan(FAR * (r.uVisibility ?? 0));
     expect(r.bandwidth?.fwhmNm).toBeNull();
     expect(r.bandwidth?.limitNm).toBeLessThan(10);
-    for (const name of ['unequal', 'second-system', 'bandwidth', 'lock'])
+    for (const name of ['unequal', 'second-system', 'bandwidth', 'lock', 'keystone'])
       expect(check(r, name).word).toBe('clear');
     expect(r.words?.width).not.toBe('stop');
   });
@@ -82,5 +82,6 @@ describe('beside the wavelength', () => {
     const r = await measured(scene);
     const there = spacingAtPx(withSpacing({ ...PLAIN_SCENE, ...scene }, 60), r.region.cyPx - scene.zeroYPx);
     expect(Math.abs(r.spacingPx - there)).toBeLessThan(FAR * r.uSpacingPx + 1e-5 * there);
+    expect(check(r, 'keystone').word).toBe('look');
   });
 });
