@@ -105,15 +105,21 @@ export function gridOf(data: BandData): CommonGrid {
   };
 }
 
-/** Puts every cell into the common coordinate: the band's own shift and stretch undone. */
+/**
+ * Puts every cell into the common coordinate: shift and stretch undone at the cell's own place along the fringes, which is
+ * not quite its band's, for rows of pixels enter and leave a band on its way.
+ */
 export function placeCells(data: BandData, state: BandState, grid: CommonGrid): void {
   const { u, bin } = state.view;
   const scale = 1 / grid.pitchPx;
   for (let b = 0; b < data.bands; b++) {
     const shift = state.shift[b];
     const squeeze = 1 / (1 + state.stretch[b]);
+    const fan = state.fan * squeeze;
     for (let cell = b * data.bins, end = cell + data.bins; cell < end; cell++) {
-      const at = (data.u[cell] - shift) * squeeze;
+      const dv = data.dv[cell];
+      // 1 / (stretch of the band + fan dv), whose square does not matter: fan dv is below 1e-4.
+      const at = (data.u[cell] - shift - state.lean * dv) * squeeze * (1 - fan * dv);
       const k = Math.floor((at - grid.from) * scale);
       u[cell] = at;
       bin[cell] = data.pixels[cell] > 0 && k >= 0 && k < grid.bins ? k : -1;

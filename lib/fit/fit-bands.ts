@@ -58,6 +58,8 @@ export interface BandFit {
   limits: LightLimits;
   /** A zero order that is settled, px; null follows the envelope. */
   zeroAtPx: number | null;
+  /** In the last round no bin was left out, no band moved, and the fit it began with was this one but for noise. */
+  settled: boolean;
 }
 
 /** Before there is a fit, cells this near the white level count as clipped. */
@@ -98,10 +100,7 @@ export function fitBands(
   const table = tableFor(data, grid, fit);
   // A pen line would count as a change of every band's gain, and all of them be thrown out.
   if (how.asItIs) maskBins({ state, grid, fit }, profile);
-  table.fill(state.view);
-  const shifts = regressBands(data, state, grid, fit);
-  undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
-  undoFan(data, state, shifts);
+  const { shifts } = alignBands(data, state, grid, table, fit);
   let band: BandFit = {
     data,
     fit,
@@ -112,15 +111,41 @@ export function fitBands(
     shifts,
     limits,
     zeroAtPx: how.zeroAtPx,
+    settled: false,
   };
   for (let round = 0; round < how.rounds; round++) {
     const next = refineBands(band, band.fit.layout.terms);
     if (next === null) return null;
     band = next;
-    // The fit by which noise and masks were made already was this one, but for noise.
-    if (isSettled(next.fit)) break;
+    if (band.settled) break;
   }
   return how.zeroAtPx === null ? withBestZero(band) : band;
+}
+
+/** Bands count as aligned once a turn moves none of them by more than this share of a fringe. */
+const ALIGNED = 0.02;
+const MOST_TURNS = 4;
+
+/** Every band against the fit, until lean and fan are undone: the regression sees a displacement in its first order only. */
+function alignBands(
+  data: BandData,
+  state: BandState,
+  grid: CommonGrid,
+  table: FitTable,
+  fit: ProfileFit,
+): { shifts: BandShifts; moved: boolean } {
+  const spacingPx = fit.result.parameters[0] * fit.unitPx;
+  const reach = Math.max(...data.bandV.map(Math.abs));
+  table.fill(state.view);
+  for (let turn = 1; ; turn++) {
+    const { lean, fan } = state;
+    const shifts = regressBands(data, state, grid, fit);
+    undoLean(data, state, shifts, spacingPx);
+    undoFan(data, state, shifts);
+    const moved = reach * (Math.abs(state.lean - lean) + grid.half * Math.abs(state.fan - fan));
+    if (turn === MOST_TURNS || moved < ALIGNED * spacingPx) return { shifts, moved: turn > 1 };
+    viewCells(data, state, grid, table);
+  }
 }
 
 /**
@@ -148,7 +173,9 @@ const FAN_SIGMAS = 5;
  */
 function undoFan(data: BandData, state: BandState, shifts: BandShifts): void {
   const fan = weightedLine(data.bandV, shifts.stretch, shifts.stretchWeight);
-  const ub = fan.ub * Math.sqrt(Math.max(1, fan.chiSquare / Math.max(1, fan.n - 2)));
+  const scatter = fan.chiSquare / Math.max(1, fan.n - 2);
+  // Weights have no scale before the noise is known: then the scatter is all there is.
+  const ub = fan.ub * Math.sqrt(state.noise === null ? scatter : Math.max(1, scatter));
   if (!Number.isFinite(fan.b) || !(Math.abs(fan.b) > FAN_SIGMAS * ub)) return;
   state.fan += fan.b;
   for (let k = 0; k < data.bands; k++) {
@@ -192,7 +219,7 @@ function withBestZero(band: BandFit): BandFit | null {
 
 /** One more round: noise and masks from the bands' agreement, a new profile, the fit with these terms, the bands again. */
 export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null {
-  const { data, state, grid, limits } = before;
+  const { data, state, grid } = before;
   const spacing = before.fit.result.parameters[0] * before.fit.unitPx;
   viewCells(data, state, grid, before.table);
   const agreed = new AgreedLight(before);
@@ -200,16 +227,14 @@ export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null 
   maskCells(before, agreed);
   const expected = expectedOn(grid, before.table);
   const whole = combineBands(data, state, grid, expected, spacing);
-  const profile = maskBins(before, whole) ? combineBands(data, state, grid, expected, spacing) : whole;
+  const masked = maskBins(before, whole);
+  const profile = masked ? combineBands(data, state, grid, expected, spacing) : whole;
   if (countUsed(profile) < FEWEST_POINTS) return null;
   const next = refit(profile, before.fit, terms);
   const fit = rebase(profile, next, stepsToZero(next, before.zeroAtPx));
   const table = tableFor(data, grid, fit);
-  table.fill(state.view);
-  const shifts = regressBands(data, state, grid, fit);
-  undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
-  undoFan(data, state, shifts);
-  return { ...before, fit, profile, table, shifts, limits };
+  const { shifts, moved } = alignBands(data, state, grid, table, fit);
+  return { ...before, fit, profile, table, shifts, settled: !masked && !moved && isSettled(next) };
 }
 
 /** Was the fit what it is now before its last round, up to what noise and misfit make of chi-square anyway? */
