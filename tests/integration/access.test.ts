@@ -5,6 +5,8 @@ import * as lots from '@/app/(room)/lots/actions';
 import * as people from '@/app/(room)/people/actions';
 import * as readings from '@/app/(room)/readings/actions';
 import { POST as upload } from '@/app/api/upload/route';
+import { POST as newCertificate } from '@/app/api/certificates/route';
+import { GET as certificate } from '@/app/api/certificates/[sha256]/route';
 import { GET as status } from '@/app/api/frames/status/route';
 import { GET as original } from '@/app/api/frames/[id]/original/route';
 import { GET as photo } from '@/app/api/frames/[id]/photo/route';
@@ -25,6 +27,10 @@ const MATRIX: Record<string, Who[]> = {
   emptyIntake: ['technician', 'technician2', 'both'],
   addBench: ['admin'],
   addSetup: ['admin'],
+  decideSetup: ['qa'],
+  takeBackSetup: ['admin'],
+  'POST certificates': ['admin', 'qa'],
+  'GET certificates': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   addSpecification: ['admin', 'qa'],
   retireSpecification: ['admin', 'qa'],
   openLot: ['admin', 'technician', 'technician2', 'both'],
@@ -105,6 +111,10 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     emptyIntake: () => act(room.emptyIntake()),
     addBench: () => act(benches.addBench({ name: 'Bench T' })),
     addSetup: () => act(benches.addSetup({ ...SETUP, benchId: nowhere, afterNumber: 0 })),
+    decideSetup: () => act(benches.decideSetup({ setupId: nowhere, decision: 'approved' })),
+    takeBackSetup: () => act(benches.takeBackSetup({ setupId: nowhere })),
+    'POST certificates': () => route(newCertificate, 'POST', '/api/certificates?name=a.pdf', ''),
+    'GET certificates': () => route(certificate, 'GET', '/api/certificates/x'),
     addSpecification: () => act(lots.addSpecification(specification)),
     retireSpecification: () => act(lots.retireSpecification({ id: nowhere })),
     openLot: () => act(lots.openLot({ number: '1', specificationId: nowhere })),
@@ -214,6 +224,7 @@ describe('with rows that are there', () => {
       'change a setup',
       () => benches.addSetup({ ...SETUP, benchId: world.benchId, afterNumber: 1 }),
     ],
+    ['admin', 'approve a setup', () => benches.decideSetup({ setupId: world.setupId, decision: 'approved' })],
     [
       'qa',
       'change roles',

@@ -1,9 +1,11 @@
 import { Mark } from '@/components/figures/marks';
 import type { SetupView, StatedValue } from '@/lib/domain/views';
 import type { FindingWord } from '@/lib/domain/reading-result';
-import { formatCalendarDate, formatNumber, groupThousands, placesFor } from '@/lib/quantity/format';
+import { CertificateName } from '@/components/setups/certificate-file';
+import { cameraText, statedText } from '@/components/setups/stated-words';
+import { SETUP_VALUES } from '@/lib/domain/setup';
+import { formatCalendarDate } from '@/lib/quantity/format';
 import { daysUntil, dueWord } from './due';
-import { SETUP_VALUES, valueOf } from './setup-values';
 
 function dueText(value: StatedValue, today: Date): { word: FindingWord; text: string } {
   if (!value.due) return { word: 'clear', text: 'No due date is stated.' };
@@ -33,7 +35,7 @@ export function HowKnown({ setup }: { setup: SetupView }) {
       </div>
       <ul className="known">
         {SETUP_VALUES.map(({ key, name, symbol, unit }) => {
-          const value = valueOf(setup, key);
+          const value = setup[key];
           const due = dueText(value, today);
           return (
             <li key={key}>
@@ -42,15 +44,21 @@ export function HowKnown({ setup }: { setup: SetupView }) {
                 <b>
                   {name} <span className="sym">{symbol}</span>
                 </b>
-                : ± {formatNumber(value.stated, placesFor(value.stated))} {unit}, k ={' '}
-                {groupThousands(String(value.k))}. {sentence(value.certificate)} {due.text}
+                : {statedText(value, unit)}. {sentence(value.certificate)} {due.text}
+                {value.file ? (
+                  <>
+                    {' '}
+                    <CertificateName file={value.file} />
+                  </>
+                ) : null}
               </div>
             </li>
           );
         })}
       </ul>
       <p className="mt-3 text-small text-ink-2">
-        Plate {setup.plate}. {setup.why}
+        Plate {setup.plate}. {cameraText(setup.camera) ? `Camera ${cameraText(setup.camera)}. ` : ''}
+        {setup.why}
       </p>
     </section>
   );
