@@ -21,6 +21,7 @@ import { defineSetupDecision } from './setup-decision';
 import { defineSignInAttempt } from './sign-in-attempt';
 import { defineSignature } from './signature';
 import { defineSource } from './source';
+import { defineSourceCertificate } from './source-certificate';
 import { defineSpecification } from './specification';
 import { defineUnit } from './unit';
 import { defineUnitOutcome } from './unit-outcome';
@@ -52,6 +53,7 @@ export function defineTables(sequelize: Sequelize) {
     signInAttempts: defineSignInAttempt(sequelize),
     signatures: defineSignature(sequelize),
     sources: defineSource(sequelize),
+    sourceCertificates: defineSourceCertificate(sequelize),
     specifications: defineSpecification(sequelize),
     units: defineUnit(sequelize),
     unitOutcomes: defineUnitOutcome(sequelize),

@@ -90,6 +90,11 @@ async function constants(
     name: 'Reference R-1',
     vacuumNm: 632.9912,
     uNm: 0.00095,
+    kind: 'free-running-he-ne',
+    isReference: true,
+    certificate: 'CIPM 2007, Recommendation 2',
+    file: null,
+    due: null,
     note: 'Invented unit. Free-running He-Ne, 633 nm; value of CIPM 2007, Recommendation 2 (unstabilised), u 1.5e-6.',
   });
   const specifications = new Map<string, number>();

@@ -157,16 +157,6 @@ export const unitsSchema = z.object({
     .min(1, 'There is no serial in it.')
     .max(LIMITS.unitsAtOnce, `At most ${LIMITS.unitsAtOnce} units at once.`),
 });
-export const sourceSchema = z.object({
-  name: z.string().trim().min(1, 'The source needs a name.').max(60),
-  vacuumNm: finite('Wavelength').refine(
-    (v) => v >= 200 && v <= 2000,
-    'The wavelength lies between 200 and 2000 nm.',
-  ),
-  uNm: positive('The standard uncertainty'),
-  note: z.string().trim().max(300).default(''),
-});
-
 export const personSchema = z.object({
   name: z.string().trim().min(1, 'The person needs a name.').max(80),
   email: emailSchema,

@@ -5,6 +5,7 @@ import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
 import type { Role } from './roles';
 import type { ConfirmedValue, UncertaintyShape } from './setup';
+import type { SourceKind } from './source';
 import type { Judgement, Medium, Specification, Verdict } from './specification';
 
 export interface PersonRef {
@@ -155,9 +156,17 @@ export interface LotView extends LotRow {
 export interface SourceView {
   id: number;
   name: string;
+  kind: SourceKind;
+  /** May a bench be checked with it? */
+  isReference: boolean;
   vacuumNm: number;
   uNm: number;
+  certificate: string;
+  file: CertificateLink | null;
+  due: string | null;
   note: string;
+  /** Which of its certificates this is, from 1. */
+  revision: number;
 }
 
 export const OUTCOMES = ['passed-on', 'measure-again', 'held-for-qa', 'sent-back'] as const;

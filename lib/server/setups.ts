@@ -1,4 +1,5 @@
 import 'server-only';
+import { daysUntil, dueWord } from '@/lib/domain/due';
 import type { Estimate, SetupValues, ToneChoice } from '@/lib/domain/reading-result';
 import type { UncertaintyShape } from '@/lib/domain/setup';
 import type { BenchFitness } from '@/lib/domain/views';
@@ -95,15 +96,11 @@ export function setupValues(row: SetupConstants): SetupValues {
   };
 }
 
-/** Days before a due date from which a bench asks for attention. */
-const DUE_SOON_DAYS = 30;
-
 /** Days until the first due date of a setup, negative when overdue; null when nothing is ever due. */
 export function daysUntilDue(row: SetupConstants, at: Date): number | null {
   const dues = [row.scaleDue, row.separationDue, row.widthDue, row.distanceDue].filter((due) => due !== null);
   if (!dues.length) return null;
-  const today = Date.parse(at.toISOString().slice(0, 10));
-  return Math.min(...dues.map((due) => Math.round((Date.parse(due) - today) / 86_400_000)));
+  return Math.min(...dues.map((due) => daysUntil(due, at)));
 }
 
 const days = (n: number): string => `${n} ${n === 1 ? 'day' : 'days'}`;
@@ -115,7 +112,7 @@ export function fitnessOf(row: SetupConstants | null, at: Date): BenchFitness {
   if (left === null) return { word: 'clear', text: 'in force, nothing due' };
   if (left < 0) return { word: 'stop', text: `overdue ${days(-left)}: take, not accept` };
   if (left === 0) return { word: 'look', text: 'due today' };
-  return { word: left <= DUE_SOON_DAYS ? 'look' : 'clear', text: `due in ${days(left)}` };
+  return { word: dueWord(left), text: `due in ${days(left)}` };
 }
 
 const NAMES = [

@@ -110,7 +110,7 @@ describe('the main job', () => {
     await admin.expectAccessible();
     await page.getByRole('button', { name: /setup 1/i }).click();
     await page.waitForURL(/\/benches\/\d+$/);
-    await page.getByRole('heading', { name: 'Bench 7' }).waitFor();
+    await page.getByRole('heading', { name: 'Bench 7', exact: true }).waitFor();
     await page.getByRole('heading', { name: 'Setup 1 waits for QA' }).waitFor();
     expect(await page.getByRole('button', { name: /^Approve/ }).count()).toBe(0);
     await admin.expectAccessible();
@@ -129,7 +129,8 @@ describe('the main job', () => {
     await page.getByLabel('Name', { exact: true }).fill('Reference S-1');
     await page.getByLabel('Wavelength in vacuum, nm').fill('635.1725');
     await page.getByLabel(/^Standard uncertainty/).fill('0.001');
-    await page.getByLabel('Where the value comes from').fill('Invented source.');
+    await page.getByLabel('Certificate or publication').fill('Invented certificate S-1');
+    await admin.expectAccessible();
     await page.getByRole('button', { name: /^Add the source|^Add it/ }).click();
     await page.getByText('Reference S-1').first().waitFor();
 

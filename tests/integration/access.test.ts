@@ -4,6 +4,7 @@ import * as benches from '@/app/(room)/benches/actions';
 import * as lots from '@/app/(room)/lots/actions';
 import * as people from '@/app/(room)/people/actions';
 import * as readings from '@/app/(room)/readings/actions';
+import * as sources from '@/app/(room)/sources/actions';
 import { POST as upload } from '@/app/api/upload/route';
 import { POST as newCertificate } from '@/app/api/certificates/route';
 import { GET as certificate } from '@/app/api/certificates/[sha256]/route';
@@ -36,6 +37,7 @@ const MATRIX: Record<string, Who[]> = {
   openLot: ['admin', 'technician', 'technician2', 'both'],
   addUnits: ['admin', 'technician', 'technician2', 'both'],
   addSource: ['admin', 'qa'],
+  renewSource: ['admin', 'qa'],
   addPerson: ['admin'],
   changePerson: ['admin'],
   keepFit: ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
@@ -119,7 +121,9 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     retireSpecification: () => act(lots.retireSpecification({ id: nowhere })),
     openLot: () => act(lots.openLot({ number: '1', specificationId: nowhere })),
     addUnits: () => act(lots.addUnits({ lotId: nowhere, serials: ['X'] })),
-    addSource: () => act(lots.addSource({ name: '', vacuumNm: 633, uNm: 0.1 })),
+    addSource: () => act(sources.addSource({ name: '', kind: 'lamp-line', vacuumNm: 633, uNm: 0.1 })),
+    renewSource: () =>
+      act(sources.renewSource({ sourceId: nowhere, afterNumber: 1, vacuumNm: 633, uNm: 0.1 })),
     addPerson: () =>
       act(people.addPerson({ name: '', email: 'x@test.example', roles: ['qa'], password: PASSWORD })),
     changePerson: () => act(people.changePerson({ personId: nowhere, roles: [], active: true })),
@@ -153,7 +157,7 @@ async function fingerprint(): Promise<unknown> {
 
 test('the matrix names every call, and every call is in the matrix', () => {
   expect(Object.keys(calls(null)).sort()).toEqual(Object.keys(MATRIX).sort());
-  const exported = [room, benches, lots, people, readings].flatMap((file) => Object.keys(file));
+  const exported = [room, benches, lots, people, readings, sources].flatMap((file) => Object.keys(file));
   expect(exported.filter((name) => !(name in MATRIX) && name !== 'signOutEverywhere')).toEqual([]);
 });
 

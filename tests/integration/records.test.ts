@@ -52,6 +52,7 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['setups', 'plate'],
   ['setup_decisions', 'reason'],
   ['certificate_files', 'file_name'],
+  ['source_certificates', 'certificate'],
   ['readings', 'value_nm'],
   ['reading_results', 'result_json'],
   ['signatures', 'person_name'],

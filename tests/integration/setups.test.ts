@@ -1,11 +1,14 @@
 import { addBench } from '@/lib/server/commands/add-bench';
 import { addPerson } from '@/lib/server/commands/add-person';
 import { addSetup } from '@/lib/server/commands/add-setup';
+import { addSource, renewSource } from '@/lib/server/commands/add-source';
 import { decideSetup, takeBackSetup } from '@/lib/server/commands/decide-setup';
 import { setupSchema } from '@/lib/domain/setup-schemas';
+import { renewSourceSchema, sourceSchema } from '@/lib/domain/source-schemas';
 import { PRODUCT } from '@/lib/server/context';
 import { fitFacts } from '@/lib/server/frame-facts';
 import { findBench, listBenchChoices } from '@/lib/server/queries/benches';
+import { listSources } from '@/lib/server/queries/sources';
 import { requireSetupAt, setupAt } from '@/lib/server/setup-timeline';
 import { POST as sendCertificate } from '@/app/api/certificates/route';
 import { GET as getCertificate } from '@/app/api/certificates/[sha256]/route';
@@ -231,6 +234,55 @@ describe('what looks odd', () => {
   test('of another plate separation and width are not compared', async () => {
     await propose({ plate: 'P-2', separationUm: { ...SETUP.separationUm, value: 200 } });
     expect((await findBench(world.benchId, NOW))?.waiting?.confirmed).toEqual([]);
+  });
+});
+
+describe('a source', () => {
+  const START = { kind: 'lamp-line' as const, vacuumNm: 546.2268, uNm: 0.0001 };
+  const add = (change: object) =>
+    addSource(as(world.people.qa), sourceSchema.parse({ ...START, name: 'Invented lamp', ...change }));
+
+  test('keeps every certificate; the newest is the one that counts', async () => {
+    const { sourceId } = await add({ certificate: 'Invented L-1', due: '2026-12-01' });
+    const renewed = renewSourceSchema.parse({
+      sourceId,
+      afterNumber: 1,
+      vacuumNm: 546.2269,
+      uNm: 0.0002,
+      certificate: 'Invented L-2',
+      due: '2028-12-01',
+    });
+    await renewSource(as(world.people.admin), renewed);
+    await expect(renewSource(as(world.people.admin), renewed)).rejects.toMatchObject({
+      code: 'CHANGED_MEANWHILE',
+    });
+    const shown = (await listSources()).find(({ id }) => id === sourceId);
+    expect(shown).toMatchObject({
+      vacuumNm: 546.2269,
+      certificate: 'Invented L-2',
+      revision: 2,
+      due: '2028-12-01',
+    });
+    expect(
+      await rows(
+        'SELECT number, vacuum_nm, certificate FROM source_certificates WHERE source_id = :sourceId',
+        {
+          sourceId,
+        },
+      ),
+    ).toEqual([
+      { number: 1, vacuum_nm: 546.2268, certificate: 'Invented L-1' },
+      { number: 2, vacuum_nm: 546.2269, certificate: 'Invented L-2' },
+    ]);
+  });
+
+  test.each([
+    ['a product is no reference', { kind: 'product', isReference: true }, 'isReference'],
+    ['a stabilised laser stands on its certificate', { kind: 'stabilised-laser' }, 'certificate'],
+    ['a kind is one of those there are', { kind: 'unstated' }, 'kind'],
+  ])('%s', (_what, change, field) => {
+    const answer = sourceSchema.safeParse({ ...START, name: 'Invented', ...change });
+    expect(answer.error?.issues.map(({ path }) => path.join('.'))).toEqual([field]);
   });
 });
 

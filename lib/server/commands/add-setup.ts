@@ -8,7 +8,7 @@ import type { setupSchema } from '@/lib/domain/setup-schemas';
 import type { CommandContext } from '../context';
 import { db } from '../db';
 import { mailText, peopleWith } from '../people-mail';
-import { certificateLinks } from '../queries/certificates';
+import { requireCertificate } from '../queries/certificates';
 import { changeBetween, type SetupConstants, type StatedColumns } from '../setups';
 import { setupAt, waitingNumber } from '../setup-timeline';
 import { inTransaction, type Work } from '../transaction';
@@ -48,7 +48,7 @@ export async function addSetup(
     const inForce = await setupAt(bench.id, context.at, transaction);
     const before = inForce ? await tables.setups.findByPk(inForce.id, { transaction }) : null;
     const confirmed = requireConfirmed(setup, before);
-    await requireCertificates(setup, work);
+    for (const { key } of SETUP_VALUES) await requireCertificate(setup[key].file, `${key}.file`, transaction);
     try {
       const row = await tables.setups.create(rowOf(context, setup, confirmed), { transaction });
       work.audit({
@@ -96,19 +96,6 @@ function requireConfirmed(setup: NewSetup, before: SetupConstants | null): Confi
   const [first] = Object.values(open);
   if (first) throw new AppError('BAD_INPUT', first, open);
   return confirmed;
-}
-
-async function requireCertificates(setup: NewSetup, work: Work): Promise<void> {
-  const known = await certificateLinks(
-    SETUP_VALUES.map(({ key }) => setup[key].file),
-    work.transaction,
-  );
-  for (const { key } of SETUP_VALUES) {
-    const { file } = setup[key];
-    if (file === null || known.has(file)) continue;
-    const message = 'This certificate is not in the store. Add its file again.';
-    throw new AppError('BAD_INPUT', message, { [`${key}.file`]: message });
-  }
 }
 
 async function tellQa(

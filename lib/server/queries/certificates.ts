@@ -21,6 +21,17 @@ export async function certificateLinks(
   return new Map(rows.map((row) => [row.sha256, row]));
 }
 
+/** Throws beside its field when a value names a certificate nobody handed in. */
+export async function requireCertificate(
+  file: string | null,
+  field: string,
+  transaction?: Transaction,
+): Promise<void> {
+  if (file === null || (await certificateLinks([file], transaction)).has(file)) return;
+  const message = 'This certificate is not in the store. Add its file again.';
+  throw new AppError('BAD_INPUT', message, { [field]: message });
+}
+
 /** A certificate's bytes as they were handed in. Throws NOT_FOUND for a hash nobody handed in. */
 export async function openCertificate(
   sha256: string,

@@ -107,6 +107,11 @@ export async function makeWorld(): Promise<World> {
     name: 'Invented reference',
     vacuumNm: 632.991,
     uNm: 0.001,
+    kind: 'stabilised-laser',
+    isReference: true,
+    certificate: 'Invented C-9',
+    file: null,
+    due: null,
     note: '',
   });
   const { db } = await import('@/lib/server/db');

@@ -1,22 +1,9 @@
 import { Mark } from '@/components/figures/marks';
-import type { SetupView, StatedValue } from '@/lib/domain/views';
-import type { FindingWord } from '@/lib/domain/reading-result';
+import type { SetupView } from '@/lib/domain/views';
 import { CertificateName } from '@/components/setups/certificate-file';
 import { cameraText, statedText } from '@/components/setups/stated-words';
+import { dueOf } from '@/lib/domain/due';
 import { SETUP_VALUES } from '@/lib/domain/setup';
-import { formatCalendarDate } from '@/lib/quantity/format';
-import { daysUntil, dueWord } from './due';
-
-function dueText(value: StatedValue, today: Date): { word: FindingWord; text: string } {
-  if (!value.due) return { word: 'clear', text: 'No due date is stated.' };
-  const days = daysUntil(value.due, today);
-  const date = formatCalendarDate(value.due);
-  if (days < 0) return { word: 'stop', text: `Overdue since ${date}: frames can be taken, not accepted.` };
-  return {
-    word: dueWord(days),
-    text: days === 0 ? 'Due today.' : `Due ${date}, in ${days} ${days === 1 ? 'day' : 'days'}.`,
-  };
-}
 
 function sentence(certificate: string): string {
   const text = certificate.trim();
@@ -36,7 +23,7 @@ export function HowKnown({ setup }: { setup: SetupView }) {
       <ul className="known">
         {SETUP_VALUES.map(({ key, name, symbol, unit }) => {
           const value = setup[key];
-          const due = dueText(value, today);
+          const due = dueOf(value.due, today);
           return (
             <li key={key}>
               <Mark kind={`check-${due.word}`} />
@@ -44,7 +31,8 @@ export function HowKnown({ setup }: { setup: SetupView }) {
                 <b>
                   {name} <span className="sym">{symbol}</span>
                 </b>
-                : {statedText(value, unit)}. {sentence(value.certificate)} {due.text}
+                : {statedText(value, unit)}. {sentence(value.certificate)} {due.text}.
+                {due.word === 'stop' ? ' Frames can be taken, not accepted.' : ''}
                 {value.file ? (
                   <>
                     {' '}

@@ -23,6 +23,7 @@ const WORDS: Record<string, string> = {
   'setup.decline': 'Setup declined',
   'setup.take-back': 'Setup taken back',
   'source.add': 'Source added',
+  'source.renew': 'Certificate of a source renewed',
   'specification.add': 'Specification added',
   'specification.retire': 'Specification retired',
   'unit.outcome': 'Outcome set',
