@@ -95,7 +95,7 @@ async function constants(
     certificate: 'CIPM 2007, Recommendation 2',
     file: null,
     due: null,
-    note: 'Invented unit. Free-running He-Ne, 633 nm; value of CIPM 2007, Recommendation 2 (unstabilised), u 1.5e-6.',
+    note: 'Invented unit; the published value of an unstabilised 633 nm laser, u 1.5e-6.',
   });
   const specifications = new Map<string, number>();
   for (const { key, name, nominalNm, half, rule } of DEMO_SPECIFICATIONS) {

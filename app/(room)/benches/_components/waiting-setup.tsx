@@ -22,6 +22,7 @@ const MUCH_SAME = 1e-12;
 /** A setup that waits for QA: who asks for what, why, value beside value, and the decision. */
 export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }: Props) {
   const camera = cameraText(setup.camera);
+  const heads = { was: inForce ? `setup ${inForce.number}` : 'in force', now: `setup ${setup.number}` };
   return (
     <section className="waiting-setup" aria-labelledby="waiting">
       <div className="cap">
@@ -60,8 +61,12 @@ export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }
         <tbody>
           <tr>
             <td>Slit plate</td>
-            <td className="num">{inForce?.plate ?? 'none'}</td>
-            <td className={inForce?.plate === setup.plate ? 'num' : 'num moved'}>{setup.plate}</td>
+            <td className="num" data-head={heads.was}>
+              {inForce?.plate ?? 'none'}
+            </td>
+            <td className={inForce?.plate === setup.plate ? 'num' : 'num moved'} data-head={heads.now}>
+              {setup.plate}
+            </td>
             <td />
           </tr>
           {SETUP_VALUES.map(({ key, name, symbol, unit }) => {
@@ -74,10 +79,10 @@ export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }
                 <td>
                   {name} <span className="sym">{symbol}</span>
                 </td>
-                <td className="num">
+                <td className="num" data-head={heads.was}>
                   {was ? <Quantity value={was.value} expanded={2 * was.u} unit={unit} size="cell" /> : 'none'}
                 </td>
-                <td className={moved ? 'num moved' : 'num'}>
+                <td className={moved ? 'num moved' : 'num'} data-head={heads.now}>
                   <Quantity value={now.value} expanded={2 * now.u} unit={unit} size="cell" />
                 </td>
                 <td className="due">
@@ -96,8 +101,12 @@ export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }
           {camera ? (
             <tr>
               <td>Camera</td>
-              <td className="num">{inForce ? cameraText(inForce.camera) || 'not stated' : 'none'}</td>
-              <td className="num">{camera}</td>
+              <td className="num" data-head={heads.was}>
+                {inForce ? cameraText(inForce.camera) || 'not stated' : 'none'}
+              </td>
+              <td className="num" data-head={heads.now}>
+                {camera}
+              </td>
               <td />
             </tr>
           ) : null}
