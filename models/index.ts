@@ -3,6 +3,7 @@ import { defineAuditHead } from './audit-head';
 import { defineAuditRow } from './audit-row';
 import { defineBandStack } from './band-stack';
 import { defineBench } from './bench';
+import { defineCertificateFile } from './certificate-file';
 import { defineFrame } from './frame';
 import { defineLookAnswer } from './look-answer';
 import { defineLot } from './lot';
@@ -16,9 +17,11 @@ import { defineReadingState } from './reading-state';
 import { defineReturn } from './return';
 import { defineSetting } from './setting';
 import { defineSetup } from './setup';
+import { defineSetupDecision } from './setup-decision';
 import { defineSignInAttempt } from './sign-in-attempt';
 import { defineSignature } from './signature';
 import { defineSource } from './source';
+import { defineSourceCertificate } from './source-certificate';
 import { defineSpecification } from './specification';
 import { defineUnit } from './unit';
 import { defineUnitOutcome } from './unit-outcome';
@@ -32,6 +35,7 @@ export function defineTables(sequelize: Sequelize) {
     auditRows: defineAuditRow(sequelize),
     bandStacks: defineBandStack(sequelize),
     benches: defineBench(sequelize),
+    certificateFiles: defineCertificateFile(sequelize),
     frames: defineFrame(sequelize),
     lookAnswers: defineLookAnswer(sequelize),
     lots: defineLot(sequelize),
@@ -45,9 +49,11 @@ export function defineTables(sequelize: Sequelize) {
     returns: defineReturn(sequelize),
     settings: defineSetting(sequelize),
     setups: defineSetup(sequelize),
+    setupDecisions: defineSetupDecision(sequelize),
     signInAttempts: defineSignInAttempt(sequelize),
     signatures: defineSignature(sequelize),
     sources: defineSource(sequelize),
+    sourceCertificates: defineSourceCertificate(sequelize),
     specifications: defineSpecification(sequelize),
     units: defineUnit(sequelize),
     unitOutcomes: defineUnitOutcome(sequelize),

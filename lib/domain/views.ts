@@ -4,6 +4,8 @@ import type { BudgetRow, Finding, FindingWord, Region, SetupValues, ToneChoice }
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
 import type { Role } from './roles';
+import type { ConfirmedValue, UncertaintyShape } from './setup';
+import type { SourceKind } from './source';
 import type { Judgement, Medium, Specification, Verdict } from './specification';
 
 export interface PersonRef {
@@ -23,23 +25,32 @@ export type Instant = string;
 /** ---- benches ---- */
 export interface StatedValue {
   value: number;
-  /** As entered: expanded or standard uncertainty with its coverage factor. */
+  /** As entered; what kind of ± it is says `shape`. */
   stated: number;
+  shape: UncertaintyShape;
+  /** What `stated` is divided by: as entered, or what the shape asks for. */
   k: number;
+  /** Degrees of freedom; null is infinite. */
+  dof: number | null;
   /** stated / k */
   u: number;
   certificate: string;
+  file: CertificateLink | null;
   /** Calendar date yyyy-mm-dd or null. */
   due: string | null;
 }
 
-export interface SetupView {
+/** A certificate in the store. */
+export interface CertificateLink {
+  sha256: string;
+  fileName: string;
+}
+
+/** What a setup states, whatever became of it. */
+export interface SetupStatement {
   id: number;
   benchId: number;
   number: number;
-  from: Instant;
-  /** null while in force. */
-  to: Instant | null;
   plate: string;
   scaleUmPerPx: StatedValue;
   separationUm: StatedValue;
@@ -47,14 +58,33 @@ export interface SetupView {
   distanceMm: StatedValue;
   remountNm: { u: number; dof: number | null } | null;
   tone: ToneChoice;
+  camera: { model: string; serial: string; bits: number | null };
   why: string;
+  /** Values that looked odd, with the reason why they are right. */
+  confirmed: ConfirmedValue[];
   enteredBy: PersonRef;
   enteredAt: Instant;
-  readings: number;
-  /** What changed from the setup before, in words; '' for the first. */
+  /** What changes from the setup before, in words; '' for the first. */
   change: string;
   /** Larger than both uncertainties together. */
   changeIsLook: boolean;
+}
+
+/** A setup that is, was or will be in force. */
+export interface SetupView extends SetupStatement {
+  from: Instant;
+  /** null while nothing follows it. */
+  to: Instant | null;
+  /** null: entered before approval was asked for. */
+  approved: { by: PersonRef; at: Instant; remark: string } | null;
+  readings: number;
+}
+
+/** A setup that waits for a decision, or that never came into force. */
+export interface SetupProposal extends SetupStatement {
+  /** null: as soon as it is approved. */
+  wantedFrom: Instant | null;
+  ended: { decision: 'declined' | 'taken-back'; reason: string; by: PersonRef; at: Instant } | null;
 }
 
 /** Fit for use today? */
@@ -69,13 +99,20 @@ export interface BenchChoice {
   name: string;
   setupNumber: number | null;
   fitness: BenchFitness;
+  /** Number of the setup that waits for QA. */
+  waitingNumber: number | null;
 }
 
 export interface BenchView extends BenchChoice {
   note: string;
   inForce: SetupView | null;
-  /** Newest first, the one in force included. */
+  /** Newest first by the moment they come into force, the one in force included. */
   setups: SetupView[];
+  waiting: SetupProposal | null;
+  /** Declined or taken back, newest first. */
+  ended: SetupProposal[];
+  /** Highest number any setup of this bench has, 0 for none. */
+  lastNumber: number;
   /** Wavelength (nm, air) to draw the geometry with: the last accepted reading's, else 635. */
   drawNm: number;
   drawnFrom: 'reading' | 'example';
@@ -119,9 +156,17 @@ export interface LotView extends LotRow {
 export interface SourceView {
   id: number;
   name: string;
+  kind: SourceKind;
+  /** May a bench be checked with it? */
+  isReference: boolean;
   vacuumNm: number;
   uNm: number;
+  certificate: string;
+  file: CertificateLink | null;
+  due: string | null;
   note: string;
+  /** Which of its certificates this is, from 1. */
+  revision: number;
 }
 
 export const OUTCOMES = ['passed-on', 'measure-again', 'held-for-qa', 'sent-back'] as const;

@@ -8,6 +8,7 @@ export type SubjectKind =
   | 'person'
   | 'bench'
   | 'setup'
+  | 'certificate'
   | 'specification'
   | 'lot'
   | 'unit'

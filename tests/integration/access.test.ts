@@ -4,7 +4,10 @@ import * as benches from '@/app/(room)/benches/actions';
 import * as lots from '@/app/(room)/lots/actions';
 import * as people from '@/app/(room)/people/actions';
 import * as readings from '@/app/(room)/readings/actions';
+import * as sources from '@/app/(room)/sources/actions';
 import { POST as upload } from '@/app/api/upload/route';
+import { POST as newCertificate } from '@/app/api/certificates/route';
+import { GET as certificate } from '@/app/api/certificates/[sha256]/route';
 import { GET as status } from '@/app/api/frames/status/route';
 import { GET as original } from '@/app/api/frames/[id]/original/route';
 import { GET as photo } from '@/app/api/frames/[id]/photo/route';
@@ -25,11 +28,16 @@ const MATRIX: Record<string, Who[]> = {
   emptyIntake: ['technician', 'technician2', 'both'],
   addBench: ['admin'],
   addSetup: ['admin'],
+  decideSetup: ['qa'],
+  takeBackSetup: ['admin'],
+  'POST certificates': ['admin', 'qa'],
+  'GET certificates': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   addSpecification: ['admin', 'qa'],
   retireSpecification: ['admin', 'qa'],
   openLot: ['admin', 'technician', 'technician2', 'both'],
   addUnits: ['admin', 'technician', 'technician2', 'both'],
   addSource: ['admin', 'qa'],
+  renewSource: ['admin', 'qa'],
   addPerson: ['admin'],
   changePerson: ['admin'],
   keepFit: ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
@@ -105,11 +113,17 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     emptyIntake: () => act(room.emptyIntake()),
     addBench: () => act(benches.addBench({ name: 'Bench T' })),
     addSetup: () => act(benches.addSetup({ ...SETUP, benchId: nowhere, afterNumber: 0 })),
+    decideSetup: () => act(benches.decideSetup({ setupId: nowhere, decision: 'approved' })),
+    takeBackSetup: () => act(benches.takeBackSetup({ setupId: nowhere })),
+    'POST certificates': () => route(newCertificate, 'POST', '/api/certificates?name=a.pdf', ''),
+    'GET certificates': () => route(certificate, 'GET', '/api/certificates/x'),
     addSpecification: () => act(lots.addSpecification(specification)),
     retireSpecification: () => act(lots.retireSpecification({ id: nowhere })),
     openLot: () => act(lots.openLot({ number: '1', specificationId: nowhere })),
     addUnits: () => act(lots.addUnits({ lotId: nowhere, serials: ['X'] })),
-    addSource: () => act(lots.addSource({ name: '', vacuumNm: 633, uNm: 0.1 })),
+    addSource: () => act(sources.addSource({ name: '', kind: 'lamp-line', vacuumNm: 633, uNm: 0.1 })),
+    renewSource: () =>
+      act(sources.renewSource({ sourceId: nowhere, afterNumber: 1, vacuumNm: 633, uNm: 0.1 })),
     addPerson: () =>
       act(people.addPerson({ name: '', email: 'x@test.example', roles: ['qa'], password: PASSWORD })),
     changePerson: () => act(people.changePerson({ personId: nowhere, roles: [], active: true })),
@@ -143,7 +157,7 @@ async function fingerprint(): Promise<unknown> {
 
 test('the matrix names every call, and every call is in the matrix', () => {
   expect(Object.keys(calls(null)).sort()).toEqual(Object.keys(MATRIX).sort());
-  const exported = [room, benches, lots, people, readings].flatMap((file) => Object.keys(file));
+  const exported = [room, benches, lots, people, readings, sources].flatMap((file) => Object.keys(file));
   expect(exported.filter((name) => !(name in MATRIX) && name !== 'signOutEverywhere')).toEqual([]);
 });
 
@@ -214,6 +228,7 @@ describe('with rows that are there', () => {
       'change a setup',
       () => benches.addSetup({ ...SETUP, benchId: world.benchId, afterNumber: 1 }),
     ],
+    ['admin', 'approve a setup', () => benches.decideSetup({ setupId: world.setupId, decision: 'approved' })],
     [
       'qa',
       'change roles',

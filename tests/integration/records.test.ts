@@ -15,6 +15,14 @@ beforeAll(async () => {
   const { readingId } = await makeReading(world, as(world.people.technician));
   await sendReading(as(world.people.technician), { readingId, version: 0, note: '' });
   await acceptReading(as(world.people.reviewer), { readingId, version: 1, password: PASSWORD, answers: [] });
+  await db().tables.certificateFiles.create({
+    sha256: 'c'.repeat(64),
+    fileName: 'invented.pdf',
+    mediaType: 'application/pdf',
+    bytes: 10,
+    addedBy: world.people.admin.id,
+    addedAt: new Date(),
+  });
   await db().tables.unitOutcomes.create({
     unitId: world.unitIds[0],
     outcome: 'passed-on',
@@ -42,6 +50,9 @@ afterAll(closeWorld);
 
 const IMMUTABLE: [table: string, column: string][] = [
   ['setups', 'plate'],
+  ['setup_decisions', 'reason'],
+  ['certificate_files', 'file_name'],
+  ['source_certificates', 'certificate'],
   ['readings', 'value_nm'],
   ['reading_results', 'result_json'],
   ['signatures', 'person_name'],

@@ -1,8 +1,8 @@
 import 'server-only';
 import type { Verdict } from '@/lib/domain/specification';
 import { VERDICTS } from '@/lib/domain/specification';
-import type { LotRow, LotView, SourceView, SpecificationView, UnitRow } from '@/lib/domain/views';
-import { db, select } from '../db';
+import type { LotRow, LotView, SpecificationView, UnitRow } from '@/lib/domain/views';
+import { select } from '../db';
 import { outcomesOf } from './outcomes';
 import { contains, pageOf } from './paging';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
@@ -143,9 +143,4 @@ export async function listSpecifications(): Promise<SpecificationView[]> {
     retired: row.retired_at !== null,
     lots: row.lots,
   }));
-}
-
-export async function listSources(): Promise<SourceView[]> {
-  const rows = await db().tables.sources.findAll({ order: [['name', 'ASC']] });
-  return rows.map(({ id, name, vacuumNm, uNm, note }) => ({ id, name, vacuumNm, uNm, note }));
 }
