@@ -6,13 +6,16 @@ import { defineBench } from './bench';
 import { defineFrame } from './frame';
 import { defineLookAnswer } from './look-answer';
 import { defineLot } from './lot';
+import { defineMoveReason } from './move-reason';
 import { defineOutboxMail } from './outbox-mail';
+import { definePasswordProof } from './password-proof';
 import { definePasswordReset } from './password-reset';
 import { definePerson } from './person';
 import { definePersonRole } from './person-role';
 import { defineReading } from './reading';
 import { defineReadingResult } from './reading-result';
 import { defineReadingState } from './reading-state';
+import { defineRegionTrial } from './region-trial';
 import { defineReturn } from './return';
 import { defineSetting } from './setting';
 import { defineSetup } from './setup';
@@ -35,13 +38,16 @@ export function defineTables(sequelize: Sequelize) {
     frames: defineFrame(sequelize),
     lookAnswers: defineLookAnswer(sequelize),
     lots: defineLot(sequelize),
+    moveReasons: defineMoveReason(sequelize),
     outbox: defineOutboxMail(sequelize),
+    passwordProofs: definePasswordProof(sequelize),
     passwordResets: definePasswordReset(sequelize),
     people: definePerson(sequelize),
     personRoles: definePersonRole(sequelize),
     readings: defineReading(sequelize),
     readingResults: defineReadingResult(sequelize),
     readingStates: defineReadingState(sequelize),
+    regionTrials: defineRegionTrial(sequelize),
     returns: defineReturn(sequelize),
     settings: defineSetting(sequelize),
     setups: defineSetup(sequelize),

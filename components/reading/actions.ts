@@ -1,16 +1,11 @@
 /** The server actions a reading's pages are given, as the components see them. */
 import type { z } from 'zod';
 import type { ActionAnswer } from '@/lib/domain/errors';
-import type {
-  acceptSchema,
-  outcomeSchema,
-  refitSchema,
-  returnSchema,
-  sendSchema,
-} from '@/lib/domain/schemas';
+import type { keepFitSchema } from '@/lib/domain/review-schemas';
+import type { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
 
 export type KeepFit = (
-  input: z.input<typeof refitSchema>,
+  input: z.input<typeof keepFitSchema>,
 ) => Promise<ActionAnswer<{ readingId: number; version: number; differs: string | null }>>;
 export type SendToReview = (
   input: z.input<typeof sendSchema>,

@@ -7,7 +7,7 @@ import type { FrameView, May } from '@/lib/domain/views';
 import { publishedOf, specificationOf } from '@/lib/client/words';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
-import { TILT_STEP_DEG } from '@/lib/client/region';
+import { regionKeys } from '@/lib/client/region-keys';
 import type { KeepFit, SendToReview } from './actions';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
@@ -18,7 +18,9 @@ import { KeysSheet } from './keys-sheet';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
 import { Budget, Result } from './result';
+import { SaidResult } from './said-result';
 import { SendBox } from './send-box';
+import { MoveBox } from './move-box';
 import { FrameStory } from './frame-story';
 import { NewFitStage, scaleOfFit, uScaleOfFit } from './new-fit-stage';
 
@@ -44,9 +46,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
   const [refusal, setRefusal] = useState<Refusal | null>(null);
   const [sheet, setSheet] = useState(false);
   const keys = useShortcuts({
-    '[': () => may.fit && desk.turnBy(-TILT_STEP_DEG),
-    ']': () => may.fit && desk.turnBy(TILT_STEP_DEG),
-    x: () => may.fit && picked !== null && desk.toggleOrder(picked),
+    ...regionKeys(desk, may.fit, picked),
     '?': () => setSheet(true),
   });
   const fit = desk.preview.fit;
@@ -93,6 +93,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
           </div>
         ) : null}
         <FrameStory frame={frame} />
+        <SaidResult before={reading} changed={desk.change !== null} preview={desk.preview} />
         {desk.change ? (
           <>
             <BeforeAfter before={reading} preview={desk.preview} />
@@ -107,6 +108,8 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
               onRefused={setRefusal}
             />
           </>
+        ) : reading ? (
+          <MoveBox reading={reading} reason="" />
         ) : null}
         {shown ? (
           <>

@@ -3,6 +3,7 @@ import type { FrameState, ReadingState } from './life-cycle';
 import type { BudgetRow, Finding, FindingWord, Region, SetupValues, ToneChoice } from './reading-result';
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
+import type { FirstValue } from './move';
 import type { Role } from './roles';
 import type { Judgement, Medium, Specification, Verdict } from './specification';
 
@@ -224,6 +225,8 @@ export interface SignatureView {
   role: Role;
   meaning: string;
   at: Instant;
+  /** When the password was typed; null: as it was signed. */
+  passwordAt: Instant | null;
   digest: string;
 }
 
@@ -240,6 +243,10 @@ export interface ReadingView extends ReadingBrief {
   note: string;
   returned: { reason: ReturnReason; words: string; by: PersonRef; at: Instant } | null;
   signature: SignatureView | null;
+  /** What the frame's first fit gave. */
+  first: FirstValue | null;
+  /** Why the value was moved from it. */
+  moveReason: { words: string; by: PersonRef; at: Instant } | null;
   zeroShift: number;
   leaveOut: number[];
   tone: ToneChoice;
@@ -274,6 +281,8 @@ export interface ReviewView {
   frame: FrameView;
   may: May;
   queue: { at: number; of: number; previousId: number | null; nextId: number | null };
+  /** Until when a password typed before still signs; null: it must be typed. */
+  passwordUntil: Instant | null;
 }
 
 /** What a fit of a frame needs beside its bytes: the setup it was received under and what it is judged by. */

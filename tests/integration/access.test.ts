@@ -10,6 +10,7 @@ import { GET as original } from '@/app/api/frames/[id]/original/route';
 import { GET as photo } from '@/app/api/frames/[id]/photo/route';
 import { GET as scan } from '@/app/api/frames/[id]/scan/route';
 import { POST as previewFit } from '@/app/api/frames/[id]/preview-fit/route';
+import { POST as trials } from '@/app/api/frames/[id]/trials/route';
 import { GET as stack, POST as newStack } from '@/app/api/frames/[id]/stack/route';
 import { GET as overTimeCsv } from '@/app/api/over-time/route';
 import type { ActionAnswer } from '@/lib/domain/errors';
@@ -44,6 +45,7 @@ const MATRIX: Record<string, Who[]> = {
   'GET scan': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   'POST preview-fit': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
+  'POST trials': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'POST stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET over-time': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
 };
@@ -129,6 +131,16 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     'GET stack': () => route(stack, 'GET', '/api/frames/4000000/stack?reading=4000000&engine=x'),
     'POST stack': () =>
       route(newStack, 'POST', '/api/frames/4000000/stack', JSON.stringify({ region, engine: 'x' })),
+    'POST trials': () =>
+      route(
+        trials,
+        'POST',
+        '/api/frames/4000000/trials',
+        JSON.stringify({
+          readingId: null,
+          trials: [{ region, valueNm: null, expandedNm: null, problem: null, agoMs: 0 }],
+        }),
+      ),
     'GET over-time': () => route(overTimeCsv, 'GET', '/api/over-time'),
   };
 }

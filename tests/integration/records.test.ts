@@ -12,7 +12,7 @@ let world: World;
 
 beforeAll(async () => {
   world = await makeWorld();
-  const { readingId } = await makeReading(world, as(world.people.technician));
+  const { frameId, readingId } = await makeReading(world, as(world.people.technician));
   await sendReading(as(world.people.technician), { readingId, version: 0, note: '' });
   await acceptReading(as(world.people.reviewer), { readingId, version: 1, password: PASSWORD, answers: [] });
   await db().tables.unitOutcomes.create({
@@ -28,6 +28,23 @@ beforeAll(async () => {
     words: 'invented',
     returnedBy: world.people.reviewer.id,
     returnedAt: new Date(),
+  });
+  await db().tables.regionTrials.create({
+    frameId,
+    fromReadingId: readingId,
+    keptReadingId: null,
+    changeJson: '{}',
+    valueNm: 634.8,
+    expandedNm: 0.7,
+    problem: null,
+    triedBy: world.people.reviewer.id,
+    triedAt: new Date(),
+  });
+  await db().tables.moveReasons.create({
+    readingId,
+    words: 'invented',
+    givenBy: world.people.reviewer.id,
+    givenAt: new Date(),
   });
   await db().tables.lookAnswers.create({
     readingId,
@@ -49,6 +66,8 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['look_answers', 'reason'],
   ['unit_outcomes', 'reason'],
   ['audit_rows', 'who'],
+  ['region_trials', 'change_json'],
+  ['move_reasons', 'words'],
 ];
 
 describe.each(IMMUTABLE)('%s', (table, column) => {

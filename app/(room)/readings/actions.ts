@@ -1,6 +1,7 @@
 'use server';
 
-import { acceptSchema, outcomeSchema, refitSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
+import { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
+import { keepFitSchema } from '@/lib/domain/review-schemas';
 import { acceptReading as acceptReadingCommand } from '@/lib/server/commands/accept-reading';
 import { keepFit as keepFitCommand } from '@/lib/server/commands/keep-fit';
 import { returnReading as returnReadingCommand } from '@/lib/server/commands/return-reading';
@@ -11,7 +12,7 @@ import { defineAction } from '@/lib/server/define-action';
 export const keepFit = defineAction({
   name: 'keepFit',
   permission: 'readings.fit',
-  schema: refitSchema,
+  schema: keepFitSchema,
   run: ({ input, context }) => keepFitCommand(context, input),
 });
 

@@ -16,6 +16,7 @@ const WORDS: Record<string, string> = {
   'reading.accept': 'Reading accepted',
   'reading.refit': 'Reading fitted again',
   'reading.return': 'Reading returned',
+  'reading.try': 'Regions tried, none kept',
   'reading.send': 'Reading sent to review',
   'setup.add': 'Setup put in force',
   'source.add': 'Source added',
