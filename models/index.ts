@@ -3,6 +3,8 @@ import { defineAuditHead } from './audit-head';
 import { defineAuditRow } from './audit-row';
 import { defineBandStack } from './band-stack';
 import { defineBench } from './bench';
+import { defineReadingComment } from './comment';
+import { defineCommentMention } from './comment-mention';
 import { defineFrame } from './frame';
 import { defineLookAnswer } from './look-answer';
 import { defineLot } from './lot';
@@ -25,6 +27,8 @@ import { defineSource } from './source';
 import { defineSpecification } from './specification';
 import { defineUnit } from './unit';
 import { defineUnitOutcome } from './unit-outcome';
+import { defineWithdrawalAnswer } from './withdrawal-answer';
+import { defineWithdrawalProposal } from './withdrawal-proposal';
 
 export type Tables = ReturnType<typeof defineTables>;
 
@@ -35,6 +39,8 @@ export function defineTables(sequelize: Sequelize) {
     auditRows: defineAuditRow(sequelize),
     bandStacks: defineBandStack(sequelize),
     benches: defineBench(sequelize),
+    comments: defineReadingComment(sequelize),
+    commentMentions: defineCommentMention(sequelize),
     frames: defineFrame(sequelize),
     lookAnswers: defineLookAnswer(sequelize),
     lots: defineLot(sequelize),
@@ -57,6 +63,8 @@ export function defineTables(sequelize: Sequelize) {
     specifications: defineSpecification(sequelize),
     units: defineUnit(sequelize),
     unitOutcomes: defineUnitOutcome(sequelize),
+    withdrawalAnswers: defineWithdrawalAnswer(sequelize),
+    withdrawalProposals: defineWithdrawalProposal(sequelize),
   };
   tables.people.hasMany(tables.personRoles, { foreignKey: 'personId', as: 'roleRows' });
   return tables;

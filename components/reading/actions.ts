@@ -1,6 +1,7 @@
 /** The server actions a reading's pages are given, as the components see them. */
 import type { z } from 'zod';
 import type { ActionAnswer } from '@/lib/domain/errors';
+import type { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
 import type { keepFitSchema } from '@/lib/domain/review-schemas';
 import type { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
 
@@ -13,4 +14,13 @@ export type SendToReview = (
 export type AcceptReading = (input: z.input<typeof acceptSchema>) => Promise<ActionAnswer<unknown>>;
 export type ReturnReading = (input: z.input<typeof returnSchema>) => Promise<ActionAnswer<unknown>>;
 export type SetOutcome = (input: z.input<typeof outcomeSchema>) => Promise<ActionAnswer<unknown>>;
+export type AskWithdrawal = (input: z.input<typeof askWithdrawalSchema>) => Promise<ActionAnswer<unknown>>;
+export type AnswerWithdrawal = (
+  input: z.input<typeof answerWithdrawalSchema>,
+) => Promise<ActionAnswer<unknown>>;
+/** Everything the two halves of a withdrawal need. */
+export interface WithdrawalActions {
+  askWithdrawal: AskWithdrawal;
+  answerWithdrawal: AnswerWithdrawal;
+}
 export type LookAnswer = z.input<typeof acceptSchema>['answers'] extends (infer A)[] | undefined ? A : never;

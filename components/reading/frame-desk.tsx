@@ -2,13 +2,13 @@
 
 import { useState } from 'react';
 import { Button } from '@/components/ui/button';
-import { FRAME_WORDS } from '@/lib/domain/life-cycle';
-import type { FrameView, May } from '@/lib/domain/views';
+import { FRAME_WORDS, readingMayBeFollowed } from '@/lib/domain/life-cycle';
+import type { FrameView, May, PersonRef } from '@/lib/domain/views';
 import { publishedOf, specificationOf } from '@/lib/client/words';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
 import { regionKeys } from '@/lib/client/region-keys';
-import type { KeepFit, SendToReview } from './actions';
+import type { KeepFit, SendToReview, WithdrawalActions } from './actions';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
 import { boundsOf, PhotoPart, StageNote, StagePart, useBounds, usePicked } from './desk-parts';
@@ -22,6 +22,7 @@ import { SaidResult } from './said-result';
 import { SendBox } from './send-box';
 import { MoveBox } from './move-box';
 import { FrameStory } from './frame-story';
+import { WithdrawBox } from './withdraw-box';
 import { NewFitStage, scaleOfFit, uScaleOfFit } from './new-fit-stage';
 
 interface Props {
@@ -29,10 +30,12 @@ interface Props {
   may: May;
   keepFit: KeepFit;
   sendToReview: SendToReview;
+  withdrawal: WithdrawalActions;
+  me: PersonRef;
 }
 
 /** One frame as the technician sees it: photo, stage, result, and what can be done with it. */
-export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
+export function FrameDesk({ frame, may, keepFit, sendToReview, withdrawal, me }: Props) {
   const reading = frame.shown;
   const desk = useRegionChange({
     frameId: frame.id,
@@ -93,6 +96,14 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
           </div>
         ) : null}
         <FrameStory frame={frame} />
+        {reading ? (
+          <WithdrawBox reading={reading} me={me} mayWithdraw={may.withdraw} {...withdrawal} />
+        ) : null}
+        {reading && may.fit && readingMayBeFollowed(reading.status) && !desk.change ? (
+          <Button className="mb-3 w-full" busy={desk.preview.working} onClick={desk.fitAsItStands}>
+            Make a new reading in its place
+          </Button>
+        ) : null}
         <SaidResult before={reading} changed={desk.change !== null} preview={desk.preview} />
         {desk.change ? (
           <>

@@ -3,12 +3,12 @@
 import { useRouter } from 'next/navigation';
 import { useState } from 'react';
 import { readingMay } from '@/lib/domain/life-cycle';
-import type { ReadingView, ReviewView } from '@/lib/domain/views';
+import type { PersonRef, ReadingView, ReviewView } from '@/lib/domain/views';
 import { publishedOf, specificationOf, subjectName } from '@/lib/client/words';
 import { regionKeys } from '@/lib/client/region-keys';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
-import type { AcceptReading, KeepFit, ReturnReading, SetOutcome } from './actions';
+import type { AcceptReading, KeepFit, ReturnReading, SetOutcome, WithdrawalActions } from './actions';
 import { AfterDecision } from './after-decision';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
@@ -25,6 +25,7 @@ import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
 import { Budget, Result } from './result';
 import { ReturnForm } from './return-form';
+import { WithdrawBox } from './withdraw-box';
 import { SaidResult } from './said-result';
 
 interface Props {
@@ -34,10 +35,13 @@ interface Props {
   acceptReading: AcceptReading;
   returnReading: ReturnReading;
   setOutcome: SetOutcome;
+  withdrawal: WithdrawalActions;
+  me: PersonRef;
 }
 
 /** One reading under a second pair of eyes. */
-export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReading, setOutcome }: Props) {
+export function ReviewDesk(props: Props) {
+  const { view, reading, keepFit, acceptReading, returnReading, setOutcome, withdrawal, me } = props;
   const { frame, may, queue } = view;
   const router = useRouter();
   const bounds = useBounds(frame);
@@ -136,6 +140,9 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
         <StagePart reading={reading} desk={desk} mayFit={mayFit} picked={picked} onPick={pick} />
         <section className="right" aria-label="Result and decision">
           {open ? null : <FrameStory frame={frame} />}
+          {done === null ? (
+            <WithdrawBox reading={reading} me={me} mayWithdraw={may.withdraw} {...withdrawal} />
+          ) : null}
           <SaidResult before={reading} changed={desk.change !== null} preview={desk.preview} />
           {desk.change ? (
             <>

@@ -47,7 +47,10 @@ export function NumberField({
     setText(null);
   };
   return (
-    <label htmlFor={id} className={`num-field ${chosen ? 'chosen' : ''} ${wrong ? 'wrong' : ''} ${long ? 'long' : ''}`}>
+    <label
+      htmlFor={id}
+      className={`num-field ${chosen ? 'chosen' : ''} ${wrong ? 'wrong' : ''} ${long ? 'long' : ''}`}
+    >
       <small aria-hidden="true">{label}</small>
       <input
         id={id}

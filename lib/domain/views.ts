@@ -5,6 +5,7 @@ import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
 import type { FirstValue } from './move';
 import type { Role } from './roles';
+import type { WithdrawalView } from './withdrawal';
 import type { Judgement, Medium, Specification, Verdict } from './specification';
 
 export interface PersonRef {
@@ -245,6 +246,8 @@ export interface ReadingView extends ReadingBrief {
   signature: SignatureView | null;
   /** What the frame's first fit gave. */
   first: FirstValue | null;
+  /** The newest question whether to withdraw it. */
+  withdrawal: WithdrawalView | null;
   /** Why the value was moved from it. */
   moveReason: { words: string; by: PersonRef; at: Instant } | null;
   zeroShift: number;
@@ -273,6 +276,8 @@ export interface May {
   accept: boolean;
   return: boolean;
   outcome: boolean;
+  /** Ask for a withdrawal, or answer one. */
+  withdraw: boolean;
   /** Sentence why accept is not open to this person; null when it is. */
   acceptBarred: string | null;
 }
@@ -358,6 +363,20 @@ export interface ChartFinding {
   text: string;
 }
 
+/** An accepted reading that was withdrawn: told beside the chart, in no mean and no limit. */
+export interface WithdrawnPoint {
+  readingId: number;
+  frameId: number;
+  label: string;
+  takenAt: Instant;
+  acceptedAt: Instant;
+  withdrawnAt: Instant;
+  valueNm: number;
+  uNm: number | null;
+  setupNumber: number;
+  reason: string;
+}
+
 export interface OverTimeView {
   bench: PersonRef | null;
   medium: Medium;
@@ -366,6 +385,7 @@ export interface OverTimeView {
   referenceNm: number | null;
   referenceIsNominal: boolean;
   points: ChartPoint[];
+  withdrawn: WithdrawnPoint[];
   stretches: ChartStretch[];
   findings: ChartFinding[];
   /** Choices for the picker. */

@@ -37,6 +37,8 @@ const MATRIX: Record<string, Who[]> = {
   sendToReview: ['technician', 'technician2', 'both'],
   acceptReading: ['reviewer', 'reviewer2', 'both'],
   returnReading: ['reviewer', 'reviewer2', 'both'],
+  askWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
+  answerWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   setOutcome: ['reviewer', 'reviewer2', 'both', 'qa'],
   'POST upload': ['technician', 'technician2', 'both'],
   'GET status': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
@@ -120,6 +122,8 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     acceptReading: () => act(readings.acceptReading({ readingId: nowhere, version: 0, password: 'x' })),
     returnReading: () =>
       act(readings.returnReading({ readingId: nowhere, version: 0, reason: 'take-again' })),
+    askWithdrawal: () => act(readings.askWithdrawal({ readingId: nowhere, version: 0, reason: 'x' })),
+    answerWithdrawal: () => act(readings.answerWithdrawal({ proposalId: nowhere, answer: 'confirmed' })),
     setOutcome: () => act(readings.setOutcome({ unitId: nowhere, outcome: 'passed-on' })),
     'POST upload': () => route(upload, 'POST', '/api/upload?name=a.png&benchId=4000000', ''),
     'GET status': () => route(status, 'GET', '/api/frames/status?ids=4000000'),

@@ -40,6 +40,13 @@ beforeAll(async () => {
     triedBy: world.people.reviewer.id,
     triedAt: new Date(),
   });
+  const by = { proposedBy: world.people.reviewer.id, proposedAt: new Date() };
+  const { id: proposalId } = await db().tables.withdrawalProposals.create({ readingId, reason: 'x', ...by });
+  const answered = { answeredBy: world.people.qa.id, answeredAt: new Date() };
+  await db().tables.withdrawalAnswers.create({ proposalId, answer: 'declined', words: 'x', ...answered });
+  const said = { madeBy: world.people.qa.id, madeAt: new Date() };
+  const { id: commentId } = await db().tables.comments.create({ readingId, words: 'invented', ...said });
+  await db().tables.commentMentions.create({ commentId, personId: world.people.admin.id });
   await db().tables.moveReasons.create({
     readingId,
     words: 'invented',
@@ -68,6 +75,10 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['audit_rows', 'who'],
   ['region_trials', 'change_json'],
   ['move_reasons', 'words'],
+  ['withdrawal_proposals', 'reason'],
+  ['withdrawal_answers', 'words'],
+  ['comments', 'words'],
+  ['comment_mentions', 'person_id'],
 ];
 
 describe.each(IMMUTABLE)('%s', (table, column) => {

@@ -2,11 +2,16 @@
 
 import { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
 import { keepFitSchema } from '@/lib/domain/review-schemas';
+import { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
 import { acceptReading as acceptReadingCommand } from '@/lib/server/commands/accept-reading';
 import { keepFit as keepFitCommand } from '@/lib/server/commands/keep-fit';
 import { returnReading as returnReadingCommand } from '@/lib/server/commands/return-reading';
 import { sendReadings } from '@/lib/server/commands/send-reading';
 import { setOutcome as setOutcomeCommand } from '@/lib/server/commands/set-outcome';
+import {
+  answerWithdrawal as answerWithdrawalCommand,
+  askWithdrawal as askWithdrawalCommand,
+} from '@/lib/server/commands/withdraw-reading';
 import { defineAction } from '@/lib/server/define-action';
 
 export const keepFit = defineAction({
@@ -42,4 +47,18 @@ export const setOutcome = defineAction({
   permission: 'outcomes.set',
   schema: outcomeSchema,
   run: ({ input, context }) => setOutcomeCommand(context, input),
+});
+
+export const askWithdrawal = defineAction({
+  name: 'askWithdrawal',
+  permission: 'readings.withdraw',
+  schema: askWithdrawalSchema,
+  run: ({ input, context }) => askWithdrawalCommand(context, input),
+});
+
+export const answerWithdrawal = defineAction({
+  name: 'answerWithdrawal',
+  permission: 'readings.withdraw',
+  schema: answerWithdrawalSchema,
+  run: ({ input, context }) => answerWithdrawalCommand(context, input),
 });

@@ -1,7 +1,7 @@
 import 'server-only';
 import type { z } from 'zod';
 import { AppError } from '@/lib/domain/errors';
-import { BORN, FRAME_STEPS, READING_STEPS, frameMay } from '@/lib/domain/life-cycle';
+import { BORN, FRAME_STEPS, READING_STEPS, frameMay, readingMayBeFollowed } from '@/lib/domain/life-cycle';
 import { can } from '@/lib/domain/permissions';
 import type { FitOptions } from '@/lib/domain/reading-result';
 import { isScanRegion, isScanResult, type FitResult, type ScanOptions } from '@/lib/domain/scan-result';
@@ -153,7 +153,9 @@ async function store(
   wanted: Refit,
 ): Promise<{ readingId: number; version: number }> {
   const inReview = before !== null && isInReview(before);
-  if (before) await stepReading(work, context.at, before, wanted.fromVersion, 'replace');
+  // What was withdrawn stays withdrawn; the new reading names it and takes its place at the frame.
+  if (before && !readingMayBeFollowed(before.status))
+    await stepReading(work, context.at, before, wanted.fromVersion, 'replace');
   const reading = await storeReading(
     {
       frame,

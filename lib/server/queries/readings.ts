@@ -7,6 +7,7 @@ import { select } from '../db';
 import { firstValueOf } from '../move-reasons';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
 import { setupViews } from './setup-views';
+import { withdrawalOf } from './withdrawals';
 
 /** Every reading of a frame, newest first, without curves. */
 export async function readingsOf(frameId: number): Promise<ReadingBrief[]> {
@@ -61,6 +62,7 @@ export async function readingView(readingId: number): Promise<ReadingView | null
     signature: await signatureOf(readingId),
     first: await firstValueOf(row.frame_id),
     moveReason: await moveReasonOf(readingId),
+    withdrawal: await withdrawalOf(readingId),
     zeroShift: options.zeroShift ?? 0,
     leaveOut: options.leaveOut ?? [],
     tone: options.tone ?? 'auto',

@@ -9,7 +9,14 @@ import { subjectName } from '@/lib/client/words';
 import type { Me, ReviewView } from '@/lib/domain/views';
 import { findReview } from '@/lib/server/queries/review';
 import { requireMe } from '@/lib/server/session';
-import { acceptReading, keepFit, returnReading, setOutcome } from '../../readings/actions';
+import {
+  acceptReading,
+  answerWithdrawal,
+  askWithdrawal,
+  keepFit,
+  returnReading,
+  setOutcome,
+} from '../../readings/actions';
 
 interface Props {
   params: Promise<{ readingId: string }>;
@@ -54,6 +61,8 @@ export default async function ReviewPage({ params }: Props) {
         acceptReading={acceptReading}
         returnReading={returnReading}
         setOutcome={setOutcome}
+        withdrawal={{ askWithdrawal, answerWithdrawal }}
+        me={{ id: me.id, name: me.name }}
       />
     </div>
   );
