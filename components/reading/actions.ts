@@ -1,5 +1,6 @@
 /** The server actions a reading's pages are given, as the components see them. */
 import type { z } from 'zod';
+import type { commentSchema } from '@/lib/domain/comment';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import type { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
 import type { keepFitSchema } from '@/lib/domain/review-schemas';
@@ -23,4 +24,7 @@ export interface WithdrawalActions {
   askWithdrawal: AskWithdrawal;
   answerWithdrawal: AnswerWithdrawal;
 }
+export type AddComment = (
+  input: z.input<typeof commentSchema>,
+) => Promise<ActionAnswer<{ commentId: number; mailed: string[] }>>;
 export type LookAnswer = z.input<typeof acceptSchema>['answers'] extends (infer A)[] | undefined ? A : never;

@@ -9,6 +9,7 @@ import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
 import { regionKeys } from '@/lib/client/region-keys';
 import type { KeepFit, SendToReview, WithdrawalActions } from './actions';
+import { Comments, type CommentsGiven } from './comments';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
 import { boundsOf, PhotoPart, StageNote, StagePart, useBounds, usePicked } from './desk-parts';
@@ -31,11 +32,12 @@ interface Props {
   keepFit: KeepFit;
   sendToReview: SendToReview;
   withdrawal: WithdrawalActions;
+  commenting: CommentsGiven;
   me: PersonRef;
 }
 
 /** One frame as the technician sees it: photo, stage, result, and what can be done with it. */
-export function FrameDesk({ frame, may, keepFit, sendToReview, withdrawal, me }: Props) {
+export function FrameDesk({ frame, may, keepFit, sendToReview, withdrawal, commenting, me }: Props) {
   const reading = frame.shown;
   const desk = useRegionChange({
     frameId: frame.id,
@@ -62,6 +64,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, withdrawal, me }:
       >
         <PhotoPart frame={frame} desk={desk} mayFit={may.fit} onKeys={() => setSheet(true)} />
         {shown ? <Findings findings={fit ? fit.result.findings : (reading?.findings ?? [])} /> : null}
+        {reading ? <Comments {...commenting} readingId={reading.id} /> : null}
       </section>
       {reading ? (
         <StagePart reading={reading} desk={desk} mayFit={may.fit} picked={picked} onPick={pick} />

@@ -10,6 +10,7 @@ import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
 import type { AcceptReading, KeepFit, ReturnReading, SetOutcome, WithdrawalActions } from './actions';
 import { AfterDecision } from './after-decision';
+import { Comments, type CommentsGiven } from './comments';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
 import { Decision } from './decision';
@@ -36,12 +37,14 @@ interface Props {
   returnReading: ReturnReading;
   setOutcome: SetOutcome;
   withdrawal: WithdrawalActions;
+  commenting: CommentsGiven;
   me: PersonRef;
 }
 
 /** One reading under a second pair of eyes. */
 export function ReviewDesk(props: Props) {
-  const { view, reading, keepFit, acceptReading, returnReading, setOutcome, withdrawal, me } = props;
+  const { view, reading, keepFit, acceptReading, returnReading, setOutcome, withdrawal, commenting, me } =
+    props;
   const { frame, may, queue } = view;
   const router = useRouter();
   const bounds = useBounds(frame);
@@ -136,6 +139,7 @@ export function ReviewDesk(props: Props) {
               onAnswer={(check, answer) => setAnswers({ ...answers, [check]: answer })}
             />
           )}
+          <Comments {...commenting} readingId={reading.id} />
         </section>
         <StagePart reading={reading} desk={desk} mayFit={mayFit} picked={picked} onPick={pick} />
         <section className="right" aria-label="Result and decision">

@@ -196,6 +196,8 @@ export interface FrameRow {
   /** Only for a line scan: width of its detector, null for a point. */
   scan: { detectorMm: number | null } | null;
   reading: ReadingBrief | null;
+  /** Why its reading came back. */
+  returned: { reason: ReturnReason; words: string } | null;
 }
 
 export interface FramesQuery {

@@ -37,6 +37,7 @@ const MATRIX: Record<string, Who[]> = {
   sendToReview: ['technician', 'technician2', 'both'],
   acceptReading: ['reviewer', 'reviewer2', 'both'],
   returnReading: ['reviewer', 'reviewer2', 'both'],
+  addComment: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   askWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   answerWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   setOutcome: ['reviewer', 'reviewer2', 'both', 'qa'],
@@ -122,6 +123,7 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     acceptReading: () => act(readings.acceptReading({ readingId: nowhere, version: 0, password: 'x' })),
     returnReading: () =>
       act(readings.returnReading({ readingId: nowhere, version: 0, reason: 'take-again' })),
+    addComment: () => act(readings.addComment({ readingId: nowhere, words: 'x' })),
     askWithdrawal: () => act(readings.askWithdrawal({ readingId: nowhere, version: 0, reason: 'x' })),
     answerWithdrawal: () => act(readings.answerWithdrawal({ proposalId: nowhere, answer: 'confirmed' })),
     setOutcome: () => act(readings.setOutcome({ unitId: nowhere, outcome: 'passed-on' })),

@@ -55,7 +55,10 @@ export default async function OverTime({ searchParams }: { searchParams: Promise
           </aside>
         </div>
       ) : (
-        <NoPoints view={view} mayTake={can(me, 'frames.upload')} />
+        <>
+          <NoPoints view={view} mayTake={can(me, 'frames.upload')} />
+          <WithdrawnPoints view={view} />
+        </>
       )}
     </div>
   );

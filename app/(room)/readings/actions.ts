@@ -1,8 +1,10 @@
 'use server';
 
 import { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
+import { commentSchema } from '@/lib/domain/comment';
 import { keepFitSchema } from '@/lib/domain/review-schemas';
 import { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
+import { addComment as addCommentCommand } from '@/lib/server/commands/add-comment';
 import { acceptReading as acceptReadingCommand } from '@/lib/server/commands/accept-reading';
 import { keepFit as keepFitCommand } from '@/lib/server/commands/keep-fit';
 import { returnReading as returnReadingCommand } from '@/lib/server/commands/return-reading';
@@ -61,4 +63,12 @@ export const answerWithdrawal = defineAction({
   permission: 'readings.withdraw',
   schema: answerWithdrawalSchema,
   run: ({ input, context }) => answerWithdrawalCommand(context, input),
+});
+
+export const addComment = defineAction({
+  name: 'addComment',
+  permission: 'comments.add',
+  schema: commentSchema,
+  rate: { burst: 20, perMinute: 20 },
+  run: ({ input, context }) => addCommentCommand(context, input),
 });

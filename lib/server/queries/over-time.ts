@@ -34,6 +34,8 @@ interface Choice {
 }
 
 const ACCEPTED = READING_STEPS.accept.to;
+/** A subject whose readings were all withdrawn is still one to look at. */
+const SHOWN = [ACCEPTED, READING_STEPS.withdraw.to];
 
 /** Accepted readings of a bench for one source or lot, with limits that start anew at each setup. */
 export async function overTime(q: OverTimeQuery): Promise<OverTimeView> {
@@ -96,9 +98,9 @@ async function benchOf(benchId: number | null): Promise<PersonRef | null> {
 
 async function choicesOf(benchId: number): Promise<Choice[]> {
   const sources = await select<{ id: number; name: string; vacuum_nm: number; points: number }>(
-    `SELECT so.id, so.name, so.vacuum_nm, COUNT(*) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
-     JOIN sources so ON so.id = r.source_id WHERE st.bench_id = :benchId AND st.status = :accepted GROUP BY so.id ORDER BY points DESC`,
-    { benchId, accepted: ACCEPTED },
+    `SELECT so.id, so.name, so.vacuum_nm, SUM(st.status = :accepted) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
+     JOIN sources so ON so.id = r.source_id WHERE st.bench_id = :benchId AND st.status IN (:shown) GROUP BY so.id ORDER BY points DESC`,
+    { benchId, accepted: ACCEPTED, shown: SHOWN },
   );
   const lots = await select<{
     id: number;
@@ -107,16 +109,16 @@ async function choicesOf(benchId: number): Promise<Choice[]> {
     nominal_nm: number;
     points: number;
   }>(
-    `SELECT l.id, l.number, sp.medium, sp.nominal_nm, COUNT(*) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
+    `SELECT l.id, l.number, sp.medium, sp.nominal_nm, SUM(st.status = :accepted) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
      JOIN lots l ON l.id = r.lot_id JOIN specifications sp ON sp.id = l.specification_id
-     WHERE st.bench_id = :benchId AND st.status = :accepted GROUP BY l.id ORDER BY l.opened_at DESC`,
-    { benchId, accepted: ACCEPTED },
+     WHERE st.bench_id = :benchId AND st.status IN (:shown) GROUP BY l.id ORDER BY l.opened_at DESC`,
+    { benchId, accepted: ACCEPTED, shown: SHOWN },
   );
   return [
     ...sources.map(({ id, name, vacuum_nm, points }): Choice => ({
       value: `source:${id}`,
       label: name,
-      points,
+      points: Number(points),
       kind: 'source',
       id,
       medium: 'air',
@@ -125,7 +127,7 @@ async function choicesOf(benchId: number): Promise<Choice[]> {
     ...lots.map(({ id, number, medium, nominal_nm, points }): Choice => ({
       value: `lot:${id}`,
       label: `Lot ${number}`,
-      points,
+      points: Number(points),
       kind: 'lot',
       id,
       medium,

@@ -10,6 +10,7 @@ const MATRIX: Record<Action, string> = {
   'readings.send': 't',
   'readings.accept': 'r',
   'readings.return': 'r',
+  'comments.add': 'trqa',
   'readings.withdraw': 'rq',
   'outcomes.set': 'rq',
   'lots.see': 'trqa',

@@ -7,9 +7,10 @@ import { buttonClass } from '@/components/ui/button';
 import { idParam, type SearchParams } from '@/lib/client/address';
 import { subjectName } from '@/lib/client/words';
 import { can } from '@/lib/domain/permissions';
+import { commentsOf, listNames } from '@/lib/server/queries/comments';
 import { findFrame, mayFor } from '@/lib/server/queries/frames';
 import { requireMe } from '@/lib/server/session';
-import { answerWithdrawal, askWithdrawal, keepFit, sendToReview } from '../../readings/actions';
+import { addComment, answerWithdrawal, askWithdrawal, keepFit, sendToReview } from '../../readings/actions';
 import { StillMoving } from './_components/still-moving';
 
 interface Props {
@@ -57,6 +58,11 @@ export default async function FramePage(props: Props) {
         keepFit={keepFit}
         sendToReview={sendToReview}
         withdrawal={{ askWithdrawal, answerWithdrawal }}
+        commenting={{
+          comments: await commentsOf(frame.id),
+          people: can(me, 'comments.add') ? await listNames() : [],
+          addComment,
+        }}
       />
     </div>
   );

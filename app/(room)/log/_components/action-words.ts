@@ -16,6 +16,7 @@ const WORDS: Record<string, string> = {
   'reading.accept': 'Reading accepted',
   'reading.refit': 'Reading fitted again',
   'reading.return': 'Reading returned',
+  'reading.comment': 'Comment on a reading',
   'reading.try': 'Regions tried, none kept',
   'reading.ask-withdrawal': 'Withdrawal asked for',
   'reading.decline-withdrawal': 'Withdrawal declined',

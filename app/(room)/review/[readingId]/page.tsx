@@ -7,10 +7,13 @@ import { ReviewDesk } from '@/components/reading/review-desk';
 import { buttonClass } from '@/components/ui/button';
 import { subjectName } from '@/lib/client/words';
 import type { Me, ReviewView } from '@/lib/domain/views';
+import { can } from '@/lib/domain/permissions';
+import { commentsOf, listNames } from '@/lib/server/queries/comments';
 import { findReview } from '@/lib/server/queries/review';
 import { requireMe } from '@/lib/server/session';
 import {
   acceptReading,
+  addComment,
   answerWithdrawal,
   askWithdrawal,
   keepFit,
@@ -63,6 +66,11 @@ export default async function ReviewPage({ params }: Props) {
         setOutcome={setOutcome}
         withdrawal={{ askWithdrawal, answerWithdrawal }}
         me={{ id: me.id, name: me.name }}
+        commenting={{
+          comments: await commentsOf(view.frame.id),
+          people: can(me, 'comments.add') ? await listNames() : [],
+          addComment,
+        }}
       />
     </div>
   );
