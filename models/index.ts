@@ -1,4 +1,5 @@
 import type { Sequelize } from 'sequelize';
+import { defineAuditAnchor } from './audit-anchor';
 import { defineAuditHead } from './audit-head';
 import { defineAuditRow } from './audit-row';
 import { defineBandStack } from './band-stack';
@@ -35,6 +36,7 @@ export type Tables = ReturnType<typeof defineTables>;
 /** Every table of the product on one connection pool. */
 export function defineTables(sequelize: Sequelize) {
   const tables = {
+    auditAnchors: defineAuditAnchor(sequelize),
     auditHead: defineAuditHead(sequelize),
     auditRows: defineAuditRow(sequelize),
     bandStacks: defineBandStack(sequelize),

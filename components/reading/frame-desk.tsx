@@ -144,6 +144,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, withdrawal, comme
         ) : null}
         {frame.readings.length ? (
           <ReadingsOfFrame
+            frameId={frame.id}
             readings={frame.readings}
             shownId={reading?.id ?? null}
             hrefOf={(r) => `/frames/${frame.id}?reading=${r.id}`}

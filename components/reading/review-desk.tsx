@@ -178,6 +178,7 @@ export function ReviewDesk(props: Props) {
           <Budget result={shown.result} />
           <Further result={shown.result} />
           <ReadingsOfFrame
+            frameId={frame.id}
             readings={frame.readings}
             shownId={reading.id}
             hrefOf={(r) =>
