@@ -48,10 +48,12 @@ export function RegionFields({ region, onChange, onKeys }: Props) {
         <div className="words" role="group" aria-label="One press moves">
           {STEPS.map((by) => (
             <WordPick key={by} chosen={size === by} onChoose={() => setSize(by)}>
-              {stepText(by * unitStep(chosen))}
-              {by === 10 || chosen === 'angleDeg' ? (
-                <span className="max-[1240px]:hidden">{chosen === 'angleDeg' ? '°' : ' px'}</span>
-              ) : null}
+              <span>
+                {stepText(by * unitStep(chosen))}
+                {by === 10 || chosen === 'angleDeg' ? (
+                  <span className="max-[1240px]:hidden">{chosen === 'angleDeg' ? '°' : ' px'}</span>
+                ) : null}
+              </span>
             </WordPick>
           ))}
         </div>

@@ -52,8 +52,10 @@ export function ScanFields({ length, region, detectorMm, onChange, onDetector, o
         <div className="words" role="group" aria-label="One press moves">
           {STEPS.map((by) => (
             <WordPick key={by} chosen={size === by} onChoose={() => setSize(by)}>
-              {stepText(by * press)}
-              {by === 10 ? <span className="max-[1240px]:hidden"> mm</span> : null}
+              <span>
+                {stepText(by * press)}
+                {by === 10 ? <span className="max-[1240px]:hidden"> mm</span> : null}
+              </span>
             </WordPick>
           ))}
         </div>
