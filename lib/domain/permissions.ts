@@ -24,6 +24,8 @@ export const PERMISSIONS = {
   'readings.send': ['technician'],
   'readings.accept': ['reviewer'],
   'readings.return': ['reviewer'],
+  'comments.add': ['technician', 'reviewer', 'qa', 'admin'],
+  'readings.withdraw': ['reviewer', 'qa'],
   'outcomes.set': ['reviewer', 'qa'],
   'lots.see': ['technician', 'reviewer', 'qa', 'admin'],
   'lots.open': ['technician', 'admin'],

@@ -89,8 +89,11 @@ export const lookAnswerSchema = z.object({
 export const acceptSchema = z.object({
   readingId: id,
   version: z.number().int().min(0),
-  password: z.string().min(1, 'Type your password to sign.').max(LIMITS.passwordLongest),
+  /** '' where one typed a few minutes ago is to count. */
+  password: z.string().max(LIMITS.passwordLongest).default(''),
   answers: z.array(lookAnswerSchema).max(60).default([]),
+  /** Why the value was moved, where nobody has said so yet. */
+  moveReason: z.string().trim().max(LIMITS.wordsLength).default(''),
 });
 export const returnSchema = z.object({
   readingId: id,

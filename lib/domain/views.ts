@@ -3,9 +3,11 @@ import type { FrameState, ReadingState } from './life-cycle';
 import type { BudgetRow, Finding, FindingWord, Region, SetupValues, ToneChoice } from './reading-result';
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
+import type { FirstValue } from './move';
 import type { Role } from './roles';
 import type { ConfirmedValue, UncertaintyShape } from './setup';
 import type { SourceKind } from './source';
+import type { WithdrawalView } from './withdrawal';
 import type { Judgement, Medium, Specification, Verdict } from './specification';
 
 export interface PersonRef {
@@ -239,6 +241,8 @@ export interface FrameRow {
   /** Only for a line scan: width of its detector, null for a point. */
   scan: { detectorMm: number | null } | null;
   reading: ReadingBrief | null;
+  /** Why its reading came back. */
+  returned: { reason: ReturnReason; words: string } | null;
 }
 
 export interface FramesQuery {
@@ -269,6 +273,8 @@ export interface SignatureView {
   role: Role;
   meaning: string;
   at: Instant;
+  /** When the password was typed; null: as it was signed. */
+  passwordAt: Instant | null;
   digest: string;
 }
 
@@ -285,6 +291,12 @@ export interface ReadingView extends ReadingBrief {
   note: string;
   returned: { reason: ReturnReason; words: string; by: PersonRef; at: Instant } | null;
   signature: SignatureView | null;
+  /** What the frame's first fit gave. */
+  first: FirstValue | null;
+  /** The newest question whether to withdraw it. */
+  withdrawal: WithdrawalView | null;
+  /** Why the value was moved from it. */
+  moveReason: { words: string; by: PersonRef; at: Instant } | null;
   zeroShift: number;
   leaveOut: number[];
   tone: ToneChoice;
@@ -311,6 +323,8 @@ export interface May {
   accept: boolean;
   return: boolean;
   outcome: boolean;
+  /** Ask for a withdrawal, or answer one. */
+  withdraw: boolean;
   /** Sentence why accept is not open to this person; null when it is. */
   acceptBarred: string | null;
 }
@@ -319,6 +333,8 @@ export interface ReviewView {
   frame: FrameView;
   may: May;
   queue: { at: number; of: number; previousId: number | null; nextId: number | null };
+  /** Until when a password typed before still signs; null: it must be typed. */
+  passwordUntil: Instant | null;
 }
 
 /** What a fit of a frame needs beside its bytes: the setup it was received under and what it is judged by. */
@@ -394,6 +410,20 @@ export interface ChartFinding {
   text: string;
 }
 
+/** An accepted reading that was withdrawn: told beside the chart, in no mean and no limit. */
+export interface WithdrawnPoint {
+  readingId: number;
+  frameId: number;
+  label: string;
+  takenAt: Instant;
+  acceptedAt: Instant;
+  withdrawnAt: Instant;
+  valueNm: number;
+  uNm: number | null;
+  setupNumber: number;
+  reason: string;
+}
+
 export interface OverTimeView {
   bench: PersonRef | null;
   medium: Medium;
@@ -402,6 +432,7 @@ export interface OverTimeView {
   referenceNm: number | null;
   referenceIsNominal: boolean;
   points: ChartPoint[];
+  withdrawn: WithdrawnPoint[];
   stretches: ChartStretch[];
   findings: ChartFinding[];
   /** Choices for the picker. */

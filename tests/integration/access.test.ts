@@ -13,6 +13,7 @@ import { GET as original } from '@/app/api/frames/[id]/original/route';
 import { GET as photo } from '@/app/api/frames/[id]/photo/route';
 import { GET as scan } from '@/app/api/frames/[id]/scan/route';
 import { POST as previewFit } from '@/app/api/frames/[id]/preview-fit/route';
+import { POST as trials } from '@/app/api/frames/[id]/trials/route';
 import { GET as stack, POST as newStack } from '@/app/api/frames/[id]/stack/route';
 import { GET as overTimeCsv } from '@/app/api/over-time/route';
 import type { ActionAnswer } from '@/lib/domain/errors';
@@ -44,6 +45,9 @@ const MATRIX: Record<string, Who[]> = {
   sendToReview: ['technician', 'technician2', 'both'],
   acceptReading: ['reviewer', 'reviewer2', 'both'],
   returnReading: ['reviewer', 'reviewer2', 'both'],
+  addComment: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  askWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
+  answerWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   setOutcome: ['reviewer', 'reviewer2', 'both', 'qa'],
   'POST upload': ['technician', 'technician2', 'both'],
   'GET status': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
@@ -52,6 +56,7 @@ const MATRIX: Record<string, Who[]> = {
   'GET scan': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   'POST preview-fit': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
+  'POST trials': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'POST stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET over-time': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
 };
@@ -132,6 +137,9 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     acceptReading: () => act(readings.acceptReading({ readingId: nowhere, version: 0, password: 'x' })),
     returnReading: () =>
       act(readings.returnReading({ readingId: nowhere, version: 0, reason: 'take-again' })),
+    addComment: () => act(readings.addComment({ readingId: nowhere, words: 'x' })),
+    askWithdrawal: () => act(readings.askWithdrawal({ readingId: nowhere, version: 0, reason: 'x' })),
+    answerWithdrawal: () => act(readings.answerWithdrawal({ proposalId: nowhere, answer: 'confirmed' })),
     setOutcome: () => act(readings.setOutcome({ unitId: nowhere, outcome: 'passed-on' })),
     'POST upload': () => route(upload, 'POST', '/api/upload?name=a.png&benchId=4000000', ''),
     'GET status': () => route(status, 'GET', '/api/frames/status?ids=4000000'),
@@ -143,6 +151,16 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     'GET stack': () => route(stack, 'GET', '/api/frames/4000000/stack?reading=4000000&engine=x'),
     'POST stack': () =>
       route(newStack, 'POST', '/api/frames/4000000/stack', JSON.stringify({ region, engine: 'x' })),
+    'POST trials': () =>
+      route(
+        trials,
+        'POST',
+        '/api/frames/4000000/trials',
+        JSON.stringify({
+          readingId: null,
+          trials: [{ region, valueNm: null, expandedNm: null, problem: null, agoMs: 0 }],
+        }),
+      ),
     'GET over-time': () => route(overTimeCsv, 'GET', '/api/over-time'),
   };
 }

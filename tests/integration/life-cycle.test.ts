@@ -225,7 +225,8 @@ describe('re-fits', () => {
     await expect(accept(world.people.reviewer, moved, { version: 0 })).rejects.toMatchObject({
       code: 'NOT_ALLOWED',
     });
-    await expect(accept(world.people.reviewer2, moved, { version: 0 })).resolves.toBeDefined();
+    const moveReason = 'The first region lay on a reflection.';
+    await expect(accept(world.people.reviewer2, moved, { version: 0, moveReason })).resolves.toBeDefined();
   });
 
   test('bar the first sender after a return as well', async () => {
