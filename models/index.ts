@@ -16,6 +16,9 @@ import { definePasswordProof } from './password-proof';
 import { definePasswordReset } from './password-reset';
 import { definePerson } from './person';
 import { definePersonRole } from './person-role';
+import { definePlate } from './plate';
+import { definePlateCertificate } from './plate-certificate';
+import { definePlateMount } from './plate-mount';
 import { defineReading } from './reading';
 import { defineReadingResult } from './reading-result';
 import { defineReadingState } from './reading-state';
@@ -24,6 +27,7 @@ import { defineReturn } from './return';
 import { defineSetting } from './setting';
 import { defineSetup } from './setup';
 import { defineSetupDecision } from './setup-decision';
+import { defineSetupPlate } from './setup-plate';
 import { defineSignInAttempt } from './sign-in-attempt';
 import { defineSignature } from './signature';
 import { defineSource } from './source';
@@ -56,6 +60,9 @@ export function defineTables(sequelize: Sequelize) {
     passwordResets: definePasswordReset(sequelize),
     people: definePerson(sequelize),
     personRoles: definePersonRole(sequelize),
+    plates: definePlate(sequelize),
+    plateCertificates: definePlateCertificate(sequelize),
+    plateMounts: definePlateMount(sequelize),
     readings: defineReading(sequelize),
     readingResults: defineReadingResult(sequelize),
     readingStates: defineReadingState(sequelize),
@@ -64,6 +71,7 @@ export function defineTables(sequelize: Sequelize) {
     settings: defineSetting(sequelize),
     setups: defineSetup(sequelize),
     setupDecisions: defineSetupDecision(sequelize),
+    setupPlates: defineSetupPlate(sequelize),
     signInAttempts: defineSignInAttempt(sequelize),
     signatures: defineSignature(sequelize),
     sources: defineSource(sequelize),

@@ -72,7 +72,7 @@ export function defineSetup(sequelize: Sequelize) {
       id: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false, autoIncrement: true, primaryKey: true },
       benchId: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       number: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
-      plate: { type: DataTypes.STRING(60), allowNull: false },
+      plate: { type: DataTypes.STRING(130), allowNull: false },
       scaleUmPerPx: { type: DataTypes.DOUBLE, allowNull: false },
       scaleStated: { type: DataTypes.DOUBLE, allowNull: false },
       scaleK: { type: DataTypes.DOUBLE, allowNull: false },

@@ -43,12 +43,43 @@ export interface CertificateLink {
   fileName: string;
 }
 
+/** One revision of what is known of a slit plate. */
+export interface PlateCertificateView {
+  id: number;
+  number: number;
+  separationUm: StatedValue;
+  widthUm: StatedValue;
+  certificate: string;
+  file: CertificateLink | null;
+  due: string | null;
+  confirmed: ConfirmedValue[];
+  enteredBy: PersonRef;
+  enteredAt: Instant;
+}
+
+export interface PlateView {
+  id: number;
+  name: string;
+  note: string;
+  /** Newest first; the first one counts. */
+  certificates: PlateCertificateView[];
+  /** Where it is now. */
+  mountedOn: { bench: PersonRef; since: Instant } | null;
+  /** Benches whose setup in force names it while it is off. */
+  missedBy: PersonRef[];
+  /** Newest first. */
+  mounts: { bench: PersonRef; from: Instant; to: Instant | null }[];
+}
+
 /** What a setup states, whatever became of it. */
 export interface SetupStatement {
   id: number;
   benchId: number;
   number: number;
   plate: string;
+  plateId: number;
+  /** Which certificate of the plate its copy comes from. */
+  plateRevision: number;
   scaleUmPerPx: StatedValue;
   separationUm: StatedValue;
   widthUm: StatedValue;
@@ -108,6 +139,8 @@ export interface BenchView extends BenchChoice {
   waiting: SetupProposal | null;
   /** Declined or taken back, newest first. */
   ended: SetupProposal[];
+  /** The plate of the setup in force has a newer certificate than the one it took its values from. */
+  newerCertificate: boolean;
   /** Highest number any setup of this bench has, 0 for none. */
   lastNumber: number;
   /** Wavelength (nm, air) to draw the geometry with: the last accepted reading's, else 635. */

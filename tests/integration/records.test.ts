@@ -87,6 +87,8 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['setup_decisions', 'reason'],
   ['certificate_files', 'file_name'],
   ['source_certificates', 'certificate'],
+  ['plate_certificates', 'certificate'],
+  ['setup_plates', 'plate_id'],
   ['readings', 'value_nm'],
   ['reading_results', 'result_json'],
   ['signatures', 'person_name'],

@@ -7,6 +7,7 @@ import type { Setup } from '@/models/setup';
 import type { CommandContext } from '../context';
 import { db, select } from '../db';
 import { mailText } from '../people-mail';
+import { mountPlate } from '../plate-mounts';
 import { inTransaction, type Work } from '../transaction';
 
 const DID: Record<SetupDecision, string> = {
@@ -41,9 +42,19 @@ export async function decideSetup(
     const passed = setup.wantedFrom === null || setup.wantedFrom < context.at;
     const inForceFrom = decision === 'approved' ? (passed ? context.at : setup.wantedFrom) : null;
     await keep(work, context, bench, setup, { decision, inForceFrom, reason });
+    if (inForceFrom) await mountIts(work, context, setup, inForceFrom);
     await tellAdmin(work, context, bench, setup, { decision, inForceFrom, reason });
     return { number: setup.number, inForceFrom };
   });
+}
+
+/** The plate a setup picks is on its bench from the moment the setup is in force. */
+async function mountIts(work: Work, context: CommandContext, setup: Setup, from: Date): Promise<void> {
+  const { plateId } = await db().tables.setupPlates.findByPk(setup.id, {
+    transaction: work.transaction,
+    rejectOnEmpty: true,
+  });
+  await mountPlate(work, context, { plateId, benchId: setup.benchId, from });
 }
 
 /** Whoever entered a setup takes it back while nobody has decided on it. */

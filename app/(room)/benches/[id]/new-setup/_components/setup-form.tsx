@@ -8,10 +8,18 @@ import { Field, Select, TextArea } from '@/components/ui/field';
 import { Notice } from '@/components/ui/notice';
 import { useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
-import type { SetupView } from '@/lib/domain/views';
-import { SETUP_VALUES } from '@/lib/domain/setup';
+import type { PlateView, SetupView } from '@/lib/domain/views';
 import { InForceFrom } from './in-force-from';
-import { changesOf, hintOf, inputOf, scaleText, startText, type SetupInput } from './setup-text';
+import { PlateChoice } from './plate-choice';
+import {
+  BENCH_VALUES,
+  changesOf,
+  hintOf,
+  inputOf,
+  scaleText,
+  startText,
+  type SetupInput,
+} from './setup-text';
 import { ScalePhoto } from './scale-photo';
 import { ValueBlock } from './value-block';
 
@@ -20,16 +28,18 @@ interface Props {
   /** The setup in force. */
   before: SetupView | null;
   lastNumber: number;
+  plates: PlateView[];
   addSetup: (input: SetupInput) => Promise<ActionAnswer<unknown>>;
 }
 
 /** A new setup: each value with its uncertainty, certificate and due date, and what changes. */
-export function SetupForm({ benchId, before, lastNumber, addSetup }: Props) {
+export function SetupForm({ benchId, before, lastNumber, plates, addSetup }: Props) {
   const router = useRouter();
   const [text, setText] = useState(() => startText(before));
   const submit = useSubmit<unknown>();
   const number = lastNumber + 1;
-  const changes = changesOf(text, before);
+  const plate = plates.find(({ id }) => id === text.plateId);
+  const changes = changesOf(text, plate, before);
   const faster = submit.message !== '';
   return (
     <form
@@ -37,7 +47,7 @@ export function SetupForm({ benchId, before, lastNumber, addSetup }: Props) {
       onSubmit={(event) => {
         event.preventDefault();
         submit.run(
-          () => addSetup(inputOf(benchId, lastNumber, text)),
+          () => addSetup(inputOf(benchId, lastNumber, text, plate)),
           () => {
             router.push(`/benches/${benchId}`);
             router.refresh();
@@ -50,15 +60,14 @@ export function SetupForm({ benchId, before, lastNumber, addSetup }: Props) {
         error={submit.fields.inForceFrom}
         onChange={(from) => setText({ ...text, from })}
       />
-      <div className="max-w-[320px] pb-4">
-        <Field
-          label="Slit plate"
-          value={text.plate}
-          error={submit.fields.plate}
-          onChange={(event) => setText({ ...text, plate: event.target.value })}
-        />
-      </div>
-      {SETUP_VALUES.map(({ key }) => (
+      <PlateChoice
+        plates={plates}
+        benchId={benchId}
+        chosen={plate}
+        error={submit.fields.plateId}
+        onChoose={(plateId) => setText({ ...text, plateId })}
+      />
+      {BENCH_VALUES.map((key) => (
         <ValueBlock
           key={key}
           valueKey={key}
