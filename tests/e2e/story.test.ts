@@ -124,7 +124,7 @@ describe('the main job', () => {
     expect(await (await page.request.get(`${SITE()}${file}`)).text()).toBe('%PDF-1.7 invented certificate');
     await admin.expectAccessible();
     await page.goto(newSetup);
-    await page.getByLabel('Slit plate', { exact: true }).selectOption({ label: 'P-7, on no bench' });
+    await page.getByRole('combobox', { name: 'Slit plate' }).selectOption({ label: 'P-7, on no bench' });
     await enter(/^Pixel scale/, '25.4', '0.005');
     await enter(/^Distance/, '500', '0.34');
     await page.getByLabel('Why a new setup').fill('First setup.');
