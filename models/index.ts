@@ -7,6 +7,7 @@ import { defineBench } from './bench';
 import { defineCertificateFile } from './certificate-file';
 import { defineReadingComment } from './comment';
 import { defineCommentMention } from './comment-mention';
+import { defineCorrectionFit } from './correction-fit';
 import { defineFrame } from './frame';
 import { defineLookAnswer } from './look-answer';
 import { defineLot } from './lot';
@@ -51,6 +52,7 @@ export function defineTables(sequelize: Sequelize) {
     certificateFiles: defineCertificateFile(sequelize),
     comments: defineReadingComment(sequelize),
     commentMentions: defineCommentMention(sequelize),
+    correctionFits: defineCorrectionFit(sequelize),
     frames: defineFrame(sequelize),
     lookAnswers: defineLookAnswer(sequelize),
     lots: defineLot(sequelize),

@@ -96,6 +96,8 @@ export interface SetupStatement {
   change: string;
   /** Larger than both uncertainties together. */
   changeIsLook: boolean;
+  /** It corrects readings of the past. */
+  corrects: boolean;
 }
 
 /** A setup that is, was or will be in force. */
@@ -108,10 +110,44 @@ export interface SetupView extends SetupStatement {
   readings: number;
 }
 
+interface CorrectedValue {
+  valueNm: number | null;
+  expandedNm: number | null;
+  verdict: Verdict | null;
+}
+
+/** What a setup that corrects the past does to the readings of its time. */
+export interface CorrectionView {
+  from: Instant;
+  until: Instant | null;
+  total: number;
+  /** So many have been measured with the new values. */
+  measured: number;
+  /** So many verdicts change. */
+  flips: number;
+  /** So many give no answer with the new values and stay as they are. */
+  withoutAnswer: number;
+  /** Verdicts that change first; a page at most. */
+  rows: {
+    readingId: number;
+    frameId: number;
+    name: string;
+    status: ReadingState;
+    medium: Medium;
+    was: CorrectedValue;
+    /** null while it has not been measured, or where there is no answer. */
+    becomes: CorrectedValue | null;
+    message: string | null;
+    flips: boolean;
+  }[];
+}
+
 /** A setup that waits for a decision, or that never came into force. */
 export interface SetupProposal extends SetupStatement {
   /** null: as soon as it is approved. */
   wantedFrom: Instant | null;
+  /** Number of the setup it is compared with: the one in force at its moment. */
+  besideNumber: number | null;
   ended: { decision: 'declined' | 'taken-back'; reason: string; by: PersonRef; at: Instant } | null;
 }
 
@@ -137,6 +173,8 @@ export interface BenchView extends BenchChoice {
   /** Newest first by the moment they come into force, the one in force included. */
   setups: SetupView[];
   waiting: SetupProposal | null;
+  /** What the waiting one would correct; null for one that corrects nothing. */
+  correction: CorrectionView | null;
   /** Declined or taken back, newest first. */
   ended: SetupProposal[];
   /** The plate of the setup in force has a newer certificate than the one it took its values from. */
@@ -246,6 +284,8 @@ export interface ReadingBrief {
   strip: PlacedStrip;
   madeBy: PersonRef | null;
   madeAt: Instant;
+  /** Number of the reading that corrects this signed one; null for none. */
+  correctedBy: number | null;
 }
 
 export type Subject =

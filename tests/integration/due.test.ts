@@ -17,6 +17,9 @@ import { PASSWORD, PLATE, SETUP, as, closeWorld, makeWorld, putInForce, type Wor
 const DUE = '2026-12-24';
 const day = (date: string, time = '08:00') => new Date(`${date}T${time}:00.000Z`);
 
+// A world is made anew for each test, and hashing its people's passwords takes its time on a busy machine.
+jest.setTimeout(60_000);
+
 let world: World;
 beforeEach(async () => {
   world = await makeWorld();

@@ -23,6 +23,9 @@ import {
   type World,
 } from './support/world';
 
+// A world is made anew for each test, and hashing its people's passwords takes its time on a busy machine.
+jest.setTimeout(60_000);
+
 let world: World;
 beforeEach(async () => {
   world = await makeWorld();

@@ -27,6 +27,9 @@ import {
   type World,
 } from './support/world';
 
+// A world is made anew for each test, and hashing its people's passwords takes its time on a busy machine.
+jest.setTimeout(60_000);
+
 let world: World;
 beforeEach(async () => {
   world = await makeWorld();
@@ -72,13 +75,6 @@ describe('a proposed setup', () => {
     await approve(passed, later(48));
     expect(await numberAt(later(47))).toBe(2);
     expect(await numberAt(later(48))).toBe(3);
-  });
-
-  test('for a moment that has passed is refused beside its field', async () => {
-    await expect(propose({ inForceFrom: later(-1).toISOString() })).rejects.toMatchObject({
-      code: 'BAD_INPUT',
-      fields: { inForceFrom: expect.stringContaining('passed') as string },
-    });
   });
 
   test('has one proposal before it: another waits for the decision, and a declined number is not used again', async () => {

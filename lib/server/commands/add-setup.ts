@@ -22,7 +22,7 @@ const OF_THE_BENCH = ['distanceMm', 'scaleUmPerPx'] as const;
 
 /**
  * Proposes a setup. It comes into force when somebody else approves it; earlier ones, and the readings made with them,
- * stay as they are. One proposal of a bench waits at a time, so that what it changes stays what it said.
+ * stay as they are. One in force from a moment that has passed corrects the readings since. One proposal of a bench waits at a time, so that what it changes stays what it said.
  */
 export async function addSetup(
   context: CommandContext,
@@ -49,8 +49,10 @@ export async function addSetup(
         `Setup ${waiting} of ${bench.name} waits for QA already. It is decided on, or taken back, before another is entered.`,
       );
     }
-    requireFuture(context, setup.inForceFrom);
-    const inForce = await setupAt(bench.id, context.at, transaction);
+    const wanted = setup.inForceFrom === null ? context.at : new Date(setup.inForceFrom);
+    const corrects = wanted < context.at;
+    const inForce = await setupAt(bench.id, corrects ? wanted : context.at, transaction);
+    if (corrects && !inForce) throw nothingThen();
     const before = inForce ? await tables.setups.findByPk(inForce.id, { transaction }) : null;
     const confirmed = requireConfirmed(
       OF_THE_BENCH.map((key) => ({
@@ -64,7 +66,7 @@ export async function addSetup(
     const { plate, certificate } = await plateOf(setup, work);
     try {
       const row = await tables.setups.create(
-        { ...rowOf(context, setup, confirmed), ...plateColumns(plate, certificate) },
+        { ...rowOf(context, setup, confirmed), ...plateColumns(plate, certificate), corrects },
         { transaction },
       );
       await tables.setupPlates.create(
@@ -93,11 +95,10 @@ function someoneWasFaster(newest: number): AppError {
   );
 }
 
-function requireFuture(context: CommandContext, wanted: string | null): void {
-  if (wanted === null || new Date(wanted) > context.at) return;
+function nothingThen(): AppError {
   const message =
-    'This moment has passed: frames taken since have been measured with the setup that was in force. Choose a later one, or “as soon as it is approved”.';
-  throw new AppError('BAD_INPUT', message, { inForceFrom: message });
+    'No setup of this bench was in force at that moment, so there is nothing to correct. Choose a later one.';
+  return new AppError('BAD_INPUT', message, { inForceFrom: message });
 }
 
 /** The plate with the newest of its certificates, which has to be the one the person saw. */

@@ -6,6 +6,7 @@ import { db, select } from '../db';
 import { isMounted } from '../plate-mounts';
 import { fitnessOf } from '../setups';
 import { setupAt, waitingNumber } from '../setup-timeline';
+import { correctionView } from './corrections';
 import { setupHistory } from './setup-views';
 
 /** The wavelength a bench without accepted readings is drawn with, nm. */
@@ -43,6 +44,7 @@ export async function findBench(id: number, now = new Date()): Promise<BenchView
     ...history,
     note: bench.note,
     inForce,
+    correction: history.waiting ? await correctionView(history.waiting.id) : null,
     newerCertificate: inForce ? await hasNewerCertificate(inForce) : false,
     drawNm: last?.nm ?? EXAMPLE_NM,
     drawnFrom: last ? 'reading' : 'example',

@@ -61,13 +61,16 @@ export async function setupHistory(benchId: number, now = new Date()): Promise<S
       readings: facts.countOf.get(row.id) ?? 0,
     };
   });
-  const inForce = inLine.filter((row) => fromOf(row) <= now).at(-1) ?? null;
+  const inForceAt = (at: Date) => inLine.filter((row) => fromOf(row) <= at).at(-1) ?? null;
+  const inForce = inForceAt(now);
   const proposals = rows
     .filter((row) => !inLine.includes(row))
     .map((row): SetupProposal => {
       const decision = decisionOf.get(row.id);
+      const beside = row.corrects ? inForceAt(row.wantedFrom ?? now) : inForce;
       return {
-        ...statementOf(row, inForce, facts),
+        ...statementOf(row, beside, facts),
+        besideNumber: beside?.number ?? null,
         wantedFrom: row.wantedFrom?.toISOString() ?? null,
         ended:
           decision && decision.decision !== 'approved'
@@ -161,5 +164,6 @@ function statementOf(row: Setup, before: Setup | null, { nameOf, files, plateOf 
     enteredBy: { id: row.enteredBy, name: nameOf.get(row.enteredBy) ?? '' },
     enteredAt: row.enteredAt.toISOString(),
     ...changeBetween(before, row),
+    corrects: row.corrects,
   };
 }

@@ -65,7 +65,8 @@ export default async function Bench({ params }: Props) {
       {waiting ? (
         <WaitingSetup
           setup={waiting}
-          inForce={setup}
+          inForce={bench.setups.find(({ number }) => number === waiting.besideNumber) ?? null}
+          correction={bench.correction}
           may={{ decide: can(me, 'setups.decide') && !isMine, takeBack: can(me, 'setups.add') && isMine }}
           decideSetup={decideSetup}
           takeBackSetup={takeBackSetup}

@@ -18,6 +18,7 @@ const WORDS: Record<string, string> = {
   'person.reset-password': 'Password changed',
   'person.sign-out-everywhere': 'Sessions ended',
   'reading.accept': 'Reading accepted',
+  'reading.correct': 'Reading corrected',
   'reading.refit': 'Reading fitted again',
   'reading.return': 'Reading returned',
   'reading.comment': 'Comment on a reading',

@@ -44,7 +44,8 @@ export default async function NewSetup({ params }: Props) {
       </p>
       <SetupForm
         benchId={id}
-        before={before}
+        inForce={before}
+        setups={bench.setups}
         lastNumber={bench.lastNumber}
         plates={plates}
         addSetup={addSetup}

@@ -13,6 +13,7 @@ import { InForceFrom } from './in-force-from';
 import { PlateChoice } from './plate-choice';
 import {
   BENCH_VALUES,
+  besideOf,
   changesOf,
   hintOf,
   inputOf,
@@ -25,19 +26,21 @@ import { ValueBlock } from './value-block';
 
 interface Props {
   benchId: number;
-  /** The setup in force. */
-  before: SetupView | null;
+  inForce: SetupView | null;
+  /** Setups of the bench, newest first. */
+  setups: SetupView[];
   lastNumber: number;
   plates: PlateView[];
   addSetup: (input: SetupInput) => Promise<ActionAnswer<unknown>>;
 }
 
 /** A new setup: each value with its uncertainty, certificate and due date, and what changes. */
-export function SetupForm({ benchId, before, lastNumber, plates, addSetup }: Props) {
+export function SetupForm({ benchId, inForce, setups, lastNumber, plates, addSetup }: Props) {
   const router = useRouter();
-  const [text, setText] = useState(() => startText(before));
+  const [text, setText] = useState(() => startText(inForce));
   const submit = useSubmit<unknown>();
   const number = lastNumber + 1;
+  const before = besideOf(text, setups, inForce);
   const plate = plates.find(({ id }) => id === text.plateId);
   const changes = changesOf(text, plate, before);
   const faster = submit.message !== '';
@@ -57,8 +60,15 @@ export function SetupForm({ benchId, before, lastNumber, plates, addSetup }: Pro
     >
       <InForceFrom
         from={text.from}
+        setups={setups}
         error={submit.fields.inForceFrom}
-        onChange={(from) => setText({ ...text, from })}
+        onChange={(from) => {
+          // Another time had other values: what was typed for one is no start for the other.
+          const other = besideOf({ ...text, from }, setups, inForce);
+          setText(
+            other?.id === before?.id ? { ...text, from } : { ...startText(other), why: text.why, from },
+          );
+        }}
       />
       <PlateChoice
         plates={plates}
@@ -160,7 +170,7 @@ export function SetupForm({ benchId, before, lastNumber, plates, addSetup }: Pro
               {changes.length ? (
                 changes.map((line) => <li key={line}>{line}</li>)
               ) : (
-                <li>Nothing yet: all values are as in setup {before.number}, which is in force.</li>
+                <li>Nothing yet: all values are as in setup {before.number}.</li>
               )}
             </ul>
           ) : (

@@ -24,9 +24,14 @@ export type BenchValue = (typeof BENCH_VALUES)[number];
 
 export type ValueText = StatedText & CertificateText;
 
+/** From when: with the approval; later, as a date-and-time field has it; or the moment a setup of the past began. */
+export interface FromText {
+  kind: 'approval' | 'later' | 'correction';
+  at: string;
+}
+
 export interface SetupText {
-  /** '' : as soon as it is approved; else as a date-and-time field has it. */
-  from: string;
+  from: FromText;
   plateId: number | null;
   values: Record<BenchValue, ValueText>;
   remountU: string;
@@ -46,10 +51,20 @@ function textOf(value: StatedValue | undefined): ValueText {
   return { ...textOfStated(value), certificate, file, due: due ?? '' };
 }
 
+/** The setup the values are compared with: the one in force, or the one that was at the moment of a correction. */
+export function besideOf(
+  text: SetupText,
+  setups: readonly SetupView[],
+  inForce: SetupView | null,
+): SetupView | null {
+  if (text.from.kind !== 'correction') return inForce;
+  return setups.find(({ from }) => from <= text.from.at) ?? inForce;
+}
+
 /** Starts from the setup in force, since usually one value changes. */
 export function startText(before: SetupView | null): SetupText {
   return {
-    from: '',
+    from: { kind: 'approval', at: '' },
     plateId: before?.plateId ?? null,
     values: { distanceMm: textOf(before?.distanceMm), scaleUmPerPx: textOf(before?.scaleUmPerPx) },
     remountU: before?.remountNm ? String(before.remountNm.u) : '',
@@ -73,7 +88,7 @@ export function inputOf(
   return {
     benchId,
     afterNumber: lastNumber,
-    inForceFrom: text.from === '' ? null : new Date(text.from).toISOString(),
+    inForceFrom: text.from.kind === 'approval' ? null : new Date(text.from.at).toISOString(),
     plateId: plate?.id ?? 0,
     plateCertificateId: plate?.certificates[0].id ?? 1,
     distanceMm: { ...statedInput(distanceMm), ...certificateInput(distanceMm) },
