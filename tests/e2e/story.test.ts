@@ -66,7 +66,7 @@ describe('the main job', () => {
     await outsider.close();
   });
 
-  test('the admin enters people, a bench with its setup, a specification, a lot with units, a source', async () => {
+  test('the admin enters people, a slit plate with its certificate, and a bench whose setup waits for QA', async () => {
     const { page } = admin;
     await page.goto('/people');
     const people: [string, string, string[]][] = [
@@ -135,7 +135,10 @@ describe('the main job', () => {
     await page.getByRole('heading', { name: 'Setup 1 waits for QA' }).waitFor();
     expect(await page.getByRole('button', { name: /^Approve/ }).count()).toBe(0);
     await admin.expectAccessible();
+  });
 
+  test('the admin enters a specification, a source, a lot with units', async () => {
+    const { page } = admin;
     await page.goto('/specifications');
     await page.getByRole('button', { name: /^Add a specification/ }).click();
     await page.getByLabel('Name', { exact: true }).fill('Red 635 ± 5');
