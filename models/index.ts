@@ -7,6 +7,7 @@ import { defineBench } from './bench';
 import { defineCertificateFile } from './certificate-file';
 import { defineReadingComment } from './comment';
 import { defineCommentMention } from './comment-mention';
+import { defineCorrectionFit } from './correction-fit';
 import { defineFrame } from './frame';
 import { defineLookAnswer } from './look-answer';
 import { defineLot } from './lot';
@@ -16,6 +17,9 @@ import { definePasswordProof } from './password-proof';
 import { definePasswordReset } from './password-reset';
 import { definePerson } from './person';
 import { definePersonRole } from './person-role';
+import { definePlate } from './plate';
+import { definePlateCertificate } from './plate-certificate';
+import { definePlateMount } from './plate-mount';
 import { defineReading } from './reading';
 import { defineReadingResult } from './reading-result';
 import { defineReadingState } from './reading-state';
@@ -24,6 +28,7 @@ import { defineReturn } from './return';
 import { defineSetting } from './setting';
 import { defineSetup } from './setup';
 import { defineSetupDecision } from './setup-decision';
+import { defineSetupPlate } from './setup-plate';
 import { defineSignInAttempt } from './sign-in-attempt';
 import { defineSignature } from './signature';
 import { defineSource } from './source';
@@ -47,6 +52,7 @@ export function defineTables(sequelize: Sequelize) {
     certificateFiles: defineCertificateFile(sequelize),
     comments: defineReadingComment(sequelize),
     commentMentions: defineCommentMention(sequelize),
+    correctionFits: defineCorrectionFit(sequelize),
     frames: defineFrame(sequelize),
     lookAnswers: defineLookAnswer(sequelize),
     lots: defineLot(sequelize),
@@ -56,6 +62,9 @@ export function defineTables(sequelize: Sequelize) {
     passwordResets: definePasswordReset(sequelize),
     people: definePerson(sequelize),
     personRoles: definePersonRole(sequelize),
+    plates: definePlate(sequelize),
+    plateCertificates: definePlateCertificate(sequelize),
+    plateMounts: definePlateMount(sequelize),
     readings: defineReading(sequelize),
     readingResults: defineReadingResult(sequelize),
     readingStates: defineReadingState(sequelize),
@@ -64,6 +73,7 @@ export function defineTables(sequelize: Sequelize) {
     settings: defineSetting(sequelize),
     setups: defineSetup(sequelize),
     setupDecisions: defineSetupDecision(sequelize),
+    setupPlates: defineSetupPlate(sequelize),
     signInAttempts: defineSignInAttempt(sequelize),
     signatures: defineSignature(sequelize),
     sources: defineSource(sequelize),

@@ -61,6 +61,8 @@ export interface Setup extends Model<InferAttributes<Setup>, InferCreationAttrib
   needsApproval: boolean;
   /** Null: as soon as it is approved. */
   wantedFrom: Date | null;
+  /** In force from a moment that had passed when it was entered: it corrects the readings since. */
+  corrects: boolean;
   enteredBy: number;
   enteredAt: Date;
 }
@@ -72,7 +74,7 @@ export function defineSetup(sequelize: Sequelize) {
       id: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false, autoIncrement: true, primaryKey: true },
       benchId: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       number: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
-      plate: { type: DataTypes.STRING(60), allowNull: false },
+      plate: { type: DataTypes.STRING(130), allowNull: false },
       scaleUmPerPx: { type: DataTypes.DOUBLE, allowNull: false },
       scaleStated: { type: DataTypes.DOUBLE, allowNull: false },
       scaleK: { type: DataTypes.DOUBLE, allowNull: false },
@@ -115,6 +117,7 @@ export function defineSetup(sequelize: Sequelize) {
       confirmedJson: { type: DataTypes.TEXT, allowNull: false },
       needsApproval: { type: DataTypes.BOOLEAN, allowNull: false },
       wantedFrom: { type: DataTypes.DATE(3), allowNull: true },
+      corrects: { type: DataTypes.BOOLEAN, allowNull: false },
       enteredBy: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       enteredAt: { type: DataTypes.DATE(3), allowNull: false },
     },

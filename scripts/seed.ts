@@ -4,11 +4,12 @@
  * database, which it checks.
  */
 import type { Role } from '@/lib/domain/roles';
-import { setupSchema } from '@/lib/domain/setup-schemas';
+import { plateSchema, setupSchema } from '@/lib/domain/setup-schemas';
 import type { FitResult } from '@/lib/domain/scan-result';
 import type { Outcome } from '@/lib/domain/views';
 import { acceptReading } from '@/lib/server/commands/accept-reading';
 import { addBench } from '@/lib/server/commands/add-bench';
+import { addPlate } from '@/lib/server/commands/add-plate';
 import { addPerson, createFirstAdmin } from '@/lib/server/commands/add-person';
 import { addSetup } from '@/lib/server/commands/add-setup';
 import { addSource } from '@/lib/server/commands/add-source';
@@ -126,11 +127,42 @@ async function constants(
   return { benches, sourceId, lots };
 }
 
+interface PlateChoice {
+  plateId: number;
+  plateCertificateId: number;
+}
+
+/** The plate a setup picks, added with its certificate when it is first named. */
+async function plateOf(
+  cast: Cast,
+  setup: (typeof DEMO_SETUPS)[number],
+  plates: Map<string, PlateChoice>,
+  stated: (value: [number, number], due: number) => { certificate: string; due: string },
+): Promise<PlateChoice> {
+  const known = plates.get(setup.plate);
+  if (known) return known;
+  const { certificate, due, ...separationUm } = stated(setup.separationUm, setup.dueInDays.plate);
+  const { plateId, certificateId } = await addPlate(
+    { actor: cast.admin, at: daysAgo(setup.daysAgo, -70) },
+    plateSchema.parse({
+      name: setup.plate,
+      separationUm,
+      widthUm: stated(setup.widthUm, setup.dueInDays.plate),
+      certificate,
+      due,
+    }),
+  );
+  const added = { plateId, plateCertificateId: certificateId };
+  plates.set(setup.plate, added);
+  return added;
+}
+
 async function enterSetup(
   cast: Cast,
   benchId: number,
   setup: (typeof DEMO_SETUPS)[number],
   afterNumber: number,
+  plates: Map<string, PlateChoice>,
 ): Promise<void> {
   const stated = ([value, expanded]: [number, number], due: number) => ({
     value,
@@ -139,15 +171,14 @@ async function enterSetup(
     certificate: CERTIFICATE,
     due: dueIn(due),
   });
+  const plate = await plateOf(cast, setup, plates, stated);
   const { setupId } = await addSetup(
     { actor: cast.admin, at: daysAgo(setup.daysAgo, -60) },
     setupSchema.parse({
       benchId,
       afterNumber,
-      plate: setup.plate,
+      ...plate,
       scaleUmPerPx: stated(setup.scaleUmPerPx, setup.dueInDays.scale),
-      separationUm: stated(setup.separationUm, setup.dueInDays.plate),
-      widthUm: stated(setup.widthUm, setup.dueInDays.plate),
       distanceMm: stated(setup.distanceMm, setup.dueInDays.distance),
       remountNm: { u: 0.058, dof: 29 },
       tone: 'auto',
@@ -265,11 +296,12 @@ async function main(): Promise<void> {
   const { benches, sourceId, lots } = await constants(cast);
   const setups = [...DEMO_SETUPS].sort((a, b) => b.daysAgo - a.daysAgo);
   const numbers = benches.map(() => 0);
+  const plates = new Map<string, PlateChoice>();
   const frames = demoFrames();
   for (const [turn, frame] of frames.entries()) {
     while (setups.length > 0 && setups[0].daysAgo >= frame.daysAgo) {
       const setup = setups.shift()!;
-      await enterSetup(cast, benches[setup.bench], setup, numbers[setup.bench]);
+      await enterSetup(cast, benches[setup.bench], setup, numbers[setup.bench], plates);
       numbers[setup.bench] += 1;
     }
     const subject =
@@ -281,7 +313,7 @@ async function main(): Promise<void> {
     if (turn % 20 === 19) console.log(`  ${turn + 1} of ${frames.length} demo frames taken and fitted`);
   }
   for (const setup of setups) {
-    await enterSetup(cast, benches[setup.bench], setup, numbers[setup.bench]);
+    await enterSetup(cast, benches[setup.bench], setup, numbers[setup.bench], plates);
     numbers[setup.bench] += 1;
   }
   // One mail in the developer's mail page, the way a forgotten password sends it.

@@ -40,6 +40,7 @@ export function ReadingsOfFrame({ readings, shownId, hrefOf, frameId }: Props) {
             <span className="truncate">
               {READING_WORDS[reading.status].toLowerCase()}, {formatNumber(reading.orderCentres, 0)} centres
               {reading.madeBy ? `, ${reading.madeBy.name}` : ''}
+              {reading.correctedBy === null ? '' : `, corrected by reading ${reading.correctedBy}`}
             </span>
             <b className="value">{valueText(reading)}</b>
           </Link>

@@ -35,6 +35,8 @@ export const PERMISSIONS = {
   'benches.add': ['admin'],
   'setups.add': ['admin'],
   'setups.decide': ['qa'],
+  'plates.see': ['technician', 'reviewer', 'qa', 'admin'],
+  'plates.change': ['admin', 'qa'],
   'certificates.see': ['technician', 'reviewer', 'qa', 'admin'],
   'certificates.add': ['admin', 'qa'],
   'sources.add': ['admin', 'qa'],

@@ -38,7 +38,7 @@ export function oddness(key: ValueKey, value: number, before: number | null): st
   if (before === null) {
     const [from, to] = USUAL[key];
     if (value >= from && value <= to) return null;
-    return `Benches of this kind lie between ${formatNumber(from, from < 1 ? 1 : 0)} and ${formatNumber(to, 0)} ${unit}: a wrong unit?`;
+    return `This usually lies between ${formatNumber(from, from < 1 ? 1 : 0)} and ${formatNumber(to, 0)} ${unit}: a wrong unit?`;
   }
   const ratio = value / before;
   const slip = SLIPS.find(([of]) => Math.abs(ratio / of - 1) < SLIP_SLACK);

@@ -4,8 +4,15 @@ import { LIMITS } from './limits';
 import { finite, id, positive, sha256Text, words } from './schemas';
 import { divisorOf, UNCERTAINTY_SHAPES } from './setup';
 
-/** One value with its ± as stated, and how that is known. `k` of anything but an expanded ± follows from its shape. */
-export const statedSchema = (what: string) =>
+/** What a value stands on. */
+const certified = {
+  certificate: z.string().trim().max(300).default(''),
+  file: sha256Text.nullable().default(null),
+  due: z.iso.date('A due date looks like 2027-03-01.').nullable().default(null),
+};
+
+/** One value with its ± as stated. `k` of anything but an expanded ± follows from its shape. */
+const statedSchema = (what: string) =>
   z
     .object({
       value: positive(what),
@@ -15,9 +22,6 @@ export const statedSchema = (what: string) =>
         .refine((k) => k >= 1 && k <= 10, 'k lies between 1 and 10.')
         .default(2),
       dof: positive('Degrees of freedom').nullable().default(null),
-      certificate: z.string().trim().max(300).default(''),
-      file: sha256Text.nullable().default(null),
-      due: z.iso.date('A due date looks like 2027-03-01.').nullable().default(null),
     })
     .refine((value) => value.stated < value.value, {
       path: ['stated'],
@@ -32,50 +36,38 @@ export const statedSchema = (what: string) =>
 /** Why a value that looks odd is right; empty: nothing was confirmed. */
 const confirmed = z.string().trim().max(300).default('');
 
-export const setupSchema = z
-  .object({
-    benchId: id,
-    /** The number the person saw as the newest; another one means someone was faster. */
-    afterNumber: z.number().int().min(0),
-    /** Null: as soon as it is approved. */
-    inForceFrom: z.iso.datetime('A date and time look like 2027-03-01T08:00:00Z.').nullable().default(null),
-    plate: z.string().trim().min(1, 'Name the slit plate.').max(60),
-    scaleUmPerPx: statedSchema('Pixel scale'),
-    separationUm: statedSchema('Slit separation'),
-    widthUm: statedSchema('Slit width'),
-    distanceMm: statedSchema('Distance'),
-    confirmed: z
-      .object({
-        scaleUmPerPx: confirmed,
-        separationUm: confirmed,
-        widthUm: confirmed,
-        distanceMm: confirmed,
-      })
-      .prefault({}),
-    remountNm: z
-      .object({ u: positive('Re-mount'), dof: positive('Degrees of freedom').nullable() })
-      .nullable()
-      .default(null),
-    tone: z.enum(['auto', 'linear', 'srgb']).default('auto'),
-    camera: z
-      .object({
-        model: z.string().trim().max(80).default(''),
-        serial: z.string().trim().max(80).default(''),
-        bits: z
-          .number({ error: 'The bit depth is a whole number.' })
-          .int('The bit depth is a whole number.')
-          .min(8, 'A camera writes at least 8 bits.')
-          .max(16, 'At most 16 bits are read.')
-          .nullable()
-          .default(null),
-      })
-      .prefault({}),
-    why: words('Why'),
-  })
-  .refine((s) => s.widthUm.value < s.separationUm.value, {
-    path: ['widthUm', 'value'],
-    message: 'The slit width must be smaller than the separation.',
-  });
+export const setupSchema = z.object({
+  benchId: id,
+  /** The number the person saw as the newest; another one means someone was faster. */
+  afterNumber: z.number().int().min(0),
+  /** Null: as soon as it is approved. */
+  inForceFrom: z.iso.datetime('A date and time look like 2027-03-01T08:00:00Z.').nullable().default(null),
+  plateId: z.number({ error: 'Choose the slit plate.' }).int().positive('Choose the slit plate.'),
+  /** The certificate of the plate the person saw as the newest; another one means someone was faster. */
+  plateCertificateId: id,
+  scaleUmPerPx: statedSchema('Pixel scale').and(z.object(certified)),
+  distanceMm: statedSchema('Distance').and(z.object(certified)),
+  confirmed: z.object({ scaleUmPerPx: confirmed, distanceMm: confirmed }).prefault({}),
+  remountNm: z
+    .object({ u: positive('Re-mount'), dof: positive('Degrees of freedom').nullable() })
+    .nullable()
+    .default(null),
+  tone: z.enum(['auto', 'linear', 'srgb']).default('auto'),
+  camera: z
+    .object({
+      model: z.string().trim().max(80).default(''),
+      serial: z.string().trim().max(80).default(''),
+      bits: z
+        .number({ error: 'The bit depth is a whole number.' })
+        .int('The bit depth is a whole number.')
+        .min(8, 'A camera writes at least 8 bits.')
+        .max(16, 'At most 16 bits are read.')
+        .nullable()
+        .default(null),
+    })
+    .prefault({}),
+  why: words('Why'),
+});
 
 export const decideSetupSchema = z
   .object({
@@ -88,6 +80,37 @@ export const decideSetupSchema = z
     message: 'Say why it is declined: whoever entered it reads this.',
   });
 export const takeBackSetupSchema = z.object({ setupId: id });
+
+const plateCertificate = {
+  separationUm: statedSchema('Slit separation'),
+  widthUm: statedSchema('Slit width'),
+  ...certified,
+  confirmed: z.object({ separationUm: confirmed, widthUm: confirmed }).prefault({}),
+};
+const slitsFit = (plate: { separationUm: { value: number }; widthUm: { value: number } }) =>
+  plate.widthUm.value < plate.separationUm.value;
+const SLITS_TOO_WIDE = {
+  path: ['widthUm', 'value'],
+  message: 'The slit width must be smaller than the separation.',
+};
+
+export const plateSchema = z
+  .object({
+    name: z.string().trim().min(1, 'The plate needs a name.').max(60),
+    note: z.string().trim().max(300).default(''),
+    ...plateCertificate,
+  })
+  .refine(slitsFit, SLITS_TOO_WIDE);
+export const renewPlateSchema = z
+  .object({
+    plateId: id,
+    /** The revision the person saw as the newest; another one means someone was faster. */
+    afterNumber: z.number().int().min(1),
+    ...plateCertificate,
+  })
+  .refine(slitsFit, SLITS_TOO_WIDE);
+export const takePlateOffSchema = z.object({ plateId: id });
+export const putPlateBackSchema = z.object({ plateId: id, benchId: id });
 
 export const certificateUploadSchema = z.object({
   name: z.string().trim().min(1, 'The file has no name.').max(1000),

@@ -43,12 +43,43 @@ export interface CertificateLink {
   fileName: string;
 }
 
+/** One revision of what is known of a slit plate. */
+export interface PlateCertificateView {
+  id: number;
+  number: number;
+  separationUm: StatedValue;
+  widthUm: StatedValue;
+  certificate: string;
+  file: CertificateLink | null;
+  due: string | null;
+  confirmed: ConfirmedValue[];
+  enteredBy: PersonRef;
+  enteredAt: Instant;
+}
+
+export interface PlateView {
+  id: number;
+  name: string;
+  note: string;
+  /** Newest first; the first one counts. */
+  certificates: PlateCertificateView[];
+  /** Where it is now. */
+  mountedOn: { bench: PersonRef; since: Instant } | null;
+  /** Benches whose setup in force names it while it is off. */
+  missedBy: PersonRef[];
+  /** Newest first. */
+  mounts: { bench: PersonRef; from: Instant; to: Instant | null }[];
+}
+
 /** What a setup states, whatever became of it. */
 export interface SetupStatement {
   id: number;
   benchId: number;
   number: number;
   plate: string;
+  plateId: number;
+  /** Which certificate of the plate its copy comes from. */
+  plateRevision: number;
   scaleUmPerPx: StatedValue;
   separationUm: StatedValue;
   widthUm: StatedValue;
@@ -65,6 +96,8 @@ export interface SetupStatement {
   change: string;
   /** Larger than both uncertainties together. */
   changeIsLook: boolean;
+  /** It corrects readings of the past. */
+  corrects: boolean;
 }
 
 /** A setup that is, was or will be in force. */
@@ -77,10 +110,44 @@ export interface SetupView extends SetupStatement {
   readings: number;
 }
 
+interface CorrectedValue {
+  valueNm: number | null;
+  expandedNm: number | null;
+  verdict: Verdict | null;
+}
+
+/** What a setup that corrects the past does to the readings of its time. */
+export interface CorrectionView {
+  from: Instant;
+  until: Instant | null;
+  total: number;
+  /** So many have been measured with the new values. */
+  measured: number;
+  /** So many verdicts change. */
+  flips: number;
+  /** So many give no answer with the new values and stay as they are. */
+  withoutAnswer: number;
+  /** Verdicts that change first; a page at most. */
+  rows: {
+    readingId: number;
+    frameId: number;
+    name: string;
+    status: ReadingState;
+    medium: Medium;
+    was: CorrectedValue;
+    /** null while it has not been measured, or where there is no answer. */
+    becomes: CorrectedValue | null;
+    message: string | null;
+    flips: boolean;
+  }[];
+}
+
 /** A setup that waits for a decision, or that never came into force. */
 export interface SetupProposal extends SetupStatement {
   /** null: as soon as it is approved. */
   wantedFrom: Instant | null;
+  /** Number of the setup it is compared with: the one in force at its moment. */
+  besideNumber: number | null;
   ended: { decision: 'declined' | 'taken-back'; reason: string; by: PersonRef; at: Instant } | null;
 }
 
@@ -106,8 +173,12 @@ export interface BenchView extends BenchChoice {
   /** Newest first by the moment they come into force, the one in force included. */
   setups: SetupView[];
   waiting: SetupProposal | null;
+  /** What the waiting one would correct; null for one that corrects nothing. */
+  correction: CorrectionView | null;
   /** Declined or taken back, newest first. */
   ended: SetupProposal[];
+  /** The plate of the setup in force has a newer certificate than the one it took its values from. */
+  newerCertificate: boolean;
   /** Highest number any setup of this bench has, 0 for none. */
   lastNumber: number;
   /** Wavelength (nm, air) to draw the geometry with: the last accepted reading's, else 635. */
@@ -213,6 +284,8 @@ export interface ReadingBrief {
   strip: PlacedStrip;
   madeBy: PersonRef | null;
   madeAt: Instant;
+  /** Number of the reading that corrects this signed one; null for none. */
+  correctedBy: number | null;
 }
 
 export type Subject =

@@ -9,6 +9,7 @@ export type SubjectKind =
   | 'bench'
   | 'setup'
   | 'certificate'
+  | 'plate'
   | 'specification'
   | 'lot'
   | 'unit'

@@ -8,11 +8,11 @@ import { db, select } from './db';
 import type { ReadingFacts } from './reading-facts';
 import type { Work } from './transaction';
 
-/** What the first fit of a frame that gave a value said. */
+/** What the first fit of a frame that gave a value said, with the setup the frame has now: a correction moves no region. */
 export async function firstValueOf(frameId: number, transaction?: Transaction): Promise<FirstValue | null> {
   const [first] = await select<FirstValue>(
-    `SELECT value_nm AS valueNm, u_nm AS uNm FROM readings WHERE frame_id = :frameId AND value_nm IS NOT NULL
-     ORDER BY number LIMIT 1`,
+    `SELECT r.value_nm AS valueNm, r.u_nm AS uNm FROM readings r JOIN frames f ON f.id = r.frame_id AND f.setup_id = r.setup_id
+     WHERE r.frame_id = :frameId AND r.value_nm IS NOT NULL ORDER BY r.number LIMIT 1`,
     { frameId },
     transaction,
   );

@@ -106,8 +106,9 @@ export function daysUntilDue(row: SetupConstants, at: Date): number | null {
 const days = (n: number): string => `${n} ${n === 1 ? 'day' : 'days'}`;
 
 /** Is the bench fit for use today? */
-export function fitnessOf(row: SetupConstants | null, at: Date): BenchFitness {
+export function fitnessOf(row: SetupConstants | null, at: Date, plateIsOn: boolean): BenchFitness {
   if (!row) return { word: 'stop', text: 'no setup in force' };
+  if (!plateIsOn) return { word: 'stop', text: `plate ${row.plate} is off: take, not accept` };
   const left = daysUntilDue(row, at);
   if (left === null) return { word: 'clear', text: 'in force, nothing due' };
   if (left < 0) return { word: 'stop', text: `overdue ${days(-left)}: take, not accept` };

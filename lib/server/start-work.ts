@@ -2,6 +2,8 @@ import 'server-only';
 import { anchorLog } from './commands/anchor-log';
 import { fitFrame } from './commands/fit-frame';
 import { healCopying, healFrames } from './commands/heal-frames';
+import { measureCorrection } from './commands/measure-correction';
+import { mailDue } from './commands/mail-due';
 import { PRODUCT } from './context';
 import { env } from './env';
 import { describe, log } from './log';
@@ -13,8 +15,15 @@ const RETRY_MS = 60_000;
 const BROKEN_OFF_MS = 10 * 60_000;
 /** How often it is looked whether the day has its anchor yet. */
 const ANCHOR_MS = 10 * 60_000;
+/** How often it is looked whether somebody has not been told yet today what is due. */
+const DUE_MS = 15 * 60_000;
+/** How often it is looked whether a correction waits to be measured. */
+const CORRECTION_MS = 3_000;
 
-/** What the server process does beside answering: finishes what a crash left, fits waiting frames, sends mails, anchors the log. */
+/**
+ * What the server process does beside answering: finishes what a crash left, fits waiting frames, sends mails, says what
+ * is due, anchors the log.
+ */
 export async function startWork(): Promise<void> {
   env();
   try {
@@ -31,6 +40,9 @@ export async function startWork(): Promise<void> {
   setInterval(() => void retryCopies(), RETRY_MS).unref();
   void anchorToday();
   setInterval(() => void anchorToday(), ANCHOR_MS).unref();
+  void tellDue();
+  setTimeout(() => void workCorrections(), CORRECTION_MS).unref();
+  setInterval(() => void tellDue(), DUE_MS).unref();
 }
 
 async function anchorToday(): Promise<void> {
@@ -39,6 +51,23 @@ async function anchorToday(): Promise<void> {
   } catch (problem) {
     log().warn({ problem: describe(problem) }, 'the log could not be anchored yet; it is tried again');
   }
+}
+
+async function tellDue(): Promise<void> {
+  try {
+    await mailDue({ actor: PRODUCT, at: new Date() });
+  } catch (problem) {
+    log().warn({ problem: describe(problem) }, 'the mail about what is due waits for the database');
+  }
+}
+
+async function workCorrections(): Promise<void> {
+  try {
+    while (await measureCorrection({ actor: PRODUCT, at: new Date() }));
+  } catch (problem) {
+    log().warn({ problem: describe(problem) }, 'a correction waits for the store or the database');
+  }
+  setTimeout(() => void workCorrections(), CORRECTION_MS).unref();
 }
 
 async function retryCopies(): Promise<void> {

@@ -66,7 +66,7 @@ describe('the main job', () => {
     await outsider.close();
   });
 
-  test('the admin enters people, a bench with its setup, a specification, a lot with units, a source', async () => {
+  test('the admin enters people, a slit plate with its certificate, and a bench whose setup waits for QA', async () => {
     const { page } = admin;
     await page.goto('/people');
     const people: [string, string, string[]][] = [
@@ -92,20 +92,41 @@ describe('the main job', () => {
     await page.getByLabel('Name').fill('Bench 7');
     await page.getByRole('button', { name: 'Add it, then enter its first setup' }).click();
     await page.waitForURL('**/new-setup');
-    await page.getByLabel('Slit plate').fill('P-7');
-    const values: [RegExp, string, string][] = [
-      [/^Pixel scale/, '25.4', '0.005'],
-      [/^Slit separation/, '250', '0.2'],
-      [/^Slit width/, '50', '0.8'],
-      [/^Distance/, '500', '0.34'],
-    ];
-    for (const [name, value, stated] of values) {
-      const block = page.getByRole('group', { name });
-      await block.getByLabel(name).fill(value);
+    const newSetup = new URL(page.url()).pathname;
+    const enter = async (name: RegExp, value: string, stated: string) => {
+      const block = page.getByRole('group', { name }).first();
+      await block.getByLabel(name).first().fill(value);
       await block.getByLabel('± as stated').fill(stated);
       await block.getByLabel('at k =').fill('2');
-      await block.getByLabel('Certificate', { exact: true }).fill('Invented certificate');
-    }
+    };
+    // The plate is a thing of its own, with its certificate; the setup picks it.
+    await page.getByRole('link', { name: 'Plates' }).click();
+    await page.waitForURL('**/benches/plates');
+    await page.getByRole('button', { name: 'Add a plate…' }).click();
+    await page.getByLabel('Name', { exact: true }).fill('P-7');
+    await enter(/^Slit separation/, '0.25', '0.0002');
+    await page.getByText(/a wrong unit/).waitFor();
+    await enter(/^Slit separation/, '250', '0.2');
+    await enter(/^Slit width/, '50', '0.8');
+    await page.getByLabel('Certificate', { exact: true }).fill('Invented certificate P-7');
+    await page.getByLabel(/^File of the certificate/).setInputFiles([
+      {
+        name: 'certificate P-7.pdf',
+        mimeType: 'application/pdf',
+        buffer: Buffer.from('%PDF-1.7 invented certificate'),
+      },
+    ]);
+    await page.getByRole('link', { name: 'certificate P-7.pdf' }).waitFor();
+    await admin.expectAccessible();
+    await page.getByRole('button', { name: 'Add it' }).click();
+    await page.getByText('on no bench').waitFor();
+    const file = await page.getByRole('link', { name: 'certificate P-7.pdf' }).getAttribute('href');
+    expect(await (await page.request.get(`${SITE()}${file}`)).text()).toBe('%PDF-1.7 invented certificate');
+    await admin.expectAccessible();
+    await page.goto(newSetup);
+    await page.getByRole('combobox', { name: 'Slit plate' }).selectOption({ label: 'P-7, on no bench' });
+    await enter(/^Pixel scale/, '25.4', '0.005');
+    await enter(/^Distance/, '500', '0.34');
     await page.getByLabel('Why a new setup').fill('First setup.');
     await admin.expectAccessible();
     await page.getByRole('button', { name: /setup 1/i }).click();
@@ -114,7 +135,10 @@ describe('the main job', () => {
     await page.getByRole('heading', { name: 'Setup 1 waits for QA' }).waitFor();
     expect(await page.getByRole('button', { name: /^Approve/ }).count()).toBe(0);
     await admin.expectAccessible();
+  });
 
+  test('the admin enters a specification, a source, a lot with units', async () => {
+    const { page } = admin;
     await page.goto('/specifications');
     await page.getByRole('button', { name: /^Add a specification/ }).click();
     await page.getByLabel('Name', { exact: true }).fill('Red 635 ± 5');

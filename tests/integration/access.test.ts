@@ -21,7 +21,17 @@ import { sendReading } from '@/lib/server/commands/send-reading';
 import { rows } from './support/database';
 import { makeReading } from './support/readings';
 import { actAs, callRoute } from './support/session';
-import { PASSWORD, PEOPLE, SETUP, as, closeWorld, makeWorld, type Who, type World } from './support/world';
+import {
+  PASSWORD,
+  PEOPLE,
+  PLATE,
+  SETUP,
+  as,
+  closeWorld,
+  makeWorld,
+  type Who,
+  type World,
+} from './support/world';
 
 /** Written by hand from the brief, not derived from the table it checks. */
 const MATRIX: Record<string, Who[]> = {
@@ -31,6 +41,10 @@ const MATRIX: Record<string, Who[]> = {
   addSetup: ['admin'],
   decideSetup: ['qa'],
   takeBackSetup: ['admin'],
+  addPlate: ['admin', 'qa'],
+  renewPlate: ['admin', 'qa'],
+  takePlateOff: ['admin', 'qa'],
+  putPlateBack: ['admin', 'qa'],
   'POST certificates': ['admin', 'qa'],
   'GET certificates': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   addSpecification: ['admin', 'qa'],
@@ -117,9 +131,13 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     chooseBench: () => act(room.chooseBench({ benchId: null })),
     emptyIntake: () => act(room.emptyIntake()),
     addBench: () => act(benches.addBench({ name: 'Bench T' })),
-    addSetup: () => act(benches.addSetup({ ...SETUP, benchId: nowhere, afterNumber: 0 })),
+    addSetup: () => act(benches.addSetup({ ...SETUP, ...world.plate, benchId: nowhere, afterNumber: 0 })),
     decideSetup: () => act(benches.decideSetup({ setupId: nowhere, decision: 'approved' })),
     takeBackSetup: () => act(benches.takeBackSetup({ setupId: nowhere })),
+    addPlate: () => act(benches.addPlate({ ...PLATE, name: '' })),
+    renewPlate: () => act(benches.renewPlate({ ...PLATE, plateId: nowhere, afterNumber: 1 })),
+    takePlateOff: () => act(benches.takePlateOff({ plateId: nowhere })),
+    putPlateBack: () => act(benches.putPlateBack({ plateId: nowhere, benchId: nowhere })),
     'POST certificates': () => route(newCertificate, 'POST', '/api/certificates?name=a.pdf', ''),
     'GET certificates': () => route(certificate, 'GET', '/api/certificates/x'),
     addSpecification: () => act(lots.addSpecification(specification)),
@@ -244,7 +262,12 @@ describe('with rows that are there', () => {
     [
       'technician',
       'change a setup',
-      () => benches.addSetup({ ...SETUP, benchId: world.benchId, afterNumber: 1 }),
+      () => benches.addSetup({ ...SETUP, ...world.plate, benchId: world.benchId, afterNumber: 1 }),
+    ],
+    [
+      'technician',
+      'take a plate off its bench',
+      () => benches.takePlateOff({ plateId: world.plate.plateId }),
     ],
     ['admin', 'approve a setup', () => benches.decideSetup({ setupId: world.setupId, decision: 'approved' })],
     [
@@ -267,14 +290,15 @@ test('wrong input is said beside its field and changes nothing', async () => {
   const before = await fingerprint();
   const answer = await benches.addSetup({
     ...SETUP,
+    ...world.plate,
     benchId: world.benchId,
     afterNumber: 1,
-    widthUm: { ...SETUP.widthUm, value: 900 },
+    distanceMm: { ...SETUP.distanceMm, value: -1 },
   });
   expect(answer).toMatchObject({
     ok: false,
     code: 'BAD_INPUT',
-    fields: { 'widthUm.value': expect.any(String) as string },
+    fields: { 'distanceMm.value': expect.any(String) as string },
   });
   expect(await fingerprint()).toEqual(before);
 });

@@ -303,7 +303,13 @@ test('returning for another reason needs words', async () => {
 });
 
 test('two admins entering a setup at once: one is told to look first', async () => {
-  const setup = setupSchema.parse({ benchId: world.benchId, afterNumber: 1, ...SETUP, why: 'New scale.' });
+  const setup = setupSchema.parse({
+    benchId: world.benchId,
+    afterNumber: 1,
+    ...SETUP,
+    ...world.plate,
+    why: 'New scale.',
+  });
   const answers = await Promise.allSettled([
     addSetup(as(world.people.admin), setup),
     addSetup(as(world.people.admin), setup),

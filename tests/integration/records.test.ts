@@ -30,6 +30,17 @@ beforeAll(async () => {
     addedBy: world.people.admin.id,
     addedAt: new Date(),
   });
+  await db().tables.correctionFits.create({
+    setupId: world.setupId,
+    readingId,
+    message: 'invented',
+    valueNm: null,
+    expandedNm: null,
+    verdict: null,
+    optionsJson: null,
+    resultJson: null,
+    madeAt: new Date(),
+  });
   await db().tables.unitOutcomes.create({
     unitId: world.unitIds[0],
     outcome: 'passed-on',
@@ -87,6 +98,9 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['setup_decisions', 'reason'],
   ['certificate_files', 'file_name'],
   ['source_certificates', 'certificate'],
+  ['plate_certificates', 'certificate'],
+  ['setup_plates', 'plate_id'],
+  ['correction_fits', 'message'],
   ['readings', 'value_nm'],
   ['reading_results', 'result_json'],
   ['signatures', 'person_name'],

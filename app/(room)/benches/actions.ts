@@ -1,13 +1,29 @@
 'use server';
 
 import { benchSchema } from '@/lib/domain/schemas';
-import { decideSetupSchema, setupSchema, takeBackSetupSchema } from '@/lib/domain/setup-schemas';
+import {
+  decideSetupSchema,
+  plateSchema,
+  putPlateBackSchema,
+  renewPlateSchema,
+  setupSchema,
+  takeBackSetupSchema,
+  takePlateOffSchema,
+} from '@/lib/domain/setup-schemas';
 import { addBench as addBenchCommand } from '@/lib/server/commands/add-bench';
+import {
+  addPlate as addPlateCommand,
+  renewPlate as renewPlateCommand,
+} from '@/lib/server/commands/add-plate';
 import { addSetup as addSetupCommand } from '@/lib/server/commands/add-setup';
 import {
   decideSetup as decideSetupCommand,
   takeBackSetup as takeBackSetupCommand,
 } from '@/lib/server/commands/decide-setup';
+import {
+  putPlateBack as putPlateBackCommand,
+  takePlateOff as takePlateOffCommand,
+} from '@/lib/server/commands/move-plate';
 import { defineAction } from '@/lib/server/define-action';
 
 export const addBench = defineAction({
@@ -36,4 +52,32 @@ export const takeBackSetup = defineAction({
   permission: 'setups.add',
   schema: takeBackSetupSchema,
   run: ({ input, context }) => takeBackSetupCommand(context, input),
+});
+
+export const addPlate = defineAction({
+  name: 'addPlate',
+  permission: 'plates.change',
+  schema: plateSchema,
+  run: ({ input, context }) => addPlateCommand(context, input),
+});
+
+export const renewPlate = defineAction({
+  name: 'renewPlate',
+  permission: 'plates.change',
+  schema: renewPlateSchema,
+  run: ({ input, context }) => renewPlateCommand(context, input),
+});
+
+export const takePlateOff = defineAction({
+  name: 'takePlateOff',
+  permission: 'plates.change',
+  schema: takePlateOffSchema,
+  run: ({ input, context }) => takePlateOffCommand(context, input),
+});
+
+export const putPlateBack = defineAction({
+  name: 'putPlateBack',
+  permission: 'plates.change',
+  schema: putPlateBackSchema,
+  run: ({ input, context }) => putPlateBackCommand(context, input),
 });

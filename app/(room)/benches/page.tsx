@@ -1,6 +1,7 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
 import { SaidCheck } from '@/components/figures/marks';
+import { buttonClass } from '@/components/ui/button';
 import { Empty } from '@/components/states/empty';
 import { can } from '@/lib/domain/permissions';
 import { listBenchChoices } from '@/lib/server/queries/benches';
@@ -19,6 +20,14 @@ export default async function Benches() {
         <div className="l">
           <h1>Benches</h1>
           <span className="text-ink-2">fit for use today?</span>
+        </div>
+        <div className="acts">
+          <Link className={buttonClass('quiet')} href="/benches/plates">
+            Slit plates
+          </Link>
+          <Link className={buttonClass('quiet')} href="/sources">
+            Sources
+          </Link>
         </div>
       </div>
       {can(me, 'benches.add') ? <AddBench addBench={addBench} /> : null}

@@ -4,6 +4,7 @@ import { AppError } from '@/lib/domain/errors';
 import { READING_STEPS } from '@/lib/domain/life-cycle';
 import type { ReadingResult } from '@/lib/domain/reading-result';
 import type { acceptSchema } from '@/lib/domain/schemas';
+import { whyNotAcceptable } from '../acceptability';
 import type { CommandContext } from '../context';
 import { db } from '../db';
 import {
@@ -16,7 +17,6 @@ import {
 } from '../reading-facts';
 import { requireOwnPassword } from '../password-proofs';
 import { requireMoveReason } from '../move-reasons';
-import { daysUntilDue } from '../setups';
 import { inTransaction } from '../transaction';
 
 type Acceptance = Omit<z.output<typeof acceptSchema>, 'moveReason'> & { moveReason?: string };
@@ -25,8 +25,8 @@ export const SIGNATURE_MEANING = 'I have looked at this fit and accept it.';
 
 /**
  * A reviewer signs a reading. Refused to whoever had a hand in it before review, while a stop stands on the
- * wavelength, while a look has no word, while a moved value has no reason, and under an overdue setup. Of two at once exactly
- * one wins.
+ * wavelength, while a look has no word, while a moved value has no reason, and while the bench's records speak against it.
+ * Of two at once exactly one wins.
  */
 export async function acceptReading(
   context: CommandContext,
@@ -92,14 +92,8 @@ async function requireAcceptable(
   answers: Acceptance['answers'],
 ): Promise<void> {
   const { tables } = db();
-  const setup = await tables.setups.findByPk(facts.setupId, { rejectOnEmpty: true });
-  const left = daysUntilDue(setup, context.at);
-  if (left !== null && left < 0) {
-    throw new AppError(
-      'WRONG_STATE',
-      `A calibration of setup ${setup.number} is overdue by ${-left} days, so its readings cannot be accepted. An admin enters the new certificate.`,
-    );
-  }
+  const because = await whyNotAcceptable(facts, context.at);
+  if (because) throw new AppError('WRONG_STATE', because);
   if (facts.valueNm === null)
     throw new AppError('WRONG_STATE', 'This reading has no wavelength, so there is nothing to accept.');
   const row = await tables.readingResults.findByPk(facts.readingId, { rejectOnEmpty: true });

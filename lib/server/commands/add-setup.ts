@@ -2,22 +2,27 @@ import 'server-only';
 import { UniqueConstraintError } from 'sequelize';
 import type { z } from 'zod';
 import { AppError } from '@/lib/domain/errors';
-import { SETUP_VALUES, type ConfirmedValue } from '@/lib/domain/setup';
-import { oddness } from '@/lib/domain/setup-plausibility';
+import type { ConfirmedValue } from '@/lib/domain/setup';
 import type { setupSchema } from '@/lib/domain/setup-schemas';
+import type { Plate } from '@/models/plate';
+import type { PlateCertificate } from '@/models/plate-certificate';
 import type { CommandContext } from '../context';
 import { db } from '../db';
 import { mailText, peopleWith } from '../people-mail';
+import { requireConfirmed } from '../plausible';
 import { requireCertificate } from '../queries/certificates';
-import { changeBetween, type SetupConstants, type StatedColumns } from '../setups';
+import { changeBetween, type StatedColumns } from '../setups';
 import { setupAt, waitingNumber } from '../setup-timeline';
 import { inTransaction, type Work } from '../transaction';
 
 type NewSetup = z.output<typeof setupSchema>;
 
+/** What is entered with a setup; separation and width come from the plate's certificate. */
+const OF_THE_BENCH = ['distanceMm', 'scaleUmPerPx'] as const;
+
 /**
  * Proposes a setup. It comes into force when somebody else approves it; earlier ones, and the readings made with them,
- * stay as they are. One proposal of a bench waits at a time, so that what it changes stays what it said.
+ * stay as they are. One in force from a moment that has passed corrects the readings since. One proposal of a bench waits at a time, so that what it changes stays what it said.
  */
 export async function addSetup(
   context: CommandContext,
@@ -44,13 +49,30 @@ export async function addSetup(
         `Setup ${waiting} of ${bench.name} waits for QA already. It is decided on, or taken back, before another is entered.`,
       );
     }
-    requireFuture(context, setup.inForceFrom);
-    const inForce = await setupAt(bench.id, context.at, transaction);
+    const wanted = setup.inForceFrom === null ? context.at : new Date(setup.inForceFrom);
+    const corrects = wanted < context.at;
+    const inForce = await setupAt(bench.id, corrects ? wanted : context.at, transaction);
+    if (corrects && !inForce) throw nothingThen();
     const before = inForce ? await tables.setups.findByPk(inForce.id, { transaction }) : null;
-    const confirmed = requireConfirmed(setup, before);
-    for (const { key } of SETUP_VALUES) await requireCertificate(setup[key].file, `${key}.file`, transaction);
+    const confirmed = requireConfirmed(
+      OF_THE_BENCH.map((key) => ({
+        key,
+        value: setup[key].value,
+        before: before?.[key] ?? null,
+        reason: setup.confirmed[key],
+      })),
+    );
+    for (const key of OF_THE_BENCH) await requireCertificate(setup[key].file, `${key}.file`, transaction);
+    const { plate, certificate } = await plateOf(setup, work);
     try {
-      const row = await tables.setups.create(rowOf(context, setup, confirmed), { transaction });
+      const row = await tables.setups.create(
+        { ...rowOf(context, setup, confirmed), ...plateColumns(plate, certificate), corrects },
+        { transaction },
+      );
+      await tables.setupPlates.create(
+        { setupId: row.id, plateId: plate.id, certificateId: certificate.id },
+        { transaction },
+      );
       work.audit({
         action: 'setup.add',
         subject: { kind: 'setup', id: row.id, text: `${bench.name}, setup ${row.number}` },
@@ -73,29 +95,35 @@ function someoneWasFaster(newest: number): AppError {
   );
 }
 
-function requireFuture(context: CommandContext, wanted: string | null): void {
-  if (wanted === null || new Date(wanted) > context.at) return;
+function nothingThen(): AppError {
   const message =
-    'This moment has passed: frames taken since have been measured with the setup that was in force. Choose a later one, or “as soon as it is approved”.';
-  throw new AppError('BAD_INPUT', message, { inForceFrom: message });
+    'No setup of this bench was in force at that moment, so there is nothing to correct. Choose a later one.';
+  return new AppError('BAD_INPUT', message, { inForceFrom: message });
 }
 
-/** What looks odd needs a reason; what does not, keeps none. */
-function requireConfirmed(setup: NewSetup, before: SetupConstants | null): ConfirmedValue[] {
-  const open: Record<string, string> = {};
-  const confirmed = SETUP_VALUES.flatMap(({ key }): ConfirmedValue[] => {
-    // Another plate has another separation and width by right.
-    const isOfPlate = key === 'separationUm' || key === 'widthUm';
-    const comparable = before && !(isOfPlate && before.plate !== setup.plate) ? before[key] : null;
-    const seen = oddness(key, setup[key].value, comparable);
-    if (!seen) return [];
-    const reason = setup.confirmed[key];
-    if (!reason) open[`confirmed.${key}`] = `${seen} If it is right, say why.`;
-    return [{ key, seen, reason }];
+/** The plate with the newest of its certificates, which has to be the one the person saw. */
+async function plateOf(
+  setup: NewSetup,
+  work: Work,
+): Promise<{ plate: Plate; certificate: PlateCertificate }> {
+  const { tables } = db();
+  const { transaction } = work;
+  const plate = await tables.plates.findByPk(setup.plateId, { transaction });
+  const certificate = await tables.plateCertificates.findOne({
+    where: { plateId: setup.plateId },
+    order: [['number', 'DESC']],
+    transaction,
   });
-  const [first] = Object.values(open);
-  if (first) throw new AppError('BAD_INPUT', first, open);
-  return confirmed;
+  if (!plate || !certificate) {
+    throw new AppError('BAD_INPUT', 'Choose the slit plate.', { plateId: 'There is no such plate.' });
+  }
+  if (certificate.id !== setup.plateCertificateId) {
+    throw new AppError(
+      'CHANGED_MEANWHILE',
+      `Somebody entered a new certificate of plate ${plate.name} meanwhile. Load the page to see its values.`,
+    );
+  }
+  return { plate, certificate };
 }
 
 async function tellQa(
@@ -139,17 +167,28 @@ function columnsOf<Name extends string>(name: Name, stated: Omit<StatedColumns, 
   };
 }
 
+/** The copy of a plate's values that a setup keeps. */
+function plateColumns(plate: Plate, row: PlateCertificate) {
+  const { certificate, file, due } = row;
+  const { separationStated, separationShape, separationK, separationDof } = row;
+  const { widthStated, widthShape, widthK, widthDof } = row;
+  return {
+    plate: plate.name,
+    separationUm: row.separationUm,
+    ...{ separationStated, separationShape, separationK, separationDof },
+    ...{ separationCertificate: certificate, separationFile: file, separationDue: due },
+    widthUm: row.widthUm,
+    ...{ widthStated, widthShape, widthK, widthDof },
+    ...{ widthCertificate: certificate, widthFile: file, widthDue: due },
+  };
+}
+
 function rowOf(context: CommandContext, setup: NewSetup, confirmed: ConfirmedValue[]) {
   return {
     benchId: setup.benchId,
     number: setup.afterNumber + 1,
-    plate: setup.plate,
     scaleUmPerPx: setup.scaleUmPerPx.value,
     ...columnsOf('scale', setup.scaleUmPerPx),
-    separationUm: setup.separationUm.value,
-    ...columnsOf('separation', setup.separationUm),
-    widthUm: setup.widthUm.value,
-    ...columnsOf('width', setup.widthUm),
     distanceMm: setup.distanceMm.value,
     ...columnsOf('distance', setup.distanceMm),
     remountUNm: setup.remountNm?.u ?? null,

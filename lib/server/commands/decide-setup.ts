@@ -7,6 +7,8 @@ import type { Setup } from '@/models/setup';
 import type { CommandContext } from '../context';
 import { db, select } from '../db';
 import { mailText } from '../people-mail';
+import { mountPlate } from '../plate-mounts';
+import { applyCorrection } from './apply-correction';
 import { inTransaction, type Work } from '../transaction';
 
 const DID: Record<SetupDecision, string> = {
@@ -27,7 +29,8 @@ interface Decided {
 
 /**
  * QA approves or declines a proposed setup, never whoever entered it. An approved one comes into force at the moment it
- * was entered for, or now where that has passed: frames taken before the approval keep what they were measured with.
+ * was entered for, or now where that has passed: frames taken before the approval keep what they were measured with. One
+ * that corrects the past is in force from its own moment, and the readings since get successors.
  */
 export async function decideSetup(
   context: CommandContext,
@@ -38,12 +41,23 @@ export async function decideSetup(
     if (setup.enteredBy === context.actor.id) {
       throw new AppError('NOT_ALLOWED', 'You entered this setup, so somebody else of QA must decide on it.');
     }
-    const passed = setup.wantedFrom === null || setup.wantedFrom < context.at;
+    const passed = setup.wantedFrom === null || (setup.wantedFrom < context.at && !setup.corrects);
     const inForceFrom = decision === 'approved' ? (passed ? context.at : setup.wantedFrom) : null;
     await keep(work, context, bench, setup, { decision, inForceFrom, reason });
+    if (inForceFrom && setup.corrects) await applyCorrection(work, context, bench, setup);
+    if (inForceFrom) await mountIts(work, context, setup, inForceFrom);
     await tellAdmin(work, context, bench, setup, { decision, inForceFrom, reason });
     return { number: setup.number, inForceFrom };
   });
+}
+
+/** The plate a setup picks is on its bench from the moment the setup is in force. */
+async function mountIts(work: Work, context: CommandContext, setup: Setup, from: Date): Promise<void> {
+  const { plateId } = await db().tables.setupPlates.findByPk(setup.id, {
+    transaction: work.transaction,
+    rejectOnEmpty: true,
+  });
+  await mountPlate(work, context, { plateId, benchId: setup.benchId, from });
 }
 
 /** Whoever entered a setup takes it back while nobody has decided on it. */

@@ -1,9 +1,12 @@
 import 'server-only';
 import { READING_STEPS } from '@/lib/domain/life-cycle';
-import type { BenchChoice, BenchView } from '@/lib/domain/views';
+import type { BenchChoice, BenchView, SetupView } from '@/lib/domain/views';
+import type { PlateCertificate } from '@/models/plate-certificate';
 import { db, select } from '../db';
+import { isMounted } from '../plate-mounts';
 import { fitnessOf } from '../setups';
 import { setupAt, waitingNumber } from '../setup-timeline';
+import { correctionView } from './corrections';
 import { setupHistory } from './setup-views';
 
 /** The wavelength a bench without accepted readings is drawn with, nm. */
@@ -16,7 +19,7 @@ async function choiceOf(bench: { id: number; name: string }, now: Date): Promise
     id: bench.id,
     name: bench.name,
     setupNumber: setup?.number ?? null,
-    fitness: fitnessOf(setup, now),
+    fitness: fitnessOf(setup, now, setup ? await isMounted(bench.id, setup.id, now) : true),
     waitingNumber: waiting,
   };
 }
@@ -35,12 +38,22 @@ export async function findBench(id: number, now = new Date()): Promise<BenchView
      WHERE st.bench_id = :id AND st.status = :accepted ORDER BY st.accepted_at DESC LIMIT 1`,
     { id, accepted: READING_STEPS.accept.to },
   );
+  const inForce = history.setups.find(({ from }) => new Date(from) <= now) ?? null;
   return {
     ...choice,
     ...history,
     note: bench.note,
-    inForce: history.setups.find(({ from }) => new Date(from) <= now) ?? null,
+    inForce,
+    correction: history.waiting ? await correctionView(history.waiting.id) : null,
+    newerCertificate: inForce ? await hasNewerCertificate(inForce) : false,
     drawNm: last?.nm ?? EXAMPLE_NM,
     drawnFrom: last ? 'reading' : 'example',
   };
+}
+
+async function hasNewerCertificate({ plateId, plateRevision }: SetupView): Promise<boolean> {
+  const newest = await db().tables.plateCertificates.max<number, PlateCertificate>('number', {
+    where: { plateId },
+  });
+  return newest > plateRevision;
 }

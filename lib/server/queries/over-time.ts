@@ -11,6 +11,7 @@ import type {
 } from '@/lib/domain/views';
 import { STANDARD_BENCH_AIR, airFromVacuum } from '@/lib/quantity/air-index';
 import { individualsChart, type IndividualsChart } from '@/lib/statistics/individuals';
+import { NOT_CORRECTED } from '../corrections';
 import { select } from '../db';
 import { setupViews } from './setup-views';
 
@@ -99,7 +100,7 @@ async function benchOf(benchId: number | null): Promise<PersonRef | null> {
 async function choicesOf(benchId: number): Promise<Choice[]> {
   const sources = await select<{ id: number; name: string; vacuum_nm: number; points: number }>(
     `SELECT so.id, so.name, so.vacuum_nm, SUM(st.status = :accepted) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
-     JOIN sources so ON so.id = r.source_id WHERE st.bench_id = :benchId AND st.status IN (:shown) GROUP BY so.id ORDER BY points DESC`,
+     JOIN sources so ON so.id = r.source_id WHERE st.bench_id = :benchId AND st.status IN (:shown) AND ${NOT_CORRECTED} GROUP BY so.id ORDER BY points DESC`,
     { benchId, accepted: ACCEPTED, shown: SHOWN },
   );
   const lots = await select<{
@@ -111,7 +112,7 @@ async function choicesOf(benchId: number): Promise<Choice[]> {
   }>(
     `SELECT l.id, l.number, sp.medium, sp.nominal_nm, SUM(st.status = :accepted) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
      JOIN lots l ON l.id = r.lot_id JOIN specifications sp ON sp.id = l.specification_id
-     WHERE st.bench_id = :benchId AND st.status IN (:shown) GROUP BY l.id ORDER BY l.opened_at DESC`,
+     WHERE st.bench_id = :benchId AND st.status IN (:shown) AND ${NOT_CORRECTED} GROUP BY l.id ORDER BY l.opened_at DESC`,
     { benchId, accepted: ACCEPTED, shown: SHOWN },
   );
   return [
@@ -156,7 +157,7 @@ async function pointsOf(benchId: number, { kind, id }: Choice, last: number): Pr
        r.value_nm, r.u_nm, r.setup_id, s.number AS setup_number
      FROM readings r JOIN reading_states st ON st.reading_id = r.id AND st.status = :accepted
      JOIN frames f ON f.id = r.frame_id JOIN setups s ON s.id = r.setup_id LEFT JOIN units u ON u.id = r.unit_id
-     WHERE r.bench_id = :benchId AND r.${kind}_id = :id AND r.value_nm IS NOT NULL
+     WHERE r.bench_id = :benchId AND r.${kind}_id = :id AND r.value_nm IS NOT NULL AND ${NOT_CORRECTED}
      ORDER BY f.received_at DESC, r.id DESC ${last > 0 ? 'LIMIT :last' : ''}`,
     { accepted: ACCEPTED, benchId, id, last },
   );
@@ -261,7 +262,7 @@ async function benchesOf({ kind, id, referenceNm }: Choice): Promise<OverTimeVie
   }>(
     `SELECT b.id, b.name, COUNT(*) AS runs, AVG(r.value_nm) AS mean_nm, AVG(r.expanded_nm) AS expanded_nm
      FROM readings r JOIN reading_states st ON st.reading_id = r.id AND st.status = :accepted JOIN benches b ON b.id = r.bench_id
-     WHERE r.${kind}_id = :id AND r.value_nm IS NOT NULL GROUP BY b.id ORDER BY b.name`,
+     WHERE r.${kind}_id = :id AND r.value_nm IS NOT NULL AND ${NOT_CORRECTED} GROUP BY b.id ORDER BY b.name`,
     { accepted: ACCEPTED, id },
   );
   return rows.map((row) => ({

@@ -1,5 +1,5 @@
 import 'server-only';
-import type { ReadingState } from '@/lib/domain/life-cycle';
+import { READING_STEPS, type ReadingState } from '@/lib/domain/life-cycle';
 import { placeStrip } from '@/lib/domain/placed-strip';
 import type { FindingWord, Strip } from '@/lib/domain/reading-result';
 import type { ScanStrip } from '@/lib/domain/scan-result';
@@ -13,7 +13,8 @@ export const BRIEF_COLUMNS = `
   r.judgement_json AS r_judgement, r.word AS r_word, r.word_text AS r_word_text, r.order_centres AS r_order_centres,
   r.spacing_px AS r_spacing_px, r.u_spacing_px AS r_u_spacing_px, r.scale_um_per_px AS r_scale,
   r.zero_along_px AS r_zero, r.spacing_mm AS r_spacing_mm,
-  r.u_spacing_mm AS r_u_spacing_mm, r.zero_mm AS r_zero_mm, rr.strip_json AS r_strip, r.made_at AS r_made_at, mb.id AS r_made_by, mb.name AS r_made_by_name`;
+  r.u_spacing_mm AS r_u_spacing_mm, r.zero_mm AS r_zero_mm, rr.strip_json AS r_strip, r.made_at AS r_made_at, mb.id AS r_made_by, mb.name AS r_made_by_name,
+  (SELECT MAX(n.number) FROM readings n WHERE n.replaces_id = r.id) AS r_followed_by`;
 
 /** Joins for a query that has `r`; LEFT so that frames without a reading stay. */
 export const BRIEF_JOINS = `
@@ -46,6 +47,7 @@ export interface BriefColumns {
   r_made_at: Date;
   r_made_by: number | null;
   r_made_by_name: string | null;
+  r_followed_by: number | null;
 }
 
 export function briefOf(row: BriefColumns): ReadingBrief | null {
@@ -75,6 +77,8 @@ export function briefOf(row: BriefColumns): ReadingBrief | null {
         ? { id: row.r_made_by, name: row.r_made_by_name }
         : null,
     madeAt: row.r_made_at.toISOString(),
+    // A signed reading keeps its state when a correction follows it.
+    correctedBy: row.r_status === READING_STEPS.accept.to ? row.r_followed_by : null,
   };
 }
 

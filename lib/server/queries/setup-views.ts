@@ -61,13 +61,16 @@ export async function setupHistory(benchId: number, now = new Date()): Promise<S
       readings: facts.countOf.get(row.id) ?? 0,
     };
   });
-  const inForce = inLine.filter((row) => fromOf(row) <= now).at(-1) ?? null;
+  const inForceAt = (at: Date) => inLine.filter((row) => fromOf(row) <= at).at(-1) ?? null;
+  const inForce = inForceAt(now);
   const proposals = rows
     .filter((row) => !inLine.includes(row))
     .map((row): SetupProposal => {
       const decision = decisionOf.get(row.id);
+      const beside = row.corrects ? inForceAt(row.wantedFrom ?? now) : inForce;
       return {
-        ...statementOf(row, inForce, facts),
+        ...statementOf(row, beside, facts),
+        besideNumber: beside?.number ?? null,
         wantedFrom: row.wantedFrom?.toISOString() ?? null,
         ended:
           decision && decision.decision !== 'approved'
@@ -93,10 +96,17 @@ interface Facts {
   nameOf: Map<number, string>;
   countOf: Map<number, number>;
   files: Map<string, CertificateLink>;
+  plateOf: Map<number, SetupPlateRow>;
+}
+
+interface SetupPlateRow {
+  setup_id: number;
+  plate_id: number;
+  number: number;
 }
 
 async function factsOf(benchId: number, rows: readonly Setup[]): Promise<Facts> {
-  const [people, counts, decisions, files] = await Promise.all([
+  const [people, counts, decisions, files, plates] = await Promise.all([
     select<{ id: number; name: string }>(
       'SELECT DISTINCT p.id, p.name FROM people p JOIN setups s ON s.entered_by = p.id WHERE s.bench_id = :benchId',
       { benchId },
@@ -114,8 +124,14 @@ async function factsOf(benchId: number, rows: readonly Setup[]): Promise<Facts> 
     certificateLinks(
       rows.flatMap((row) => Object.values(fourValues(row)).map(({ file }: KnownValue) => file)),
     ),
+    select<SetupPlateRow>(
+      `SELECT x.setup_id, x.plate_id, c.number FROM setup_plates x JOIN setups s ON s.id = x.setup_id
+       JOIN plate_certificates c ON c.id = x.certificate_id WHERE s.bench_id = :benchId`,
+      { benchId },
+    ),
   ]);
   return {
+    plateOf: new Map(plates.map((row) => [row.setup_id, row])),
     decisions,
     nameOf: new Map(people.map(({ id, name }) => [id, name])),
     countOf: new Map(counts.map(({ setup_id, many }) => [setup_id, many])),
@@ -123,7 +139,7 @@ async function factsOf(benchId: number, rows: readonly Setup[]): Promise<Facts> 
   };
 }
 
-function statementOf(row: Setup, before: Setup | null, { nameOf, files }: Facts): SetupStatement {
+function statementOf(row: Setup, before: Setup | null, { nameOf, files, plateOf }: Facts): SetupStatement {
   const four = fourValues(row);
   const stated = ({ file, ...value }: KnownValue): StatedValue => ({
     ...value,
@@ -134,6 +150,8 @@ function statementOf(row: Setup, before: Setup | null, { nameOf, files }: Facts)
     benchId: row.benchId,
     number: row.number,
     plate: row.plate,
+    plateId: plateOf.get(row.id)?.plate_id ?? 0,
+    plateRevision: plateOf.get(row.id)?.number ?? 0,
     scaleUmPerPx: stated(four.scaleUmPerPx),
     separationUm: stated(four.separationUm),
     widthUm: stated(four.widthUm),
@@ -146,5 +164,6 @@ function statementOf(row: Setup, before: Setup | null, { nameOf, files }: Facts)
     enteredBy: { id: row.enteredBy, name: nameOf.get(row.enteredBy) ?? '' },
     enteredAt: row.enteredAt.toISOString(),
     ...changeBetween(before, row),
+    corrects: row.corrects,
   };
 }

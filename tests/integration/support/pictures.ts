@@ -1,14 +1,14 @@
 import { PLAIN_CAMERA, photograph } from '@/scripts/simulator/camera';
 import { encodeFile, type FileKind } from '@/scripts/simulator/encode';
 import { PLAIN_SCENE, type Scene } from '@/scripts/simulator/scene';
-import { SETUP } from './world';
+import { PLATE, SETUP } from './world';
 
 /** What the invented bench of these tests sees of an invented 635 nm module. */
 export const BENCH_SCENE: Scene = {
   ...PLAIN_SCENE,
   distanceMm: SETUP.distanceMm.value,
-  separationUm: SETUP.separationUm.value,
-  widthUm: SETUP.widthUm.value,
+  separationUm: PLATE.separationUm.value,
+  widthUm: PLATE.widthUm.value,
   scaleUmPerPx: SETUP.scaleUmPerPx.value,
 };
 

@@ -1,9 +1,10 @@
 import type { z } from 'zod';
 import type { Role } from '@/lib/domain/roles';
-import { setupSchema } from '@/lib/domain/setup-schemas';
+import { plateSchema, setupSchema } from '@/lib/domain/setup-schemas';
 import { closeDatabase } from '@/lib/server/db';
 import { addBench } from '@/lib/server/commands/add-bench';
 import { addPerson } from '@/lib/server/commands/add-person';
+import { addPlate } from '@/lib/server/commands/add-plate';
 import { addSetup } from '@/lib/server/commands/add-setup';
 import { decideSetup } from '@/lib/server/commands/decide-setup';
 import { addSource } from '@/lib/server/commands/add-source';
@@ -18,6 +19,8 @@ export interface World {
   people: Record<Who, Person>;
   benchId: number;
   setupId: number;
+  /** The plate its setup picks, as a setup names it. */
+  plate: { plateId: number; plateCertificateId: number };
   lotId: number;
   specificationId: number;
   unitIds: number[];
@@ -50,11 +53,18 @@ export function as(person: Person, at = NOW): CommandContext {
   return { actor: person, at };
 }
 
+export const PLATE = {
+  name: 'P-1',
+  note: '',
+  separationUm: { value: 250, stated: 0.4 },
+  widthUm: { value: 50, stated: 0.6 },
+  certificate: 'Invented C-2',
+  due: '2027-06-01',
+};
+
+/** What a setup of the bench states beside its plate. */
 export const SETUP = {
-  plate: 'P-1',
   scaleUmPerPx: { value: 6.9, stated: 0.002, k: 2, certificate: 'Invented C-1', due: '2027-06-01' },
-  separationUm: { value: 250, stated: 0.4, k: 2, certificate: 'Invented C-2', due: '2027-06-01' },
-  widthUm: { value: 50, stated: 0.6, k: 2, certificate: 'Invented C-2', due: null },
   distanceMm: { value: 300, stated: 0.4, k: 2, certificate: 'Invented C-3', due: null },
   remountNm: null,
   tone: 'auto' as const,
@@ -89,7 +99,9 @@ export async function makeWorld(): Promise<World> {
   }
   const admin = as(people.admin);
   const { benchId } = await addBench(admin, { name: 'Bench T', note: 'Invented.' });
-  const setupId = await putInForce(people, { ...SETUP, benchId, afterNumber: 0 }, LONG_AGO);
+  const { plateId, certificateId } = await addPlate(as(people.admin, LONG_AGO), plateSchema.parse(PLATE));
+  const plate = { plateId, plateCertificateId: certificateId };
+  const setupId = await putInForce(people, { ...SETUP, ...plate, benchId, afterNumber: 0 }, LONG_AGO);
   const { specificationId } = await addSpecification(admin, {
     name: 'Invented 635 nm',
     nominalNm: 635,
@@ -118,7 +130,16 @@ export async function makeWorld(): Promise<World> {
   // The mails about the setup are not what the tests look for.
   await db().tables.outbox.destroy({ where: {} });
   const units = await db().tables.units.findAll({ where: { lotId }, order: [['id', 'ASC']] });
-  return { people, benchId, setupId, lotId, specificationId, unitIds: units.map(({ id }) => id), sourceId };
+  return {
+    people,
+    benchId,
+    setupId,
+    plate,
+    lotId,
+    specificationId,
+    unitIds: units.map(({ id }) => id),
+    sourceId,
+  };
 }
 
 /** For afterAll: nothing of the product may keep the test's process open. */

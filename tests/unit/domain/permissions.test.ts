@@ -21,6 +21,8 @@ const MATRIX: Record<Action, string> = {
   'benches.add': 'a',
   'setups.add': 'a',
   'setups.decide': 'q',
+  'plates.see': 'trqa',
+  'plates.change': 'qa',
   'certificates.see': 'trqa',
   'certificates.add': 'qa',
   'sources.add': 'qa',

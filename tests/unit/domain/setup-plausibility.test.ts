@@ -1,6 +1,6 @@
 import { oddness } from '@/lib/domain/setup-plausibility';
 import { divisorOf, type ValueKey } from '@/lib/domain/setup';
-import { setupSchema } from '@/lib/domain/setup-schemas';
+import { plateSchema, setupSchema } from '@/lib/domain/setup-schemas';
 
 /** Values of an invented bench. */
 const BEFORE: Record<ValueKey, number> = {
@@ -61,10 +61,9 @@ describe('what comes in', () => {
   const setup = {
     benchId: 1,
     afterNumber: 0,
-    plate: 'P-1',
+    plateId: 1,
+    plateCertificateId: 1,
     scaleUmPerPx: value,
-    separationUm: value,
-    widthUm: { value: 50, stated: 0.3 },
     distanceMm: value,
     why: 'Invented.',
   };
@@ -81,16 +80,23 @@ describe('what comes in', () => {
     });
     expect(parsed.distanceMm.k).toBe(Math.sqrt(3));
     expect(parsed.scaleUmPerPx.k).toBe(1);
-    expect(parsed.separationUm.k).toBe(2);
+    expect(setupSchema.parse(setup).distanceMm.k).toBe(2);
   });
 
   test.each([
     ['a ± as large as the value', { distanceMm: { value: 250, stated: 250 } }, 'distanceMm.stated'],
     ['a scatter without degrees of freedom', { distanceMm: { ...value, shape: 'type-a' } }, 'distanceMm.dof'],
-    ['slits wider than they are apart', { widthUm: { value: 260, stated: 1 } }, 'widthUm.value'],
+    ['no plate', { plateId: 0 }, 'plateId'],
     ['a camera of 24 bits', { camera: { bits: 24 } }, 'camera.bits'],
     ['half a bit', { camera: { bits: 8.5 } }, 'camera.bits'],
   ])('%s is said beside its field', (_what, change, field) => {
     expect(complaint(change)).toEqual([field]);
+  });
+
+  test('slits wider than they are apart are no plate', () => {
+    const plate = { name: 'P', separationUm: value, widthUm: { value: 260, stated: 1 } };
+    expect(plateSchema.safeParse(plate).error?.issues.map(({ path }) => path.join('.'))).toEqual([
+      'widthUm.value',
+    ]);
   });
 });

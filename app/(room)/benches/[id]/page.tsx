@@ -2,10 +2,11 @@ import type { Metadata } from 'next';
 import Link from 'next/link';
 import { notFound } from 'next/navigation';
 import { GeometryDrawing } from '@/components/figures/geometry-drawing';
-import { SaidCheck } from '@/components/figures/marks';
+import { Mark, SaidCheck } from '@/components/figures/marks';
 import { When } from '@/components/figures/when';
 import { Empty } from '@/components/states/empty';
 import { buttonClass } from '@/components/ui/button';
+import { Notice } from '@/components/ui/notice';
 import { can } from '@/lib/domain/permissions';
 import { findBench } from '@/lib/server/queries/benches';
 import { requireMe } from '@/lib/server/session';
@@ -64,11 +65,19 @@ export default async function Bench({ params }: Props) {
       {waiting ? (
         <WaitingSetup
           setup={waiting}
-          inForce={setup}
+          inForce={bench.setups.find(({ number }) => number === waiting.besideNumber) ?? null}
+          correction={bench.correction}
           may={{ decide: can(me, 'setups.decide') && !isMine, takeBack: can(me, 'setups.add') && isMine }}
           decideSetup={decideSetup}
           takeBackSetup={takeBackSetup}
         />
+      ) : null}
+      {setup && bench.newerCertificate && !waiting ? (
+        <div className="my-3">
+          <Notice mark={<Mark kind="check-look" />} title={`Plate ${setup.plate} has a newer certificate`}>
+            Setup {setup.number} keeps the values it took. A new setup takes the new ones.
+          </Notice>
+        </div>
       ) : null}
       {setup ? (
         <>

@@ -69,6 +69,7 @@ function InLine({ setup, inForceId }: { setup: SetupView; inForceId: number | nu
           </>
         ) : null}
         <p>
+          {setup.corrects ? 'A correction of the time before it was entered. ' : ''}
           {changeText(setup)} {setup.why} {count(setup.readings, 'reading')}.
         </p>
         <p>

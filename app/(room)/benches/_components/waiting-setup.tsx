@@ -4,13 +4,16 @@ import { When } from '@/components/figures/when';
 import { CertificateName } from '@/components/setups/certificate-file';
 import { cameraText, statedText } from '@/components/setups/stated-words';
 import { SETUP_VALUES } from '@/lib/domain/setup';
-import type { SetupProposal, SetupView } from '@/lib/domain/views';
+import type { CorrectionView, SetupProposal, SetupView } from '@/lib/domain/views';
 import { formatCalendarDate } from '@/lib/quantity/format';
+import { CorrectionTable } from './correction-table';
 import { DecideSetup, TakeBackSetup, type Decide, type TakeBack } from './decide-setup';
 
 interface Props {
   setup: SetupProposal;
+  /** The setup it is compared with: the one in force, or the one that was at the moment of a correction. */
   inForce: SetupView | null;
+  correction: CorrectionView | null;
   /** What this person may do about it, settled on the server. */
   may: { decide: boolean; takeBack: boolean };
   decideSetup: Decide;
@@ -20,7 +23,7 @@ interface Props {
 const MUCH_SAME = 1e-12;
 
 /** A setup that waits for QA: who asks for what, why, value beside value, and the decision. */
-export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }: Props) {
+export function WaitingSetup({ setup, inForce, correction, may, decideSetup, takeBackSetup }: Props) {
   const camera = cameraText(setup.camera);
   const heads = { was: inForce ? `setup ${inForce.number}` : 'in force', now: `setup ${setup.number}` };
   return (
@@ -28,21 +31,14 @@ export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }
       <div className="cap">
         <h2 id="waiting" className="flex items-center gap-2.5">
           <Mark kind="check-look" />
-          Setup {setup.number} waits for QA
+          Setup {setup.number} waits for QA{setup.corrects ? ': a correction' : ''}
         </h2>
         <span>
           entered by {setup.enteredBy.name}, <When at={setup.enteredAt} />
         </span>
       </div>
       <p className="max-w-[80ch]">
-        {setup.why} It comes into force{' '}
-        {setup.wantedFrom ? (
-          <>
-            <When at={setup.wantedFrom} />, or with the approval where that is later.
-          </>
-        ) : (
-          'as soon as it is approved.'
-        )}{' '}
+        {setup.why} <WhenItHolds setup={setup} />{' '}
         {setup.changeIsLook ? 'A value moves by more than both ± together.' : ''}
       </p>
       <table className="figures vals mt-3">
@@ -50,7 +46,7 @@ export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }
           <tr>
             <th scope="col">k = 2</th>
             <th scope="col" className="num">
-              {inForce ? `setup ${inForce.number}, in force` : 'in force'}
+              {heads.was}
             </th>
             <th scope="col" className="num">
               setup {setup.number}
@@ -112,6 +108,7 @@ export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }
           ) : null}
         </tbody>
       </table>
+      {correction ? <CorrectionTable correction={correction} /> : null}
       {may.decide ? <DecideSetup setupId={setup.id} number={setup.number} decideSetup={decideSetup} /> : null}
       {may.takeBack ? (
         <TakeBackSetup setupId={setup.id} number={setup.number} takeBackSetup={takeBackSetup} />
@@ -120,5 +117,20 @@ export function WaitingSetup({ setup, inForce, may, decideSetup, takeBackSetup }
         <p className="help">Somebody with the role QA decides on it, never whoever entered it.</p>
       )}
     </section>
+  );
+}
+
+function WhenItHolds({ setup }: { setup: SetupProposal }) {
+  if (setup.wantedFrom === null) return <>It comes into force as soon as it is approved.</>;
+  if (setup.corrects)
+    return (
+      <>
+        It is meant for the time from <When at={setup.wantedFrom} /> on.
+      </>
+    );
+  return (
+    <>
+      It comes into force <When at={setup.wantedFrom} />, or with the approval where that is later.
+    </>
   );
 }

@@ -5,6 +5,8 @@ import { Choice } from '@/components/ui/choice';
 import { Dialog } from '@/components/ui/dialog';
 import { Field } from '@/components/ui/field';
 import { nominalText } from '@/lib/client/words';
+import { dueOf } from '@/lib/domain/due';
+import { SOURCE_KIND_WORDS } from '@/lib/domain/source';
 import type { LotRow, SourceView } from '@/lib/domain/views';
 import { formatNumber } from '@/lib/quantity/format';
 
@@ -23,7 +25,12 @@ export function lotLines(lot: LotRow): string[] {
 }
 
 export function sourceLines(source: SourceView): string[] {
-  return ['reference source', `${formatNumber(source.vacuumNm, 2)} nm (vac)`];
+  const due = dueOf(source.due, new Date());
+  return [
+    source.isReference ? 'reference source' : SOURCE_KIND_WORDS[source.kind],
+    `${formatNumber(source.vacuumNm, 2)} nm (vac)`,
+    due.word === 'clear' ? '' : due.word === 'stop' ? `${due.text}: take, not accept` : due.text,
+  ].filter(Boolean);
 }
 
 /** Two lots at hand, the rest behind one choice. */

@@ -3,6 +3,7 @@ import Link from 'next/link';
 import { notFound, redirect } from 'next/navigation';
 import { buttonClass } from '@/components/ui/button';
 import { findBench } from '@/lib/server/queries/benches';
+import { listPlates } from '@/lib/server/queries/plates';
 import { requireMe } from '@/lib/server/session';
 import { addSetup } from '../../actions';
 import { SetupForm } from './_components/setup-form';
@@ -20,6 +21,7 @@ export default async function NewSetup({ params }: Props) {
   const bench = (await findBench(id)) ?? notFound();
   if (bench.waiting) redirect(`/benches/${id}`);
   const before = bench.inForce;
+  const plates = await listPlates();
   return (
     <div className="page pb-12">
       <div className="headline">
@@ -40,7 +42,14 @@ export default async function NewSetup({ params }: Props) {
         the values they were made with. Laser light can hurt eyes: block the beam before touching the bench;
         the laser safety officer and the local rules have the last word.
       </p>
-      <SetupForm benchId={id} before={before} lastNumber={bench.lastNumber} addSetup={addSetup} />
+      <SetupForm
+        benchId={id}
+        inForce={before}
+        setups={bench.setups}
+        lastNumber={bench.lastNumber}
+        plates={plates}
+        addSetup={addSetup}
+      />
     </div>
   );
 }

@@ -8,28 +8,41 @@ import { Field, Select, TextArea } from '@/components/ui/field';
 import { Notice } from '@/components/ui/notice';
 import { useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
-import type { SetupView } from '@/lib/domain/views';
-import { SETUP_VALUES } from '@/lib/domain/setup';
+import type { PlateView, SetupView } from '@/lib/domain/views';
 import { InForceFrom } from './in-force-from';
-import { changesOf, hintOf, inputOf, scaleText, startText, type SetupInput } from './setup-text';
+import { PlateChoice } from './plate-choice';
+import {
+  BENCH_VALUES,
+  besideOf,
+  changesOf,
+  hintOf,
+  inputOf,
+  scaleText,
+  startText,
+  type SetupInput,
+} from './setup-text';
 import { ScalePhoto } from './scale-photo';
 import { ValueBlock } from './value-block';
 
 interface Props {
   benchId: number;
-  /** The setup in force. */
-  before: SetupView | null;
+  inForce: SetupView | null;
+  /** Setups of the bench, newest first. */
+  setups: SetupView[];
   lastNumber: number;
+  plates: PlateView[];
   addSetup: (input: SetupInput) => Promise<ActionAnswer<unknown>>;
 }
 
 /** A new setup: each value with its uncertainty, certificate and due date, and what changes. */
-export function SetupForm({ benchId, before, lastNumber, addSetup }: Props) {
+export function SetupForm({ benchId, inForce, setups, lastNumber, plates, addSetup }: Props) {
   const router = useRouter();
-  const [text, setText] = useState(() => startText(before));
+  const [text, setText] = useState(() => startText(inForce));
   const submit = useSubmit<unknown>();
   const number = lastNumber + 1;
-  const changes = changesOf(text, before);
+  const before = besideOf(text, setups, inForce);
+  const plate = plates.find(({ id }) => id === text.plateId);
+  const changes = changesOf(text, plate, before);
   const faster = submit.message !== '';
   return (
     <form
@@ -37,7 +50,7 @@ export function SetupForm({ benchId, before, lastNumber, addSetup }: Props) {
       onSubmit={(event) => {
         event.preventDefault();
         submit.run(
-          () => addSetup(inputOf(benchId, lastNumber, text)),
+          () => addSetup(inputOf(benchId, lastNumber, text, plate)),
           () => {
             router.push(`/benches/${benchId}`);
             router.refresh();
@@ -47,18 +60,24 @@ export function SetupForm({ benchId, before, lastNumber, addSetup }: Props) {
     >
       <InForceFrom
         from={text.from}
+        setups={setups}
         error={submit.fields.inForceFrom}
-        onChange={(from) => setText({ ...text, from })}
+        onChange={(from) => {
+          // Another time had other values: what was typed for one is no start for the other.
+          const other = besideOf({ ...text, from }, setups, inForce);
+          setText(
+            other?.id === before?.id ? { ...text, from } : { ...startText(other), why: text.why, from },
+          );
+        }}
       />
-      <div className="max-w-[320px] pb-4">
-        <Field
-          label="Slit plate"
-          value={text.plate}
-          error={submit.fields.plate}
-          onChange={(event) => setText({ ...text, plate: event.target.value })}
-        />
-      </div>
-      {SETUP_VALUES.map(({ key }) => (
+      <PlateChoice
+        plates={plates}
+        benchId={benchId}
+        chosen={plate}
+        error={submit.fields.plateId}
+        onChoose={(plateId) => setText({ ...text, plateId })}
+      />
+      {BENCH_VALUES.map((key) => (
         <ValueBlock
           key={key}
           valueKey={key}
@@ -151,7 +170,7 @@ export function SetupForm({ benchId, before, lastNumber, addSetup }: Props) {
               {changes.length ? (
                 changes.map((line) => <li key={line}>{line}</li>)
               ) : (
-                <li>Nothing yet: all values are as in setup {before.number}, which is in force.</li>
+                <li>Nothing yet: all values are as in setup {before.number}.</li>
               )}
             </ul>
           ) : (

@@ -1,32 +1,39 @@
 /** The form of a new setup as text, and what can be said about it before it is sent. */
 import type { z } from 'zod';
+import {
+  certificateInput,
+  confirmedInput,
+  NO_CERTIFICATE,
+  NO_VALUE,
+  statedInput,
+  textOfStated,
+  type CertificateText,
+  type StatedText,
+} from '@/components/setups/stated-text';
 import { parseMaybe, parseNumber } from '@/lib/client/use-submit';
-import { divisorOf, SETUP_VALUES, type UncertaintyShape, type ValueKey } from '@/lib/domain/setup';
+import { divisorOf, SETUP_VALUES, type ValueKey } from '@/lib/domain/setup';
 import { oddness } from '@/lib/domain/setup-plausibility';
 import type { setupSchema } from '@/lib/domain/setup-schemas';
 import { SCALE_WORDS, type ScaleReading } from '@/lib/domain/scale-result';
-import type { CertificateLink, SetupView, StatedValue } from '@/lib/domain/views';
+import type { PlateView, SetupView, StatedValue } from '@/lib/domain/views';
 import { formatQuantity, placesFor } from '@/lib/quantity/format';
 
-export interface ValueText {
-  value: string;
-  stated: string;
-  shape: UncertaintyShape;
-  k: string;
-  dof: string;
-  certificate: string;
-  file: CertificateLink | null;
-  due: string;
-  /** What looks odd is right, for this reason. */
-  isRight: boolean;
-  reason: string;
+/** What is entered with a setup; separation and width come with the plate. */
+export const BENCH_VALUES = ['distanceMm', 'scaleUmPerPx'] as const satisfies readonly ValueKey[];
+export type BenchValue = (typeof BENCH_VALUES)[number];
+
+export type ValueText = StatedText & CertificateText;
+
+/** From when: with the approval; later, as a date-and-time field has it; or the moment a setup of the past began. */
+export interface FromText {
+  kind: 'approval' | 'later' | 'correction';
+  at: string;
 }
 
 export interface SetupText {
-  /** '' : as soon as it is approved; else as a date-and-time field has it. */
-  from: string;
-  plate: string;
-  values: Record<ValueKey, ValueText>;
+  from: FromText;
+  plateId: number | null;
+  values: Record<BenchValue, ValueText>;
   remountU: string;
   remountDof: string;
   tone: 'auto' | 'linear' | 'srgb';
@@ -38,44 +45,28 @@ export interface SetupText {
 
 export type SetupInput = z.input<typeof setupSchema>;
 
-const EMPTY: ValueText = {
-  value: '',
-  stated: '',
-  shape: 'expanded',
-  k: '2',
-  dof: '',
-  certificate: '',
-  file: null,
-  due: '',
-  isRight: false,
-  reason: '',
-};
+function textOf(value: StatedValue | undefined): ValueText {
+  if (!value) return { ...NO_VALUE, ...NO_CERTIFICATE };
+  const { certificate, file, due } = value;
+  return { ...textOfStated(value), certificate, file, due: due ?? '' };
+}
 
-function textOf(value: StatedValue): ValueText {
-  return {
-    ...EMPTY,
-    value: String(value.value),
-    stated: String(value.stated),
-    shape: value.shape,
-    k: value.shape === 'expanded' ? String(value.k) : '2',
-    dof: value.dof === null ? '' : String(value.dof),
-    certificate: value.certificate,
-    file: value.file,
-    due: value.due ?? '',
-  };
+/** The setup the values are compared with: the one in force, or the one that was at the moment of a correction. */
+export function besideOf(
+  text: SetupText,
+  setups: readonly SetupView[],
+  inForce: SetupView | null,
+): SetupView | null {
+  if (text.from.kind !== 'correction') return inForce;
+  return setups.find(({ from }) => from <= text.from.at) ?? inForce;
 }
 
 /** Starts from the setup in force, since usually one value changes. */
 export function startText(before: SetupView | null): SetupText {
   return {
-    from: '',
-    plate: before?.plate ?? '',
-    values: {
-      separationUm: before ? textOf(before.separationUm) : EMPTY,
-      widthUm: before ? textOf(before.widthUm) : EMPTY,
-      distanceMm: before ? textOf(before.distanceMm) : EMPTY,
-      scaleUmPerPx: before ? textOf(before.scaleUmPerPx) : EMPTY,
-    },
+    from: { kind: 'approval', at: '' },
+    plateId: before?.plateId ?? null,
+    values: { distanceMm: textOf(before?.distanceMm), scaleUmPerPx: textOf(before?.scaleUmPerPx) },
     remountU: before?.remountNm ? String(before.remountNm.u) : '',
     remountDof: before?.remountNm?.dof == null ? '' : String(before.remountNm.dof),
     tone: before?.tone ?? 'auto',
@@ -86,34 +77,25 @@ export function startText(before: SetupView | null): SetupText {
   };
 }
 
-export function inputOf(benchId: number, lastNumber: number, text: SetupText): SetupInput {
-  const stated = (value: ValueText) => ({
-    value: parseNumber(value.value),
-    stated: parseNumber(value.stated),
-    shape: value.shape,
-    k: value.shape === 'expanded' ? parseNumber(value.k) : 2,
-    dof: parseMaybe(value.dof),
-    certificate: value.certificate,
-    file: value.file?.sha256 ?? null,
-    due: value.due === '' ? null : value.due,
-  });
-  const confirmed = (value: ValueText) => (value.isRight ? value.reason : '');
-  const { scaleUmPerPx, separationUm, widthUm, distanceMm } = text.values;
+export function inputOf(
+  benchId: number,
+  lastNumber: number,
+  text: SetupText,
+  plate: PlateView | undefined,
+): SetupInput {
+  const { distanceMm, scaleUmPerPx } = text.values;
   const remount = parseMaybe(text.remountU);
   return {
     benchId,
     afterNumber: lastNumber,
-    inForceFrom: text.from === '' ? null : new Date(text.from).toISOString(),
-    plate: text.plate,
-    scaleUmPerPx: stated(scaleUmPerPx),
-    separationUm: stated(separationUm),
-    widthUm: stated(widthUm),
-    distanceMm: stated(distanceMm),
+    inForceFrom: text.from.kind === 'approval' ? null : new Date(text.from.at).toISOString(),
+    plateId: plate?.id ?? 0,
+    plateCertificateId: plate?.certificates[0].id ?? 1,
+    distanceMm: { ...statedInput(distanceMm), ...certificateInput(distanceMm) },
+    scaleUmPerPx: { ...statedInput(scaleUmPerPx), ...certificateInput(scaleUmPerPx) },
     confirmed: {
-      scaleUmPerPx: confirmed(scaleUmPerPx),
-      separationUm: confirmed(separationUm),
-      widthUm: confirmed(widthUm),
-      distanceMm: confirmed(distanceMm),
+      distanceMm: confirmedInput(distanceMm),
+      scaleUmPerPx: confirmedInput(scaleUmPerPx),
     },
     remountNm: remount === null ? null : { u: remount, dof: parseMaybe(text.remountDof) },
     tone: text.tone,
@@ -142,14 +124,9 @@ export function scaleText({ scale, sha256 }: ScaleReading, before: ValueText): V
   };
 }
 
-/** Another plate has another separation and width by right; they are not compared. */
-const ofPlate = (key: ValueKey) => key === 'separationUm' || key === 'widthUm';
-
 /** What looks odd about a value beside the setup in force, or null. */
-export function hintOf(key: ValueKey, text: SetupText, before: SetupView | null): string | null {
-  const comparable =
-    before && !(ofPlate(key) && text.plate.trim() !== before.plate) ? before[key].value : null;
-  return oddness(key, parseNumber(text.values[key].value), comparable);
+export function hintOf(key: BenchValue, text: SetupText, before: SetupView | null): string | null {
+  return oddness(key, parseNumber(text.values[key].value), before?.[key].value ?? null);
 }
 
 function insideWords(inside: boolean | null): string {
@@ -158,23 +135,26 @@ function insideWords(inside: boolean | null): string {
 }
 
 /** What the new setup changes, in words, one line a value. */
-export function changesOf(text: SetupText, before: SetupView | null): string[] {
+export function changesOf(text: SetupText, plate: PlateView | undefined, before: SetupView | null): string[] {
   if (!before) return [];
-  const newPlate = text.plate.trim() !== before.plate;
+  const newPlate = plate !== undefined && plate.id !== before.plateId;
+  const now = (key: ValueKey): { value: number; u: number } | null => {
+    if (key === 'separationUm' || key === 'widthUm') return plate?.certificates[0][key] ?? null;
+    const { value, stated, shape, k } = statedInput(text.values[key]);
+    return { value, u: stated / divisorOf(shape, k) };
+  };
   const lines = SETUP_VALUES.flatMap(({ key, name, unit }) => {
-    const now = text.values[key];
+    const is = now(key);
     const was = before[key];
-    const value = parseNumber(now.value);
-    const u = parseNumber(now.stated) / divisorOf(now.shape, parseNumber(now.k));
-    if (!Number.isFinite(value) || !Number.isFinite(u)) return [];
-    if (value === was.value && Math.abs(u - was.u) < 1e-12) return [];
+    if (!is || !Number.isFinite(is.value) || !Number.isFinite(is.u)) return [];
+    if (is.value === was.value && Math.abs(is.u - was.u) < 1e-12) return [];
     const from = formatQuantity(was.value, 2 * was.u);
-    const to = formatQuantity(value, 2 * u);
-    const inside = newPlate && ofPlate(key) ? null : Math.abs(value - was.value) <= 2 * Math.hypot(u, was.u);
+    const to = formatQuantity(is.value, 2 * is.u);
+    const ofPlate = newPlate && (key === 'separationUm' || key === 'widthUm');
+    const inside = ofPlate ? null : Math.abs(is.value - was.value) <= 2 * Math.hypot(is.u, was.u);
     return [
       `${name} ${from.value} ± ${from.uncertainty} becomes ${to.value} ± ${to.uncertainty} ${unit}${insideWords(inside)}.`,
     ];
   });
-  const plate = text.plate.trim() && newPlate ? [`Plate ${before.plate} becomes ${text.plate.trim()}.`] : [];
-  return [...plate, ...lines];
+  return newPlate ? [`Plate ${before.plate} becomes ${plate.name}.`, ...lines] : lines;
 }
