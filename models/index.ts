@@ -13,6 +13,7 @@ import { definePersonRole } from './person-role';
 import { defineReading } from './reading';
 import { defineReadingResult } from './reading-result';
 import { defineReadingState } from './reading-state';
+import { defineReadingValue } from './reading-value';
 import { defineReturn } from './return';
 import { defineSetting } from './setting';
 import { defineSetup } from './setup';
@@ -42,6 +43,7 @@ export function defineTables(sequelize: Sequelize) {
     readings: defineReading(sequelize),
     readingResults: defineReadingResult(sequelize),
     readingStates: defineReadingState(sequelize),
+    readingValues: defineReadingValue(sequelize),
     returns: defineReturn(sequelize),
     settings: defineSetting(sequelize),
     setups: defineSetup(sequelize),

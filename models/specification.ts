@@ -23,6 +23,10 @@ export interface SpecificationRow extends Model<
   ownGuardNm: number | null;
   ratio: number;
   halfToleranceNm: number;
+  /** Temperature of the unit the limits hold at; null: any. */
+  atTemperatureC: CreationOptional<number | null>;
+  nmPerK: CreationOptional<number | null>;
+  uNmPerK: CreationOptional<number | null>;
   createdBy: number;
   createdAt: Date;
   retiredAt: CreationOptional<Date | null>;
@@ -42,6 +46,9 @@ export function defineSpecification(sequelize: Sequelize) {
       ownGuardNm: { type: DataTypes.DOUBLE, allowNull: true },
       ratio: { type: DataTypes.DOUBLE, allowNull: false },
       halfToleranceNm: { type: DataTypes.DOUBLE, allowNull: false },
+      atTemperatureC: { type: DataTypes.DOUBLE, allowNull: true },
+      nmPerK: { type: DataTypes.DOUBLE, allowNull: true },
+      uNmPerK: { type: DataTypes.DOUBLE, allowNull: true },
       createdBy: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
       retiredAt: { type: DataTypes.DATE(3), allowNull: true },

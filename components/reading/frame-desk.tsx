@@ -1,6 +1,7 @@
 'use client';
 
 import { useState } from 'react';
+import { Budget } from '@/components/budget/budget';
 import { Button } from '@/components/ui/button';
 import { FRAME_WORDS } from '@/lib/domain/life-cycle';
 import type { FrameView, May } from '@/lib/domain/views';
@@ -17,7 +18,7 @@ import { KeepChange, type Refusal } from './keep-change';
 import { KeysSheet } from './keys-sheet';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
-import { Budget, Result } from './result';
+import { Result } from './result';
 import { SendBox } from './send-box';
 import { FrameStory } from './frame-story';
 import { NewFitStage, scaleOfFit, uScaleOfFit } from './new-fit-stage';
@@ -114,6 +115,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
               result={shown.result}
               wavelengthNm={shown.wavelengthNm}
               expandedNm={shown.expandedNm}
+              k={shown.k}
               medium={shown.medium}
               judgement={shown.judgement}
               specification={specificationOf(frame.subject)}
@@ -121,7 +123,17 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
               uScaleUmPerPx={reading?.setup.scaleUmPerPx.u ?? (fit ? uScaleOfFit(fit) : 0)}
               publishedVacuumNm={publishedOf(frame.subject)}
             />
-            <Budget result={shown.result} />
+            <Budget
+              key={shown === fit ? 'preview' : reading?.id}
+              wavelengthNm={shown.wavelengthNm}
+              uNm={shown.uNm}
+              expandedNm={shown.expandedNm}
+              medium={shown.medium}
+              budget={shown.budget}
+              corrections={shown.corrections}
+              specification={specificationOf(frame.subject)}
+              monteCarlo={shown === reading ? reading.monteCarlo : null}
+            />
             <Further result={shown.result} />
           </>
         ) : null}

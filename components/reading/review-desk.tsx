@@ -2,6 +2,7 @@
 
 import { useRouter } from 'next/navigation';
 import { useState } from 'react';
+import { Budget } from '@/components/budget/budget';
 import { readingMay } from '@/lib/domain/life-cycle';
 import type { ReadingView, ReviewView } from '@/lib/domain/views';
 import { publishedOf, specificationOf, subjectName } from '@/lib/client/words';
@@ -22,7 +23,7 @@ import { LookAnswers, whyChecksClose, type Answers } from './look-answers';
 import { OutcomeLine } from './outcome-line';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
-import { Budget, Result } from './result';
+import { Result } from './result';
 import { ReturnForm } from './return-form';
 
 interface Props {
@@ -151,6 +152,7 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             result={shown.result}
             wavelengthNm={shown.wavelengthNm}
             expandedNm={shown.expandedNm}
+            k={shown.k}
             medium={shown.medium}
             judgement={shown.judgement}
             specification={specificationOf(frame.subject)}
@@ -158,7 +160,17 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             uScaleUmPerPx={reading.setup.scaleUmPerPx.u}
             publishedVacuumNm={publishedOf(frame.subject)}
           />
-          <Budget result={shown.result} />
+          <Budget
+            key={shown === fit ? 'preview' : reading.id}
+            wavelengthNm={shown.wavelengthNm}
+            uNm={shown.uNm}
+            expandedNm={shown.expandedNm}
+            medium={shown.medium}
+            budget={shown.budget}
+            corrections={shown.corrections}
+            specification={specificationOf(frame.subject)}
+            monteCarlo={shown === reading ? reading.monteCarlo : null}
+          />
           <Further result={shown.result} />
           <ReadingsOfFrame
             readings={frame.readings}

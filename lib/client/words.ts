@@ -14,8 +14,13 @@ export const RULE_WORDS: Record<DecisionRule, string> = {
 
 const plain = (nm: number) => groupThousands(String(Number(nm.toPrecision(10))));
 
-/** "635 ± 5 nm (air)"; one-sided and lopsided limits in words. */
+/** "635 ± 5 nm (air)"; one-sided and lopsided limits in words; with the temperature they hold at. */
 export function nominalText(spec: Specification): string {
+  const at = spec.atTemperature ? ` at ${plain(spec.atTemperature.temperatureC)} °C` : '';
+  return limitsText(spec) + at;
+}
+
+function limitsText(spec: Specification): string {
   const medium = MEDIUM_WORDS[spec.medium];
   const { nominalNm, lowerNm, upperNm } = spec;
   if (lowerNm === null) return `${plain(nominalNm)}, at most ${plain(upperNm ?? nominalNm)} nm (${medium})`;

@@ -1,6 +1,8 @@
 /** What the pages are given: plain data, made by lib/server/queries and drawn by app and components. */
 import type { FrameState, ReadingState } from './life-cycle';
 import type { BudgetRow, Finding, FindingWord, Region, SetupValues, ToneChoice } from './reading-result';
+import type { LotRisk } from '@/lib/quantity/lot-risk';
+import type { MonteCarlo } from '@/lib/quantity/monte-carlo';
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
 import type { Role } from './roles';
@@ -114,6 +116,8 @@ export interface LotView extends LotRow {
   totalRows: number;
   page: number;
   counts: Record<Verdict | 'none', number>;
+  /** Risks of the decision rule for units like these; null with too few values. */
+  risk: LotRisk | null;
 }
 
 export interface SourceView {
@@ -229,7 +233,13 @@ export interface SignatureView {
 
 export interface ReadingView extends ReadingBrief {
   result: FitResult;
+  dof: number | null;
+  /** All rows of the value as it is judged. */
   budget: BudgetRow[];
+  /** What was done to the value beside the change of medium. */
+  corrections: string[];
+  /** The budget drawn by Monte Carlo; null where there is no budget. */
+  monteCarlo: MonteCarlo | null;
   findings: Finding[];
   setup: SetupView;
   replaces: number | null;
@@ -287,8 +297,14 @@ export interface FitFacts {
 export interface FitPreview {
   result: FitResult;
   wavelengthNm: number | null;
+  uNm: number | null;
   expandedNm: number | null;
+  k: number | null;
+  dof: number | null;
   medium: Medium;
+  /** All rows of the value as it is judged. */
+  budget: BudgetRow[];
+  corrections: string[];
   judgement: Judgement | null;
 }
 

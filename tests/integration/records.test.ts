@@ -3,6 +3,7 @@ import { acceptReading } from '@/lib/server/commands/accept-reading';
 import { sendReading } from '@/lib/server/commands/send-reading';
 import { verifyChain } from '@/lib/server/audit';
 import { db } from '@/lib/server/db';
+import type { ValueIn } from '@/lib/quantity/value-in';
 import { digestOf } from '@/lib/server/commands/store-reading';
 import { ownerDatabase, rows } from './support/database';
 import { inventedResult, makeReading } from './support/readings';
@@ -92,8 +93,10 @@ test('migrations run a second time without a change, even from the very first on
 
 test("a signature's digest is that of the stored reading", async () => {
   const [stored] = await rows<Record<string, string>>(
-    `SELECT s.digest, r.frame_sha256, r.setup_json, r.specification_json, r.options_json, rr.result_json
-     FROM signatures s JOIN readings r ON r.id = s.reading_id JOIN reading_results rr ON rr.reading_id = r.id`,
+    `SELECT s.digest, r.frame_sha256, r.setup_json, r.specification_json, r.options_json, rr.result_json,
+       rv.value_json
+     FROM signatures s JOIN readings r ON r.id = s.reading_id JOIN reading_results rr ON rr.reading_id = r.id
+     JOIN reading_values rv ON rv.reading_id = r.id`,
   );
   const content = {
     frameSha256: stored.frame_sha256,
@@ -101,11 +104,13 @@ test("a signature's digest is that of the stored reading", async () => {
     setup: JSON.parse(stored.setup_json) as object,
     specification: JSON.parse(stored.specification_json) as null,
     options: JSON.parse(stored.options_json) as object,
+    value: JSON.parse(stored.value_json) as Omit<ValueIn, 'judgement'>,
   };
   expect(digestOf(content)).toBe(stored.digest);
   expect(digestOf({ ...content, result: { ...content.result, wavelengthNm: 635.1 } })).not.toBe(
     stored.digest,
   );
+  expect(digestOf({ ...content, value: { ...content.value, valueNm: 635.1 } })).not.toBe(stored.digest);
 });
 
 describe('the log is a chain', () => {

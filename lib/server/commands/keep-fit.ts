@@ -41,7 +41,7 @@ export async function previewFit(
   const frame = await loadFrame(frameId);
   const facts = await fitFacts(frame);
   const { result, stackSha256 } = await fitWith(frame, facts, wanted);
-  return { ...previewOf(result, facts.specification), stackSha256 };
+  return { ...previewOf(result, facts), stackSha256 };
 }
 
 /**
@@ -191,7 +191,7 @@ async function store(
       ...(isScanResult(result) ? { detectorMm: result.detectorMm } : {}),
       zeroShift: wanted.zeroShift,
       leaveOut: wanted.leaveOut,
-      valueNm: valueIn(result, facts.specification).valueNm,
+      valueNm: valueIn(result, facts).valueNm,
     },
   });
   return { readingId: reading.id, version: 0 };

@@ -3,6 +3,8 @@ import type { FitOptions } from '@/lib/domain/reading-result';
 import type { FitResult } from '@/lib/domain/scan-result';
 import type { Role } from '@/lib/domain/roles';
 import type { ReadingBrief, ReadingView, ReturnReason } from '@/lib/domain/views';
+import { drawBudget, type MonteCarlo } from '@/lib/quantity/monte-carlo';
+import type { ValueIn } from '@/lib/quantity/value-in';
 import { select } from '../db';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
 import { setupViews } from './setup-views';
@@ -18,6 +20,9 @@ export async function readingsOf(frameId: number): Promise<ReadingBrief[]> {
 
 interface ViewColumns extends BriefColumns {
   result_json: string;
+  value_json: string | null;
+  monte_carlo_json: string | null;
+  digest: string;
   options_json: string;
   setup_id: number;
   bench_id: number;
@@ -32,10 +37,11 @@ interface ViewColumns extends BriefColumns {
 /** One reading in full, curves included. */
 export async function readingView(readingId: number): Promise<ReadingView | null> {
   const [row] = await select<ViewColumns>(
-    `SELECT ${BRIEF_COLUMNS}, rr.result_json, r.options_json, r.setup_id, r.bench_id, r.replaces_id,
+    `SELECT ${BRIEF_COLUMNS}, rr.result_json, rv.value_json, rv.monte_carlo_json, r.digest, r.options_json, r.setup_id, r.bench_id, r.replaces_id,
        (SELECT MAX(n.id) FROM readings n WHERE n.replaces_id = r.id) AS replaced_by,
        st.sent_at, st.note, sn.id AS sender_id, sn.name AS sender
-     FROM readings r ${BRIEF_JOINS} LEFT JOIN people sn ON sn.id = st.sent_by WHERE r.id = :readingId`,
+     FROM readings r ${BRIEF_JOINS} LEFT JOIN people sn ON sn.id = st.sent_by
+     LEFT JOIN reading_values rv ON rv.reading_id = r.id WHERE r.id = :readingId`,
     { readingId },
   );
   const brief = row ? briefOf(row) : null;
@@ -47,7 +53,7 @@ export async function readingView(readingId: number): Promise<ReadingView | null
   return {
     ...brief,
     result,
-    budget: result.budget,
+    ...valueOf(row, result),
     findings: result.findings,
     setup,
     replaces: row.replaces_id,
@@ -61,6 +67,24 @@ export async function readingView(readingId: number): Promise<ReadingView | null
     leaveOut: options.leaveOut ?? [],
     tone: options.tone ?? 'auto',
   };
+}
+
+type Value = Pick<ReadingView, 'dof' | 'budget' | 'corrections' | 'monteCarlo'>;
+
+/** The kept value; a reading of before values were kept shows its result's budget, drawn from the same seed. */
+function valueOf(row: ViewColumns, result: FitResult): Value {
+  if (row.value_json !== null) {
+    const { dof, budget, corrections } = JSON.parse(row.value_json) as Omit<ValueIn, 'judgement'>;
+    const monteCarlo =
+      row.monte_carlo_json === null ? null : (JSON.parse(row.monte_carlo_json) as MonteCarlo);
+    return { dof, budget, corrections, monteCarlo };
+  }
+  const { budget, wavelengthNm, expandedNm, dofWavelength } = result;
+  const drawn =
+    budget.length && wavelengthNm !== null && expandedNm !== null
+      ? drawBudget(budget, wavelengthNm, expandedNm, row.digest)
+      : null;
+  return { dof: dofWavelength, budget, corrections: [], monteCarlo: drawn };
 }
 
 async function returnOf(readingId: number): Promise<ReadingView['returned']> {

@@ -42,7 +42,18 @@ export function AddSpecification({ addSpecification }: Props) {
   );
 }
 
-const START = { name: '', nominal: '', lower: '', upper: '', ownGuard: '', ratio: '', half: '' };
+const START = {
+  name: '',
+  nominal: '',
+  lower: '',
+  upper: '',
+  ownGuard: '',
+  ratio: '',
+  half: '',
+  temperature: '',
+  nmPerK: '',
+  uNmPerK: '',
+};
 
 function SpecificationForm({ addSpecification, close }: Props & { close: () => void }) {
   const router = useRouter();
@@ -56,6 +67,7 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
     onChange: (event: React.ChangeEvent<HTMLInputElement>) => setText({ ...text, [key]: event.target.value }),
   });
   const oneSided = (text.lower.trim() === '') !== (text.upper.trim() === '');
+  const warm = text.temperature.trim() !== '';
   const send = () =>
     submit.run(
       () =>
@@ -69,6 +81,13 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
           ownGuardNm: rule === 'guard-own' ? parseMaybe(text.ownGuard) : null,
           ratio: parseMaybe(text.ratio),
           halfToleranceNm: oneSided ? parseMaybe(text.half) : null,
+          atTemperature: warm
+            ? {
+                temperatureC: parseNumber(text.temperature),
+                nmPerK: parseNumber(text.nmPerK),
+                uNmPerK: parseMaybe(text.uNmPerK) ?? 0,
+              }
+            : null,
         }),
       () => {
         close();
@@ -137,6 +156,28 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
           help="Empty takes the usual value for the rule."
           {...field('ratio', 'ratio')}
         />
+        <Field
+          label="The limits hold at, °C"
+          inputMode="decimal"
+          placeholder="any temperature"
+          help="Of the unit. Its temperature is then entered with each frame or for the bench."
+          {...field('temperature', 'atTemperature.temperatureC')}
+        />
+        {warm ? (
+          <>
+            <Field
+              label="The wavelength moves by, nm per K"
+              inputMode="decimal"
+              {...field('nmPerK', 'atTemperature.nmPerK')}
+            />
+            <Field
+              label="Standard uncertainty of it, nm per K"
+              inputMode="decimal"
+              help="Empty: known exactly."
+              {...field('uNmPerK', 'atTemperature.uNmPerK')}
+            />
+          </>
+        ) : null}
       </div>
       <FormFoot word="Add it" waiting={submit.waiting} message={submit.message} onBack={close} />
     </form>
