@@ -58,7 +58,7 @@ export function Budget(props: BudgetProps) {
 /** "Monte Carlo agrees: U 0.74, 0.73 by 200 000 draws." */
 export function drawnText({ agrees, draws, expandedNm: drawn }: MonteCarlo, expandedNm: number): string {
   const places = placesFor(expandedNm);
-  const both = `U ${formatQuantity(0, expandedNm).uncertainty}, ${formatNumber(drawn, places)} by ${formatNumber(draws, 0)} draws`;
+  const both = `U\u00a0${formatQuantity(0, expandedNm).uncertainty}, ${formatNumber(drawn, places)} by ${formatNumber(draws, 0)} draws`;
   if (agrees) return `Monte Carlo agrees: ${both}.`;
   const why =
     drawn < expandedNm

@@ -18,7 +18,9 @@ interface Props {
 }
 
 /** Figures that show a standard uncertainty as it was entered. */
-const FIGURES = 4;
+const FIGURES = 3;
+/** Degrees of freedom above this change no figure that is shown. */
+const MANY = 500;
 const written = (u: number) => String(Number(u.toPrecision(FIGURES)));
 const parsed = (text: string) => Number(text.trim().replace(',', '.').replace('−', '-'));
 
@@ -68,7 +70,7 @@ export function WhatIf({ valueNm, medium, rows, specification }: Props) {
                   {row.name} {row.symbol ? <span className="sym">{row.symbol}</span> : null}
                   <small>
                     {row.known}
-                    {row.dof === null ? '' : `, ν = ${formatNumber(row.dof, 0)}`}
+                    {row.dof === null || row.dof > MANY ? '' : `, ν = ${formatNumber(row.dof, 0)}`}
                   </small>
                 </th>
                 <td className="num">{row.value === null ? '' : valueText(row)}</td>
@@ -145,7 +147,9 @@ function Standing({ name, value, medium, budget, judged }: StandingProps) {
       <Quantity value={value} expanded={budget.expandedNm} medium={medium} />
       <p className="text-small text-ink-2">
         k = {formatNumber(budget.k, 2)}
-        {budget.dof === null ? '' : `, ν = ${formatNumber(budget.dof, budget.dof < 100 ? 1 : 0)}`}
+        {budget.dof === null || budget.dof > MANY
+          ? ''
+          : `, ν = ${formatNumber(budget.dof, budget.dof < 100 ? 1 : 0)}`}
       </p>
       {judged ? <SaidVerdict verdict={judged.verdict} /> : null}
     </div>
