@@ -3,6 +3,7 @@ import { defineAuditHead } from './audit-head';
 import { defineAuditRow } from './audit-row';
 import { defineBandStack } from './band-stack';
 import { defineBench } from './bench';
+import { defineCondition } from './condition';
 import { defineFrame } from './frame';
 import { defineLookAnswer } from './look-answer';
 import { defineLot } from './lot';
@@ -33,6 +34,7 @@ export function defineTables(sequelize: Sequelize) {
     auditRows: defineAuditRow(sequelize),
     bandStacks: defineBandStack(sequelize),
     benches: defineBench(sequelize),
+    conditions: defineCondition(sequelize),
     frames: defineFrame(sequelize),
     lookAnswers: defineLookAnswer(sequelize),
     lots: defineLot(sequelize),

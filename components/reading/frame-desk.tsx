@@ -2,6 +2,7 @@
 
 import { useState } from 'react';
 import { Budget } from '@/components/budget/budget';
+import { FrameConditions, type EnterFrameConditions } from '@/components/conditions/frame-conditions';
 import { Button } from '@/components/ui/button';
 import { FRAME_WORDS } from '@/lib/domain/life-cycle';
 import type { FrameView, May } from '@/lib/domain/views';
@@ -28,10 +29,11 @@ interface Props {
   may: May;
   keepFit: KeepFit;
   sendToReview: SendToReview;
+  enterConditions: EnterFrameConditions;
 }
 
 /** One frame as the technician sees it: photo, stage, result, and what can be done with it. */
-export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
+export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }: Props) {
   const reading = frame.shown;
   const desk = useRegionChange({
     frameId: frame.id,
@@ -134,6 +136,13 @@ export function FrameDesk({ frame, may, keepFit, sendToReview }: Props) {
               specification={specificationOf(frame.subject)}
               monteCarlo={shown === reading ? reading.monteCarlo : null}
             />
+            {reading ? (
+              <FrameConditions
+                frameId={frame.id}
+                reading={reading}
+                enter={may.send && desk.change === null ? enterConditions : null}
+              />
+            ) : null}
             <Further result={shown.result} />
           </>
         ) : null}

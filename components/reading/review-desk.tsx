@@ -3,6 +3,7 @@
 import { useRouter } from 'next/navigation';
 import { useState } from 'react';
 import { Budget } from '@/components/budget/budget';
+import { FrameConditions } from '@/components/conditions/frame-conditions';
 import { readingMay } from '@/lib/domain/life-cycle';
 import type { ReadingView, ReviewView } from '@/lib/domain/views';
 import { publishedOf, specificationOf, subjectName } from '@/lib/client/words';
@@ -171,6 +172,7 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             specification={specificationOf(frame.subject)}
             monteCarlo={shown === reading ? reading.monteCarlo : null}
           />
+          <FrameConditions frameId={frame.id} reading={reading} enter={null} />
           <Further result={shown.result} />
           <ReadingsOfFrame
             readings={frame.readings}

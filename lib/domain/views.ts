@@ -238,6 +238,8 @@ export interface ReadingView extends ReadingBrief {
   budget: BudgetRow[];
   /** What was done to the value beside the change of medium. */
   corrections: string[];
+  /** What the air and the unit were when this fit was made; empty where nothing was entered. */
+  conditions: Pick<SetupValues, 'air' | 'sourceTemperature'>;
   /** The budget drawn by Monte Carlo; null where there is no budget. */
   monteCarlo: MonteCarlo | null;
   findings: Finding[];

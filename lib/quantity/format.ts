@@ -98,6 +98,12 @@ export function formatConcise(value: number, u: number): string {
   return `${atPlace(value, places)}(${last})`;
 }
 
+/** An index of refraction, its decimals in threes as those of a printed table: "1.000 271 37"; two figures of u where there is one. */
+export function formatIndex(n: number, u: number | null): string {
+  const [whole, decimals] = roundHalfAway(n, u ? placesFor(u) : 8).split('.');
+  return `${whole}.${(decimals.match(/.{1,3}/g) ?? []).join(THIN)}`;
+}
+
 /** A share as a whole or one-decimal per cent: 0.042 -> "4.2 %". */
 export function formatPercent(share: number): string {
   const percent = 100 * share;

@@ -3,6 +3,7 @@ import type { Transaction } from 'sequelize';
 import { AppError } from '@/lib/domain/errors';
 import type { Specification } from '@/lib/domain/specification';
 import type { FitFacts } from '@/lib/domain/views';
+import { conditionValues, frameConditions } from './conditions';
 import { db, select } from './db';
 import {
   SPECIFICATION_COLUMNS,
@@ -14,13 +15,13 @@ import { setupValues } from './setups';
 export type { FitFacts };
 
 export async function fitFacts(
-  frame: { setupId: number; lotId: number | null },
+  frame: { id: number; benchId: number; receivedAt: Date; setupId: number; lotId: number | null },
   transaction?: Transaction,
 ): Promise<FitFacts> {
   const { tables } = db();
   const setup = await tables.setups.findByPk(frame.setupId, { transaction, rejectOnEmpty: true });
   return {
-    setup: setupValues(setup),
+    setup: { ...setupValues(setup), ...conditionValues(await frameConditions(frame, transaction)) },
     tone: setup.tone,
     specification: frame.lotId === null ? null : await specificationOfLot(frame.lotId, transaction),
   };

@@ -1,6 +1,7 @@
 import * as door from '@/app/(door)/actions';
 import * as room from '@/app/(room)/actions';
 import * as benches from '@/app/(room)/benches/actions';
+import * as conditions from '@/app/(room)/conditions/actions';
 import * as lots from '@/app/(room)/lots/actions';
 import * as people from '@/app/(room)/people/actions';
 import * as readings from '@/app/(room)/readings/actions';
@@ -30,6 +31,8 @@ const MATRIX: Record<string, Who[]> = {
   openLot: ['admin', 'technician', 'technician2', 'both'],
   addUnits: ['admin', 'technician', 'technician2', 'both'],
   addSource: ['admin', 'qa'],
+  enterBenchConditions: ['admin', 'technician', 'technician2', 'both', 'qa'],
+  enterFrameConditions: ['technician', 'technician2', 'both'],
   addPerson: ['admin'],
   changePerson: ['admin'],
   keepFit: ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
@@ -92,6 +95,7 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     if (response.status === 401) return 'shut';
     return response.status === 403 ? 'refused' : response.ok ? 'done' : 'other';
   };
+  const air = { airTemperatureC: { value: 21, half: 1 }, pressurePa: { value: 101_000, half: 100 } };
   const specification = {
     name: '',
     nominalNm: 635,
@@ -110,6 +114,9 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     openLot: () => act(lots.openLot({ number: '1', specificationId: nowhere })),
     addUnits: () => act(lots.addUnits({ lotId: nowhere, serials: ['X'] })),
     addSource: () => act(lots.addSource({ name: '', vacuumNm: 633, uNm: 0.1 })),
+    enterBenchConditions: () => act(conditions.enterBenchConditions({ benchId: nowhere, ...air })),
+    enterFrameConditions: () =>
+      act(conditions.enterFrameConditions({ frameId: nowhere, readingId: nowhere, version: 0, ...air })),
     addPerson: () =>
       act(people.addPerson({ name: '', email: 'x@test.example', roles: ['qa'], password: PASSWORD })),
     changePerson: () => act(people.changePerson({ personId: nowhere, roles: [], active: true })),
@@ -143,7 +150,7 @@ async function fingerprint(): Promise<unknown> {
 
 test('the matrix names every call, and every call is in the matrix', () => {
   expect(Object.keys(calls(null)).sort()).toEqual(Object.keys(MATRIX).sort());
-  const exported = [room, benches, lots, people, readings].flatMap((file) => Object.keys(file));
+  const exported = [room, benches, conditions, lots, people, readings].flatMap((file) => Object.keys(file));
   expect(exported.filter((name) => !(name in MATRIX) && name !== 'signOutEverywhere')).toEqual([]);
 });
 

@@ -1,5 +1,6 @@
 import { migrate } from '@/scripts/migrate';
 import { acceptReading } from '@/lib/server/commands/accept-reading';
+import { enterBenchConditions } from '@/lib/server/commands/enter-conditions';
 import { sendReading } from '@/lib/server/commands/send-reading';
 import { verifyChain } from '@/lib/server/audit';
 import { db } from '@/lib/server/db';
@@ -30,6 +31,14 @@ beforeAll(async () => {
     returnedBy: world.people.reviewer.id,
     returnedAt: new Date(),
   });
+  await enterBenchConditions(as(world.people.technician), {
+    benchId: world.benchId,
+    airTemperatureC: { value: 21, half: 0.5 },
+    pressurePa: { value: 101_000, half: 100 },
+    humidityPercent: null,
+    co2Ppm: null,
+    sourceTemperatureC: null,
+  });
   await db().tables.lookAnswers.create({
     readingId,
     checkName: 'dim',
@@ -50,6 +59,8 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['look_answers', 'reason'],
   ['unit_outcomes', 'reason'],
   ['audit_rows', 'who'],
+  ['reading_values', 'value_json'],
+  ['conditions', 'pressure_pa'],
 ];
 
 describe.each(IMMUTABLE)('%s', (table, column) => {

@@ -33,6 +33,8 @@ export async function intakeFrames(personId: number): Promise<FrameRow[]> {
 interface FrameColumns {
   width_px: number | null;
   height_px: number | null;
+  bench_id: number;
+  received_at: Date;
   setup_id: number;
   lot_id: number | null;
   scan_from_mm: number | null;
@@ -48,7 +50,7 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
   const wanted = readingId ?? row.reading?.id ?? readings[0]?.id ?? null;
   if (readingId !== null && !readings.some(({ id }) => id === readingId)) return null;
   const [columns] = await select<FrameColumns>(
-    `SELECT width_px, height_px, setup_id, lot_id, scan_from_mm, scan_to_mm, scan_points
+    `SELECT width_px, height_px, bench_id, received_at, setup_id, lot_id, scan_from_mm, scan_to_mm, scan_points
      FROM frames WHERE id = :frameId`,
     { frameId },
   );
@@ -60,7 +62,13 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
     scanLength: fromMm === null || toMm === null ? null : { fromMm, toMm, points: points ?? 0 },
     readings,
     shown: wanted === null ? null : await readingView(wanted),
-    facts: await fitFacts({ setupId: columns.setup_id, lotId: columns.lot_id }),
+    facts: await fitFacts({
+      id: frameId,
+      benchId: columns.bench_id,
+      receivedAt: columns.received_at,
+      setupId: columns.setup_id,
+      lotId: columns.lot_id,
+    }),
     outcome: row.subject.kind === 'unit' ? await outcomeOf(row.subject.unitId) : null,
   };
 }

@@ -1,5 +1,5 @@
 import 'server-only';
-import type { FitOptions } from '@/lib/domain/reading-result';
+import type { FitOptions, SetupValues } from '@/lib/domain/reading-result';
 import type { FitResult } from '@/lib/domain/scan-result';
 import type { Role } from '@/lib/domain/roles';
 import type { ReadingBrief, ReadingView, ReturnReason } from '@/lib/domain/views';
@@ -24,6 +24,7 @@ interface ViewColumns extends BriefColumns {
   monte_carlo_json: string | null;
   digest: string;
   options_json: string;
+  setup_json: string;
   setup_id: number;
   bench_id: number;
   replaces_id: number | null;
@@ -37,7 +38,7 @@ interface ViewColumns extends BriefColumns {
 /** One reading in full, curves included. */
 export async function readingView(readingId: number): Promise<ReadingView | null> {
   const [row] = await select<ViewColumns>(
-    `SELECT ${BRIEF_COLUMNS}, rr.result_json, rv.value_json, rv.monte_carlo_json, r.digest, r.options_json, r.setup_id, r.bench_id, r.replaces_id,
+    `SELECT ${BRIEF_COLUMNS}, rr.result_json, rv.value_json, rv.monte_carlo_json, r.digest, r.options_json, r.setup_json, r.setup_id, r.bench_id, r.replaces_id,
        (SELECT MAX(n.id) FROM readings n WHERE n.replaces_id = r.id) AS replaced_by,
        st.sent_at, st.note, sn.id AS sender_id, sn.name AS sender
      FROM readings r ${BRIEF_JOINS} LEFT JOIN people sn ON sn.id = st.sent_by
@@ -50,10 +51,12 @@ export async function readingView(readingId: number): Promise<ReadingView | null
   if (!setup) throw new Error(`Reading ${readingId} names a setup its bench does not have.`);
   const result = JSON.parse(row.result_json) as FitResult;
   const options = JSON.parse(row.options_json) as FitOptions;
+  const { air, sourceTemperature } = JSON.parse(row.setup_json) as SetupValues;
   return {
     ...brief,
     result,
     ...valueOf(row, result),
+    conditions: { air, sourceTemperature },
     findings: result.findings,
     setup,
     replaces: row.replaces_id,

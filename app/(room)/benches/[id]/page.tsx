@@ -1,14 +1,17 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
 import { notFound } from 'next/navigation';
+import { BenchConditions } from '@/components/conditions/bench-conditions';
 import { GeometryDrawing } from '@/components/figures/geometry-drawing';
 import { SaidCheck } from '@/components/figures/marks';
 import { When } from '@/components/figures/when';
 import { Empty } from '@/components/states/empty';
 import { buttonClass } from '@/components/ui/button';
 import { can } from '@/lib/domain/permissions';
+import { benchConditions } from '@/lib/server/conditions';
 import { findBench } from '@/lib/server/queries/benches';
 import { requireMe } from '@/lib/server/session';
+import { enterBenchConditions } from '../../conditions/actions';
 import { HowKnown } from '../_components/how-known';
 import { SetupList } from '../_components/setup-list';
 import { ValuesInForce } from '../_components/values-in-force';
@@ -74,6 +77,13 @@ export default async function Bench({ params }: Props) {
           </Empty>
         </div>
       )}
+      <BenchConditions
+        benchId={id}
+        now={await benchConditions(id, new Date())}
+        atNm={bench.drawNm}
+        mayEnter={can(me, 'conditions.enter')}
+        enter={enterBenchConditions}
+      />
       <p className="pb-5 text-small text-ink-2">
         Laser light can hurt eyes. Block the beam before touching the bench; the laser safety officer and the
         local rules have the last word.

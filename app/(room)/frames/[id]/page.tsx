@@ -9,6 +9,7 @@ import { subjectName } from '@/lib/client/words';
 import { can } from '@/lib/domain/permissions';
 import { findFrame, mayFor } from '@/lib/server/queries/frames';
 import { requireMe } from '@/lib/server/session';
+import { enterFrameConditions } from '../../conditions/actions';
 import { keepFit, sendToReview } from '../../readings/actions';
 import { StillMoving } from './_components/still-moving';
 
@@ -50,7 +51,13 @@ export default async function FramePage(props: Props) {
         }
       />
       <StillMoving frameId={frame.id} state={frame.state} />
-      <FrameDesk frame={frame} may={await mayFor(me, frame)} keepFit={keepFit} sendToReview={sendToReview} />
+      <FrameDesk
+        frame={frame}
+        may={await mayFor(me, frame)}
+        keepFit={keepFit}
+        sendToReview={sendToReview}
+        enterConditions={enterFrameConditions}
+      />
     </div>
   );
 }

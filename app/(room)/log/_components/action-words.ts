@@ -19,6 +19,8 @@ const WORDS: Record<string, string> = {
   'reading.send': 'Reading sent to review',
   'setup.add': 'Setup put in force',
   'source.add': 'Source added',
+  'bench.conditions': 'Air of a bench entered',
+  'frame.conditions': 'Air of a frame entered',
   'specification.add': 'Specification added',
   'specification.retire': 'Specification retired',
   'unit.outcome': 'Outcome set',

@@ -6,6 +6,7 @@ import type { z } from 'zod';
 import { Disclosure } from '@/components/ui/disclosure';
 import { Field, Select } from '@/components/ui/field';
 import { FormFoot } from '@/components/ui/form-foot';
+import { MEDIUM_WORDS } from '@/lib/client/words';
 import { parseMaybe, parseNumber, useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import type { specificationSchema } from '@/lib/domain/schemas';
@@ -67,6 +68,7 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
     onChange: (event: React.ChangeEvent<HTMLInputElement>) => setText({ ...text, [key]: event.target.value }),
   });
   const oneSided = (text.lower.trim() === '') !== (text.upper.trim() === '');
+  const inMedium = MEDIUM_WORDS[medium];
   const warm = text.temperature.trim() !== '';
   const send = () =>
     submit.run(
@@ -103,7 +105,12 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
     >
       <div className="form-grid">
         <Field label="Name" required {...field('name', 'name')} />
-        <Field label="Nominal, nm" inputMode="decimal" required {...field('nominal', 'nominalNm')} />
+        <Field
+          label={`Nominal, nm (${inMedium})`}
+          inputMode="decimal"
+          required
+          {...field('nominal', 'nominalNm')}
+        />
         <Select
           label="Stated in"
           value={medium}
@@ -113,13 +120,13 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
           <option value="vacuum">vacuum</option>
         </Select>
         <Field
-          label="Lower limit, nm"
+          label={`Lower limit, nm (${inMedium})`}
           inputMode="decimal"
           help="Empty when there is none."
           {...field('lower', 'lowerNm')}
         />
         <Field
-          label="Upper limit, nm"
+          label={`Upper limit, nm (${inMedium})`}
           inputMode="decimal"
           help="Empty when there is none."
           {...field('upper', 'upperNm')}
