@@ -15,6 +15,12 @@ import { defineReading } from './reading';
 import { defineReadingResult } from './reading-result';
 import { defineReadingState } from './reading-state';
 import { defineReadingValue } from './reading-value';
+import {
+  defineBenchRelease,
+  defineBenchRule,
+  defineBenchStop,
+  defineReferenceCheck,
+} from './reference-check';
 import { defineReturn } from './return';
 import { defineSetting } from './setting';
 import { defineSetup } from './setup';
@@ -32,6 +38,9 @@ export function defineTables(sequelize: Sequelize) {
   const tables = {
     auditHead: defineAuditHead(sequelize),
     auditRows: defineAuditRow(sequelize),
+    benchReleases: defineBenchRelease(sequelize),
+    benchRules: defineBenchRule(sequelize),
+    benchStops: defineBenchStop(sequelize),
     bandStacks: defineBandStack(sequelize),
     benches: defineBench(sequelize),
     conditions: defineCondition(sequelize),
@@ -46,6 +55,7 @@ export function defineTables(sequelize: Sequelize) {
     readingResults: defineReadingResult(sequelize),
     readingStates: defineReadingState(sequelize),
     readingValues: defineReadingValue(sequelize),
+    referenceChecks: defineReferenceCheck(sequelize),
     returns: defineReturn(sequelize),
     settings: defineSetting(sequelize),
     setups: defineSetup(sequelize),

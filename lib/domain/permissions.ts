@@ -33,6 +33,7 @@ export const PERMISSIONS = {
   'benches.add': ['admin'],
   'setups.add': ['admin'],
   'sources.add': ['admin', 'qa'],
+  'benches.release': ['qa'],
   'conditions.enter': ['technician', 'qa', 'admin'],
   'charts.see': ['technician', 'reviewer', 'qa', 'admin'],
   'people.see': ['admin'],

@@ -2,6 +2,7 @@ import * as door from '@/app/(door)/actions';
 import * as room from '@/app/(room)/actions';
 import * as benches from '@/app/(room)/benches/actions';
 import * as conditions from '@/app/(room)/conditions/actions';
+import * as references from '@/app/(room)/references/actions';
 import * as lots from '@/app/(room)/lots/actions';
 import * as people from '@/app/(room)/people/actions';
 import * as readings from '@/app/(room)/readings/actions';
@@ -31,6 +32,8 @@ const MATRIX: Record<string, Who[]> = {
   openLot: ['admin', 'technician', 'technician2', 'both'],
   addUnits: ['admin', 'technician', 'technician2', 'both'],
   addSource: ['admin', 'qa'],
+  releaseBench: ['qa'],
+  setBenchRule: ['qa'],
   enterBenchConditions: ['admin', 'technician', 'technician2', 'both', 'qa'],
   enterFrameConditions: ['technician', 'technician2', 'both'],
   addPerson: ['admin'],
@@ -114,6 +117,8 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     openLot: () => act(lots.openLot({ number: '1', specificationId: nowhere })),
     addUnits: () => act(lots.addUnits({ lotId: nowhere, serials: ['X'] })),
     addSource: () => act(lots.addSource({ name: '', vacuumNm: 633, uNm: 0.1 })),
+    releaseBench: () => act(references.releaseBench({ stopId: nowhere, reason: 'x' })),
+    setBenchRule: () => act(references.setBenchRule({ benchId: nowhere, method: 'absolute', why: 'x' })),
     enterBenchConditions: () => act(conditions.enterBenchConditions({ benchId: nowhere, ...air })),
     enterFrameConditions: () =>
       act(conditions.enterFrameConditions({ frameId: nowhere, readingId: nowhere, version: 0, ...air })),
@@ -150,7 +155,9 @@ async function fingerprint(): Promise<unknown> {
 
 test('the matrix names every call, and every call is in the matrix', () => {
   expect(Object.keys(calls(null)).sort()).toEqual(Object.keys(MATRIX).sort());
-  const exported = [room, benches, conditions, lots, people, readings].flatMap((file) => Object.keys(file));
+  const exported = [room, benches, conditions, references, lots, people, readings].flatMap((file) =>
+    Object.keys(file),
+  );
   expect(exported.filter((name) => !(name in MATRIX) && name !== 'signOutEverywhere')).toEqual([]);
 });
 

@@ -1,6 +1,7 @@
 import { migrate } from '@/scripts/migrate';
 import { acceptReading } from '@/lib/server/commands/accept-reading';
 import { enterBenchConditions } from '@/lib/server/commands/enter-conditions';
+import { releaseBench, setBenchRule } from '@/lib/server/commands/release-bench';
 import { sendReading } from '@/lib/server/commands/send-reading';
 import { verifyChain } from '@/lib/server/audit';
 import { db } from '@/lib/server/db';
@@ -8,6 +9,7 @@ import type { ValueIn } from '@/lib/quantity/value-in';
 import { digestOf } from '@/lib/server/commands/store-reading';
 import { ownerDatabase, rows } from './support/database';
 import { inventedResult, makeReading } from './support/readings';
+import { acceptReference } from './support/references';
 import { PASSWORD, as, closeWorld, makeWorld, type World } from './support/world';
 
 let world: World;
@@ -30,6 +32,16 @@ beforeAll(async () => {
     words: 'invented',
     returnedBy: world.people.reviewer.id,
     returnedAt: new Date(),
+  });
+  await acceptReference(world, 9);
+  await acceptReference(world, 9);
+  const [{ id: stopId }] = await rows<{ id: number }>('SELECT id FROM bench_stops');
+  await releaseBench(as(world.people.qa), { stopId, reason: 'invented' });
+  await setBenchRule(as(world.people.qa), {
+    benchId: world.benchId,
+    limitNm: 1,
+    method: 'absolute',
+    why: 'invented',
   });
   await enterBenchConditions(as(world.people.technician), {
     benchId: world.benchId,
@@ -61,6 +73,10 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['audit_rows', 'who'],
   ['reading_values', 'value_json'],
   ['conditions', 'pressure_pa'],
+  ['reference_checks', 'deviation_nm'],
+  ['bench_stops', 'check_id'],
+  ['bench_releases', 'reason'],
+  ['bench_rules', 'why'],
 ];
 
 describe.each(IMMUTABLE)('%s', (table, column) => {

@@ -14,6 +14,7 @@ import {
   whyBarred,
   type ReadingFacts,
 } from '../reading-facts';
+import { recordReferenceCheck, requireBenchOpen } from '../reference-checks';
 import { daysUntilDue } from '../setups';
 import { inTransaction } from '../transaction';
 import { checkOwnPassword } from './check-password';
@@ -42,6 +43,7 @@ export async function acceptReading(
     const now = await findReading(wanted.readingId, transaction);
     const barredNow = await whyBarred(context.actor.id, now, transaction);
     if (barredNow) throw new AppError('NOT_ALLOWED', barredNow);
+    await requireBenchOpen(work, now.readingId);
     await stepReading(work, context.at, now, wanted.version, 'accept', { accepted_at: context.at });
     await tables.signatures.create(
       {
@@ -72,6 +74,7 @@ export async function acceptReading(
       before: { status: now.status },
       after: { status: READING_STEPS.accept.to, digest: now.digest, answers: wanted.answers },
     });
+    await recordReferenceCheck(work, context, now.readingId);
     return { readingId: now.readingId, version: wanted.version + 1 };
   });
 }

@@ -2,6 +2,7 @@ import 'server-only';
 import { READING_STEPS } from '@/lib/domain/life-cycle';
 import type { BenchChoice, BenchView } from '@/lib/domain/views';
 import { db, select } from '../db';
+import { fitnessWithChecks, standingOf } from '../reference-checks';
 import { fitnessOf } from '../setups';
 import { setupViews } from './setup-views';
 
@@ -17,7 +18,8 @@ export async function listBenchChoices(now = new Date()): Promise<BenchChoice[]>
   return Promise.all(
     benches.map(async ({ id, name }) => {
       const setup = await newestSetup(id);
-      return { id, name, setupNumber: setup?.number ?? null, fitness: fitnessOf(setup, now) };
+      const fitness = fitnessWithChecks(fitnessOf(setup, now), await standingOf(id));
+      return { id, name, setupNumber: setup?.number ?? null, fitness };
     }),
   );
 }
@@ -37,7 +39,7 @@ export async function findBench(id: number, now = new Date()): Promise<BenchView
     name: bench.name,
     note: bench.note,
     setupNumber: setup?.number ?? null,
-    fitness: fitnessOf(setup, now),
+    fitness: fitnessWithChecks(fitnessOf(setup, now), await standingOf(id)),
     inForce: setups[0] ?? null,
     setups,
     drawNm: last?.nm ?? EXAMPLE_NM,

@@ -6,6 +6,7 @@ import { select } from '../db';
 import { fitFacts } from '../frame-facts';
 import { getMe } from '../session';
 import { findReading, whyBarred } from '../reading-facts';
+import { whyBenchStopped } from '../reference-checks';
 import { frameRows } from './frame-rows';
 import { framesPage } from './frames-page';
 import { outcomeOf } from './outcomes';
@@ -83,7 +84,7 @@ export async function mayFor(me: Me, frame: FrameView): Promise<May> {
   const isCurrent = frame.reading?.id === shown.id;
   const inReview = readingMay('accept', shown.status);
   const acceptBarred = can(me, 'readings.accept')
-    ? await whyBarred(me.id, await findReading(shown.id))
+    ? ((await whyBarred(me.id, await findReading(shown.id))) ?? (await whyBenchStopped(shown.id)))
     : null;
   const fitRight = inReview ? 'readings.return' : 'readings.send';
   return {

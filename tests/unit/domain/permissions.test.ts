@@ -19,6 +19,7 @@ const MATRIX: Record<Action, string> = {
   'benches.add': 'a',
   'setups.add': 'a',
   'sources.add': 'qa',
+  'benches.release': 'q',
   'conditions.enter': 'tqa',
   'charts.see': 'trqa',
   'people.see': 'a',
