@@ -2,26 +2,17 @@
 
 import { useRouter } from 'next/navigation';
 import { useState } from 'react';
-import type { z } from 'zod';
 import { SaidCheck } from '@/components/figures/marks';
 import { When } from '@/components/figures/when';
 import { Disclosure } from '@/components/ui/disclosure';
 import { TextArea } from '@/components/ui/field';
 import { FormFoot } from '@/components/ui/form-foot';
 import { useSubmit } from '@/lib/client/use-submit';
-import type { ActionAnswer } from '@/lib/domain/errors';
 import type { FindingWord } from '@/lib/domain/reading-result';
-import type {
-  BenchStanding,
-  ReferencesView,
-  benchRuleSchema,
-  releaseBenchSchema,
-} from '@/lib/domain/references';
+import type { BenchStanding, ReferencesView } from '@/lib/domain/references';
+import type { ReleaseBench, SetBenchRule } from './actions';
 import { CheckList } from './check-list';
 import { RuleForm, ruleText } from './rule-form';
-
-export type ReleaseBench = (input: z.input<typeof releaseBenchSchema>) => Promise<ActionAnswer<unknown>>;
-export type SetBenchRule = (input: z.input<typeof benchRuleSchema>) => Promise<ActionAnswer<unknown>>;
 
 interface Props {
   benchId: number;

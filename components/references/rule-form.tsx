@@ -7,7 +7,7 @@ import { FormFoot } from '@/components/ui/form-foot';
 import { parseMaybe, useSubmit } from '@/lib/client/use-submit';
 import type { ReferencesView } from '@/lib/domain/references';
 import { formatNumber, placesFor } from '@/lib/quantity/format';
-import type { SetBenchRule } from './reference-checks';
+import type { SetBenchRule } from './actions';
 
 interface Props {
   benchId: number;
