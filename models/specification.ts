@@ -6,7 +6,7 @@ import {
   type Model,
   type Sequelize,
 } from 'sequelize';
-import type { DecisionRule, Medium } from '@/lib/domain/specification';
+import type { DecisionRule, Medium, Method } from '@/lib/domain/specification';
 
 /** What a unit must meet. Never edited, only retired. */
 export interface SpecificationRow extends Model<
@@ -27,6 +27,8 @@ export interface SpecificationRow extends Model<
   atTemperatureC: CreationOptional<number | null>;
   nmPerK: CreationOptional<number | null>;
   uNmPerK: CreationOptional<number | null>;
+  /** null: as the bench is used. */
+  method: CreationOptional<Method | null>;
   createdBy: number;
   createdAt: Date;
   retiredAt: CreationOptional<Date | null>;
@@ -49,6 +51,7 @@ export function defineSpecification(sequelize: Sequelize) {
       atTemperatureC: { type: DataTypes.DOUBLE, allowNull: true },
       nmPerK: { type: DataTypes.DOUBLE, allowNull: true },
       uNmPerK: { type: DataTypes.DOUBLE, allowNull: true },
+      method: { type: DataTypes.STRING(12), allowNull: true },
       createdBy: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
       retiredAt: { type: DataTypes.DATE(3), allowNull: true },

@@ -133,6 +133,8 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }
               medium={shown.medium}
               budget={shown.budget}
               corrections={shown.corrections}
+              method={shown.method}
+              other={shown.other}
               specification={specificationOf(frame.subject)}
               monteCarlo={shown === reading ? reading.monteCarlo : null}
             />

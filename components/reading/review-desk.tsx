@@ -169,6 +169,8 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             medium={shown.medium}
             budget={shown.budget}
             corrections={shown.corrections}
+            method={shown.method}
+            other={shown.other}
             specification={specificationOf(frame.subject)}
             monteCarlo={shown === reading ? reading.monteCarlo : null}
           />

@@ -2,10 +2,12 @@
 
 import { useRouter } from 'next/navigation';
 import { useState } from 'react';
-import { Field, TextArea } from '@/components/ui/field';
+import { Field, Select, TextArea } from '@/components/ui/field';
 import { FormFoot } from '@/components/ui/form-foot';
+import { METHOD_WORDS } from '@/lib/client/words';
 import { parseMaybe, useSubmit } from '@/lib/client/use-submit';
 import type { ReferencesView } from '@/lib/domain/references';
+import { METHODS } from '@/lib/domain/specification';
 import { formatNumber, placesFor } from '@/lib/quantity/format';
 import type { SetBenchRule } from './actions';
 
@@ -16,18 +18,20 @@ interface Props {
   onClose: () => void;
 }
 
-export function ruleText({ limitNm, why, by }: ReferencesView['rule']): string {
+export function ruleText({ limitNm, method, why, by }: ReferencesView['rule']): string {
   const limit =
     limitNm === null
       ? 'A check is inside while its deviation is at most U of both values together.'
       : `A check is inside up to ± ${formatNumber(limitNm, placesFor(limitNm))} nm, a limit of the bench’s own.`;
-  return by ? `${limit} ${by.name}: ${why}` : limit;
+  const found = `Wavelengths of units: ${METHOD_WORDS[method].toLowerCase()}, unless the specification asks otherwise.`;
+  return by ? `${limit} ${found} ${by.name}: ${why}` : `${limit} ${found}`;
 }
 
-/** The limit of a check, kept with who set it and why. */
+/** The limit of a check and the method, kept with who set it and why. */
 export function RuleForm({ benchId, rule, setBenchRule, onClose }: Props) {
   const router = useRouter();
   const [limit, setLimit] = useState(rule.limitNm === null ? '' : String(rule.limitNm));
+  const [method, setMethod] = useState(rule.method);
   const [why, setWhy] = useState('');
   const submit = useSubmit<unknown>();
   return (
@@ -35,7 +39,7 @@ export function RuleForm({ benchId, rule, setBenchRule, onClose }: Props) {
       onSubmit={(event) => {
         event.preventDefault();
         submit.run(
-          () => setBenchRule({ benchId, limitNm: parseMaybe(limit), method: rule.method, why }),
+          () => setBenchRule({ benchId, limitNm: parseMaybe(limit), method, why }),
           () => {
             onClose();
             router.refresh();
@@ -53,6 +57,18 @@ export function RuleForm({ benchId, rule, setBenchRule, onClose }: Props) {
           error={submit.fields.limitNm}
           onChange={(event) => setLimit(event.target.value)}
         />
+        <Select
+          label="Wavelengths of units are found"
+          value={method}
+          help="Beside a reference: from accepted reference readings of the same setup, nearest before and after. Separation, distance and scale then cancel. A specification may ask for either."
+          onChange={(event) => setMethod(METHODS.find((known) => known === event.target.value) ?? 'absolute')}
+        >
+          {METHODS.map((known) => (
+            <option key={known} value={known}>
+              {METHOD_WORDS[known]}
+            </option>
+          ))}
+        </Select>
         <TextArea
           label="Why"
           value={why}

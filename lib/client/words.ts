@@ -1,9 +1,14 @@
 /** Short texts about a unit, a lot and a specification, the same on every screen. */
-import type { DecisionRule, Specification } from '@/lib/domain/specification';
+import type { DecisionRule, Method, Specification } from '@/lib/domain/specification';
 import type { FrameRow, Subject } from '@/lib/domain/views';
 import { formatNumber, groupThousands } from '@/lib/quantity/format';
 
 export const MEDIUM_WORDS = { air: 'air', vacuum: 'vac' } as const;
+
+export const METHOD_WORDS: Record<Method, string> = {
+  absolute: 'From the bench’s constants',
+  comparison: 'Beside a reference',
+};
 
 export const RULE_WORDS: Record<DecisionRule, string> = {
   simple: 'no guard band',

@@ -63,6 +63,8 @@ export interface SetupValues {
   air?: MeasuredAir;
   /** The plate stands square to the beam to within so many degrees. */
   plateYawDeg?: number;
+  /** Between two mountings the plate's yaw differs by no more than so many degrees. */
+  yawDifferenceDeg?: number;
   /** Further effects the bench states for itself. */
   effects?: StatedEffect[];
   /** Temperature of the unit or source in °C while the frame was taken. */

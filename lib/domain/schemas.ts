@@ -3,6 +3,7 @@ import { z } from 'zod';
 import { LIMITS } from './limits';
 import { ROLES } from './roles';
 import { SCALE_KINDS } from './scale-result';
+import { METHODS } from './specification';
 import { OUTCOMES, RETURN_REASONS } from './views';
 
 const finite = (what: string) =>
@@ -152,6 +153,7 @@ export const specificationSchema = z
     ownGuardNm: positive('The guard band').nullable().default(null),
     ratio: positive('The ratio').nullable().default(null),
     halfToleranceNm: positive('Half the tolerance').nullable().default(null),
+    method: z.enum(METHODS).nullable().default(null),
     atTemperature: z
       .object({
         temperatureC: finite('The temperature').refine(

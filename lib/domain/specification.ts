@@ -6,6 +6,14 @@ export type DecisionRule = 'simple' | 'guard-expanded' | 'guard-one-sided' | 'gu
 export const METHODS = ['absolute', 'comparison'] as const;
 export type Method = (typeof METHODS)[number];
 
+/** A value by the method that was not chosen, in the same medium and at the same temperature. */
+export interface OtherValue {
+  method: Method;
+  valueNm: number;
+  expandedNm: number | null;
+  k: number | null;
+}
+
 /** A wavelength holds at a temperature of the unit: how it moves with that temperature. */
 export interface ReferenceTemperature {
   temperatureC: number;

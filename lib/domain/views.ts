@@ -1,12 +1,14 @@
 /** What the pages are given: plain data, made by lib/server/queries and drawn by app and components. */
 import type { FrameState, ReadingState } from './life-cycle';
 import type { BudgetRow, Finding, FindingWord, Region, SetupValues, ToneChoice } from './reading-result';
+import type { ComparisonFacts } from '@/lib/quantity/comparison';
 import type { LotRisk } from '@/lib/quantity/lot-risk';
 import type { MonteCarlo } from '@/lib/quantity/monte-carlo';
+import type { OtherValue } from './specification';
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
 import type { Role } from './roles';
-import type { Judgement, Medium, Specification, Verdict } from './specification';
+import type { Judgement, Medium, Method, Specification, Verdict } from './specification';
 
 export interface PersonRef {
   id: number;
@@ -238,6 +240,9 @@ export interface ReadingView extends ReadingBrief {
   budget: BudgetRow[];
   /** What was done to the value beside the change of medium. */
   corrections: string[];
+  method: Method;
+  /** The same by the other method. */
+  other: OtherValue | null;
   /** What the air and the unit were when this fit was made; empty where nothing was entered. */
   conditions: Pick<SetupValues, 'air' | 'sourceTemperature'>;
   /** The budget drawn by Monte Carlo; null where there is no budget. */
@@ -293,6 +298,8 @@ export interface FitFacts {
   setup: SetupValues;
   tone: ToneChoice;
   specification: Specification | null;
+  /** Only of a unit: what its value may be compared with. */
+  comparison?: ComparisonFacts | null;
 }
 
 /** A fit that is shown and not kept. */
@@ -307,6 +314,8 @@ export interface FitPreview {
   /** All rows of the value as it is judged. */
   budget: BudgetRow[];
   corrections: string[];
+  method: Method;
+  other: OtherValue | null;
   judgement: Judgement | null;
 }
 

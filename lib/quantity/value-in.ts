@@ -1,9 +1,11 @@
 import type { BudgetRow, Finding, SetupValues } from '@/lib/domain/reading-result';
 import type { FitResult } from '@/lib/domain/scan-result';
-import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
+import { spacingOf } from '@/lib/domain/placed-strip';
+import type { Judgement, Medium, Method, OtherValue, Specification } from '@/lib/domain/specification';
 import type { FitPreview } from '@/lib/domain/views';
-import { airIndex, airIndexU, STANDARD_BENCH_AIR } from './air-index';
+import { airFromVacuum, airIndex, airIndexU, STANDARD_BENCH_AIR } from './air-index';
 import { combineBudget, type BudgetInput } from './budget';
+import { compareWith, type ComparisonFacts } from './comparison';
 import { uOfHalfWidth } from './monte-carlo';
 import { judge } from './verdict';
 
@@ -11,18 +13,28 @@ import { judge } from './verdict';
 export interface JudgedBy {
   setup: SetupValues;
   specification: Specification | null;
+  /** What the reading may be compared with; absent or null: the bench's constants alone. */
+  comparison?: ComparisonFacts | null;
 }
 
-/** A reading's value as its specification asks for it, with the whole budget and the verdict there. */
-export interface ValueIn {
-  medium: Medium;
-  valueNm: number | null;
+/** A value in one medium at one temperature with its budget. */
+interface Value {
+  valueNm: number;
   uNm: number | null;
   expandedNm: number | null;
   k: number | null;
   dof: number | null;
-  /** Every row, in nm of the medium; empty where the setup states no uncertainty. */
+  /** Every row, in nm of the medium; empty where no uncertainty can be stated. */
   budget: BudgetRow[];
+}
+
+/** A reading's value as its specification asks for it, with the whole budget and the verdict there. */
+export interface ValueIn extends Omit<Value, 'valueNm'> {
+  medium: Medium;
+  valueNm: number | null;
+  method: Method;
+  /** The same by the other method, where there is one. */
+  other: OtherValue | null;
   /** What was done to the value beside the change of medium, in sentences. */
   corrections: string[];
   judgement: Judgement | null;
@@ -41,48 +53,109 @@ const FWHM_OVER_SIGMA = 2 * Math.sqrt(2 * Math.LN2);
  * temperature λ₀ = λ + κ(T₀ − T). A source has no specification and gets no verdict.
  */
 export function valueIn(result: FitResult, by: JudgedBy): ValueIn {
-  const { setup, specification } = by;
+  const { setup, specification, comparison } = by;
   const medium = specification?.medium ?? 'air';
-  const none: ValueIn = {
-    medium,
-    valueNm: null,
-    uNm: null,
-    expandedNm: null,
-    k: null,
-    dof: null,
-    budget: [],
-    corrections: [],
-    judgement: null,
-  };
-  const index = indexFor(result, medium, setup);
-  if (result.wavelengthNm === null || index === null) return none;
   const heat = temperatureStep(setup, specification);
+  const absolute = absoluteValue(result, medium, setup, heat);
+  const compared = comparison ? comparedValue(result, medium, setup, heat, comparison) : null;
+  const byComparison = comparison?.method === 'comparison' && compared !== null;
+  const chosen = byComparison ? compared : absolute;
+  const method: Method = byComparison ? 'comparison' : 'absolute';
+  if (chosen === null) {
+    const nothing = { valueNm: null, uNm: null, expandedNm: null, k: null, dof: null, budget: [] };
+    return { medium, ...nothing, method, other: null, corrections: [], judgement: null };
+  }
+  const { valueNm, uNm, expandedNm, dof } = chosen;
+  const judged =
+    specification && uNm !== null && expandedNm !== null
+      ? judge(valueNm, uNm, dof, expandedNm, specification)
+      : null;
+  // At another temperature than the limits' own a value decides nothing, inside or outside.
+  const judgement: Judgement | null =
+    judged && heat?.missing ? { ...judged, verdict: 'no-verdict', because: heat.missing } : judged;
+  const corrections = [heat?.words ?? '', comparison ? methodWords(comparison, compared !== null) : ''];
+  return {
+    medium,
+    ...chosen,
+    method,
+    other: otherOf(byComparison ? absolute : compared, byComparison ? 'absolute' : 'comparison'),
+    corrections: corrections.filter(Boolean),
+    judgement,
+  };
+}
+
+/** From the bench's constants. */
+function absoluteValue(
+  result: FitResult,
+  medium: Medium,
+  setup: SetupValues,
+  heat: TemperatureStep | null,
+): Value | null {
+  const index = indexFor(result, medium, setup);
+  if (result.wavelengthNm === null || index === null) return null;
   const valueNm = result.wavelengthNm * index + (heat?.stepNm ?? 0);
-  const answer = { ...none, valueNm, corrections: heat?.words ? [heat.words] : [] };
-  if (result.uWavelengthNm === null || result.expandedNm === null) return answer;
-  const rows: BudgetInput[] = [
+  const none: Value = { valueNm, uNm: null, expandedNm: null, k: null, dof: null, budget: [] };
+  if (result.uWavelengthNm === null || result.expandedNm === null) return none;
+  // An answer that came without its rows keeps the uncertainty it came with.
+  if (!result.budget.length)
+    return {
+      ...none,
+      uNm: result.uWavelengthNm * index,
+      expandedNm: result.expandedNm * index,
+      k: result.k,
+      dof: result.dofWavelength,
+    };
+  return withRows(valueNm, [
     ...result.budget.map((row) => ({ ...row, sensitivity: row.sensitivity * index })),
     ...airRow(valueNm, setup),
     ...frameRows(result.findings),
     ...responseRow(result),
     ...(heat?.rows ?? []),
-  ];
-  // An answer that came without its rows keeps the uncertainty it came with.
-  const combined = result.budget.length
-    ? combineBudget(rows)
-    : {
-        rows: [],
-        uNm: result.uWavelengthNm * index,
-        expandedNm: result.expandedNm * index,
-        k: result.k,
-        dof: result.dofWavelength,
-      };
-  const { uNm, expandedNm, k, dof } = combined;
-  const judged = specification ? judge(valueNm, uNm, dof, expandedNm, specification) : null;
-  // At another temperature than the limits' own a value decides nothing, inside or outside.
-  const judgement: Judgement | null =
-    judged && heat?.missing ? { ...judged, verdict: 'no-verdict', because: heat.missing } : judged;
-  return { ...answer, uNm, expandedNm, k, dof, budget: combined.rows, judgement };
+  ]);
+}
+
+/** Beside the references of the same setup: the index of air cancels as well. */
+function comparedValue(
+  result: FitResult,
+  medium: Medium,
+  setup: SetupValues,
+  heat: TemperatureStep | null,
+  facts: ComparisonFacts,
+): Value | null {
+  const { value: spacing, u: uSpacing, unit } = spacingOf(result);
+  const known = result.budget.find(({ key }) => key === 'fit')?.known ?? 'type A';
+  const own = { spacing, uSpacing, dof: result.dofSpacing, known, unit };
+  const compared = compareWith(own, facts, setup);
+  if (compared === null) return null;
+  const inMedium = medium === 'vacuum' ? compared.vacuumNm : airFromVacuum(compared.vacuumNm);
+  const index = inMedium / compared.airNm;
+  return withRows(inMedium + (heat?.stepNm ?? 0), [
+    ...compared.rows.map((row) => ({ ...row, sensitivity: row.sensitivity * index })),
+    ...frameRows(result.findings),
+    ...responseRow(result),
+    ...(heat?.rows ?? []),
+  ]);
+}
+
+function withRows(valueNm: number, rows: readonly BudgetInput[]): Value {
+  const { rows: budget, ...combined } = combineBudget(rows);
+  return { valueNm, ...combined, budget };
+}
+
+function otherOf(value: Value | null, method: Method): OtherValue | null {
+  return value && { method, valueNm: value.valueNm, expandedNm: value.expandedNm, k: value.k };
+}
+
+/** How a comparison was made, or why it was not where it was asked for. */
+function methodWords({ method, references }: ComparisonFacts, made: boolean): string {
+  if (method !== 'comparison') return '';
+  if (made) {
+    const names = [...new Set(references.map(({ source }) => source))].join(' and ');
+    return `Compared with ${names}, ${references.length === 2 ? 'before and after' : 'one reading'}.`;
+  }
+  return references.length === 0
+    ? 'No accepted reference reading of this setup yet, so the bench’s constants were used.'
+    : 'Nothing says how well mounting again repeats on this bench, so its constants were used.';
 }
 
 /** n(bench)/n(standard) for air, n(bench) for vacuum; null where the index of air is not stated for this light. */

@@ -3,6 +3,7 @@ import type { Transaction } from 'sequelize';
 import { AppError } from '@/lib/domain/errors';
 import type { Specification } from '@/lib/domain/specification';
 import type { FitFacts } from '@/lib/domain/views';
+import { comparisonFacts } from './comparison-facts';
 import { conditionValues, frameConditions } from './conditions';
 import { db, select } from './db';
 import {
@@ -14,16 +15,25 @@ import { setupValues } from './setups';
 
 export type { FitFacts };
 
-export async function fitFacts(
-  frame: { id: number; benchId: number; receivedAt: Date; setupId: number; lotId: number | null },
-  transaction?: Transaction,
-): Promise<FitFacts> {
+/** What of a frame decides with what it is fitted and judged. */
+interface FrameForFit {
+  id: number;
+  benchId: number;
+  receivedAt: Date;
+  mediaType: string;
+  setupId: number;
+  lotId: number | null;
+}
+
+export async function fitFacts(frame: FrameForFit, transaction?: Transaction): Promise<FitFacts> {
   const { tables } = db();
   const setup = await tables.setups.findByPk(frame.setupId, { transaction, rejectOnEmpty: true });
+  const specification = frame.lotId === null ? null : await specificationOfLot(frame.lotId, transaction);
   return {
     setup: { ...setupValues(setup), ...conditionValues(await frameConditions(frame, transaction)) },
     tone: setup.tone,
-    specification: frame.lotId === null ? null : await specificationOfLot(frame.lotId, transaction),
+    specification,
+    comparison: specification && (await comparisonFacts(frame, specification, transaction)),
   };
 }
 

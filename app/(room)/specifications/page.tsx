@@ -1,6 +1,6 @@
 import type { Metadata } from 'next';
 import { Empty } from '@/components/states/empty';
-import { count, nominalText, RULE_WORDS } from '@/lib/client/words';
+import { count, nominalText, RULE_WORDS, METHOD_WORDS } from '@/lib/client/words';
 import { can } from '@/lib/domain/permissions';
 import type { ReferenceTemperature } from '@/lib/domain/specification';
 import { formatNumber, formatQuantity } from '@/lib/quantity/format';
@@ -45,6 +45,7 @@ export default async function Specifications() {
                   {RULE_WORDS[spec.rule]}
                   {spec.ownGuardNm === null ? '' : ` of ${formatNumber(spec.ownGuardNm, 2)} nm`}; no verdict
                   when U is above {formatNumber(spec.ratio, 2)} of half the tolerance
+                  {spec.method ? `; ${METHOD_WORDS[spec.method].toLowerCase()}` : ''}
                   {spec.atTemperature ? `; ${temperatureText(spec.atTemperature)}` : ''}
                 </div>
               </div>

@@ -11,8 +11,8 @@ import { inTransaction } from '../transaction';
 /** No verdict when U is more than this share of half the tolerance, where the specification says nothing else. */
 const usualRatio = (rule: DecisionRule) => (rule === 'simple' ? 1 / 3 : 1);
 
-type NewSpecification = Omit<z.output<typeof specificationSchema>, 'atTemperature'> &
-  Partial<Pick<z.output<typeof specificationSchema>, 'atTemperature'>>;
+type NewSpecification = Omit<z.output<typeof specificationSchema>, 'atTemperature' | 'method'> &
+  Partial<Pick<z.output<typeof specificationSchema>, 'atTemperature' | 'method'>>;
 
 export async function addSpecification(
   context: CommandContext,

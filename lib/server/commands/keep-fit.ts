@@ -157,6 +157,7 @@ async function store(
       result,
       setup: facts.setup,
       specification: facts.specification,
+      comparison: facts.comparison,
       options,
       madeBy: context.actor.id,
       madeInReview: inReview,

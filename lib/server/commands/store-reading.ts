@@ -7,6 +7,7 @@ import type { Specification } from '@/lib/domain/specification';
 import { canonicalJson, sha256 } from '../canonical';
 import { db, select } from '../db';
 import { gravest, lengthColumns, riskOf } from '../findings';
+import type { ComparisonFacts } from '@/lib/quantity/comparison';
 import { drawBudget } from '@/lib/quantity/monte-carlo';
 import { valueIn, type ValueIn } from '@/lib/quantity/value-in';
 
@@ -24,6 +25,7 @@ export interface NewReading {
   result: FitResult;
   setup: SetupValues;
   specification: Specification | null;
+  comparison?: ComparisonFacts | null;
   options: FitOptions | ScanOptions;
   /** null: the product's own first fit. */
   madeBy: number | null;
@@ -45,7 +47,7 @@ export async function storeReading(
     { frameId: frame.id },
     transaction,
   );
-  const value = valueIn(result, { setup, specification });
+  const value = valueIn(result, { setup, specification, comparison: reading.comparison });
   const { judgement, ...judged } = value;
   const digest = digestOf({
     frameSha256: frame.sha256,

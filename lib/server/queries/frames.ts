@@ -36,6 +36,7 @@ interface FrameColumns {
   height_px: number | null;
   bench_id: number;
   received_at: Date;
+  media_type: string;
   setup_id: number;
   lot_id: number | null;
   scan_from_mm: number | null;
@@ -51,7 +52,7 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
   const wanted = readingId ?? row.reading?.id ?? readings[0]?.id ?? null;
   if (readingId !== null && !readings.some(({ id }) => id === readingId)) return null;
   const [columns] = await select<FrameColumns>(
-    `SELECT width_px, height_px, bench_id, received_at, setup_id, lot_id, scan_from_mm, scan_to_mm, scan_points
+    `SELECT width_px, height_px, bench_id, received_at, media_type, setup_id, lot_id, scan_from_mm, scan_to_mm, scan_points
      FROM frames WHERE id = :frameId`,
     { frameId },
   );
@@ -67,6 +68,7 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
       id: frameId,
       benchId: columns.bench_id,
       receivedAt: columns.received_at,
+      mediaType: columns.media_type,
       setupId: columns.setup_id,
       lotId: columns.lot_id,
     }),

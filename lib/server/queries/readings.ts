@@ -72,22 +72,32 @@ export async function readingView(readingId: number): Promise<ReadingView | null
   };
 }
 
-type Value = Pick<ReadingView, 'dof' | 'budget' | 'corrections' | 'monteCarlo'>;
+type Value = Pick<ReadingView, 'dof' | 'budget' | 'corrections' | 'method' | 'other' | 'monteCarlo'>;
+
+/** Values of before methods could be chosen name none. */
+type KeptValue = Omit<ValueIn, 'judgement' | 'method' | 'other'> & Partial<Pick<ValueIn, 'method' | 'other'>>;
 
 /** The kept value; a reading of before values were kept shows its result's budget, drawn from the same seed. */
 function valueOf(row: ViewColumns, result: FitResult): Value {
   if (row.value_json !== null) {
-    const { dof, budget, corrections } = JSON.parse(row.value_json) as Omit<ValueIn, 'judgement'>;
+    const {
+      dof,
+      budget,
+      corrections,
+      method = 'absolute',
+      other = null,
+    } = JSON.parse(row.value_json) as KeptValue;
     const monteCarlo =
       row.monte_carlo_json === null ? null : (JSON.parse(row.monte_carlo_json) as MonteCarlo);
-    return { dof, budget, corrections, monteCarlo };
+    return { dof, budget, corrections, method, other, monteCarlo };
   }
   const { budget, wavelengthNm, expandedNm, dofWavelength } = result;
   const drawn =
     budget.length && wavelengthNm !== null && expandedNm !== null
       ? drawBudget(budget, wavelengthNm, expandedNm, row.digest)
       : null;
-  return { dof: dofWavelength, budget, corrections: [], monteCarlo: drawn };
+  const plain = { corrections: [], method: 'absolute' as const, other: null };
+  return { dof: dofWavelength, budget, ...plain, monteCarlo: drawn };
 }
 
 async function returnOf(readingId: number): Promise<ReadingView['returned']> {

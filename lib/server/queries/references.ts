@@ -1,4 +1,5 @@
 import 'server-only';
+import type { Transaction } from 'sequelize';
 import type { CheckView, ReferencesView } from '@/lib/domain/references';
 import { FIRST_RULE } from '@/lib/domain/references';
 import type { Method } from '@/lib/domain/specification';
@@ -73,10 +74,14 @@ export async function referencesOf(benchId: number): Promise<ReferencesView> {
 }
 
 /** Scatter of the checks of one source within one setup: what mounting again does. */
-export async function remountOf(benchId: number): Promise<{ uNm: number; dof: number } | null> {
+export async function remountOf(
+  benchId: number,
+  transaction?: Transaction,
+): Promise<{ uNm: number; dof: number } | null> {
   const rows = await select<{ setup_id: number; source_id: number; deviation_nm: number }>(
     `SELECT setup_id, source_id, deviation_nm FROM reference_checks WHERE bench_id = :benchId ORDER BY id DESC LIMIT 500`,
     { benchId },
+    transaction,
   );
   const groups = new Map<string, number[]>();
   for (const { setup_id, source_id, deviation_nm } of rows) {

@@ -52,6 +52,7 @@ export async function referenceInReview(
         result,
         setup: facts.setup,
         specification: null,
+        comparison: null,
         options: { tone: 'auto' },
         madeBy: null,
         madeInReview: false,

@@ -6,11 +6,11 @@ import type { z } from 'zod';
 import { Disclosure } from '@/components/ui/disclosure';
 import { Field, Select } from '@/components/ui/field';
 import { FormFoot } from '@/components/ui/form-foot';
-import { MEDIUM_WORDS } from '@/lib/client/words';
+import { MEDIUM_WORDS, METHOD_WORDS } from '@/lib/client/words';
 import { parseMaybe, parseNumber, useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import type { specificationSchema } from '@/lib/domain/schemas';
-import type { DecisionRule, Medium } from '@/lib/domain/specification';
+import { METHODS, type DecisionRule, type Medium, type Method } from '@/lib/domain/specification';
 
 interface Props {
   addSpecification: (input: z.input<typeof specificationSchema>) => Promise<ActionAnswer<unknown>>;
@@ -60,6 +60,7 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
   const router = useRouter();
   const [text, setText] = useState(START);
   const [medium, setMedium] = useState<Medium>('air');
+  const [method, setMethod] = useState<Method | null>(null);
   const [rule, setRule] = useState<DecisionRule>('guard-expanded');
   const submit = useSubmit<unknown>();
   const field = (key: keyof typeof START, error: string) => ({
@@ -83,6 +84,7 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
           ownGuardNm: rule === 'guard-own' ? parseMaybe(text.ownGuard) : null,
           ratio: parseMaybe(text.ratio),
           halfToleranceNm: oneSided ? parseMaybe(text.half) : null,
+          method,
           atTemperature: warm
             ? {
                 temperatureC: parseNumber(text.temperature),
@@ -163,6 +165,19 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
           help="Empty takes the usual value for the rule."
           {...field('ratio', 'ratio')}
         />
+        <Select
+          label="Method"
+          value={method ?? ''}
+          help="Beside a reference is much surer, and needs reference readings of the same setup."
+          onChange={(event) => setMethod(METHODS.find((known) => known === event.target.value) ?? null)}
+        >
+          <option value="">As the bench is used</option>
+          {METHODS.map((known) => (
+            <option key={known} value={known}>
+              {METHOD_WORDS[known]}
+            </option>
+          ))}
+        </Select>
         <Field
           label="The limits hold at, °C"
           inputMode="decimal"
