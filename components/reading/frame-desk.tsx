@@ -3,6 +3,7 @@
 import { useState } from 'react';
 import { Budget } from '@/components/budget/budget';
 import { FrameConditions, type EnterFrameConditions } from '@/components/conditions/frame-conditions';
+import { SlitPlate } from '@/components/slit/slit-plate';
 import { Button } from '@/components/ui/button';
 import { FRAME_WORDS } from '@/lib/domain/life-cycle';
 import type { FrameView, May } from '@/lib/domain/views';
@@ -144,6 +145,9 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }
                 reading={reading}
                 enter={may.send && desk.change === null ? enterConditions : null}
               />
+            ) : null}
+            {frame.subject.kind === 'source' ? (
+              <SlitPlate result={shown.result} setup={frame.facts.setup} source={frame.subject} />
             ) : null}
             <Further result={shown.result} />
           </>

@@ -4,6 +4,7 @@ import { useRouter } from 'next/navigation';
 import { useState } from 'react';
 import { Budget } from '@/components/budget/budget';
 import { FrameConditions } from '@/components/conditions/frame-conditions';
+import { SlitPlate } from '@/components/slit/slit-plate';
 import { readingMay } from '@/lib/domain/life-cycle';
 import type { ReadingView, ReviewView } from '@/lib/domain/views';
 import { publishedOf, specificationOf, subjectName } from '@/lib/client/words';
@@ -175,6 +176,9 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             monteCarlo={shown === reading ? reading.monteCarlo : null}
           />
           <FrameConditions frameId={frame.id} reading={reading} enter={null} />
+          {frame.subject.kind === 'source' ? (
+            <SlitPlate result={shown.result} setup={frame.facts.setup} source={frame.subject} />
+          ) : null}
           <Further result={shown.result} />
           <ReadingsOfFrame
             readings={frame.readings}

@@ -181,7 +181,7 @@ export interface ReadingBrief {
 
 export type Subject =
   | { kind: 'unit'; unitId: number; serial: string; lotId: number; lot: string; specification: Specification }
-  | { kind: 'source'; sourceId: number; name: string; vacuumNm: number }
+  | { kind: 'source'; sourceId: number; name: string; vacuumNm: number; uNm: number }
   | { kind: 'none' };
 
 export interface FrameRow {

@@ -1,12 +1,12 @@
 import 'server-only';
 import type { Transaction } from 'sequelize';
 import { READING_STEPS } from '@/lib/domain/life-cycle';
+import { SCAN_MEDIA_TYPE } from '@/lib/domain/scan-result';
 import type { Specification } from '@/lib/domain/specification';
 import type { ComparisonFacts, ReferenceReading } from '@/lib/quantity/comparison';
 import { select } from './db';
 import { remountOf } from './queries/references';
 import { benchRule } from './reference-checks';
-import { isScan } from './scan-frames';
 
 /** With fewer degrees of freedom the scatter of the checks says less about mounting again than the setup does. */
 const FEWEST_DOF = 5;
@@ -53,7 +53,7 @@ async function nearest(
   side: 'before' | 'after',
   transaction?: Transaction,
 ): Promise<ReferenceReading | null> {
-  const unit = isScan({ mediaType }) ? 'mm' : 'px';
+  const unit = mediaType === SCAN_MEDIA_TYPE ? 'mm' : 'px';
   const [row] = await select<Row>(
     `SELECT r.id AS readingId, so.name AS source, f.received_at AS at, r.spacing_${unit} AS spacing, r.u_spacing_${unit} AS uSpacing,
        JSON_VALUE(rr.result_json, '$.dofSpacing') AS dof, so.vacuum_nm AS publishedVacuumNm, so.u_nm AS uPublishedNm

@@ -9,7 +9,7 @@ import { db, select } from '../db';
 import { openStop, standingOf } from '../reference-checks';
 import { fourValues } from '../setups';
 
-const SHOWN = 20;
+const SHOWN = 8;
 
 interface Row {
   id: number;
