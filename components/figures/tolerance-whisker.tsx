@@ -1,6 +1,6 @@
 import { useId, type ReactNode } from 'react';
 import type { Judgement, Specification } from '@/lib/domain/specification';
-import { formatQuantity, groupThousands } from '@/lib/quantity/format';
+import { formatEntered, formatQuantity } from '@/lib/quantity/format';
 import { MEDIUM_SHORT } from './quantity';
 
 /** Where a limit stands, in per cent of the width from the nominal in the middle. */
@@ -68,8 +68,7 @@ function Square({ x, y, side, verdict }: { x: number; y: number; side: number; v
   );
 }
 
-/** A limit as it was entered, without what binary digits add to it. */
-const limit = (nm: number | null) => (nm === null ? '' : groupThousands(String(Number(nm.toPrecision(10)))));
+const limit = (nm: number | null) => (nm === null ? '' : formatEntered(nm));
 
 function sentence({ specification, valueNm, expandedNm, judgement }: Props): string {
   const medium = MEDIUM_SHORT[specification.medium];

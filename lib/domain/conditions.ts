@@ -1,5 +1,6 @@
 /** Air and temperature under which frames are taken: what is entered, and what the engine is given. */
 import { z } from 'zod';
+import { formatEntered } from '@/lib/quantity/format';
 import type { Estimate, MeasuredAir } from './reading-result';
 
 /** A value as somebody read it off an instrument, inside ± half. */
@@ -47,7 +48,7 @@ export function airOf(c: Conditions): MeasuredAir | null {
 /** Temperature of the unit or source for the engine; null where none was entered. */
 export function sourceTemperatureOf({ sourceTemperatureC: read }: Conditions): Estimate | null {
   if (!read) return null;
-  const known = `read within ± ${Number(read.half.toPrecision(3))} °C, rectangular`;
+  const known = `read within ± ${formatEntered(read.half)} °C, rectangular`;
   return { value: read.value, u: uOf(read), known, dof: null, shape: 'rectangular' };
 }
 

@@ -104,6 +104,11 @@ export function formatIndex(n: number, u: number | null): string {
   return `${whole}.${(decimals.match(/.{1,3}/g) ?? []).join(THIN)}`;
 }
 
+/** A number as somebody entered it, without what binary digits add to it: 0.1 + 0.2 is "0.3". */
+export function formatEntered(value: number): string {
+  return groupThousands(String(Number(value.toPrecision(10))));
+}
+
 /** A share as a whole or one-decimal per cent: 0.042 -> "4.2 %". */
 export function formatPercent(share: number): string {
   const percent = 100 * share;

@@ -6,6 +6,7 @@ import type { FitPreview } from '@/lib/domain/views';
 import { airFromVacuum, airIndex, airIndexU, STANDARD_BENCH_AIR } from './air-index';
 import { combineBudget, type BudgetInput } from './budget';
 import { compareWith, type ComparisonFacts } from './comparison';
+import { formatEntered } from './format';
 import { uOfHalfWidth } from './monte-carlo';
 import { judge } from './verdict';
 
@@ -244,7 +245,7 @@ function temperatureStep(
   const at = specification?.atTemperature;
   if (!at) return null;
   if (!now) {
-    const missing = `The limits hold at ${at.temperatureC} °C, and the temperature of the unit was not entered.`;
+    const missing = `The limits hold at ${formatEntered(at.temperatureC)} °C, and the temperature of the unit was not entered.`;
     return { stepNm: 0, words: '', rows: [], missing };
   }
   const kelvin = at.temperatureC - now.value;
@@ -277,8 +278,8 @@ function temperatureStep(
     );
   const words =
     stepNm === 0
-      ? `The unit was at ${at.temperatureC} °C, where the limits hold.`
-      : `Carried from ${now.value} °C to ${at.temperatureC} °C, where the limits hold.`;
+      ? `The unit was at ${formatEntered(at.temperatureC)} °C, where the limits hold.`
+      : `Carried from ${formatEntered(now.value)} °C to ${formatEntered(at.temperatureC)} °C, where the limits hold.`;
   return { stepNm, words, rows, missing: null };
 }
 

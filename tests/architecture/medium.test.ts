@@ -23,6 +23,9 @@ const NO_WAVELENGTH: [file: string, line: RegExp, what: string][] = [
     'limits of a sentence that names the medium',
   ],
   ['components/reading/before-after.tsx', /difference/, 'change of a value'],
+  ['components/references/check-list.tsx', /deviationText|remount/, 'deviation, scatter'],
+  ['components/references/rule-form.tsx', /limitNm/, 'limit of a deviation'],
+  ['lib/server/reference-checks.ts', /deviationNm/, 'deviation and its limit; the value names the medium'],
   ['components/reading/further.tsx', /narrower than/, 'width of a line'],
   ['components/reading/result.tsx', /publishedVacuumNm|guardNm/, 'difference, guard band'],
 ];

@@ -7,6 +7,7 @@ import type { FitOptions } from '@/lib/domain/reading-result';
 import { isScanRegion, isScanResult, type FitResult, type ScanOptions } from '@/lib/domain/scan-result';
 import type { refitSchema } from '@/lib/domain/schemas';
 import type { RegionChange, SeenDigits, ServerFit } from '@/lib/domain/views';
+import { formatNumber } from '@/lib/quantity/format';
 import { previewOf, valueIn } from '@/lib/quantity/value-in';
 import type { CommandContext } from '../context';
 import { stackForFit } from '../band-stacks';
@@ -75,7 +76,7 @@ function tellDifference(frame: FrameRow, seen: SeenDigits, kept: FitResult): str
   });
   if (isSame) return null;
   log().warn({ frame: frame.id, engine: kept.engine, seen, kept: digits }, 'browser and server differ');
-  return `The server’s fit gives a spacing of ${spacingPx.toFixed(6)} px, this page showed ${seen.spacingPx.toFixed(6)} px. The server’s numbers are the ones kept; look at them before you go on.`;
+  return `The server’s fit gives a spacing of ${formatNumber(spacingPx, 6)} px, this page showed ${formatNumber(seen.spacingPx, 6)} px. The server’s numbers are the ones kept; look at them before you go on.`;
 }
 
 async function requireRight(

@@ -2,6 +2,8 @@ import {
   formatBytes,
   formatCalendarDate,
   formatConcise,
+  formatEntered,
+  formatIndex,
   formatDay,
   formatInstant,
   formatNumber,
@@ -28,6 +30,14 @@ describe('numbers as text', () => {
   });
   test('an uncertainty above a hundred has two figures as well', () => {
     expect(formatQuantity(12345, 1209)).toEqual({ value: '12\u2009300', uncertainty: '1\u2009200' });
+  });
+  test('as it was entered', () => {
+    expect(formatEntered(0.1 + 0.2)).toBe('0.3');
+    expect(formatEntered(-12345.5)).toBe('\u221212\u2009345.5');
+  });
+  test('an index of refraction in threes', () => {
+    expect(formatIndex(1.000271373, 5e-8)).toBe('1.000\u2009271\u2009373');
+    expect(formatIndex(1.000271373, null)).toBe('1.000\u2009271\u200937');
   });
   test('the concise form', () => {
     expect(formatConcise(634.8199, 0.357)).toBe('634.82(36)');
