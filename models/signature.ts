@@ -18,6 +18,8 @@ export interface Signature extends Model<InferAttributes<Signature>, InferCreati
   meaning: string;
   signedAt: Date;
   digest: string;
+  /** When the password that signs was typed; null: at the moment of signing. */
+  passwordAt: CreationOptional<Date | null>;
 }
 
 export function defineSignature(sequelize: Sequelize) {
@@ -32,6 +34,7 @@ export function defineSignature(sequelize: Sequelize) {
       meaning: { type: DataTypes.STRING(300), allowNull: false },
       signedAt: { type: DataTypes.DATE(3), allowNull: false },
       digest: { type: DataTypes.STRING(64), allowNull: false },
+      passwordAt: { type: DataTypes.DATE(3), allowNull: true },
     },
     { tableName: 'signatures', modelName: 'Signature' },
   );

@@ -4,6 +4,7 @@
  * database, which it checks.
  */
 import type { Role } from '@/lib/domain/roles';
+import { setupSchema } from '@/lib/domain/setup-schemas';
 import type { FitResult } from '@/lib/domain/scan-result';
 import type { Outcome } from '@/lib/domain/views';
 import { acceptReading } from '@/lib/server/commands/accept-reading';
@@ -13,6 +14,7 @@ import { addSetup } from '@/lib/server/commands/add-setup';
 import { addSource } from '@/lib/server/commands/add-source';
 import { addSpecification } from '@/lib/server/commands/add-specification';
 import { askReset } from '@/lib/server/commands/ask-reset';
+import { decideSetup } from '@/lib/server/commands/decide-setup';
 import { fitFrame } from '@/lib/server/commands/fit-frame';
 import { addUnits, openLot } from '@/lib/server/commands/open-lot';
 import { receiveFrame } from '@/lib/server/commands/receive-frame';
@@ -46,6 +48,7 @@ type Actor = CommandContext['actor'];
 
 interface Cast {
   admin: Actor;
+  qa: Actor;
   technicians: Actor[];
   reviewers: Actor[];
 }
@@ -70,6 +73,7 @@ async function people(): Promise<Cast> {
   const whoseFirstRole = (role: Role): Actor[] => made.filter((actor) => actor.roles[0] === role);
   return {
     admin: adminActor,
+    qa: whoseFirstRole('qa')[0],
     technicians: whoseFirstRole('technician'),
     reviewers: whoseFirstRole('reviewer'),
   };
@@ -86,7 +90,12 @@ async function constants(
     name: 'Reference R-1',
     vacuumNm: 632.9912,
     uNm: 0.00095,
-    note: 'Invented unit. Free-running He-Ne, 633 nm; value of CIPM 2007, Recommendation 2 (unstabilised), u 1.5e-6.',
+    kind: 'free-running-he-ne',
+    isReference: true,
+    certificate: 'CIPM 2007, Recommendation 2',
+    file: null,
+    due: null,
+    note: 'Invented unit; the published value of an unstabilised 633 nm laser, u 1.5e-6.',
   });
   const specifications = new Map<string, number>();
   for (const { key, name, nominalNm, half, rule } of DEMO_SPECIFICATIONS) {
@@ -130,9 +139,9 @@ async function enterSetup(
     certificate: CERTIFICATE,
     due: dueIn(due),
   });
-  await addSetup(
+  const { setupId } = await addSetup(
     { actor: cast.admin, at: daysAgo(setup.daysAgo, -60) },
-    {
+    setupSchema.parse({
       benchId,
       afterNumber,
       plate: setup.plate,
@@ -142,8 +151,14 @@ async function enterSetup(
       distanceMm: stated(setup.distanceMm, setup.dueInDays.distance),
       remountNm: { u: 0.058, dof: 29 },
       tone: 'auto',
+      camera: setup.camera,
       why: setup.why,
-    },
+    }),
+  );
+  if (setup.waits) return;
+  await decideSetup(
+    { actor: cast.qa, at: daysAgo(setup.daysAgo, -40) },
+    { setupId, decision: 'approved', reason: '' },
   );
 }
 
@@ -264,6 +279,10 @@ async function main(): Promise<void> {
     const fitted = await takeFrame(cast, frame, benches[frame.bench], subject);
     if (fitted) await decide(cast, frame, fitted, turn);
     if (turn % 20 === 19) console.log(`  ${turn + 1} of ${frames.length} demo frames taken and fitted`);
+  }
+  for (const setup of setups) {
+    await enterSetup(cast, benches[setup.bench], setup, numbers[setup.bench]);
+    numbers[setup.bench] += 1;
   }
   // One mail in the developer's mail page, the way a forgotten password sends it.
   await askReset(

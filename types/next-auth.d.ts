@@ -11,5 +11,7 @@ declare module 'next-auth' {
 declare module 'next-auth/jwt' {
   interface JWT {
     sessionVersion?: number;
+    /** Tells one sign-in of a person from another. */
+    sessionId?: string;
   }
 }

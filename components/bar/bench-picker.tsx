@@ -11,11 +11,12 @@ import type { BenchChoice } from '@/lib/domain/views';
 
 export type ChooseBench = (input: { benchId: number | null }) => Promise<ActionAnswer<unknown>>;
 
-/** Setup and fitness of a bench in two short lines. */
+/** Setup and fitness of a bench in short lines. */
 export function benchLines(bench: BenchChoice): string[] {
   return [
-    bench.setupNumber === null ? 'no setup yet' : `setup ${bench.setupNumber}`,
+    bench.setupNumber === null ? '' : `setup ${bench.setupNumber}`,
     bench.fitness.text,
+    bench.waitingNumber === null ? '' : `setup ${bench.waitingNumber} waits for QA`,
   ].filter(Boolean);
 }
 

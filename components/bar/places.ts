@@ -21,6 +21,7 @@ export const AFTER: readonly Place[] = [
 const IN_MENU: readonly (Place & { needs: Action })[] = [
   { href: '/specifications', word: 'Specifications', needs: 'lots.see' },
   { href: '/sources', word: 'Sources', needs: 'charts.see' },
+  { href: '/withdrawals', word: 'Withdrawals', needs: 'readings.withdraw' },
   { href: '/people', word: 'People', needs: 'people.see' },
   { href: '/log', word: 'Log', needs: 'log.see' },
 ];

@@ -58,6 +58,12 @@ const STRIKE = (
     <path d="M0 10H20" stroke="currentColor" strokeWidth="2.25" />
   </>
 );
+const CROSS = (
+  <>
+    <path d="M0 1.5 20 18.5M0 18.5 20 1.5" stroke="var(--cut,var(--ground))" strokeWidth="5" />
+    <path d="M0 1.5 20 18.5M0 18.5 20 1.5" stroke="currentColor" strokeWidth="2" />
+  </>
+);
 const HOLLOW_SQUARE = (
   <rect x="4" y="4" width="12" height="12" fill="none" stroke="currentColor" strokeWidth="2.4" />
 );
@@ -101,6 +107,7 @@ const SHAPES: Record<MarkKind, ReactNode> = {
   'reading-review': <Bars sides="half" middle="full" />,
   'reading-returned': <Bars sides="full" middle="full" over={STRIKE} />,
   'reading-accepted': <Bars sides="full" middle="full" />,
+  'reading-withdrawn': <Bars sides="full" middle="full" over={CROSS} />,
   'reading-replaced': (
     <>
       <g transform="scale(1 .74)">

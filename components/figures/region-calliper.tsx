@@ -7,10 +7,12 @@ import {
   moveCentre,
   moveJaw,
   onRegion,
+  stepSize,
   TILT_STEP_DEG,
   turn,
   wrapDeg,
   type Picture,
+  type StepSize,
 } from '@/lib/client/region';
 import type { Region } from '@/lib/domain/reading-result';
 import { formatNumber } from '@/lib/quantity/format';
@@ -58,8 +60,7 @@ function dragged(drag: Drag, xPx: number, yPx: number): Region {
 }
 
 /** One press of an arrow key on a part; null for keys that are not its own. */
-function nudged(part: Part, region: Region, key: string, big: boolean): Region | null {
-  const px = big ? 10 : 1;
+function nudged(part: Part, region: Region, key: string, px: StepSize): Region | null {
   const dx = key === 'ArrowRight' ? px : key === 'ArrowLeft' ? -px : 0;
   const dy = key === 'ArrowDown' ? px : key === 'ArrowUp' ? -px : 0;
   if (!dx && !dy) return null;
@@ -108,7 +109,7 @@ export function RegionCalliper({ region, picture, zoom, width, height, onChange 
     drag.current = null;
   };
   const press = (part: Part) => (event: KeyboardEvent<SVGGElement>) => {
-    const next = nudged(part, region, event.key, event.shiftKey);
+    const next = nudged(part, region, event.key, stepSize(event));
     if (!next) return;
     event.preventDefault();
     change(next);

@@ -3,6 +3,7 @@
 import { useRef, type KeyboardEvent, type PointerEvent } from 'react';
 import { lightRgb } from '@/lib/client/light';
 import { useLook } from '@/lib/client/look';
+import { stepSize } from '@/lib/client/region';
 import { moveEdge, placesOf, pressMm } from '@/lib/client/scan-region';
 import { useSize } from '@/lib/client/use-size';
 import type { ScanDrawing, ScanRegion } from '@/lib/domain/scan-result';
@@ -167,7 +168,7 @@ function Jaw({ side, at, region, length, mmPerPx, top, bottom, svg, onChange }: 
     const sign = event.key === 'ArrowRight' ? 1 : event.key === 'ArrowLeft' ? -1 : 0;
     if (!sign || !onChange) return;
     event.preventDefault();
-    onChange(moveEdge(region, side, sign * pressMm(length) * (event.shiftKey ? 10 : 1)));
+    onChange(moveEdge(region, side, sign * pressMm(length) * stepSize(event)));
   };
   const foot = 6 * side;
   const middle = (top + bottom) / 2;

@@ -4,7 +4,7 @@ import { Mark, SaidVerdict, stateOf } from '@/components/figures/marks';
 import { Quantity } from '@/components/figures/quantity';
 import { ToleranceWhisker } from '@/components/figures/tolerance-whisker';
 import { When } from '@/components/figures/when';
-import type { FrameRow } from '@/lib/domain/views';
+import { RETURN_WORDS, type FrameRow } from '@/lib/domain/views';
 import { specificationOf, subjectLine, subjectName } from '@/lib/client/words';
 import { FramePicture } from './frame-picture';
 import { MmScale } from './mm-scale';
@@ -55,8 +55,12 @@ function Row({ frame, spanMm, href }: { frame: FrameRow; spanMm: number; href: s
         </div>
         <div>
           <div className="state">{state.word}</div>
-          <div className="sub">
-            <When at={frame.receivedAt} />
+          <div className="sub" title={frame.returned?.words}>
+            {frame.returned ? (
+              `${RETURN_WORDS[frame.returned.reason]}${frame.returned.words ? `: ${frame.returned.words}` : ''}`
+            ) : (
+              <When at={frame.receivedAt} />
+            )}
           </div>
         </div>
       </div>

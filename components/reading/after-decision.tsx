@@ -34,9 +34,14 @@ export function AfterDecision({ frame, done, left, nextId }: Props) {
       }
       act={
         nextId ? (
-          <Link className={buttonClass('main')} href={`/review/${nextId}`}>
-            Next
-          </Link>
+          <div className="flex flex-wrap gap-3">
+            {done === 'accepted' ? <WithdrawLink frame={frame} /> : null}
+            <Link className={buttonClass('main')} href={`/review/${nextId}`}>
+              Next
+            </Link>
+          </div>
+        ) : done === 'accepted' ? (
+          <WithdrawLink frame={frame} />
         ) : (
           <Link className={buttonClass()} href="/frames">
             Go to Frames
@@ -50,5 +55,14 @@ export function AfterDecision({ frame, done, left, nextId }: Props) {
         ? 'Nothing is left to review.'
         : `${count(left, 'reading is', 'readings are')} left to review.`}
     </Notice>
+  );
+}
+
+/** There is no way back but this one. */
+function WithdrawLink({ frame }: { frame: FrameView }) {
+  return (
+    <Link className={buttonClass()} href={`/frames/${frame.id}?reading=${frame.shown?.id ?? ''}`}>
+      Withdraw…
+    </Link>
   );
 }

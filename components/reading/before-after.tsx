@@ -2,8 +2,10 @@ import { SaidVerdict } from '@/components/figures/marks';
 import { MEDIUM_SHORT } from '@/components/figures/quantity';
 import { spacingOf } from '@/lib/domain/placed-strip';
 import type { ReadingView } from '@/lib/domain/views';
-import { formatNumber, formatSigned, placesFor } from '@/lib/quantity/format';
+import { formatNumber, placesFor } from '@/lib/quantity/format';
+import { moveFrom } from '@/lib/domain/move';
 import type { PreviewState } from '@/lib/client/use-preview-fit';
+import { moveText } from './move-text';
 import { valueText } from './readings-of-frame';
 
 interface Props {
@@ -15,18 +17,13 @@ interface Props {
 export function BeforeAfter({ before, preview }: Props) {
   const { fit } = preview;
   const used = fit ? fit.result.orders.filter((order) => order.used).length : null;
-  const difference =
-    fit && before?.wavelengthNm != null && fit.wavelengthNm !== null
-      ? fit.wavelengthNm - before.wavelengthNm
+  const change =
+    fit && before?.wavelengthNm != null
+      ? moveFrom({ valueNm: before.wavelengthNm, uNm: before.uNm }, fit.wavelengthNm)
       : null;
   const places = placesFor(fit?.expandedNm ?? before?.expandedNm ?? 0.5);
   return (
-    <section
-      className="ask mb-3"
-      aria-label="Before and after the change"
-      aria-live="polite"
-      aria-busy={preview.working}
-    >
+    <section className="ask mb-3" aria-label="Before and after the change" aria-busy={preview.working}>
       {preview.problem ? (
         <p className="text-small">
           <b>No fit with this region.</b> <span className="text-ink-2">{preview.problem}</span>
@@ -64,11 +61,13 @@ export function BeforeAfter({ before, preview }: Props) {
                 <td>{fit?.judgement ? <SaidVerdict verdict={fit.judgement.verdict} /> : null}</td>
               </tr>
             ) : null}
-            {difference === null ? null : (
+            {change === null ? null : (
               <tr>
                 <th scope="row">change</th>
                 <td />
-                <td>{formatSigned(difference, places)} nm</td>
+                <td>
+                  <b>{moveText(change, places)}</b>
+                </td>
               </tr>
             )}
           </tbody>

@@ -12,8 +12,12 @@ import type { Answers } from './look-answers';
 interface Props {
   reading: ReadingView;
   answers: Answers;
+  /** Why the value was moved, where that is still to be said. */
+  moveReason: string;
   /** Why Accept is closed; null when it is open. */
   closed: string | null;
+  /** Until when a password typed before still signs. */
+  passwordUntil: string | null;
   mayReturn: boolean;
   acceptReading: AcceptReading;
   onReturn: () => void;
@@ -21,15 +25,28 @@ interface Props {
   onRefused: (refusal: Refusal | null) => void;
 }
 
-/** Return and Accept, apart from each other. Accepting signs, so it asks for the password. */
+/** True while a password typed before still signs; turns false by itself. */
+function useRecentPassword(until: string | null): boolean {
+  const [over, setOver] = useState<string | null>(null);
+  useEffect(() => {
+    if (until === null) return undefined;
+    const timer = setTimeout(() => setOver(until), Math.max(0, Date.parse(until) - Date.now()));
+    return () => clearTimeout(timer);
+  }, [until]);
+  return until !== null && over !== until;
+}
+
+/** Return and Accept, apart from each other. Accepting signs, so it asks for the password or a recent one. */
 export function Decision(props: Props) {
-  const { closed, mayReturn, onReturn } = props;
+  const { closed, mayReturn, onReturn, passwordUntil } = props;
   const [signing, setSigning] = useState(false);
-  if (signing && closed === null) return <Sign {...props} onBack={() => setSigning(false)} />;
+  const recent = useRecentPassword(passwordUntil);
+  if (signing && closed === null) return <Sign {...props} recent={recent} onBack={() => setSigning(false)} />;
   return (
     <>
       <p className="why-not" aria-live="polite">
-        {closed ?? 'Accepting asks for your password.'}
+        {closed ??
+          (recent ? `Accepting signs; ${passwordWords(passwordUntil)}` : 'Accepting asks for your password.')}
       </p>
       <div className="decide">
         <Button disabled={!mayReturn} onClick={onReturn}>
@@ -47,19 +64,34 @@ export function Decision(props: Props) {
   );
 }
 
-function Sign({
-  reading,
-  answers,
-  acceptReading,
-  onAccepted,
-  onRefused,
-  onBack,
-}: Props & { onBack: () => void }) {
+/** "the password you typed counts until 09:47." */
+function passwordWords(until: string | null): string {
+  const at = until ? new Date(until).toLocaleTimeString('en-GB', { hour: '2-digit', minute: '2-digit' }) : '';
+  return `the password you typed counts until ${at}.`;
+}
+
+type SignProps = Props & { recent: boolean; onBack: () => void };
+
+function Sign(props: SignProps) {
+  const {
+    reading,
+    answers,
+    moveReason,
+    passwordUntil,
+    recent,
+    acceptReading,
+    onAccepted,
+    onRefused,
+    onBack,
+  } = props;
   const [password, setPassword] = useState('');
   const [wrong, setWrong] = useState('');
   const [waiting, start] = useTransition();
   const form = useRef<HTMLFormElement>(null);
-  useEffect(() => form.current?.querySelector('input')?.focus(), []);
+  // The service may know better than this page that the time is over.
+  const [refused, setRefused] = useState(false);
+  const typed = !recent || refused;
+  useEffect(() => form.current?.querySelector<HTMLElement>('input, [type=submit]')?.focus(), [typed]);
 
   const sign = () =>
     start(async () => {
@@ -69,13 +101,20 @@ function Sign({
           : [],
       );
       const answer = await callAction(() =>
-        acceptReading({ readingId: reading.id, version: reading.version, password, answers: given }),
+        acceptReading({
+          readingId: reading.id,
+          version: reading.version,
+          password,
+          answers: given,
+          moveReason,
+        }),
       );
       if (answer.ok) {
         onAccepted();
         return;
       }
       setPassword('');
+      setRefused(true);
       if (answer.code === 'WRONG_PASSWORD' || answer.code === 'TOO_MANY' || answer.fields?.password) {
         setWrong(answer.fields?.password ?? answer.message);
       } else onRefused({ code: answer.code, message: answer.message });
@@ -91,20 +130,26 @@ function Sign({
       }}
       onKeyDown={(event) => event.key === 'Escape' && onBack()}
     >
-      <Field
-        label="Your password signs it"
-        type="password"
-        autoComplete="current-password"
-        value={password}
-        error={wrong || undefined}
-        onChange={(event) => {
-          setPassword(event.target.value);
-          setWrong('');
-        }}
-      />
+      {typed ? (
+        <Field
+          label="Your password signs it"
+          type="password"
+          autoComplete="current-password"
+          value={password}
+          error={wrong || undefined}
+          onChange={(event) => {
+            setPassword(event.target.value);
+            setWrong('');
+          }}
+        />
+      ) : (
+        <p className="text-small text-ink-2">
+          You sign with your name; {passwordWords(passwordUntil)} The signature says so.
+        </p>
+      )}
       <div className="decide mt-3">
         <Button onClick={onBack}>Back</Button>
-        <Button kind="main" type="submit" busy={waiting} disabled={!password}>
+        <Button kind="main" type="submit" busy={waiting} disabled={typed && !password}>
           Sign and accept
         </Button>
       </div>

@@ -12,6 +12,7 @@ import { LiveNote } from './live-note';
 import { PhotoRegion } from './photo-region';
 import { RegionFields } from './region-fields';
 import { ScanPart } from './scan-part';
+import { UndoRedo } from './undo-redo';
 
 /** What a region can lie on: the picture's size or the scan's length; null for a file that gives neither. */
 export function boundsOf(frame: FrameView): Picture | ScanRegion | null {
@@ -74,6 +75,7 @@ export function PhotoPart({ frame, desk, mayFit, onKeys }: PhotoProps) {
         onChange={change}
       />
       <RegionFields region={region} onChange={change} onKeys={onKeys} />
+      {mayFit ? <UndoRedo desk={desk} /> : null}
     </>
   );
 }

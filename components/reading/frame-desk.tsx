@@ -5,13 +5,14 @@ import { Budget } from '@/components/budget/budget';
 import { FrameConditions, type EnterFrameConditions } from '@/components/conditions/frame-conditions';
 import { SlitPlate } from '@/components/slit/slit-plate';
 import { Button } from '@/components/ui/button';
-import { FRAME_WORDS } from '@/lib/domain/life-cycle';
-import type { FrameView, May } from '@/lib/domain/views';
+import { FRAME_WORDS, readingMayBeFollowed } from '@/lib/domain/life-cycle';
+import type { FrameView, May, PersonRef } from '@/lib/domain/views';
 import { publishedOf, specificationOf } from '@/lib/client/words';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
-import { TILT_STEP_DEG } from '@/lib/client/region';
-import type { KeepFit, SendToReview } from './actions';
+import { regionKeys } from '@/lib/client/region-keys';
+import type { KeepFit, SendToReview, WithdrawalActions } from './actions';
+import { Comments, type CommentsGiven } from './comments';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
 import { boundsOf, PhotoPart, StageNote, StagePart, useBounds, usePicked } from './desk-parts';
@@ -21,8 +22,11 @@ import { KeysSheet } from './keys-sheet';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
 import { Result } from './result';
+import { SaidResult } from './said-result';
 import { SendBox } from './send-box';
+import { MoveBox } from './move-box';
 import { FrameStory } from './frame-story';
+import { WithdrawBox } from './withdraw-box';
 import { NewFitStage, scaleOfFit, uScaleOfFit } from './new-fit-stage';
 
 interface Props {
@@ -31,10 +35,22 @@ interface Props {
   keepFit: KeepFit;
   sendToReview: SendToReview;
   enterConditions: EnterFrameConditions;
+  withdrawal: WithdrawalActions;
+  commenting: CommentsGiven;
+  me: PersonRef;
 }
 
 /** One frame as the technician sees it: photo, stage, result, and what can be done with it. */
-export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }: Props) {
+export function FrameDesk({
+  frame,
+  may,
+  keepFit,
+  sendToReview,
+  enterConditions,
+  withdrawal,
+  commenting,
+  me,
+}: Props) {
   const reading = frame.shown;
   const desk = useRegionChange({
     frameId: frame.id,
@@ -48,9 +64,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }
   const [refusal, setRefusal] = useState<Refusal | null>(null);
   const [sheet, setSheet] = useState(false);
   const keys = useShortcuts({
-    '[': () => may.fit && desk.turnBy(-TILT_STEP_DEG),
-    ']': () => may.fit && desk.turnBy(TILT_STEP_DEG),
-    x: () => may.fit && picked !== null && desk.toggleOrder(picked),
+    ...regionKeys(desk, may.fit, picked),
     '?': () => setSheet(true),
   });
   const fit = desk.preview.fit;
@@ -63,6 +77,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }
       >
         <PhotoPart frame={frame} desk={desk} mayFit={may.fit} onKeys={() => setSheet(true)} />
         {shown ? <Findings findings={fit ? fit.result.findings : (reading?.findings ?? [])} /> : null}
+        {reading ? <Comments {...commenting} readingId={reading.id} /> : null}
       </section>
       {reading ? (
         <StagePart reading={reading} desk={desk} mayFit={may.fit} picked={picked} onPick={pick} />
@@ -97,6 +112,15 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }
           </div>
         ) : null}
         <FrameStory frame={frame} />
+        {reading ? (
+          <WithdrawBox reading={reading} me={me} mayWithdraw={may.withdraw} {...withdrawal} />
+        ) : null}
+        {reading && may.fit && readingMayBeFollowed(reading.status) && !desk.change ? (
+          <Button className="mb-3 w-full" busy={desk.preview.working} onClick={desk.fitAsItStands}>
+            Make a new reading in its place
+          </Button>
+        ) : null}
+        <SaidResult before={reading} changed={desk.change !== null} preview={desk.preview} />
         {desk.change ? (
           <>
             <BeforeAfter before={reading} preview={desk.preview} />
@@ -111,6 +135,8 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }
               onRefused={setRefusal}
             />
           </>
+        ) : reading ? (
+          <MoveBox reading={reading} reason="" />
         ) : null}
         {shown ? (
           <>
@@ -146,7 +172,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }
                 enter={may.send && desk.change === null ? enterConditions : null}
               />
             ) : null}
-            {frame.subject.kind === 'source' ? (
+            {frame.subject.kind === 'source' && frame.subject.isReference ? (
               <SlitPlate result={shown.result} setup={frame.facts.setup} source={frame.subject} />
             ) : null}
             <Further result={shown.result} />
@@ -154,6 +180,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, enterConditions }
         ) : null}
         {frame.readings.length ? (
           <ReadingsOfFrame
+            frameId={frame.id}
             readings={frame.readings}
             shownId={reading?.id ?? null}
             hrefOf={(r) => `/frames/${frame.id}?reading=${r.id}`}

@@ -27,6 +27,11 @@ export function FrameStory({ frame }: { frame: FrameView }) {
       {shown?.signature ? (
         <p className="mt-1 text-small text-ink-2">
           Signed by {shown.signature.personName}, <When at={shown.signature.at} />
+          {shown.signature.passwordAt && shown.signature.passwordAt < shown.signature.at ? (
+            <>
+              , with the password typed <When at={shown.signature.passwordAt} />
+            </>
+          ) : null}
         </p>
       ) : null}
       {shown?.sentBy && shown.sentAt && !shown.signature ? (

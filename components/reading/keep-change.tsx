@@ -3,12 +3,17 @@
 import { useRouter } from 'next/navigation';
 import { useState, useTransition } from 'react';
 import { Button } from '@/components/ui/button';
+import { Field } from '@/components/ui/field';
 import { callAction } from '@/lib/client/call-action';
 import { digitsOf } from '@/lib/client/use-preview-fit';
 import type { RegionDesk } from '@/lib/client/use-region-change';
 import type { ErrorCode } from '@/lib/domain/errors';
+import { LIMITS } from '@/lib/domain/limits';
+import { moveFrom, moveNeedsReason } from '@/lib/domain/move';
 import type { ReadingView } from '@/lib/domain/views';
+import { placesFor } from '@/lib/quantity/format';
 import type { KeepFit } from './actions';
+import { moveText } from './move-text';
 
 export interface Refusal {
   code: ErrorCode;
@@ -47,10 +52,14 @@ export function KeepChange({
   const [waiting, start] = useTransition();
   const [kept, setKept] = useState<{ differs: string | null; readingId: number } | null>(null);
   const { preview } = desk;
+  const [reason, setReason] = useState(reading?.moveReason?.words ?? '');
+  const move = moveFrom(reading?.first ?? null, preview.fit?.wavelengthNm ?? null);
+  const asks = moveNeedsReason(move);
   const show = (readingId: number) => router.replace(hrefOf(readingId), { scroll: false });
   const keep = () =>
     start(async () => {
       if (!desk.change) return;
+      const trials = desk.trials.take();
       const answer = await callAction(() =>
         keepFit({
           ...desk.change!,
@@ -59,9 +68,12 @@ export function KeepChange({
           frameId,
           fromReadingId: reading?.id ?? null,
           fromVersion: reading?.version ?? 0,
+          trials,
+          moveReason: asks ? reason : '',
         }),
       );
       if (!answer.ok) {
+        desk.trials.putBack(trials);
         onRefused({ code: answer.code, message: answer.message });
         return;
       }
@@ -83,6 +95,17 @@ export function KeepChange({
   }
   return (
     <div className="mb-3 grid grid-cols-2 gap-2">
+      {asks && move ? (
+        <div className="col-span-2">
+          <Field
+            label={`Why the value moves ${moveText(move, placesFor(preview.fit?.expandedNm ?? 0.5))}`}
+            help="From the first fit. It can be kept without, not accepted."
+            maxLength={LIMITS.wordsLength}
+            value={reason}
+            onChange={(event) => setReason(event.target.value)}
+          />
+        </div>
+      ) : null}
       <Button
         kind={main ? 'main' : 'plain'}
         busy={waiting || kept !== null}

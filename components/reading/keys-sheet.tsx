@@ -17,15 +17,19 @@ type Keys = readonly [string[], string][];
 const CALLIPER: Keys = [
   [['←', '→', '↑', '↓'], 'on a part of the calliper: 1 px; on the orders: the next order'],
   [['Shift', '←'], 'on a part of the calliper: 10 px'],
-  [['['], 'tilt 0.02° less'],
-  [[']'], 'tilt 0.02° more'],
+  [['Alt', '←'], 'on a part of the calliper: 0.1 px'],
+  [['↑', '↓'], 'in a field of the region: 1 px, 0.02°; Shift and Alt as above'],
+  [['[', ']'], 'tilt 0.02° less or more; with Shift 0.2°, with Alt 0.002°'],
 ];
 const JAWS: Keys = [
   [['←', '→'], 'on a jaw: one step; on the orders: the next order'],
   [['Shift', '←'], 'on a jaw: ten steps'],
+  [['Alt', '←'], 'on a jaw: a tenth of a step'],
 ];
 const EVERYWHERE: Keys = [
   [['x'], 'leave the picked order out, or take it back'],
+  [['Ctrl', 'Z'], 'undo the last change of the region'],
+  [['Ctrl', 'Shift', 'Z'], 'do it again'],
   [['n'], 'next in the queue'],
   [['p'], 'previous in the queue'],
   [['?'], 'this sheet'],

@@ -16,10 +16,11 @@ interface Props {
   readings: readonly ReadingBrief[];
   shownId: number | null;
   hrefOf: (reading: ReadingBrief) => string;
+  frameId: number;
 }
 
 /** Every fit of this frame, newest first: none of them is ever changed. */
-export function ReadingsOfFrame({ readings, shownId, hrefOf }: Props) {
+export function ReadingsOfFrame({ readings, shownId, hrefOf, frameId }: Props) {
   const medium = readings[0]?.medium ?? 'air';
   return (
     <div className="sec">
@@ -44,6 +45,13 @@ export function ReadingsOfFrame({ readings, shownId, hrefOf }: Props) {
           </Link>
         ))}
       </div>
+      <Link
+        className="link mt-1 inline-flex min-h-[44px] items-center text-small"
+        href={`/frames/${frameId}/history`}
+        prefetch={false}
+      >
+        The whole history
+      </Link>
     </div>
   );
 }

@@ -4,7 +4,8 @@ import { useState } from 'react';
 import { Button } from '@/components/ui/button';
 import { WordPick } from '@/components/ui/choice';
 import { NumberField } from '@/components/ui/number-field';
-import { TILT_STEP_DEG } from '@/lib/client/region';
+import { STEPS, stepSize, TILT_STEP_DEG, type StepSize } from '@/lib/client/region';
+import { placesShown, stepText } from '@/lib/client/step-text';
 import type { Region } from '@/lib/domain/reading-result';
 
 type Key = keyof Region;
@@ -27,9 +28,10 @@ interface Props {
 /** The region in numbers; one pair of buttons moves the chosen one. */
 export function RegionFields({ region, onChange, onKeys }: Props) {
   const [chosen, setChosen] = useState<Key>('lengthPx');
-  const [big, setBig] = useState(false);
-  const step = (chosen === 'angleDeg' ? TILT_STEP_DEG : 1) * (big ? 10 : 1);
-  const move = (sign: 1 | -1) => onChange?.({ ...region, [chosen]: region[chosen] + sign * step });
+  const [size, setSize] = useState<StepSize>(1);
+  const unitStep = (key: Key) => (key === 'angleDeg' ? TILT_STEP_DEG : 1);
+  const move = (key: Key, sign: 1 | -1, by: StepSize) =>
+    onChange?.({ ...region, [key]: region[key] + sign * by * unitStep(key) });
   const name =
     FIELDS.find((field) => field.key === chosen)
       ?.label.join('')
@@ -44,12 +46,16 @@ export function RegionFields({ region, onChange, onKeys }: Props) {
           </button>
         </span>
         <div className="words" role="group" aria-label="One press moves">
-          <WordPick chosen={!big} onChoose={() => setBig(false)}>
-            {chosen === 'angleDeg' ? '0.02°' : '1 px'}
-          </WordPick>
-          <WordPick chosen={big} onChoose={() => setBig(true)}>
-            {chosen === 'angleDeg' ? '0.2°' : '10 px'}
-          </WordPick>
+          {STEPS.map((by) => (
+            <WordPick key={by} chosen={size === by} onChoose={() => setSize(by)}>
+              <span>
+                {stepText(by * unitStep(chosen))}
+                {by === 10 || chosen === 'angleDeg' ? (
+                  <span className="max-[1240px]:hidden">{chosen === 'angleDeg' ? '°' : ' px'}</span>
+                ) : null}
+              </span>
+            </WordPick>
+          ))}
         </div>
       </div>
       <div className="roi">
@@ -64,19 +70,21 @@ export function RegionFields({ region, onChange, onKeys }: Props) {
             }
             heard={field.heard}
             unit={field.unit}
-            places={field.places}
+            places={placesShown(region[field.key], field.places)}
+            long={placesShown(region[field.key], field.places) > field.places}
             value={region[field.key]}
             chosen={chosen === field.key}
             disabled={!onChange}
             onChoose={() => setChosen(field.key)}
             onChange={(value) => onChange?.({ ...region, [field.key]: value })}
+            onStep={(sign, keys) => move(field.key, sign, stepSize(keys))}
           />
         ))}
         <div className="pair-keys">
-          <Button aria-label={`Less ${name}`} disabled={!onChange} onClick={() => move(-1)}>
+          <Button aria-label={`Less ${name}`} disabled={!onChange} onClick={() => move(chosen, -1, size)}>
             −
           </Button>
-          <Button aria-label={`More ${name}`} disabled={!onChange} onClick={() => move(1)}>
+          <Button aria-label={`More ${name}`} disabled={!onChange} onClick={() => move(chosen, 1, size)}>
             +
           </Button>
         </div>

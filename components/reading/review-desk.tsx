@@ -6,13 +6,14 @@ import { Budget } from '@/components/budget/budget';
 import { FrameConditions } from '@/components/conditions/frame-conditions';
 import { SlitPlate } from '@/components/slit/slit-plate';
 import { readingMay } from '@/lib/domain/life-cycle';
-import type { ReadingView, ReviewView } from '@/lib/domain/views';
+import type { PersonRef, ReadingView, ReviewView } from '@/lib/domain/views';
 import { publishedOf, specificationOf, subjectName } from '@/lib/client/words';
-import { TILT_STEP_DEG } from '@/lib/client/region';
+import { regionKeys } from '@/lib/client/region-keys';
 import { useRegionChange } from '@/lib/client/use-region-change';
 import { useShortcuts } from '@/lib/client/use-shortcuts';
-import type { AcceptReading, KeepFit, ReturnReading, SetOutcome } from './actions';
+import type { AcceptReading, KeepFit, ReturnReading, SetOutcome, WithdrawalActions } from './actions';
 import { AfterDecision } from './after-decision';
+import { Comments, type CommentsGiven } from './comments';
 import { BeforeAfter } from './before-after';
 import { ConflictNotice } from './conflict';
 import { Decision } from './decision';
@@ -22,11 +23,14 @@ import { FrameStory } from './frame-story';
 import { KeepChange, type Refusal } from './keep-change';
 import { KeysSheet } from './keys-sheet';
 import { LookAnswers, whyChecksClose, type Answers } from './look-answers';
+import { lacksMoveReason, MoveBox } from './move-box';
 import { OutcomeLine } from './outcome-line';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
 import { Result } from './result';
 import { ReturnForm } from './return-form';
+import { WithdrawBox } from './withdraw-box';
+import { SaidResult } from './said-result';
 
 interface Props {
   view: ReviewView;
@@ -35,15 +39,21 @@ interface Props {
   acceptReading: AcceptReading;
   returnReading: ReturnReading;
   setOutcome: SetOutcome;
+  withdrawal: WithdrawalActions;
+  commenting: CommentsGiven;
+  me: PersonRef;
 }
 
 /** One reading under a second pair of eyes. */
-export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReading, setOutcome }: Props) {
+export function ReviewDesk(props: Props) {
+  const { view, reading, keepFit, acceptReading, returnReading, setOutcome, withdrawal, commenting, me } =
+    props;
   const { frame, may, queue } = view;
   const router = useRouter();
   const bounds = useBounds(frame);
   const [picked, pick] = usePicked();
   const [answers, setAnswers] = useState<Answers>({});
+  const [moveReason, setMoveReason] = useState('');
   const [mode, setMode] = useState<'checks' | 'return'>('checks');
   const [refusal, setRefusal] = useState<Refusal | null>(null);
   const [done, setDone] = useState<'accepted' | 'returned' | null>(null);
@@ -61,9 +71,7 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
   });
   const go = (id: number | null) => id !== null && router.push(`/review/${id}`);
   const keys = useShortcuts({
-    '[': () => mayFit && desk.turnBy(-TILT_STEP_DEG),
-    ']': () => mayFit && desk.turnBy(TILT_STEP_DEG),
-    x: () => mayFit && picked !== null && desk.toggleOrder(picked),
+    ...regionKeys(desk, mayFit, picked),
     n: () => go(queue.nextId),
     p: () => go(queue.previousId),
     '?': () => setSheet(true),
@@ -79,7 +87,9 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
   const shown = fit ?? reading;
   const closed = desk.change
     ? 'Keep or drop your change of the region first.'
-    : (may.acceptBarred ?? whyChecksClose(reading.findings, answers));
+    : (may.acceptBarred ??
+      whyChecksClose(reading.findings, answers) ??
+      (lacksMoveReason(reading, moveReason) ? 'Accept opens once the moved value has a reason.' : null));
   const unit = frame.subject.kind === 'unit' ? frame.subject : null;
 
   return (
@@ -132,10 +142,15 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
               onAnswer={(check, answer) => setAnswers({ ...answers, [check]: answer })}
             />
           )}
+          <Comments {...commenting} readingId={reading.id} />
         </section>
         <StagePart reading={reading} desk={desk} mayFit={mayFit} picked={picked} onPick={pick} />
         <section className="right" aria-label="Result and decision">
           {open ? null : <FrameStory frame={frame} />}
+          {done === null ? (
+            <WithdrawBox reading={reading} me={me} mayWithdraw={may.withdraw} {...withdrawal} />
+          ) : null}
+          <SaidResult before={reading} changed={desk.change !== null} preview={desk.preview} />
           {desk.change ? (
             <>
               <BeforeAfter before={reading} preview={desk.preview} />
@@ -149,7 +164,9 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
                 onRefused={setRefusal}
               />
             </>
-          ) : null}
+          ) : (
+            <MoveBox reading={reading} reason={moveReason} onReason={open ? setMoveReason : undefined} />
+          )}
           <Result
             result={shown.result}
             wavelengthNm={shown.wavelengthNm}
@@ -176,11 +193,12 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
             monteCarlo={shown === reading ? reading.monteCarlo : null}
           />
           <FrameConditions frameId={frame.id} reading={reading} enter={null} />
-          {frame.subject.kind === 'source' ? (
+          {frame.subject.kind === 'source' && frame.subject.isReference ? (
             <SlitPlate result={shown.result} setup={frame.facts.setup} source={frame.subject} />
           ) : null}
           <Further result={shown.result} />
           <ReadingsOfFrame
+            frameId={frame.id}
             readings={frame.readings}
             shownId={reading.id}
             hrefOf={(r) =>
@@ -201,6 +219,8 @@ export function ReviewDesk({ view, reading, keepFit, acceptReading, returnReadin
                 reading={reading}
                 answers={answers}
                 closed={closed}
+                moveReason={moveReason}
+                passwordUntil={view.passwordUntil}
                 mayReturn={may.return}
                 acceptReading={acceptReading}
                 onReturn={() => setMode('return')}

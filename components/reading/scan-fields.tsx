@@ -4,9 +4,10 @@ import { useState } from 'react';
 import { Button } from '@/components/ui/button';
 import { WordPick } from '@/components/ui/choice';
 import { NumberField } from '@/components/ui/number-field';
+import { STEPS, stepSize, type StepSize } from '@/lib/client/region';
 import { placesOf, pressMm } from '@/lib/client/scan-region';
+import { placesShown, stepText } from '@/lib/client/step-text';
 import type { ScanRegion } from '@/lib/domain/scan-result';
-import { formatNumber } from '@/lib/quantity/format';
 
 type Key = 'fromMm' | 'toMm' | 'detectorMm';
 
@@ -29,7 +30,7 @@ interface Props {
 /** Region and detector of a scan in numbers; one pair of buttons moves the chosen one. */
 export function ScanFields({ length, region, detectorMm, onChange, onDetector, onKeys }: Props) {
   const [chosen, setChosen] = useState<Key>('fromMm');
-  const [big, setBig] = useState(false);
+  const [size, setSize] = useState<StepSize>(1);
   const press = pressMm(length);
   const places = placesOf(length);
   const values: Record<Key, number> = { ...region, detectorMm: detectorMm ?? 0 };
@@ -37,8 +38,7 @@ export function ScanFields({ length, region, detectorMm, onChange, onDetector, o
     if (key !== 'detectorMm') onChange?.({ ...region, [key]: value });
     else onDetector?.(value > 0 ? Number(Math.min(1000, value).toFixed(6)) : null);
   };
-  const move = (sign: 1 | -1) => set(chosen, values[chosen] + sign * press * (big ? 10 : 1));
-  const word = (mm: number) => `${formatNumber(mm, Math.max(0, -Math.floor(Math.log10(mm))))} mm`;
+  const move = (key: Key, sign: 1 | -1, by: StepSize) => set(key, values[key] + sign * press * by);
   const name = NAMES[chosen].label.toLowerCase();
   return (
     <>
@@ -50,12 +50,14 @@ export function ScanFields({ length, region, detectorMm, onChange, onDetector, o
           </button>
         </span>
         <div className="words" role="group" aria-label="One press moves">
-          <WordPick chosen={!big} onChoose={() => setBig(false)}>
-            {word(press)}
-          </WordPick>
-          <WordPick chosen={big} onChoose={() => setBig(true)}>
-            {word(10 * press)}
-          </WordPick>
+          {STEPS.map((by) => (
+            <WordPick key={by} chosen={size === by} onChoose={() => setSize(by)}>
+              <span>
+                {stepText(by * press)}
+                {by === 10 ? <span className="max-[1240px]:hidden"> mm</span> : null}
+              </span>
+            </WordPick>
+          ))}
         </div>
       </div>
       <div className="roi">
@@ -65,19 +67,24 @@ export function ScanFields({ length, region, detectorMm, onChange, onDetector, o
             label={NAMES[key].label}
             heard={NAMES[key].heard}
             unit="mm"
-            places={key === 'detectorMm' ? placesOfWidth(values.detectorMm) : Math.min(3, places)}
+            places={
+              key === 'detectorMm'
+                ? placesOfWidth(values.detectorMm)
+                : placesShown(values[key], Math.min(3, places))
+            }
             value={values[key]}
             chosen={chosen === key}
             disabled={key === 'detectorMm' ? !onDetector : !onChange}
             onChoose={() => setChosen(key)}
             onChange={(value) => set(key, value)}
+            onStep={(sign, keys) => move(key, sign, stepSize(keys))}
           />
         ))}
         <div className="pair-keys">
-          <Button aria-label={`Less ${name}`} disabled={!onChange} onClick={() => move(-1)}>
+          <Button aria-label={`Less ${name}`} disabled={!onChange} onClick={() => move(chosen, -1, size)}>
             −
           </Button>
-          <Button aria-label={`More ${name}`} disabled={!onChange} onClick={() => move(1)}>
+          <Button aria-label={`More ${name}`} disabled={!onChange} onClick={() => move(chosen, 1, size)}>
             +
           </Button>
         </div>

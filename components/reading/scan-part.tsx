@@ -7,6 +7,7 @@ import type { ScanRegion } from '@/lib/domain/scan-result';
 import type { FrameView } from '@/lib/domain/views';
 import { formatNumber } from '@/lib/quantity/format';
 import { ScanFields } from './scan-fields';
+import { UndoRedo } from './undo-redo';
 
 interface Props {
   frame: FrameView;
@@ -56,6 +57,7 @@ export function ScanPart({ frame, region, desk, mayFit, onKeys }: Props) {
         onDetector={mayFit ? desk.setDetector : undefined}
         onKeys={onKeys}
       />
+      {mayFit ? <UndoRedo desk={desk} /> : null}
     </>
   );
 }

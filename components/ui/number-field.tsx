@@ -10,10 +10,14 @@ interface Props {
   unit: string;
   value: number;
   places: number;
+  /** With more decimals than usual: where there is little room its unit gives way. */
+  long?: boolean;
   chosen: boolean;
   disabled?: boolean;
   onChoose: () => void;
   onChange: (value: number) => void;
+  /** Arrow up and down in the field, with the keys held beside them. */
+  onStep?: (sign: 1 | -1, keys: { shiftKey: boolean; altKey: boolean }) => void;
 }
 
 /** A number with its word inside. What is typed counts once it is a number; Escape brings the last one back. */
@@ -23,10 +27,12 @@ export function NumberField({
   unit,
   value,
   places,
+  long = false,
   chosen,
   disabled,
   onChoose,
   onChange,
+  onStep,
 }: Props) {
   const shown = value.toFixed(places).replace('-', '−');
   // What is being typed, and the value it was typed over: a new value from elsewhere wins.
@@ -41,7 +47,10 @@ export function NumberField({
     setText(null);
   };
   return (
-    <label htmlFor={id} className={`num-field ${chosen ? 'chosen' : ''} ${wrong ? 'wrong' : ''}`}>
+    <label
+      htmlFor={id}
+      className={`num-field ${chosen ? 'chosen' : ''} ${wrong ? 'wrong' : ''} ${long ? 'long' : ''}`}
+    >
       <small aria-hidden="true">{label}</small>
       <input
         id={id}
@@ -50,6 +59,7 @@ export function NumberField({
         inputMode="decimal"
         autoComplete="off"
         disabled={disabled}
+        data-settled={text === null ? '' : undefined}
         value={text ?? shown}
         onFocus={onChoose}
         onChange={(event) => setText(event.target.value)}
@@ -57,6 +67,10 @@ export function NumberField({
         onKeyDown={(event) => {
           if (event.key === 'Enter') settle();
           if (event.key === 'Escape') setText(null);
+          if (text === null && onStep && (event.key === 'ArrowUp' || event.key === 'ArrowDown')) {
+            event.preventDefault();
+            onStep(event.key === 'ArrowUp' ? 1 : -1, event);
+          }
         }}
       />
       <span className="unit" aria-hidden="true">

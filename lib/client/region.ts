@@ -13,6 +13,15 @@ export const SHORTEST_PX = 24;
 export const LOWEST_PX = 2;
 export const TILT_STEP_DEG = 0.02;
 
+/** One press of a key: ten times as far with Shift, a tenth with Alt. */
+export const STEPS = [0.1, 1, 10] as const;
+export type StepSize = (typeof STEPS)[number];
+
+export function stepSize(keys: { shiftKey: boolean; altKey: boolean }): StepSize {
+  if (keys.altKey) return 0.1;
+  return keys.shiftKey ? 10 : 1;
+}
+
 /** Unit vectors along the fringes' normal (the long axis) and across it. */
 export function axes(angleDeg: number): { along: [number, number]; across: [number, number] } {
   const t = (angleDeg * Math.PI) / 180;
@@ -71,7 +80,7 @@ export function turn(region: Region, deg: number): Region {
   return { ...region, angleDeg: wrapDeg(region.angleDeg + deg) };
 }
 
-/** Numbers a person can read back: px to 0.1, tilt to 0.01°. */
+/** Numbers a person can read back: px to 0.1, tilt to 0.001°. */
 export function rounded(region: Region): Region {
   const tenth = (v: number) => Math.round(v * 10) / 10;
   return {
@@ -79,7 +88,7 @@ export function rounded(region: Region): Region {
     cyPx: tenth(region.cyPx),
     lengthPx: tenth(region.lengthPx),
     heightPx: tenth(region.heightPx),
-    angleDeg: Math.round(region.angleDeg * 100) / 100,
+    angleDeg: Math.round(region.angleDeg * 1000) / 1000,
   };
 }
 
@@ -95,7 +104,9 @@ export function startRegion(picture: Picture): Region {
 }
 
 export function sameRegion(a: Region, b: Region): boolean {
-  return (['cxPx', 'cyPx', 'lengthPx', 'heightPx', 'angleDeg'] as const).every(
-    (key) => Math.abs(a[key] - b[key]) < 0.006,
+  const isSame = (key: keyof Region, within: number) => Math.abs(a[key] - b[key]) < within;
+  return (
+    (['cxPx', 'cyPx', 'lengthPx', 'heightPx'] as const).every((key) => isSame(key, 0.006)) &&
+    isSame('angleDeg', 0.0006)
   );
 }

@@ -27,14 +27,14 @@ export function pressMm(scan: ScanRegion): number {
   return 10 ** Math.floor(Math.log10((scan.toMm - scan.fromMm) / 100));
 }
 
-/** Places of decimals the edges are given with: those of one press. */
+/** Places of decimals the edges are shown with: those of one press. */
 export function placesOf(scan: ScanRegion): number {
   return Math.max(0, Math.min(6, -Math.round(Math.log10(pressMm(scan)))));
 }
 
-/** Numbers a person can read back; a region that reaches to an end of the scan stays there. */
+/** Numbers a person can read back, to a tenth of a press; a region that reaches to an end of the scan stays there. */
 export function roundedInScan(region: ScanRegion, scan: ScanRegion): ScanRegion {
-  const power = 10 ** placesOf(scan);
+  const power = 10 ** (placesOf(scan) + 1);
   const tidy = (mm: number) => Math.round(mm * power) / power;
   return {
     fromMm: region.fromMm <= scan.fromMm ? scan.fromMm : tidy(region.fromMm),

@@ -5,8 +5,10 @@ import type { Region } from '@/lib/domain/reading-result';
 import { isScanRegion, isScanResult, type ScanRegion } from '@/lib/domain/scan-result';
 import type { FitFacts, ReadingView, RegionChange } from '@/lib/domain/views';
 import { kept, rounded, sameRegion, startRegion, turn, type Picture } from './region';
+import { beginHistory, changed as changedHistory, redone, undone, type History } from './region-history';
 import { keptInScan, roundedInScan } from './scan-region';
 import { usePreviewFit, type PreviewState } from './use-preview-fit';
+import { useTrials, type TrialKeeper } from './use-trials';
 
 type AnyRegion = Region | ScanRegion;
 
@@ -28,6 +30,10 @@ export interface RegionDesk {
   /** Counts all orders from the one that now has this number. */
   zeroAt: (m: number) => void;
   drop: () => void;
+  /** null where there is nothing to undo, or to do again. */
+  undo: (() => void) | null;
+  redo: (() => void) | null;
+  trials: TrialKeeper;
   /** Fits the region as it stands, where there is no reading yet to differ from. */
   fitAsItStands: () => void;
 }
@@ -43,6 +49,12 @@ interface Start {
   facts: FitFacts;
   /** This person may change the region now. */
   mayFit: boolean;
+}
+
+interface DeskState {
+  from: number | null;
+  history: History<RegionChange>;
+  asked: boolean;
 }
 
 const sameAny = (a: AnyRegion, b: AnyRegion) => {
@@ -83,23 +95,35 @@ export function useRegionChange({ frameId, bounds, detectorMm, reading, facts, m
     }),
     [reading, bounds, detectorMm],
   );
-  const [state, setState] = useState({ from: reading?.id ?? null, now: start, asked: false });
+  const begin = (): DeskState => ({ from: reading?.id ?? null, history: beginHistory(start), asked: false });
+  const [state, setState] = useState(begin);
   // Another reading is shown: start again from it.
-  if (state.from !== (reading?.id ?? null)) setState({ from: reading?.id ?? null, now: start, asked: false });
+  if (state.from !== (reading?.id ?? null)) setState(begin());
 
-  const { region, leaveOut, zeroShift } = state.now;
+  const { history } = state;
+  const { now } = history;
+  const { region, leaveOut, zeroShift } = now;
   const changed =
     !sameAny(region, start.region) ||
-    state.now.detectorMm !== start.detectorMm ||
+    now.detectorMm !== start.detectorMm ||
     !sameNumbers(leaveOut, start.leaveOut) ||
     zeroShift !== start.zeroShift;
-  const change = changed || state.asked ? state.now : null;
+  const change = changed || state.asked ? now : null;
   const preview = usePreviewFit(
     { frameId, readingId: reading?.id ?? null, facts, mayFit, isScan: isLength(bounds) },
     change,
   );
-  const set = (part: Partial<RegionChange>) =>
-    setState((before) => ({ ...before, now: { ...before.now, ...part } }));
+  const trials = useTrials(frameId, reading?.id ?? null, change, preview);
+  const set = (part: Partial<RegionChange>) => {
+    const kind = Object.keys(part).join(' ');
+    const atMs = Date.now();
+    setState((before) => ({
+      ...before,
+      history: changedHistory(before.history, { ...before.history.now, ...part }, kind, atMs),
+    }));
+  };
+  const step = (move: (from: History<RegionChange>) => History<RegionChange>) => () =>
+    setState((before) => ({ ...before, history: move(before.history) }));
 
   const setRegion = (next: AnyRegion) => set({ region: tidy(next, region, bounds) });
 
@@ -109,7 +133,7 @@ export function useRegionChange({ frameId, bounds, detectorMm, reading, facts, m
     zeroShift,
     change,
     preview,
-    detectorMm: state.now.detectorMm ?? null,
+    detectorMm: now.detectorMm ?? null,
     setRegion,
     turnBy: (deg) => {
       if (!isScanRegion(region)) setRegion(turn(region, deg));
@@ -118,7 +142,18 @@ export function useRegionChange({ frameId, bounds, detectorMm, reading, facts, m
     toggleOrder: (m) =>
       set({ leaveOut: leaveOut.includes(m) ? leaveOut.filter((o) => o !== m) : [...leaveOut, m] }),
     zeroAt: (m) => set({ zeroShift: zeroShift - m, leaveOut: leaveOut.map((o) => o - m) }),
-    drop: () => setState((before) => ({ ...before, now: start, asked: false })),
+    drop: () => {
+      trials.send();
+      const atMs = Date.now();
+      setState((before) => ({
+        ...before,
+        history: changedHistory(before.history, start, 'drop', atMs),
+        asked: false,
+      }));
+    },
+    undo: history.past.length ? step(undone) : null,
+    redo: history.future.length ? step(redone) : null,
+    trials,
     fitAsItStands: () => setState((before) => ({ ...before, asked: true })),
   };
 }

@@ -12,14 +12,21 @@ function subscribe(onChange: () => void): () => void {
 
 const isOn = () => localStorage.getItem(KEPT) !== 'off';
 
-function isTyping(target: EventTarget | null): boolean {
-  return (
-    target instanceof HTMLElement &&
-    (target.isContentEditable || /^(INPUT|TEXTAREA|SELECT)$/.test(target.tagName))
-  );
+function isTyping(target: EventTarget | null, withControl: boolean): boolean {
+  if (!(target instanceof HTMLElement)) return false;
+  // A number that is not being typed has nothing of its own to undo.
+  if (withControl && target.dataset.settled !== undefined) return false;
+  return target.isContentEditable || /^(INPUT|TEXTAREA|SELECT)$/.test(target.tagName);
 }
 
-/** Single-letter keys of a page. They can be switched off, and never act while someone types. */
+/** "x", "ctrl+z", "ctrl+shift+z", "alt+["; of a single key Shift is in the key itself. The command key counts as control. */
+function nameOf(event: KeyboardEvent): string {
+  if (event.ctrlKey || event.metaKey)
+    return `ctrl+${event.shiftKey ? 'shift+' : ''}${event.key.toLowerCase()}`;
+  return `${event.altKey ? 'alt+' : ''}${event.key}`;
+}
+
+/** Keys of a page. The single-letter ones can be switched off; none acts while someone types. */
 export function useShortcuts(keys: Record<string, () => void>): {
   on: boolean;
   setOn: (on: boolean) => void;
@@ -27,11 +34,11 @@ export function useShortcuts(keys: Record<string, () => void>): {
   const on = useSyncExternalStore(subscribe, isOn, () => true);
   useEffect(() => {
     const press = (event: KeyboardEvent) => {
-      if (event.ctrlKey || event.metaKey || event.altKey || isTyping(event.target)) return;
-      if (document.querySelector('dialog[open]')) return;
-      if (!on && event.key !== '?') return;
-      const act = keys[event.key];
-      if (!act) return;
+      const name = nameOf(event);
+      const act = keys[name];
+      const single = name.length === 1;
+      if (!act || isTyping(event.target, !single) || document.querySelector('dialog[open]')) return;
+      if (single && !on && name !== '?') return;
       event.preventDefault();
       act();
     };

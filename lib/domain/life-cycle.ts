@@ -5,7 +5,7 @@
 export const FRAME_STATES = ['copying', 'waiting', 'fitting', 'fitted', 'refused', 'unreadable'] as const;
 export type FrameState = (typeof FRAME_STATES)[number];
 
-export const READING_STATES = ['draft', 'review', 'returned', 'accepted', 'replaced'] as const;
+export const READING_STATES = ['draft', 'review', 'returned', 'accepted', 'withdrawn', 'replaced'] as const;
 export type ReadingState = (typeof READING_STATES)[number];
 
 export const FRAME_WORDS: Record<FrameState, string> = {
@@ -22,6 +22,7 @@ export const READING_WORDS: Record<ReadingState, string> = {
   review: 'To review',
   returned: 'Returned',
   accepted: 'Accepted',
+  withdrawn: 'Withdrawn',
   replaced: 'Replaced',
 };
 
@@ -41,6 +42,8 @@ export const READING_STEPS = {
   send: { from: ['draft'], to: 'review' },
   accept: { from: ['review'], to: 'accepted' },
   return: { from: ['review'], to: 'returned' },
+  /** By a second person, for a reason; what was signed stays as it was. */
+  withdraw: { from: ['accepted'], to: 'withdrawn' },
   /** A re-fit makes a new reading; the one it was made from steps back. */
   replace: { from: ['draft', 'review', 'returned'], to: 'replaced' },
 } as const satisfies Record<string, { from: readonly ReadingState[]; to: ReadingState }>;
@@ -62,6 +65,11 @@ export function readingMay(step: ReadingStep, state: ReadingState): boolean {
 /** May the step be taken from this state? */
 export function frameMay(step: FrameStep, state: FrameState): boolean {
   return (FRAME_STEPS[step].from as readonly FrameState[]).includes(state);
+}
+
+/** May a new reading follow this one without a step of its own? What was withdrawn stays withdrawn. */
+export function readingMayBeFollowed(state: ReadingState): boolean {
+  return state === READING_STEPS.withdraw.to;
 }
 
 /** True while the frame's state can still change by itself; a page shows these live. */

@@ -10,4 +10,7 @@ export const LIMITS = {
   serialLength: 60,
   unitsAtOnce: 5000,
   wordsLength: 1000,
+  trialsAtOnce: 100,
+  /** A password typed to sign counts for further signatures this long. */
+  passwordMinutes: 5,
 } as const;

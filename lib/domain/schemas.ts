@@ -6,16 +6,16 @@ import { SCALE_KINDS } from './scale-result';
 import { METHODS } from './specification';
 import { OUTCOMES, RETURN_REASONS } from './views';
 
-const finite = (what: string) =>
+export const finite = (what: string) =>
   z.number({ error: `${what} must be a number.` }).refine(Number.isFinite, `${what} must be a number.`);
-const positive = (what: string) => finite(what).refine((v) => v > 0, `${what} must be larger than 0.`);
-const words = (what: string, min = 1) =>
+export const positive = (what: string) => finite(what).refine((v) => v > 0, `${what} must be larger than 0.`);
+export const words = (what: string, min = 1) =>
   z
     .string()
     .trim()
     .min(min, `${what} is missing.`)
     .max(LIMITS.wordsLength, `${what} is longer than ${LIMITS.wordsLength} characters.`);
-const id = z.number().int().positive();
+export const id = z.number().int().positive();
 
 export const passwordSchema = z
   .string()
@@ -51,7 +51,7 @@ export const regionChangeSchema = z.object({
     .default([]),
   zeroShift: z.number().int().min(-400).max(400).default(0),
 });
-const sha256Text = z.string().regex(/^[0-9a-f]{64}$/, 'This is not a SHA-256.');
+export const sha256Text = z.string().regex(/^[0-9a-f]{64}$/, 'This is not a SHA-256.');
 export const refitSchema = regionChangeSchema.extend({
   /** The band stack the person's numbers came from; null: the server makes one for the region. */
   stackSha256: sha256Text.nullable().default(null),
@@ -90,8 +90,11 @@ export const lookAnswerSchema = z.object({
 export const acceptSchema = z.object({
   readingId: id,
   version: z.number().int().min(0),
-  password: z.string().min(1, 'Type your password to sign.').max(LIMITS.passwordLongest),
+  /** '' where one typed a few minutes ago is to count. */
+  password: z.string().max(LIMITS.passwordLongest).default(''),
   answers: z.array(lookAnswerSchema).max(60).default([]),
+  /** Why the value was moved, where nobody has said so yet. */
+  moveReason: z.string().trim().max(LIMITS.wordsLength).default(''),
 });
 export const returnSchema = z.object({
   readingId: id,
@@ -105,40 +108,10 @@ export const outcomeSchema = z.object({
   reason: z.string().trim().max(LIMITS.wordsLength).default(''),
 });
 
-const stated = (what: string) =>
-  z.object({
-    value: positive(what),
-    stated: positive(`The ± of ${what.toLowerCase()}`),
-    k: finite('k').refine((k) => k >= 1 && k <= 10, 'k lies between 1 and 10.'),
-    certificate: z.string().trim().max(300).default(''),
-    due: z.iso.date('A due date looks like 2027-03-01.').nullable().default(null),
-  });
 export const benchSchema = z.object({
   name: z.string().trim().min(1, 'The bench needs a name.').max(60),
   note: z.string().trim().max(LIMITS.wordsLength).default(''),
 });
-export const setupSchema = z
-  .object({
-    benchId: id,
-    /** The number the person saw as the newest; another one means someone was faster. */
-    afterNumber: z.number().int().min(0),
-    plate: z.string().trim().min(1, 'Name the slit plate.').max(60),
-    scaleUmPerPx: stated('Pixel scale'),
-    separationUm: stated('Slit separation'),
-    widthUm: stated('Slit width'),
-    distanceMm: stated('Distance'),
-    remountNm: z
-      .object({ u: positive('Re-mount'), dof: positive('Degrees of freedom').nullable() })
-      .nullable()
-      .default(null),
-    tone: z.enum(['auto', 'linear', 'srgb']).default('auto'),
-    why: words('Why'),
-  })
-  .refine((s) => s.widthUm.value < s.separationUm.value, {
-    path: ['widthUm', 'value'],
-    message: 'The slit width must be smaller than the separation.',
-  });
-
 export const specificationSchema = z
   .object({
     name: z.string().trim().min(1, 'The specification needs a name.').max(80),
@@ -203,16 +176,6 @@ export const unitsSchema = z.object({
     .min(1, 'There is no serial in it.')
     .max(LIMITS.unitsAtOnce, `At most ${LIMITS.unitsAtOnce} units at once.`),
 });
-export const sourceSchema = z.object({
-  name: z.string().trim().min(1, 'The source needs a name.').max(60),
-  vacuumNm: finite('Wavelength').refine(
-    (v) => v >= 200 && v <= 2000,
-    'The wavelength lies between 200 and 2000 nm.',
-  ),
-  uNm: positive('The standard uncertainty'),
-  note: z.string().trim().max(300).default(''),
-});
-
 export const personSchema = z.object({
   name: z.string().trim().min(1, 'The person needs a name.').max(80),
   email: emailSchema,

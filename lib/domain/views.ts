@@ -7,7 +7,11 @@ import type { MonteCarlo } from '@/lib/quantity/monte-carlo';
 import type { OtherValue } from './specification';
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
+import type { FirstValue } from './move';
 import type { Role } from './roles';
+import type { ConfirmedValue, UncertaintyShape } from './setup';
+import type { SourceKind } from './source';
+import type { WithdrawalView } from './withdrawal';
 import type { Judgement, Medium, Method, Specification, Verdict } from './specification';
 
 export interface PersonRef {
@@ -27,23 +31,32 @@ export type Instant = string;
 /** ---- benches ---- */
 export interface StatedValue {
   value: number;
-  /** As entered: expanded or standard uncertainty with its coverage factor. */
+  /** As entered; what kind of ± it is says `shape`. */
   stated: number;
+  shape: UncertaintyShape;
+  /** What `stated` is divided by: as entered, or what the shape asks for. */
   k: number;
+  /** Degrees of freedom; null is infinite. */
+  dof: number | null;
   /** stated / k */
   u: number;
   certificate: string;
+  file: CertificateLink | null;
   /** Calendar date yyyy-mm-dd or null. */
   due: string | null;
 }
 
-export interface SetupView {
+/** A certificate in the store. */
+export interface CertificateLink {
+  sha256: string;
+  fileName: string;
+}
+
+/** What a setup states, whatever became of it. */
+export interface SetupStatement {
   id: number;
   benchId: number;
   number: number;
-  from: Instant;
-  /** null while in force. */
-  to: Instant | null;
   plate: string;
   scaleUmPerPx: StatedValue;
   separationUm: StatedValue;
@@ -51,14 +64,33 @@ export interface SetupView {
   distanceMm: StatedValue;
   remountNm: { u: number; dof: number | null } | null;
   tone: ToneChoice;
+  camera: { model: string; serial: string; bits: number | null };
   why: string;
+  /** Values that looked odd, with the reason why they are right. */
+  confirmed: ConfirmedValue[];
   enteredBy: PersonRef;
   enteredAt: Instant;
-  readings: number;
-  /** What changed from the setup before, in words; '' for the first. */
+  /** What changes from the setup before, in words; '' for the first. */
   change: string;
   /** Larger than both uncertainties together. */
   changeIsLook: boolean;
+}
+
+/** A setup that is, was or will be in force. */
+export interface SetupView extends SetupStatement {
+  from: Instant;
+  /** null while nothing follows it. */
+  to: Instant | null;
+  /** null: entered before approval was asked for. */
+  approved: { by: PersonRef; at: Instant; remark: string } | null;
+  readings: number;
+}
+
+/** A setup that waits for a decision, or that never came into force. */
+export interface SetupProposal extends SetupStatement {
+  /** null: as soon as it is approved. */
+  wantedFrom: Instant | null;
+  ended: { decision: 'declined' | 'taken-back'; reason: string; by: PersonRef; at: Instant } | null;
 }
 
 /** Fit for use today? */
@@ -73,13 +105,20 @@ export interface BenchChoice {
   name: string;
   setupNumber: number | null;
   fitness: BenchFitness;
+  /** Number of the setup that waits for QA. */
+  waitingNumber: number | null;
 }
 
 export interface BenchView extends BenchChoice {
   note: string;
   inForce: SetupView | null;
-  /** Newest first, the one in force included. */
+  /** Newest first by the moment they come into force, the one in force included. */
   setups: SetupView[];
+  waiting: SetupProposal | null;
+  /** Declined or taken back, newest first. */
+  ended: SetupProposal[];
+  /** Highest number any setup of this bench has, 0 for none. */
+  lastNumber: number;
   /** Wavelength (nm, air) to draw the geometry with: the last accepted reading's, else 635. */
   drawNm: number;
   drawnFrom: 'reading' | 'example';
@@ -125,9 +164,17 @@ export interface LotView extends LotRow {
 export interface SourceView {
   id: number;
   name: string;
+  kind: SourceKind;
+  /** May a bench be checked with it? */
+  isReference: boolean;
   vacuumNm: number;
   uNm: number;
+  certificate: string;
+  file: CertificateLink | null;
+  due: string | null;
   note: string;
+  /** Which of its certificates this is, from 1. */
+  revision: number;
 }
 
 export const OUTCOMES = ['passed-on', 'measure-again', 'held-for-qa', 'sent-back'] as const;
@@ -181,7 +228,7 @@ export interface ReadingBrief {
 
 export type Subject =
   | { kind: 'unit'; unitId: number; serial: string; lotId: number; lot: string; specification: Specification }
-  | { kind: 'source'; sourceId: number; name: string; vacuumNm: number; uNm: number }
+  | { kind: 'source'; sourceId: number; name: string; vacuumNm: number; uNm: number; isReference: boolean }
   | { kind: 'none' };
 
 export interface FrameRow {
@@ -200,6 +247,8 @@ export interface FrameRow {
   /** Only for a line scan: width of its detector, null for a point. */
   scan: { detectorMm: number | null } | null;
   reading: ReadingBrief | null;
+  /** Why its reading came back. */
+  returned: { reason: ReturnReason; words: string } | null;
 }
 
 export interface FramesQuery {
@@ -230,6 +279,8 @@ export interface SignatureView {
   role: Role;
   meaning: string;
   at: Instant;
+  /** When the password was typed; null: as it was signed. */
+  passwordAt: Instant | null;
   digest: string;
 }
 
@@ -257,6 +308,12 @@ export interface ReadingView extends ReadingBrief {
   note: string;
   returned: { reason: ReturnReason; words: string; by: PersonRef; at: Instant } | null;
   signature: SignatureView | null;
+  /** What the frame's first fit gave. */
+  first: FirstValue | null;
+  /** The newest question whether to withdraw it. */
+  withdrawal: WithdrawalView | null;
+  /** Why the value was moved from it. */
+  moveReason: { words: string; by: PersonRef; at: Instant } | null;
   zeroShift: number;
   leaveOut: number[];
   tone: ToneChoice;
@@ -283,6 +340,8 @@ export interface May {
   accept: boolean;
   return: boolean;
   outcome: boolean;
+  /** Ask for a withdrawal, or answer one. */
+  withdraw: boolean;
   /** Sentence why accept is not open to this person; null when it is. */
   acceptBarred: string | null;
 }
@@ -291,6 +350,8 @@ export interface ReviewView {
   frame: FrameView;
   may: May;
   queue: { at: number; of: number; previousId: number | null; nextId: number | null };
+  /** Until when a password typed before still signs; null: it must be typed. */
+  passwordUntil: Instant | null;
 }
 
 /** What a fit of a frame needs beside its bytes: the setup it was received under and what it is judged by. */
@@ -376,6 +437,20 @@ export interface ChartFinding {
   text: string;
 }
 
+/** An accepted reading that was withdrawn: told beside the chart, in no mean and no limit. */
+export interface WithdrawnPoint {
+  readingId: number;
+  frameId: number;
+  label: string;
+  takenAt: Instant;
+  acceptedAt: Instant;
+  withdrawnAt: Instant;
+  valueNm: number;
+  uNm: number | null;
+  setupNumber: number;
+  reason: string;
+}
+
 export interface OverTimeView {
   bench: PersonRef | null;
   medium: Medium;
@@ -384,6 +459,7 @@ export interface OverTimeView {
   referenceNm: number | null;
   referenceIsNominal: boolean;
   points: ChartPoint[];
+  withdrawn: WithdrawnPoint[];
   stretches: ChartStretch[];
   findings: ChartFinding[];
   /** Choices for the picker. */

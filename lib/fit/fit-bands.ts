@@ -1,20 +1,18 @@
 import {
-  chainGains,
-  combineBands,
-  commonU,
   freshState,
-  gainIn,
   gridOf,
   LEFT,
-  regressBands,
-  strayIn,
-  tableFor,
+  placeCells,
+  viewCells,
   type BandData,
-  type BandShifts,
   type BandState,
   type CommonGrid,
-  type FitTable,
-} from './bands';
+} from './cells';
+import { AgreedLight, measureNoise } from './agreed-light';
+import { chainGains, combineBands } from './combine-bands';
+import { expectedOn, tableFor, type FitTable } from './fit-table';
+import { maskBins, maskCells } from './masks';
+import { regressBands, type BandShifts } from './regress-bands';
 import {
   fitFrom,
   fitProfile,
@@ -26,7 +24,6 @@ import {
   type ProfileFit,
 } from './fit-profile';
 import { chooseZero } from './zero-order';
-import { fitNoise, varianceAt, type Noise } from './noise';
 import type { StartValues } from './start-values';
 import type { Profile } from './profile';
 import type { ModelTerms } from './two-slit-model';
@@ -59,16 +56,18 @@ export interface BandFit {
   table: FitTable;
   shifts: BandShifts;
   limits: LightLimits;
-  leaveOut: (u: number) => boolean;
   /** A zero order that is settled, px; null follows the envelope. */
   zeroAtPx: number | null;
+  /** In the last round no bin was left out, no band moved, and the fit it began with was this one but for noise. */
+  settled: boolean;
 }
 
-const OUTLIER_SIGMAS = 5;
-const NEIGHBOUR_SIGMAS = 3.5;
 /** Before there is a fit, cells this near the white level count as clipped. */
 const NEAR_WHITE = 0.94;
 const FEWEST_POINTS = 12;
+/** Chi-square a round may still take away to be the last, and the same as a share of the points: no mask depends on it. */
+const SETTLED = 25;
+const SETTLED_SHARE = 0.1;
 
 /**
  * Fits all bands with one pattern: profile -> fit -> bands against the fit (gain, stray light) -> noise and cells to leave
@@ -89,6 +88,7 @@ export function fitBands(
     else if (data.light[cell] > NEAR_WHITE * limits.clip) state.left[cell] = LEFT.clipped;
   }
   if (state.left.some((why) => why === LEFT.clipped)) chainGains(data, state);
+  placeCells(data, state, grid);
   const profile = scaledFirst(combineBands(data, state, grid, null, aroundPx));
   if (countUsed(profile) < FEWEST_POINTS) return null;
   const first =
@@ -99,10 +99,8 @@ export function fitBands(
   const fit = rebase(profile, first, stepsToZero(first, how.zeroAtPx));
   const table = tableFor(data, grid, fit);
   // A pen line would count as a change of every band's gain, and all of them be thrown out.
-  if (how.asItIs) maskBins({ data, state, grid, table, fit }, profile);
-  const shifts = regressBands(data, state, grid, table, fit);
-  undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
-  undoFan(data, state, shifts);
+  if (how.asItIs) maskBins({ state, grid, fit }, profile);
+  const { shifts } = alignBands(data, state, grid, table, fit);
   let band: BandFit = {
     data,
     fit,
@@ -112,15 +110,42 @@ export function fitBands(
     table,
     shifts,
     limits,
-    leaveOut,
     zeroAtPx: how.zeroAtPx,
+    settled: false,
   };
   for (let round = 0; round < how.rounds; round++) {
     const next = refineBands(band, band.fit.layout.terms);
     if (next === null) return null;
     band = next;
+    if (band.settled) break;
   }
   return how.zeroAtPx === null ? withBestZero(band) : band;
+}
+
+/** Bands count as aligned once a turn moves none of them by more than this share of a fringe. */
+const ALIGNED = 0.02;
+const MOST_TURNS = 4;
+
+/** Every band against the fit, until lean and fan are undone: the regression sees a displacement in its first order only. */
+function alignBands(
+  data: BandData,
+  state: BandState,
+  grid: CommonGrid,
+  table: FitTable,
+  fit: ProfileFit,
+): { shifts: BandShifts; moved: boolean } {
+  const spacingPx = fit.result.parameters[0] * fit.unitPx;
+  const reach = Math.max(...data.bandV.map(Math.abs));
+  table.fill(state.view);
+  for (let turn = 1; ; turn++) {
+    const { lean, fan } = state;
+    const shifts = regressBands(data, state, grid, fit);
+    undoLean(data, state, shifts, spacingPx);
+    undoFan(data, state, shifts);
+    const moved = reach * (Math.abs(state.lean - lean) + grid.half * Math.abs(state.fan - fan));
+    if (turn === MOST_TURNS || moved < ALIGNED * spacingPx) return { shifts, moved: turn > 1 };
+    viewCells(data, state, grid, table);
+  }
 }
 
 /**
@@ -148,7 +173,9 @@ const FAN_SIGMAS = 5;
  */
 function undoFan(data: BandData, state: BandState, shifts: BandShifts): void {
   const fan = weightedLine(data.bandV, shifts.stretch, shifts.stretchWeight);
-  const ub = fan.ub * Math.sqrt(Math.max(1, fan.chiSquare / Math.max(1, fan.n - 2)));
+  const scatter = fan.chiSquare / Math.max(1, fan.n - 2);
+  // Weights have no scale before the noise is known: then the scatter is all there is.
+  const ub = fan.ub * Math.sqrt(state.noise === null ? scatter : Math.max(1, scatter));
   if (!Number.isFinite(fan.b) || !(Math.abs(fan.b) > FAN_SIGMAS * ub)) return;
   state.fan += fan.b;
   for (let k = 0; k < data.bands; k++) {
@@ -192,38 +219,44 @@ function withBestZero(band: BandFit): BandFit | null {
 
 /** One more round: noise and masks from the bands' agreement, a new profile, the fit with these terms, the bands again. */
 export function refineBands(before: BandFit, terms: ModelTerms): BandFit | null {
-  const { data, state, grid, limits } = before;
+  const { data, state, grid } = before;
   const spacing = before.fit.result.parameters[0] * before.fit.unitPx;
-  const agreed = agreeOn(before);
+  viewCells(data, state, grid, before.table);
+  const agreed = new AgreedLight(before);
   measureNoise(before, agreed);
   maskCells(before, agreed);
   const expected = expectedOn(grid, before.table);
   const whole = combineBands(data, state, grid, expected, spacing);
-  const profile = maskBins(before, whole) ? combineBands(data, state, grid, expected, spacing) : whole;
+  const masked = maskBins(before, whole);
+  const profile = masked ? combineBands(data, state, grid, expected, spacing) : whole;
   if (countUsed(profile) < FEWEST_POINTS) return null;
   const next = refit(profile, before.fit, terms);
   const fit = rebase(profile, next, stepsToZero(next, before.zeroAtPx));
   const table = tableFor(data, grid, fit);
-  const shifts = regressBands(data, state, grid, table, fit);
-  undoLean(data, state, shifts, fit.result.parameters[0] * fit.unitPx);
-  undoFan(data, state, shifts);
-  return { ...before, fit, profile, table, shifts, limits };
+  const { shifts, moved } = alignBands(data, state, grid, table, fit);
+  return { ...before, fit, profile, table, shifts, settled: !masked && !moved && isSettled(next) };
+}
+
+/** Was the fit what it is now before its last round, up to what noise and misfit make of chi-square anyway? */
+function isSettled({ result }: ProfileFit): boolean {
+  const dof = Math.max(1, result.dof);
+  const scale = Math.max(1, result.chiSquare / dof);
+  return result.startChiSquare - result.chiSquare < scale * Math.max(SETTLED, SETTLED_SHARE * dof);
 }
 
 /** Without a noise model the profile's own scatter stands in: differences of neighbours. */
 function scaledFirst(profile: Profile): Profile {
-  const steps: number[] = [];
+  const steps = new Float64Array(profile.size);
+  let n = 0;
   for (let i = 2; i < profile.size; i++) {
     const [a, b, c] = [profile.sigma[i - 2], profile.sigma[i - 1], profile.sigma[i]];
     if (Number.isFinite(a) && Number.isFinite(b) && Number.isFinite(c)) {
-      steps.push(
+      steps[n++] =
         Math.abs(profile.light[i] - 2 * profile.light[i - 1] + profile.light[i - 2]) /
-          Math.sqrt(a * a + 4 * b * b + c * c),
-      );
+        Math.sqrt(a * a + 4 * b * b + c * c);
     }
   }
-  steps.sort((a, b) => a - b);
-  const scale = Math.max(1e-9, (steps[steps.length >> 1] ?? 1) / 0.6745);
+  const scale = n > 0 ? Math.max(1e-9, steps.subarray(0, n).sort()[n >> 1] / 0.6745) : 1;
   return { ...profile, sigma: profile.sigma.map((s) => s * scale) };
 }
 
@@ -231,187 +264,6 @@ function countUsed(profile: Profile): number {
   let n = 0;
   for (let i = 0; i < profile.size; i++) if (Number.isFinite(profile.sigma[i])) n++;
   return n;
-}
-
-export function expectedOn(grid: CommonGrid, table: FitTable): Float64Array {
-  return Float64Array.from({ length: grid.bins }, (_, k) =>
-    table.lightAt(grid.from + (k + 0.5) * grid.pitchPx),
-  );
-}
-
-/**
- * Light the bands agree on at the middle of each bin: their median, so that what only some of them show (dust, marks) does
- * not count; the fit's light where fewer than three bands say anything.
- */
-function agreeOn(band: BandFit): Float64Array {
-  const { data, state, grid, table } = band;
-  const values: number[][] = Array.from({ length: grid.bins }, () => []);
-  for (let b = 0; b < data.bands; b++) {
-    if (!(state.gain[b] > 0)) continue;
-    for (let j = 0; j < data.bins; j++) {
-      const cell = b * data.bins + j;
-      const why = state.left[cell];
-      if (data.pixels[cell] === 0 || (why !== LEFT.used && why !== LEFT.outlier)) continue;
-      const u = commonU(data, state, b, cell);
-      const k = Math.floor((u - grid.from) / grid.pitchPx);
-      if (k < 0 || k >= grid.bins) continue;
-      const own = (data.light[cell] - strayIn(state, grid, b, u)) / gainIn(data, state, grid, b, cell);
-      values[k].push(own - table.lightAt(u) + table.lightAt(grid.from + (k + 0.5) * grid.pitchPx));
-    }
-  }
-  return Float64Array.from(values, (v, k) =>
-    v.length < 3 ? table.lightAt(grid.from + (k + 0.5) * grid.pitchPx) : medianOf(v),
-  );
-}
-
-function medianOf(values: number[]): number {
-  const sorted = Float64Array.from(values).sort();
-  const mid = sorted.length >> 1;
-  return sorted.length % 2 === 1 ? sorted[mid] : 0.5 * (sorted[mid - 1] + sorted[mid]);
-}
-
-/** The same light at a cell: carried from the middle of its bin to its own place, with the band's gain and stray light. */
-function agreedIn(band: BandFit, agreed: Float64Array, b: number, cell: number): number {
-  const { data, state, grid, table } = band;
-  const u = commonU(data, state, b, cell);
-  const k = Math.floor((u - grid.from) / grid.pitchPx);
-  if (k < 0 || k >= grid.bins) return NaN;
-  const light = agreed[k] + table.lightAt(u) - table.lightAt(grid.from + (k + 0.5) * grid.pitchPx);
-  return strayIn(state, grid, b, u) + gainIn(data, state, grid, b, cell) * light;
-}
-
-const NOISE_CELLS = 4000;
-
-/** Every how many cells are looked at: no common factor with the bins, or only some places would ever be seen. */
-export function strideOver(cells: number, wanted: number, bins: number): number {
-  const common = (a: number, b: number): number => (b === 0 ? a : common(b, a % b));
-  let every = Math.max(1, Math.floor(cells / wanted));
-  while (common(bins, every) > 1) every++;
-  return every;
-}
-
-function measureNoise(band: BandFit, agreed: Float64Array): void {
-  const { data, state, limits } = band;
-  const step = strideOver(data.bins * data.bands, NOISE_CELLS, data.bins);
-  const most = Math.ceil(data.light.length / step);
-  const light = new Float64Array(most);
-  const q = new Float64Array(most);
-  let n = 0;
-  // Each band spends five parameters on its bins, each bin of the profile one on its bands.
-  const rest = Math.max(0.2, 1 - 5 / data.bins - 1 / Math.max(2, data.bands));
-  for (let cell = 0; cell < data.light.length; cell += step) {
-    const b = Math.floor(cell / data.bins);
-    if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used || !(state.gain[b] > 0)) continue;
-    const expected = agreedIn(band, agreed, b, cell);
-    if (!Number.isFinite(expected)) continue;
-    const r = data.light[cell] - expected;
-    light[n] = expected;
-    q[n++] = (r * r * data.pixels[cell]) / rest;
-  }
-  state.noise = fitNoise(light.subarray(0, n), q.subarray(0, n), limits.leastVariance);
-}
-
-/** Marks cells that are clipped, at the floor, or differ from what the other bands show there. */
-function maskCells(band: BandFit, agreed: Float64Array): void {
-  const { data, state, limits, leaveOut } = band;
-  const noise = state.noise;
-  if (noise === null) return;
-  const black = limits.floor + 4 * Math.sqrt(varianceAt({ ...noise, grain: 0 }, Math.max(0, limits.floor)));
-  const far = new Float32Array(data.light.length);
-  for (let b = 0; b < data.bands; b++) {
-    for (let j = 0; j < data.bins; j++) {
-      const cell = b * data.bins + j;
-      if (data.pixels[cell] === 0) continue;
-      if (leaveOut(data.u[cell])) {
-        state.left[cell] = LEFT.person;
-        continue;
-      }
-      state.left[cell] = LEFT.used;
-      if (!(state.gain[b] > 0)) continue;
-      const expected = agreedIn(band, agreed, b, cell);
-      if (reachesWhite(noise, expected, limits.clip)) state.left[cell] = LEFT.clipped;
-      else if (expected < black) state.left[cell] = LEFT.floor;
-      else
-        far[cell] =
-          Math.abs(data.light[cell] - expected) / Math.sqrt(varianceAt(noise, expected) / data.pixels[cell]);
-    }
-  }
-  for (let b = 0; b < data.bands; b++) {
-    for (let j = 0; j < data.bins; j++) {
-      const cell = b * data.bins + j;
-      if (!(far[cell] > OUTLIER_SIGMAS)) continue;
-      state.left[cell] = LEFT.outlier;
-      for (let d = -1; d <= 1; d += 2) {
-        for (let k = j + d; k >= 0 && k < data.bins && far[b * data.bins + k] > NEIGHBOUR_SIGMAS; k += d)
-          state.left[b * data.bins + k] = LEFT.outlier;
-      }
-    }
-  }
-}
-
-/**
- * Would some pixels of this mean be clipped? Four standard deviations of the camera's noise; two of grain, whose own
- * scatter is so much larger that what is cut off does not matter beside it.
- */
-function reachesWhite(noise: Noise, light: number, clip: number): boolean {
-  if (!Number.isFinite(clip)) return false;
-  const camera = 4 * Math.sqrt(varianceAt({ ...noise, grain: 0 }, light));
-  return light + camera + 2 * Math.sqrt(noise.grain) * Math.max(0, light) > clip;
-}
-
-const LONGEST_RUN_FRINGES = 1.2;
-const MOST_BINS_LEFT = 0.25;
-/** A run ends where the misfit has fallen to this share of its peak. */
-const RUN_EDGE = 0.1;
-
-/**
- * Leaves out what all bands show in one place and the fit does not: a dead column, a pen line. Only where most of the profile
- * follows the fit (the yardstick is the median misfit), so that a wrong model does not mask the data that speak against it.
- */
-function maskBins(
-  band: Pick<BandFit, 'data' | 'state' | 'grid' | 'table' | 'fit'>,
-  agreed: Profile,
-): boolean {
-  const { data, state, grid, table, fit } = band;
-  const z = new Float64Array(grid.bins);
-  const sizes: number[] = [];
-  for (let k = 0; k < grid.bins; k++) {
-    if (!Number.isFinite(agreed.sigma[k])) continue;
-    z[k] = Math.abs(agreed.light[k] - table.lightAt(agreed.u[k])) / agreed.sigma[k];
-    sizes.push(z[k]);
-  }
-  if (sizes.length === 0) return false;
-  sizes.sort((a, b) => a - b);
-  const scale = Math.max(1, sizes[sizes.length >> 1] / 0.6745);
-  const longest = (LONGEST_RUN_FRINGES * fit.result.parameters[0] * fit.unitPx) / grid.pitchPx;
-  const out = new Uint8Array(grid.bins);
-  let count = 0;
-  for (let k = 0; k < grid.bins; k++) {
-    if (!(z[k] > OUTLIER_SIGMAS * scale)) continue;
-    let peak = k;
-    while (peak + 1 < grid.bins && z[peak + 1] > z[peak]) peak++;
-    // What a spike does to the fit beside it does not belong to it.
-    const edge = Math.max(NEIGHBOUR_SIGMAS * 0.7 * scale, RUN_EDGE * z[peak]);
-    let from = peak;
-    let to = peak;
-    while (from > 0 && z[from - 1] > edge) from--;
-    while (to + 1 < grid.bins && z[to + 1] > edge) to++;
-    if (to - from + 1 <= longest) {
-      out.fill(1, Math.max(0, from - 1), Math.min(grid.bins, to + 2));
-      count += to - from + 3;
-    }
-    k = Math.max(k, to);
-  }
-  if (count === 0 || count > MOST_BINS_LEFT * sizes.length) return false;
-  for (let b = 0; b < data.bands; b++) {
-    for (let j = 0; j < data.bins; j++) {
-      const cell = b * data.bins + j;
-      if (state.left[cell] !== LEFT.used) continue;
-      const k = Math.floor((commonU(data, state, b, cell) - grid.from) / grid.pitchPx);
-      if (k >= 0 && k < grid.bins && out[k] === 1) state.left[cell] = LEFT.outlier;
-    }
-  }
-  return true;
 }
 
 export interface TiltFit {

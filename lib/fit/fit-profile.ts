@@ -1,4 +1,9 @@
-import { leastSquares, type LeastSquaresResult } from './least-squares';
+import {
+  foreseenSumOfSquares,
+  leastSquares,
+  type LeastSquaresProblem,
+  type LeastSquaresResult,
+} from './least-squares';
 import type { Profile } from './profile';
 import { scanStartValues, type StartValues } from './start-values';
 import {
@@ -119,18 +124,39 @@ export function stepsToZero(fit: ProfileFit, zeroAtPx: number | null): number {
  * wide angles or perspective the numbering is not free.
  */
 export function rebase(profile: Profile, fit: ProfileFit, steps: number): ProfileFit {
-  if (steps === 0 || !Number.isFinite(steps)) return fit;
+  const start = steps === 0 ? null : rebasedStart(fit, steps);
+  return start === null ? fit : run(profile, { ...fit, prior: fit.curvePrior }, start);
+}
+
+/** So many points tell whether another numbering has any hope. */
+const POINTS_TO_FORESEE = 250;
+
+/**
+ * Chi-square that `rebase` would come to for each number of steps, by one linear step from some of the points; infinite for
+ * an order that has no place.
+ */
+export function foreseenAfterRebase(profile: Profile, fit: ProfileFit, steps: number[]): number[] {
+  const every = Math.max(1, Math.floor(profile.size / POINTS_TO_FORESEE));
+  const { problem } = problemOf(profile, { ...fit, prior: fit.curvePrior, every });
+  return steps.map((step) => {
+    const start = step === 0 ? fit.result.parameters : rebasedStart(fit, step);
+    return start === null ? Infinity : every * foreseenSumOfSquares(problem, start);
+  });
+}
+
+/** The fit's parameters counted from another order; null where that order has no place. */
+function rebasedStart(fit: ProfileFit, steps: number): Float64Array | null {
+  const { layout, fixed } = fit;
   const p = fit.result.parameters;
-  const place = placeOfOrder(fit.layout, fit.fixed, p, steps);
-  const next = placeOfOrder(fit.layout, fit.fixed, p, steps + 0.01);
-  if (!Number.isFinite(place) || !Number.isFinite(next)) return fit;
-  const start = Float64Array.from(p);
+  const place = placeOfOrder(layout, fixed, p, steps);
+  const next = placeOfOrder(layout, fixed, p, steps + 0.01);
+  if (!Number.isFinite(place) || !Number.isFinite(next)) return null;
+  const start = p.slice();
   start[0] = (next - place) * 100;
   start[1] = place;
   start[3] = p[3] - steps;
-  const { layout, curvePrior: prior, originPx, unitPx, unitLight } = fit;
   if (layout.chirp >= 0) start[layout.chirp] = p[layout.chirp] / (1 + p[layout.chirp] * (place - p[1]));
-  return run(profile, { layout, prior, originPx, unitPx, unitLight }, start);
+  return start;
 }
 
 /**
@@ -187,13 +213,33 @@ interface Frame {
   asItIs?: boolean;
   /** Only chi-square is wanted, to a fraction of one. */
   trial?: boolean;
+  /** Every how many points one is looked at. */
+  every?: number;
 }
 
 function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
   const { layout, prior, originPx, unitPx, unitLight } = frame;
-  const index: number[] = [];
-  for (let i = 0; i < profile.size; i++) if (Number.isFinite(profile.sigma[i])) index.push(i);
-  const n = index.length;
+  const { problem, fixed, points } = problemOf(profile, frame);
+  const result = leastSquares(problem, start, {
+    ...boundsFor(layout, fixed, start, frame.hold ?? []),
+    maxEvaluations: frame.asItIs ? 1 : 60,
+    reductionTolerance: 1e-12,
+    gradientTolerance: 1e-9,
+    enough: frame.trial ? ENOUGH_FOR_TRIAL : ENOUGH,
+  });
+  return { layout, fixed, result, originPx, unitPx, unitLight, points, curvePrior: prior };
+}
+
+/** Weighted residuals of the profile and of what is known beforehand. */
+function problemOf(
+  profile: Profile,
+  frame: Frame,
+): { problem: LeastSquaresProblem; fixed: ModelFixed; points: number } {
+  const { layout, prior, originPx, unitPx, unitLight } = frame;
+  const index = new Int32Array(profile.size);
+  let n = 0;
+  for (let i = 0; i < profile.size; i += frame.every ?? 1)
+    if (Number.isFinite(profile.sigma[i])) index[n++] = i;
   const from = (profile.u[index[0]] - originPx) / unitPx;
   const to = (profile.u[index[n - 1]] - originPx) / unitPx;
   const fixed: ModelFixed = {
@@ -206,46 +252,25 @@ function run(profile: Profile, frame: Frame, start: Float64Array): ProfileFit {
   const priors = priorRows(layout, frame, fixed);
   const rows = n + priors.length;
   const averaged = new AveragedModel(new ModelPoint(layout, fixed));
-  const result = leastSquares(
-    {
-      residuals: rows,
-      evaluate(p, r, jacobian) {
-        for (let k = 0; k < n; k++) {
-          const i = index[k];
-          if (
-            !averaged.evaluate(
-              p,
-              (profile.u[i] - originPx) / unitPx,
-              profile.node[i] / unitPx,
-              profile.nodeWeight[i],
-              jacobian !== null,
-            )
-          )
-            return false;
-          const w = unitLight / profile.sigma[i];
-          r[k] = (profile.light[i] / unitLight - averaged.light) * w;
-          if (jacobian)
-            for (let j = 0; j < layout.size; j++) jacobian[j * rows + k] = averaged.gradient[j] * w;
-        }
-        for (let k = 0; k < priors.length; k++) {
-          const { parameter, value, u } = priors[k];
-          r[n + k] = (value - p[parameter]) / u;
-          if (jacobian)
-            for (let j = 0; j < layout.size; j++) jacobian[j * rows + n + k] = j === parameter ? 1 / u : 0;
-        }
-        return true;
-      },
-    },
-    start,
-    {
-      ...boundsFor(layout, fixed, start, frame.hold ?? []),
-      maxEvaluations: frame.asItIs ? 1 : 120,
-      reductionTolerance: 1e-12,
-      gradientTolerance: 1e-9,
-      enough: frame.trial ? ENOUGH_FOR_TRIAL : ENOUGH,
-    },
-  );
-  return { layout, fixed, result, originPx, unitPx, unitLight, points: n, curvePrior: prior };
+  const evaluate: LeastSquaresProblem['evaluate'] = (p, r, jacobian) => {
+    for (let k = 0; k < n; k++) {
+      const i = index[k];
+      const x = (profile.u[i] - originPx) / unitPx;
+      if (!averaged.evaluate(p, x, profile.node[i] / unitPx, profile.nodeWeight[i], jacobian !== null))
+        return false;
+      const w = unitLight / profile.sigma[i];
+      r[k] = (profile.light[i] / unitLight - averaged.light) * w;
+      if (jacobian) for (let j = 0; j < layout.size; j++) jacobian[j * rows + k] = averaged.gradient[j] * w;
+    }
+    for (let k = 0; k < priors.length; k++) {
+      const { parameter, value, u } = priors[k];
+      r[n + k] = (value - p[parameter]) / u;
+      if (jacobian)
+        for (let j = 0; j < layout.size; j++) jacobian[j * rows + n + k] = j === parameter ? 1 / u : 0;
+    }
+    return true;
+  };
+  return { problem: { residuals: rows, evaluate }, fixed, points: n };
 }
 
 /** Weak knowledge that keeps a flat envelope from wandering, and the stated geometry. */
@@ -384,6 +409,20 @@ export class AveragedModel {
       for (let j = 0; j < gradient.length; j++) gradient[j] = 0.5 * (gradient[j] + point.gradient[j]);
     return true;
   }
+}
+
+/** The fit's light at every point of a profile, averaged over what the point covers; not a number where there is no point. */
+export function lightOn(profile: Profile, fit: ProfileFit): Float64Array {
+  const model = new AveragedModel(new ModelPoint(fit.layout, fit.fixed));
+  const p = fit.result.parameters;
+  const out = new Float64Array(profile.size).fill(NaN);
+  for (let k = 0; k < profile.size; k++) {
+    if (!Number.isFinite(profile.sigma[k])) continue;
+    const x = (profile.u[k] - fit.originPx) / fit.unitPx;
+    if (model.evaluate(p, x, profile.node[k] / fit.unitPx, profile.nodeWeight[k], false))
+      out[k] = model.light * fit.unitLight;
+  }
+  return out;
 }
 
 /** Standard uncertainty of the visibility B/A by the law of propagation; infinite where the covariance does not say. */

@@ -1,4 +1,4 @@
-import type { BandData } from './bands';
+import type { BandData } from './cells';
 
 /**
  * Tangent of the angle by which fringes of a known spacing lean in the bands: the phase of each band at that spacing,

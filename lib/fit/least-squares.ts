@@ -19,7 +19,7 @@ export interface LeastSquaresProblem {
 export interface LeastSquaresOptions {
   lower?: ArrayLike<number>;
   upper?: ArrayLike<number>;
-  /** Model evaluations, with or without Jacobian. */
+  /** Model evaluations. */
   maxEvaluations?: number;
   /** Largest cosine between residuals and any Jacobian column at a solution. */
   gradientTolerance?: number;
@@ -34,8 +34,9 @@ export type LeastSquaresStatus = 'converged' | 'evaluation-limit' | 'stalled' | 
 export interface LeastSquaresResult {
   status: LeastSquaresStatus;
   parameters: Float64Array;
-  /** Sum of squared weighted residuals. */
+  /** Sum of squared weighted residuals, and what it was at the start. */
   chiSquare: number;
+  startChiSquare: number;
   /** Residuals minus free parameters. */
   dof: number;
   evaluations: number;
@@ -68,12 +69,14 @@ export function leastSquares(
   let p = clamp(Float64Array.from(start), lower, upper);
   let r = new Float64Array(m);
   let trialR = new Float64Array(m);
-  const jacobian = new Float64Array(m * n);
+  let jacobian = new Float64Array(m * n);
+  let trialJacobian = new Float64Array(m * n);
   const scale = new Float64Array(n);
   let evaluations = 1;
   let status: LeastSquaresStatus = 'evaluation-limit';
   if (!problem.evaluate(p, r, jacobian)) return emptyResult(p, 'no-value', evaluations, m - n);
   let cost = sumSquares(r);
+  const startCost = cost;
   let damping = 1e-3;
   let growth = 2;
   let quiet = 0;
@@ -109,7 +112,7 @@ export function leastSquares(
         status = 'singular';
         break outer;
       }
-      const trial = Float64Array.from(p);
+      const trial = p.slice();
       for (let i = 0; i < free.length; i++) trial[free[i]] += step[i];
       clamp(trial, lower, upper);
       const predicted = predictedReduction(R, qtb, free, p, trial);
@@ -117,7 +120,8 @@ export function leastSquares(
         status = 'converged';
         break outer;
       }
-      const ok = problem.evaluate(trial, trialR, null);
+      // Most steps are taken, so the derivatives come along at once.
+      const ok = problem.evaluate(trial, trialR, trialJacobian);
       evaluations++;
       const trialCost = ok ? sumSquares(trialR) : Infinity;
       const actual = cost - trialCost;
@@ -126,9 +130,8 @@ export function leastSquares(
         const relative = actual / cost;
         p = trial;
         [r, trialR] = [trialR, r];
+        [jacobian, trialJacobian] = [trialJacobian, jacobian];
         cost = trialCost;
-        problem.evaluate(p, r, jacobian);
-        evaluations++;
         damping *= Math.max(1 / 3, 1 - (2 * ratio - 1) ** 3);
         growth = 2;
         quiet =
@@ -153,15 +156,29 @@ export function leastSquares(
       if (evaluations >= limit) break outer;
     }
   }
-  return finish(problem, p, r, jacobian, cost, status, evaluations, gradientNorm, lower, upper);
+  return finish(p, r, jacobian, cost, startCost, status, evaluations, gradientNorm, lower, upper);
+}
+
+/**
+ * Sum of squares that one undamped step from `p` promises by the linear model: |r|^2 - |Q^T r|^2 with J = Q R. Bounds are not
+ * looked at. Infinite where the model has no value.
+ */
+export function foreseenSumOfSquares(problem: LeastSquaresProblem, p: Float64Array): number {
+  const m = problem.residuals;
+  const n = p.length;
+  const r = new Float64Array(m);
+  const jacobian = new Float64Array(m * n);
+  if (!problem.evaluate(p, r, jacobian)) return Infinity;
+  const cost = sumSquares(r);
+  return cost - sumSquares(qrReduce(jacobian, m, n, r).qtb);
 }
 
 function finish(
-  problem: LeastSquaresProblem,
   p: Float64Array,
   r: Float64Array,
   jacobian: Float64Array,
   cost: number,
+  startCost: number,
   status: LeastSquaresStatus,
   evaluations: number,
   gradientNorm: number,
@@ -169,7 +186,7 @@ function finish(
   upper: ArrayLike<number> | undefined,
 ): LeastSquaresResult {
   const n = p.length;
-  const m = problem.residuals;
+  const m = r.length;
   const boundsHit: number[] = [];
   const free: number[] = [];
   for (let k = 0; k < n; k++) {
@@ -182,6 +199,7 @@ function finish(
     status: settled,
     parameters: p,
     chiSquare: cost,
+    startChiSquare: startCost,
     dof: m - free.length,
     evaluations,
     gradientNorm,
@@ -212,7 +230,7 @@ function covarianceOf(
     if (!(scales[i] > 0) || !Number.isFinite(scales[i])) return null;
     for (let j = 0; j < m; j++) a[i * m + j] = col[j] / scales[i];
   }
-  const { r: R } = qrReduce(a, m, nf, Float64Array.from(r));
+  const { r: R } = qrReduce(a, m, nf, r.slice());
   const small = inverseGram(R, nf, SINGULAR);
   if (small === null) return null;
   const cov = new Float64Array(n * n);
@@ -229,7 +247,7 @@ function factor(
 ): { r: Float64Array; qtb: Float64Array } {
   const a = new Float64Array(m * free.length);
   for (let i = 0; i < free.length; i++) a.set(jacobian.subarray(free[i] * m, free[i] * m + m), i * m);
-  return qrReduce(a, m, free.length, Float64Array.from(r));
+  return qrReduce(a, m, free.length, r.slice());
 }
 
 /** Solves (J^T J + damping D^2) step = J^T r through the factor R, stacked with sqrt(damping) D. */
@@ -325,6 +343,7 @@ function emptyResult(
     status,
     parameters: p,
     chiSquare: Infinity,
+    startChiSquare: Infinity,
     dof,
     evaluations,
     gradientNorm: Infinity,

@@ -1,3 +1,4 @@
+import { medianWithin } from './median';
 import { solveSymmetric } from './small-matrix';
 
 /** Variance of one pixel's light at mean light I: constant + shot I + grain I^2, none of them negative. */
@@ -26,30 +27,35 @@ const MEDIAN_CHI1 = 0.4549364;
 export function fitNoise(light: Float64Array, q: Float64Array, least: number): Noise {
   const n = light.length;
   if (n < 10) return { constant: least, shot: 0, grain: 0 };
-  const bounds = Float64Array.from(light).sort();
+  const bounds = light.slice().sort();
   const levels = Math.max(1, Math.min(LEVELS, Math.floor(n / 30)));
   const edges = Array.from({ length: levels - 1 }, (_, k) => bounds[Math.floor(((k + 1) * n) / levels)]);
-  const members: number[][] = Array.from({ length: levels }, () => []);
+  const level = new Uint8Array(n);
+  const counts = new Int32Array(levels);
+  const sums = new Float64Array(levels);
   for (let i = 0; i < n; i++) {
     let k = 0;
     while (k < edges.length && light[i] >= edges[k]) k++;
-    members[k].push(i);
+    level[i] = k;
+    counts[k]++;
+    sums[k] += light[i];
   }
   const means: number[] = [];
   const variances: number[] = [];
-  for (const part of members) {
-    if (part.length < 10) continue;
-    const sorted = Float64Array.from(part, (i) => q[i]).sort();
-    const limit = (9 * sorted[sorted.length >> 1]) / MEDIAN_CHI1;
+  const part = new Float64Array(n);
+  for (let k = 0; k < levels; k++) {
+    if (counts[k] < 10) continue;
+    let size = 0;
+    for (let i = 0; i < n; i++) if (level[i] === k) part[size++] = q[i];
+    const limit = (9 * medianWithin(part, 0, size)) / MEDIAN_CHI1;
     let s = 0;
     let count = 0;
-    for (let i = 0; i < sorted.length && sorted[i] <= limit; i++) {
-      s += sorted[i];
+    for (let i = 0; i < size; i++) {
+      if (part[i] > limit) continue;
+      s += part[i];
       count++;
     }
-    let mean = 0;
-    for (const i of part) mean += light[i];
-    means.push(mean / part.length);
+    means.push(sums[k] / size);
     variances.push(Math.max(least, count > 0 ? s / count / CUT_AT_3 : least));
   }
   if (means.length === 0) return { constant: least, shot: 0, grain: 0 };

@@ -66,8 +66,8 @@ function placeUncertainty(fit: ProfileFit, covariance: Float64Array, m: number):
   for (const k of [0, 1, fit.layout.curve, fit.layout.chirp]) {
     if (k < 0) continue;
     const h = 1e-6 * Math.max(1e-3, Math.abs(fit.result.parameters[k]));
-    const up = Float64Array.from(fit.result.parameters);
-    const down = Float64Array.from(fit.result.parameters);
+    const up = fit.result.parameters.slice();
+    const down = fit.result.parameters.slice();
     up[k] += h;
     down[k] -= h;
     gradient[k] =
@@ -82,6 +82,27 @@ function placeUncertainty(fit: ProfileFit, covariance: Float64Array, m: number):
 /** Window for the slope of the data about the fit, as a share of the spacing, and the least prominence in sigmas. */
 const WINDOW = 0.22;
 const LEAST_PROMINENCE = 4;
+
+/** Steps a spacing in which a curve's own maximum is looked for, this many at first. */
+const STEPS = 40;
+const COARSE = 6;
+
+/** The step with the highest value within half a spacing, coarse first and then one by one; null at an end. */
+function highest(valueAt: (step: number) => number): number | null {
+  const end = 3 * COARSE;
+  let best = 0;
+  let most = valueAt(0);
+  const look = (i: number) => {
+    const value = valueAt(i);
+    if (!(value > most)) return;
+    most = value;
+    best = i;
+  };
+  for (let i = -end; i <= end; i += COARSE) if (i !== 0) look(i);
+  const coarse = best;
+  for (let d = 1 - COARSE; d < COARSE; d++) if (d !== 0) look(coarse + d);
+  return Math.abs(best) > end ? null : best;
+}
 
 /**
  * Raw middle by the data: the fitted curve's own maximum (minimum), moved by what the data's slope about the fit there
@@ -101,10 +122,9 @@ function pullOf(
       ? model.light
       : NaN;
   const sign = bright ? 1 : -1;
-  const step = spacing / 40;
-  let best = 0;
-  for (let i = -19; i <= 19; i++) if (sign * light(u + i * step) > sign * light(u + best * step)) best = i;
-  if (Math.abs(best) >= 19) return null;
+  const step = spacing / STEPS;
+  const best = highest((i) => sign * light(u + i * step));
+  if (best === null) return null;
   const [l, c, r] = [light(u + (best - 1) * step), light(u + best * step), light(u + (best + 1) * step)];
   const second = (l - 2 * c + r) / (step * step);
   if (!(sign * second < 0)) return null;

@@ -1,5 +1,6 @@
-import { commonU, gainIn, LEFT, strayIn, type BandData } from './bands';
-import { strideOver, type BandFit } from './fit-bands';
+import FFT from 'fft.js';
+import { gainAt, LEFT, strayAt, viewCells, type BandData } from './cells';
+import type { BandFit } from './fit-bands';
 import { linearRoom } from './linear-room';
 import { varianceAt } from './noise';
 
@@ -31,8 +32,8 @@ const LEAST_STRENGTH = 0.01;
 /** Where the light is less than this share of the brightest, its ratio to the fit says nothing. */
 const LEAST_LIGHT = 0.1;
 const REFININGS = 12;
-/** So many cells are enough to see which wave is the strongest. */
-const CELLS_FOR_SEARCH = 6000;
+/** Places a turn of the fastest wave that is looked for: what a wave loses by them is 3 % of its square at most. */
+const PLACES_PER_TURN = 10;
 
 /** Relative misfit of the cells, with weights that make chi-square of it. */
 interface Ratio {
@@ -51,12 +52,12 @@ export function findSecondSystem(band: BandFit, light: Float64Array): SecondSyst
   if (ratio === null) return null;
   const own = 1 / (band.fit.result.parameters[0] * band.fit.unitPx);
   const length = 2 * band.grid.half;
-  const step = 1 / (STEPS_PER_TURN * length);
+  const spectra = new GroupSpectra(ratio, band.grid.from, length, TO * own);
   const gains: number[] = [];
   let best: SecondSystem | null = null;
-  for (let q = FROM * own; q < TO * own; q += step) {
-    if (Math.abs(q - own) < OWN_TURNS / length) continue;
-    const found = bestLean(ratio, q, band);
+  for (let k = Math.ceil((FROM * own) / spectra.step); k * spectra.step < TO * own; k++) {
+    if (Math.abs(k * spectra.step - own) < OWN_TURNS / length) continue;
+    const found = spectra.bestLean(k, heightOf(band));
     gains.push(found.gain);
     if (best === null || found.gain > best.gain) best = found;
   }
@@ -64,7 +65,7 @@ export function findSecondSystem(band: BandFit, light: Float64Array): SecondSyst
   gains.sort((a, b) => a - b);
   const middle = gains[gains.length >> 1];
   if (!(best.gain > LEAST_GAIN) || !(best.gain > ABOVE_MIDDLE * middle)) return null;
-  const found = refined(ratio, best, step, 1 / (4 * heightOf(band)));
+  const found = refined(ratio, best, spectra.step, 1 / (4 * heightOf(band)));
   return Math.hypot(found.c, found.s) > LEAST_STRENGTH ? found : null;
 }
 
@@ -120,14 +121,15 @@ function ratioOf(band: BandFit, light: Float64Array): Ratio | null {
     groups,
     size: 0,
   };
+  const { u: place, bin, light: fitted } = viewCells(data, state, grid, table);
   for (let b = 0; b < data.bands; b++) {
     if (!(state.gain[b] > 0)) continue;
-    for (let j = 0; j < data.bins; j++) {
-      const cell = b * data.bins + j;
+    for (let cell = b * data.bins, end = cell + data.bins; cell < end; cell++) {
       const why = state.left[cell];
-      if (data.pixels[cell] === 0 || (why !== LEFT.used && why !== LEFT.outlier)) continue;
-      const u = commonU(data, state, b, cell);
-      const expected = strayIn(state, grid, b, u) + gainIn(data, state, grid, b, cell) * table.lightAt(u);
+      if (bin[cell] < 0 || (why !== LEFT.used && why !== LEFT.outlier)) continue;
+      const u = place[cell];
+      const z = u / grid.half;
+      const expected = strayAt(state, b, u, z) + gainAt(state, b, data.dv[cell], z) * fitted[cell];
       if (!(expected > LEAST_LIGHT * top)) continue;
       const k = ratio.size++;
       ratio.u[k] = data.u[cell];
@@ -140,41 +142,69 @@ function ratioOf(band: BandFit, light: Float64Array): Ratio | null {
   return ratio.size > 200 ? ratio : null;
 }
 
-/** Phasors of groups of bands at q, from some of the cells, put together at the lean that gives most. */
-function bestLean(ratio: Ratio, q: number, band: BandFit): SecondSystem {
-  const every = strideOver(ratio.size, CELLS_FOR_SEARCH, band.data.bins);
-  const re = new Float64Array(ratio.groups);
-  const im = new Float64Array(ratio.groups);
-  const vs = new Float64Array(ratio.groups);
-  const ws = new Float64Array(ratio.groups);
-  let total = 0;
-  for (let i = 0; i < ratio.size; i += every) {
-    const turn = 2 * Math.PI * q * ratio.u[i];
-    const g = ratio.group[i];
-    const w = ratio.w[i];
-    re[g] += w * ratio.rel[i] * Math.cos(turn);
-    im[g] += w * ratio.rel[i] * Math.sin(turn);
-    vs[g] += w * ratio.v[i];
-    ws[g] += w;
-    total += w;
-  }
-  const most = MOST_LEAN * q;
-  const step = Math.min(most, 1 / (4 * heightOf(band)));
-  let best: SecondSystem = { q, t: 0, c: 0, s: 0, gain: 0 };
-  for (let t = -most; t <= most + 1e-12; t += step) {
-    let c = 0;
-    let s = 0;
+/**
+ * Phasors of the relative misfit of groups of bands at all frequencies, by one transform a group over places finer than the
+ * fastest wave. They are put together at the lean that gives most.
+ */
+class GroupSpectra {
+  /** Distance of neighbouring frequencies, cycles per px. */
+  readonly step: number;
+  private readonly spectra: Float64Array[] = [];
+  private readonly v: number[] = [];
+  private total = 0;
+
+  constructor(ratio: Ratio, from: number, length: number, fastest: number) {
+    const place = 1 / (PLACES_PER_TURN * fastest);
+    const wanted = Math.max(STEPS_PER_TURN * length, 2 * length) / place;
+    const size = 2 ** Math.ceil(Math.log2(Math.max(16, wanted)));
+    this.step = 1 / (size * place);
+    const fft = new FFT(size);
+    let i = 0;
     for (let g = 0; g < ratio.groups; g++) {
-      if (ws[g] === 0) continue;
-      const turn = 2 * Math.PI * t * (vs[g] / ws[g]);
-      c += re[g] * Math.cos(turn) - im[g] * Math.sin(turn);
-      s += im[g] * Math.cos(turn) + re[g] * Math.sin(turn);
+      const sums = new Float64Array(size);
+      let weight = 0;
+      let along = 0;
+      for (; i < ratio.size && ratio.group[i] === g; i++) {
+        const at = Math.floor((ratio.u[i] - from) / place);
+        // Bands are shifted against each other by less than the room beyond the region.
+        sums[(at + size) % size] += ratio.w[i] * ratio.rel[i];
+        weight += ratio.w[i];
+        along += ratio.w[i] * ratio.v[i];
+      }
+      if (weight === 0) continue;
+      const spectrum = new Float64Array(2 * size);
+      fft.realTransform(spectrum, sums);
+      this.spectra.push(spectrum);
+      this.v.push(along / weight);
+      this.total += weight;
     }
-    // Sums of w cos^2 and w sin^2 are half of the sum of w, up to what one turn more or less matters.
-    const gain = (2 * every * (c * c + s * s)) / total;
-    if (gain > best.gain) best = { q, t, c: (2 * c) / total, s: (2 * s) / total, gain };
   }
-  return best;
+
+  /** The lean that gives most at one frequency; what its phase is does not matter here. */
+  bestLean(k: number, height: number): SecondSystem {
+    const q = k * this.step;
+    const most = MOST_LEAN * q;
+    const step = Math.min(most, 1 / (4 * height));
+    let best: SecondSystem = { q, t: 0, c: 0, s: 0, gain: 0 };
+    for (let t = -most; t <= most + 1e-12; t += step) {
+      let re = 0;
+      let im = 0;
+      for (let g = 0; g < this.spectra.length; g++) {
+        const turn = 2 * Math.PI * t * this.v[g];
+        const c = Math.cos(turn);
+        const s = Math.sin(turn);
+        // The transform turns backwards: its conjugate is the phasor.
+        const r = this.spectra[g][2 * k];
+        const i = -this.spectra[g][2 * k + 1];
+        re += r * c - i * s;
+        im += i * c + r * s;
+      }
+      // Sums of w cos^2 and w sin^2 are half of the sum of w, up to what one turn more or less matters.
+      const gain = (2 * (re * re + im * im)) / this.total;
+      if (gain > best.gain) best = { q, t, c: 0, s: 0, gain };
+    }
+    return best;
+  }
 }
 
 /** Closes in on the maximum: steps in q and t, halved where no neighbour is better. */

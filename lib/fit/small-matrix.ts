@@ -1,7 +1,7 @@
 /** Solves a x = b for a small symmetric system by elimination with pivoting on the diagonal's order; null when singular. */
 export function solveSymmetric(a: Float64Array, b: Float64Array, n: number): Float64Array | null {
-  const m = Float64Array.from(a);
-  const x = Float64Array.from(b);
+  const m = a.slice();
+  const x = b.slice();
   for (let k = 0; k < n; k++) {
     let pivotRow = k;
     for (let i = k + 1; i < n; i++) if (Math.abs(m[i * n + k]) > Math.abs(m[pivotRow * n + k])) pivotRow = i;
@@ -23,6 +23,39 @@ export function solveSymmetric(a: Float64Array, b: Float64Array, n: number): Flo
     x[i] /= m[i * n + i];
   }
   return x;
+}
+
+/** Inverse of a small symmetric positive matrix by its Cholesky factor, row-major; null when it is singular. */
+export function inverseSymmetric(a: Float64Array, n: number): Float64Array | null {
+  // The inverse of the lower factor L, row by row, built beside it.
+  const l = new Float64Array(n * n);
+  const inverse = new Float64Array(n * n);
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j <= i; j++) {
+      let s = a[i * n + j];
+      for (let k = 0; k < j; k++) s -= l[i * n + k] * l[j * n + k];
+      if (j < i) l[i * n + j] = s / l[j * n + j];
+      else if (!(s > 1e-13 * a[i * n + i])) return null;
+      else l[i * n + i] = Math.sqrt(s);
+    }
+    const d = 1 / l[i * n + i];
+    for (let j = 0; j < i; j++) {
+      let s = 0;
+      for (let k = j; k < i; k++) s += l[i * n + k] * inverse[k * n + j];
+      inverse[i * n + j] = -s * d;
+    }
+    inverse[i * n + i] = d;
+  }
+  const out = new Float64Array(n * n);
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j <= i; j++) {
+      let s = 0;
+      for (let k = i; k < n; k++) s += inverse[k * n + i] * inverse[k * n + j];
+      out[i * n + j] = s;
+      out[j * n + i] = s;
+    }
+  }
+  return out;
 }
 
 /** Weighted straight line y = a + b t: coefficients and their standard uncertainties for weights 1/u^2. */

@@ -1,6 +1,7 @@
-import { commonU, gainIn, LEFT, strayIn } from './bands';
-import { expectedOn, type BandFit } from './fit-bands';
+import { gainAt, LEFT, strayAt, viewCells } from './cells';
+import type { BandFit } from './fit-bands';
 import { AveragedModel } from './fit-profile';
+import { expectedOn } from './fit-table';
 import { varianceAt } from './noise';
 import { ModelPoint } from './two-slit-model';
 
@@ -32,10 +33,11 @@ export function spreadOf(band: BandFit): Spread | null {
   const c = fit.result.covariance;
   if (c === null) return null;
   const n = fit.layout.size;
-  const influences = bandInfluences(band, c, n);
+  const gradients = gradientsOnGrid(band);
+  const influences = bandInfluences(band, gradients, c, n);
   const { groups, members } = groupBands(influences, n);
   const byBandsMatrix = sumOuter(members, n, groups > 1 ? groups / (groups - 1) : 1);
-  const segments = profileInfluences(band, c, n);
+  const segments = profileInfluences(band, gradients, c, n);
   const chi = fit.result.chiSquare / Math.max(1, fit.result.dof);
   const misfit = chi > 1 + 3 * Math.sqrt(2 / Math.max(1, fit.result.dof));
   const bySegments = sumOuter(
@@ -79,25 +81,23 @@ function floored(a: Float64Array, noise: Float64Array, n: number): Float64Array 
 }
 
 /** Influence of each band on the parameters: C * sum over its cells of weight * residual * gradient. */
-function bandInfluences(band: BandFit, c: Float64Array, n: number): Float64Array[] {
+function bandInfluences(band: BandFit, gradients: Float64Array, c: Float64Array, n: number): Float64Array[] {
   const { data, state, grid, table, fit } = band;
-  const gradients = gradientsOnGrid(band);
+  const { u: place, bin, light: fitted } = viewCells(data, state, grid, table);
   const expected = expectedOn(grid, table);
   const out: Float64Array[] = [];
   for (let b = 0; b < data.bands; b++) {
     const score = new Float64Array(n);
     if (!(state.gain[b] > 0) || state.noise === null) continue;
-    for (let j = 0; j < data.bins; j++) {
-      const cell = b * data.bins + j;
-      if (data.pixels[cell] === 0 || state.left[cell] !== LEFT.used) continue;
-      const u = commonU(data, state, b, cell);
-      const g = gainIn(data, state, grid, b, cell);
-      const k = Math.floor((u - grid.from) / grid.pitchPx);
-      if (k < 0 || k >= grid.bins) continue;
-      const extra = strayIn(state, grid, b, u);
-      const w = (data.pixels[cell] * g * g) / varianceAt(state.noise, g * expected[k] + extra);
-      const r = (data.light[cell] - extra) / g - table.lightAt(u);
-      const wr = w * r * fit.unitLight;
+    for (let cell = b * data.bins, end = cell + data.bins; cell < end; cell++) {
+      const k = bin[cell];
+      if (k < 0 || state.left[cell] !== LEFT.used) continue;
+      const u = place[cell];
+      const z = u / grid.half;
+      const g = gainAt(state, b, data.dv[cell], z);
+      const extra = strayAt(state, b, u, z);
+      const w = (data.pixels[cell] * g) / varianceAt(state.noise, g * expected[k] + extra);
+      const wr = w * (data.light[cell] - extra - g * fitted[cell]) * fit.unitLight;
       for (let i = 0; i < n; i++) score[i] += wr * gradients[k * n + i];
     }
     out.push(multiply(c, score, n));
@@ -168,9 +168,13 @@ function effectiveCount(members: Float64Array[]): number {
 }
 
 /** Influence of segments along the profile, about one fringe each. */
-function profileInfluences(band: BandFit, c: Float64Array, n: number): Float64Array[] {
+function profileInfluences(
+  band: BandFit,
+  gradients: Float64Array,
+  c: Float64Array,
+  n: number,
+): Float64Array[] {
   const { fit, profile, grid } = band;
-  const gradients = gradientsOnGrid(band);
   const spacing = fit.result.parameters[0] * fit.unitPx;
   const out: Float64Array[] = [];
   let score = new Float64Array(n);

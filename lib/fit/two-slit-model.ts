@@ -78,19 +78,19 @@ export interface ModelFixed {
   detector?: { offset: Float64Array; weight: Float64Array };
 }
 
-const SLIT = { value: 1, slope: 0 };
+/** Below this argument of the sine its series is exact to the last digit. */
+const SMALL = 1e-3;
 
-/** sinc(t) = sin(pi t)/(pi t) and its derivative by t. */
-function sincInto(out: { value: number; slope: number }, t: number): void {
+/** sinc(t) = sin(pi t)/(pi t). */
+function sinc(t: number): number {
   const pt = Math.PI * t;
-  if (Math.abs(pt) < 1e-3) {
-    out.value = 1 - (pt * pt) / 6;
-    out.slope = (-Math.PI * pt) / 3;
-    return;
-  }
-  const value = Math.sin(pt) / pt;
-  out.value = value;
-  out.slope = (Math.PI * (Math.cos(pt) - value)) / pt;
+  return Math.abs(pt) < SMALL ? 1 - (pt * pt) / 6 : Math.sin(pt) / pt;
+}
+
+/** The derivative of sinc by t, with its value. */
+function sincSlope(t: number, value: number): number {
+  const pt = Math.PI * t;
+  return Math.abs(pt) < SMALL ? (-Math.PI * pt) / 3 : (Math.PI * (Math.cos(pt) - value)) / pt;
 }
 
 /** Value and derivatives at one place; reused between calls. */
@@ -132,8 +132,22 @@ export class ModelPoint {
     const dmdX = (flat * flat * flat) / spacing;
     const dmdx = dmdX / (bend * bend);
     const tau = m - p[3];
-    this.slits(p, tau);
-    const { even, cross, evenSlope, crossSlope } = this;
+    const unequal = at.unequal >= 0;
+    let even: number;
+    let cross: number;
+    let evenSlope: number;
+    let crossSlope: number;
+    if (unequal) {
+      this.slits(p, tau);
+      ({ even, cross, evenSlope, crossSlope } = this);
+    } else {
+      const t = p[2] * tau;
+      const value = sinc(t);
+      even = value * value;
+      cross = even;
+      evenSlope = 2 * value * sincSlope(t, value);
+      crossSlope = evenSlope;
+    }
     const phase = 2 * Math.PI * m;
     const cos = Math.cos(phase);
     const sin = Math.sin(phase);
@@ -173,33 +187,26 @@ export class ModelPoint {
     if (at.chirp >= 0) g[at.chirp] = -gain * dfdm * dmdX * X * X;
     if (at.tone >= 0) g[at.tone] = light * Math.log(plain);
     if (at.fade >= 0) g[at.fade] = -gain * 0.5 * cross * p[5] * fade * cos * width * m * m;
-    if (at.unequal >= 0) g[at.unequal] = gain * 0.5 * (p[4] * this.evenUnequal + swing * this.crossUnequal);
+    if (unequal) g[at.unequal] = gain * 0.5 * (p[4] * this.evenUnequal + swing * this.crossUnequal);
     return true;
   }
 
-  /** Fills the slits' parts: (s1^2 + s2^2)/2 and s1 s2, their derivatives by ratio * tau and by unequal. */
+  /** Fills the parts of slits of two widths: (s1^2 + s2^2)/2 and s1 s2, their derivatives by ratio * tau and by unequal. */
   private slits(p: Float64Array, tau: number): void {
     const { unequal: index } = this.layout;
-    if (index < 0) {
-      sincInto(SLIT, p[2] * tau);
-      const { value, slope } = SLIT;
-      this.even = value * value;
-      this.cross = this.even;
-      this.evenSlope = 2 * value * slope;
-      this.crossSlope = this.evenSlope;
-      return;
-    }
     const a = 1 + p[index];
     const b = 1 - p[index];
     const t = p[2] * tau;
-    sincInto(SLIT, a * t);
-    const s1 = a * SLIT.value;
-    const d1 = a * a * SLIT.slope;
-    const e1 = SLIT.value + a * t * SLIT.slope;
-    sincInto(SLIT, b * t);
-    const s2 = b * SLIT.value;
-    const d2 = b * b * SLIT.slope;
-    const e2 = -SLIT.value - b * t * SLIT.slope;
+    const value1 = sinc(a * t);
+    const slope1 = sincSlope(a * t, value1);
+    const s1 = a * value1;
+    const d1 = a * a * slope1;
+    const e1 = value1 + a * t * slope1;
+    const value2 = sinc(b * t);
+    const slope2 = sincSlope(b * t, value2);
+    const s2 = b * value2;
+    const d2 = b * b * slope2;
+    const e2 = -value2 - b * t * slope2;
     this.even = 0.5 * (s1 * s1 + s2 * s2);
     this.cross = s1 * s2;
     this.evenSlope = s1 * d1 + s2 * d2;

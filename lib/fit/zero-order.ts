@@ -1,4 +1,4 @@
-import { rebase, type ProfileFit } from './fit-profile';
+import { foreseenAfterRebase, rebase, type ProfileFit } from './fit-profile';
 import type { Profile } from './profile';
 
 /** Which bright fringe is the zero order, and how sure that is. */
@@ -14,6 +14,8 @@ export interface ZeroChoice {
 /** How far the envelope's middle may stand from the zero order, in orders (common practice, no source). */
 const USUAL_OFFSET = 0.18;
 const REACH = 2;
+/** So far behind by one linear step a numbering is not fitted. */
+const HOPELESS = 100;
 
 /**
  * Weighs the fringes next to the envelope's middle as zero order: by their distance from it, and by chi-square, since with a
@@ -25,12 +27,17 @@ export function chooseZero(profile: Profile, fit: ProfileFit): ZeroChoice {
   const offset = fit.result.parameters[3];
   const uOffset = fit.result.covariance ? Math.sqrt(fit.result.covariance[3 * n + 3]) : 0;
   const spread = Math.hypot(USUAL_OFFSET, uOffset);
-  const choices: { fit: ProfileFit; cost: number }[] = [];
-  for (let step = -REACH; step <= REACH; step++) {
-    // Moving the numbering by step leaves the envelope's middle at offset - step.
-    const moved = step === 0 ? fit : rebase(profile, fit, step);
-    choices.push({ fit: moved, cost: moved.result.chiSquare / scale + ((offset - step) / spread) ** 2 });
-  }
+  const steps = Array.from({ length: 2 * REACH + 1 }, (_, i) => i - REACH);
+  // Moving the numbering by step leaves the envelope's middle at offset - step.
+  const costOf = (step: number, chiSquare: number) => chiSquare / scale + ((offset - step) / spread) ** 2;
+  const foreseen = foreseenAfterRebase(profile, fit, steps).map((chi, i) => costOf(steps[i], chi));
+  const least = Math.min(...foreseen);
+  const choices = steps
+    .filter((step, i) => step === 0 || foreseen[i] < least + HOPELESS)
+    .map((step) => {
+      const moved = rebase(profile, fit, step);
+      return { fit: moved, cost: costOf(step, moved.result.chiSquare) };
+    });
   choices.sort((a, b) => a.cost - b.cost);
   const best = choices[0];
   const weights = choices.map((c) => likelihood(c.cost - best.cost));
@@ -41,7 +48,12 @@ export function chooseZero(profile: Profile, fit: ProfileFit): ZeroChoice {
     (s, _, i) => s + (weights[i] / total) * (spacings[i] - spacings[0]) ** 2,
     0,
   );
-  return { fit: best.fit, probability: 1 / total, next: weights[1] / total, uSpacing: Math.sqrt(variance) };
+  return {
+    fit: best.fit,
+    probability: 1 / total,
+    next: (weights[1] ?? 0) / total,
+    uSpacing: Math.sqrt(variance),
+  };
 }
 
 /** Odds below one in ten thousand are not a doubt. */

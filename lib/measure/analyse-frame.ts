@@ -7,7 +7,6 @@ import type {
   SetupValues,
   Timing,
 } from '@/lib/domain/reading-result';
-import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { spreadOf } from '@/lib/fit/spread';
 import { decodePicture } from '@/lib/imaging/decode';
 import { angleBetween, findFringes, type FringePlace } from '@/lib/imaging/find-fringes';
@@ -15,9 +14,10 @@ import { coordinatesIn } from '@/lib/imaging/geometry';
 import type { Picture } from '@/lib/imaging/picture';
 import { Refused } from '@/lib/imaging/refused';
 import { looksLikeRings } from '@/lib/imaging/rings';
+import { countWideStripes } from '@/lib/imaging/wide-stripes';
 import { refusalOf } from './answer';
 import type { FrameStack } from './band-stack';
-import { judgePlace, noFringes, ringsRefusal, tooFew, weigh } from './judge';
+import { judgePlace, noFringes, ringsRefusal, tooFew } from './judge';
 import { refuseByLight } from './light';
 import { curvePrior, noTime, resultFromStack, type Clock } from './measure-stack';
 import { growPlace, lookAtPlace, planFor, stackOf, type PlaceAsk, type PlaceFit } from './place';
@@ -25,10 +25,6 @@ import { growPlace, lookAtPlace, planFor, stackOf, type PlaceAsk, type PlaceFit 
 const PLACES_TRIED = 4;
 const CROSSING_ENERGY = 0.4;
 const CROSSING_FRINGES = 4;
-/** Fringes over the frame that are tried where no wave was found, and how well one or two must fit. */
-const WIDE_FRINGES = 1.6;
-const WIDE_MISFIT = 0.02;
-const WIDE_SWING = 30;
 /** Misfit of a first look, relative to the fringes, up to which they are straight. */
 const PLAIN_MISFIT = 0.05;
 
@@ -110,7 +106,7 @@ function measureBest(
   if (looksLikeRings(picture)) throw ringsRefusal();
   if (refused === null || refused.code === 'NO_FRINGES') {
     refuseByLight(picture);
-    refuseTooFew(picture, curvePrior(setup));
+    refuseTooFew(picture);
   }
   throw refused ?? noFringes();
 }
@@ -166,20 +162,10 @@ function withZero(stack: FrameStack, setup: SetupValues, options: FitOptions, ms
   return counted ? fromPlan(stack, setup, options, ms) : { stack, result: plainly };
 }
 
-/** Fringes too wide to be found as a wave: one or two that fit over the whole frame are named, not denied. */
-function refuseTooFew(picture: Picture, prior: CurvePrior | null): void {
-  const { widthPx, heightPx } = picture;
-  const rect = { cxPx: widthPx / 2, cyPx: heightPx / 2 };
-  for (const angleDeg of [0, 90]) {
-    const [lengthPx, across] = angleDeg === 0 ? [widthPx, heightPx] : [heightPx, widthPx];
-    const whole = { ...rect, lengthPx, heightPx: across, angleDeg };
-    const look = lookAtPlace({ picture, rect: whole, spacingPx: lengthPx / WIDE_FRINGES, prior });
-    if (look === null) continue;
-    const { fringes, misfit, swingSigmas } = weigh(look);
-    const plain = misfit < WIDE_MISFIT && swingSigmas > WIDE_SWING;
-    if (plain && fringes > 0 && fringes < 3 && look.band.fit.result.parameters[2] < 0.5)
-      throw tooFew(fringes);
-  }
+/** Fringes too wide to be found as a wave are named, not denied. */
+function refuseTooFew(picture: Picture): void {
+  const stripes = countWideStripes(picture);
+  if (stripes !== null && stripes < 3) throw tooFew(Math.max(1, stripes));
 }
 
 /** Two systems of one spacing that cross: a chessboard, cloth, a pixel screen, but no two-slit pattern. */

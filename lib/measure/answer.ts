@@ -36,15 +36,17 @@ export function resultOf({ stack, region, measured, setup, options, ms }: Answer
   const { picture } = stack;
   const { fit } = place.band;
   const p = fit.result.parameters;
-  // Bands are laid along the stack's axis; what the fringes still lean against it shortens the way square to them.
-  const leanDeg = toDegrees(Math.atan(place.tilt.slope));
+  const zeroU = fit.originPx + p[1] * fit.unitPx;
+  // Bands are laid along the stack's axis; what the zero order still leans against it shortens the way square to it. Fringes
+  // that fan out each have a lean of their own.
+  const leanDeg = toDegrees(Math.atan(place.tilt.slope + place.band.state.fan * zeroU));
   const square = Math.cos(toRadians(leanDeg));
   const spacingPx = p[0] * fit.unitPx * square;
   const uSpacingPx = Math.sqrt(spread.covariance[0]) * fit.unitPx * square;
   const toAlong = alongIn(region, place);
   const orders = ordersOf(measured, region, toAlong, options);
   const zeroPlace = orders.find((o) => o.m === 0);
-  const zero = zeroPlace ?? pointAlong(region, toAlong(fit.originPx + p[1] * fit.unitPx));
+  const zero = zeroPlace ?? pointAlong(region, toAlong(zeroU));
   const curves = curvesOf(place, toAlong);
   const known =
     spread.from === 'noise' ? 'noise model' : `type A, scatter of ${Math.round(spread.groups)} bands`;

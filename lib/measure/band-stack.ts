@@ -1,5 +1,5 @@
 import type { StackPlan } from '@/lib/domain/reading-result';
-import type { BandData } from '@/lib/fit/bands';
+import type { BandData } from '@/lib/fit/cells';
 import type { LightLimits } from '@/lib/fit/fit-bands';
 import { coordinatesIn, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
 import type { SourceFacts } from '@/lib/imaging/picture';

@@ -1,2 +1,2 @@
 /** Changes whenever any digit of any answer changes; stored with every reading. */
-export const ENGINE_VERSION = '0.6.1';
+export const ENGINE_VERSION = '0.7.0';

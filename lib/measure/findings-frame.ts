@@ -1,6 +1,6 @@
 /** Checks of what the camera and the file did to the light. */
 import type { Finding } from '@/lib/domain/reading-result';
-import { LEFT } from '@/lib/fit/bands';
+import { LEFT } from '@/lib/fit/cells';
 import { finding, movedBy, numberText, percent, type FindingContext } from './finding-context';
 import { demosaicRelative } from './wavelength';
 

@@ -17,13 +17,15 @@ const FEW_MISFIT = 0.1;
 /** Slits wider than this share of their separation are one slit with a bar in it. */
 const MOST_RATIO = 0.8;
 const MOST_HARMONIC = 0.2;
+/** What a grating of up to five slits leaves of the profile's variance stays below this; walls and pages leave more (simulation). */
+const MOST_UNEXPLAINED = 0.05;
 const MOST_LOCK = 0.3;
 const CLEAN_MISFIT = 0.02;
 const LEAST_GAIN = 60;
 const LEAST_VISIBILITY = 0.03;
 const MOST_VISIBILITY = 1.08;
-/** An envelope this flat has no end in the region. */
-const LEAST_RATIO = 0.01;
+/** An envelope flatter than this has no end that counts. */
+const BOUNDED_RATIO = 0.03;
 const MOST_BOW = 0.22;
 const MOST_BARREL = 0.03;
 
@@ -36,6 +38,8 @@ export interface Evidence {
   misfit: number;
   /** Second harmonic over first: 0 for two slits, 0.5 for three. */
   harmonic: number;
+  /** Share of the profile's variance that no pattern of this period describes. */
+  unexplained: number;
   visibility: number;
   /** Swing at half the fitted frequency over the swing at it: far above 0 where the fit locked on half the spacing. */
   lock: number;
@@ -73,6 +77,7 @@ export function weigh(place: FittedPattern): Evidence {
     rest += w * r * r;
     n++;
   }
+  const harmonics = harmonicsOf(place);
   const c = fit.result.covariance;
   const scale = Math.max(1, fit.result.chiSquare / Math.max(1, fit.result.dof));
   const uSwing = c === null ? Infinity : Math.sqrt(c[5 * fit.layout.size + 5] * scale);
@@ -80,7 +85,8 @@ export function weigh(place: FittedPattern): Evidence {
     fringes: countFringes(place),
     swingSigmas: p[5] / uSwing,
     misfit: n > 0 && swing > 0 ? Math.sqrt(Math.max(0, rest - n) / swing) : Infinity,
-    harmonic: secondHarmonic(place),
+    harmonic: harmonics.second,
+    unexplained: harmonics.left,
     visibility: visibilityOf(fit),
     lock: lockOn(place),
   };
@@ -171,24 +177,44 @@ function spanInOrders(place: FittedPattern, first: number, last: number): number
   return Math.max(0, high - low);
 }
 
-/** Weighted regression of the profile on 1, z, E, E cos, E cos 2: second coefficient over first. */
-function secondHarmonic(place: FittedPattern): number {
+/** Harmonics of the fringes that many slits have; five slits have four. */
+const HARMONICS = 4;
+
+/**
+ * Regression of the profile on 1, z, E and E cos(pi k m), twice the fringes' harmonics, for a fit of many slits may lock on
+ * half their spacing: second harmonic over the first, and what is left of the profile's variance beside all of them.
+ */
+function harmonicsOf(place: FittedPattern): { second: number; left: number } {
   const { fit, profile, grid } = place.band;
   const p = fit.result.parameters;
-  const a = new Float64Array(25);
-  const b = new Float64Array(5);
+  const n = 3 + 2 * HARMONICS;
+  const a = new Float64Array(n * n);
+  const b = new Float64Array(n);
+  const t = new Float64Array(n);
+  const total = { n: 0, y: 0, yy: 0 };
   for (let k = 0; k < profile.size; k++) {
     if (!Number.isFinite(profile.sigma[k])) continue;
     const e = envelopeAt(place, profile.u[k]);
-    const phase = 2 * Math.PI * orderAt(fit.layout, fit.fixed, p, toModel(fit, profile.u[k]));
-    const t = [1, profile.u[k] / grid.half, e, e * Math.cos(phase), e * Math.cos(2 * phase)];
-    for (let i = 0; i < 5; i++) {
-      b[i] += t[i] * profile.light[k];
-      for (let j = 0; j < 5; j++) a[i * 5 + j] += t[i] * t[j];
+    const phase = Math.PI * orderAt(fit.layout, fit.fixed, p, toModel(fit, profile.u[k]));
+    t[0] = 1;
+    t[1] = profile.u[k] / grid.half;
+    t[2] = e;
+    for (let h = 1; h <= 2 * HARMONICS; h++) t[2 + h] = e * Math.cos(h * phase);
+    const y = profile.light[k];
+    total.n++;
+    total.y += y;
+    total.yy += y * y;
+    for (let i = 0; i < n; i++) {
+      b[i] += t[i] * y;
+      for (let j = 0; j < n; j++) a[i * n + j] += t[i] * t[j];
     }
   }
-  const x = solveSymmetric(a, b, 5);
-  return x === null || !(x[3] > 0) ? 0 : x[4] / x[3];
+  const x = solveSymmetric(a, b, n);
+  const first = x === null ? 0 : x[4];
+  if (x === null || !(first > 0)) return { second: 0, left: 1 };
+  let rest = total.yy;
+  for (let i = 0; i < n; i++) rest -= x[i] * b[i];
+  return { second: x[6] / first, left: rest / (total.yy - (total.y * total.y) / total.n) };
 }
 
 /** A single slit is named only where its side maxima can be seen; otherwise the light is just a spot or an outline. */
@@ -197,7 +223,9 @@ function showsLobes(place: FittedPattern, evidence: Evidence): boolean {
   const p = fit.result.parameters;
   const lobe = (p[0] * fit.unitPx) / p[2];
   const enough = evidence.misfit < CLEAN_MISFIT ? 2.1 : 2.6;
-  return evidence.swingSigmas > 15 && 2 * grid.half > enough * lobe && p[2] < 1.19;
+  return (
+    evidence.misfit < MOST_MISFIT && evidence.swingSigmas > 15 && 2 * grid.half > enough * lobe && p[2] < 1.19
+  );
 }
 
 /** Does one slit describe the data as well? The second must improve chi-square well beyond its own noise. */
@@ -220,10 +248,11 @@ export function oneSlit(): Refused {
 /** Throws where the light is that of one slit, or of more than two. */
 export function refuseOtherSlits(place: FittedPattern, evidence: Evidence): void {
   const { fit, profile } = place.band;
-  // Where the light is the same over the whole region, a sharp periodic thing is a blind or a wall, not a slit plate.
-  const bounded = fit.result.parameters[2] > LEAST_RATIO;
-  if (evidence.harmonic > MOST_HARMONIC && !bounded) throw noFringes();
   if (evidence.harmonic > MOST_HARMONIC) {
+    // A wall, a blind or a page is periodic and sharp as well, but no grating's light; nor has its light an end.
+    const ratio = fit.result.parameters[2];
+    if (!(ratio > BOUNDED_RATIO && ratio < MOST_RATIO && evidence.unexplained < MOST_UNEXPLAINED))
+      throw noFringes();
     throw new Refused(
       'MANY_SLITS',
       'The maxima are too sharp for two slits: more than two slits are lit. Use a plate with two slits, or cover the others.',

@@ -5,9 +5,10 @@ import type {
   SetupValues,
   Timing,
 } from '@/lib/domain/reading-result';
-import { LEFT, tableFor, type BandData } from '@/lib/fit/bands';
+import { LEFT, type BandData } from '@/lib/fit/cells';
 import { chooseTerms } from '@/lib/fit/choose-terms';
 import { fitBands, fitTilt, type BandFit } from '@/lib/fit/fit-bands';
+import { tableFor } from '@/lib/fit/fit-table';
 import { rebase, stepsToZero, type CurvePrior } from '@/lib/fit/fit-profile';
 import { findSecondSystem, secondInflation, withoutSecond, type SecondSystem } from '@/lib/fit/second-system';
 import { spreadOf, type Spread } from '@/lib/fit/spread';

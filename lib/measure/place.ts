@@ -3,7 +3,7 @@ import type { CurvePrior } from '@/lib/fit/fit-profile';
 import { fitBands, fitTilt, type BandFit, type LightLimits, type TiltFit } from '@/lib/fit/fit-bands';
 import { spreadOf } from '@/lib/fit/spread';
 import type { StartValues } from '@/lib/fit/start-values';
-import type { BandData } from '@/lib/fit/bands';
+import type { BandData } from '@/lib/fit/cells';
 import { leanOfBands } from '@/lib/fit/lean';
 import {
   coordinatesIn,

@@ -8,6 +8,7 @@ export type SubjectKind =
   | 'person'
   | 'bench'
   | 'setup'
+  | 'certificate'
   | 'specification'
   | 'lot'
   | 'unit'
@@ -109,31 +110,26 @@ export async function appendAudit(
 }
 
 export type ChainAnswer =
-  { whole: true; rows: number } | { whole: false; rows: number; brokenAt: number; because: string };
+  | { whole: true; rows: number; anchors: number }
+  | { whole: false; rows: number; brokenAt: number; because: string };
 
 const ROWS_AT_ONCE = 2000;
 
-/** Reads the whole chain and says where it first breaks: a row changed, missing, added, or cut off at the end. */
+/**
+ * Reads the whole chain and says where it first breaks: a row changed, missing, added, or cut off at the end. Then
+ * every anchor must name a row that is still there with the same hash: a log written anew from its start is a chain
+ * too, but not the one the anchors were taken from.
+ */
 export async function verifyChain(): Promise<ChainAnswer> {
   let previous = { id: 0, hash: '0'.repeat(64) };
   for (;;) {
     const rows = await select<StoredRow>(
       'SELECT * FROM audit_rows WHERE id > :after ORDER BY id LIMIT :many',
-      {
-        after: previous.id,
-        many: ROWS_AT_ONCE,
-      },
+      { after: previous.id, many: ROWS_AT_ONCE },
     );
     for (const row of rows) {
-      const broken = (because: string): ChainAnswer => ({
-        whole: false,
-        rows: previous.id,
-        brokenAt: row.id,
-        because,
-      });
-      if (row.id !== previous.id + 1) return broken('A row is missing before this one.');
-      if (row.previous_hash !== previous.hash) return broken('This row does not follow the one before it.');
-      if (hashOf(row) !== row.hash) return broken('The content of this row does not match its hash.');
+      const because = faultOf(row, previous);
+      if (because) return { whole: false, rows: previous.id, brokenAt: row.id, because };
       previous = { id: row.id, hash: row.hash };
     }
     if (rows.length < ROWS_AT_ONCE) break;
@@ -142,12 +138,31 @@ export async function verifyChain(): Promise<ChainAnswer> {
     'SELECT last_id, hash FROM audit_head WHERE id = 1',
   );
   if (head.last_id !== previous.id || head.hash !== previous.hash) {
-    return {
-      whole: false,
-      rows: previous.id,
-      brokenAt: previous.id + 1,
-      because: 'Rows at the end are missing.',
-    };
+    const because =
+      previous.id > head.last_id
+        ? 'A row was added at the end beside the product.'
+        : 'Rows at the end are missing.';
+    return { whole: false, rows: previous.id, brokenAt: Math.min(previous.id, head.last_id) + 1, because };
   }
-  return { whole: true, rows: previous.id };
+  return checkAnchors(previous.id);
+}
+
+function faultOf(row: StoredRow, previous: { id: number; hash: string }): string | null {
+  if (row.id !== previous.id + 1) return 'A row is missing before this one.';
+  if (row.previous_hash !== previous.hash) return 'This row does not follow the one before it.';
+  if (hashOf(row) !== row.hash) return 'The content of this row does not match its hash.';
+  return null;
+}
+
+async function checkAnchors(rows: number): Promise<ChainAnswer> {
+  const anchors = await select<{ day: string; last_id: number; hash: string; now: string | null }>(
+    `SELECT DATE_FORMAT(a.day, '%Y-%m-%d') AS day, a.last_id, a.hash, r.hash AS now FROM audit_anchors a
+     LEFT JOIN audit_rows r ON r.id = a.last_id ORDER BY a.day`,
+  );
+  const moved = anchors.find((anchor) => anchor.last_id > 0 && anchor.now !== anchor.hash);
+  if (moved) {
+    const because = `The log is another one than on ${moved.day}, when this row was written down and mailed.`;
+    return { whole: false, rows, brokenAt: moved.last_id, because };
+  }
+  return { whole: true, rows, anchors: anchors.length };
 }

@@ -1,4 +1,5 @@
 import 'server-only';
+import { randomUUID } from 'node:crypto';
 import type { NextAuthOptions } from 'next-auth';
 import Credentials from 'next-auth/providers/credentials';
 import { checkPassword } from './commands/check-password';
@@ -37,7 +38,7 @@ export function authOptions(): NextAuthOptions {
     callbacks: {
       jwt({ token, user }) {
         // The token carries an id and a version, nothing a person could read about another.
-        if (user) return { sub: user.id, sessionVersion: user.sessionVersion };
+        if (user) return { sub: user.id, sessionVersion: user.sessionVersion, sessionId: randomUUID() };
         return token;
       },
       session({ session }) {

@@ -59,7 +59,7 @@ async function nearest(
        JSON_VALUE(rr.result_json, '$.dofSpacing') AS dof, so.vacuum_nm AS publishedVacuumNm, so.u_nm AS uPublishedNm
      FROM readings r JOIN reading_states st ON st.reading_id = r.id AND st.status = :accepted
      JOIN frames f ON f.id = r.frame_id JOIN sources so ON so.id = r.source_id JOIN reading_results rr ON rr.reading_id = r.id
-     WHERE r.setup_id = :setupId AND r.spacing_${unit} IS NOT NULL
+     WHERE r.setup_id = :setupId AND so.is_reference AND r.spacing_${unit} IS NOT NULL
        AND f.received_at ${side === 'before' ? '<=' : '>'} :at
      ORDER BY f.received_at ${side === 'before' ? 'DESC' : 'ASC'}, r.id DESC LIMIT 1`,
     { accepted: READING_STEPS.accept.to, setupId, at: receivedAt },

@@ -5,6 +5,8 @@ import type { Role } from '@/lib/domain/roles';
 export interface CommandContext {
   actor: { id: number; name: string; roles: readonly Role[] };
   at: Date;
+  /** The session it is done in; absent where no browser asks. */
+  sessionId?: string | null;
 }
 
 /** The product itself, where no person acts. */

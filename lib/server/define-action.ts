@@ -6,7 +6,7 @@ import type { Me } from '@/lib/domain/views';
 import { PRODUCT, type CommandContext } from './context';
 import { parseInput, toAppError } from './failure';
 import { spendToken, type Rate } from './rate-limit';
-import { addressOfRequest, getMe } from './session';
+import { addressOfRequest, getMe, getSessionId } from './session';
 
 const USUAL_RATE: Rate = { burst: 60, perMinute: 120 };
 
@@ -39,7 +39,11 @@ export function defineAction<Schema extends z.ZodType, T>(
       }
       const at = new Date();
       spendToken(action.name, String(me.id), action.rate ?? USUAL_RATE, at);
-      return action.run({ input: parseInput(action.schema, input), me, context: { actor: me, at } });
+      return action.run({
+        input: parseInput(action.schema, input),
+        me,
+        context: { actor: me, at, sessionId: await getSessionId() },
+      });
     });
 }
 

@@ -16,9 +16,11 @@ const HEAD = [
   'upper_limit_nm',
   'range_limit_nm',
   'outside',
+  'state',
+  'withdrawn_because',
 ];
 
-/** RFC 4180, with numbers at full precision. */
+/** RFC 4180, with numbers at full precision. Withdrawn readings stand at the end, without limits. */
 export function overTimeCsv(view: OverTimeView): string {
   const lines = view.points.map((point, i) => {
     const stretch = view.stretches.find(({ first, last }) => i >= first && i <= last);
@@ -37,11 +39,24 @@ export function overTimeCsv(view: OverTimeView): string {
       stretch?.upperNm,
       stretch?.upperRangeNm,
       point.outside ? 'yes' : 'no',
-    ]
-      .map(cell)
-      .join(',');
+      'accepted',
+      '',
+    ];
   });
-  return [HEAD.join(','), ...lines, ''].join('\r\n');
+  const withdrawn = view.withdrawn.map((point) => [
+    point.readingId,
+    point.label,
+    point.takenAt,
+    point.acceptedAt,
+    point.setupNumber,
+    view.medium,
+    point.valueNm,
+    point.uNm,
+    ...Array<null>(6).fill(null),
+    'withdrawn',
+    point.reason,
+  ]);
+  return [HEAD, ...lines, ...withdrawn].map((line) => `${line.map(cell).join(',')}\r\n`).join('');
 }
 
 function cell(value: string | number | null | undefined): string {

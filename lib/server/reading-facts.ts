@@ -123,6 +123,8 @@ const DID: Record<string, string> = {
   'reading.return': 'returned',
   'reading.send': 'sent',
   'reading.refit': 'fitted',
+  'reading.withdraw': 'withdrew',
+  'reading.ask-withdrawal': 'asked to withdraw',
 };
 
 /** The refusal of the second of two, with who was first and when (read outside the transaction, from the log). */
@@ -145,6 +147,7 @@ const NOW_STANDS: Record<ReadingState, string> = {
   review: 'This reading is in review already.',
   returned: 'This reading has been returned to the technician.',
   accepted: 'This reading has been accepted and is frozen.',
+  withdrawn: 'This reading was withdrawn.',
   replaced: 'Another reading has replaced this one.',
 };
 

@@ -81,7 +81,7 @@ interface Checked {
 async function checkedReading(readingId: number, transaction?: Transaction): Promise<Checked> {
   const [row] = await select<Checked>(
     `SELECT r.bench_id AS benchId, b.name AS bench, r.setup_id AS setupId, r.source_id AS sourceId,
-       so.id IS NOT NULL AS isReference, so.vacuum_nm AS vacuumNm, so.u_nm AS uNm, r.value_nm AS valueNm, r.u_nm AS uValueNm, r.dof
+       COALESCE(so.is_reference, FALSE) AS isReference, so.vacuum_nm AS vacuumNm, so.u_nm AS uNm, r.value_nm AS valueNm, r.u_nm AS uValueNm, r.dof
      FROM readings r JOIN benches b ON b.id = r.bench_id LEFT JOIN sources so ON so.id = r.source_id WHERE r.id = :readingId`,
     { readingId },
     transaction,

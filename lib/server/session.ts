@@ -38,11 +38,17 @@ export async function personOfToken(token: string | undefined): Promise<Me | nul
   return { id, name, email, roles: rows.flatMap(({ role }) => (role ? [role] : [])) };
 }
 
-async function readToken(token: string): Promise<{ id: number; version: number } | null> {
+async function readToken(
+  token: string,
+): Promise<{ id: number; version: number; sessionId: string | null } | null> {
   try {
     const claims = await decode({ token, secret: env().NEXTAUTH_SECRET });
     if (!claims?.sub || claims.sessionVersion === undefined) return null;
-    return { id: Number(claims.sub), version: claims.sessionVersion };
+    return {
+      id: Number(claims.sub),
+      version: claims.sessionVersion,
+      sessionId: claims.sessionId ?? null,
+    };
   } catch (problem) {
     // Out of date, made with another secret, or tampered with: nobody is signed in.
     log().debug({ name: problem instanceof Error ? problem.name : 'unknown' }, 'a session token was refused');
@@ -54,6 +60,12 @@ async function readToken(token: string): Promise<{ id: number; version: number }
 export const getMe = cache(async (): Promise<Me | null> => {
   const jar = await cookies();
   return personOfToken(jar.get(sessionCookie().name)?.value);
+});
+
+/** Which sign-in of the person this is; null for a token that does not say. */
+export const getSessionId = cache(async (): Promise<string | null> => {
+  const token = (await cookies()).get(sessionCookie().name)?.value;
+  return token ? ((await readToken(token))?.sessionId ?? null) : null;
 });
 
 /** The sign-in page, told which page was asked for. */

@@ -1,85 +1,91 @@
 import 'server-only';
+import { daysUntil, dueWord } from '@/lib/domain/due';
 import type { Estimate, SetupValues, ToneChoice } from '@/lib/domain/reading-result';
-import type { BenchFitness, StatedValue } from '@/lib/domain/views';
-import { formatQuantity } from '@/lib/quantity/format';
+import type { UncertaintyShape } from '@/lib/domain/setup';
+import type { BenchFitness } from '@/lib/domain/views';
+import { formatNumber, formatQuantity } from '@/lib/quantity/format';
 
-/** The columns of a setup that say what the bench is. */
-export interface SetupConstants {
-  plate: string;
-  scaleUmPerPx: number;
-  scaleStated: number;
-  scaleK: number;
-  scaleCertificate: string;
-  scaleDue: string | null;
-  separationUm: number;
-  separationStated: number;
-  separationK: number;
-  separationCertificate: string;
-  separationDue: string | null;
-  widthUm: number;
-  widthStated: number;
-  widthK: number;
-  widthCertificate: string;
-  widthDue: string | null;
-  distanceMm: number;
-  distanceStated: number;
-  distanceK: number;
-  distanceCertificate: string;
-  distanceDue: string | null;
-  remountUNm: number | null;
-  remountDof: number | null;
-  tone: ToneChoice;
+/** One value as its columns hold it. */
+export interface StatedColumns {
+  value: number;
+  stated: number;
+  shape: UncertaintyShape;
+  k: number;
+  dof: number | null;
+  certificate: string;
+  /** SHA-256 of the certificate in the store. */
+  file: string | null;
+  due: string | null;
 }
 
+type Prefixed<Name extends string> = {
+  [Part in Exclude<keyof StatedColumns, 'value'> as `${Name}${Capitalize<Part>}`]: StatedColumns[Part];
+};
+
+/** The columns of a setup that say what the bench is. */
+export type SetupConstants = Prefixed<'scale'> &
+  Prefixed<'separation'> &
+  Prefixed<'width'> &
+  Prefixed<'distance'> & {
+    plate: string;
+    scaleUmPerPx: number;
+    separationUm: number;
+    widthUm: number;
+    distanceMm: number;
+    remountUNm: number | null;
+    remountDof: number | null;
+    tone: ToneChoice;
+  };
+
+/** A value with its standard uncertainty. */
+export type KnownValue = StatedColumns & { u: number };
+
 export interface FourValues {
-  scaleUmPerPx: StatedValue;
-  separationUm: StatedValue;
-  widthUm: StatedValue;
-  distanceMm: StatedValue;
+  scaleUmPerPx: KnownValue;
+  separationUm: KnownValue;
+  widthUm: KnownValue;
+  distanceMm: KnownValue;
 }
 
 export function fourValues(row: SetupConstants): FourValues {
-  const one = (
-    value: number,
-    stated: number,
-    k: number,
-    certificate: string,
-    due: string | null,
-  ): StatedValue => ({
-    value,
-    stated,
-    k,
-    u: stated / k,
-    certificate,
-    due,
-  });
-  return {
-    scaleUmPerPx: one(row.scaleUmPerPx, row.scaleStated, row.scaleK, row.scaleCertificate, row.scaleDue),
-    separationUm: one(
-      row.separationUm,
-      row.separationStated,
-      row.separationK,
-      row.separationCertificate,
-      row.separationDue,
-    ),
-    widthUm: one(row.widthUm, row.widthStated, row.widthK, row.widthCertificate, row.widthDue),
-    distanceMm: one(
-      row.distanceMm,
-      row.distanceStated,
-      row.distanceK,
-      row.distanceCertificate,
-      row.distanceDue,
-    ),
+  const one = (name: 'scale' | 'separation' | 'width' | 'distance', value: number): KnownValue => {
+    const stated = row[`${name}Stated`];
+    const k = row[`${name}K`];
+    return {
+      value,
+      stated,
+      shape: row[`${name}Shape`],
+      k,
+      dof: row[`${name}Dof`],
+      u: stated / k,
+      certificate: row[`${name}Certificate`],
+      file: row[`${name}File`],
+      due: row[`${name}Due`],
+    };
   };
+  return {
+    scaleUmPerPx: one('scale', row.scaleUmPerPx),
+    separationUm: one('separation', row.separationUm),
+    widthUm: one('width', row.widthUm),
+    distanceMm: one('distance', row.distanceMm),
+  };
+}
+
+/** How an uncertainty is known, as the budget says it. */
+function knownAs({ shape, k, dof }: StatedColumns): string {
+  const freedom = dof === null ? '' : `, ν = ${formatNumber(dof, Number.isInteger(dof) ? 0 : 1)}`;
+  if (shape === 'rectangular') return `rectangular${freedom}`;
+  return shape === 'type-a' ? `type A${freedom}` : `k = ${k}${freedom}`;
 }
 
 /** The setup as the engine takes it. */
 export function setupValues(row: SetupConstants): SetupValues {
-  const estimate = ({ value, u, certificate, k }: StatedValue): Estimate => ({
-    value,
-    u,
-    known: `${certificate || 'as entered'}, k = ${k}`,
-    dof: null,
+  const estimate = (known: KnownValue): Estimate => ({
+    value: known.value,
+    u: known.u,
+    known: `${known.certificate || 'as entered'}, ${knownAs(known)}`,
+    dof: known.dof,
+    ...(known.shape === 'rectangular' ? { shape: 'rectangular' as const } : {}),
   });
   const four = fourValues(row);
   return {
@@ -91,27 +97,23 @@ export function setupValues(row: SetupConstants): SetupValues {
   };
 }
 
-/** Days before a due date from which a bench asks for attention. */
-const DUE_SOON_DAYS = 30;
-
 /** Days until the first due date of a setup, negative when overdue; null when nothing is ever due. */
 export function daysUntilDue(row: SetupConstants, at: Date): number | null {
   const dues = [row.scaleDue, row.separationDue, row.widthDue, row.distanceDue].filter((due) => due !== null);
   if (!dues.length) return null;
-  const today = Date.parse(at.toISOString().slice(0, 10));
-  return Math.min(...dues.map((due) => Math.round((Date.parse(due) - today) / 86_400_000)));
+  return Math.min(...dues.map((due) => daysUntil(due, at)));
 }
 
 const days = (n: number): string => `${n} ${n === 1 ? 'day' : 'days'}`;
 
 /** Is the bench fit for use today? */
 export function fitnessOf(row: SetupConstants | null, at: Date): BenchFitness {
-  if (!row) return { word: 'stop', text: 'no setup yet' };
+  if (!row) return { word: 'stop', text: 'no setup in force' };
   const left = daysUntilDue(row, at);
   if (left === null) return { word: 'clear', text: 'in force, nothing due' };
   if (left < 0) return { word: 'stop', text: `overdue ${days(-left)}: take, not accept` };
   if (left === 0) return { word: 'look', text: 'due today' };
-  return { word: left <= DUE_SOON_DAYS ? 'look' : 'clear', text: `due in ${days(left)}` };
+  return { word: dueWord(left), text: `due in ${days(left)}` };
 }
 
 const NAMES = [

@@ -16,9 +16,14 @@ export interface Spooled {
 
 /**
  * Streams a body into a file of the spool, hashing as it goes, and makes it durable. Never holds more than one part
- * in memory. Throws NOT_A_PICTURE as soon as the first bytes tell, TOO_LARGE at the cap; nothing is left then.
+ * in memory. Throws NOT_A_PICTURE (or what `typeOf` says) as soon as the first bytes tell, TOO_LARGE at the cap;
+ * nothing is left then.
  */
-export async function spoolBody(body: AsyncIterable<Uint8Array>, capBytes: number): Promise<Spooled> {
+export async function spoolBody(
+  body: AsyncIterable<Uint8Array>,
+  capBytes: number,
+  typeOf: (first: Uint8Array) => string = mediaTypeOf,
+): Promise<Spooled> {
   const folder = env().SPOOL_FOLDER;
   await mkdir(folder, { recursive: true });
   const file = path.join(folder, randomUUID());
@@ -34,11 +39,11 @@ export async function spoolBody(body: AsyncIterable<Uint8Array>, capBytes: numbe
       if (bytes > capBytes) {
         throw new AppError('TOO_LARGE', `This file is larger than ${capBytes / 1024 / 1024} MB.`);
       }
-      if (!mediaType && bytes >= FIRST_BYTES) mediaType = mediaTypeOf(first);
+      if (!mediaType && bytes >= FIRST_BYTES) mediaType = typeOf(first);
       hash.update(part);
       await handle.write(part);
     }
-    mediaType ??= mediaTypeOf(first.subarray(0, bytes));
+    mediaType ??= typeOf(first.subarray(0, bytes));
     await handle.sync();
   } catch (problem) {
     await handle.close();

@@ -46,6 +46,11 @@ export function stackKey(sha256: string): string {
   return `stacks/${sha256}`;
 }
 
+/** Where a certificate lies: under the hash of its bytes. */
+export function certificateKey(sha256: string): string {
+  return `certificates/${sha256}`;
+}
+
 /** The object's size in bytes, or null when there is none. */
 export async function sizeOf(key: string): Promise<number | null> {
   return reach(async () => {

@@ -33,10 +33,10 @@ interface Row {
 
 const clock = (): number => performance.now();
 
-/** v of a region's middle, along the fringes from the zero order. */
-function alongFringes(scene: Scene, region: { cxPx: number; cyPx: number }): number {
+/** v of a point: along the fringes from the middle of the zero order. */
+function alongFringes(scene: Scene, point: { xPx: number; yPx: number }): number {
   const t = (scene.tiltDeg * Math.PI) / 180;
-  return -(region.cxPx - scene.zeroXPx) * Math.sin(t) + (region.cyPx - scene.zeroYPx) * Math.cos(t);
+  return -(point.xPx - scene.zeroXPx) * Math.sin(t) + (point.yPx - scene.zeroYPx) * Math.cos(t);
 }
 
 async function runFamily(family: Family, frames: number, show: boolean): Promise<Row> {
@@ -72,7 +72,8 @@ async function runFamily(family: Family, frames: number, show: boolean): Promise
       continue;
     }
     answered += 1;
-    const truth = spacingAtPx(plan.scene, alongFringes(plan.scene, answer.region));
+    // The spacing is stated where the zero order crosses the region's long axis.
+    const truth = spacingAtPx(plan.scene, alongFringes(plan.scene, answer.zeroOrder));
     const error = answer.spacingPx - truth;
     const bound = cramerRao(plan.scene, plan.camera, curvatureU(plan.scene));
     relative.push(Math.abs(error / truth));

@@ -7,7 +7,7 @@ import path from 'node:path';
 import type { SetupValues } from '@/lib/domain/reading-result';
 import { analyseFrame } from '@/lib/measure/analyse-frame';
 
-const WARM_UP = path.join(__dirname, '..', '..', 'fixtures', 'frames', 'photo.jpg');
+const WARM_UP = path.join(process.cwd(), 'fixtures', 'frames', 'photo.jpg');
 
 /** Peak of the resident memory since it was last forgotten, bytes. Source: proc(5), VmHWM. */
 async function peakBytes(): Promise<number> {

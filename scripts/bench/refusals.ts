@@ -7,7 +7,7 @@ import { encodeFile } from '../simulator/encode';
 import type { Hopeless } from '../simulator/hopeless';
 import { Table, type Section } from './section';
 
-const FIXTURES = path.join(__dirname, '..', '..', 'fixtures');
+const FIXTURES = path.join(process.cwd(), 'fixtures');
 
 /** Files of fixtures/hostile with the code each must be refused with. */
 const HOSTILE: Record<string, RefusalCode> = {

@@ -33,6 +33,8 @@ const LARGE_JPEGS = [
     bandHalfPx: 480,
   },
 ];
+/** Bundled beside this program. */
+const MEMORY = path.join(process.cwd(), '.build', 'bench', 'memory.cjs');
 const LARGE_RUNS = 5;
 const MOST_MEMORY = 5;
 const MOST_MS = 60;
@@ -75,15 +77,7 @@ async function peakBytes(file: Buffer, setup: SetupValues): Promise<number> {
   try {
     const name = path.join(folder, 'frame.jpg');
     await writeFile(name, file);
-    const child = path.join(__dirname, 'memory.ts');
-    const { stdout } = await run(process.execPath, [
-      '--expose-gc',
-      '--import',
-      'tsx',
-      child,
-      name,
-      JSON.stringify(setup),
-    ]);
+    const { stdout } = await run(process.execPath, ['--expose-gc', MEMORY, name, JSON.stringify(setup)]);
     return Number(stdout);
   } finally {
     await rm(folder, { recursive: true, force: true });

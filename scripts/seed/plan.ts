@@ -36,8 +36,11 @@ export interface DemoSetup {
   separationUm: [value: number, stated: number];
   widthUm: [value: number, stated: number];
   distanceMm: [value: number, stated: number];
+  camera: { model: string; serial: string; bits: number };
   why: string;
   dueInDays: { plate: number; scale: number; distance: number };
+  /** Nobody has decided on it yet. */
+  waits?: true;
 }
 
 export const DEMO_BENCHES = [
@@ -55,6 +58,7 @@ export const DEMO_SETUPS: DemoSetup[] = [
     separationUm: [250.1, 0.2],
     widthUm: [50.2, 0.6],
     distanceMm: [300.2, 0.3],
+    camera: { model: 'Invented sensor S-6.9', serial: '0101', bits: 12 },
     why: 'First setup of this bench.',
     dueInDays: { plate: 120, scale: 300, distance: 41 },
   },
@@ -66,6 +70,7 @@ export const DEMO_SETUPS: DemoSetup[] = [
     separationUm: [250.0, 0.19],
     widthUm: [30.0, 0.4],
     distanceMm: [1852.4, 0.9],
+    camera: { model: 'Invented camera K-2', serial: '0207', bits: 12 },
     why: 'First setup of this bench.',
     dueInDays: { plate: 110, scale: 30, distance: 60 },
   },
@@ -77,6 +82,7 @@ export const DEMO_SETUPS: DemoSetup[] = [
     separationUm: [250.0, 0.19],
     widthUm: [30.0, 0.4],
     distanceMm: [1850.2, 0.9],
+    camera: { model: 'Invented camera K-2', serial: '0207', bits: 12 },
     why: 'Screen re-clamped, distance measured again.',
     dueInDays: { plate: 110, scale: 30, distance: 60 },
   },
@@ -88,6 +94,7 @@ export const DEMO_SETUPS: DemoSetup[] = [
     separationUm: [250.0, 0.19],
     widthUm: [30.0, 0.4],
     distanceMm: [1850.2, 0.9],
+    camera: { model: 'Invented camera K-2', serial: '0207', bits: 12 },
     why: 'Pixel scale measured again from a photographed scale.',
     dueInDays: { plate: 110, scale: 200, distance: 20 },
   },
@@ -99,8 +106,22 @@ export const DEMO_SETUPS: DemoSetup[] = [
     separationUm: [249.6, 0.2],
     widthUm: [40.3, 0.5],
     distanceMm: [1000.4, 0.5],
+    camera: { model: 'Invented camera K-2', serial: '0212', bits: 12 },
     why: 'First setup of this bench.',
     dueInDays: { plate: 90, scale: 2, distance: 80 },
+  },
+  {
+    bench: 2,
+    daysAgo: 0.2,
+    plate: 'P-5',
+    scaleUmPerPx: [25.006, 0.012],
+    separationUm: [249.6, 0.2],
+    widthUm: [40.3, 0.5],
+    distanceMm: [1000.4, 0.5],
+    camera: { model: 'Invented camera K-2', serial: '0212', bits: 12 },
+    why: 'Pixel scale measured again: its date is near.',
+    dueInDays: { plate: 90, scale: 200, distance: 80 },
+    waits: true,
   },
 ];
 

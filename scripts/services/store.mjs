@@ -5,6 +5,17 @@ import path from 'node:path';
 const ACCESS = 'S3RVER'; // the fake's fixed key; it listens on loopback only
 const BUCKET = 'midfringe';
 
+/** How the product reaches the local store. */
+export function localStoreEnv(port, bucket = BUCKET) {
+  return {
+    S3_ENDPOINT: `http://127.0.0.1:${port}`,
+    S3_REGION: 'us-east-1',
+    S3_BUCKET: bucket,
+    S3_ACCESS_KEY_ID: ACCESS,
+    S3_SECRET_ACCESS_KEY: ACCESS,
+  };
+}
+
 /** A local S3 store that keeps objects as files. */
 export async function startStore({ data, port, bucket = BUCKET }) {
   const S3rver = createRequire(import.meta.url)('s3rver');
@@ -19,13 +30,7 @@ export async function startStore({ data, port, bucket = BUCKET }) {
   });
   await server.run();
   return {
-    env: {
-      S3_ENDPOINT: `http://127.0.0.1:${port}`,
-      S3_REGION: 'us-east-1',
-      S3_BUCKET: bucket,
-      S3_ACCESS_KEY_ID: ACCESS,
-      S3_SECRET_ACCESS_KEY: ACCESS,
-    },
+    env: localStoreEnv(port, bucket),
     stop: () => {
       server.httpServer.closeAllConnections();
       return server.close();

@@ -104,13 +104,15 @@ describe('the main job', () => {
       await block.getByLabel(name).fill(value);
       await block.getByLabel('± as stated').fill(stated);
       await block.getByLabel('at k =').fill('2');
-      await block.getByLabel('Certificate').fill('Invented certificate');
+      await block.getByLabel('Certificate', { exact: true }).fill('Invented certificate');
     }
     await page.getByLabel('Why a new setup').fill('First setup.');
     await admin.expectAccessible();
     await page.getByRole('button', { name: /setup 1/i }).click();
     await page.waitForURL(/\/benches\/\d+$/);
-    await page.getByRole('heading', { name: 'Bench 7' }).waitFor();
+    await page.getByRole('heading', { name: 'Bench 7', exact: true }).waitFor();
+    await page.getByRole('heading', { name: 'Setup 1 waits for QA' }).waitFor();
+    expect(await page.getByRole('button', { name: /^Approve/ }).count()).toBe(0);
     await admin.expectAccessible();
 
     await page.goto('/specifications');
@@ -127,7 +129,8 @@ describe('the main job', () => {
     await page.getByLabel('Name', { exact: true }).fill('Reference S-1');
     await page.getByLabel('Wavelength in vacuum, nm').fill('635.1725');
     await page.getByLabel(/^Standard uncertainty/).fill('0.001');
-    await page.getByLabel('Where the value comes from').fill('Invented source.');
+    await page.getByLabel('Certificate or publication').fill('Invented certificate S-1');
+    await admin.expectAccessible();
     await page.getByRole('button', { name: /^Add the source|^Add it/ }).click();
     await page.getByText('Reference S-1').first().waitFor();
 
@@ -141,6 +144,27 @@ describe('the main job', () => {
     await page.getByRole('button', { name: 'Add 6 units' }).click();
     await page.getByText('6 units added').waitFor();
     await admin.expectAccessible();
+  });
+
+  test('QA sees what is proposed, declines without a reason in vain, and approves the setup', async () => {
+    const { page } = qa;
+    await qa.signIn(EMAIL.qa);
+    await page.waitForURL('**/over-time**');
+    await page.goto('/benches');
+    await page.getByText('Setup 1 waits for QA').first().waitFor();
+    await page
+      .getByRole('link', { name: /Bench 7/ })
+      .first()
+      .click();
+    await page.getByRole('heading', { name: 'Setup 1 waits for QA' }).waitFor();
+    await page.getByText('First setup.').first().waitFor();
+    await qa.expectAccessible();
+    await page.getByRole('button', { name: 'Decline it' }).click();
+    await page.getByText('Say why it is declined').waitFor();
+    await page.getByLabel('Your word on setup 1').fill('Values compared with the certificates.');
+    await page.getByRole('button', { name: 'Approve setup 1' }).click();
+    await page.getByText(/approved by QA Q: Values compared with the certificates/).waitFor();
+    await qa.expectAccessible();
   });
 
   test('the pixel scale comes from a photographed ruler and names the stored picture', async () => {
@@ -170,7 +194,7 @@ describe('the main job', () => {
     expect(
       await page
         .getByRole('group', { name: /^Pixel scale/ })
-        .getByLabel('Certificate')
+        .getByLabel('Certificate', { exact: true })
         .inputValue(),
     ).toMatch(/picture [0-9a-f]{16}/);
   });
@@ -447,8 +471,7 @@ describe('the main job', () => {
 
   test('QA sees the accepted readings over time, their table and CSV, and the log', async () => {
     const { page } = qa;
-    await qa.signIn(EMAIL.qa);
-    await page.waitForURL('**/over-time**');
+    await page.goto('/over-time');
     await page.getByRole('heading', { name: 'Over time' }).waitFor();
     const csv = await page.getByRole('link', { name: 'Save as CSV' }).getAttribute('href');
     const answer = await page.request.get(new URL(csv ?? '', SITE()).href);

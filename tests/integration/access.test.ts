@@ -6,12 +6,16 @@ import * as references from '@/app/(room)/references/actions';
 import * as lots from '@/app/(room)/lots/actions';
 import * as people from '@/app/(room)/people/actions';
 import * as readings from '@/app/(room)/readings/actions';
+import * as sources from '@/app/(room)/sources/actions';
 import { POST as upload } from '@/app/api/upload/route';
+import { POST as newCertificate } from '@/app/api/certificates/route';
+import { GET as certificate } from '@/app/api/certificates/[sha256]/route';
 import { GET as status } from '@/app/api/frames/status/route';
 import { GET as original } from '@/app/api/frames/[id]/original/route';
 import { GET as photo } from '@/app/api/frames/[id]/photo/route';
 import { GET as scan } from '@/app/api/frames/[id]/scan/route';
 import { POST as previewFit } from '@/app/api/frames/[id]/preview-fit/route';
+import { POST as trials } from '@/app/api/frames/[id]/trials/route';
 import { GET as stack, POST as newStack } from '@/app/api/frames/[id]/stack/route';
 import { GET as overTimeCsv } from '@/app/api/over-time/route';
 import type { ActionAnswer } from '@/lib/domain/errors';
@@ -27,6 +31,10 @@ const MATRIX: Record<string, Who[]> = {
   emptyIntake: ['technician', 'technician2', 'both'],
   addBench: ['admin'],
   addSetup: ['admin'],
+  decideSetup: ['qa'],
+  takeBackSetup: ['admin'],
+  'POST certificates': ['admin', 'qa'],
+  'GET certificates': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   addSpecification: ['admin', 'qa'],
   retireSpecification: ['admin', 'qa'],
   openLot: ['admin', 'technician', 'technician2', 'both'],
@@ -36,12 +44,16 @@ const MATRIX: Record<string, Who[]> = {
   setBenchRule: ['qa'],
   enterBenchConditions: ['admin', 'technician', 'technician2', 'both', 'qa'],
   enterFrameConditions: ['technician', 'technician2', 'both'],
+  renewSource: ['admin', 'qa'],
   addPerson: ['admin'],
   changePerson: ['admin'],
   keepFit: ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   sendToReview: ['technician', 'technician2', 'both'],
   acceptReading: ['reviewer', 'reviewer2', 'both'],
   returnReading: ['reviewer', 'reviewer2', 'both'],
+  addComment: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  askWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
+  answerWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   setOutcome: ['reviewer', 'reviewer2', 'both', 'qa'],
   'POST upload': ['technician', 'technician2', 'both'],
   'GET status': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
@@ -50,6 +62,7 @@ const MATRIX: Record<string, Who[]> = {
   'GET scan': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   'POST preview-fit': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
+  'POST trials': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'POST stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET over-time': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
 };
@@ -112,11 +125,17 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     emptyIntake: () => act(room.emptyIntake()),
     addBench: () => act(benches.addBench({ name: 'Bench T' })),
     addSetup: () => act(benches.addSetup({ ...SETUP, benchId: nowhere, afterNumber: 0 })),
+    decideSetup: () => act(benches.decideSetup({ setupId: nowhere, decision: 'approved' })),
+    takeBackSetup: () => act(benches.takeBackSetup({ setupId: nowhere })),
+    'POST certificates': () => route(newCertificate, 'POST', '/api/certificates?name=a.pdf', ''),
+    'GET certificates': () => route(certificate, 'GET', '/api/certificates/x'),
     addSpecification: () => act(lots.addSpecification(specification)),
     retireSpecification: () => act(lots.retireSpecification({ id: nowhere })),
     openLot: () => act(lots.openLot({ number: '1', specificationId: nowhere })),
     addUnits: () => act(lots.addUnits({ lotId: nowhere, serials: ['X'] })),
-    addSource: () => act(lots.addSource({ name: '', vacuumNm: 633, uNm: 0.1 })),
+    addSource: () => act(sources.addSource({ name: '', kind: 'lamp-line', vacuumNm: 633, uNm: 0.1 })),
+    renewSource: () =>
+      act(sources.renewSource({ sourceId: nowhere, afterNumber: 1, vacuumNm: 633, uNm: 0.1 })),
     releaseBench: () => act(references.releaseBench({ stopId: nowhere, reason: 'x' })),
     setBenchRule: () => act(references.setBenchRule({ benchId: nowhere, method: 'absolute', why: 'x' })),
     enterBenchConditions: () => act(conditions.enterBenchConditions({ benchId: nowhere, ...air })),
@@ -130,6 +149,9 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     acceptReading: () => act(readings.acceptReading({ readingId: nowhere, version: 0, password: 'x' })),
     returnReading: () =>
       act(readings.returnReading({ readingId: nowhere, version: 0, reason: 'take-again' })),
+    addComment: () => act(readings.addComment({ readingId: nowhere, words: 'x' })),
+    askWithdrawal: () => act(readings.askWithdrawal({ readingId: nowhere, version: 0, reason: 'x' })),
+    answerWithdrawal: () => act(readings.answerWithdrawal({ proposalId: nowhere, answer: 'confirmed' })),
     setOutcome: () => act(readings.setOutcome({ unitId: nowhere, outcome: 'passed-on' })),
     'POST upload': () => route(upload, 'POST', '/api/upload?name=a.png&benchId=4000000', ''),
     'GET status': () => route(status, 'GET', '/api/frames/status?ids=4000000'),
@@ -141,6 +163,16 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     'GET stack': () => route(stack, 'GET', '/api/frames/4000000/stack?reading=4000000&engine=x'),
     'POST stack': () =>
       route(newStack, 'POST', '/api/frames/4000000/stack', JSON.stringify({ region, engine: 'x' })),
+    'POST trials': () =>
+      route(
+        trials,
+        'POST',
+        '/api/frames/4000000/trials',
+        JSON.stringify({
+          readingId: null,
+          trials: [{ region, valueNm: null, expandedNm: null, problem: null, agoMs: 0 }],
+        }),
+      ),
     'GET over-time': () => route(overTimeCsv, 'GET', '/api/over-time'),
   };
 }
@@ -155,7 +187,7 @@ async function fingerprint(): Promise<unknown> {
 
 test('the matrix names every call, and every call is in the matrix', () => {
   expect(Object.keys(calls(null)).sort()).toEqual(Object.keys(MATRIX).sort());
-  const exported = [room, benches, conditions, references, lots, people, readings].flatMap((file) =>
+  const exported = [room, benches, conditions, references, lots, people, readings, sources].flatMap((file) =>
     Object.keys(file),
   );
   expect(exported.filter((name) => !(name in MATRIX) && name !== 'signOutEverywhere')).toEqual([]);
@@ -228,6 +260,7 @@ describe('with rows that are there', () => {
       'change a setup',
       () => benches.addSetup({ ...SETUP, benchId: world.benchId, afterNumber: 1 }),
     ],
+    ['admin', 'approve a setup', () => benches.decideSetup({ setupId: world.setupId, decision: 'approved' })],
     [
       'qa',
       'change roles',

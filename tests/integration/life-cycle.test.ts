@@ -1,3 +1,4 @@
+import { setupSchema } from '@/lib/domain/setup-schemas';
 import { acceptReading } from '@/lib/server/commands/accept-reading';
 import { addSetup } from '@/lib/server/commands/add-setup';
 import { returnReading } from '@/lib/server/commands/return-reading';
@@ -224,7 +225,8 @@ describe('re-fits', () => {
     await expect(accept(world.people.reviewer, moved, { version: 0 })).rejects.toMatchObject({
       code: 'NOT_ALLOWED',
     });
-    await expect(accept(world.people.reviewer2, moved, { version: 0 })).resolves.toBeDefined();
+    const moveReason = 'The first region lay on a reflection.';
+    await expect(accept(world.people.reviewer2, moved, { version: 0, moveReason })).resolves.toBeDefined();
   });
 
   test('bar the first sender after a return as well', async () => {
@@ -301,7 +303,7 @@ test('returning for another reason needs words', async () => {
 });
 
 test('two admins entering a setup at once: one is told to look first', async () => {
-  const setup = { benchId: world.benchId, afterNumber: 1, ...SETUP, why: 'New scale.' };
+  const setup = setupSchema.parse({ benchId: world.benchId, afterNumber: 1, ...SETUP, why: 'New scale.' });
   const answers = await Promise.allSettled([
     addSetup(as(world.people.admin), setup),
     addSetup(as(world.people.admin), setup),

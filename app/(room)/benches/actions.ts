@@ -1,8 +1,13 @@
 'use server';
 
-import { benchSchema, setupSchema } from '@/lib/domain/schemas';
+import { benchSchema } from '@/lib/domain/schemas';
+import { decideSetupSchema, setupSchema, takeBackSetupSchema } from '@/lib/domain/setup-schemas';
 import { addBench as addBenchCommand } from '@/lib/server/commands/add-bench';
 import { addSetup as addSetupCommand } from '@/lib/server/commands/add-setup';
+import {
+  decideSetup as decideSetupCommand,
+  takeBackSetup as takeBackSetupCommand,
+} from '@/lib/server/commands/decide-setup';
 import { defineAction } from '@/lib/server/define-action';
 
 export const addBench = defineAction({
@@ -17,4 +22,18 @@ export const addSetup = defineAction({
   permission: 'setups.add',
   schema: setupSchema,
   run: ({ input, context }) => addSetupCommand(context, input),
+});
+
+export const decideSetup = defineAction({
+  name: 'decideSetup',
+  permission: 'setups.decide',
+  schema: decideSetupSchema,
+  run: ({ input, context }) => decideSetupCommand(context, input),
+});
+
+export const takeBackSetup = defineAction({
+  name: 'takeBackSetup',
+  permission: 'setups.add',
+  schema: takeBackSetupSchema,
+  run: ({ input, context }) => takeBackSetupCommand(context, input),
 });

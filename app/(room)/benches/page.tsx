@@ -28,8 +28,9 @@ export default async function Benches() {
             <Link key={bench.id} className="list-row bench-card" href={`/benches/${bench.id}`}>
               <div className="name">{bench.name}</div>
               <div className="text-ink-2">
-                {bench.setupNumber === null ? 'no setup yet' : `setup ${bench.setupNumber} in force`},{' '}
+                {bench.setupNumber === null ? '' : `setup ${bench.setupNumber} in force, `}
                 {bench.fitness.text}
+                {bench.waitingNumber === null ? null : <b>. Setup {bench.waitingNumber} waits for QA</b>}
               </div>
               <SaidCheck word={bench.fitness.word} />
             </Link>

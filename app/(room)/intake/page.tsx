@@ -1,7 +1,8 @@
 import type { Metadata } from 'next';
 import { listBenchChoices } from '@/lib/server/queries/benches';
 import { intakeFrames } from '@/lib/server/queries/frames';
-import { listOpenLots, listSources } from '@/lib/server/queries/lots';
+import { listOpenLots } from '@/lib/server/queries/lots';
+import { listSources } from '@/lib/server/queries/sources';
 import { benchInUse, requireMe } from '@/lib/server/session';
 import { chooseBench, emptyIntake } from '../actions';
 import { sendToReview } from '../readings/actions';

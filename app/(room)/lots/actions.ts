@@ -1,13 +1,6 @@
 'use server';
 
-import {
-  lotSchema,
-  retireSchema,
-  sourceSchema,
-  specificationSchema,
-  unitsSchema,
-} from '@/lib/domain/schemas';
-import { addSource as addSourceCommand } from '@/lib/server/commands/add-source';
+import { lotSchema, retireSchema, specificationSchema, unitsSchema } from '@/lib/domain/schemas';
 import {
   addSpecification as addSpecificationCommand,
   retireSpecification as retireSpecificationCommand,
@@ -41,11 +34,4 @@ export const addUnits = defineAction({
   permission: 'units.add',
   schema: unitsSchema,
   run: ({ input, context }) => addUnitsCommand(context, input),
-});
-
-export const addSource = defineAction({
-  name: 'addSource',
-  permission: 'sources.add',
-  schema: sourceSchema,
-  run: ({ input, context }) => addSourceCommand(context, input),
 });

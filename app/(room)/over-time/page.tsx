@@ -13,6 +13,7 @@ import { ChartTable } from './_components/chart-table';
 import { Findings } from './_components/findings';
 import { Headlines } from './_components/headlines';
 import { PickForm } from './_components/pick-form';
+import { WithdrawnPoints } from './_components/withdrawn-points';
 
 export const metadata: Metadata = { title: 'Over time' };
 
@@ -50,10 +51,14 @@ export default async function OverTime({ searchParams }: { searchParams: Promise
           <aside>
             <BenchesBeside view={view} />
             <Findings view={view} />
+            <WithdrawnPoints view={view} />
           </aside>
         </div>
       ) : (
-        <NoPoints view={view} mayTake={can(me, 'frames.upload')} />
+        <>
+          <NoPoints view={view} mayTake={can(me, 'frames.upload')} />
+          <WithdrawnPoints view={view} />
+        </>
       )}
     </div>
   );

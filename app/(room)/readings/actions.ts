@@ -1,17 +1,25 @@
 'use server';
 
-import { acceptSchema, outcomeSchema, refitSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
+import { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
+import { commentSchema } from '@/lib/domain/comment';
+import { keepFitSchema } from '@/lib/domain/review-schemas';
+import { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
+import { addComment as addCommentCommand } from '@/lib/server/commands/add-comment';
 import { acceptReading as acceptReadingCommand } from '@/lib/server/commands/accept-reading';
 import { keepFit as keepFitCommand } from '@/lib/server/commands/keep-fit';
 import { returnReading as returnReadingCommand } from '@/lib/server/commands/return-reading';
 import { sendReadings } from '@/lib/server/commands/send-reading';
 import { setOutcome as setOutcomeCommand } from '@/lib/server/commands/set-outcome';
+import {
+  answerWithdrawal as answerWithdrawalCommand,
+  askWithdrawal as askWithdrawalCommand,
+} from '@/lib/server/commands/withdraw-reading';
 import { defineAction } from '@/lib/server/define-action';
 
 export const keepFit = defineAction({
   name: 'keepFit',
   permission: 'readings.fit',
-  schema: refitSchema,
+  schema: keepFitSchema,
   run: ({ input, context }) => keepFitCommand(context, input),
 });
 
@@ -41,4 +49,26 @@ export const setOutcome = defineAction({
   permission: 'outcomes.set',
   schema: outcomeSchema,
   run: ({ input, context }) => setOutcomeCommand(context, input),
+});
+
+export const askWithdrawal = defineAction({
+  name: 'askWithdrawal',
+  permission: 'readings.withdraw',
+  schema: askWithdrawalSchema,
+  run: ({ input, context }) => askWithdrawalCommand(context, input),
+});
+
+export const answerWithdrawal = defineAction({
+  name: 'answerWithdrawal',
+  permission: 'readings.withdraw',
+  schema: answerWithdrawalSchema,
+  run: ({ input, context }) => answerWithdrawalCommand(context, input),
+});
+
+export const addComment = defineAction({
+  name: 'addComment',
+  permission: 'comments.add',
+  schema: commentSchema,
+  rate: { burst: 20, perMinute: 20 },
+  run: ({ input, context }) => addCommentCommand(context, input),
 });

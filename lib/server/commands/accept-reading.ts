@@ -15,17 +15,19 @@ import {
   type ReadingFacts,
 } from '../reading-facts';
 import { recordReferenceCheck, requireBenchOpen } from '../reference-checks';
+import { requireOwnPassword } from '../password-proofs';
+import { requireMoveReason } from '../move-reasons';
 import { daysUntilDue } from '../setups';
 import { inTransaction } from '../transaction';
-import { checkOwnPassword } from './check-password';
 
-type Acceptance = z.output<typeof acceptSchema>;
+type Acceptance = Omit<z.output<typeof acceptSchema>, 'moveReason'> & { moveReason?: string };
 
 export const SIGNATURE_MEANING = 'I have looked at this fit and accept it.';
 
 /**
  * A reviewer signs a reading. Refused to whoever had a hand in it before review, while a stop stands on the
- * wavelength, while a look has no word, and under an overdue setup. Of two at once exactly one wins.
+ * wavelength, while a look has no word, while a moved value has no reason, and under an overdue setup. Of two at once exactly
+ * one wins.
  */
 export async function acceptReading(
   context: CommandContext,
@@ -36,7 +38,7 @@ export async function acceptReading(
   if (barred) throw new AppError('NOT_ALLOWED', barred);
   if (facts.version !== wanted.version) throw await changedMeanwhile('reading', wanted.readingId);
   await requireAcceptable(context, facts, wanted.answers);
-  await checkOwnPassword(context.actor.id, wanted.password, context.at);
+  const passwordAt = await requireOwnPassword(context, wanted.password);
   const { tables } = db();
   return inTransaction(context, async (work) => {
     const { transaction } = work;
@@ -54,9 +56,11 @@ export async function acceptReading(
         meaning: SIGNATURE_MEANING,
         signedAt: context.at,
         digest: now.digest,
+        passwordAt,
       },
       { transaction },
     );
+    const moved = await requireMoveReason(work, context, now, wanted.moveReason);
     await tables.lookAnswers.bulkCreate(
       wanted.answers.map(({ check, answer, reason }) => ({
         readingId: now.readingId,
@@ -72,7 +76,13 @@ export async function acceptReading(
       action: 'reading.accept',
       subject: { kind: 'reading', id: now.readingId, text: readingText(now) },
       before: { status: now.status },
-      after: { status: READING_STEPS.accept.to, digest: now.digest, answers: wanted.answers },
+      after: {
+        status: READING_STEPS.accept.to,
+        digest: now.digest,
+        passwordAt,
+        answers: wanted.answers,
+        ...moved,
+      },
     });
     await recordReferenceCheck(work, context, now.readingId);
     return { readingId: now.readingId, version: wanted.version + 1 };

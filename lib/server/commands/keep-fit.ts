@@ -1,11 +1,11 @@
 import 'server-only';
 import type { z } from 'zod';
 import { AppError } from '@/lib/domain/errors';
-import { BORN, FRAME_STEPS, READING_STEPS, frameMay } from '@/lib/domain/life-cycle';
+import { BORN, FRAME_STEPS, READING_STEPS, frameMay, readingMayBeFollowed } from '@/lib/domain/life-cycle';
 import { can } from '@/lib/domain/permissions';
 import type { FitOptions } from '@/lib/domain/reading-result';
 import { isScanRegion, isScanResult, type FitResult, type ScanOptions } from '@/lib/domain/scan-result';
-import type { refitSchema } from '@/lib/domain/schemas';
+import type { keepFitSchema } from '@/lib/domain/review-schemas';
 import type { RegionChange, SeenDigits, ServerFit } from '@/lib/domain/views';
 import { formatNumber } from '@/lib/quantity/format';
 import { previewOf, valueIn } from '@/lib/quantity/value-in';
@@ -17,14 +17,17 @@ import { log } from '../log';
 import { refitInPool } from '../measure-pool';
 import { changedMeanwhile, findReading, readingText, stepReading, type ReadingFacts } from '../reading-facts';
 import { changedOptions, fitInPool, sizeColumns } from '../scan-frames';
+import { keepMoveReason } from '../move-reasons';
+import { storeTrials } from '../region-trials';
 import { originalKey, readObject } from '../storage';
 import { inTransaction, type Work } from '../transaction';
 import { stepFrame } from './fit-frame';
 import { storeReading } from './store-reading';
 
 /** Where the change was not fitted in a browser, there is no stack and nothing was seen. */
-type Refit = Omit<z.output<typeof refitSchema>, 'stackSha256' | 'seen'> &
-  Partial<Pick<z.output<typeof refitSchema>, 'stackSha256' | 'seen'>>;
+type Wanted = z.output<typeof keepFitSchema>;
+type MayMiss = 'stackSha256' | 'seen' | 'trials' | 'moveReason';
+type Refit = Omit<Wanted, MayMiss> & Partial<Pick<Wanted, MayMiss>>;
 type FrameRow = Awaited<ReturnType<typeof loadFrame>>;
 
 /** A new reading, and what is to be said where the person saw other numbers than the server keeps. */
@@ -151,7 +154,9 @@ async function store(
   wanted: Refit,
 ): Promise<{ readingId: number; version: number }> {
   const inReview = before !== null && isInReview(before);
-  if (before) await stepReading(work, context.at, before, wanted.fromVersion, 'replace');
+  // What was withdrawn stays withdrawn; the new reading names it and takes its place at the frame.
+  if (before && !readingMayBeFollowed(before.status))
+    await stepReading(work, context.at, before, wanted.fromVersion, 'replace');
   const reading = await storeReading(
     {
       frame,
@@ -171,6 +176,10 @@ async function store(
     work.transaction,
   );
   await pointFrameAt(work, frame, before, reading.id, result);
+  const trials = wanted.trials ?? [];
+  const fromReadingId = before?.readingId ?? null;
+  await storeTrials(work, context, { frameId: frame.id, fromReadingId, keptReadingId: reading.id }, trials);
+  if (wanted.moveReason) await keepMoveReason(work, context, reading.id, wanted.moveReason);
   work.audit({
     action: 'reading.refit',
     subject: {
@@ -194,6 +203,8 @@ async function store(
       zeroShift: wanted.zeroShift,
       leaveOut: wanted.leaveOut,
       valueNm: valueIn(result, facts).valueNm,
+      regionsTried: trials.length,
+      ...(wanted.moveReason ? { moveReason: wanted.moveReason } : {}),
     },
   });
   return { readingId: reading.id, version: 0 };

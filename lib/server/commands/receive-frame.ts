@@ -1,13 +1,14 @@
 import 'server-only';
-import { UniqueConstraintError, type Transaction } from 'sequelize';
+import { UniqueConstraintError } from 'sequelize';
 import { AppError } from '@/lib/domain/errors';
 import { BORN, frameMay } from '@/lib/domain/life-cycle';
 import { LIMITS } from '@/lib/domain/limits';
 import type { CommandContext } from '../context';
-import { db, select } from '../db';
+import { db } from '../db';
 import { nudgeQueue } from '../queue';
 import { brokeOff, dropSpool, spoolBody, type Spooled } from '../spool';
 import { isScan } from '../scan-frames';
+import { requireSetupAt } from '../setup-timeline';
 import { findSubject, type FrameSubject, type SubjectChoice } from '../subject';
 import { landFrame } from './land-frame';
 import { takeDetector } from './take-detector';
@@ -32,7 +33,7 @@ export async function receiveFrame(
 ): Promise<{ frameId: number; sameAs: number | null }> {
   if (incoming.declaredBytes > LIMITS.fileBytes) throw tooLarge();
   const fileName = tidyName(incoming.fileName);
-  const setup = await setupInForce(incoming.benchId);
+  const setup = await requireSetupAt(incoming.benchId, context.at);
   const subject = await findSubject(fileName, incoming);
   const spooled = await spoolBody(incoming.body, LIMITS.fileBytes);
   if (spooled.bytes !== incoming.declaredBytes) {
@@ -95,27 +96,6 @@ async function sameAgain(
 
 function sameKey(spooled: Spooled, benchId: number, { unitId, sourceId }: FrameSubject): string {
   return `${spooled.sha256}:${benchId}:${unitId !== null ? `u${unitId}` : `s${sourceId}`}`;
-}
-
-/** The bench's newest setup: what is in force when the frame arrives stays with it. */
-export async function setupInForce(
-  benchId: number,
-  transaction?: Transaction,
-): Promise<{ id: number; number: number }> {
-  const [bench] = await select<{ name: string; setup_id: number | null; number: number | null }>(
-    `SELECT b.name, s.id AS setup_id, s.number FROM benches b LEFT JOIN setups s ON s.bench_id = b.id
-     WHERE b.id = :benchId ORDER BY s.number DESC LIMIT 1`,
-    { benchId },
-    transaction,
-  );
-  if (!bench) throw new AppError('NOT_FOUND', 'There is no such bench.');
-  if (bench.setup_id === null || bench.number === null) {
-    throw new AppError(
-      'BAD_INPUT',
-      `${bench.name} has no setup yet, so its frames give no wavelength. An admin enters one under Benches.`,
-    );
-  }
-  return { id: bench.setup_id, number: bench.number };
 }
 
 export function tooLarge(): AppError {

@@ -132,7 +132,8 @@ export function digestOf(content: {
   setup: SetupValues;
   specification: Specification | null;
   options: FitOptions | ScanOptions;
-  value: Omit<ValueIn, 'judgement'>;
+  /** Absent in readings of before values were kept. */
+  value?: Omit<ValueIn, 'judgement'>;
 }): string {
   return sha256(canonicalJson(content));
 }

@@ -4,44 +4,43 @@ import type { BenchChoice, BenchView } from '@/lib/domain/views';
 import { db, select } from '../db';
 import { fitnessWithChecks, standingOf } from '../reference-checks';
 import { fitnessOf } from '../setups';
-import { setupViews } from './setup-views';
+import { setupAt, waitingNumber } from '../setup-timeline';
+import { setupHistory } from './setup-views';
 
 /** The wavelength a bench without accepted readings is drawn with, nm. */
 const EXAMPLE_NM = 635;
 
-async function newestSetup(benchId: number) {
-  return db().tables.setups.findOne({ where: { benchId }, order: [['number', 'DESC']] });
+async function choiceOf(bench: { id: number; name: string }, now: Date): Promise<BenchChoice> {
+  const [inForce, waiting] = await Promise.all([setupAt(bench.id, now), waitingNumber(bench.id)]);
+  const setup = inForce ? await db().tables.setups.findByPk(inForce.id) : null;
+  return {
+    id: bench.id,
+    name: bench.name,
+    setupNumber: setup?.number ?? null,
+    fitness: fitnessWithChecks(fitnessOf(setup, now), await standingOf(bench.id)),
+    waitingNumber: waiting,
+  };
 }
 
 export async function listBenchChoices(now = new Date()): Promise<BenchChoice[]> {
   const benches = await db().tables.benches.findAll({ order: [['name', 'ASC']] });
-  return Promise.all(
-    benches.map(async ({ id, name }) => {
-      const setup = await newestSetup(id);
-      const fitness = fitnessWithChecks(fitnessOf(setup, now), await standingOf(id));
-      return { id, name, setupNumber: setup?.number ?? null, fitness };
-    }),
-  );
+  return Promise.all(benches.map((bench) => choiceOf(bench, now)));
 }
 
 export async function findBench(id: number, now = new Date()): Promise<BenchView | null> {
   const bench = await db().tables.benches.findByPk(id);
   if (!bench) return null;
-  const setup = await newestSetup(id);
-  const setups = await setupViews(id);
+  const [choice, history] = await Promise.all([choiceOf(bench, now), setupHistory(id, now)]);
   const [last] = await select<{ nm: number }>(
     `SELECT r.wavelength_air_nm AS nm FROM reading_states st JOIN readings r ON r.id = st.reading_id
      WHERE st.bench_id = :id AND st.status = :accepted ORDER BY st.accepted_at DESC LIMIT 1`,
     { id, accepted: READING_STEPS.accept.to },
   );
   return {
-    id,
-    name: bench.name,
+    ...choice,
+    ...history,
     note: bench.note,
-    setupNumber: setup?.number ?? null,
-    fitness: fitnessWithChecks(fitnessOf(setup, now), await standingOf(id)),
-    inForce: setups[0] ?? null,
-    setups,
+    inForce: history.setups.find(({ from }) => new Date(from) <= now) ?? null,
     drawNm: last?.nm ?? EXAMPLE_NM,
     drawnFrom: last ? 'reading' : 'example',
   };

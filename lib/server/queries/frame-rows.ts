@@ -1,6 +1,6 @@
 import 'server-only';
 import type { FrameState } from '@/lib/domain/life-cycle';
-import type { FrameRow, Subject } from '@/lib/domain/views';
+import type { FrameRow, ReturnReason, Subject } from '@/lib/domain/views';
 import { select } from '../db';
 import { isScan } from '../scan-frames';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
@@ -32,6 +32,9 @@ interface Row extends BriefColumns, MaybeSpecification {
   source: string | null;
   vacuum_nm: number | null;
   source_u_nm: number | null;
+  is_reference: number | null;
+  return_reason: ReturnReason | null;
+  return_words: string | null;
 }
 
 /** Frames by their ids, in the order the ids come in. Without a reading's curves. */
@@ -40,12 +43,13 @@ export async function frameRows(ids: readonly number[]): Promise<FrameRow[]> {
   const rows = await select<Row>(
     `SELECT f.id, f.file_name, f.bytes, f.sha256, f.state, f.code, f.message, f.media_type, f.detector_mm, f.received_at, f.uploaded_by,
        up.name AS uploader, f.bench_id, b.name AS bench, su.number AS setup_number, f.unit_id, un.serial, f.lot_id,
-       lo.number AS lot, f.source_id, so.name AS source, so.vacuum_nm, so.u_nm AS source_u_nm, ${SPECIFICATION_COLUMNS}, ${BRIEF_COLUMNS}
+       lo.number AS lot, f.source_id, so.name AS source, so.vacuum_nm, so.u_nm AS source_u_nm, so.is_reference, rt.reason AS return_reason,
+       rt.words AS return_words, ${SPECIFICATION_COLUMNS}, ${BRIEF_COLUMNS}
      FROM frames f
      JOIN people up ON up.id = f.uploaded_by JOIN benches b ON b.id = f.bench_id JOIN setups su ON su.id = f.setup_id
      LEFT JOIN units un ON un.id = f.unit_id LEFT JOIN lots lo ON lo.id = f.lot_id
      LEFT JOIN specifications sp ON sp.id = lo.specification_id LEFT JOIN sources so ON so.id = f.source_id
-     LEFT JOIN readings r ON r.id = f.reading_id ${BRIEF_JOINS}
+     LEFT JOIN readings r ON r.id = f.reading_id ${BRIEF_JOINS} LEFT JOIN returns rt ON rt.reading_id = f.reading_id
      WHERE f.id IN (:ids)`,
     { ids },
   );
@@ -69,13 +73,22 @@ function frameOf(row: Row): FrameRow {
     subject: subjectOf(row),
     scan: isScan({ mediaType: row.media_type }) ? { detectorMm: row.detector_mm } : null,
     reading: briefOf(row),
+    returned: row.return_reason ? { reason: row.return_reason, words: row.return_words ?? '' } : null,
   };
 }
 
 function subjectOf(row: Row): Subject {
   if (row.source_id !== null) {
     const { source_id: sourceId, source, vacuum_nm: vacuumNm, source_u_nm: uNm } = row;
-    return { kind: 'source', sourceId, name: source ?? '', vacuumNm: vacuumNm ?? 0, uNm: uNm ?? 0 };
+    const isReference = Boolean(row.is_reference);
+    return {
+      kind: 'source',
+      sourceId,
+      name: source ?? '',
+      vacuumNm: vacuumNm ?? 0,
+      uNm: uNm ?? 0,
+      isReference,
+    };
   }
   if (row.unit_id === null || row.lot_id === null) return { kind: 'none' };
   return {

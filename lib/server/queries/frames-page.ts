@@ -24,7 +24,7 @@ function filterOf(q: FramesQuery, personId: number, now: Date): Filter {
   if (q.benchId !== null) add('f.bench_id = :benchId', { benchId: q.benchId });
   if (q.lotId !== null) add('f.lot_id = :lotId', { lotId: q.lotId });
   if (q.days > 0) add('f.received_at >= :since', { since: new Date(now.getTime() - q.days * 86_400_000) });
-  if (q.mine) add('f.uploaded_by = :personId', { personId });
+  if (q.mine) add('(f.uploaded_by = :personId OR st.sent_by = :personId)', { personId });
   return { where: parts.join(' AND '), values };
 }
 
@@ -56,4 +56,14 @@ export async function framesPage(q: FramesQuery, personId: number, now: Date): P
     page,
     pages,
   };
+}
+
+/** How many readings this person took or sent have come back. */
+export async function returnedTo(personId: number): Promise<number> {
+  const [{ many }] = await select<{ many: number }>(
+    `SELECT COUNT(*) AS many FROM frames f JOIN reading_states st ON st.reading_id = f.reading_id
+     WHERE st.status = :returned AND (f.uploaded_by = :personId OR st.sent_by = :personId)`,
+    { personId, returned: READING_STEPS.return.to },
+  );
+  return many;
 }

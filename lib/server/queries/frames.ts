@@ -1,5 +1,5 @@
 import 'server-only';
-import { frameIsMoving, frameMay, readingMay } from '@/lib/domain/life-cycle';
+import { frameIsMoving, frameMay, readingMay, readingMayBeFollowed } from '@/lib/domain/life-cycle';
 import { can } from '@/lib/domain/permissions';
 import type { FrameRow, FramesPage, FramesQuery, FrameView, May, Me } from '@/lib/domain/views';
 import { select } from '../db';
@@ -81,7 +81,15 @@ export async function mayFor(me: Me, frame: FrameView): Promise<May> {
   const { shown } = frame;
   if (!shown) {
     const fit = frameMay('fit', frame.state) && !frameIsMoving(frame.state) && can(me, 'readings.send');
-    return { fit, send: false, accept: false, return: false, outcome: false, acceptBarred: null };
+    return {
+      fit,
+      send: false,
+      accept: false,
+      return: false,
+      outcome: false,
+      withdraw: false,
+      acceptBarred: null,
+    };
   }
   const isCurrent = frame.reading?.id === shown.id;
   const inReview = readingMay('accept', shown.status);
@@ -90,11 +98,15 @@ export async function mayFor(me: Me, frame: FrameView): Promise<May> {
     : null;
   const fitRight = inReview ? 'readings.return' : 'readings.send';
   return {
-    fit: isCurrent && readingMay('replace', shown.status) && can(me, fitRight),
+    fit:
+      isCurrent &&
+      (readingMay('replace', shown.status) || readingMayBeFollowed(shown.status)) &&
+      can(me, fitRight),
     send: isCurrent && readingMay('send', shown.status) && can(me, 'readings.send'),
     accept: isCurrent && inReview && can(me, 'readings.accept') && acceptBarred === null,
     return: isCurrent && readingMay('return', shown.status) && can(me, 'readings.return'),
     outcome: frame.subject.kind === 'unit' && can(me, 'outcomes.set'),
+    withdraw: isCurrent && readingMay('withdraw', shown.status) && can(me, 'readings.withdraw'),
     acceptBarred,
   };
 }

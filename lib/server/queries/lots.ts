@@ -1,9 +1,10 @@
 import 'server-only';
+import { READING_STEPS } from '@/lib/domain/life-cycle';
 import type { Verdict } from '@/lib/domain/specification';
 import { VERDICTS } from '@/lib/domain/specification';
-import type { LotRow, LotView, SourceView, SpecificationView, UnitRow } from '@/lib/domain/views';
+import type { LotRow, LotView, SpecificationView, UnitRow } from '@/lib/domain/views';
 import { lotRisk, type UnitValue } from '@/lib/quantity/lot-risk';
-import { db, select } from '../db';
+import { select } from '../db';
 import { outcomesOf } from './outcomes';
 import { contains, pageOf } from './paging';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
@@ -116,11 +117,12 @@ export async function findLot(id: number, q: { page: number; find: string }): Pr
   };
 }
 
-/** How many units of the lot stand at each verdict. */
+/** How many units of the lot stand at each verdict; a withdrawn reading gives none. */
 async function countsOf(lotId: number): Promise<Record<Verdict | 'none', number>> {
   const found = await select<{ verdict: Verdict | null; many: number }>(
-    `SELECT r.verdict, COUNT(*) AS many FROM units u ${STANDING_READING} WHERE u.lot_id = :lotId GROUP BY r.verdict`,
-    { lotId },
+    `SELECT IF(st.status = :withdrawn, NULL, r.verdict) AS verdict, COUNT(*) AS many FROM units u ${STANDING_READING}
+     LEFT JOIN reading_states st ON st.reading_id = r.id WHERE u.lot_id = :lotId GROUP BY 1`,
+    { lotId, withdrawn: READING_STEPS.withdraw.to },
   );
   const counts: Record<Verdict | 'none', number> = {
     within: 0,
@@ -154,9 +156,4 @@ export async function listSpecifications(): Promise<SpecificationView[]> {
     retired: row.retired_at !== null,
     lots: row.lots,
   }));
-}
-
-export async function listSources(): Promise<SourceView[]> {
-  const rows = await db().tables.sources.findAll({ order: [['name', 'ASC']] });
-  return rows.map(({ id, name, vacuumNm, uNm, note }) => ({ id, name, vacuumNm, uNm, note }));
 }

@@ -1,7 +1,14 @@
 import 'server-only';
 import { READING_STEPS } from '@/lib/domain/life-cycle';
 import type { Medium } from '@/lib/domain/specification';
-import type { ChartFinding, ChartPoint, ChartStretch, OverTimeView, PersonRef } from '@/lib/domain/views';
+import type {
+  ChartFinding,
+  ChartPoint,
+  ChartStretch,
+  OverTimeView,
+  PersonRef,
+  WithdrawnPoint,
+} from '@/lib/domain/views';
 import { STANDARD_BENCH_AIR, airFromVacuum } from '@/lib/quantity/air-index';
 import { individualsChart, type IndividualsChart } from '@/lib/statistics/individuals';
 import { select } from '../db';
@@ -27,6 +34,8 @@ interface Choice {
 }
 
 const ACCEPTED = READING_STEPS.accept.to;
+/** A subject whose readings were all withdrawn is still one to look at. */
+const SHOWN = [ACCEPTED, READING_STEPS.withdraw.to];
 
 /** Accepted readings of a bench for one source or lot, with limits that start anew at each setup. */
 export async function overTime(q: OverTimeQuery): Promise<OverTimeView> {
@@ -49,6 +58,7 @@ export async function overTime(q: OverTimeQuery): Promise<OverTimeView> {
       movingRangeNm: chart.movingRanges[i],
       outside: chart.outside[i],
     })),
+    withdrawn: await withdrawnOf(bench.id, chosen),
     stretches: await stretchesOf(bench.id, rows, chart),
     findings: findingsOf(rows, chart),
     choices: offered,
@@ -65,6 +75,7 @@ function nothing(bench: PersonRef | null, choices: OverTimeView['choices']): Ove
     referenceNm: null,
     referenceIsNominal: false,
     points: [],
+    withdrawn: [],
     stretches: [],
     findings: [],
     choices,
@@ -87,9 +98,9 @@ async function benchOf(benchId: number | null): Promise<PersonRef | null> {
 
 async function choicesOf(benchId: number): Promise<Choice[]> {
   const sources = await select<{ id: number; name: string; vacuum_nm: number; points: number }>(
-    `SELECT so.id, so.name, so.vacuum_nm, COUNT(*) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
-     JOIN sources so ON so.id = r.source_id WHERE st.bench_id = :benchId AND st.status = :accepted GROUP BY so.id ORDER BY points DESC`,
-    { benchId, accepted: ACCEPTED },
+    `SELECT so.id, so.name, so.vacuum_nm, SUM(st.status = :accepted) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
+     JOIN sources so ON so.id = r.source_id WHERE st.bench_id = :benchId AND st.status IN (:shown) GROUP BY so.id ORDER BY points DESC`,
+    { benchId, accepted: ACCEPTED, shown: SHOWN },
   );
   const lots = await select<{
     id: number;
@@ -98,16 +109,16 @@ async function choicesOf(benchId: number): Promise<Choice[]> {
     nominal_nm: number;
     points: number;
   }>(
-    `SELECT l.id, l.number, sp.medium, sp.nominal_nm, COUNT(*) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
+    `SELECT l.id, l.number, sp.medium, sp.nominal_nm, SUM(st.status = :accepted) AS points FROM reading_states st JOIN readings r ON r.id = st.reading_id
      JOIN lots l ON l.id = r.lot_id JOIN specifications sp ON sp.id = l.specification_id
-     WHERE st.bench_id = :benchId AND st.status = :accepted GROUP BY l.id ORDER BY l.opened_at DESC`,
-    { benchId, accepted: ACCEPTED },
+     WHERE st.bench_id = :benchId AND st.status IN (:shown) GROUP BY l.id ORDER BY l.opened_at DESC`,
+    { benchId, accepted: ACCEPTED, shown: SHOWN },
   );
   return [
     ...sources.map(({ id, name, vacuum_nm, points }): Choice => ({
       value: `source:${id}`,
       label: name,
-      points,
+      points: Number(points),
       kind: 'source',
       id,
       medium: 'air',
@@ -116,7 +127,7 @@ async function choicesOf(benchId: number): Promise<Choice[]> {
     ...lots.map(({ id, number, medium, nominal_nm, points }): Choice => ({
       value: `lot:${id}`,
       label: `Lot ${number}`,
-      points,
+      points: Number(points),
       kind: 'lot',
       id,
       medium,
@@ -159,6 +170,35 @@ async function pointsOf(benchId: number, { kind, id }: Choice, last: number): Pr
     uNm: row.u_nm,
     setupId: row.setup_id,
     setupNumber: row.setup_number,
+  }));
+}
+
+const MOST_WITHDRAWN = 100;
+
+/** Readings of the same subject that were accepted and then withdrawn, newest first. */
+async function withdrawnOf(benchId: number, { kind, id }: Choice): Promise<WithdrawnPoint[]> {
+  const rows = await select<PointRow & { changed_at: Date; reason: string | null }>(
+    `SELECT r.id AS reading_id, r.frame_id, COALESCE(u.serial, CONCAT('Reading ', r.id)) AS label, f.received_at,
+       st.accepted_at, st.changed_at, r.value_nm, r.u_nm, r.setup_id, s.number AS setup_number,
+       (SELECT w.reason FROM withdrawal_proposals w JOIN withdrawal_answers a ON a.proposal_id = w.id
+        WHERE w.reading_id = r.id ORDER BY w.id DESC LIMIT 1) AS reason
+     FROM readings r JOIN reading_states st ON st.reading_id = r.id AND st.status = :withdrawn
+     JOIN frames f ON f.id = r.frame_id JOIN setups s ON s.id = r.setup_id LEFT JOIN units u ON u.id = r.unit_id
+     WHERE r.bench_id = :benchId AND r.${kind}_id = :id AND r.value_nm IS NOT NULL
+     ORDER BY f.received_at DESC, r.id DESC LIMIT ${MOST_WITHDRAWN}`,
+    { withdrawn: READING_STEPS.withdraw.to, benchId, id },
+  );
+  return rows.map((row) => ({
+    readingId: row.reading_id,
+    frameId: row.frame_id,
+    label: row.label,
+    takenAt: row.received_at.toISOString(),
+    acceptedAt: row.accepted_at.toISOString(),
+    withdrawnAt: row.changed_at.toISOString(),
+    valueNm: row.value_nm,
+    uNm: row.u_nm,
+    setupNumber: row.setup_number,
+    reason: row.reason ?? '',
   }));
 }
 

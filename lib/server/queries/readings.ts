@@ -6,8 +6,10 @@ import type { ReadingBrief, ReadingView, ReturnReason } from '@/lib/domain/views
 import { drawBudget, type MonteCarlo } from '@/lib/quantity/monte-carlo';
 import type { ValueIn } from '@/lib/quantity/value-in';
 import { select } from '../db';
+import { firstValueOf } from '../move-reasons';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
 import { setupViews } from './setup-views';
+import { withdrawalOf } from './withdrawals';
 
 /** Every reading of a frame, newest first, without curves. */
 export async function readingsOf(frameId: number): Promise<ReadingBrief[]> {
@@ -27,6 +29,7 @@ interface ViewColumns extends BriefColumns {
   setup_json: string;
   setup_id: number;
   bench_id: number;
+  frame_id: number;
   replaces_id: number | null;
   replaced_by: number | null;
   sent_at: Date | null;
@@ -38,7 +41,7 @@ interface ViewColumns extends BriefColumns {
 /** One reading in full, curves included. */
 export async function readingView(readingId: number): Promise<ReadingView | null> {
   const [row] = await select<ViewColumns>(
-    `SELECT ${BRIEF_COLUMNS}, rr.result_json, rv.value_json, rv.monte_carlo_json, r.digest, r.options_json, r.setup_json, r.setup_id, r.bench_id, r.replaces_id,
+    `SELECT ${BRIEF_COLUMNS}, rr.result_json, rv.value_json, rv.monte_carlo_json, r.digest, r.options_json, r.setup_json, r.setup_id, r.bench_id, r.frame_id, r.replaces_id,
        (SELECT MAX(n.id) FROM readings n WHERE n.replaces_id = r.id) AS replaced_by,
        st.sent_at, st.note, sn.id AS sender_id, sn.name AS sender
      FROM readings r ${BRIEF_JOINS} LEFT JOIN people sn ON sn.id = st.sent_by
@@ -66,6 +69,9 @@ export async function readingView(readingId: number): Promise<ReadingView | null
     note: row.note,
     returned: await returnOf(readingId),
     signature: await signatureOf(readingId),
+    first: await firstValueOf(row.frame_id),
+    moveReason: await moveReasonOf(readingId),
+    withdrawal: await withdrawalOf(readingId),
     zeroShift: options.zeroShift ?? 0,
     leaveOut: options.leaveOut ?? [],
     tone: options.tone ?? 'auto',
@@ -123,16 +129,30 @@ async function signatureOf(readingId: number): Promise<ReadingView['signature']>
     role: Role;
     meaning: string;
     signed_at: Date;
+    password_at: Date | null;
     digest: string;
-  }>('SELECT person_name, role, meaning, signed_at, digest FROM signatures WHERE reading_id = :readingId', {
-    readingId,
-  });
+  }>(
+    `SELECT person_name, role, meaning, signed_at, password_at, digest FROM signatures
+     WHERE reading_id = :readingId`,
+    { readingId },
+  );
   if (!row) return null;
   return {
     personName: row.person_name,
     role: row.role,
     meaning: row.meaning,
     at: row.signed_at.toISOString(),
+    passwordAt: row.password_at?.toISOString() ?? null,
     digest: row.digest,
   };
+}
+
+async function moveReasonOf(readingId: number): Promise<ReadingView['moveReason']> {
+  const [row] = await select<{ words: string; given_by: number; name: string; given_at: Date }>(
+    `SELECT m.words, m.given_by, p.name, m.given_at FROM move_reasons m JOIN people p ON p.id = m.given_by
+     WHERE m.reading_id = :readingId`,
+    { readingId },
+  );
+  if (!row) return null;
+  return { words: row.words, by: { id: row.given_by, name: row.name }, at: row.given_at.toISOString() };
 }

@@ -2,6 +2,8 @@ import 'server-only';
 import { READING_STEPS } from '@/lib/domain/life-cycle';
 import type { Me, ReviewView } from '@/lib/domain/views';
 import { select } from '../db';
+import { passwordCountsUntil } from '../password-proofs';
+import { getSessionId } from '../session';
 import { findFrame, mayFor } from './frames';
 
 export interface QueueEntry {
@@ -38,5 +40,7 @@ export async function findReview(me: Me, readingId: number): Promise<ReviewView 
       previousId: at > 0 ? queue[at - 1].readingId : null,
       nextId: (at < 0 ? queue[0] : queue[at + 1])?.readingId ?? null,
     },
+    passwordUntil:
+      (await passwordCountsUntil(me.id, await getSessionId(), new Date()))?.toISOString() ?? null,
   };
 }

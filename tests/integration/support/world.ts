@@ -1,8 +1,11 @@
+import type { z } from 'zod';
 import type { Role } from '@/lib/domain/roles';
+import { setupSchema } from '@/lib/domain/setup-schemas';
 import { closeDatabase } from '@/lib/server/db';
 import { addBench } from '@/lib/server/commands/add-bench';
 import { addPerson } from '@/lib/server/commands/add-person';
 import { addSetup } from '@/lib/server/commands/add-setup';
+import { decideSetup } from '@/lib/server/commands/decide-setup';
 import { addSource } from '@/lib/server/commands/add-source';
 import { addSpecification } from '@/lib/server/commands/add-specification';
 import { addUnits, openLot } from '@/lib/server/commands/open-lot';
@@ -58,6 +61,20 @@ export const SETUP = {
   why: 'First setup.',
 };
 
+/** Before anything else happens here, whatever the clock of the machine says. */
+const LONG_AGO = new Date('2020-01-06T08:00:00.000Z');
+
+/** Entered by the admin and approved by QA at one moment. */
+export async function putInForce(
+  people: Pick<World['people'], 'admin' | 'qa'>,
+  setup: z.input<typeof setupSchema>,
+  at = NOW,
+): Promise<number> {
+  const { setupId } = await addSetup(as(people.admin, at), setupSchema.parse(setup));
+  await decideSetup(as(people.qa, at), { setupId, decision: 'approved', reason: '' });
+  return setupId;
+}
+
 export async function makeWorld(): Promise<World> {
   await emptyDatabase();
   const people = {} as Record<Who, Person>;
@@ -72,7 +89,7 @@ export async function makeWorld(): Promise<World> {
   }
   const admin = as(people.admin);
   const { benchId } = await addBench(admin, { name: 'Bench T', note: 'Invented.' });
-  const { setupId } = await addSetup(admin, { benchId, afterNumber: 0, ...SETUP });
+  const setupId = await putInForce(people, { ...SETUP, benchId, afterNumber: 0 }, LONG_AGO);
   const { specificationId } = await addSpecification(admin, {
     name: 'Invented 635 nm',
     nominalNm: 635,
@@ -90,9 +107,16 @@ export async function makeWorld(): Promise<World> {
     name: 'Invented reference',
     vacuumNm: 632.991,
     uNm: 0.001,
+    kind: 'stabilised-laser',
+    isReference: true,
+    certificate: 'Invented C-9',
+    file: null,
+    due: null,
     note: '',
   });
   const { db } = await import('@/lib/server/db');
+  // The mails about the setup are not what the tests look for.
+  await db().tables.outbox.destroy({ where: {} });
   const units = await db().tables.units.findAll({ where: { lotId }, order: [['id', 'ASC']] });
   return { people, benchId, setupId, lotId, specificationId, unitIds: units.map(({ id }) => id), sourceId };
 }

@@ -1,4 +1,16 @@
-import { kept, moveBlade, moveJaw, onRegion, sameRegion, turn, wrapDeg } from '@/lib/client/region';
+import {
+  kept,
+  moveBlade,
+  moveJaw,
+  onRegion,
+  rounded,
+  sameRegion,
+  STEPS,
+  stepSize,
+  TILT_STEP_DEG,
+  turn,
+  wrapDeg,
+} from '@/lib/client/region';
 import type { Region } from '@/lib/domain/reading-result';
 
 const REGION: Region = { cxPx: 500, cyPx: 300, lengthPx: 400, heightPx: 100, angleDeg: 30 };
@@ -53,5 +65,13 @@ describe('moving the calliper', () => {
   test('regions that read the same are the same', () => {
     expect(sameRegion(REGION, { ...REGION, cxPx: 500.004 })).toBe(true);
     expect(sameRegion(REGION, { ...REGION, angleDeg: 30.02 })).toBe(false);
+  });
+
+  test('the finest step of each part is a change', () => {
+    const fine = STEPS[0];
+    expect(sameRegion(REGION, rounded({ ...REGION, cxPx: REGION.cxPx + fine }))).toBe(false);
+    expect(sameRegion(REGION, rounded(turn(REGION, fine * TILT_STEP_DEG)))).toBe(false);
+    expect(stepSize({ shiftKey: false, altKey: true })).toBe(fine);
+    expect(stepSize({ shiftKey: true, altKey: false })).toBe(10);
   });
 });

@@ -16,10 +16,10 @@ test('an edge moves alone and stops at the ends of the scan and before the other
   expect(closed.toMm).toBeGreaterThan(-4);
 });
 
-test('numbers are as fine as one press, but an end of the scan stays what it is', () => {
+test('numbers are as fine as a tenth of one press, but an end of the scan stays what it is', () => {
   expect([pressMm(SCAN), placesOf(SCAN)]).toEqual([0.1, 1]);
   expect(pressMm({ fromMm: 0, toMm: 0.5 })).toBeCloseTo(0.001, 12);
-  expect(roundedInScan({ fromMm: -3.1415, toMm: 9.99 }, SCAN)).toEqual({ fromMm: -3.1, toMm: 9.97 });
+  expect(roundedInScan({ fromMm: -3.1415, toMm: 9.99 }, SCAN)).toEqual({ fromMm: -3.14, toMm: 9.97 });
 });
 
 test('strips of frames and of scans come to lie on one scale about the zero order', () => {

@@ -10,6 +10,8 @@ const MATRIX: Record<Action, string> = {
   'readings.send': 't',
   'readings.accept': 'r',
   'readings.return': 'r',
+  'comments.add': 'trqa',
+  'readings.withdraw': 'rq',
   'outcomes.set': 'rq',
   'lots.see': 'trqa',
   'lots.open': 'ta',
@@ -18,6 +20,9 @@ const MATRIX: Record<Action, string> = {
   'benches.see': 'trqa',
   'benches.add': 'a',
   'setups.add': 'a',
+  'setups.decide': 'q',
+  'certificates.see': 'trqa',
+  'certificates.add': 'qa',
   'sources.add': 'qa',
   'benches.release': 'q',
   'conditions.enter': 'tqa',
@@ -61,6 +66,7 @@ describe('life cycle of a reading', () => {
     send: ['draft'],
     accept: ['review'],
     return: ['review'],
+    withdraw: ['accepted'],
     replace: ['draft', 'review', 'returned'],
   };
   test.each(Object.keys(READING_STEPS) as ReadingStep[])('%s', (step) => {

@@ -26,12 +26,12 @@ const truth = JSON.parse(readFileSync(path.join(FRAMES, 'truth.json'), 'utf8')) 
 const PINNED = {
   engine: '0.6.1',
   digests: {
-    'clean.tif': '43ec83e0cdc4fff9bd681d1b84db38b583c95bcdb88db13a2952101fccd45b43',
-    'tilted.tif, a region of its own': '3df1f9930261f67a4d53977c0af831f9080ab39cd4e0eb0e2f01afe4f62c4416',
-    'clipped.tif, orders left out': '14e2df58f13f110309bdc4add0dce1caa0370705d68ef47ecd7f9c451b85ea9e',
-    'photo.jpg': '031d0230bf04529d7521e4413382dc60cf822a9f3748a9d17f0a97d16d6813b4',
-    'photo-turned.jpg': '8d70143b0ba632ca9ec4968489b625b38329dd0ed3860248ea8278ebc3d127c6',
-    'one-slit.tif': '18c07e9c7a739830d250c0a6c1dd012a12a5b91c5813ba5cd835c4bd8d8d4b6c',
+    'clean.tif': '3b6d41c149bf82866c702f1b55282e00495d11ee5a122d94b56a6c872dbf0f89',
+    'tilted.tif, a region of its own': '2c2d3c1b421970bbaffbcddfda6c995aa4e5b66375088f9ee52a24aaab97fcd8',
+    'clipped.tif, orders left out': '7049f7be951923644806c4bbe169d8df2d4755649f848f100fdebc148a637659',
+    'photo.jpg': '89b2a75669fbda39c3696750d7147b689151759f5e5ba72a9768fedad2de8232',
+    'photo-turned.jpg': 'ccd3ddb75d90b785a2388e30e8609489ab86cac37ae0a990aa20facfb1880cb4',
+    'one-slit.tif': 'dd3a926e489fc619a484cf360908b86b4b549c70a181b7a32e4990a77f5058ee',
   } as Record<string, string>,
 };
 

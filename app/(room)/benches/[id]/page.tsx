@@ -18,6 +18,8 @@ import { releaseBench, setBenchRule } from '../../references/actions';
 import { HowKnown } from '../_components/how-known';
 import { SetupList } from '../_components/setup-list';
 import { ValuesInForce } from '../_components/values-in-force';
+import { WaitingSetup } from '../_components/waiting-setup';
+import { decideSetup, takeBackSetup } from '../actions';
 
 interface Props {
   params: Promise<{ id: string }>;
@@ -31,12 +33,14 @@ export default async function Bench({ params }: Props) {
   if (!Number.isInteger(id) || id < 1) notFound();
   const bench = (await findBench(id)) ?? notFound();
   const setup = bench.inForce;
-  const next = (setup?.number ?? 0) + 1;
-  const newSetup = can(me, 'setups.add') ? (
-    <Link className={buttonClass()} href={`/benches/${id}/new-setup`}>
-      Start setup {next}…
-    </Link>
-  ) : null;
+  const { waiting } = bench;
+  const newSetup =
+    can(me, 'setups.add') && !waiting ? (
+      <Link className={buttonClass()} href={`/benches/${id}/new-setup`}>
+        Start setup {bench.lastNumber + 1}…
+      </Link>
+    ) : null;
+  const isMine = waiting?.enteredBy.id === me.id;
   return (
     <div className="page">
       <div className="headline">
@@ -63,20 +67,29 @@ export default async function Bench({ params }: Props) {
         </div>
       </div>
       {bench.note ? <p className="lead text-small">{bench.note}</p> : null}
+      {waiting ? (
+        <WaitingSetup
+          setup={waiting}
+          inForce={setup}
+          may={{ decide: can(me, 'setups.decide') && !isMine, takeBack: can(me, 'setups.add') && isMine }}
+          decideSetup={decideSetup}
+          takeBackSetup={takeBackSetup}
+        />
+      ) : null}
       {setup ? (
         <>
           <GeometryDrawing setup={setup} nm={bench.drawNm} drawnFrom={bench.drawnFrom} />
           <div className="bench-cols">
             <ValuesInForce setup={setup} />
             <HowKnown setup={setup} />
-            <SetupList setups={bench.setups} />
+            <SetupList setups={bench.setups} ended={bench.ended} inForceId={setup.id} />
           </div>
         </>
       ) : (
         <div className="my-4">
-          <Empty title={`${bench.name} has no setup yet`} acts={newSetup}>
+          <Empty title={`${bench.name} has no setup in force`} acts={newSetup}>
             A setup states pixel scale, slit separation, slit width and distance, each with its uncertainty
-            and certificate. Frames can be taken once it is in force.
+            and certificate. Frames can be taken once QA has approved it.
           </Empty>
         </div>
       )}

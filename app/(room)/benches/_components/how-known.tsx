@@ -1,20 +1,9 @@
 import { Mark } from '@/components/figures/marks';
-import type { SetupView, StatedValue } from '@/lib/domain/views';
-import type { FindingWord } from '@/lib/domain/reading-result';
-import { formatCalendarDate, formatNumber, groupThousands, placesFor } from '@/lib/quantity/format';
-import { daysUntil, dueWord } from './due';
-import { SETUP_VALUES, valueOf } from './setup-values';
-
-function dueText(value: StatedValue, today: Date): { word: FindingWord; text: string } {
-  if (!value.due) return { word: 'clear', text: 'No due date is stated.' };
-  const days = daysUntil(value.due, today);
-  const date = formatCalendarDate(value.due);
-  if (days < 0) return { word: 'stop', text: `Overdue since ${date}: frames can be taken, not accepted.` };
-  return {
-    word: dueWord(days),
-    text: days === 0 ? 'Due today.' : `Due ${date}, in ${days} ${days === 1 ? 'day' : 'days'}.`,
-  };
-}
+import type { SetupView } from '@/lib/domain/views';
+import { CertificateName } from '@/components/setups/certificate-file';
+import { cameraText, statedText } from '@/components/setups/stated-words';
+import { dueOf } from '@/lib/domain/due';
+import { SETUP_VALUES } from '@/lib/domain/setup';
 
 function sentence(certificate: string): string {
   const text = certificate.trim();
@@ -33,8 +22,8 @@ export function HowKnown({ setup }: { setup: SetupView }) {
       </div>
       <ul className="known">
         {SETUP_VALUES.map(({ key, name, symbol, unit }) => {
-          const value = valueOf(setup, key);
-          const due = dueText(value, today);
+          const value = setup[key];
+          const due = dueOf(value.due, today);
           return (
             <li key={key}>
               <Mark kind={`check-${due.word}`} />
@@ -42,15 +31,22 @@ export function HowKnown({ setup }: { setup: SetupView }) {
                 <b>
                   {name} <span className="sym">{symbol}</span>
                 </b>
-                : ± {formatNumber(value.stated, placesFor(value.stated))} {unit}, k ={' '}
-                {groupThousands(String(value.k))}. {sentence(value.certificate)} {due.text}
+                : {statedText(value, unit)}. {sentence(value.certificate)} {due.text}.
+                {due.word === 'stop' ? ' Frames can be taken, not accepted.' : ''}
+                {value.file ? (
+                  <>
+                    {' '}
+                    <CertificateName file={value.file} />
+                  </>
+                ) : null}
               </div>
             </li>
           );
         })}
       </ul>
       <p className="mt-3 text-small text-ink-2">
-        Plate {setup.plate}. {setup.why}
+        Plate {setup.plate}. {cameraText(setup.camera) ? `Camera ${cameraText(setup.camera)}. ` : ''}
+        {setup.why}
       </p>
     </section>
   );

@@ -1,7 +1,7 @@
 import { Quantity } from '@/components/figures/quantity';
 import type { SetupView } from '@/lib/domain/views';
 import { formatCalendarDate, formatNumber, placesFor } from '@/lib/quantity/format';
-import { SETUP_VALUES, valueOf } from './setup-values';
+import { SETUP_VALUES } from '@/lib/domain/setup';
 
 const TONE_WORDS = { auto: 'found from the frame', linear: 'linear', srgb: 'sRGB' } as const;
 
@@ -22,7 +22,7 @@ export function ValuesInForce({ setup }: { setup: SetupView }) {
         </thead>
         <tbody>
           {SETUP_VALUES.map(({ key, name, symbol, unit }) => {
-            const value = valueOf(setup, key);
+            const value = setup[key];
             return (
               <tr key={key}>
                 <td>

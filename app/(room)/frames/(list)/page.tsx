@@ -1,5 +1,6 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
+import { ReturnedNotice } from '@/components/frames/returned-notice';
 import { FrameList } from '@/components/frames/frame-list';
 import { ListFoot } from '@/components/states/list-foot';
 import { buttonClass } from '@/components/ui/button';
@@ -9,6 +10,7 @@ import { can } from '@/lib/domain/permissions';
 import type { FrameRow, Me } from '@/lib/domain/views';
 import { listBenchChoices } from '@/lib/server/queries/benches';
 import { listFrames } from '@/lib/server/queries/frames';
+import { returnedTo } from '@/lib/server/queries/frames-page';
 import { benchInUse, requireMe } from '@/lib/server/session';
 import { FindForm } from '../_components/find-form';
 import { framesHref, readFramesQuery } from '../_components/query';
@@ -26,7 +28,12 @@ function hrefFor(me: Me) {
 export default async function FramesPage({ searchParams }: { searchParams: Promise<SearchParams> }) {
   const me = await requireMe('frames.see');
   const query = readFramesQuery(await searchParams, await benchInUse());
-  const [list, benches] = await Promise.all([listFrames(query), listBenchChoices()]);
+  const sends = can(me, 'readings.send');
+  const [list, benches, returned] = await Promise.all([
+    listFrames(query),
+    listBenchChoices(),
+    sends ? returnedTo(me.id) : 0,
+  ]);
   const bench = benches.find((b) => b.id === query.benchId)?.name ?? 'all benches';
   return (
     <div className="page">
@@ -52,6 +59,7 @@ export default async function FramesPage({ searchParams }: { searchParams: Promi
           ) : null}
         </div>
       </div>
+      {query.state === 'returned' ? null : <ReturnedNotice returned={returned} />}
       <StateWords query={query} counts={list.counts} />
       {list.rows.length ? (
         <FrameList frames={list.rows} hrefOf={hrefFor(me)} />

@@ -7,10 +7,11 @@ import { buttonClass } from '@/components/ui/button';
 import { idParam, type SearchParams } from '@/lib/client/address';
 import { subjectName } from '@/lib/client/words';
 import { can } from '@/lib/domain/permissions';
+import { commentsOf, listNames } from '@/lib/server/queries/comments';
 import { findFrame, mayFor } from '@/lib/server/queries/frames';
 import { requireMe } from '@/lib/server/session';
 import { enterFrameConditions } from '../../conditions/actions';
-import { keepFit, sendToReview } from '../../readings/actions';
+import { addComment, answerWithdrawal, askWithdrawal, keepFit, sendToReview } from '../../readings/actions';
 import { StillMoving } from './_components/still-moving';
 
 interface Props {
@@ -53,9 +54,16 @@ export default async function FramePage(props: Props) {
       <StillMoving frameId={frame.id} state={frame.state} />
       <FrameDesk
         frame={frame}
+        me={{ id: me.id, name: me.name }}
         may={await mayFor(me, frame)}
         keepFit={keepFit}
         sendToReview={sendToReview}
+        withdrawal={{ askWithdrawal, answerWithdrawal }}
+        commenting={{
+          comments: await commentsOf(frame.id),
+          people: can(me, 'comments.add') ? await listNames() : [],
+          addComment,
+        }}
         enterConditions={enterFrameConditions}
       />
     </div>

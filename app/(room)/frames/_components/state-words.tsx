@@ -12,11 +12,12 @@ const WORDS: readonly [FramesQuery['state'], string][] = [
   ['review', READING_WORDS.review],
   ['returned', READING_WORDS.returned],
   ['accepted', READING_WORDS.accepted],
+  ['withdrawn', READING_WORDS.withdrawn],
   ['refused', FRAME_WORDS.refused],
   ['unreadable', FRAME_WORDS.unreadable],
 ];
-/** States that pass by themselves show only while a frame is in them. */
-const PASSING: readonly string[] = ['copying', 'waiting', 'fitting'];
+/** States that pass by themselves, and the rare one, show only while a frame is in them. */
+const PASSING: readonly string[] = ['copying', 'waiting', 'fitting', 'withdrawn'];
 
 /** All frames under the other filters. */
 export function sumOf(counts: Record<string, number>): number {

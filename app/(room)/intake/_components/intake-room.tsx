@@ -69,7 +69,9 @@ export function IntakeRoom({
   const closed = !bench
     ? 'Choose the bench first.'
     : bench.setupNumber === null
-      ? `${bench.name} has no setup yet. An admin enters one under Benches.`
+      ? bench.waitingNumber === null
+        ? `${bench.name} has no setup in force. An admin enters one under Benches.`
+        : `Setup ${bench.waitingNumber} of ${bench.name} waits for QA, who approves it under Benches.`
       : !chosen
         ? 'There is no open lot and no source. Open a lot first.'
         : null;

@@ -7,9 +7,19 @@ import { ReviewDesk } from '@/components/reading/review-desk';
 import { buttonClass } from '@/components/ui/button';
 import { subjectName } from '@/lib/client/words';
 import type { Me, ReviewView } from '@/lib/domain/views';
+import { can } from '@/lib/domain/permissions';
+import { commentsOf, listNames } from '@/lib/server/queries/comments';
 import { findReview } from '@/lib/server/queries/review';
 import { requireMe } from '@/lib/server/session';
-import { acceptReading, keepFit, returnReading, setOutcome } from '../../readings/actions';
+import {
+  acceptReading,
+  addComment,
+  answerWithdrawal,
+  askWithdrawal,
+  keepFit,
+  returnReading,
+  setOutcome,
+} from '../../readings/actions';
 
 interface Props {
   params: Promise<{ readingId: string }>;
@@ -54,6 +64,13 @@ export default async function ReviewPage({ params }: Props) {
         acceptReading={acceptReading}
         returnReading={returnReading}
         setOutcome={setOutcome}
+        withdrawal={{ askWithdrawal, answerWithdrawal }}
+        me={{ id: me.id, name: me.name }}
+        commenting={{
+          comments: await commentsOf(view.frame.id),
+          people: can(me, 'comments.add') ? await listNames() : [],
+          addComment,
+        }}
       />
     </div>
   );

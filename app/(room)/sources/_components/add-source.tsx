@@ -4,11 +4,13 @@ import { useRouter } from 'next/navigation';
 import { useState } from 'react';
 import type { z } from 'zod';
 import { Disclosure } from '@/components/ui/disclosure';
-import { Field } from '@/components/ui/field';
+import { Field, Select, Tick } from '@/components/ui/field';
 import { FormFoot } from '@/components/ui/form-foot';
-import { parseNumber, useSubmit } from '@/lib/client/use-submit';
+import { useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
-import type { sourceSchema } from '@/lib/domain/schemas';
+import { SOURCE_KIND_WORDS, SOURCE_KINDS, type SourceKind } from '@/lib/domain/source';
+import type { sourceSchema } from '@/lib/domain/source-schemas';
+import { CertifiedFields, certifiedInput, type CertifiedText } from './source-fields';
 
 interface Props {
   addSource: (input: z.input<typeof sourceSchema>) => Promise<ActionAnswer<unknown>>;
@@ -16,23 +18,22 @@ interface Props {
 
 export function AddSource({ addSource }: Props) {
   return (
-    <Disclosure word="Add a source…" title="Add a reference source" kind="main">
+    <Disclosure word="Add a source…" title="Add a source" kind="main">
       {(close) => <SourceForm addSource={addSource} close={close} />}
     </Disclosure>
   );
 }
 
-const START = { name: '', vacuum: '', u: '', note: '' };
+const START: CertifiedText = { vacuum: '', u: '', certificate: '', file: null, due: '' };
 
 function SourceForm({ addSource, close }: Props & { close: () => void }) {
   const router = useRouter();
+  const [name, setName] = useState('');
+  const [note, setNote] = useState('');
+  const [kind, setKind] = useState<Exclude<SourceKind, 'unstated'>>('stabilised-laser');
+  const [isReference, setIsReference] = useState(true);
   const [text, setText] = useState(START);
   const submit = useSubmit<unknown>();
-  const field = (key: keyof typeof START, error: string) => ({
-    value: text[key],
-    error: submit.fields[error],
-    onChange: (event: React.ChangeEvent<HTMLInputElement>) => setText({ ...text, [key]: event.target.value }),
-  });
   return (
     <form
       onSubmit={(event) => {
@@ -40,10 +41,11 @@ function SourceForm({ addSource, close }: Props & { close: () => void }) {
         submit.run(
           () =>
             addSource({
-              name: text.name,
-              vacuumNm: parseNumber(text.vacuum),
-              uNm: parseNumber(text.u),
-              note: text.note,
+              name,
+              kind,
+              isReference: kind !== 'product' && isReference,
+              note,
+              ...certifiedInput(text),
             }),
           () => {
             close();
@@ -53,19 +55,43 @@ function SourceForm({ addSource, close }: Props & { close: () => void }) {
       }}
     >
       <div className="form-grid">
-        <Field label="Name" required {...field('name', 'name')} />
         <Field
-          label="Wavelength in vacuum, nm"
-          inputMode="decimal"
+          label="Name"
           required
-          {...field('vacuum', 'vacuumNm')}
+          value={name}
+          error={submit.fields.name}
+          onChange={(event) => setName(event.target.value)}
         />
-        <Field label="Standard uncertainty, nm (k = 1)" inputMode="decimal" required {...field('u', 'uNm')} />
+        <Select
+          label="Kind"
+          value={kind}
+          error={submit.fields.kind}
+          onChange={(event) => setKind(SOURCE_KINDS.find((one) => one === event.target.value) ?? kind)}
+        >
+          {SOURCE_KINDS.map((one) => (
+            <option key={one} value={one}>
+              {SOURCE_KIND_WORDS[one]}
+            </option>
+          ))}
+        </Select>
+        <CertifiedFields of={name || 'the source'} text={text} errors={submit.fields} onChange={setText} />
         <Field
-          label="Where the value comes from"
-          help="Certificate or publication."
-          {...field('note', 'note')}
+          label="Note"
+          value={note}
+          error={submit.fields.note}
+          onChange={(event) => setNote(event.target.value)}
         />
+        <div>
+          <Tick
+            label="Benches may be checked with it"
+            checked={kind !== 'product' && isReference}
+            disabled={kind === 'product'}
+            onChange={(event) => setIsReference(event.target.checked)}
+          />
+          {kind === 'product' ? (
+            <p className="help">A product’s wavelength is what is to be measured, so it is no reference.</p>
+          ) : null}
+        </div>
       </div>
       <FormFoot word="Add it" waiting={submit.waiting} message={submit.message} onBack={close} />
     </form>

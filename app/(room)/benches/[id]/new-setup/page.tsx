@@ -1,6 +1,6 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
-import { notFound } from 'next/navigation';
+import { notFound, redirect } from 'next/navigation';
 import { buttonClass } from '@/components/ui/button';
 import { findBench } from '@/lib/server/queries/benches';
 import { requireMe } from '@/lib/server/session';
@@ -18,26 +18,29 @@ export default async function NewSetup({ params }: Props) {
   const id = Number((await params).id);
   if (!Number.isInteger(id) || id < 1) notFound();
   const bench = (await findBench(id)) ?? notFound();
-  const newest = bench.setups[0] ?? null;
+  if (bench.waiting) redirect(`/benches/${id}`);
+  const before = bench.inForce;
   return (
     <div className="page pb-12">
       <div className="headline">
         <div className="l">
           <h1>
-            Setup {(newest?.number ?? 0) + 1} of {bench.name}
+            Setup {bench.lastNumber + 1} of {bench.name}
           </h1>
-          <span className="text-ink-2">{newest ? `follows setup ${newest.number}` : 'the first'}</span>
+          <span className="text-ink-2">
+            {before ? `starts from setup ${before.number}, in force` : 'the first'}
+          </span>
         </div>
         <Link className={buttonClass('quiet')} href={`/benches/${id}`}>
           Back to the bench
         </Link>
       </div>
       <p className="lead mb-4">
-        A setup is in force from the moment it is entered. It is never changed, and readings made before it
-        keep the values they were made with. Laser light can hurt eyes: block the beam before touching the
-        bench; the laser safety officer and the local rules have the last word.
+        A setup comes into force when QA approves it. It is never changed, and readings made before it keep
+        the values they were made with. Laser light can hurt eyes: block the beam before touching the bench;
+        the laser safety officer and the local rules have the last word.
       </p>
-      <SetupForm benchId={id} before={newest} addSetup={addSetup} />
+      <SetupForm benchId={id} before={before} lastNumber={bench.lastNumber} addSetup={addSetup} />
     </div>
   );
 }

@@ -7,6 +7,7 @@ import { ToleranceWhisker } from '@/components/figures/tolerance-whisker';
 import type { SetOutcome } from '@/components/reading/actions';
 import { OutcomeLine } from '@/components/reading/outcome-line';
 import { count } from '@/lib/client/words';
+import { readingMayBeFollowed } from '@/lib/domain/life-cycle';
 import type { Specification } from '@/lib/domain/specification';
 import type { UnitRow } from '@/lib/domain/views';
 
@@ -20,8 +21,10 @@ interface Props {
 
 /** One unit of a lot: what it stands at, and what became of it. */
 export function UnitLine({ unit, specification, lotId, mayOutcome, setOutcome }: Props) {
-  const { reading } = unit;
-  const state = reading ? stateOf({ state: 'fitted', reading }) : null;
+  const standing = unit.reading;
+  const state = standing ? stateOf({ state: 'fitted', reading: standing }) : null;
+  // A withdrawn value is on the frame's own page; the unit has none.
+  const reading = standing && readingMayBeFollowed(standing.status) ? null : standing;
   return (
     <div className="list-row unit-row" role="listitem">
       <div>

@@ -9,23 +9,26 @@ import { Notice } from '@/components/ui/notice';
 import { useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import type { SetupView } from '@/lib/domain/views';
-import { SETUP_VALUES } from '../../../_components/setup-values';
-import { changesOf, inputOf, scaleText, startText, type SetupInput } from './setup-text';
+import { SETUP_VALUES } from '@/lib/domain/setup';
+import { InForceFrom } from './in-force-from';
+import { changesOf, hintOf, inputOf, scaleText, startText, type SetupInput } from './setup-text';
 import { ScalePhoto } from './scale-photo';
 import { ValueBlock } from './value-block';
 
 interface Props {
   benchId: number;
+  /** The setup in force. */
   before: SetupView | null;
+  lastNumber: number;
   addSetup: (input: SetupInput) => Promise<ActionAnswer<unknown>>;
 }
 
 /** A new setup: each value with its uncertainty, certificate and due date, and what changes. */
-export function SetupForm({ benchId, before, addSetup }: Props) {
+export function SetupForm({ benchId, before, lastNumber, addSetup }: Props) {
   const router = useRouter();
   const [text, setText] = useState(() => startText(before));
   const submit = useSubmit<unknown>();
-  const number = (before?.number ?? 0) + 1;
+  const number = lastNumber + 1;
   const changes = changesOf(text, before);
   const faster = submit.message !== '';
   return (
@@ -34,7 +37,7 @@ export function SetupForm({ benchId, before, addSetup }: Props) {
       onSubmit={(event) => {
         event.preventDefault();
         submit.run(
-          () => addSetup(inputOf(benchId, before, text)),
+          () => addSetup(inputOf(benchId, lastNumber, text)),
           () => {
             router.push(`/benches/${benchId}`);
             router.refresh();
@@ -42,6 +45,11 @@ export function SetupForm({ benchId, before, addSetup }: Props) {
         );
       }}
     >
+      <InForceFrom
+        from={text.from}
+        error={submit.fields.inForceFrom}
+        onChange={(from) => setText({ ...text, from })}
+      />
       <div className="max-w-[320px] pb-4">
         <Field
           label="Slit plate"
@@ -50,17 +58,14 @@ export function SetupForm({ benchId, before, addSetup }: Props) {
           onChange={(event) => setText({ ...text, plate: event.target.value })}
         />
       </div>
-      {SETUP_VALUES.map((spec) => (
+      {SETUP_VALUES.map(({ key }) => (
         <ValueBlock
-          key={spec.key}
-          valueKey={spec.key}
-          name={spec.name}
-          symbol={spec.symbol}
-          unit={spec.unit}
-          text={text.values[spec.key]}
-          before={before?.[spec.key] ?? null}
+          key={key}
+          valueKey={key}
+          text={text.values[key]}
+          hint={hintOf(key, text, before)}
           errors={submit.fields}
-          onChange={(value) => setText({ ...text, values: { ...text.values, [spec.key]: value } })}
+          onChange={(value) => setText({ ...text, values: { ...text.values, [key]: value } })}
         />
       ))}
       <div className="py-4">
@@ -73,7 +78,7 @@ export function SetupForm({ benchId, before, addSetup }: Props) {
           }
         />
       </div>
-      <div className="value-block">
+      <div className="plain-block">
         <Field
           label="Re-mount, standard uncertainty, nm"
           inputMode="decimal"
@@ -83,13 +88,34 @@ export function SetupForm({ benchId, before, addSetup }: Props) {
           onChange={(event) => setText({ ...text, remountU: event.target.value })}
         />
         <Field
-          label="Degrees of freedom"
+          label="Degrees of freedom of the re-mount"
           inputMode="decimal"
           value={text.remountDof}
           error={submit.fields['remountNm.dof']}
           onChange={(event) => setText({ ...text, remountDof: event.target.value })}
         />
-        <span />
+      </div>
+      <div className="plain-block">
+        <Field
+          label="Camera, model"
+          value={text.cameraModel}
+          error={submit.fields['camera.model']}
+          onChange={(event) => setText({ ...text, cameraModel: event.target.value })}
+        />
+        <Field
+          label="Serial of the camera"
+          value={text.cameraSerial}
+          error={submit.fields['camera.serial']}
+          onChange={(event) => setText({ ...text, cameraSerial: event.target.value })}
+        />
+        <Field
+          label="Bit depth"
+          inputMode="numeric"
+          value={text.cameraBits}
+          error={submit.fields['camera.bits']}
+          help="Bits of one value: 8 to 16; empty when it is not known."
+          onChange={(event) => setText({ ...text, cameraBits: event.target.value })}
+        />
         <Select
           label="Tone of the camera"
           value={text.tone}
@@ -125,7 +151,7 @@ export function SetupForm({ benchId, before, addSetup }: Props) {
               {changes.length ? (
                 changes.map((line) => <li key={line}>{line}</li>)
               ) : (
-                <li>Nothing yet: all values are as in setup {before.number}.</li>
+                <li>Nothing yet: all values are as in setup {before.number}, which is in force.</li>
               )}
             </ul>
           ) : (
@@ -148,8 +174,11 @@ export function SetupForm({ benchId, before, addSetup }: Props) {
       ) : null}
       <div className="form-foot">
         <button type="submit" className={buttonClass('plain', true)} disabled={submit.waiting}>
-          Put setup {number} in force
+          Hand setup {number} to QA
         </button>
+        <p className="text-small text-ink-2">
+          Somebody of QA looks at it and approves it; until then nothing changes on the bench.
+        </p>
         {Object.keys(submit.fields).length ? (
           <p className="help wrong" role="alert">
             {Object.keys(submit.fields).length === 1

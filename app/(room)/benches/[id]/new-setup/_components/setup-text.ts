@@ -1,46 +1,74 @@
 /** The form of a new setup as text, and what can be said about it before it is sent. */
 import type { z } from 'zod';
 import { parseMaybe, parseNumber } from '@/lib/client/use-submit';
-import type { setupSchema } from '@/lib/domain/schemas';
+import { divisorOf, SETUP_VALUES, type UncertaintyShape, type ValueKey } from '@/lib/domain/setup';
+import { oddness } from '@/lib/domain/setup-plausibility';
+import type { setupSchema } from '@/lib/domain/setup-schemas';
 import { SCALE_WORDS, type ScaleReading } from '@/lib/domain/scale-result';
-import type { SetupView, StatedValue } from '@/lib/domain/views';
-import { formatNumber, formatPercent, formatQuantity, placesFor } from '@/lib/quantity/format';
-import { SETUP_VALUES, type ValueKey } from '../../../_components/setup-values';
+import type { CertificateLink, SetupView, StatedValue } from '@/lib/domain/views';
+import { formatQuantity, placesFor } from '@/lib/quantity/format';
 
 export interface ValueText {
   value: string;
   stated: string;
+  shape: UncertaintyShape;
   k: string;
+  dof: string;
   certificate: string;
+  file: CertificateLink | null;
   due: string;
+  /** What looks odd is right, for this reason. */
+  isRight: boolean;
+  reason: string;
 }
 
 export interface SetupText {
+  /** '' : as soon as it is approved; else as a date-and-time field has it. */
+  from: string;
   plate: string;
   values: Record<ValueKey, ValueText>;
   remountU: string;
   remountDof: string;
   tone: 'auto' | 'linear' | 'srgb';
+  cameraModel: string;
+  cameraSerial: string;
+  cameraBits: string;
   why: string;
 }
 
 export type SetupInput = z.input<typeof setupSchema>;
 
-const EMPTY: ValueText = { value: '', stated: '', k: '2', certificate: '', due: '' };
+const EMPTY: ValueText = {
+  value: '',
+  stated: '',
+  shape: 'expanded',
+  k: '2',
+  dof: '',
+  certificate: '',
+  file: null,
+  due: '',
+  isRight: false,
+  reason: '',
+};
 
 function textOf(value: StatedValue): ValueText {
   return {
+    ...EMPTY,
     value: String(value.value),
     stated: String(value.stated),
-    k: String(value.k),
+    shape: value.shape,
+    k: value.shape === 'expanded' ? String(value.k) : '2',
+    dof: value.dof === null ? '' : String(value.dof),
     certificate: value.certificate,
+    file: value.file,
     due: value.due ?? '',
   };
 }
 
-/** Starts from the setup before, since usually one value changes. */
+/** Starts from the setup in force, since usually one value changes. */
 export function startText(before: SetupView | null): SetupText {
   return {
+    from: '',
     plate: before?.plate ?? '',
     values: {
       separationUm: before ? textOf(before.separationUm) : EMPTY,
@@ -51,29 +79,49 @@ export function startText(before: SetupView | null): SetupText {
     remountU: before?.remountNm ? String(before.remountNm.u) : '',
     remountDof: before?.remountNm?.dof == null ? '' : String(before.remountNm.dof),
     tone: before?.tone ?? 'auto',
+    cameraModel: before?.camera.model ?? '',
+    cameraSerial: before?.camera.serial ?? '',
+    cameraBits: before?.camera.bits == null ? '' : String(before.camera.bits),
     why: '',
   };
 }
 
-export function inputOf(benchId: number, before: SetupView | null, text: SetupText): SetupInput {
+export function inputOf(benchId: number, lastNumber: number, text: SetupText): SetupInput {
   const stated = (value: ValueText) => ({
     value: parseNumber(value.value),
     stated: parseNumber(value.stated),
-    k: parseNumber(value.k),
+    shape: value.shape,
+    k: value.shape === 'expanded' ? parseNumber(value.k) : 2,
+    dof: parseMaybe(value.dof),
     certificate: value.certificate,
+    file: value.file?.sha256 ?? null,
     due: value.due === '' ? null : value.due,
   });
+  const confirmed = (value: ValueText) => (value.isRight ? value.reason : '');
+  const { scaleUmPerPx, separationUm, widthUm, distanceMm } = text.values;
   const remount = parseMaybe(text.remountU);
   return {
     benchId,
-    afterNumber: before?.number ?? 0,
+    afterNumber: lastNumber,
+    inForceFrom: text.from === '' ? null : new Date(text.from).toISOString(),
     plate: text.plate,
-    scaleUmPerPx: stated(text.values.scaleUmPerPx),
-    separationUm: stated(text.values.separationUm),
-    widthUm: stated(text.values.widthUm),
-    distanceMm: stated(text.values.distanceMm),
+    scaleUmPerPx: stated(scaleUmPerPx),
+    separationUm: stated(separationUm),
+    widthUm: stated(widthUm),
+    distanceMm: stated(distanceMm),
+    confirmed: {
+      scaleUmPerPx: confirmed(scaleUmPerPx),
+      separationUm: confirmed(separationUm),
+      widthUm: confirmed(widthUm),
+      distanceMm: confirmed(distanceMm),
+    },
     remountNm: remount === null ? null : { u: remount, dof: parseMaybe(text.remountDof) },
     tone: text.tone,
+    camera: {
+      model: text.cameraModel,
+      serial: text.cameraSerial,
+      bits: parseMaybe(text.cameraBits),
+    },
     why: text.why,
   };
 }
@@ -86,41 +134,23 @@ export function scaleText({ scale, sha256 }: ScaleReading, before: ValueText): V
     ...before,
     value: scale.scaleUmPerPx.toFixed(places),
     stated: (2 * scale.uScaleUmPerPx).toFixed(places),
+    shape: 'expanded',
     k: '2',
+    dof: '',
     certificate: `${SCALE_WORDS[scale.kind]} photographed, ${scale.points.length} ${what} ${scale.pitchMm} mm apart, picture ${sha256.slice(0, 16)}`,
+    file: null,
   };
-}
-
-/** Ratios that come from writing a value in the wrong unit. */
-const SLIPS: readonly [number, string][] = [
-  [1000, '1000 times the one before: a wrong unit?'],
-  [0.001, 'a thousandth of the one before: a wrong unit?'],
-  [10, 'ten times the one before: a slipped point?'],
-  [0.1, 'a tenth of the one before: a slipped point?'],
-  [25.4, '25.4 times the one before: inches?'],
-  [1 / 25.4, 'the one before over 25.4: inches?'],
-];
-const SLIP_SLACK = 0.03;
-/** A change larger than this share of the value is worth a second look. */
-const MUCH = 0.005;
-
-/** What looks odd about a value beside its predecessor, or ''. */
-export function hintOf(unit: string, text: ValueText, before: StatedValue | null): string {
-  const value = parseNumber(text.value);
-  const stated = parseNumber(text.stated);
-  if (stated >= value) return 'The ± is as large as the value itself.';
-  if (!before || !Number.isFinite(value) || value <= 0) return '';
-  const ratio = value / before.value;
-  const slip = SLIPS.find(([of]) => Math.abs(ratio / of - 1) < SLIP_SLACK);
-  if (slip) return `This is ${slip[1]}`;
-  if (Math.abs(ratio - 1) > MUCH) {
-    return `This is ${formatPercent(Math.abs(ratio - 1))} ${ratio > 1 ? 'more' : 'less'} than the ${formatNumber(before.value, 3)} ${unit} before. Check it; if it is right, it can be entered.`;
-  }
-  return '';
 }
 
 /** Another plate has another separation and width by right; they are not compared. */
 const ofPlate = (key: ValueKey) => key === 'separationUm' || key === 'widthUm';
+
+/** What looks odd about a value beside the setup in force, or null. */
+export function hintOf(key: ValueKey, text: SetupText, before: SetupView | null): string | null {
+  const comparable =
+    before && !(ofPlate(key) && text.plate.trim() !== before.plate) ? before[key].value : null;
+  return oddness(key, parseNumber(text.values[key].value), comparable);
+}
 
 function insideWords(inside: boolean | null): string {
   if (inside === null) return ' with the plate';
@@ -135,7 +165,7 @@ export function changesOf(text: SetupText, before: SetupView | null): string[] {
     const now = text.values[key];
     const was = before[key];
     const value = parseNumber(now.value);
-    const u = parseNumber(now.stated) / parseNumber(now.k);
+    const u = parseNumber(now.stated) / divisorOf(now.shape, parseNumber(now.k));
     if (!Number.isFinite(value) || !Number.isFinite(u)) return [];
     if (value === was.value && Math.abs(u - was.u) < 1e-12) return [];
     const from = formatQuantity(was.value, 2 * was.u);

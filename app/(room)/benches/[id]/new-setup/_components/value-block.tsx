@@ -1,26 +1,38 @@
 'use client';
 
 import { Mark } from '@/components/figures/marks';
-import { Field } from '@/components/ui/field';
-import type { StatedValue } from '@/lib/domain/views';
-import type { ValueKey } from '../../../_components/setup-values';
-import { hintOf, type ValueText } from './setup-text';
+import { CertificateFileField } from '@/components/setups/certificate-file';
+import { Field, Select, Tick } from '@/components/ui/field';
+import {
+  SETUP_VALUES,
+  SHAPE_WORDS,
+  UNCERTAINTY_SHAPES,
+  type UncertaintyShape,
+  type ValueKey,
+} from '@/lib/domain/setup';
+import type { ValueText } from './setup-text';
 
 interface Props {
   valueKey: ValueKey;
-  name: string;
-  symbol: string;
-  unit: string;
   text: ValueText;
-  before: StatedValue | null;
+  /** What looks odd about the value; null for nothing. */
+  hint: string | null;
   errors: Record<string, string>;
   onChange: (text: ValueText) => void;
 }
 
-/** One value of a setup: value, ±, k, certificate, due date, and a hint where it looks odd. */
-export function ValueBlock({ name, symbol, unit, text, before, errors, valueKey, onChange }: Props) {
-  const hint = hintOf(unit, text, before);
-  const field = (part: keyof ValueText) => ({
+type TextPart = 'value' | 'stated' | 'k' | 'dof' | 'certificate' | 'due';
+
+const STATED_WORDS: Record<UncertaintyShape, string> = {
+  expanded: '± as stated',
+  rectangular: '± limits',
+  'type-a': '± standard uncertainty',
+};
+
+/** One value of a setup: value, ± and what kind it is, certificate and due date; what looks odd asks for a reason. */
+export function ValueBlock({ valueKey, text, hint, errors, onChange }: Props) {
+  const { name, symbol, unit } = SETUP_VALUES.find(({ key }) => key === valueKey)!;
+  const field = (part: TextPart) => ({
     value: text[part],
     error: errors[`${valueKey}.${part}`],
     onChange: (event: React.ChangeEvent<HTMLInputElement>) =>
@@ -32,14 +44,66 @@ export function ValueBlock({ name, symbol, unit, text, before, errors, valueKey,
         {name} {symbol}
       </legend>
       <Field label={`${name} ${symbol}, ${unit}`} inputMode="decimal" {...field('value')} />
-      <Field label={`± as stated, ${unit}`} inputMode="decimal" {...field('stated')} />
-      <Field label="at k =" inputMode="decimal" {...field('k')} />
-      <Field label="Certificate" {...field('certificate')} />
+      <Field label={`${STATED_WORDS[text.shape]}, ${unit}`} inputMode="decimal" {...field('stated')} />
+      <Select
+        label="Kind of ±"
+        value={text.shape}
+        onChange={(event) =>
+          onChange({
+            ...text,
+            shape: UNCERTAINTY_SHAPES.find((shape) => shape === event.target.value) ?? 'expanded',
+          })
+        }
+      >
+        {UNCERTAINTY_SHAPES.map((shape) => (
+          <option key={shape} value={shape}>
+            {SHAPE_WORDS[shape]}
+          </option>
+        ))}
+      </Select>
+      {text.shape === 'expanded' ? (
+        <Field label="at k =" inputMode="decimal" {...field('k')} />
+      ) : (
+        <span className="max-[1000px]:hidden" />
+      )}
+      <Field
+        label="Degrees of freedom"
+        inputMode="decimal"
+        placeholder={text.shape === 'type-a' ? '' : 'none stated'}
+        {...field('dof')}
+      />
+      <div className="wide">
+        <Field label="Certificate" {...field('certificate')} />
+      </div>
+      <div className="wide">
+        <CertificateFileField
+          of={`${name} ${symbol}`}
+          file={text.file}
+          error={errors[`${valueKey}.file`]}
+          onChange={(file) => onChange({ ...text, file })}
+        />
+      </div>
       <Field label="Due" type="date" {...field('due')} />
       {hint ? (
-        <p className="hint flex items-center gap-2.5 text-small" role="status">
-          <Mark kind="check-look" /> {hint}
-        </p>
+        <div className="hint" role="status">
+          <p className="flex items-center gap-2.5 text-small">
+            <Mark kind="check-look" /> {hint}
+          </p>
+          <Tick
+            label="It is right"
+            checked={text.isRight}
+            onChange={(event) => onChange({ ...text, isRight: event.target.checked })}
+          />
+          {text.isRight || errors[`confirmed.${valueKey}`] ? (
+            <Field
+              label="Why it is right"
+              value={text.reason}
+              maxLength={300}
+              error={errors[`confirmed.${valueKey}`]}
+              onChange={(event) => onChange({ ...text, isRight: true, reason: event.target.value })}
+            />
+          ) : null}
+        </div>
       ) : null}
     </fieldset>
   );
