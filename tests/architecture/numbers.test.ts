@@ -17,6 +17,7 @@ const FOR_MACHINES: Record<string, string> = {
   'components/figures/hollow-orders.tsx': 'drawing',
   'components/figures/stage/paths.ts': 'drawing',
   'components/reading/scan-fields.tsx': 'value of a field',
+  'lib/domain/same-digits.ts': 'digits of two engines against each other',
   'components/ui/number-field.tsx': 'text of a field',
 };
 
