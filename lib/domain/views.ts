@@ -8,25 +8,20 @@ import type { OtherValue } from './specification';
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
 import type { FirstValue } from './move';
+import type { Instant, PersonRef } from './refs';
 import type { Role } from './roles';
 import type { ConfirmedValue, UncertaintyShape } from './setup';
 import type { SourceKind } from './source';
 import type { WithdrawalView } from './withdrawal';
 import type { Judgement, Medium, Method, Specification, Verdict } from './specification';
 
-export interface PersonRef {
-  id: number;
-  name: string;
-}
+export type { Instant, PersonRef };
 
 /** The signed-in person as a page needs it. */
 export interface Me extends PersonRef {
   email: string;
   roles: Role[];
 }
-
-/** Times cross the wire as ISO 8601 UTC strings. */
-export type Instant = string;
 
 /** ---- benches ---- */
 export interface StatedValue {

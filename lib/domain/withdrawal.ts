@@ -1,7 +1,7 @@
 /** Withdrawing an accepted reading: one person asks, another confirms or declines. */
 import { z } from 'zod';
 import { LIMITS } from './limits';
-import type { Instant, PersonRef } from './views';
+import type { Instant, PersonRef } from './refs';
 
 export const WITHDRAWAL_ANSWERS = ['confirmed', 'declined'] as const;
 export type WithdrawalAnswerWord = (typeof WITHDRAWAL_ANSWERS)[number];

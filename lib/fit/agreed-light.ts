@@ -1,5 +1,5 @@
 import { gainAt, LEFT, strayAt, strideOver } from './cells';
-import type { BandFit } from './fit-bands';
+import type { BandFit } from './band-fit';
 import { medianWithin } from './median';
 import { fitNoise } from './noise';
 

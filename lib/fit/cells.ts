@@ -1,4 +1,3 @@
-import type { FitTable } from './fit-table';
 import type { Noise } from './noise';
 
 /** Bands along the fringes, each a profile of its own. Cells are [band * bins + bin]. */
@@ -125,13 +124,6 @@ export function placeCells(data: BandData, state: BandState, grid: CommonGrid): 
       bin[cell] = data.pixels[cell] > 0 && k >= 0 && k < grid.bins ? k : -1;
     }
   }
-}
-
-/** Every cell with the light and the slope of a fit at its place. */
-export function viewCells(data: BandData, state: BandState, grid: CommonGrid, table: FitTable): CellView {
-  placeCells(data, state, grid);
-  table.fill(state.view);
-  return state.view;
 }
 
 /** The gain at a cell's own place: dv from the band's middle along the fringes, z across them (half lengths). */

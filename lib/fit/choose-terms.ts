@@ -1,4 +1,5 @@
-import { refineBands, type BandFit } from './fit-bands';
+import type { BandFit } from './band-fit';
+import { refineBands } from './fit-bands';
 import { refit } from './fit-profile';
 import { promiseOf } from './promise';
 import type { ModelTerms } from './two-slit-model';

@@ -3,14 +3,14 @@ import {
   gridOf,
   LEFT,
   placeCells,
-  viewCells,
   type BandData,
   type BandState,
   type CommonGrid,
 } from './cells';
 import { AgreedLight, measureNoise } from './agreed-light';
+import type { BandFit, LightLimits } from './band-fit';
 import { chainGains, combineBands } from './combine-bands';
-import { expectedOn, tableFor, type FitTable } from './fit-table';
+import { expectedOn, tableFor, viewCells, type FitTable } from './fit-table';
 import { maskBins, maskCells } from './masks';
 import { regressBands, type BandShifts } from './regress-bands';
 import {
@@ -29,14 +29,6 @@ import type { Profile } from './profile';
 import type { ModelTerms } from './two-slit-model';
 import { weightedLine } from './small-matrix';
 
-/** Limits of the camera in linear light; a limit that does not occur is infinite. */
-export interface LightLimits {
-  clip: number;
-  floor: number;
-  /** Smallest variance of a pixel: rounding to codes. */
-  leastVariance: number;
-}
-
 /** How a fit starts: from values of an earlier one or from a scan, with how many rounds, and a person's zero order. */
 export interface FitStart {
   from: StartValues | null;
@@ -45,21 +37,6 @@ export interface FitStart {
   rounds: number;
   /** Where a person wants the zero order, px; null leaves it to the envelope and the geometry. */
   zeroAtPx: number | null;
-}
-
-export interface BandFit {
-  data: BandData;
-  fit: ProfileFit;
-  profile: Profile;
-  state: BandState;
-  grid: CommonGrid;
-  table: FitTable;
-  shifts: BandShifts;
-  limits: LightLimits;
-  /** A zero order that is settled, px; null follows the envelope. */
-  zeroAtPx: number | null;
-  /** In the last round no bin was left out, no band moved, and the fit it began with was this one but for noise. */
-  settled: boolean;
 }
 
 /** Before there is a fit, cells this near the white level count as clipped. */

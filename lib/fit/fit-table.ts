@@ -1,4 +1,4 @@
-import type { BandData, CellView, CommonGrid } from './cells';
+import { placeCells, type BandData, type BandState, type CellView, type CommonGrid } from './cells';
 import { AveragedModel, type ProfileFit } from './fit-profile';
 import { averagingNodes } from './profile';
 import { ModelPoint } from './two-slit-model';
@@ -82,4 +82,11 @@ export function expectedOn(grid: CommonGrid, table: FitTable): Float64Array {
   const out = new Float64Array(grid.bins);
   for (let k = 0; k < grid.bins; k++) out[k] = table.lightAt(grid.from + (k + 0.5) * grid.pitchPx);
   return out;
+}
+
+/** Every cell with the light and the slope of a fit at its place. */
+export function viewCells(data: BandData, state: BandState, grid: CommonGrid, table: FitTable): CellView {
+  placeCells(data, state, grid);
+  table.fill(state.view);
+  return state.view;
 }

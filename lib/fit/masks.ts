@@ -1,6 +1,6 @@
 import { LEFT } from './cells';
 import type { AgreedLight } from './agreed-light';
-import type { BandFit } from './fit-bands';
+import type { BandFit } from './band-fit';
 import { lightOn } from './fit-profile';
 import { varianceAt, type Noise } from './noise';
 import type { Profile } from './profile';

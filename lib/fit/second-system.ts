@@ -1,6 +1,7 @@
 import FFT from 'fft.js';
-import { gainAt, LEFT, strayAt, viewCells, type BandData } from './cells';
-import type { BandFit } from './fit-bands';
+import { gainAt, LEFT, strayAt, type BandData } from './cells';
+import { viewCells } from './fit-table';
+import type { BandFit } from './band-fit';
 import { linearRoom } from './linear-room';
 import { varianceAt } from './noise';
 

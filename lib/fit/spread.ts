@@ -1,7 +1,7 @@
-import { gainAt, LEFT, strayAt, viewCells } from './cells';
-import type { BandFit } from './fit-bands';
+import { gainAt, LEFT, strayAt } from './cells';
+import type { BandFit } from './band-fit';
 import { AveragedModel } from './fit-profile';
-import { expectedOn } from './fit-table';
+import { expectedOn, viewCells } from './fit-table';
 import { varianceAt } from './noise';
 import { ModelPoint } from './two-slit-model';
 

@@ -1,6 +1,6 @@
 import type { StackPlan } from '@/lib/domain/reading-result';
 import type { BandData } from '@/lib/fit/cells';
-import type { LightLimits } from '@/lib/fit/fit-bands';
+import type { LightLimits } from '@/lib/fit/band-fit';
 import { coordinatesIn, toRadians, wrapAngleDeg, type Rectangle } from '@/lib/imaging/geometry';
 import type { SourceFacts } from '@/lib/imaging/picture';
 import type { BandStack } from '@/lib/imaging/straighten';

@@ -7,7 +7,8 @@ import type {
 } from '@/lib/domain/reading-result';
 import { LEFT, type BandData } from '@/lib/fit/cells';
 import { chooseTerms } from '@/lib/fit/choose-terms';
-import { fitBands, fitTilt, type BandFit } from '@/lib/fit/fit-bands';
+import type { BandFit } from '@/lib/fit/band-fit';
+import { fitBands, fitTilt } from '@/lib/fit/fit-bands';
 import { tableFor } from '@/lib/fit/fit-table';
 import { rebase, stepsToZero, type CurvePrior } from '@/lib/fit/fit-profile';
 import { findSecondSystem, secondInflation, withoutSecond, type SecondSystem } from '@/lib/fit/second-system';

@@ -1,6 +1,7 @@
 import type { StackPlan } from '@/lib/domain/reading-result';
 import type { CurvePrior } from '@/lib/fit/fit-profile';
-import { fitBands, fitTilt, type BandFit, type LightLimits, type TiltFit } from '@/lib/fit/fit-bands';
+import type { BandFit, LightLimits } from '@/lib/fit/band-fit';
+import { fitBands, fitTilt, type TiltFit } from '@/lib/fit/fit-bands';
 import { spreadOf } from '@/lib/fit/spread';
 import type { StartValues } from '@/lib/fit/start-values';
 import type { BandData } from '@/lib/fit/cells';
