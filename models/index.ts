@@ -4,6 +4,7 @@ import { defineAuditHead } from './audit-head';
 import { defineAuditRow } from './audit-row';
 import { defineBandStack } from './band-stack';
 import { defineBench } from './bench';
+import { defineCondition } from './condition';
 import { defineCertificateFile } from './certificate-file';
 import { defineReadingComment } from './comment';
 import { defineCommentMention } from './comment-mention';
@@ -23,6 +24,13 @@ import { definePlateMount } from './plate-mount';
 import { defineReading } from './reading';
 import { defineReadingResult } from './reading-result';
 import { defineReadingState } from './reading-state';
+import { defineReadingValue } from './reading-value';
+import {
+  defineBenchRelease,
+  defineBenchRule,
+  defineBenchStop,
+  defineReferenceCheck,
+} from './reference-check';
 import { defineRegionTrial } from './region-trial';
 import { defineReturn } from './return';
 import { defineSetting } from './setting';
@@ -47,8 +55,12 @@ export function defineTables(sequelize: Sequelize) {
     auditAnchors: defineAuditAnchor(sequelize),
     auditHead: defineAuditHead(sequelize),
     auditRows: defineAuditRow(sequelize),
+    benchReleases: defineBenchRelease(sequelize),
+    benchRules: defineBenchRule(sequelize),
+    benchStops: defineBenchStop(sequelize),
     bandStacks: defineBandStack(sequelize),
     benches: defineBench(sequelize),
+    conditions: defineCondition(sequelize),
     certificateFiles: defineCertificateFile(sequelize),
     comments: defineReadingComment(sequelize),
     commentMentions: defineCommentMention(sequelize),
@@ -68,6 +80,8 @@ export function defineTables(sequelize: Sequelize) {
     readings: defineReading(sequelize),
     readingResults: defineReadingResult(sequelize),
     readingStates: defineReadingState(sequelize),
+    readingValues: defineReadingValue(sequelize),
+    referenceChecks: defineReferenceCheck(sequelize),
     regionTrials: defineRegionTrial(sequelize),
     returns: defineReturn(sequelize),
     settings: defineSetting(sequelize),

@@ -6,7 +6,7 @@ import {
   type Model,
   type Sequelize,
 } from 'sequelize';
-import type { DecisionRule, Medium } from '@/lib/domain/specification';
+import type { DecisionRule, Medium, Method } from '@/lib/domain/specification';
 
 /** What a unit must meet. Never edited, only retired. */
 export interface SpecificationRow extends Model<
@@ -23,6 +23,12 @@ export interface SpecificationRow extends Model<
   ownGuardNm: number | null;
   ratio: number;
   halfToleranceNm: number;
+  /** Temperature of the unit the limits hold at; null: any. */
+  atTemperatureC: CreationOptional<number | null>;
+  nmPerK: CreationOptional<number | null>;
+  uNmPerK: CreationOptional<number | null>;
+  /** null: as the bench is used. */
+  method: CreationOptional<Method | null>;
   createdBy: number;
   createdAt: Date;
   retiredAt: CreationOptional<Date | null>;
@@ -42,6 +48,10 @@ export function defineSpecification(sequelize: Sequelize) {
       ownGuardNm: { type: DataTypes.DOUBLE, allowNull: true },
       ratio: { type: DataTypes.DOUBLE, allowNull: false },
       halfToleranceNm: { type: DataTypes.DOUBLE, allowNull: false },
+      atTemperatureC: { type: DataTypes.DOUBLE, allowNull: true },
+      nmPerK: { type: DataTypes.DOUBLE, allowNull: true },
+      uNmPerK: { type: DataTypes.DOUBLE, allowNull: true },
+      method: { type: DataTypes.STRING(12), allowNull: true },
       createdBy: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
       retiredAt: { type: DataTypes.DATE(3), allowNull: true },

@@ -7,13 +7,15 @@ interface Props {
   expandedNm: number;
 }
 
-/** Contributions in nm at k = 1 as bars of one scale; the sum as shown is the sum of the rows as shown. */
+const bySize = (a: BudgetRow, b: BudgetRow) => Math.abs(b.contributionNm) - Math.abs(a.contributionNm);
+
+/** Largest first: contributions in nm at k = 1 as bars of one scale; the sum as shown is the sum of the rows as shown. */
 export function BudgetBars({ rows, uNm, expandedNm }: Props) {
   const largest = Math.max(...rows.map((row) => Math.abs(row.contributionNm)), 1e-12);
   const places = Math.min(6, Math.max(2, 2 - Math.floor(Math.log10(uNm))));
   return (
     <div className="bars">
-      {rows.map((row) => (
+      {[...rows].sort(bySize).map((row) => (
         <Row key={row.key} row={row} share={Math.abs(row.contributionNm) / largest} places={places} />
       ))}
       <div className="sum">

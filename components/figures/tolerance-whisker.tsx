@@ -1,6 +1,6 @@
 import { useId, type ReactNode } from 'react';
 import type { Judgement, Specification } from '@/lib/domain/specification';
-import { groupThousands } from '@/lib/quantity/format';
+import { formatEntered, formatQuantity } from '@/lib/quantity/format';
 import { MEDIUM_SHORT } from './quantity';
 
 /** Where a limit stands, in per cent of the width from the nominal in the middle. */
@@ -68,15 +68,18 @@ function Square({ x, y, side, verdict }: { x: number; y: number; side: number; v
   );
 }
 
+const limit = (nm: number | null) => (nm === null ? '' : formatEntered(nm));
+
 function sentence({ specification, valueNm, expandedNm, judgement }: Props): string {
   const medium = MEDIUM_SHORT[specification.medium];
   const limits =
     specification.lowerNm === null
-      ? `at most ${specification.upperNm} nm`
+      ? `at most ${limit(specification.upperNm)} nm`
       : specification.upperNm === null
-        ? `at least ${specification.lowerNm} nm`
-        : `${specification.lowerNm} to ${specification.upperNm} nm`;
-  return `${valueNm.toFixed(2)} plus or minus ${expandedNm.toFixed(2)} nm (${medium}) against ${limits}. ${judgement?.because ?? ''}`;
+        ? `at least ${limit(specification.lowerNm)} nm`
+        : `${limit(specification.lowerNm)} to ${limit(specification.upperNm)} nm`;
+  const { value, uncertainty } = formatQuantity(valueNm, expandedNm);
+  return `${value} plus or minus ${uncertainty} nm (${medium}) against ${limits}. ${judgement?.because ?? ''}`;
 }
 
 /** The measured interval against the tolerance. Drawn in per cent, so it needs no measuring and no script. */
@@ -186,20 +189,19 @@ function Interval({ from, to, y, lower, upper }: IntervalProps) {
 }
 
 function Names({ spec, lower, upper }: { spec: Specification; lower: number | null; upper: number | null }) {
-  const text = (nm: number) => groupThousands(String(nm));
   return (
     <g textAnchor="middle">
       {lower === null || spec.lowerNm === null ? null : (
         <text x={`${lower}%`} y="56">
-          {text(spec.lowerNm)}
+          {limit(spec.lowerNm)}
         </text>
       )}
       <text x="50%" y="56">
-        {text(spec.nominalNm)} nm ({MEDIUM_SHORT[spec.medium]})
+        {limit(spec.nominalNm)} nm ({MEDIUM_SHORT[spec.medium]})
       </text>
       {upper === null || spec.upperNm === null ? null : (
         <text x={`${upper}%`} y="56">
-          {text(spec.upperNm)}
+          {limit(spec.upperNm)}
         </text>
       )}
     </g>

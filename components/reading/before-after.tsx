@@ -1,4 +1,5 @@
 import { SaidVerdict } from '@/components/figures/marks';
+import { MEDIUM_SHORT } from '@/components/figures/quantity';
 import { spacingOf } from '@/lib/domain/placed-strip';
 import type { ReadingView } from '@/lib/domain/views';
 import { formatNumber, placesFor } from '@/lib/quantity/format';
@@ -42,7 +43,7 @@ export function BeforeAfter({ before, preview }: Props) {
           </thead>
           <tbody>
             <tr>
-              <th scope="row">nm</th>
+              <th scope="row">nm ({MEDIUM_SHORT[fit?.medium ?? before?.medium ?? 'air']})</th>
               <td>{before ? valueText(before) : 'none'}</td>
               <td>
                 <b>{fit ? valueText({ ...fit, spacing: spacingOf(fit.result) }) : '…'}</b>

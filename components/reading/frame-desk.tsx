@@ -1,6 +1,9 @@
 'use client';
 
 import { useState } from 'react';
+import { Budget } from '@/components/budget/budget';
+import { FrameConditions, type EnterFrameConditions } from '@/components/conditions/frame-conditions';
+import { SlitPlate } from '@/components/slit/slit-plate';
 import { Button } from '@/components/ui/button';
 import { FRAME_WORDS, readingMayBeFollowed } from '@/lib/domain/life-cycle';
 import type { FrameView, May, PersonRef } from '@/lib/domain/views';
@@ -18,7 +21,7 @@ import { KeepChange, type Refusal } from './keep-change';
 import { KeysSheet } from './keys-sheet';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
-import { Budget, Result } from './result';
+import { Result } from './result';
 import { SaidResult } from './said-result';
 import { SendBox } from './send-box';
 import { MoveBox } from './move-box';
@@ -31,13 +34,23 @@ interface Props {
   may: May;
   keepFit: KeepFit;
   sendToReview: SendToReview;
+  enterConditions: EnterFrameConditions;
   withdrawal: WithdrawalActions;
   commenting: CommentsGiven;
   me: PersonRef;
 }
 
 /** One frame as the technician sees it: photo, stage, result, and what can be done with it. */
-export function FrameDesk({ frame, may, keepFit, sendToReview, withdrawal, commenting, me }: Props) {
+export function FrameDesk({
+  frame,
+  may,
+  keepFit,
+  sendToReview,
+  enterConditions,
+  withdrawal,
+  commenting,
+  me,
+}: Props) {
   const reading = frame.shown;
   const desk = useRegionChange({
     frameId: frame.id,
@@ -131,6 +144,7 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, withdrawal, comme
               result={shown.result}
               wavelengthNm={shown.wavelengthNm}
               expandedNm={shown.expandedNm}
+              k={shown.k}
               medium={shown.medium}
               judgement={shown.judgement}
               specification={specificationOf(frame.subject)}
@@ -138,7 +152,29 @@ export function FrameDesk({ frame, may, keepFit, sendToReview, withdrawal, comme
               uScaleUmPerPx={reading?.setup.scaleUmPerPx.u ?? (fit ? uScaleOfFit(fit) : 0)}
               publishedVacuumNm={publishedOf(frame.subject)}
             />
-            <Budget result={shown.result} />
+            <Budget
+              key={shown === fit ? 'preview' : reading?.id}
+              wavelengthNm={shown.wavelengthNm}
+              uNm={shown.uNm}
+              expandedNm={shown.expandedNm}
+              medium={shown.medium}
+              budget={shown.budget}
+              corrections={shown.corrections}
+              method={shown.method}
+              other={shown.other}
+              specification={specificationOf(frame.subject)}
+              monteCarlo={shown === reading ? reading.monteCarlo : null}
+            />
+            {reading ? (
+              <FrameConditions
+                frameId={frame.id}
+                reading={reading}
+                enter={may.send && desk.change === null ? enterConditions : null}
+              />
+            ) : null}
+            {frame.subject.kind === 'source' && frame.subject.isReference ? (
+              <SlitPlate result={shown.result} setup={frame.facts.setup} source={frame.subject} />
+            ) : null}
             <Further result={shown.result} />
           </>
         ) : null}

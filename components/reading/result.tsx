@@ -1,11 +1,11 @@
 import { SaidVerdict } from '@/components/figures/marks';
 import { MEDIUM_SHORT, Quantity } from '@/components/figures/quantity';
 import { ToleranceWhisker } from '@/components/figures/tolerance-whisker';
-import { BudgetBars } from '@/components/figures/budget-bars';
 import { RULE_WORDS } from '@/lib/client/words';
 import { spacingOf } from '@/lib/domain/placed-strip';
 import type { FitResult } from '@/lib/domain/scan-result';
 import type { Judgement, Medium, Specification } from '@/lib/domain/specification';
+import { airFromVacuum, vacuumFromAir } from '@/lib/quantity/air-index';
 import { formatNumber, formatQuantity, formatSigned, placesFor } from '@/lib/quantity/format';
 
 export interface ResultProps {
@@ -13,6 +13,7 @@ export interface ResultProps {
   /** In the specification's medium. */
   wavelengthNm: number | null;
   expandedNm: number | null;
+  k: number | null;
   medium: Medium;
   judgement: Judgement | null;
   specification: Specification | null;
@@ -22,6 +23,11 @@ export interface ResultProps {
   uScaleUmPerPx: number;
   /** For a reference source: its published wavelength in vacuum, nm. */
   publishedVacuumNm: number | null;
+}
+
+/** A value in air of the standard state in vacuum, and back. */
+function inOther(nm: number, medium: Medium): number {
+  return medium === 'air' ? vacuumFromAir(nm) : airFromVacuum(nm);
 }
 
 /** Verdict, value and where it stands; the largest thing on the page. */
@@ -76,6 +82,7 @@ export function Result(props: ResultProps) {
 function Lines({
   result,
   wavelengthNm,
+  k,
   medium,
   scaleUmPerPx,
   uScaleUmPerPx,
@@ -86,11 +93,12 @@ function Lines({
   const spacingMm = inMm ? own.value : (own.value * scaleUmPerPx) / 1000;
   const relative = Math.hypot(own.u / own.value, inMm ? 0 : uScaleUmPerPx / scaleUmPerPx);
   const spacing = formatQuantity(spacingMm, 2 * spacingMm * relative);
-  const other = medium === 'air' ? result.wavelengthVacuumNm : result.wavelengthNm;
+  const other =
+    wavelengthNm === null || result.wavelengthVacuumNm === null ? null : inOther(wavelengthNm, medium);
   const places = placesFor(result.expandedNm ?? 0.5);
   return (
     <p className="res-k">
-      {result.k === null ? '' : `k = ${formatNumber(result.k, 2)}`}
+      {k === null ? '' : `k = ${formatNumber(k, 2)}`}
       {wavelengthNm !== null && other !== null
         ? ` · ${formatNumber(other, places)} nm (${MEDIUM_SHORT[medium === 'air' ? 'vacuum' : 'air']})`
         : ''}
@@ -107,22 +115,5 @@ function Lines({
         </>
       ) : null}
     </p>
-  );
-}
-
-/** What the ± is made of, or why there is none. */
-export function Budget({ result }: { result: FitResult }) {
-  return (
-    <div className="sec" style={{ marginTop: 6 }}>
-      <div className="cap">
-        <h2>What the ± is made of</h2>
-        <span>nm, k = 1</span>
-      </div>
-      {result.budget.length && result.uWavelengthNm !== null && result.expandedNm !== null ? (
-        <BudgetBars rows={result.budget} uNm={result.uWavelengthNm} expandedNm={result.expandedNm} />
-      ) : (
-        <p className="text-small text-ink-2">The setup states no uncertainty, so this reading has none.</p>
-      )}
-    </div>
   );
 }

@@ -2,6 +2,9 @@
 
 import { useRouter } from 'next/navigation';
 import { useState } from 'react';
+import { Budget } from '@/components/budget/budget';
+import { FrameConditions } from '@/components/conditions/frame-conditions';
+import { SlitPlate } from '@/components/slit/slit-plate';
 import { readingMay } from '@/lib/domain/life-cycle';
 import type { PersonRef, ReadingView, ReviewView } from '@/lib/domain/views';
 import { publishedOf, specificationOf, subjectName } from '@/lib/client/words';
@@ -24,7 +27,7 @@ import { lacksMoveReason, MoveBox } from './move-box';
 import { OutcomeLine } from './outcome-line';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
-import { Budget, Result } from './result';
+import { Result } from './result';
 import { ReturnForm } from './return-form';
 import { WithdrawBox } from './withdraw-box';
 import { SaidResult } from './said-result';
@@ -168,6 +171,7 @@ export function ReviewDesk(props: Props) {
             result={shown.result}
             wavelengthNm={shown.wavelengthNm}
             expandedNm={shown.expandedNm}
+            k={shown.k}
             medium={shown.medium}
             judgement={shown.judgement}
             specification={specificationOf(frame.subject)}
@@ -175,7 +179,23 @@ export function ReviewDesk(props: Props) {
             uScaleUmPerPx={reading.setup.scaleUmPerPx.u}
             publishedVacuumNm={publishedOf(frame.subject)}
           />
-          <Budget result={shown.result} />
+          <Budget
+            key={shown === fit ? 'preview' : reading.id}
+            wavelengthNm={shown.wavelengthNm}
+            uNm={shown.uNm}
+            expandedNm={shown.expandedNm}
+            medium={shown.medium}
+            budget={shown.budget}
+            corrections={shown.corrections}
+            method={shown.method}
+            other={shown.other}
+            specification={specificationOf(frame.subject)}
+            monteCarlo={shown === reading ? reading.monteCarlo : null}
+          />
+          <FrameConditions frameId={frame.id} reading={reading} enter={null} />
+          {frame.subject.kind === 'source' && frame.subject.isReference ? (
+            <SlitPlate result={shown.result} setup={frame.facts.setup} source={frame.subject} />
+          ) : null}
           <Further result={shown.result} />
           <ReadingsOfFrame
             frameId={frame.id}

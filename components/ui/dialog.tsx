@@ -6,11 +6,13 @@ interface Props {
   open: boolean;
   onClose: () => void;
   title: ReactNode;
+  /** For a table. */
+  wide?: boolean;
   children: ReactNode;
 }
 
 /** A modal sheet. The browser keeps the focus inside, Escape closes it, focus goes back where it was. */
-export function Dialog({ open, onClose, title, children }: Props) {
+export function Dialog({ open, onClose, title, wide = false, children }: Props) {
   const ref = useRef<HTMLDialogElement>(null);
   const id = useId();
   useEffect(() => {
@@ -24,7 +26,7 @@ export function Dialog({ open, onClose, title, children }: Props) {
     if (!open && dialog.open) dialog.close();
   }, [open]);
   return (
-    <dialog ref={ref} className="dialog" aria-labelledby={id} onClose={onClose}>
+    <dialog ref={ref} className={wide ? 'dialog wide' : 'dialog'} aria-labelledby={id} onClose={onClose}>
       {open ? (
         <>
           <h2 id={id} className="mb-4 text-value">

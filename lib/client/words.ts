@@ -1,9 +1,14 @@
 /** Short texts about a unit, a lot and a specification, the same on every screen. */
-import type { DecisionRule, Specification } from '@/lib/domain/specification';
+import type { DecisionRule, Method, Specification } from '@/lib/domain/specification';
 import type { FrameRow, Subject } from '@/lib/domain/views';
-import { formatNumber, groupThousands } from '@/lib/quantity/format';
+import { formatEntered, formatNumber } from '@/lib/quantity/format';
 
 export const MEDIUM_WORDS = { air: 'air', vacuum: 'vac' } as const;
+
+export const METHOD_WORDS: Record<Method, string> = {
+  absolute: 'From the bench’s constants',
+  comparison: 'Beside a reference',
+};
 
 export const RULE_WORDS: Record<DecisionRule, string> = {
   simple: 'no guard band',
@@ -12,18 +17,24 @@ export const RULE_WORDS: Record<DecisionRule, string> = {
   'guard-own': 'guard band of its own',
 };
 
-const plain = (nm: number) => groupThousands(String(Number(nm.toPrecision(10))));
-
-/** "635 ± 5 nm (air)"; one-sided and lopsided limits in words. */
+/** "635 ± 5 nm (air)"; one-sided and lopsided limits in words; with the temperature they hold at. */
 export function nominalText(spec: Specification): string {
+  const at = spec.atTemperature ? ` at ${formatEntered(spec.atTemperature.temperatureC)} °C` : '';
+  return limitsText(spec) + at;
+}
+
+function limitsText(spec: Specification): string {
   const medium = MEDIUM_WORDS[spec.medium];
   const { nominalNm, lowerNm, upperNm } = spec;
-  if (lowerNm === null) return `${plain(nominalNm)}, at most ${plain(upperNm ?? nominalNm)} nm (${medium})`;
-  if (upperNm === null) return `${plain(nominalNm)}, at least ${plain(lowerNm)} nm (${medium})`;
+  if (lowerNm === null)
+    return `${formatEntered(nominalNm)}, at most ${formatEntered(upperNm ?? nominalNm)} nm (${medium})`;
+  if (upperNm === null)
+    return `${formatEntered(nominalNm)}, at least ${formatEntered(lowerNm)} nm (${medium})`;
   const above = upperNm - nominalNm;
   const below = nominalNm - lowerNm;
-  if (Math.abs(above - below) < 1e-9) return `${plain(nominalNm)} ± ${plain(above)} nm (${medium})`;
-  return `${plain(nominalNm)}, ${plain(lowerNm)} to ${plain(upperNm)} nm (${medium})`;
+  if (Math.abs(above - below) < 1e-9)
+    return `${formatEntered(nominalNm)} ± ${formatEntered(above)} nm (${medium})`;
+  return `${formatEntered(nominalNm)}, ${formatEntered(lowerNm)} to ${formatEntered(upperNm)} nm (${medium})`;
 }
 
 /** The large name of a frame: the unit's serial, the source's name, or the file. */
@@ -52,7 +63,7 @@ export function publishedOf(subject: Subject): number | null {
 
 /** "0.5 mm detector", or that it is a point. */
 export function detectorText(detectorMm: number | null): string {
-  return detectorMm === null ? 'point detector' : `${plain(detectorMm)} mm detector`;
+  return detectorMm === null ? 'point detector' : `${formatEntered(detectorMm)} mm detector`;
 }
 
 export function count(n: number, one: string, many = `${one}s`): string {

@@ -40,6 +40,8 @@ export const PERMISSIONS = {
   'certificates.see': ['technician', 'reviewer', 'qa', 'admin'],
   'certificates.add': ['admin', 'qa'],
   'sources.add': ['admin', 'qa'],
+  'benches.release': ['qa'],
+  'conditions.enter': ['technician', 'qa', 'admin'],
   'charts.see': ['technician', 'reviewer', 'qa', 'admin'],
   'people.see': ['admin'],
   'people.change': ['admin'],

@@ -13,6 +13,9 @@ export interface Region {
   angleDeg: number;
 }
 
+/** What is known of a value inside ± its half width, where that is no normal or t distribution. */
+export type Shape = 'rectangular' | 'triangular' | 'u-shaped';
+
 /** One value of a setup with its standard uncertainty (null when none is stated). */
 export interface Estimate {
   value: number;
@@ -21,6 +24,31 @@ export interface Estimate {
   known?: string;
   /** Degrees of freedom of u; null is infinite. */
   dof?: number | null;
+  /** Absent: normal, or Student's t where dof is finite. */
+  shape?: Shape;
+}
+
+/** An effect a bench states as a share of the wavelength: sensor yaw, cover glass, tone curve, background, expansion. */
+export interface StatedEffect {
+  key: string;
+  name: string;
+  /** Standard uncertainty in parts per million of the wavelength. */
+  uPpm: number;
+  known: string;
+  shape?: Shape;
+  dof?: number | null;
+}
+
+/** The bench's air, each with its standard uncertainty (null where none is stated). */
+export interface MeasuredAir {
+  temperatureC: number;
+  pressurePa: number;
+  humidityPercent: number;
+  co2Ppm: number;
+  uTemperatureC?: number | null;
+  uPressurePa?: number | null;
+  uHumidityPercent?: number | null;
+  uCo2Ppm?: number | null;
 }
 
 /** The constants a wavelength needs. */
@@ -32,7 +60,15 @@ export interface SetupValues {
   /** Re-mount scatter of the bench as a standard uncertainty in nm, with degrees of freedom. */
   remountNm?: { u: number; dof: number | null };
   /** Temperature and so on of the bench's air; standard air of the bench when absent. */
-  air?: { temperatureC: number; pressurePa: number; humidityPercent: number; co2Ppm: number };
+  air?: MeasuredAir;
+  /** The plate stands square to the beam to within so many degrees. */
+  plateYawDeg?: number;
+  /** Between two mountings the plate's yaw differs by no more than so many degrees. */
+  yawDifferenceDeg?: number;
+  /** Further effects the bench states for itself. */
+  effects?: StatedEffect[];
+  /** Temperature of the unit or source in °C while the frame was taken. */
+  sourceTemperature?: Estimate;
 }
 
 /**
@@ -125,6 +161,10 @@ export interface BudgetRow {
   dof: number | null;
   /** nm per unit of this input. */
   sensitivity: number;
+  /** Absent: normal, or Student's t where dof is finite. */
+  shape?: Shape;
+  /** Rows with the same input go back to one quantity and are combined into one first. */
+  input?: string;
   /** Contribution in nm at k = 1. */
   contributionNm: number;
   /** Share of the variance, 0 to 1. */

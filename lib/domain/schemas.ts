@@ -3,6 +3,7 @@ import { z } from 'zod';
 import { LIMITS } from './limits';
 import { ROLES } from './roles';
 import { SCALE_KINDS } from './scale-result';
+import { METHODS } from './specification';
 import { OUTCOMES, RETURN_REASONS } from './views';
 
 export const finite = (what: string) =>
@@ -125,6 +126,21 @@ export const specificationSchema = z
     ownGuardNm: positive('The guard band').nullable().default(null),
     ratio: positive('The ratio').nullable().default(null),
     halfToleranceNm: positive('Half the tolerance').nullable().default(null),
+    method: z.enum(METHODS).nullable().default(null),
+    atTemperature: z
+      .object({
+        temperatureC: finite('The temperature').refine(
+          (t) => t >= -60 && t <= 150,
+          'The temperature lies between −60 and 150 °C.',
+        ),
+        nmPerK: finite('nm per K').refine(
+          (v) => Math.abs(v) <= 5,
+          'A wavelength moves by at most 5 nm per K.',
+        ),
+        uNmPerK: finite('The ± of nm per K').refine((v) => v >= 0, 'The ± of nm per K is not negative.'),
+      })
+      .nullable()
+      .default(null),
   })
   .refine((s) => s.lowerNm !== null || s.upperNm !== null, {
     path: ['lowerNm'],

@@ -1,6 +1,10 @@
 /** What the pages are given: plain data, made by lib/server/queries and drawn by app and components. */
 import type { FrameState, ReadingState } from './life-cycle';
 import type { BudgetRow, Finding, FindingWord, Region, SetupValues, ToneChoice } from './reading-result';
+import type { ComparisonFacts } from '@/lib/quantity/comparison';
+import type { LotRisk } from '@/lib/quantity/lot-risk';
+import type { MonteCarlo } from '@/lib/quantity/monte-carlo';
+import type { OtherValue } from './specification';
 import type { PlacedStrip } from './placed-strip';
 import type { FitResult, ScanRegion } from './scan-result';
 import type { FirstValue } from './move';
@@ -9,7 +13,7 @@ import type { Role } from './roles';
 import type { ConfirmedValue, UncertaintyShape } from './setup';
 import type { SourceKind } from './source';
 import type { WithdrawalView } from './withdrawal';
-import type { Judgement, Medium, Specification, Verdict } from './specification';
+import type { Judgement, Medium, Method, Specification, Verdict } from './specification';
 
 export type { Instant, PersonRef };
 
@@ -219,6 +223,8 @@ export interface LotView extends LotRow {
   totalRows: number;
   page: number;
   counts: Record<Verdict | 'none', number>;
+  /** Risks of the decision rule for units like these; null with too few values. */
+  risk: LotRisk | null;
 }
 
 export interface SourceView {
@@ -290,7 +296,7 @@ export interface ReadingBrief {
 
 export type Subject =
   | { kind: 'unit'; unitId: number; serial: string; lotId: number; lot: string; specification: Specification }
-  | { kind: 'source'; sourceId: number; name: string; vacuumNm: number }
+  | { kind: 'source'; sourceId: number; name: string; vacuumNm: number; uNm: number; isReference: boolean }
   | { kind: 'none' };
 
 export interface FrameRow {
@@ -348,7 +354,18 @@ export interface SignatureView {
 
 export interface ReadingView extends ReadingBrief {
   result: FitResult;
+  dof: number | null;
+  /** All rows of the value as it is judged. */
   budget: BudgetRow[];
+  /** What was done to the value beside the change of medium. */
+  corrections: string[];
+  method: Method;
+  /** The same by the other method. */
+  other: OtherValue | null;
+  /** What the air and the unit were when this fit was made; empty where nothing was entered. */
+  conditions: Pick<SetupValues, 'air' | 'sourceTemperature'>;
+  /** The budget drawn by Monte Carlo; null where there is no budget. */
+  monteCarlo: MonteCarlo | null;
   findings: Finding[];
   setup: SetupView;
   replaces: number | null;
@@ -410,14 +427,24 @@ export interface FitFacts {
   setup: SetupValues;
   tone: ToneChoice;
   specification: Specification | null;
+  /** Only of a unit: what its value may be compared with. */
+  comparison?: ComparisonFacts | null;
 }
 
 /** A fit that is shown and not kept. */
 export interface FitPreview {
   result: FitResult;
   wavelengthNm: number | null;
+  uNm: number | null;
   expandedNm: number | null;
+  k: number | null;
+  dof: number | null;
   medium: Medium;
+  /** All rows of the value as it is judged. */
+  budget: BudgetRow[];
+  corrections: string[];
+  method: Method;
+  other: OtherValue | null;
   judgement: Judgement | null;
 }
 

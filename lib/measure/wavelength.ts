@@ -1,6 +1,7 @@
-import type { BudgetRow, SetupValues } from '@/lib/domain/reading-result';
+import type { BudgetRow, Estimate, SetupValues, Shape } from '@/lib/domain/reading-result';
 import { vacuumFromAir } from '@/lib/quantity/air-index';
 import { combineBudget, type BudgetInput } from '@/lib/quantity/budget';
+import { uOfHalfWidth } from '@/lib/quantity/monte-carlo';
 import { wavelengthFromSpacing } from '@/lib/quantity/two-slit';
 
 export interface Wavelength {
@@ -40,6 +41,8 @@ export interface FrameEffect {
   symbol: string;
   uNm: number;
   known: string;
+  shape?: Shape;
+  dof?: number | null;
 }
 
 /** Effect of a colour sensor's missing sites, from simulation: 0.128 / (px per fringe)^2 of the wavelength. */
@@ -76,7 +79,7 @@ export function frameEffects(
       key: 'near-field',
       name: 'Finite distance',
       symbol: '',
-      uNm: (airNm * nearFieldRelative(width.value, airNm, distance.value)) / Math.sqrt(3),
+      uNm: uOfHalfWidth(airNm * nearFieldRelative(width.value, airNm, distance.value), 'rectangular'),
       known: 'rectangular, far-field formula',
     });
   if (picture.source.colour)
@@ -84,11 +87,76 @@ export function frameEffects(
       key: 'demosaic',
       name: 'Colour sensor',
       symbol: '',
-      uNm: (airNm * demosaicRelative(spacingPx)) / Math.sqrt(3),
+      uNm: uOfHalfWidth(airNm * demosaicRelative(spacingPx), 'rectangular'),
       known: 'rectangular, filled-in pixels',
     });
   return effects;
 }
+
+/**
+ * A plate turned by psi makes the effective separation d cos(psi), so the wavelength reads high by lambda psi^2/2, to one side
+ * only. It is entered as lambda psi^2/(2 sqrt 3), a rectangle of the whole effect on both sides, without a correction.
+ */
+export function plateYawU(airNm: number, yawDeg: number): number {
+  const yaw = (yawDeg * Math.PI) / 180;
+  return uOfHalfWidth((airNm * yaw * yaw) / 2, 'rectangular');
+}
+
+/** What the bench states beside its constants. */
+function benchEffects(setup: SetupValues, airNm: number): FrameEffect[] {
+  const effects: FrameEffect[] = [];
+  if (setup.plateYawDeg)
+    effects.push({
+      key: 'plate-yaw',
+      name: 'Plate yaw',
+      symbol: '',
+      uNm: plateYawU(airNm, setup.plateYawDeg),
+      known: `within ${setup.plateYawDeg}°, one-sided, rectangular`,
+      shape: 'rectangular',
+    });
+  for (const { key, name, uPpm, known, shape, dof } of setup.effects ?? [])
+    effects.push({ key, name, symbol: '', uNm: airNm * uPpm * 1e-6, known, shape, dof });
+  return effects;
+}
+
+/** A constant of the setup as a row; a factor (power 1) or a divisor (-1) of the wavelength. */
+function constantRow(
+  about: Pick<BudgetInput, 'key' | 'name' | 'symbol' | 'unit'>,
+  { value, u, known, dof, shape }: Estimate & { u: number },
+  airNm: number,
+  power: 1 | -1,
+): BudgetInput {
+  const { key, name, symbol, unit } = about;
+  return {
+    key,
+    name,
+    symbol,
+    value,
+    unit,
+    u,
+    known: known ?? 'as stated',
+    dof: dof ?? null,
+    sensitivity: (power * airNm) / value,
+    ...(shape ? { shape } : {}),
+  };
+}
+
+function effectRow({ key, name, symbol, uNm, known, shape, dof }: FrameEffect): BudgetInput {
+  return {
+    key,
+    name,
+    symbol,
+    value: null,
+    unit: 'nm',
+    u: uNm,
+    known,
+    dof: dof ?? null,
+    sensitivity: 1,
+    ...(shape ? { shape } : {}),
+  };
+}
+
+const isKnown = (estimate: Estimate): estimate is Estimate & { u: number } => estimate.u !== null;
 
 /**
  * Wavelength in the air of the bench, lambda = d s spacing / L, its vacuum value and the budget.
@@ -116,67 +184,23 @@ export function wavelengthOf(spacing: SpacingValue, setup: SetupValues, effects:
     dof: spacing.dof,
     sensitivity: airNm / spacing.spacingPx,
   };
-  if (scale.u === null || separation.u === null || distance.u === null) return { ...NONE, airNm, vacuumNm };
+  if (!isKnown(scale) || !isKnown(separation) || !isKnown(distance)) return { ...NONE, airNm, vacuumNm };
   const rows: BudgetInput[] = [
-    {
-      key: 'separation',
-      name: 'Slit separation',
-      symbol: 'd',
-      value: separation.value,
-      unit: 'µm',
-      u: separation.u,
-      known: separation.known ?? 'as stated',
-      dof: separation.dof ?? null,
-      sensitivity: airNm / separation.value,
-    },
-    {
-      key: 'distance',
-      name: 'Distance',
-      symbol: 'L',
-      value: distance.value,
-      unit: 'mm',
-      u: distance.u,
-      known: distance.known ?? 'as stated',
-      dof: distance.dof ?? null,
-      sensitivity: -airNm / distance.value,
-    },
-    {
-      key: 'scale',
-      name: 'Pixel scale',
-      symbol: 's',
-      value: scale.value,
-      unit: 'µm/px',
-      u: scale.u,
-      known: scale.known ?? 'as stated',
-      dof: scale.dof ?? null,
-      sensitivity: airNm / scale.value,
-    },
+    constantRow(
+      { key: 'separation', name: 'Slit separation', symbol: 'd', unit: 'µm' },
+      separation,
+      airNm,
+      1,
+    ),
+    constantRow({ key: 'distance', name: 'Distance', symbol: 'L', unit: 'mm' }, distance, airNm, -1),
+    constantRow({ key: 'scale', name: 'Pixel scale', symbol: 's', unit: 'µm/px' }, scale, airNm, 1),
     fit,
   ];
-  if (setup.remountNm)
-    rows.push({
-      key: 'remount',
-      name: 'Re-mount',
-      symbol: '',
-      value: null,
-      unit: 'nm',
-      u: setup.remountNm.u,
-      known: 'pooled repeats',
-      dof: setup.remountNm.dof,
-      sensitivity: 1,
-    });
-  for (const e of effects)
-    rows.push({
-      key: e.key,
-      name: e.name,
-      symbol: e.symbol,
-      value: null,
-      unit: 'nm',
-      u: e.uNm,
-      known: e.known,
-      dof: null,
-      sensitivity: 1,
-    });
+  if (setup.remountNm) {
+    const { u: uNm, dof } = setup.remountNm;
+    rows.push(effectRow({ key: 'remount', name: 'Re-mount', symbol: '', uNm, known: 'pooled repeats', dof }));
+  }
+  rows.push(...[...benchEffects(setup, airNm), ...effects].map(effectRow));
   const combined = combineBudget(rows);
   return {
     airNm,

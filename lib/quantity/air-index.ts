@@ -15,6 +15,14 @@ export interface AirState {
   co2Ppm: number;
 }
 
+/** Standard uncertainties of a state of air; absent or null where none is stated. */
+export interface AirStateU {
+  uTemperatureC?: number | null;
+  uPressurePa?: number | null;
+  uHumidityPercent?: number | null;
+  uCo2Ppm?: number | null;
+}
+
 /** The air meant where a wavelength "in air" names no state: 20 °C, 101 325 Pa, 50 % RH, 450 ppm. */
 export const STANDARD_BENCH_AIR: AirState = {
   temperatureC: 20,
@@ -84,6 +92,34 @@ export function airIndex(vacuumNm: number, air: AirState = STANDARD_BENCH_AIR): 
   const densityVapourStandard = (1333 * MOLAR_MASS_WATER) / (zVapourStandard * GAS_CONSTANT * 293.15);
 
   return 1 + (densityDry / densityDryStandard) * dry + (densityVapour / densityVapourStandard) * vapour;
+}
+
+/** Standard uncertainty of the equation itself (from memory: 2e-8 to 5e-8 over its range). */
+const EQUATION_U = 5e-8;
+/** Steps over which the index is straight to far below the equation's own uncertainty. */
+const STEPS = { temperatureC: 0.5, pressurePa: 200, humidityPercent: 2, co2Ppm: 20 };
+
+/**
+ * Standard uncertainty of n for a state known with standard uncertainties: u² = Σ(∂n/∂x·u(x))² + u(equation)², the slopes by
+ * central differences (JCGM 100:2008, 5.1.3, note 2). Null where the state names no uncertainty at all.
+ */
+export function airIndexU(vacuumNm: number, air: AirState & AirStateU): number | null {
+  const given: [keyof typeof STEPS, number | null | undefined][] = [
+    ['temperatureC', air.uTemperatureC],
+    ['pressurePa', air.uPressurePa],
+    ['humidityPercent', air.uHumidityPercent],
+    ['co2Ppm', air.uCo2Ppm],
+  ];
+  if (given.every(([, u]) => u === null || u === undefined)) return null;
+  const parts = given.map(([key, u]) => (u ?? 0) * airIndexSlope(vacuumNm, air, key));
+  return Math.hypot(EQUATION_U, ...parts);
+}
+
+/** ∂n per °C, Pa, per cent of humidity or ppm of CO₂ at this state. */
+export function airIndexSlope(vacuumNm: number, air: AirState, key: keyof typeof STEPS): number {
+  const step = STEPS[key];
+  const at = (by: number) => airIndex(vacuumNm, { ...air, [key]: air[key] + by });
+  return (at(step) - at(-step)) / (2 * step);
 }
 
 /** Wavelength in the given air (nm) of light with this vacuum wavelength (nm): λ/n(λ). */

@@ -1,7 +1,7 @@
 /**
  * The one place that turns numbers into text. Minus is U+2212, thousands of a measured number are parted by a
- * thin space (U+2009), an expanded uncertainty has two figures and its value ends at the same place
- * (JCGM 100:2008, 7.2.6; halves are rounded away from zero).
+ * thin space (U+2009), an uncertainty has two figures and its value ends at the same place (JCGM 100:2008, 7.2.6). Values
+ * are rounded half away from zero; an uncertainty is rounded up where that is more honest than the nearest figure.
  */
 const THIN = '\u2009';
 const MINUS = '\u2212';
@@ -37,11 +37,30 @@ export function formatSigned(value: number, places: number): string {
 /** Decimals that leave two significant figures of an uncertainty; 0 for uncertainties of 10 and more. */
 export function placesFor(uncertainty: number): number {
   if (!(uncertainty > 0) || !Number.isFinite(uncertainty)) return 2;
-  const exponent = Math.floor(Math.log10(uncertainty));
-  // 0.0996 rounds up to 0.10: the rounded figure decides the place.
-  const rounded = Number(uncertainty.toPrecision(2));
-  const settled = Math.max(exponent, Math.floor(Math.log10(rounded) + 1e-12));
-  return Math.min(12, Math.max(0, 1 - settled));
+  return Math.max(0, figuresOf(uncertainty).places);
+}
+
+/** The most that rounding to the nearest of two figures can take off an uncertainty is 5 % of it; half of that is let go. */
+const MOST_TAKEN_OFF = 0.025;
+
+/**
+ * An uncertainty at its two figures: to the nearest, but up where the nearest would take off more than 2.5 %. So 10.47 is 11
+ * and 28.05 is 28, the two examples of JCGM 100:2008, 7.2.6.
+ */
+function roundUncertainty(uncertainty: number): { value: number; exponent: number } {
+  const exponent = Math.floor(Math.log10(uncertainty)) - 1;
+  const unit = 10 ** exponent;
+  const figures = uncertainty / unit;
+  const nearest = Number(roundHalfAway(figures, 0));
+  const up = nearest < figures && figures - nearest > MOST_TAKEN_OFF * figures;
+  return { value: (up ? nearest + 1 : nearest) * unit, exponent };
+}
+
+/** A number at a place: decimals where it is positive, tens, hundreds where it is negative. */
+function atPlace(value: number, places: number): string {
+  if (places >= 0) return formatNumber(value, places);
+  const unit = 10 ** -places;
+  return formatNumber(Number(roundHalfAway(value / unit, 0)) * unit, 0);
 }
 
 export interface QuantityText {
@@ -51,8 +70,43 @@ export interface QuantityText {
 
 /** Value and expanded uncertainty to two figures of the latter: (634.8199, 0.714) -> "634.82", "0.71". */
 export function formatQuantity(value: number, expanded: number): QuantityText {
-  const places = placesFor(expanded);
-  return { value: formatNumber(value, places), uncertainty: formatNumber(expanded, places) };
+  if (!(expanded > 0) || !Number.isFinite(expanded))
+    return {
+      value: formatNumber(value, placesFor(expanded)),
+      uncertainty: formatNumber(expanded, placesFor(expanded)),
+    };
+  const { rounded, places } = figuresOf(expanded);
+  return { value: atPlace(value, places), uncertainty: atPlace(rounded, places) };
+}
+
+/** The rounded uncertainty with the place its second figure stands at; 0.0996 becomes 0.10. */
+function figuresOf(uncertainty: number): { rounded: number; places: number } {
+  const { value: rounded, exponent } = roundUncertainty(uncertainty);
+  const carried = rounded >= 99.5 * 10 ** exponent;
+  return { rounded, places: Math.min(12, -(carried ? exponent + 1 : exponent)) };
+}
+
+/**
+ * The concise form: a value with its standard uncertainty in units of its last place, "634.82(36)" (JCGM 100:2008, 7.2.2).
+ * An uncertainty of 1 and more keeps its point: "634.8(1.2)".
+ */
+export function formatConcise(value: number, u: number): string {
+  if (!(u > 0) || !Number.isFinite(u)) return formatNumber(value, 2);
+  const { rounded, places } = figuresOf(u);
+  const last =
+    rounded >= 1 ? roundHalfAway(rounded, Math.max(0, places)) : roundHalfAway(rounded * 10 ** places, 0);
+  return `${atPlace(value, places)}(${last})`;
+}
+
+/** An index of refraction, its decimals in threes as those of a printed table: "1.000 271 37"; two figures of u where there is one. */
+export function formatIndex(n: number, u: number | null): string {
+  const [whole, decimals] = roundHalfAway(n, u ? placesFor(u) : 8).split('.');
+  return `${whole}.${(decimals.match(/.{1,3}/g) ?? []).join(THIN)}`;
+}
+
+/** A number as somebody entered it, without what binary digits add to it: 0.1 + 0.2 is "0.3". */
+export function formatEntered(value: number): string {
+  return groupThousands(String(Number(value.toPrecision(10))));
 }
 
 /** A share as a whole or one-decimal per cent: 0.042 -> "4.2 %". */

@@ -28,16 +28,23 @@ export function judge(
     (lowerNm === null ? 0 : studentCdf((lowerNm - yNm) / uNm, dof));
   const say = (verdict: Verdict, because: string): Judgement => ({ verdict, guardNm, conformity, because });
 
-  if (upperNm !== null && yNm - guardNm > upperNm) return say('outside', 'Wholly above the upper limit.');
-  if (lowerNm !== null && yNm + guardNm < lowerNm) return say('outside', 'Wholly below the lower limit.');
+  if (upperNm !== null && yNm - guardNm > upperNm)
+    return say('outside', beyond(guardNm, 'above the upper limit'));
+  if (lowerNm !== null && yNm + guardNm < lowerNm)
+    return say('outside', beyond(guardNm, 'below the lower limit'));
   if (expandedNm > spec.ratio * half) {
     return say('no-verdict', 'U is too large for this tolerance: the bench cannot decide it.');
   }
   const clearBelow = upperNm === null || yNm <= upperNm - guardNm;
   const clearAbove = lowerNm === null || yNm >= lowerNm + guardNm;
-  if (clearBelow && clearAbove) return say('within', 'Inside the limits, clear of the guard band.');
+  if (clearBelow && clearAbove) {
+    return say('within', guardNm > 0 ? 'Inside the limits, clear of the guard band.' : 'Inside the limits.');
+  }
   return say('undecided', 'Reaches into the guard band of a limit.');
 }
+
+const beyond = (guardNm: number, where: string) =>
+  guardNm > 0 ? `By more than the guard band ${where}.` : `The value lies ${where}.`;
 
 /** Width of the guard band in nm by the specification's rule; 0 for simple acceptance. */
 export function guardBand(spec: Specification, uNm: number, dof: number | null, expandedNm: number): number {

@@ -3,6 +3,7 @@ import type { FitOptions, SetupValues } from '@/lib/domain/reading-result';
 import { differences, differenceText } from '@/lib/domain/same-digits';
 import type { FitResult, ScanOptions } from '@/lib/domain/scan-result';
 import type { Specification } from '@/lib/domain/specification';
+import type { ValueIn } from '@/lib/quantity/value-in';
 import { ENGINE_VERSION } from '@/lib/measure/engine-version';
 import { sha256 } from './canonical';
 import { digestOf } from './commands/store-reading';
@@ -21,6 +22,7 @@ interface Signed {
   setup_json: string;
   specification_json: string | null;
   result_json: string;
+  value_json: string | null;
 }
 
 /** What came of one signed reading that was computed again. */
@@ -45,8 +47,9 @@ export async function* replayReadings(): AsyncGenerator<Replayed> {
   for (;;) {
     const rows = await select<Signed>(
       `SELECT r.id, CONCAT(f.file_name, ', reading ', r.number) AS name, r.engine, r.frame_sha256, r.digest,
-         s.digest AS signed_digest, r.options_json, r.setup_json, r.specification_json, rr.result_json
+         s.digest AS signed_digest, r.options_json, r.setup_json, r.specification_json, rr.result_json, rv.value_json
        FROM signatures s JOIN readings r ON r.id = s.reading_id JOIN reading_results rr ON rr.reading_id = r.id
+       LEFT JOIN reading_values rv ON rv.reading_id = r.id
        JOIN frames f ON f.id = r.frame_id WHERE r.id > :after ORDER BY r.id LIMIT :many`,
       { after, many: ROWS_AT_ONCE },
     );
@@ -63,7 +66,16 @@ async function replay(row: Signed): Promise<Pick<Replayed, 'outcome' | 'because'
   const setup = JSON.parse(row.setup_json) as SetupValues;
   const options = JSON.parse(row.options_json) as FitOptions | ScanOptions;
   const specification = row.specification_json ? (JSON.parse(row.specification_json) as Specification) : null;
-  const digest = digestOf({ frameSha256: row.frame_sha256, result: stored, setup, specification, options });
+  // Readings of before values were kept signed without one.
+  const value = row.value_json ? { value: JSON.parse(row.value_json) as Omit<ValueIn, 'judgement'> } : {};
+  const digest = digestOf({
+    frameSha256: row.frame_sha256,
+    result: stored,
+    setup,
+    specification,
+    options,
+    ...value,
+  });
   if (digest !== row.digest || digest !== row.signed_digest)
     return { outcome: 'wrong', because: 'What is stored is not what was signed: the digest differs.' };
   const bytes = await readObject(originalKey(row.frame_sha256));

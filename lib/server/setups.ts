@@ -85,6 +85,7 @@ export function setupValues(row: SetupConstants): SetupValues {
     u: known.u,
     known: `${known.certificate || 'as entered'}, ${knownAs(known)}`,
     dof: known.dof,
+    ...(known.shape === 'rectangular' ? { shape: 'rectangular' as const } : {}),
   });
   const four = fourValues(row);
   return {

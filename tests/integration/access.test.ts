@@ -1,6 +1,8 @@
 import * as door from '@/app/(door)/actions';
 import * as room from '@/app/(room)/actions';
 import * as benches from '@/app/(room)/benches/actions';
+import * as conditions from '@/app/(room)/conditions/actions';
+import * as references from '@/app/(room)/references/actions';
 import * as lots from '@/app/(room)/lots/actions';
 import * as people from '@/app/(room)/people/actions';
 import * as readings from '@/app/(room)/readings/actions';
@@ -52,6 +54,10 @@ const MATRIX: Record<string, Who[]> = {
   openLot: ['admin', 'technician', 'technician2', 'both'],
   addUnits: ['admin', 'technician', 'technician2', 'both'],
   addSource: ['admin', 'qa'],
+  releaseBench: ['qa'],
+  setBenchRule: ['qa'],
+  enterBenchConditions: ['admin', 'technician', 'technician2', 'both', 'qa'],
+  enterFrameConditions: ['technician', 'technician2', 'both'],
   renewSource: ['admin', 'qa'],
   addPerson: ['admin'],
   changePerson: ['admin'],
@@ -119,6 +125,7 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     if (response.status === 401) return 'shut';
     return response.status === 403 ? 'refused' : response.ok ? 'done' : 'other';
   };
+  const air = { airTemperatureC: { value: 21, half: 1 }, pressurePa: { value: 101_000, half: 100 } };
   const specification = {
     name: '',
     nominalNm: 635,
@@ -147,6 +154,11 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     addSource: () => act(sources.addSource({ name: '', kind: 'lamp-line', vacuumNm: 633, uNm: 0.1 })),
     renewSource: () =>
       act(sources.renewSource({ sourceId: nowhere, afterNumber: 1, vacuumNm: 633, uNm: 0.1 })),
+    releaseBench: () => act(references.releaseBench({ stopId: nowhere, reason: 'x' })),
+    setBenchRule: () => act(references.setBenchRule({ benchId: nowhere, method: 'absolute', why: 'x' })),
+    enterBenchConditions: () => act(conditions.enterBenchConditions({ benchId: nowhere, ...air })),
+    enterFrameConditions: () =>
+      act(conditions.enterFrameConditions({ frameId: nowhere, readingId: nowhere, version: 0, ...air })),
     addPerson: () =>
       act(people.addPerson({ name: '', email: 'x@test.example', roles: ['qa'], password: PASSWORD })),
     changePerson: () => act(people.changePerson({ personId: nowhere, roles: [], active: true })),
@@ -193,7 +205,9 @@ async function fingerprint(): Promise<unknown> {
 
 test('the matrix names every call, and every call is in the matrix', () => {
   expect(Object.keys(calls(null)).sort()).toEqual(Object.keys(MATRIX).sort());
-  const exported = [room, benches, lots, people, readings, sources].flatMap((file) => Object.keys(file));
+  const exported = [room, benches, conditions, references, lots, people, readings, sources].flatMap((file) =>
+    Object.keys(file),
+  );
   expect(exported.filter((name) => !(name in MATRIX) && name !== 'signOutEverywhere')).toEqual([]);
 });
 

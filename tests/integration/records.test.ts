@@ -3,13 +3,17 @@ import { createHash } from 'node:crypto';
 import { migrate } from '@/scripts/migrate';
 import { anchorLog } from '@/lib/server/commands/anchor-log';
 import { acceptReading } from '@/lib/server/commands/accept-reading';
+import { enterBenchConditions } from '@/lib/server/commands/enter-conditions';
+import { releaseBench, setBenchRule } from '@/lib/server/commands/release-bench';
 import { sendReading } from '@/lib/server/commands/send-reading';
 import { verifyChain } from '@/lib/server/audit';
 import { PRODUCT } from '@/lib/server/context';
 import { db } from '@/lib/server/db';
+import type { ValueIn } from '@/lib/quantity/value-in';
 import { digestOf } from '@/lib/server/commands/store-reading';
 import { ownerDatabase, rows } from './support/database';
 import { inventedResult, makeReading } from './support/readings';
+import { acceptReference } from './support/references';
 import { PASSWORD, as, closeWorld, makeWorld, type World } from './support/world';
 
 // The command is started as a process of its own, and so is compiled, for each kind of tampering.
@@ -54,6 +58,24 @@ beforeAll(async () => {
     words: 'invented',
     returnedBy: world.people.reviewer.id,
     returnedAt: new Date(),
+  });
+  await acceptReference(world, 9);
+  await acceptReference(world, 9);
+  const [{ id: stopId }] = await rows<{ id: number }>('SELECT id FROM bench_stops');
+  await releaseBench(as(world.people.qa), { stopId, reason: 'invented' });
+  await setBenchRule(as(world.people.qa), {
+    benchId: world.benchId,
+    limitNm: 1,
+    method: 'absolute',
+    why: 'invented',
+  });
+  await enterBenchConditions(as(world.people.technician), {
+    benchId: world.benchId,
+    airTemperatureC: { value: 21, half: 0.5 },
+    pressurePa: { value: 101_000, half: 100 },
+    humidityPercent: null,
+    co2Ppm: null,
+    sourceTemperatureC: null,
   });
   await db().tables.regionTrials.create({
     frameId,
@@ -108,6 +130,12 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['look_answers', 'reason'],
   ['unit_outcomes', 'reason'],
   ['audit_rows', 'who'],
+  ['reading_values', 'value_json'],
+  ['conditions', 'pressure_pa'],
+  ['reference_checks', 'deviation_nm'],
+  ['bench_stops', 'check_id'],
+  ['bench_releases', 'reason'],
+  ['bench_rules', 'why'],
   ['region_trials', 'change_json'],
   ['move_reasons', 'words'],
   ['withdrawal_proposals', 'reason'],
@@ -158,8 +186,10 @@ test('migrations run a second time without a change, even from the very first on
 
 test("a signature's digest is that of the stored reading", async () => {
   const [stored] = await rows<Record<string, string>>(
-    `SELECT s.digest, r.frame_sha256, r.setup_json, r.specification_json, r.options_json, rr.result_json
-     FROM signatures s JOIN readings r ON r.id = s.reading_id JOIN reading_results rr ON rr.reading_id = r.id`,
+    `SELECT s.digest, r.frame_sha256, r.setup_json, r.specification_json, r.options_json, rr.result_json,
+       rv.value_json
+     FROM signatures s JOIN readings r ON r.id = s.reading_id JOIN reading_results rr ON rr.reading_id = r.id
+     JOIN reading_values rv ON rv.reading_id = r.id`,
   );
   const content = {
     frameSha256: stored.frame_sha256,
@@ -167,11 +197,13 @@ test("a signature's digest is that of the stored reading", async () => {
     setup: JSON.parse(stored.setup_json) as object,
     specification: JSON.parse(stored.specification_json) as null,
     options: JSON.parse(stored.options_json) as object,
+    value: JSON.parse(stored.value_json) as Omit<ValueIn, 'judgement'>,
   };
   expect(digestOf(content)).toBe(stored.digest);
   expect(digestOf({ ...content, result: { ...content.result, wavelengthNm: 635.1 } })).not.toBe(
     stored.digest,
   );
+  expect(digestOf({ ...content, value: { ...content.value, valueNm: 635.1 } })).not.toBe(stored.digest);
 });
 
 describe('the log is a chain', () => {

@@ -316,7 +316,14 @@ test('limits and scatter reach the engine as standard uncertainties with their d
     distanceMm: { ...SETUP.distanceMm, stated: 0.3, shape: 'rectangular', k: 2 },
     scaleUmPerPx: { ...SETUP.scaleUmPerPx, stated: 0.001, shape: 'type-a', dof: 7 },
   });
-  const { setup } = await fitFacts({ setupId, lotId: null });
+  const { setup } = await fitFacts({
+    id: 0,
+    benchId: world.benchId,
+    receivedAt: new Date(),
+    mediaType: 'image/png',
+    setupId,
+    lotId: null,
+  });
   // JCGM 100:2008, 4.3.7: limits of +-a without more knowledge have u = a / sqrt 3.
   expect(setup.distanceMm).toMatchObject({
     u: 0.3 / Math.sqrt(3),

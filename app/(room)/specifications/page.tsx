@@ -1,8 +1,9 @@
 import type { Metadata } from 'next';
 import { Empty } from '@/components/states/empty';
-import { count, nominalText, RULE_WORDS } from '@/lib/client/words';
+import { count, nominalText, RULE_WORDS, METHOD_WORDS } from '@/lib/client/words';
 import { can } from '@/lib/domain/permissions';
-import { formatNumber } from '@/lib/quantity/format';
+import type { ReferenceTemperature } from '@/lib/domain/specification';
+import { formatNumber, formatQuantity } from '@/lib/quantity/format';
 import { listSpecifications } from '@/lib/server/queries/lots';
 import { requireMe } from '@/lib/server/session';
 import { addSpecification, retireSpecification } from '../lots/actions';
@@ -10,6 +11,11 @@ import { AddSpecification } from './_components/add-specification';
 import { Retire } from './_components/retire';
 
 export const metadata: Metadata = { title: 'Specifications' };
+
+function temperatureText({ nmPerK, uNmPerK }: ReferenceTemperature): string {
+  const step = uNmPerK > 0 ? formatQuantity(nmPerK, uNmPerK) : null;
+  return step ? `${step.value} ± ${step.uncertainty} nm per K, k = 1` : `${formatNumber(nmPerK, 3)} nm per K`;
+}
 
 export default async function Specifications() {
   const me = await requireMe('lots.see');
@@ -39,6 +45,8 @@ export default async function Specifications() {
                   {RULE_WORDS[spec.rule]}
                   {spec.ownGuardNm === null ? '' : ` of ${formatNumber(spec.ownGuardNm, 2)} nm`}; no verdict
                   when U is above {formatNumber(spec.ratio, 2)} of half the tolerance
+                  {spec.method ? `; ${METHOD_WORDS[spec.method].toLowerCase()}` : ''}
+                  {spec.atTemperature ? `; ${temperatureText(spec.atTemperature)}` : ''}
                 </div>
               </div>
               <div className="sub">{spec.lots ? count(spec.lots, 'lot') : 'no lot yet'}</div>

@@ -3,6 +3,7 @@
 import Plotly from 'plotly.js';
 import createPlotlyComponent from 'react-plotly.js/factory';
 import { useMemo } from 'react';
+import { MEDIUM_SHORT } from '../quantity';
 import { useLook } from '@/lib/client/look';
 import { useSize } from '@/lib/client/use-size';
 import type { OverTimeView } from '@/lib/domain/views';
@@ -50,7 +51,7 @@ function describe(view: OverTimeView): string {
   const last = view.stretches[view.stretches.length - 1];
   const limits =
     last && last.lowerNm !== null && last.upperNm !== null
-      ? `The limits of setup ${last.setupNumber} are ${formatNumber(last.lowerNm, 2)} and ${formatNumber(last.upperNm, 2)} nm.`
+      ? `The limits of setup ${last.setupNumber} are ${formatNumber(last.lowerNm, 2)} and ${formatNumber(last.upperNm, 2)} nm (${MEDIUM_SHORT[view.medium]}).`
       : '';
   return `Wavelength of ${view.subjectName}${view.bench ? ` on ${view.bench.name}` : ''}, ${view.points.length} runs over ${view.stretches.length} setups, with limits and ${view.findings.length} findings; moving range below. ${limits} The same is in the table.`;
 }

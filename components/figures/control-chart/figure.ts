@@ -2,6 +2,7 @@
  * The control charts as a figure of the chart library: traces for what was measured, shapes and texts for limits,
  * seams and findings. Runs stand at 1, 2, 3 …; a stretch reaches half a run beyond its ends.
  */
+import { MEDIUM_SHORT } from '../quantity';
 import type { OverTimeView } from '@/lib/domain/views';
 import { formatDay, formatNumber } from '@/lib/quantity/format';
 import type { ChartColours } from './colours';
@@ -46,7 +47,10 @@ function traces(view: OverTimeView, c: ChartColours): Dict[] {
       mode: 'markers',
       x: runs,
       y: view.points.map((p) => p.valueNm),
-      text: view.points.map((p) => `${p.label}<br>${formatNumber(p.valueNm, 3)} nm, setup ${p.setupNumber}`),
+      text: view.points.map(
+        (p) =>
+          `${p.label}<br>${formatNumber(p.valueNm, 3)} nm (${MEDIUM_SHORT[view.medium]}), setup ${p.setupNumber}`,
+      ),
       hovertemplate: '%{text}<extra></extra>',
       marker: {
         // With sizes of their own the library would make the points see-through.

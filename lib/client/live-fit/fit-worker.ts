@@ -2,9 +2,8 @@
  * The browser's own fitter, on a thread of its own: holds one decoded band stack and answers changes of the region by
  * the engine's plain arithmetic. Messages are handled one after another, so an answer belongs to the oldest question.
  */
-import type { FrameAnswer, SetupValues } from '@/lib/domain/reading-result';
+import type { FrameAnswer } from '@/lib/domain/reading-result';
 import { isScanRegion } from '@/lib/domain/scan-result';
-import type { Specification } from '@/lib/domain/specification';
 import type { FitFacts, FitPreview, RegionChange } from '@/lib/domain/views';
 import type { FrameStack } from '@/lib/measure/band-stack';
 import { measureStack } from '@/lib/measure/measure-stack';
@@ -21,8 +20,7 @@ export type FitReply =
 
 interface Held {
   stack: FrameStack;
-  setup: SetupValues;
-  specification: Specification | null;
+  facts: FitFacts;
 }
 
 let held: Held | null = null;
@@ -40,19 +38,19 @@ addEventListener('message', ({ data }: MessageEvent<FitQuestion>) => {
   }
 });
 
-function hold(bytes: ArrayBuffer, { setup, specification }: FitFacts): void {
+function hold(bytes: ArrayBuffer, facts: FitFacts): void {
   const isFirst = held === null;
   const stack = decodeStack(new Uint8Array(bytes));
-  held = { stack, setup, specification };
-  for (let i = 0; isFirst && i < WARM_UPS; i++) measureStack(stack, setup, {});
+  held = { stack, facts };
+  for (let i = 0; isFirst && i < WARM_UPS; i++) measureStack(stack, facts.setup, {});
 }
 
 function replyTo({ region, leaveOut, zeroShift }: RegionChange): FitReply {
   if (isScanRegion(region)) throw new Error('A scan has no bands.');
   if (!held) throw new Error('There are no bands to fit.');
-  const { stack, setup, specification } = held;
-  const answer: FrameAnswer = measureStack(stack, setup, { region, leaveOut, zeroShift });
+  const { stack, facts } = held;
+  const answer: FrameAnswer = measureStack(stack, facts.setup, { region, leaveOut, zeroShift });
   return answer.ok
-    ? { kind: 'fit', fit: previewOf(answer, specification) }
+    ? { kind: 'fit', fit: previewOf(answer, facts) }
     : { kind: 'refused', message: answer.message };
 }

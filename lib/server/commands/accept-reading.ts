@@ -15,6 +15,7 @@ import {
   whyBarred,
   type ReadingFacts,
 } from '../reading-facts';
+import { recordReferenceCheck, requireBenchOpen } from '../reference-checks';
 import { requireOwnPassword } from '../password-proofs';
 import { requireMoveReason } from '../move-reasons';
 import { inTransaction } from '../transaction';
@@ -44,6 +45,7 @@ export async function acceptReading(
     const now = await findReading(wanted.readingId, transaction);
     const barredNow = await whyBarred(context.actor.id, now, transaction);
     if (barredNow) throw new AppError('NOT_ALLOWED', barredNow);
+    await requireBenchOpen(work, now.readingId);
     await stepReading(work, context.at, now, wanted.version, 'accept', { accepted_at: context.at });
     await tables.signatures.create(
       {
@@ -82,6 +84,7 @@ export async function acceptReading(
         ...moved,
       },
     });
+    await recordReferenceCheck(work, context, now.readingId);
     return { readingId: now.readingId, version: wanted.version + 1 };
   });
 }

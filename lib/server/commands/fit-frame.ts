@@ -87,6 +87,7 @@ async function keepFirstFit(
       result,
       setup: facts.setup,
       specification: facts.specification,
+      comparison: facts.comparison,
       options: firstOptions(frame, facts),
       madeBy: null,
       madeInReview: false,

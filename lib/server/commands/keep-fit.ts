@@ -7,6 +7,7 @@ import type { FitOptions } from '@/lib/domain/reading-result';
 import { isScanRegion, isScanResult, type FitResult, type ScanOptions } from '@/lib/domain/scan-result';
 import type { keepFitSchema } from '@/lib/domain/review-schemas';
 import type { RegionChange, SeenDigits, ServerFit } from '@/lib/domain/views';
+import { formatNumber } from '@/lib/quantity/format';
 import { previewOf, valueIn } from '@/lib/quantity/value-in';
 import type { CommandContext } from '../context';
 import { stackForFit } from '../band-stacks';
@@ -44,7 +45,7 @@ export async function previewFit(
   const frame = await loadFrame(frameId);
   const facts = await fitFacts(frame);
   const { result, stackSha256 } = await fitWith(frame, facts, wanted);
-  return { ...previewOf(result, facts.specification), stackSha256 };
+  return { ...previewOf(result, facts), stackSha256 };
 }
 
 /**
@@ -78,7 +79,7 @@ function tellDifference(frame: FrameRow, seen: SeenDigits, kept: FitResult): str
   });
   if (isSame) return null;
   log().warn({ frame: frame.id, engine: kept.engine, seen, kept: digits }, 'browser and server differ');
-  return `The server’s fit gives a spacing of ${spacingPx.toFixed(6)} px, this page showed ${seen.spacingPx.toFixed(6)} px. The server’s numbers are the ones kept; look at them before you go on.`;
+  return `The server’s fit gives a spacing of ${formatNumber(spacingPx, 6)} px, this page showed ${formatNumber(seen.spacingPx, 6)} px. The server’s numbers are the ones kept; look at them before you go on.`;
 }
 
 async function requireRight(
@@ -162,6 +163,7 @@ async function store(
       result,
       setup: facts.setup,
       specification: facts.specification,
+      comparison: facts.comparison,
       options,
       madeBy: context.actor.id,
       madeInReview: inReview,
@@ -200,7 +202,7 @@ async function store(
       ...(isScanResult(result) ? { detectorMm: result.detectorMm } : {}),
       zeroShift: wanted.zeroShift,
       leaveOut: wanted.leaveOut,
-      valueNm: valueIn(result, facts.specification).valueNm,
+      valueNm: valueIn(result, facts).valueNm,
       regionsTried: trials.length,
       ...(wanted.moveReason ? { moveReason: wanted.moveReason } : {}),
     },

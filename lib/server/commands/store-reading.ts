@@ -7,7 +7,9 @@ import type { Specification } from '@/lib/domain/specification';
 import { canonicalJson, sha256 } from '../canonical';
 import { db, select } from '../db';
 import { gravest, lengthColumns, riskOf } from '../findings';
-import { valueIn } from '@/lib/quantity/value-in';
+import type { ComparisonFacts } from '@/lib/quantity/comparison';
+import { drawBudget } from '@/lib/quantity/monte-carlo';
+import { valueIn, type ValueIn } from '@/lib/quantity/value-in';
 
 /** What a new reading is made from. */
 export interface NewReading {
@@ -23,6 +25,7 @@ export interface NewReading {
   result: FitResult;
   setup: SetupValues;
   specification: Specification | null;
+  comparison?: ComparisonFacts | null;
   options: FitOptions | ScanOptions;
   /** null: the product's own first fit. */
   madeBy: number | null;
@@ -44,7 +47,16 @@ export async function storeReading(
     { frameId: frame.id },
     transaction,
   );
-  const value = valueIn(result, specification);
+  const value = valueIn(result, { setup, specification, comparison: reading.comparison });
+  const { judgement, ...judged } = value;
+  const digest = digestOf({
+    frameSha256: frame.sha256,
+    result,
+    setup,
+    specification,
+    options,
+    value: judged,
+  });
   const { word, text } = gravest(result.findings);
   const row = await tables.readings.create(
     {
@@ -61,7 +73,7 @@ export async function storeReading(
       madeInReview: reading.madeInReview,
       engine: result.engine,
       frameSha256: frame.sha256,
-      digest: digestOf({ frameSha256: frame.sha256, result, setup, specification, options }),
+      digest,
       optionsJson: canonicalJson(options),
       setupJson: canonicalJson(setup),
       specificationJson: specification ? canonicalJson(specification) : null,
@@ -69,12 +81,12 @@ export async function storeReading(
       valueNm: value.valueNm,
       uNm: value.uNm,
       expandedNm: value.expandedNm,
-      k: result.k,
-      dof: result.dofWavelength,
+      k: value.k,
+      dof: value.dof,
       wavelengthAirNm: result.wavelengthNm,
       wavelengthVacuumNm: result.wavelengthVacuumNm,
-      verdict: value.judgement?.verdict ?? null,
-      judgementJson: value.judgement ? canonicalJson(value.judgement) : null,
+      verdict: judgement?.verdict ?? null,
+      judgementJson: judgement ? canonicalJson(judgement) : null,
       word,
       wordText: text.slice(0, 1000),
       orderCentres: result.orders.length,
@@ -86,6 +98,19 @@ export async function storeReading(
     { readingId: row.id, stripJson: JSON.stringify(result.strip), resultJson: canonicalJson(result) },
     { transaction },
   );
+  const { budget, valueNm, expandedNm } = value;
+  const drawn =
+    budget.length && valueNm !== null && expandedNm !== null
+      ? drawBudget(budget, valueNm, expandedNm, digest)
+      : null;
+  await tables.readingValues.create(
+    {
+      readingId: row.id,
+      valueJson: canonicalJson(judged),
+      monteCarloJson: drawn ? canonicalJson(drawn) : null,
+    },
+    { transaction },
+  );
   await tables.readingStates.create(
     {
       readingId: row.id,
@@ -93,20 +118,22 @@ export async function storeReading(
       benchId: frame.benchId,
       ...reading.state,
       changedAt: at,
-      risk: riskOf(word, value.judgement?.verdict ?? null),
+      risk: riskOf(word, judgement?.verdict ?? null),
     },
     { transaction },
   );
   return { id: row.id, number: row.number };
 }
 
-/** SHA-256 over everything a signature stands for: bytes, result, setup, specification, options. */
+/** SHA-256 over everything a signature stands for: bytes, result, setup, specification, options, value with its budget. */
 export function digestOf(content: {
   frameSha256: string;
   result: FitResult;
   setup: SetupValues;
   specification: Specification | null;
   options: FitOptions | ScanOptions;
+  /** Absent in readings of before values were kept. */
+  value?: Omit<ValueIn, 'judgement'>;
 }): string {
   return sha256(canonicalJson(content));
 }

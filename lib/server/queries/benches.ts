@@ -4,6 +4,7 @@ import type { BenchChoice, BenchView, SetupView } from '@/lib/domain/views';
 import type { PlateCertificate } from '@/models/plate-certificate';
 import { db, select } from '../db';
 import { isMounted } from '../plate-mounts';
+import { fitnessWithChecks, standingOf } from '../reference-checks';
 import { fitnessOf } from '../setups';
 import { setupAt, waitingNumber } from '../setup-timeline';
 import { correctionView } from './corrections';
@@ -19,7 +20,10 @@ async function choiceOf(bench: { id: number; name: string }, now: Date): Promise
     id: bench.id,
     name: bench.name,
     setupNumber: setup?.number ?? null,
-    fitness: fitnessOf(setup, now, setup ? await isMounted(bench.id, setup.id, now) : true),
+    fitness: fitnessWithChecks(
+      fitnessOf(setup, now, setup ? await isMounted(bench.id, setup.id, now) : true),
+      await standingOf(bench.id),
+    ),
     waitingNumber: waiting,
   };
 }

@@ -31,6 +31,8 @@ interface Row extends BriefColumns, MaybeSpecification {
   source_id: number | null;
   source: string | null;
   vacuum_nm: number | null;
+  source_u_nm: number | null;
+  is_reference: number | null;
   return_reason: ReturnReason | null;
   return_words: string | null;
 }
@@ -41,7 +43,7 @@ export async function frameRows(ids: readonly number[]): Promise<FrameRow[]> {
   const rows = await select<Row>(
     `SELECT f.id, f.file_name, f.bytes, f.sha256, f.state, f.code, f.message, f.media_type, f.detector_mm, f.received_at, f.uploaded_by,
        up.name AS uploader, f.bench_id, b.name AS bench, su.number AS setup_number, f.unit_id, un.serial, f.lot_id,
-       lo.number AS lot, f.source_id, so.name AS source, so.vacuum_nm, rt.reason AS return_reason,
+       lo.number AS lot, f.source_id, so.name AS source, so.vacuum_nm, so.u_nm AS source_u_nm, so.is_reference, rt.reason AS return_reason,
        rt.words AS return_words, ${SPECIFICATION_COLUMNS}, ${BRIEF_COLUMNS}
      FROM frames f
      JOIN people up ON up.id = f.uploaded_by JOIN benches b ON b.id = f.bench_id JOIN setups su ON su.id = f.setup_id
@@ -77,7 +79,16 @@ function frameOf(row: Row): FrameRow {
 
 function subjectOf(row: Row): Subject {
   if (row.source_id !== null) {
-    return { kind: 'source', sourceId: row.source_id, name: row.source ?? '', vacuumNm: row.vacuum_nm ?? 0 };
+    const { source_id: sourceId, source, vacuum_nm: vacuumNm, source_u_nm: uNm } = row;
+    const isReference = Boolean(row.is_reference);
+    return {
+      kind: 'source',
+      sourceId,
+      name: source ?? '',
+      vacuumNm: vacuumNm ?? 0,
+      uNm: uNm ?? 0,
+      isReference,
+    };
   }
   if (row.unit_id === null || row.lot_id === null) return { kind: 'none' };
   return {

@@ -6,6 +6,7 @@ import { select } from '../db';
 import { fitFacts } from '../frame-facts';
 import { getMe } from '../session';
 import { findReading, whyBarred } from '../reading-facts';
+import { whyBenchStopped } from '../reference-checks';
 import { frameRows } from './frame-rows';
 import { framesPage } from './frames-page';
 import { outcomeOf } from './outcomes';
@@ -33,6 +34,9 @@ export async function intakeFrames(personId: number): Promise<FrameRow[]> {
 interface FrameColumns {
   width_px: number | null;
   height_px: number | null;
+  bench_id: number;
+  received_at: Date;
+  media_type: string;
   setup_id: number;
   lot_id: number | null;
   scan_from_mm: number | null;
@@ -48,7 +52,7 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
   const wanted = readingId ?? row.reading?.id ?? readings[0]?.id ?? null;
   if (readingId !== null && !readings.some(({ id }) => id === readingId)) return null;
   const [columns] = await select<FrameColumns>(
-    `SELECT width_px, height_px, setup_id, lot_id, scan_from_mm, scan_to_mm, scan_points
+    `SELECT width_px, height_px, bench_id, received_at, media_type, setup_id, lot_id, scan_from_mm, scan_to_mm, scan_points
      FROM frames WHERE id = :frameId`,
     { frameId },
   );
@@ -60,7 +64,14 @@ export async function findFrame(frameId: number, readingId: number | null): Prom
     scanLength: fromMm === null || toMm === null ? null : { fromMm, toMm, points: points ?? 0 },
     readings,
     shown: wanted === null ? null : await readingView(wanted),
-    facts: await fitFacts({ setupId: columns.setup_id, lotId: columns.lot_id }),
+    facts: await fitFacts({
+      id: frameId,
+      benchId: columns.bench_id,
+      receivedAt: columns.received_at,
+      mediaType: columns.media_type,
+      setupId: columns.setup_id,
+      lotId: columns.lot_id,
+    }),
     outcome: row.subject.kind === 'unit' ? await outcomeOf(row.subject.unitId) : null,
   };
 }
@@ -83,7 +94,7 @@ export async function mayFor(me: Me, frame: FrameView): Promise<May> {
   const isCurrent = frame.reading?.id === shown.id;
   const inReview = readingMay('accept', shown.status);
   const acceptBarred = can(me, 'readings.accept')
-    ? await whyBarred(me.id, await findReading(shown.id))
+    ? ((await whyBarred(me.id, await findReading(shown.id))) ?? (await whyBenchStopped(shown.id)))
     : null;
   const fitRight = inReview ? 'readings.return' : 'readings.send';
   return {

@@ -1,5 +1,6 @@
 import 'server-only';
 import type { HistoryStep, HistoryView } from '@/lib/domain/history';
+import type { Medium } from '@/lib/domain/specification';
 import {
   OUTCOME_WORDS,
   RETURN_WORDS,
@@ -35,11 +36,12 @@ export async function historyOf(frameId: number): Promise<HistoryView | null> {
 
 type Steps = Promise<HistoryStep[]>;
 
-const nm = (value: number | null, expanded: number | null): string => {
+const nm = (value: number | null, expanded: number | null, medium: Medium): string => {
   if (value === null) return 'no wavelength';
-  if (!expanded) return `${formatNumber(value, 3)} nm`;
+  const unit = medium === 'air' ? 'nm (air)' : 'nm (vac)';
+  if (!expanded) return `${formatNumber(value, 3)} ${unit}`;
   const text = formatQuantity(value, expanded);
-  return `${text.value} ± ${text.uncertainty} nm`;
+  return `${text.value} ± ${text.uncertainty} ${unit}`;
 };
 
 async function received(frameId: number): Steps {
@@ -75,12 +77,13 @@ async function fits(frameId: number): Steps {
     engine: string;
     value_nm: number | null;
     expanded_nm: number | null;
+    medium: Medium;
     verdict: string | null;
     replaced: number | null;
     made_in_review: number;
     reason: string | null;
   }>(
-    `SELECT r.made_at AS at, p.name AS who, r.number, r.engine, r.value_nm, r.expanded_nm, r.verdict,
+    `SELECT r.made_at AS at, p.name AS who, r.number, r.engine, r.value_nm, r.expanded_nm, r.medium, r.verdict,
        b.number AS replaced, r.made_in_review, m.words AS reason
      FROM readings r LEFT JOIN people p ON p.id = r.made_by LEFT JOIN readings b ON b.id = r.replaces_id
      LEFT JOIN move_reasons m ON m.reading_id = r.id WHERE r.frame_id = :frameId ORDER BY r.id`,
@@ -93,7 +96,7 @@ async function fits(frameId: number): Steps {
     reading: row.number,
     title: row.replaced === null ? 'Fitted' : `Fitted again, in place of reading ${row.replaced}`,
     lines: [
-      `${nm(row.value_nm, row.expanded_nm)}${row.verdict ? `, ${row.verdict.replace('-', ' ')}` : ''}`,
+      `${nm(row.value_nm, row.expanded_nm, row.medium)}${row.verdict ? `, ${row.verdict.replace('-', ' ')}` : ''}`,
       `engine ${row.engine}${row.made_in_review ? ', in review' : ''}`,
       ...(row.reason ? [`Why the value moved: ${row.reason}`] : []),
     ],
@@ -119,10 +122,12 @@ async function trials(frameId: number): Steps {
     change_json: string;
     value_nm: number | null;
     expanded_nm: number | null;
+    medium: Medium;
     problem: string | null;
   }>(
     `SELECT t.tried_at AS at, p.name AS who, r.number, k.number AS kept, t.change_json, t.value_nm, t.expanded_nm,
-       t.problem FROM region_trials t JOIN people p ON p.id = t.tried_by
+       t.problem, COALESCE((SELECT sp.medium FROM frames f JOIN lots l ON l.id = f.lot_id
+         JOIN specifications sp ON sp.id = l.specification_id WHERE f.id = t.frame_id), 'air') AS medium FROM region_trials t JOIN people p ON p.id = t.tried_by
      LEFT JOIN readings r ON r.id = t.from_reading_id LEFT JOIN readings k ON k.id = t.kept_reading_id
      WHERE t.frame_id = :frameId ORDER BY t.id`,
     { frameId },
@@ -134,7 +139,7 @@ async function trials(frameId: number): Steps {
     reading: row.number,
     title: row.kept === null ? 'Region tried, none kept' : `Region tried on the way to reading ${row.kept}`,
     lines: [
-      `${row.problem ?? nm(row.value_nm, row.expanded_nm)}, as the page showed it`,
+      `${row.problem ?? nm(row.value_nm, row.expanded_nm, row.medium)}, as the page showed it`,
       regionText(row.change_json),
     ],
   }));

@@ -3,6 +3,7 @@ import { READING_STEPS } from '@/lib/domain/life-cycle';
 import type { Verdict } from '@/lib/domain/specification';
 import { VERDICTS } from '@/lib/domain/specification';
 import type { LotRow, LotView, SpecificationView, UnitRow } from '@/lib/domain/views';
+import { lotRisk, type UnitValue } from '@/lib/quantity/lot-risk';
 import { select } from '../db';
 import { outcomesOf } from './outcomes';
 import { contains, pageOf } from './paging';
@@ -112,6 +113,7 @@ export async function findLot(id: number, q: { page: number; find: string }): Pr
     totalRows: total,
     page,
     counts: await countsOf(id),
+    risk: lotRisk(await valuesOf(id), specificationOf(lot)),
   };
 }
 
@@ -132,6 +134,15 @@ async function countsOf(lotId: number): Promise<Record<Verdict | 'none', number>
   for (const { verdict, many } of found)
     counts[verdict && VERDICTS.includes(verdict) ? verdict : 'none'] += many;
   return counts;
+}
+
+/** The value of each unit of the lot that has one with an uncertainty. */
+function valuesOf(lotId: number): Promise<UnitValue[]> {
+  return select<UnitValue>(
+    `SELECT r.value_nm AS valueNm, r.u_nm AS uNm, r.expanded_nm AS expandedNm FROM units u ${STANDING_READING}
+     WHERE u.lot_id = :lotId AND r.value_nm IS NOT NULL AND r.u_nm IS NOT NULL AND r.expanded_nm IS NOT NULL`,
+    { lotId },
+  );
 }
 
 export async function listSpecifications(): Promise<SpecificationView[]> {

@@ -1,8 +1,10 @@
 import 'server-only';
-import type { FitOptions } from '@/lib/domain/reading-result';
+import type { FitOptions, SetupValues } from '@/lib/domain/reading-result';
 import type { FitResult } from '@/lib/domain/scan-result';
 import type { Role } from '@/lib/domain/roles';
 import type { ReadingBrief, ReadingView, ReturnReason } from '@/lib/domain/views';
+import { drawBudget, type MonteCarlo } from '@/lib/quantity/monte-carlo';
+import type { ValueIn } from '@/lib/quantity/value-in';
 import { select } from '../db';
 import { firstValueOf } from '../move-reasons';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
@@ -20,7 +22,11 @@ export async function readingsOf(frameId: number): Promise<ReadingBrief[]> {
 
 interface ViewColumns extends BriefColumns {
   result_json: string;
+  value_json: string | null;
+  monte_carlo_json: string | null;
+  digest: string;
   options_json: string;
+  setup_json: string;
   setup_id: number;
   bench_id: number;
   frame_id: number;
@@ -35,10 +41,11 @@ interface ViewColumns extends BriefColumns {
 /** One reading in full, curves included. */
 export async function readingView(readingId: number): Promise<ReadingView | null> {
   const [row] = await select<ViewColumns>(
-    `SELECT ${BRIEF_COLUMNS}, rr.result_json, r.options_json, r.setup_id, r.bench_id, r.frame_id, r.replaces_id,
+    `SELECT ${BRIEF_COLUMNS}, rr.result_json, rv.value_json, rv.monte_carlo_json, r.digest, r.options_json, r.setup_json, r.setup_id, r.bench_id, r.frame_id, r.replaces_id,
        (SELECT MAX(n.id) FROM readings n WHERE n.replaces_id = r.id) AS replaced_by,
        st.sent_at, st.note, sn.id AS sender_id, sn.name AS sender
-     FROM readings r ${BRIEF_JOINS} LEFT JOIN people sn ON sn.id = st.sent_by WHERE r.id = :readingId`,
+     FROM readings r ${BRIEF_JOINS} LEFT JOIN people sn ON sn.id = st.sent_by
+     LEFT JOIN reading_values rv ON rv.reading_id = r.id WHERE r.id = :readingId`,
     { readingId },
   );
   const brief = row ? briefOf(row) : null;
@@ -47,10 +54,12 @@ export async function readingView(readingId: number): Promise<ReadingView | null
   if (!setup) throw new Error(`Reading ${readingId} names a setup its bench does not have.`);
   const result = JSON.parse(row.result_json) as FitResult;
   const options = JSON.parse(row.options_json) as FitOptions;
+  const { air, sourceTemperature } = JSON.parse(row.setup_json) as SetupValues;
   return {
     ...brief,
     result,
-    budget: result.budget,
+    ...valueOf(row, result),
+    conditions: { air, sourceTemperature },
     findings: result.findings,
     setup,
     replaces: row.replaces_id,
@@ -67,6 +76,34 @@ export async function readingView(readingId: number): Promise<ReadingView | null
     leaveOut: options.leaveOut ?? [],
     tone: options.tone ?? 'auto',
   };
+}
+
+type Value = Pick<ReadingView, 'dof' | 'budget' | 'corrections' | 'method' | 'other' | 'monteCarlo'>;
+
+/** Values of before methods could be chosen name none. */
+type KeptValue = Omit<ValueIn, 'judgement' | 'method' | 'other'> & Partial<Pick<ValueIn, 'method' | 'other'>>;
+
+/** The kept value; a reading of before values were kept shows its result's budget, drawn from the same seed. */
+function valueOf(row: ViewColumns, result: FitResult): Value {
+  if (row.value_json !== null) {
+    const {
+      dof,
+      budget,
+      corrections,
+      method = 'absolute',
+      other = null,
+    } = JSON.parse(row.value_json) as KeptValue;
+    const monteCarlo =
+      row.monte_carlo_json === null ? null : (JSON.parse(row.monte_carlo_json) as MonteCarlo);
+    return { dof, budget, corrections, method, other, monteCarlo };
+  }
+  const { budget, wavelengthNm, expandedNm, dofWavelength } = result;
+  const drawn =
+    budget.length && wavelengthNm !== null && expandedNm !== null
+      ? drawBudget(budget, wavelengthNm, expandedNm, row.digest)
+      : null;
+  const plain = { corrections: [], method: 'absolute' as const, other: null };
+  return { dof: dofWavelength, budget, ...plain, monteCarlo: drawn };
 }
 
 async function returnOf(readingId: number): Promise<ReadingView['returned']> {

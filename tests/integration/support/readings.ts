@@ -95,7 +95,7 @@ export async function makeReading(
     uploadedBy: context.actor.id,
     receivedAt: context.at,
   });
-  const { setup, specification } = await fitFacts(frame);
+  const { setup, specification, comparison } = await fitFacts(frame);
   const reading = await inTransaction({ ...context, at: NOW }, (work) =>
     storeReading(
       {
@@ -103,6 +103,7 @@ export async function makeReading(
         result,
         setup,
         specification,
+        comparison,
         options: { tone: 'auto' },
         madeBy: null,
         madeInReview: false,

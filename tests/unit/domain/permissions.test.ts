@@ -26,6 +26,8 @@ const MATRIX: Record<Action, string> = {
   'certificates.see': 'trqa',
   'certificates.add': 'qa',
   'sources.add': 'qa',
+  'benches.release': 'q',
+  'conditions.enter': 'tqa',
   'charts.see': 'trqa',
   'people.see': 'a',
   'people.change': 'a',

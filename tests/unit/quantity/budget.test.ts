@@ -38,6 +38,19 @@ describe('combining a budget', () => {
     expect(combined.k).toBeCloseTo(2, 9);
     expect(combined.rows.reduce((sum, r) => sum + r.share, 0)).toBeCloseTo(1, 12);
   });
+  test('rows of one input become one row, with their signs and the smallest degrees of freedom', () => {
+    const shared = [
+      { ...row('near', 0.3, 2, 8), input: 'thermometer' },
+      { ...row('far', 0.3, -1, 5), input: 'thermometer' },
+      row('fit', 0.4, 1, 12),
+    ];
+    const { rows, uNm, dof } = combineBudget(shared);
+    expect(rows.map(({ key }) => key)).toEqual(['near+far', 'fit']);
+    expect(rows[0]).toMatchObject({ dof: 5, unit: 'nm' });
+    expect(rows[0].contributionNm).toBeCloseTo(0.3, 12);
+    expect(uNm).toBeCloseTo(0.5, 12);
+    expect(dof).toBeCloseTo(0.5 ** 4 / (0.3 ** 4 / 5 + 0.4 ** 4 / 12), 9);
+  });
   test('a sensitivity scales and its sign does not matter', () => {
     expect(combineBudget([row('L', 0.3, -1.27)]).uNm).toBeCloseTo(0.381, 12);
   });

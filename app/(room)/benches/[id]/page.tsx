@@ -1,15 +1,21 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
 import { notFound } from 'next/navigation';
+import { BenchConditions } from '@/components/conditions/bench-conditions';
 import { GeometryDrawing } from '@/components/figures/geometry-drawing';
 import { Mark, SaidCheck } from '@/components/figures/marks';
 import { When } from '@/components/figures/when';
+import { ReferenceChecks } from '@/components/references/reference-checks';
 import { Empty } from '@/components/states/empty';
 import { buttonClass } from '@/components/ui/button';
 import { Notice } from '@/components/ui/notice';
 import { can } from '@/lib/domain/permissions';
+import { benchConditions } from '@/lib/server/conditions';
 import { findBench } from '@/lib/server/queries/benches';
+import { referencesOf } from '@/lib/server/queries/references';
 import { requireMe } from '@/lib/server/session';
+import { enterBenchConditions } from '../../conditions/actions';
+import { releaseBench, setBenchRule } from '../../references/actions';
 import { HowKnown } from '../_components/how-known';
 import { SetupList } from '../_components/setup-list';
 import { ValuesInForce } from '../_components/values-in-force';
@@ -96,6 +102,20 @@ export default async function Bench({ params }: Props) {
           </Empty>
         </div>
       )}
+      <ReferenceChecks
+        benchId={id}
+        view={await referencesOf(id)}
+        mayRelease={can(me, 'benches.release')}
+        releaseBench={releaseBench}
+        setBenchRule={setBenchRule}
+      />
+      <BenchConditions
+        benchId={id}
+        now={await benchConditions(id, new Date())}
+        atNm={bench.drawNm}
+        mayEnter={can(me, 'conditions.enter')}
+        enter={enterBenchConditions}
+      />
       <p className="pb-5 text-small text-ink-2">
         Laser light can hurt eyes. Block the beam before touching the bench; the laser safety officer and the
         local rules have the last word.

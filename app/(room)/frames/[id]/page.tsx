@@ -10,6 +10,7 @@ import { can } from '@/lib/domain/permissions';
 import { commentsOf, listNames } from '@/lib/server/queries/comments';
 import { findFrame, mayFor } from '@/lib/server/queries/frames';
 import { requireMe } from '@/lib/server/session';
+import { enterFrameConditions } from '../../conditions/actions';
 import { addComment, answerWithdrawal, askWithdrawal, keepFit, sendToReview } from '../../readings/actions';
 import { StillMoving } from './_components/still-moving';
 
@@ -63,6 +64,7 @@ export default async function FramePage(props: Props) {
           people: can(me, 'comments.add') ? await listNames() : [],
           addComment,
         }}
+        enterConditions={enterFrameConditions}
       />
     </div>
   );

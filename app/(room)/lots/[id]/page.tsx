@@ -2,6 +2,7 @@ import type { Metadata } from 'next';
 import Form from 'next/form';
 import Link from 'next/link';
 import { notFound } from 'next/navigation';
+import { LotRisk } from '@/components/budget/lot-risk';
 import { SaidVerdict } from '@/components/figures/marks';
 import { When } from '@/components/figures/when';
 import { Empty } from '@/components/states/empty';
@@ -9,7 +10,7 @@ import { ListFoot } from '@/components/states/list-foot';
 import { buttonClass } from '@/components/ui/button';
 import { Field } from '@/components/ui/field';
 import { addressOf, idParam, textParam, type SearchParams } from '@/lib/client/address';
-import { nominalText, RULE_WORDS } from '@/lib/client/words';
+import { MEDIUM_WORDS, nominalText, RULE_WORDS } from '@/lib/client/words';
 import { LIMITS } from '@/lib/domain/limits';
 import { can } from '@/lib/domain/permissions';
 import { VERDICTS } from '@/lib/domain/specification';
@@ -69,6 +70,7 @@ export default async function Lot({ params, searchParams }: Props) {
           </span>
         ))}
       </div>
+      {lot.rows.length ? <LotRisk risk={lot.risk} medium={MEDIUM_WORDS[lot.specification.medium]} /> : null}
       {can(me, 'units.add') && !lot.closedAt ? <AddUnits lotId={id} addUnits={addUnits} /> : null}
       {lot.rows.length ? (
         <>

@@ -29,14 +29,14 @@ export function Headlines({ view }: { view: OverTimeView }) {
       {difference === null ? null : (
         <div>
           <span className="label">From the {view.referenceIsNominal ? 'nominal' : 'reference value'}</span>
-          <Quantity value={difference} expanded={scatter} places={2} signed size="head" />
+          <Quantity value={difference} expanded={scatter} unit="nm" places={2} signed size="head" />
           {scatter === null ? null : <small>scatter only, without the setup</small>}
         </div>
       )}
       {spread === null ? null : (
         <div>
           <span className="label">Run-to-run spread</span>
-          <Quantity value={spread} expanded={null} places={2} size="head" />
+          <Quantity value={spread} expanded={null} unit="nm" places={2} size="head" />
         </div>
       )}
       {view.findings.length ? (

@@ -6,10 +6,11 @@ import type { z } from 'zod';
 import { Disclosure } from '@/components/ui/disclosure';
 import { Field, Select } from '@/components/ui/field';
 import { FormFoot } from '@/components/ui/form-foot';
+import { MEDIUM_WORDS, METHOD_WORDS } from '@/lib/client/words';
 import { parseMaybe, parseNumber, useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import type { specificationSchema } from '@/lib/domain/schemas';
-import type { DecisionRule, Medium } from '@/lib/domain/specification';
+import { METHODS, type DecisionRule, type Medium, type Method } from '@/lib/domain/specification';
 
 interface Props {
   addSpecification: (input: z.input<typeof specificationSchema>) => Promise<ActionAnswer<unknown>>;
@@ -42,12 +43,24 @@ export function AddSpecification({ addSpecification }: Props) {
   );
 }
 
-const START = { name: '', nominal: '', lower: '', upper: '', ownGuard: '', ratio: '', half: '' };
+const START = {
+  name: '',
+  nominal: '',
+  lower: '',
+  upper: '',
+  ownGuard: '',
+  ratio: '',
+  half: '',
+  temperature: '',
+  nmPerK: '',
+  uNmPerK: '',
+};
 
 function SpecificationForm({ addSpecification, close }: Props & { close: () => void }) {
   const router = useRouter();
   const [text, setText] = useState(START);
   const [medium, setMedium] = useState<Medium>('air');
+  const [method, setMethod] = useState<Method | null>(null);
   const [rule, setRule] = useState<DecisionRule>('guard-expanded');
   const submit = useSubmit<unknown>();
   const field = (key: keyof typeof START, error: string) => ({
@@ -56,6 +69,8 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
     onChange: (event: React.ChangeEvent<HTMLInputElement>) => setText({ ...text, [key]: event.target.value }),
   });
   const oneSided = (text.lower.trim() === '') !== (text.upper.trim() === '');
+  const inMedium = MEDIUM_WORDS[medium];
+  const warm = text.temperature.trim() !== '';
   const send = () =>
     submit.run(
       () =>
@@ -69,6 +84,14 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
           ownGuardNm: rule === 'guard-own' ? parseMaybe(text.ownGuard) : null,
           ratio: parseMaybe(text.ratio),
           halfToleranceNm: oneSided ? parseMaybe(text.half) : null,
+          method,
+          atTemperature: warm
+            ? {
+                temperatureC: parseNumber(text.temperature),
+                nmPerK: parseNumber(text.nmPerK),
+                uNmPerK: parseMaybe(text.uNmPerK) ?? 0,
+              }
+            : null,
         }),
       () => {
         close();
@@ -84,7 +107,12 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
     >
       <div className="form-grid">
         <Field label="Name" required {...field('name', 'name')} />
-        <Field label="Nominal, nm" inputMode="decimal" required {...field('nominal', 'nominalNm')} />
+        <Field
+          label={`Nominal, nm (${inMedium})`}
+          inputMode="decimal"
+          required
+          {...field('nominal', 'nominalNm')}
+        />
         <Select
           label="Stated in"
           value={medium}
@@ -94,13 +122,13 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
           <option value="vacuum">vacuum</option>
         </Select>
         <Field
-          label="Lower limit, nm"
+          label={`Lower limit, nm (${inMedium})`}
           inputMode="decimal"
           help="Empty when there is none."
           {...field('lower', 'lowerNm')}
         />
         <Field
-          label="Upper limit, nm"
+          label={`Upper limit, nm (${inMedium})`}
           inputMode="decimal"
           help="Empty when there is none."
           {...field('upper', 'upperNm')}
@@ -137,6 +165,41 @@ function SpecificationForm({ addSpecification, close }: Props & { close: () => v
           help="Empty takes the usual value for the rule."
           {...field('ratio', 'ratio')}
         />
+        <Select
+          label="Method"
+          value={method ?? ''}
+          help="Beside a reference is much surer, and needs reference readings of the same setup."
+          onChange={(event) => setMethod(METHODS.find((known) => known === event.target.value) ?? null)}
+        >
+          <option value="">As the bench is used</option>
+          {METHODS.map((known) => (
+            <option key={known} value={known}>
+              {METHOD_WORDS[known]}
+            </option>
+          ))}
+        </Select>
+        <Field
+          label="The limits hold at, °C"
+          inputMode="decimal"
+          placeholder="any temperature"
+          help="Of the unit. Its temperature is then entered with each frame or for the bench."
+          {...field('temperature', 'atTemperature.temperatureC')}
+        />
+        {warm ? (
+          <>
+            <Field
+              label="The wavelength moves by, nm per K"
+              inputMode="decimal"
+              {...field('nmPerK', 'atTemperature.nmPerK')}
+            />
+            <Field
+              label="Standard uncertainty of it, nm per K"
+              inputMode="decimal"
+              help="Empty: known exactly."
+              {...field('uNmPerK', 'atTemperature.uNmPerK')}
+            />
+          </>
+        ) : null}
       </div>
       <FormFoot word="Add it" waiting={submit.waiting} message={submit.message} onBack={close} />
     </form>
