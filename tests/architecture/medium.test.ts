@@ -23,6 +23,11 @@ const NO_WAVELENGTH: [file: string, line: RegExp, what: string][] = [
     'limits of a sentence that names the medium',
   ],
   ['components/reading/move-text.ts', /move\.nm/, 'change of a value'],
+  [
+    'lib/server/commands/apply-correction.ts',
+    /const nm =/,
+    'two values of a line that names the medium behind them',
+  ],
   ['lib/server/move-reasons.ts', /move\.nm/, 'change of a value'],
   ['components/references/check-list.tsx', /deviationText|remount/, 'deviation, scatter'],
   ['components/references/rule-form.tsx', /limitNm/, 'limit of a deviation'],
