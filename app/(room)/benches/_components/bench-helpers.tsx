@@ -132,29 +132,33 @@ function CameraView({ plan }: { plan: Plan }) {
     view.pxPerFringe < PX_STOP ? 'stop' : view.pxPerFringe < PX_LOOK ? 'look' : 'clear';
   const errorNm = farFieldErrorNm(plan.widthUm, plan.wavelengthNm, plan.distanceMm);
   return (
-    <ul className="helper-says" role="status">
-      <li>
-        <SaidCheck word={pxWord}>{formatNumber(view.pxPerFringe, 1)} px a fringe</SaidCheck>
-        <span>
-          {pxWord === 'clear' ? 'Fine enough.' : 'Move the camera back from the lens, or take a finer scale.'}
-        </span>
-      </li>
-      <li>
-        <SaidCheck word={view.fringesInLobe < 7 ? 'look' : 'clear'}>
-          {formatNumber(view.fringes, 0)} bright fringes
-        </SaidCheck>
-        <span>
-          {formatNumber(view.fringesInLobe, 0)} of them in the central lobe; a report wants at least 7.
-        </span>
-      </li>
-      <li>
-        <SaidCheck word={nearWord}>w²/(λL) = {formatNumber(near, 4)}</SaidCheck>
-        <span>
-          The far-field formula adds {formatNumber(errorNm, 3)} nm.{' '}
-          {nearWord === 'clear' ? '' : 'The plate is near for slits this wide: make L longer.'}
-        </span>
-      </li>
-    </ul>
+    <div role="status">
+      <ul className="helper-says">
+        <li>
+          <SaidCheck word={pxWord}>{formatNumber(view.pxPerFringe, 1)} px a fringe</SaidCheck>
+          <span>
+            {pxWord === 'clear'
+              ? 'Fine enough.'
+              : 'Move the camera back from the lens, or take a finer scale.'}
+          </span>
+        </li>
+        <li>
+          <SaidCheck word={view.fringesInLobe < 7 ? 'look' : 'clear'}>
+            {formatNumber(view.fringes, 0)} bright fringes
+          </SaidCheck>
+          <span>
+            {formatNumber(view.fringesInLobe, 0)} of them in the central lobe; a report wants at least 7.
+          </span>
+        </li>
+        <li>
+          <SaidCheck word={nearWord}>w²/(λL) = {formatNumber(near, 4)}</SaidCheck>
+          <span>
+            The far-field formula adds {errorNm < 0.0005 ? 'less than 0.001' : formatNumber(errorNm, 3)} nm.{' '}
+            {nearWord === 'clear' ? '' : 'The plate is near for slits this wide: make L longer.'}
+          </span>
+        </li>
+      </ul>
+    </div>
   );
 }
 
