@@ -59,7 +59,7 @@ async function correct(
 ): Promise<void> {
   const { transaction } = work;
   const frame = await loadFrame(reading.frameId, transaction);
-  const facts = await fitFacts({ setupId: setup.id, lotId: frame.lotId }, transaction);
+  const facts = await fitFacts({ ...frame.get({ plain: true }), setupId: setup.id }, transaction);
   const fit = await db().tables.correctionFits.findOne({
     where: { setupId: setup.id, readingId: reading.readingId },
     transaction,
@@ -76,6 +76,7 @@ async function correct(
       result: JSON.parse(fit.resultJson ?? 'null') as FitResult,
       setup: facts.setup,
       specification: facts.specification,
+      comparison: facts.comparison,
       options: JSON.parse(fit.optionsJson ?? '{}') as FitOptions | ScanOptions,
       madeBy: null,
       madeInReview: true,

@@ -38,7 +38,7 @@ async function measure(
   const { tables } = db();
   const frame = await loadFrame(frameId);
   const reading = await tables.readings.findByPk(readingId, { rejectOnEmpty: true });
-  const facts = await fitFacts({ setupId, lotId: frame.lotId });
+  const facts = await fitFacts({ ...frame.get({ plain: true }), setupId });
   const kept = JSON.parse(reading.optionsJson) as FitOptions & ScanOptions;
   // The person's region and choices stay; the tone is the setup's, and bands are cut anew.
   const { stack: _bands, ...choices } = kept;
@@ -47,7 +47,7 @@ async function measure(
   const answer = bytes ? await fitInPool(bytes, facts.setup, options) : null;
   const row = { setupId, readingId, madeAt: context.at };
   const nothing = { valueNm: null, expandedNm: null, verdict: null, optionsJson: null, resultJson: null };
-  const value = answer?.ok ? valueIn(answer, facts.specification) : null;
+  const value = answer?.ok ? valueIn(answer, facts) : null;
   await tables.correctionFits
     .create(
       answer?.ok
