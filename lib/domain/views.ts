@@ -185,6 +185,8 @@ export interface BenchView extends BenchChoice {
   newerCertificate: boolean;
   /** Highest number any setup of this bench has, 0 for none. */
   lastNumber: number;
+  /** Of the newest picture taken on it; null without one. */
+  pictureWidthPx: number | null;
   /** Wavelength (nm, air) to draw the geometry with: the last accepted reading's, else 635. */
   drawNm: number;
   drawnFrom: 'reading' | 'example';

@@ -42,6 +42,10 @@ export async function findBench(id: number, now = new Date()): Promise<BenchView
      WHERE st.bench_id = :id AND st.status = :accepted ORDER BY st.accepted_at DESC LIMIT 1`,
     { id, accepted: READING_STEPS.accept.to },
   );
+  const [picture] = await select<{ width_px: number }>(
+    'SELECT width_px FROM frames WHERE bench_id = :id AND width_px IS NOT NULL ORDER BY id DESC LIMIT 1',
+    { id },
+  );
   const inForce = history.setups.find(({ from }) => new Date(from) <= now) ?? null;
   return {
     ...choice,
@@ -50,6 +54,7 @@ export async function findBench(id: number, now = new Date()): Promise<BenchView
     inForce,
     correction: history.waiting ? await correctionView(history.waiting.id) : null,
     newerCertificate: inForce ? await hasNewerCertificate(inForce) : false,
+    pictureWidthPx: picture?.width_px ?? null,
     drawNm: last?.nm ?? EXAMPLE_NM,
     drawnFrom: last ? 'reading' : 'example',
   };

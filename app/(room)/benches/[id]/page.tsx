@@ -16,6 +16,8 @@ import { referencesOf } from '@/lib/server/queries/references';
 import { requireMe } from '@/lib/server/session';
 import { enterBenchConditions } from '../../conditions/actions';
 import { releaseBench, setBenchRule } from '../../references/actions';
+import { LaserCautions } from '@/components/setups/laser-cautions';
+import { BenchHelpers } from '../_components/bench-helpers';
 import { HowKnown } from '../_components/how-known';
 import { SetupList } from '../_components/setup-list';
 import { ValuesInForce } from '../_components/values-in-force';
@@ -116,10 +118,8 @@ export default async function Bench({ params }: Props) {
         mayEnter={can(me, 'conditions.enter')}
         enter={enterBenchConditions}
       />
-      <p className="pb-5 text-small text-ink-2">
-        Laser light can hurt eyes. Block the beam before touching the bench; the laser safety officer and the
-        local rules have the last word.
-      </p>
+      {setup ? <BenchHelpers setup={setup} nm={bench.drawNm} pictureWidthPx={bench.pictureWidthPx} /> : null}
+      <LaserCautions />
     </div>
   );
 }

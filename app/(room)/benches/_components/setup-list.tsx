@@ -22,6 +22,12 @@ function changeText(setup: SetupView): string {
   return setup.changeIsLook ? `${sentence}: more than both ± together.` : `${sentence}.`;
 }
 
+/** QA's word behind a colon; a sentence keeps its own full stop. */
+function remarkText(remark: string): string {
+  if (!remark) return '.';
+  return `: ${remark}${/[.!?]$/.test(remark) ? '' : '.'}`;
+}
+
 /** The setups of a bench, newest first; none of them is ever changed. What never came into force stands below. */
 export function SetupList({ setups, ended, inForceId }: Props) {
   const [all, setAll] = useState(false);
@@ -73,16 +79,18 @@ function InLine({ setup, inForceId }: { setup: SetupView; inForceId: number | nu
           {changeText(setup)} {setup.why} {count(setup.readings, 'reading')}.
         </p>
         <p>
-          {setup.to ? (
+          {setup.to === null ? null : setup.to === setup.from ? (
+            'Corrected from its first moment on. '
+          ) : (
             <>
               In force until <When at={setup.to} />.{' '}
             </>
-          ) : null}
+          )}
           Entered by {setup.enteredBy.name},{' '}
           {setup.approved ? (
             <>
               approved by {setup.approved.by.name}
-              {setup.approved.remark ? `: ${setup.approved.remark}` : ''}.
+              {remarkText(setup.approved.remark)}
             </>
           ) : (
             'before approval was asked for.'

@@ -1,6 +1,7 @@
 'use client';
 
 import { useEffect, useRef, useState } from 'react';
+import { LaserCautionsSheet } from '@/components/setups/laser-cautions-sheet';
 import { Button, buttonClass } from '@/components/ui/button';
 import type { UploadItem } from '@/lib/client/use-uploads';
 import { count } from '@/lib/client/words';
@@ -82,7 +83,7 @@ export function IntakeFoot({ frames, items, said, clear, waiting, closed, onAdd,
         <p className="only-heard" aria-live="polite">
           {slow}
         </p>
-        <p className="text-small text-ink-3">Laser light: keep to the rules of your laser safety officer.</p>
+        <LaserCautionsSheet />
         <p className="mt-1 text-small font-medium text-ink empty:hidden" role="status">
           {said}
         </p>

@@ -1,6 +1,7 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
 import { notFound, redirect } from 'next/navigation';
+import { LaserCautions } from '@/components/setups/laser-cautions';
 import { buttonClass } from '@/components/ui/button';
 import { findBench } from '@/lib/server/queries/benches';
 import { listPlates } from '@/lib/server/queries/plates';
@@ -39,8 +40,7 @@ export default async function NewSetup({ params }: Props) {
       </div>
       <p className="lead mb-4">
         A setup comes into force when QA approves it. It is never changed, and readings made before it keep
-        the values they were made with. Laser light can hurt eyes: block the beam before touching the bench;
-        the laser safety officer and the local rules have the last word.
+        the values they were made with.
       </p>
       <SetupForm
         benchId={id}
@@ -50,6 +50,7 @@ export default async function NewSetup({ params }: Props) {
         plates={plates}
         addSetup={addSetup}
       />
+      <LaserCautions />
     </div>
   );
 }
