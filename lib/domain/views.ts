@@ -417,7 +417,16 @@ export interface May {
 export interface ReviewView {
   frame: FrameView;
   may: May;
-  queue: { at: number; of: number; previousId: number | null; nextId: number | null };
+  queue: {
+    at: number;
+    of: number;
+    previousId: number | null;
+    nextId: number | null;
+    /** The next reading's frame, to load it before it is asked for. */
+    nextFrameId: number | null;
+    /** Why it stands where it stands. */
+    because: string | null;
+  };
   /** Until when a password typed before still signs; null: it must be typed. */
   passwordUntil: Instant | null;
 }

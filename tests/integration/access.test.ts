@@ -15,6 +15,7 @@ import { GET as original } from '@/app/api/frames/[id]/original/route';
 import { GET as photo } from '@/app/api/frames/[id]/photo/route';
 import { GET as scan } from '@/app/api/frames/[id]/scan/route';
 import { POST as previewFit } from '@/app/api/frames/[id]/preview-fit/route';
+import { POST as looking } from '@/app/api/readings/[id]/looking/route';
 import { POST as trials } from '@/app/api/frames/[id]/trials/route';
 import { GET as stack, POST as newStack } from '@/app/api/frames/[id]/stack/route';
 import { GET as overTimeCsv } from '@/app/api/over-time/route';
@@ -65,6 +66,8 @@ const MATRIX: Record<string, Who[]> = {
   sendToReview: ['technician', 'technician2', 'both'],
   acceptReading: ['reviewer', 'reviewer2', 'both'],
   returnReading: ['reviewer', 'reviewer2', 'both'],
+  acceptSheet: ['reviewer', 'reviewer2', 'both'],
+  'POST looking': ['reviewer', 'reviewer2', 'both'],
   addComment: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   askWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   answerWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
@@ -167,6 +170,8 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     acceptReading: () => act(readings.acceptReading({ readingId: nowhere, version: 0, password: 'x' })),
     returnReading: () =>
       act(readings.returnReading({ readingId: nowhere, version: 0, reason: 'take-again' })),
+    acceptSheet: () => act(readings.acceptSheet({ readings: [{ readingId: nowhere, version: 0 }] })),
+    'POST looking': () => route(looking, 'POST', '/api/readings/4000000/looking'),
     addComment: () => act(readings.addComment({ readingId: nowhere, words: 'x' })),
     askWithdrawal: () => act(readings.askWithdrawal({ readingId: nowhere, version: 0, reason: 'x' })),
     answerWithdrawal: () => act(readings.answerWithdrawal({ proposalId: nowhere, answer: 'confirmed' })),
