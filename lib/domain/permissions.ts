@@ -18,7 +18,7 @@ export interface ReadingSubject {
 
 /** One table: action -> roles that hold it. Anything not listed is refused. */
 export const PERMISSIONS = {
-  'frames.see': ['technician', 'reviewer', 'qa', 'admin'],
+  'frames.see': ['technician', 'reviewer', 'qa', 'admin', 'auditor'],
   'frames.upload': ['technician'],
   'readings.fit': ['technician', 'reviewer'],
   'readings.send': ['technician'],
@@ -27,25 +27,26 @@ export const PERMISSIONS = {
   'comments.add': ['technician', 'reviewer', 'qa', 'admin'],
   'readings.withdraw': ['reviewer', 'qa'],
   'outcomes.set': ['reviewer', 'qa'],
-  'lots.see': ['technician', 'reviewer', 'qa', 'admin'],
+  'lots.see': ['technician', 'reviewer', 'qa', 'admin', 'auditor'],
   'lots.open': ['technician', 'admin'],
   'units.add': ['technician', 'admin'],
   'specifications.add': ['admin', 'qa'],
-  'benches.see': ['technician', 'reviewer', 'qa', 'admin'],
+  'benches.see': ['technician', 'reviewer', 'qa', 'admin', 'auditor'],
   'benches.add': ['admin'],
   'setups.add': ['admin'],
   'setups.decide': ['qa'],
   'plates.see': ['technician', 'reviewer', 'qa', 'admin'],
   'plates.change': ['admin', 'qa'],
-  'certificates.see': ['technician', 'reviewer', 'qa', 'admin'],
+  'certificates.see': ['technician', 'reviewer', 'qa', 'admin', 'auditor'],
   'certificates.add': ['admin', 'qa'],
   'sources.add': ['admin', 'qa'],
   'benches.release': ['qa'],
   'conditions.enter': ['technician', 'qa', 'admin'],
-  'charts.see': ['technician', 'reviewer', 'qa', 'admin'],
+  'charts.see': ['technician', 'reviewer', 'qa', 'admin', 'auditor'],
   'people.see': ['admin'],
   'people.change': ['admin'],
-  'log.see': ['qa', 'admin'],
+  'log.see': ['qa', 'admin', 'auditor'],
+  'withdrawals.see': ['reviewer', 'qa', 'auditor'],
 } as const satisfies Record<string, readonly Role[]>;
 
 export type Action = keyof typeof PERMISSIONS;

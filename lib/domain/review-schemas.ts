@@ -41,3 +41,5 @@ export const sheetSchema = z.object({
 });
 
 export const lookingSchema = z.object({ id: z.coerce.number<string>().int().positive() });
+
+export const mailTimingSchema = z.object({ daily: z.boolean() });

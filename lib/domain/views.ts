@@ -548,6 +548,8 @@ export interface OverTimeView {
 /** ---- people and log ---- */
 export interface PersonRow extends Me {
   active: boolean;
+  /** The last moment they may sign in; null: without end. */
+  accessUntil: Instant | null;
   lastSignInAt: Instant | null;
   createdAt: Instant;
 }

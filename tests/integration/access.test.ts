@@ -38,7 +38,18 @@ import {
 
 /** Written by hand from the brief, not derived from the table it checks. */
 const MATRIX: Record<string, Who[]> = {
-  chooseBench: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  chooseBench: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
+  setMailTiming: [
+    'admin',
+    'technician',
+    'technician2',
+    'reviewer',
+    'reviewer2',
+    'both',
+    'qa',
+    'auditor',
+    'nobody',
+  ],
   emptyIntake: ['technician', 'technician2', 'both'],
   addBench: ['admin'],
   addSetup: ['admin'],
@@ -73,15 +84,15 @@ const MATRIX: Record<string, Who[]> = {
   answerWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   setOutcome: ['reviewer', 'reviewer2', 'both', 'qa'],
   'POST upload': ['technician', 'technician2', 'both'],
-  'GET status': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
-  'GET photo': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
-  'GET original': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
-  'GET scan': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  'GET status': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
+  'GET photo': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
+  'GET original': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
+  'GET scan': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
   'POST preview-fit': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'POST trials': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'POST stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
-  'GET over-time': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  'GET over-time': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
 };
 
 let world: World;
@@ -139,6 +150,7 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
   };
   return {
     chooseBench: () => act(room.chooseBench({ benchId: null })),
+    setMailTiming: () => act(room.setMailTiming({ daily: false })),
     emptyIntake: () => act(room.emptyIntake()),
     addBench: () => act(benches.addBench({ name: 'Bench T' })),
     addSetup: () => act(benches.addSetup({ ...SETUP, ...world.plate, benchId: nowhere, afterNumber: 0 })),

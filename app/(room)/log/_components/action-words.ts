@@ -15,6 +15,7 @@ const WORDS: Record<string, string> = {
   'person.add': 'Person added',
   'person.ask-reset': 'Password link asked for',
   'person.change': 'Person changed',
+  'person.mail-timing': 'Mail timing changed',
   'person.reset-password': 'Password changed',
   'person.sign-out-everywhere': 'Sessions ended',
   'reading.accept': 'Reading accepted',
