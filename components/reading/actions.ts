@@ -1,5 +1,6 @@
 /** The server actions a reading's pages are given, as the components see them. */
 import type { z } from 'zod';
+import type { chooseReadingSchema } from '@/lib/domain/repeats';
 import type { commentSchema } from '@/lib/domain/comment';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import type { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
@@ -32,4 +33,5 @@ export type AcceptSheet = (
 ) => Promise<
   ActionAnswer<{ accepted: number; refused: { readingId: number; name: string; message: string }[] }>
 >;
+export type ChooseReading = (input: z.input<typeof chooseReadingSchema>) => Promise<ActionAnswer<unknown>>;
 export type LookAnswer = z.input<typeof acceptSchema>['answers'] extends (infer A)[] | undefined ? A : never;

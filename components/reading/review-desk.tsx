@@ -26,6 +26,7 @@ import { LookAnswers, whyChecksClose, type Answers } from './look-answers';
 import { lacksMoveReason, MoveBox } from './move-box';
 import { OthersLooking } from './others-looking';
 import { OutcomeLine } from './outcome-line';
+import { RepeatFrames, type RepeatsGiven } from './repeat-frames';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
 import { Result } from './result';
@@ -45,6 +46,7 @@ interface Props {
   setOutcome: SetOutcome;
   withdrawal: WithdrawalActions;
   commenting: CommentsGiven;
+  repeating: RepeatsGiven;
   me: PersonRef;
 }
 
@@ -61,6 +63,7 @@ export function ReviewDesk(props: Props) {
     setOutcome,
     withdrawal,
     commenting,
+    repeating,
     me,
   } = props;
   const { frame, may, queue } = view;
@@ -222,6 +225,7 @@ export function ReviewDesk(props: Props) {
               readingMay('accept', r.status) ? `/review/${r.id}` : `/frames/${frame.id}?reading=${r.id}`
             }
           />
+          <RepeatFrames {...repeating} shownId={reading.id} />
           <div className="closing">
             {unit ? (
               <OutcomeLine

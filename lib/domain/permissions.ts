@@ -25,6 +25,7 @@ export const PERMISSIONS = {
   'readings.accept': ['reviewer'],
   'readings.return': ['reviewer'],
   'comments.add': ['technician', 'reviewer', 'qa', 'admin'],
+  'readings.choose': ['reviewer', 'qa'],
   'readings.withdraw': ['reviewer', 'qa'],
   'outcomes.set': ['reviewer', 'qa'],
   'lots.see': ['technician', 'reviewer', 'qa', 'admin', 'auditor'],

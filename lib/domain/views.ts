@@ -424,7 +424,7 @@ export interface ReviewView {
     nextId: number | null;
     /** The next reading's frame, to load it before it is asked for. */
     nextFrameId: number | null;
-    /** Why it stands where it stands. */
+    /** Why it stands where it stands, where nothing else on the page says so. */
     because: string | null;
   };
   /** Until when a password typed before still signs; null: it must be typed. */

@@ -2,6 +2,7 @@
 
 import { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
 import { commentSchema } from '@/lib/domain/comment';
+import { chooseReadingSchema } from '@/lib/domain/repeats';
 import { keepFitSchema, sheetSchema } from '@/lib/domain/review-schemas';
 import { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
 import { addComment as addCommentCommand } from '@/lib/server/commands/add-comment';
@@ -17,6 +18,7 @@ import {
   answerWithdrawal as answerWithdrawalCommand,
   askWithdrawal as askWithdrawalCommand,
 } from '@/lib/server/commands/withdraw-reading';
+import { chooseReading as chooseReadingCommand } from '@/lib/server/commands/choose-reading';
 import { defineAction } from '@/lib/server/define-action';
 
 export const keepFit = defineAction({
@@ -82,4 +84,11 @@ export const acceptSheet = defineAction({
   schema: sheetSchema,
   rate: { burst: 10, perMinute: 10 },
   run: ({ input, context }) => acceptSheetCommand(context, input),
+});
+
+export const chooseReading = defineAction({
+  name: 'chooseReading',
+  permission: 'readings.choose',
+  schema: chooseReadingSchema,
+  run: ({ input, context }) => chooseReadingCommand(context, input),
 });

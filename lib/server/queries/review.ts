@@ -31,7 +31,7 @@ export async function findReview(
       previousId: at > 0 ? queue[at - 1].readingId : null,
       nextId: next?.readingId ?? null,
       nextFrameId: next?.frameId ?? null,
-      because: at < 0 || queue[at].risk === 'rest' ? null : queue[at].because,
+      because: at >= 0 && queue[at].risk === 'new-supplier' ? queue[at].because : null,
     },
     passwordUntil:
       (await passwordCountsUntil(me.id, await getSessionId(), new Date()))?.toISOString() ?? null,

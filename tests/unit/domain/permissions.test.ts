@@ -11,6 +11,7 @@ const MATRIX: Record<Action, string> = {
   'readings.accept': 'r',
   'readings.return': 'r',
   'comments.add': 'trqa',
+  'readings.choose': 'rq',
   'readings.withdraw': 'rq',
   'outcomes.set': 'rq',
   'lots.see': 'trqau',

@@ -43,6 +43,7 @@ const WORDS: Record<string, string> = {
   'source.renew': 'Certificate of a source renewed',
   'specification.add': 'Specification added',
   'specification.retire': 'Specification retired',
+  'unit.choose-reading': 'Reading to be reported chosen',
   'unit.outcome': 'Outcome set',
   'units.add': 'Units added',
 };

@@ -14,12 +14,14 @@ import type { Me, ReviewView } from '@/lib/domain/views';
 import { can } from '@/lib/domain/permissions';
 import { commentsOf, listNames } from '@/lib/server/queries/comments';
 import { findReview } from '@/lib/server/queries/review';
+import { repeatsOf } from '@/lib/server/queries/repeats';
 import { requireMe } from '@/lib/server/session';
 import {
   acceptReading,
   addComment,
   answerWithdrawal,
   askWithdrawal,
+  chooseReading,
   keepFit,
   returnReading,
   setOutcome,
@@ -83,6 +85,11 @@ export default async function ReviewPage({ params, searchParams }: Props) {
         setOutcome={setOutcome}
         withdrawal={{ askWithdrawal, answerWithdrawal }}
         me={{ id: me.id, name: me.name }}
+        repeating={{
+          repeats: view.frame.subject.kind === 'unit' ? await repeatsOf(view.frame.subject.unitId) : null,
+          mayChoose: can(me, 'readings.choose'),
+          chooseReading,
+        }}
         commenting={{
           comments: await commentsOf(view.frame.id),
           people: can(me, 'comments.add') ? await listNames() : [],
