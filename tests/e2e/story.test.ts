@@ -532,6 +532,8 @@ describe('the main job', () => {
       .waitFor();
     await technician.page.goto('/frames?find=U-103&state=returned&days=0');
     await technician.page.getByRole('link', { name: /U-103/ }).first().click();
+    await technician.page.waitForURL(/\/frames\/\d+/);
+    await technician.page.getByRole('heading', { name: 'U-103' }).waitFor();
     await technician.page.getByText('Nearer, and without the lamp.').waitFor();
     await technician.expectAccessible();
   });
@@ -657,7 +659,7 @@ describe('the main job', () => {
       ).toEqual(['paper', 'neutral']);
       await reviewer.expectAccessible();
     }
-  });
+  }, 300_000);
 });
 
 /** Makes Bench 7 the bench in use and waits until frames can be added. */
