@@ -69,7 +69,7 @@ async function waiting({ benchId, find }: QueueFilter): Promise<QueueEntry[]> {
      FROM reading_states st JOIN readings r ON r.id = st.reading_id JOIN frames f ON f.id = st.frame_id
      JOIN benches b ON b.id = st.bench_id LEFT JOIN people p ON p.id = st.sent_by LEFT JOIN lots l ON l.id = r.lot_id
      LEFT JOIN readings first ON first.id = (SELECT MIN(o.id) FROM readings o
-       WHERE o.frame_id = st.frame_id AND o.value_nm IS NOT NULL)
+       WHERE o.frame_id = st.frame_id AND o.setup_id = f.setup_id AND o.value_nm IS NOT NULL)
      WHERE ${parts.join(' AND ')} ORDER BY st.sent_at, st.reading_id LIMIT ${MOST_WAITING}`,
     { waits: WAITS, benchId, find: contains(find) },
   );
