@@ -32,6 +32,7 @@ import {
   defineReferenceCheck,
 } from './reference-check';
 import { defineRegionTrial } from './region-trial';
+import { defineReportableChoice } from './reportable-choice';
 import { defineReturn } from './return';
 import { defineSetting } from './setting';
 import { defineSetup } from './setup';
@@ -83,6 +84,7 @@ export function defineTables(sequelize: Sequelize) {
     readingValues: defineReadingValue(sequelize),
     referenceChecks: defineReferenceCheck(sequelize),
     regionTrials: defineRegionTrial(sequelize),
+    reportableChoices: defineReportableChoice(sequelize),
     returns: defineReturn(sequelize),
     settings: defineSetting(sequelize),
     setups: defineSetup(sequelize),

@@ -17,6 +17,10 @@ export interface Person extends Model<InferAttributes<Person>, InferCreationAttr
   sessionVersion: CreationOptional<number>;
   lastSignInAt: CreationOptional<Date | null>;
   createdAt: Date;
+  /** Notices come together once a day. */
+  mailDaily: CreationOptional<boolean>;
+  /** The last moment they may sign in; null: without end. */
+  accessUntil: CreationOptional<Date | null>;
 }
 
 export function definePerson(sequelize: Sequelize) {
@@ -31,6 +35,8 @@ export function definePerson(sequelize: Sequelize) {
       sessionVersion: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false, defaultValue: 0 },
       lastSignInAt: { type: DataTypes.DATE(3), allowNull: true },
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
+      mailDaily: { type: DataTypes.BOOLEAN, allowNull: false, defaultValue: false },
+      accessUntil: { type: DataTypes.DATE(3), allowNull: true },
     },
     { tableName: 'people', modelName: 'Person' },
   );

@@ -1,7 +1,9 @@
 'use server';
 
 import { cookies } from 'next/headers';
+import { mailTimingSchema } from '@/lib/domain/review-schemas';
 import { chooseBenchSchema, nothingSchema } from '@/lib/domain/schemas';
+import { setMailTiming as setMailTimingCommand } from '@/lib/server/commands/set-mail-timing';
 import { endSessions } from '@/lib/server/commands/change-person';
 import { emptyIntake as emptyIntakeCommand } from '@/lib/server/commands/empty-intake';
 import { defineAction } from '@/lib/server/define-action';
@@ -43,4 +45,11 @@ export const signOutEverywhere = defineAction({
   permission: 'signed-in',
   schema: nothingSchema,
   run: ({ me, context }) => endSessions(context, me.id),
+});
+
+export const setMailTiming = defineAction({
+  name: 'setMailTiming',
+  permission: 'signed-in',
+  schema: mailTimingSchema,
+  run: ({ input, context }) => setMailTimingCommand(context, input),
 });

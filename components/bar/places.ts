@@ -21,7 +21,7 @@ export const AFTER: readonly Place[] = [
 const IN_MENU: readonly (Place & { needs: Action })[] = [
   { href: '/specifications', word: 'Specifications', needs: 'lots.see' },
   { href: '/sources', word: 'Sources', needs: 'charts.see' },
-  { href: '/withdrawals', word: 'Withdrawals', needs: 'readings.withdraw' },
+  { href: '/withdrawals', word: 'Withdrawals', needs: 'withdrawals.see' },
   { href: '/people', word: 'People', needs: 'people.see' },
   { href: '/log', word: 'Log', needs: 'log.see' },
 ];
@@ -29,7 +29,8 @@ const IN_MENU: readonly (Place & { needs: Action })[] = [
 /** Places in the person menu, as the roles allow. The mail page exists only beside the local mail server. */
 export function menuPlaces(me: Me, mailPage: boolean): Place[] {
   const open = IN_MENU.filter((place) => can(me, place.needs)).map(({ href, word }) => ({ href, word }));
-  return mailPage ? [...open, { href: '/mail', word: 'Developer mail' }] : open;
+  const own = [...open, { href: '/your-mail', word: 'Your mail' }];
+  return mailPage ? [...own, { href: '/mail', word: 'Developer mail' }] : own;
 }
 
 export function isAt(path: string, place: Place): boolean {
@@ -41,5 +42,6 @@ export function homeOf(me: Me): string {
   if (me.roles.includes('technician')) return '/intake';
   if (me.roles.includes('reviewer')) return '/review';
   if (me.roles.includes('qa')) return '/over-time';
+  if (me.roles.includes('auditor')) return '/frames';
   return '/benches';
 }

@@ -1,9 +1,10 @@
 /** The server actions a reading's pages are given, as the components see them. */
 import type { z } from 'zod';
+import type { chooseReadingSchema } from '@/lib/domain/repeats';
 import type { commentSchema } from '@/lib/domain/comment';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import type { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
-import type { keepFitSchema } from '@/lib/domain/review-schemas';
+import type { keepFitSchema, sheetSchema } from '@/lib/domain/review-schemas';
 import type { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
 
 export type KeepFit = (
@@ -27,4 +28,10 @@ export interface WithdrawalActions {
 export type AddComment = (
   input: z.input<typeof commentSchema>,
 ) => Promise<ActionAnswer<{ commentId: number; mailed: string[] }>>;
+export type AcceptSheet = (
+  input: z.input<typeof sheetSchema>,
+) => Promise<
+  ActionAnswer<{ accepted: number; refused: { readingId: number; name: string; message: string }[] }>
+>;
+export type ChooseReading = (input: z.input<typeof chooseReadingSchema>) => Promise<ActionAnswer<unknown>>;
 export type LookAnswer = z.input<typeof acceptSchema>['answers'] extends (infer A)[] | undefined ? A : never;

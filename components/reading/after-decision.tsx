@@ -11,11 +11,11 @@ interface Props {
   frame: FrameView;
   done: 'accepted' | 'returned';
   left: number;
-  nextId: number | null;
+  nextHref: string | null;
 }
 
 /** What was decided, what became of the unit, and where the queue goes on. */
-export function AfterDecision({ frame, done, left, nextId }: Props) {
+export function AfterDecision({ frame, done, left, nextHref }: Props) {
   const reading = frame.shown;
   const medium = reading ? MEDIUM_SHORT[reading.medium] : 'air';
   const value = reading && reading.wavelengthNm !== null ? ` at ${valueText(reading)} nm (${medium})` : '';
@@ -33,10 +33,10 @@ export function AfterDecision({ frame, done, left, nextId }: Props) {
         done === 'accepted' ? `${subjectName(frame)} accepted${value}` : `${subjectName(frame)} returned`
       }
       act={
-        nextId ? (
+        nextHref ? (
           <div className="flex flex-wrap gap-3">
             {done === 'accepted' ? <WithdrawLink frame={frame} /> : null}
-            <Link className={buttonClass('main')} href={`/review/${nextId}`}>
+            <Link className={buttonClass('main')} href={nextHref}>
               Next
             </Link>
           </div>

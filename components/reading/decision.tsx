@@ -4,6 +4,7 @@ import { useEffect, useRef, useState, useTransition } from 'react';
 import { Button } from '@/components/ui/button';
 import { Field } from '@/components/ui/field';
 import { callAction } from '@/lib/client/call-action';
+import { useRecentPassword } from '@/lib/client/use-recent-password';
 import type { ReadingView } from '@/lib/domain/views';
 import type { AcceptReading } from './actions';
 import type { Refusal } from './keep-change';
@@ -23,17 +24,6 @@ interface Props {
   onReturn: () => void;
   onAccepted: () => void;
   onRefused: (refusal: Refusal | null) => void;
-}
-
-/** True while a password typed before still signs; turns false by itself. */
-function useRecentPassword(until: string | null): boolean {
-  const [over, setOver] = useState<string | null>(null);
-  useEffect(() => {
-    if (until === null) return undefined;
-    const timer = setTimeout(() => setOver(until), Math.max(0, Date.parse(until) - Date.now()));
-    return () => clearTimeout(timer);
-  }, [until]);
-  return until !== null && over !== until;
 }
 
 /** Return and Accept, apart from each other. Accepting signs, so it asks for the password or a recent one. */

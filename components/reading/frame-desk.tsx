@@ -19,6 +19,7 @@ import { boundsOf, PhotoPart, StageNote, StagePart, useBounds, usePicked } from 
 import { Findings } from './findings';
 import { KeepChange, type Refusal } from './keep-change';
 import { KeysSheet } from './keys-sheet';
+import { RepeatFrames, type RepeatsGiven } from './repeat-frames';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
 import { Result } from './result';
@@ -37,6 +38,7 @@ interface Props {
   enterConditions: EnterFrameConditions;
   withdrawal: WithdrawalActions;
   commenting: CommentsGiven;
+  repeating: RepeatsGiven;
   me: PersonRef;
 }
 
@@ -49,6 +51,7 @@ export function FrameDesk({
   enterConditions,
   withdrawal,
   commenting,
+  repeating,
   me,
 }: Props) {
   const reading = frame.shown;
@@ -186,6 +189,7 @@ export function FrameDesk({
             hrefOf={(r) => `/frames/${frame.id}?reading=${r.id}`}
           />
         ) : null}
+        {reading ? <RepeatFrames {...repeating} shownId={reading.id} /> : null}
         {reading && may.send ? (
           <SendBox reading={reading} changed={desk.change !== null} sendToReview={sendToReview} />
         ) : null}

@@ -1,3 +1,4 @@
+import Link from 'next/link';
 import type { ReactNode } from 'react';
 import { When } from '@/components/figures/when';
 import type { FrameView } from '@/lib/domain/views';
@@ -15,7 +16,10 @@ export function RecordBar({ frame, middle }: { frame: FrameView; middle?: ReactN
       <div className="facts">
         <span className="opt truncate">{frame.uploadedBy.name}</span>
         <span>
-          <When at={frame.receivedAt} /> · {frame.bench.name}, setup {frame.setupNumber}
+          <When at={frame.receivedAt} /> ·{' '}
+          <Link className="link inline-block min-h-6" href={`/benches/${frame.bench.id}`} prefetch={false}>
+            {frame.bench.name}, setup {frame.setupNumber}
+          </Link>
         </span>
       </div>
     </div>

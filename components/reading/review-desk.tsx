@@ -24,7 +24,9 @@ import { KeepChange, type Refusal } from './keep-change';
 import { KeysSheet } from './keys-sheet';
 import { LookAnswers, whyChecksClose, type Answers } from './look-answers';
 import { lacksMoveReason, MoveBox } from './move-box';
+import { OthersLooking } from './others-looking';
 import { OutcomeLine } from './outcome-line';
+import { RepeatFrames, type RepeatsGiven } from './repeat-frames';
 import { ReadingsOfFrame } from './readings-of-frame';
 import { Further } from './further';
 import { Result } from './result';
@@ -34,6 +36,9 @@ import { SaidResult } from './said-result';
 
 interface Props {
   view: ReviewView;
+  /** The neighbours in the part of the queue that is worked through. */
+  nextHref: string | null;
+  previousHref: string | null;
   reading: ReadingView;
   keepFit: KeepFit;
   acceptReading: AcceptReading;
@@ -41,13 +46,26 @@ interface Props {
   setOutcome: SetOutcome;
   withdrawal: WithdrawalActions;
   commenting: CommentsGiven;
+  repeating: RepeatsGiven;
   me: PersonRef;
 }
 
 /** One reading under a second pair of eyes. */
 export function ReviewDesk(props: Props) {
-  const { view, reading, keepFit, acceptReading, returnReading, setOutcome, withdrawal, commenting, me } =
-    props;
+  const {
+    view,
+    nextHref,
+    previousHref,
+    reading,
+    keepFit,
+    acceptReading,
+    returnReading,
+    setOutcome,
+    withdrawal,
+    commenting,
+    repeating,
+    me,
+  } = props;
   const { frame, may, queue } = view;
   const router = useRouter();
   const bounds = useBounds(frame);
@@ -69,11 +87,11 @@ export function ReviewDesk(props: Props) {
     facts: frame.facts,
     mayFit,
   });
-  const go = (id: number | null) => id !== null && router.push(`/review/${id}`);
+  const go = (href: string | null) => href !== null && router.push(href);
   const keys = useShortcuts({
     ...regionKeys(desk, mayFit, picked),
-    n: () => go(queue.nextId),
-    p: () => go(queue.previousId),
+    n: () => go(nextHref),
+    p: () => go(previousHref),
     '?': () => setSheet(true),
   });
   const settle = (how: 'accepted' | 'returned') => {
@@ -107,7 +125,7 @@ export function ReviewDesk(props: Props) {
               frame={frame}
               done={done}
               left={Math.max(0, queue.of - (open ? 1 : 0))}
-              nextId={queue.nextId}
+              nextHref={nextHref}
             />
           ) : null}
         </div>
@@ -146,6 +164,8 @@ export function ReviewDesk(props: Props) {
         </section>
         <StagePart reading={reading} desk={desk} mayFit={mayFit} picked={picked} onPick={pick} />
         <section className="right" aria-label="Result and decision">
+          {open && queue.because ? <p className="mb-2 text-small text-ink-2">{queue.because}</p> : null}
+          {open ? <OthersLooking readingId={reading.id} /> : null}
           {open ? null : <FrameStory frame={frame} />}
           {done === null ? (
             <WithdrawBox reading={reading} me={me} mayWithdraw={may.withdraw} {...withdrawal} />
@@ -205,6 +225,7 @@ export function ReviewDesk(props: Props) {
               readingMay('accept', r.status) ? `/review/${r.id}` : `/frames/${frame.id}?reading=${r.id}`
             }
           />
+          <RepeatFrames {...repeating} shownId={reading.id} />
           <div className="closing">
             {unit ? (
               <OutcomeLine

@@ -11,6 +11,7 @@ export const LIMITS = {
   unitsAtOnce: 5000,
   wordsLength: 1000,
   trialsAtOnce: 100,
+  sheetReadings: 60,
   /** A password typed to sign counts for further signatures this long. */
   passwordMinutes: 5,
 } as const;

@@ -30,3 +30,16 @@ export const keepFitSchema = refitSchema.extend({
   /** Why the value moves; '' for none yet. */
   moveReason: z.string().trim().max(LIMITS.wordsLength).default(''),
 });
+
+/** Clean readings signed together. */
+export const sheetSchema = z.object({
+  readings: z
+    .array(z.object({ readingId: id, version: z.number().int().min(0) }))
+    .min(1, 'Nothing is chosen.')
+    .max(LIMITS.sheetReadings),
+  password: z.string().max(LIMITS.passwordLongest).default(''),
+});
+
+export const lookingSchema = z.object({ id: z.coerce.number<string>().int().positive() });
+
+export const mailTimingSchema = z.object({ daily: z.boolean() });

@@ -1,5 +1,8 @@
-/** The four roles. A person may hold several; what a person may do is the union, never less. */
-export const ROLES = ['technician', 'reviewer', 'qa', 'admin'] as const;
+/**
+ * A person may hold several roles; what they may do is the union, never less. An auditor holds no other, only reads,
+ * and has a last day.
+ */
+export const ROLES = ['technician', 'reviewer', 'qa', 'admin', 'auditor'] as const;
 export type Role = (typeof ROLES)[number];
 
 export const ROLE_WORDS: Record<Role, string> = {
@@ -7,4 +10,5 @@ export const ROLE_WORDS: Record<Role, string> = {
   reviewer: 'Reviewer',
   qa: 'QA',
   admin: 'Admin',
+  auditor: 'Auditor',
 };

@@ -181,15 +181,23 @@ export const personSchema = z.object({
   email: emailSchema,
   roles: z.array(z.enum(ROLES)).min(1, 'Choose at least one role.'),
 });
-export const newPersonSchema = personSchema.extend({ password: passwordSchema });
-export const personChangeSchema = z.object({
-  personId: id,
-  roles: z.array(z.enum(ROLES)),
-  active: z.boolean(),
-});
+/** Calendar day in UTC at whose end the access ends; null: without end. */
+const lastDay = z.iso.date('A last day looks like 2027-03-01.').nullable().default(null);
+const passFits = ({ roles, lastDay: day }: { roles: readonly string[]; lastDay: string | null }) =>
+  !roles.includes('auditor') || (roles.length === 1 && day !== null);
+const PASS = {
+  path: ['roles'],
+  message: 'An auditor holds no other role and has a last day.',
+};
+export const newPersonSchema = personSchema
+  .extend({ password: passwordSchema, lastDay })
+  .refine(passFits, PASS);
+export const personChangeSchema = z
+  .object({ personId: id, roles: z.array(z.enum(ROLES)), active: z.boolean(), lastDay })
+  .refine(passFits, PASS);
 export const forgottenSchema = z.object({ email: emailSchema });
 export const resetSchema = z.object({ token: z.string().min(20).max(200), password: passwordSchema });
-export const firstAdminSchema = newPersonSchema.omit({ roles: true });
+export const firstAdminSchema = personSchema.omit({ roles: true }).extend({ password: passwordSchema });
 export const retireSchema = z.object({ id });
 export const chooseBenchSchema = z.object({ benchId: id.nullable() });
 /** For what takes nothing in. */

@@ -419,7 +419,16 @@ export interface May {
 export interface ReviewView {
   frame: FrameView;
   may: May;
-  queue: { at: number; of: number; previousId: number | null; nextId: number | null };
+  queue: {
+    at: number;
+    of: number;
+    previousId: number | null;
+    nextId: number | null;
+    /** The next reading's frame, to load it before it is asked for. */
+    nextFrameId: number | null;
+    /** Why it stands where it stands, where nothing else on the page says so. */
+    because: string | null;
+  };
   /** Until when a password typed before still signs; null: it must be typed. */
   passwordUntil: Instant | null;
 }
@@ -541,6 +550,8 @@ export interface OverTimeView {
 /** ---- people and log ---- */
 export interface PersonRow extends Me {
   active: boolean;
+  /** The last moment they may sign in; null: without end. */
+  accessUntil: Instant | null;
   lastSignInAt: Instant | null;
   createdAt: Instant;
 }

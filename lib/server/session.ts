@@ -30,8 +30,9 @@ export async function personOfToken(token: string | undefined): Promise<Me | nul
   if (!claims) return null;
   const rows = await select<{ id: number; name: string; email: string; role: Role | null }>(
     `SELECT p.id, p.name, p.email, r.role FROM people p LEFT JOIN person_roles r ON r.person_id = p.id
-     WHERE p.id = :id AND p.active AND p.session_version = :version`,
-    claims,
+     WHERE p.id = :id AND p.active AND p.session_version = :version
+       AND (p.access_until IS NULL OR p.access_until > :now)`,
+    { ...claims, now: new Date() },
   );
   if (!rows.length) return null;
   const { id, name, email } = rows[0];

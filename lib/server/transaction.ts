@@ -4,14 +4,14 @@ import { AppError } from '@/lib/domain/errors';
 import { appendAudit, type AuditEntry } from './audit';
 import type { CommandContext } from './context';
 import { db } from './db';
-import { nudgeOutbox } from './outbox';
+import { nudgeOutbox, postMail, type NewMail } from './outbox';
 
 export interface Work {
   transaction: Transaction;
   /** Kept until the end: the log's head is the last row locked. */
   audit(entry: AuditEntry): void;
   /** Commits with the change and is sent after it. */
-  mail(mail: { to: string; subject: string; text: string }): Promise<void>;
+  mail(mail: NewMail): Promise<void>;
 }
 
 const TRIES = 5;
@@ -29,20 +29,16 @@ export async function inTransaction<T>(context: CommandContext, work: (w: Work) 
 }
 
 async function once<T>(context: CommandContext, work: (w: Work) => Promise<T>): Promise<T> {
-  const { sequelize, tables } = db();
+  const { sequelize } = db();
   let mails = 0;
   const value = await sequelize.transaction(async (transaction) => {
     const entries: AuditEntry[] = [];
     const answer = await work({
       transaction,
       audit: (entry) => void entries.push(entry),
-      mail: async ({ to, subject, text }) => {
+      mail: async (mail) => {
         mails += 1;
-        const at = context.at;
-        await tables.outbox.create(
-          { toAddress: to, subject, bodyText: text, createdAt: at, nextTryAt: at },
-          { transaction },
-        );
+        await postMail(mail, context.at, transaction);
       },
     });
     await appendAudit(context, entries, transaction);

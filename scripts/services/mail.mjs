@@ -42,13 +42,31 @@ async function keep(folder, id, raw, mail) {
   await rename(`${file}.new`, file);
 }
 
-/** Subject, text and links of a plain-text mail (RFC 5322, 2045, 2047), as this product sends them. */
-export function readMail(raw) {
-  const text = raw.toString('latin1');
+/** Headers and body of a mail or of one part of it (RFC 5322). */
+function partOf(text) {
   const split = text.indexOf('\r\n\r\n');
   const head = text.slice(0, split).replace(/\r\n[ \t]+/g, ' ');
   const header = (name) => head.match(new RegExp(`^${name}:\\s*(.*)$`, 'im'))?.[1].trim() ?? '';
-  const body = decodeBody(text.slice(split + 4), header('Content-Transfer-Encoding').toLowerCase());
+  return { header, body: text.slice(split + 4) };
+}
+
+/** The plain text of a mail: its only part, or the one beside the page of the same words (RFC 2046, 5.1.4). */
+function plainPart(mail) {
+  const boundary = /^multipart\/.*boundary="?([^";]+)"?/i.exec(mail.header('Content-Type'))?.[1];
+  if (!boundary) return mail;
+  const parts = mail.body
+    .split(`--${boundary}`)
+    .slice(1, -1)
+    .map((part) => partOf(part.replace(/^\r\n/, '')));
+  return parts.find((part) => /^text\/plain/i.test(part.header('Content-Type'))) ?? mail;
+}
+
+/** Subject, text and links of a mail (RFC 5322, 2045, 2047), as this product sends them. */
+export function readMail(raw) {
+  const mail = partOf(raw.toString('latin1'));
+  const { header } = mail;
+  const plain = plainPart(mail);
+  const body = decodeBody(plain.body, plain.header('Content-Transfer-Encoding').toLowerCase()).trimEnd();
   return {
     subject: decodeWords(header('Subject')),
     at: new Date(header('Date') || Date.now()).toISOString(),

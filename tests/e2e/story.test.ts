@@ -353,7 +353,11 @@ describe('the main job', () => {
     await page.getByText('Live; the server confirms on keeping').waitFor();
     await page.waitForLoadState('networkidle');
     const asked: string[] = [];
-    const listen = (request: Request) => asked.push(`${request.method()} ${new URL(request.url()).pathname}`);
+    // That the page is open is said every ten seconds; it is not about the change.
+    const listen = (request: Request) => {
+      const { pathname } = new URL(request.url());
+      if (!pathname.endsWith('/looking')) asked.push(`${request.method()} ${pathname}`);
+    };
     page.on('request', listen);
     const change = page.getByRole('region', { name: 'Before and after the change' });
     const centres = change.getByRole('row', { name: /^centres/ });
@@ -372,11 +376,48 @@ describe('the main job', () => {
     page.off('request', listen);
     await reviewer.expectAccessible();
     await page.getByRole('button', { name: 'Drop the change' }).click();
+    await change.waitFor({ state: 'detached' });
+
+    // By keys alone: a jaw moves, the result is read aloud, undo and redo, a tenth of a step, the sheet of keys.
+    const said = page.locator('[data-said=result]');
+    await page.getByRole('slider', { name: 'Right jaw' }).focus();
+    await page.keyboard.press('Shift+ArrowLeft');
+    await said.filter({ hasText: /plus or minus .* nanometres in air.* (up|down) by .* u\./ }).waitFor();
+    await page.keyboard.press('Control+z');
+    await change.waitFor({ state: 'detached' });
+    await page.keyboard.press('Control+Shift+z');
+    await change.getByText(/nm, .* u$/).waitFor();
+    await page.getByRole('button', { name: 'Undo' }).click();
+    await change.waitFor({ state: 'detached' });
+    const length = page.getByLabel(/^Length/);
+    const before = Number((await length.inputValue()).replace('−', '-'));
+    await length.focus();
+    await page.keyboard.press('Alt+ArrowUp');
+    const after = Number((await length.inputValue()).replace('−', '-'));
+    expect(Math.abs(after - before)).toBeLessThan(0.65);
+    await change.waitFor();
+    await page.getByRole('button', { name: 'Drop the change' }).click();
+    await page.getByRole('button', { name: 'Keys' }).first().click();
+    await page.getByRole('checkbox', { name: 'Single-letter keys are on' }).uncheck();
+    await page.getByRole('button', { name: 'Close' }).click();
+    await page.locator('h1').first().click();
+    await page.keyboard.press(']');
+    expect(await change.count()).toBe(0);
+    await page.keyboard.press('?');
+    await page.getByRole('checkbox', { name: 'Single-letter keys are on' }).check();
+    await page.getByRole('button', { name: 'Close' }).click();
+
+    await page.getByPlaceholder(/A word on this reading/).fill('Seen at the bench, @QA');
+    await page.getByRole('button', { name: 'QA Q' }).click();
+    await page.getByRole('button', { name: 'Say it' }).click();
+    await page.getByText('QA Q gets a mail').waitFor();
 
     await setField(page, /^Height/, '90');
     await page.getByRole('button', { name: 'Keep this region' }).click();
     await page.waitForURL((url) => url.href !== frameUrl && /\/review\/\d+/.test(url.pathname));
     await page.getByText('Readings of this frame').waitFor();
+    const why = page.getByLabel('Why the value was moved');
+    if (await why.isVisible()) await why.fill('The lower rows are dim.');
 
     await answerLooks(reviewer);
     await page.getByRole('button', { name: 'Accept', exact: true }).click();
@@ -451,8 +492,10 @@ describe('the main job', () => {
     await second.goto(first.url());
     await answerLooks(reviewer);
     await answerLooks(both);
+    // The first has signed a moment ago: the page says that this password still counts, and asks for none.
+    await first.getByText(/the password you typed counts until/).waitFor();
     await first.getByRole('button', { name: 'Accept', exact: true }).click();
-    await first.getByLabel('Your password signs it').fill(PASSWORD);
+    expect(await first.getByLabel('Your password signs it').count()).toBe(0);
     await second.getByRole('button', { name: 'Accept', exact: true }).click();
     await second.getByLabel('Your password signs it').fill(PASSWORD);
     await first.getByRole('button', { name: 'Sign and accept' }).click();
@@ -489,6 +532,8 @@ describe('the main job', () => {
       .waitFor();
     await technician.page.goto('/frames?find=U-103&state=returned&days=0');
     await technician.page.getByRole('link', { name: /U-103/ }).first().click();
+    await technician.page.waitForURL(/\/frames\/\d+/);
+    await technician.page.getByRole('heading', { name: 'U-103' }).waitFor();
     await technician.page.getByText('Nearer, and without the lamp.').waitFor();
     await technician.expectAccessible();
   });
@@ -506,6 +551,51 @@ describe('the main job', () => {
     await page.goto('/log');
     await page.getByText('Reading accepted').filter({ visible: true }).first().waitFor();
     await qa.expectAccessible();
+  });
+
+  test('an accepted reading is withdrawn by two people and leaves the chart; its history tells it', async () => {
+    const { page } = reviewer;
+    await page.goto('/frames?find=U-101&days=all&state=accepted');
+    await page.getByRole('link', { name: /U-101/ }).first().click();
+    await page.waitForURL(/\/frames\/\d+/);
+    await page.getByRole('button', { name: 'Withdraw…' }).click();
+    await page.getByLabel('Why it is to be withdrawn').fill('The plate was another one.');
+    await page.getByLabel('Your password signs it').fill(PASSWORD);
+    await page.getByRole('button', { name: 'Ask to withdraw it' }).click();
+    await page.getByText('Another reviewer or QA confirms it').waitFor();
+    await reviewer.expectAccessible();
+
+    await qa.page.goto('/withdrawals');
+    await qa.expectAccessible();
+    await qa.page.getByRole('link', { name: 'U-101' }).click();
+    await qa.page.getByRole('button', { name: 'Confirm…' }).click();
+    await qa.page.getByLabel('Your password signs it').fill(PASSWORD);
+    await qa.page.getByRole('button', { name: 'Withdraw it' }).click();
+    await qa.page.getByText('Withdrawn by Reviewer R and QA Q.').waitFor();
+    await qa.page.getByRole('link', { name: 'The whole history' }).click();
+    await qa.page.getByText('Withdrawn, confirmed by a second person').waitFor();
+    await qa.page.getByText('Region tried, none kept').first().waitFor();
+    await qa.expectAccessible();
+    await qa.page.goto('/over-time');
+    await qa.page.getByRole('heading', { name: 'Withdrawn, not in the limits' }).waitFor();
+  });
+
+  test('the queue says why each reading stands where it stands; clean ones are signed together', async () => {
+    const { page } = reviewer;
+    await page.goto('/review/queue');
+    await page.getByRole('heading', { name: 'To review' }).waitFor();
+    await reviewer.expectAccessible();
+    await page.goto('/review/sheet');
+    await page.getByRole('heading', { name: 'Contact sheet' }).waitFor();
+    await reviewer.expectAccessible();
+    const sign = page.getByRole('button', { name: /^Sign and accept/ });
+    if (await sign.count()) {
+      for (const tick of await page.getByRole('checkbox', { name: /^Accept / }).all()) await tick.focus();
+      const password = page.getByLabel('Your password signs them');
+      if (await password.count()) await password.fill(PASSWORD);
+      await sign.click();
+      await page.getByText(/readings? accepted/).waitFor();
+    }
   });
 
   test('roles end at their doors, on pages and on routes', async () => {
@@ -537,7 +627,16 @@ describe('the main job', () => {
   });
 
   test('phone and tablet, paper and Goggles keep everything on the page', async () => {
-    const places = ['/frames?days=0', '/review', '/over-time', '/benches', '/lots'];
+    const places = [
+      '/frames?days=0',
+      '/review',
+      '/review/queue',
+      '/withdrawals',
+      '/your-mail',
+      '/over-time',
+      '/benches',
+      '/lots',
+    ];
     for (const width of [1180, 390, 320]) {
       await reviewer.page.setViewportSize({ width, height: 820 });
       for (const place of places) {
@@ -560,7 +659,7 @@ describe('the main job', () => {
       ).toEqual(['paper', 'neutral']);
       await reviewer.expectAccessible();
     }
-  });
+  }, 300_000);
 });
 
 /** Makes Bench 7 the bench in use and waits until frames can be added. */

@@ -15,6 +15,7 @@ import { GET as original } from '@/app/api/frames/[id]/original/route';
 import { GET as photo } from '@/app/api/frames/[id]/photo/route';
 import { GET as scan } from '@/app/api/frames/[id]/scan/route';
 import { POST as previewFit } from '@/app/api/frames/[id]/preview-fit/route';
+import { POST as looking } from '@/app/api/readings/[id]/looking/route';
 import { POST as trials } from '@/app/api/frames/[id]/trials/route';
 import { GET as stack, POST as newStack } from '@/app/api/frames/[id]/stack/route';
 import { GET as overTimeCsv } from '@/app/api/over-time/route';
@@ -37,7 +38,18 @@ import {
 
 /** Written by hand from the brief, not derived from the table it checks. */
 const MATRIX: Record<string, Who[]> = {
-  chooseBench: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  chooseBench: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
+  setMailTiming: [
+    'admin',
+    'technician',
+    'technician2',
+    'reviewer',
+    'reviewer2',
+    'both',
+    'qa',
+    'auditor',
+    'nobody',
+  ],
   emptyIntake: ['technician', 'technician2', 'both'],
   addBench: ['admin'],
   addSetup: ['admin'],
@@ -48,7 +60,16 @@ const MATRIX: Record<string, Who[]> = {
   takePlateOff: ['admin', 'qa'],
   putPlateBack: ['admin', 'qa'],
   'POST certificates': ['admin', 'qa'],
-  'GET certificates': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  'GET certificates': [
+    'admin',
+    'technician',
+    'technician2',
+    'reviewer',
+    'reviewer2',
+    'both',
+    'qa',
+    'auditor',
+  ],
   addSpecification: ['admin', 'qa'],
   retireSpecification: ['admin', 'qa'],
   openLot: ['admin', 'technician', 'technician2', 'both'],
@@ -65,20 +86,23 @@ const MATRIX: Record<string, Who[]> = {
   sendToReview: ['technician', 'technician2', 'both'],
   acceptReading: ['reviewer', 'reviewer2', 'both'],
   returnReading: ['reviewer', 'reviewer2', 'both'],
+  acceptSheet: ['reviewer', 'reviewer2', 'both'],
+  'POST looking': ['reviewer', 'reviewer2', 'both'],
+  chooseReading: ['reviewer', 'reviewer2', 'both', 'qa'],
   addComment: ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
   askWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   answerWithdrawal: ['reviewer', 'reviewer2', 'both', 'qa'],
   setOutcome: ['reviewer', 'reviewer2', 'both', 'qa'],
   'POST upload': ['technician', 'technician2', 'both'],
-  'GET status': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
-  'GET photo': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
-  'GET original': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
-  'GET scan': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  'GET status': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
+  'GET photo': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
+  'GET original': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
+  'GET scan': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
   'POST preview-fit': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'GET stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'POST trials': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
   'POST stack': ['technician', 'technician2', 'reviewer', 'reviewer2', 'both'],
-  'GET over-time': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa'],
+  'GET over-time': ['admin', 'technician', 'technician2', 'reviewer', 'reviewer2', 'both', 'qa', 'auditor'],
 };
 
 let world: World;
@@ -136,6 +160,7 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
   };
   return {
     chooseBench: () => act(room.chooseBench({ benchId: null })),
+    setMailTiming: () => act(room.setMailTiming({ daily: false })),
     emptyIntake: () => act(room.emptyIntake()),
     addBench: () => act(benches.addBench({ name: 'Bench T' })),
     addSetup: () => act(benches.addSetup({ ...SETUP, ...world.plate, benchId: nowhere, afterNumber: 0 })),
@@ -167,6 +192,9 @@ function calls(who: Who | null): Record<string, () => Promise<Outcome>> {
     acceptReading: () => act(readings.acceptReading({ readingId: nowhere, version: 0, password: 'x' })),
     returnReading: () =>
       act(readings.returnReading({ readingId: nowhere, version: 0, reason: 'take-again' })),
+    acceptSheet: () => act(readings.acceptSheet({ readings: [{ readingId: nowhere, version: 0 }] })),
+    'POST looking': () => route(looking, 'POST', '/api/readings/4000000/looking'),
+    chooseReading: () => act(readings.chooseReading({ readingId: nowhere, reason: 'x' })),
     addComment: () => act(readings.addComment({ readingId: nowhere, words: 'x' })),
     askWithdrawal: () => act(readings.askWithdrawal({ readingId: nowhere, version: 0, reason: 'x' })),
     answerWithdrawal: () => act(readings.answerWithdrawal({ proposalId: nowhere, answer: 'confirmed' })),

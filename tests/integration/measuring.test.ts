@@ -10,7 +10,8 @@ import { sendReading } from '@/lib/server/commands/send-reading';
 import { PRODUCT } from '@/lib/server/context';
 import { findFrame, intakeFrames, listFrames, mayFor } from '@/lib/server/queries/frames';
 import { overTime } from '@/lib/server/queries/over-time';
-import { findReview, reviewQueue } from '@/lib/server/queries/review';
+import { findReview } from '@/lib/server/queries/review';
+import { reviewQueue } from '@/lib/server/queries/review-queue';
 import { BENCH_SCENE, fringes } from './support/pictures';
 import { actAs, callRoute } from './support/session';
 import { NOW, PASSWORD, as, closeWorld, makeWorld, type World } from './support/world';
@@ -163,7 +164,7 @@ describe('with another region', () => {
 });
 
 test('the queue, the review page, acceptance and the chart see the same reading', async () => {
-  const queue = await reviewQueue(null);
+  const queue = await reviewQueue();
   expect(queue).toHaveLength(1);
   const [{ readingId }] = queue;
   const review = await findReview(world.people.reviewer, readingId);

@@ -98,6 +98,8 @@ beforeAll(async () => {
   const anchor = { day: '2026-11-19', lastId: 1, hash: '', madeAt: new Date() };
   const [first] = await rows<{ hash: string }>('SELECT hash FROM audit_rows WHERE id = 1');
   await db().tables.auditAnchors.create({ ...anchor, hash: first.hash });
+  const choice = { unitId: world.unitIds[0], readingId, reason: 'x', chosenBy: world.people.qa.id };
+  await db().tables.reportableChoices.create({ ...choice, chosenAt: new Date() });
   await db().tables.moveReasons.create({
     readingId,
     words: 'invented',
@@ -143,6 +145,7 @@ const IMMUTABLE: [table: string, column: string][] = [
   ['comments', 'words'],
   ['comment_mentions', 'person_id'],
   ['audit_anchors', 'hash'],
+  ['reportable_choices', 'reason'],
 ];
 
 describe.each(IMMUTABLE)('%s', (table, column) => {

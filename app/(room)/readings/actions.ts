@@ -2,10 +2,14 @@
 
 import { acceptSchema, outcomeSchema, returnSchema, sendSchema } from '@/lib/domain/schemas';
 import { commentSchema } from '@/lib/domain/comment';
-import { keepFitSchema } from '@/lib/domain/review-schemas';
+import { chooseReadingSchema } from '@/lib/domain/repeats';
+import { keepFitSchema, sheetSchema } from '@/lib/domain/review-schemas';
 import { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
 import { addComment as addCommentCommand } from '@/lib/server/commands/add-comment';
-import { acceptReading as acceptReadingCommand } from '@/lib/server/commands/accept-reading';
+import {
+  acceptReading as acceptReadingCommand,
+  acceptSheet as acceptSheetCommand,
+} from '@/lib/server/commands/accept-reading';
 import { keepFit as keepFitCommand } from '@/lib/server/commands/keep-fit';
 import { returnReading as returnReadingCommand } from '@/lib/server/commands/return-reading';
 import { sendReadings } from '@/lib/server/commands/send-reading';
@@ -14,6 +18,7 @@ import {
   answerWithdrawal as answerWithdrawalCommand,
   askWithdrawal as askWithdrawalCommand,
 } from '@/lib/server/commands/withdraw-reading';
+import { chooseReading as chooseReadingCommand } from '@/lib/server/commands/choose-reading';
 import { defineAction } from '@/lib/server/define-action';
 
 export const keepFit = defineAction({
@@ -71,4 +76,19 @@ export const addComment = defineAction({
   schema: commentSchema,
   rate: { burst: 20, perMinute: 20 },
   run: ({ input, context }) => addCommentCommand(context, input),
+});
+
+export const acceptSheet = defineAction({
+  name: 'acceptSheet',
+  permission: 'readings.accept',
+  schema: sheetSchema,
+  rate: { burst: 10, perMinute: 10 },
+  run: ({ input, context }) => acceptSheetCommand(context, input),
+});
+
+export const chooseReading = defineAction({
+  name: 'chooseReading',
+  permission: 'readings.choose',
+  schema: chooseReadingSchema,
+  run: ({ input, context }) => chooseReadingCommand(context, input),
 });

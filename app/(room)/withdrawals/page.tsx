@@ -11,7 +11,7 @@ export const metadata: Metadata = { title: 'Withdrawals' };
 
 /** What was asked to be withdrawn and waits for a second person, and what became of the rest. */
 export default async function Withdrawals() {
-  await requireMe('readings.withdraw');
+  await requireMe('withdrawals.see');
   const rows = await listWithdrawals();
   return (
     <div className="page pb-10">

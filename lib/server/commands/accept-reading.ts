@@ -3,6 +3,7 @@ import type { z } from 'zod';
 import { AppError } from '@/lib/domain/errors';
 import { READING_STEPS } from '@/lib/domain/life-cycle';
 import type { ReadingResult } from '@/lib/domain/reading-result';
+import type { sheetSchema } from '@/lib/domain/review-schemas';
 import type { acceptSchema } from '@/lib/domain/schemas';
 import { whyNotAcceptable } from '../acceptability';
 import type { CommandContext } from '../context';
@@ -38,7 +39,15 @@ export async function acceptReading(
   if (barred) throw new AppError('NOT_ALLOWED', barred);
   if (facts.version !== wanted.version) throw await changedMeanwhile('reading', wanted.readingId);
   await requireAcceptable(context, facts, wanted.answers);
-  const passwordAt = await requireOwnPassword(context, wanted.password);
+  return sign(context, wanted, await requireOwnPassword(context, wanted.password));
+}
+
+/** The signature itself, once the person has shown who they are; everything is looked at again under the lock. */
+async function sign(
+  context: CommandContext,
+  wanted: Acceptance,
+  passwordAt: Date,
+): Promise<{ readingId: number; version: number }> {
   const { tables } = db();
   return inTransaction(context, async (work) => {
     const { transaction } = work;
@@ -87,6 +96,45 @@ export async function acceptReading(
     await recordReferenceCheck(work, context, now.readingId);
     return { readingId: now.readingId, version: wanted.version + 1 };
   });
+}
+
+/** Of one reading of a contact sheet: accepted, or why not. */
+export interface SheetRefusal {
+  readingId: number;
+  name: string;
+  message: string;
+}
+
+/**
+ * Signs many clean readings, each in a transaction of its own with a signature of its own. Clean is a value within
+ * its limits without a look or a stop. What cannot be signed is told by name and holds up none of the others.
+ */
+export async function acceptSheet(
+  context: CommandContext,
+  { readings, password }: z.output<typeof sheetSchema>,
+): Promise<{ accepted: number; refused: SheetRefusal[] }> {
+  const passwordAt = await requireOwnPassword(context, password);
+  const refused: SheetRefusal[] = [];
+  let accepted = 0;
+  for (const { readingId, version } of readings) {
+    let name = `Reading ${readingId}`;
+    try {
+      const facts = await findReading(readingId);
+      name = readingText(facts);
+      const barred = await whyBarred(context.actor.id, facts);
+      if (barred) throw new AppError('NOT_ALLOWED', barred);
+      if (facts.version !== version) throw await changedMeanwhile('reading', readingId);
+      await requireAcceptable(context, facts, []);
+      if (facts.verdict !== 'within')
+        throw new AppError('WRONG_STATE', 'It is not within its limits, so it is looked at on its own page.');
+      await sign(context, { readingId, version, password, answers: [] }, passwordAt);
+      accepted += 1;
+    } catch (problem) {
+      if (!(problem instanceof AppError) || problem.status >= 500) throw problem;
+      refused.push({ readingId, name, message: problem.message });
+    }
+  }
+  return { accepted, refused };
 }
 
 async function requireAcceptable(

@@ -35,6 +35,7 @@ export async function addComment(
       await work.mail({
         to: email,
         subject: `${context.actor.name} names you: ${readingText(facts)}`,
+        notice: true,
         text: [
           `Hello ${name},`,
           '',

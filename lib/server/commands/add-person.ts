@@ -12,6 +12,8 @@ export interface NewPerson {
   email: string;
   roles: Role[];
   password: string;
+  /** yyyy-mm-dd; the access ends with this day. */
+  lastDay?: string | null;
 }
 
 export async function addPerson(context: CommandContext, person: NewPerson): Promise<{ personId: number }> {
@@ -42,13 +44,18 @@ export async function createFirstAdmin(
   });
 }
 
+/** The moment a calendar day (UTC) is over. */
+export function endOfDay(day: string | null | undefined): Date | null {
+  return day ? new Date(Date.parse(`${day}T00:00:00Z`) + 86_400_000) : null;
+}
+
 async function insertPerson(work: Work, context: CommandContext, person: NewPerson, passwordHash: string) {
   const { tables } = db();
   const { transaction } = work;
   const { name, email, roles } = person;
   try {
     const { id } = await tables.people.create(
-      { name, email, passwordHash, createdAt: context.at },
+      { name, email, passwordHash, createdAt: context.at, accessUntil: endOfDay(person.lastDay) },
       { transaction },
     );
     await tables.personRoles.bulkCreate(
@@ -59,7 +66,7 @@ async function insertPerson(work: Work, context: CommandContext, person: NewPers
       action: 'person.add',
       subject: { kind: 'person', id, text: name },
       before: null,
-      after: { name, email, roles, active: true },
+      after: { name, email, roles, active: true, ...(person.lastDay ? { lastDay: person.lastDay } : {}) },
     });
     return { personId: id };
   } catch (problem) {

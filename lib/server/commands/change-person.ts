@@ -4,11 +4,17 @@ import type { Role } from '@/lib/domain/roles';
 import type { CommandContext } from '../context';
 import { db, select } from '../db';
 import { inTransaction } from '../transaction';
+import { endOfDay } from './add-person';
 
 /** Roles and whether the person may sign in. Their sessions end at once, so that no old right lingers. */
 export async function changePerson(
   context: CommandContext,
-  { personId, roles, active }: { personId: number; roles: Role[]; active: boolean },
+  {
+    personId,
+    roles,
+    active,
+    lastDay = null,
+  }: { personId: number; roles: Role[]; active: boolean; lastDay?: string | null },
 ): Promise<{ personId: number }> {
   const { tables } = db();
   return inTransaction(context, async (work) => {
@@ -33,12 +39,14 @@ export async function changePerson(
       { transaction },
     );
     const wasActive = person.active;
-    await person.update({ active, sessionVersion: person.sessionVersion + 1 }, { transaction });
+    const accessUntil = endOfDay(lastDay);
+    const wasUntil = person.accessUntil;
+    await person.update({ active, accessUntil, sessionVersion: person.sessionVersion + 1 }, { transaction });
     work.audit({
       action: 'person.change',
       subject: { kind: 'person', id: personId, text: person.name },
-      before: { roles: before.map((row) => row.role).sort(), active: wasActive },
-      after: { roles: [...new Set(roles)].sort(), active },
+      before: { roles: before.map((row) => row.role).sort(), active: wasActive, until: wasUntil },
+      after: { roles: [...new Set(roles)].sort(), active, until: accessUntil },
     });
     return { personId };
   });

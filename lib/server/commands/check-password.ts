@@ -23,8 +23,9 @@ interface Known {
 export async function checkPassword({ email, password, address, at }: Knock) {
   const attempt = await noteAttempt(email, address, at);
   const [person] = await select<Known>(
-    'SELECT id, name, password_hash, active, session_version FROM people WHERE email = :email',
-    { email },
+    `SELECT id, name, password_hash, active AND (access_until IS NULL OR access_until > :at) AS active, session_version
+     FROM people WHERE email = :email`,
+    { email, at },
   );
   const right = person?.active
     ? await isPassword(person.password_hash, password)

@@ -4,7 +4,7 @@ import { READING_STEPS } from '@/lib/domain/life-cycle';
 import { RETURN_WORDS, type ReturnReason } from '@/lib/domain/views';
 import type { CommandContext } from '../context';
 import { db } from '../db';
-import { env } from '../env';
+import { pageAddress } from '../mail-words';
 import { findReading, readingText, stepReading, type ReadingFacts } from '../reading-facts';
 import { inTransaction, type Work } from '../transaction';
 
@@ -53,6 +53,8 @@ async function mailSender(
   await work.mail({
     to: sender.email,
     subject: `Returned: ${readingText(facts)}`,
+    notice: true,
+    cause: `returned ${facts.readingId}`,
     text: [
       `Hello ${sender.name},`,
       '',
@@ -60,7 +62,7 @@ async function mailSender(
       '',
       why,
       '',
-      `${env().NEXTAUTH_URL.replace(/\/$/, '')}/frames/${facts.frameId}`,
+      pageAddress(`/frames/${facts.frameId}`),
     ].join('\n'),
   });
 }

@@ -147,6 +147,8 @@ async function mailSender(
   await work.mail({
     to: sender.email,
     subject: `Withdrawn: ${readingText(facts)}`,
+    notice: true,
+    cause: `withdrawn ${facts.readingId}`,
     text: [
       `Hello ${sender.name},`,
       '',

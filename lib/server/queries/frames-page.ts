@@ -20,7 +20,14 @@ function filterOf(q: FramesQuery, personId: number, now: Date): Filter {
     parts.push(part);
     Object.assign(values, more);
   };
-  if (q.find.trim()) add('f.find_text LIKE :find', { find: contains(q.find) });
+  const fingerprint = /^[0-9a-f]{8,64}$/i.test(q.find.trim());
+  if (fingerprint)
+    add(
+      `(f.find_text LIKE :find OR f.sha256 LIKE :begins OR EXISTS (
+        SELECT 1 FROM readings d WHERE d.frame_id = f.id AND d.digest LIKE :begins))`,
+      { find: contains(q.find), begins: `${q.find.trim().toLowerCase()}%` },
+    );
+  else if (q.find.trim()) add('f.find_text LIKE :find', { find: contains(q.find) });
   if (q.benchId !== null) add('f.bench_id = :benchId', { benchId: q.benchId });
   if (q.lotId !== null) add('f.lot_id = :lotId', { lotId: q.lotId });
   if (q.days > 0) add('f.received_at >= :since', { since: new Date(now.getTime() - q.days * 86_400_000) });

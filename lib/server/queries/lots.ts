@@ -80,9 +80,10 @@ export async function listOpenLots(): Promise<LotRow[]> {
   return found.map(lotOf);
 }
 
-/** The newest frame's reading of a unit of the lot: what the unit stands at. */
+/** The reading chosen to be reported, or the newest frame's: what the unit stands at. */
 const STANDING_READING = `LEFT JOIN readings r ON r.id = (
-  SELECT f.reading_id FROM frames f WHERE f.unit_id = u.id AND f.reading_id IS NOT NULL ORDER BY f.id DESC LIMIT 1)`;
+  SELECT f.reading_id FROM frames f WHERE f.unit_id = u.id AND f.reading_id IS NOT NULL ORDER BY f.reading_id <=> (
+    SELECT c.reading_id FROM reportable_choices c WHERE c.unit_id = u.id ORDER BY c.id DESC LIMIT 1) DESC, f.id DESC LIMIT 1)`;
 
 export async function findLot(id: number, q: { page: number; find: string }): Promise<LotView | null> {
   const [lot] = await select<LotColumns>(`${LOTS} WHERE l.id = :id`, { id });

@@ -10,13 +10,14 @@ interface Row {
   active: number;
   last_sign_in_at: Date | null;
   created_at: Date;
+  access_until: Date | null;
   roles: string | null;
 }
 
 export async function listPeople(): Promise<PersonRow[]> {
   const rows = await select<Row>(
-    `SELECT p.id, p.name, p.email, p.active, p.last_sign_in_at, p.created_at,
-       GROUP_CONCAT(r.role ORDER BY FIELD(r.role, 'technician', 'reviewer', 'qa', 'admin')) AS roles
+    `SELECT p.id, p.name, p.email, p.active, p.last_sign_in_at, p.created_at, p.access_until,
+       GROUP_CONCAT(r.role ORDER BY FIELD(r.role, 'technician', 'reviewer', 'qa', 'admin', 'auditor')) AS roles
      FROM people p LEFT JOIN person_roles r ON r.person_id = p.id GROUP BY p.id ORDER BY p.active DESC, p.name`,
   );
   return rows.map((row) => ({
@@ -27,6 +28,7 @@ export async function listPeople(): Promise<PersonRow[]> {
     active: Boolean(row.active),
     lastSignInAt: row.last_sign_in_at?.toISOString() ?? null,
     createdAt: row.created_at.toISOString(),
+    accessUntil: row.access_until?.toISOString() ?? null,
   }));
 }
 
@@ -34,4 +36,12 @@ export async function listPeople(): Promise<PersonRow[]> {
 export async function anyPeople(): Promise<boolean> {
   const [found] = await select<{ any_people: number }>('SELECT EXISTS (SELECT 1 FROM people) AS any_people');
   return Boolean(found.any_people);
+}
+
+/** Do this person's notices come together once a day? */
+export async function hasDailyMail(personId: number): Promise<boolean> {
+  const [row] = await select<{ mail_daily: number }>('SELECT mail_daily FROM people WHERE id = :personId', {
+    personId,
+  });
+  return Boolean(row?.mail_daily);
 }

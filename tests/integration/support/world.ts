@@ -42,6 +42,7 @@ export const PEOPLE = {
   reviewer2: ['reviewer'],
   both: ['technician', 'reviewer'],
   qa: ['qa'],
+  auditor: ['auditor'],
   nobody: [],
 } as const satisfies Record<string, readonly Role[]>;
 export type Who = keyof typeof PEOPLE;

@@ -2,38 +2,40 @@ import { barredFromAccepting, can, PERMISSIONS, type Action } from '@/lib/domain
 import { READING_STATES, READING_STEPS, readingMay, type ReadingStep } from '@/lib/domain/life-cycle';
 import { ROLES, type Role } from '@/lib/domain/roles';
 
-/** Written out by hand, so that a change of the table has to be made twice: t technician, r reviewer, q QA, a admin. */
+/** Written out by hand, so that a change of the table has to be made twice: t technician, r reviewer, q QA, a admin, u auditor. */
 const MATRIX: Record<Action, string> = {
-  'frames.see': 'trqa',
+  'frames.see': 'trqau',
   'frames.upload': 't',
   'readings.fit': 'tr',
   'readings.send': 't',
   'readings.accept': 'r',
   'readings.return': 'r',
   'comments.add': 'trqa',
+  'readings.choose': 'rq',
   'readings.withdraw': 'rq',
   'outcomes.set': 'rq',
-  'lots.see': 'trqa',
+  'lots.see': 'trqau',
   'lots.open': 'ta',
   'units.add': 'ta',
   'specifications.add': 'qa',
-  'benches.see': 'trqa',
+  'benches.see': 'trqau',
   'benches.add': 'a',
   'setups.add': 'a',
   'setups.decide': 'q',
   'plates.see': 'trqa',
   'plates.change': 'qa',
-  'certificates.see': 'trqa',
+  'certificates.see': 'trqau',
   'certificates.add': 'qa',
   'sources.add': 'qa',
   'benches.release': 'q',
   'conditions.enter': 'tqa',
-  'charts.see': 'trqa',
+  'charts.see': 'trqau',
   'people.see': 'a',
   'people.change': 'a',
-  'log.see': 'qa',
+  'log.see': 'qau',
+  'withdrawals.see': 'rqu',
 };
-const LETTER: Record<Role, string> = { technician: 't', reviewer: 'r', qa: 'q', admin: 'a' };
+const LETTER: Record<Role, string> = { technician: 't', reviewer: 'r', qa: 'q', admin: 'a', auditor: 'u' };
 
 describe('permissions', () => {
   const cases = (Object.keys(PERMISSIONS) as Action[]).flatMap((action) =>

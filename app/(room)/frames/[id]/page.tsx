@@ -9,9 +9,17 @@ import { subjectName } from '@/lib/client/words';
 import { can } from '@/lib/domain/permissions';
 import { commentsOf, listNames } from '@/lib/server/queries/comments';
 import { findFrame, mayFor } from '@/lib/server/queries/frames';
+import { repeatsOf } from '@/lib/server/queries/repeats';
 import { requireMe } from '@/lib/server/session';
 import { enterFrameConditions } from '../../conditions/actions';
-import { addComment, answerWithdrawal, askWithdrawal, keepFit, sendToReview } from '../../readings/actions';
+import {
+  addComment,
+  answerWithdrawal,
+  askWithdrawal,
+  chooseReading,
+  keepFit,
+  sendToReview,
+} from '../../readings/actions';
 import { StillMoving } from './_components/still-moving';
 
 interface Props {
@@ -59,6 +67,11 @@ export default async function FramePage(props: Props) {
         keepFit={keepFit}
         sendToReview={sendToReview}
         withdrawal={{ askWithdrawal, answerWithdrawal }}
+        repeating={{
+          repeats: frame.subject.kind === 'unit' ? await repeatsOf(frame.subject.unitId) : null,
+          mayChoose: can(me, 'readings.choose'),
+          chooseReading,
+        }}
         commenting={{
           comments: await commentsOf(frame.id),
           people: can(me, 'comments.add') ? await listNames() : [],

@@ -14,11 +14,11 @@ export function FindForm({ query }: { query: FramesQuery }) {
       {query.mine ? <input type="hidden" name="mine" value="1" /> : null}
       <div className="w-[190px] max-[1240px]:w-[150px]">
         <Field
-          label="Serial, lot or file"
+          label="Serial, lot, file or fingerprint"
           labelHidden
           name="find"
           type="search"
-          placeholder="Serial or lot"
+          placeholder="Serial, lot, file…"
           defaultValue={query.find}
           key={query.find}
         />

@@ -15,6 +15,7 @@ const WORDS: Record<string, string> = {
   'person.add': 'Person added',
   'person.ask-reset': 'Password link asked for',
   'person.change': 'Person changed',
+  'person.mail-timing': 'Mail timing changed',
   'person.reset-password': 'Password changed',
   'person.sign-out-everywhere': 'Sessions ended',
   'reading.accept': 'Reading accepted',
@@ -42,6 +43,7 @@ const WORDS: Record<string, string> = {
   'source.renew': 'Certificate of a source renewed',
   'specification.add': 'Specification added',
   'specification.retire': 'Specification retired',
+  'unit.choose-reading': 'Reading to be reported chosen',
   'unit.outcome': 'Outcome set',
   'units.add': 'Units added',
 };

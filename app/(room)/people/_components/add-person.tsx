@@ -11,6 +11,7 @@ import type { ActionAnswer } from '@/lib/domain/errors';
 import { LIMITS } from '@/lib/domain/limits';
 import type { Role } from '@/lib/domain/roles';
 import type { newPersonSchema } from '@/lib/domain/schemas';
+import { LastDay } from './last-day';
 import { RoleTicks } from './role-ticks';
 
 interface Props {
@@ -31,6 +32,7 @@ function PersonForm({ addPerson, close }: Props & { close: () => void }) {
   const [email, setEmail] = useState('');
   const [password, setPassword] = useState('');
   const [roles, setRoles] = useState<Role[]>(['technician']);
+  const [lastDay, setLastDay] = useState('');
   const submit = useSubmit<unknown>();
   return (
     <form
@@ -38,7 +40,7 @@ function PersonForm({ addPerson, close }: Props & { close: () => void }) {
       onSubmit={(event) => {
         event.preventDefault();
         submit.run(
-          () => addPerson({ name, email, password, roles }),
+          () => addPerson({ name, email, password, roles, lastDay: lastDay || null }),
           () => {
             close();
             router.refresh();
@@ -75,6 +77,7 @@ function PersonForm({ addPerson, close }: Props & { close: () => void }) {
         />
       </div>
       <RoleTicks roles={roles} onChange={setRoles} error={submit.fields.roles} />
+      <LastDay value={lastDay} onChange={setLastDay} error={submit.fields.lastDay} />
       <FormFoot word="Add the person" waiting={submit.waiting} message={submit.message} onBack={close} />
     </form>
   );

@@ -10,6 +10,7 @@ import { useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import { ROLE_WORDS, type Role } from '@/lib/domain/roles';
 import type { PersonRow } from '@/lib/domain/views';
+import { LastDay, lastDayOf } from './last-day';
 import { RoleTicks } from './role-ticks';
 
 interface Props {
@@ -19,6 +20,7 @@ interface Props {
     personId: number;
     roles: Role[];
     active: boolean;
+    lastDay: string | null;
   }) => Promise<ActionAnswer<unknown>>;
 }
 
@@ -36,7 +38,10 @@ export function PersonLine({ person, isMe, changePerson }: Props) {
         </div>
         <div>
           {person.active ? (
-            person.roles.map((role) => ROLE_WORDS[role]).join(', ') || 'no role'
+            <>
+              {person.roles.map((role) => ROLE_WORDS[role]).join(', ') || 'no role'}
+              {person.accessUntil ? <div className="sub">until {lastDayOf(person.accessUntil)}</div> : null}
+            </>
           ) : (
             <span className="text-ink-3">switched off</span>
           )}
@@ -70,6 +75,7 @@ function ChangeForm({ person, isMe, changePerson, close }: Props & { close: () =
   const router = useRouter();
   const [roles, setRoles] = useState<Role[]>(person.roles);
   const [active, setActive] = useState(person.active);
+  const [lastDay, setLastDay] = useState(lastDayOf(person.accessUntil));
   const submit = useSubmit<unknown>();
   return (
     <form
@@ -77,7 +83,7 @@ function ChangeForm({ person, isMe, changePerson, close }: Props & { close: () =
       onSubmit={(event) => {
         event.preventDefault();
         submit.run(
-          () => changePerson({ personId: person.id, roles, active }),
+          () => changePerson({ personId: person.id, roles, active, lastDay: lastDay || null }),
           () => {
             close();
             router.refresh();
@@ -86,6 +92,7 @@ function ChangeForm({ person, isMe, changePerson, close }: Props & { close: () =
       }}
     >
       <RoleTicks roles={roles} onChange={setRoles} error={submit.fields.roles} />
+      <LastDay value={lastDay} onChange={setLastDay} error={submit.fields.lastDay} />
       <Tick label="May sign in" checked={active} onChange={(event) => setActive(event.target.checked)} />
       <p className="text-small text-ink-2">
         {isMe

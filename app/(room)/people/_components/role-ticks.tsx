@@ -9,7 +9,7 @@ interface Props {
   error?: string;
 }
 
-/** The four roles; what a person may do is the union of theirs. */
+/** What a person may do is the union of their roles; an auditor only reads. */
 export function RoleTicks({ roles, onChange, error }: Props) {
   return (
     <fieldset>
