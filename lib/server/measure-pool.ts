@@ -1,8 +1,9 @@
 import 'server-only';
 import { Piscina } from 'piscina';
-import type { FitOptions, FrameAnswer, Refusal, SetupValues } from '@/lib/domain/reading-result';
+import type { BudgetRow, FitOptions, FrameAnswer, Refusal, SetupValues } from '@/lib/domain/reading-result';
 import type { ScaleAnswer, ScaleKind, ScaleRefusal } from '@/lib/domain/scale-result';
 import type { ScanAnswer, ScanDrawing, ScanOptions } from '@/lib/domain/scan-result';
+import type { MonteCarlo } from '@/lib/quantity/monte-carlo';
 import { env } from './env';
 
 export interface PreviewPicture {
@@ -100,6 +101,17 @@ export async function scaleInPool(
     { transferList: [bytes.buffer] },
   );
   return answer as ScaleAnswer | ScaleRefusal;
+}
+
+/** The drawn check of a budget: some hundred thousand draws would hold up every other request. */
+export async function drawBudgetInPool(
+  rows: readonly BudgetRow[],
+  valueNm: number,
+  expandedNm: number,
+  seed: string,
+): Promise<MonteCarlo> {
+  const answer: unknown = await pool().run({ task: 'draw-budget', rows, valueNm, expandedNm, seed });
+  return answer as MonteCarlo;
 }
 
 export async function closePool(): Promise<void> {

@@ -22,6 +22,8 @@ const NO_WAVELENGTH: [file: string, line: RegExp, what: string][] = [
     /\b(limit\(specification)/,
     'limits of a sentence that names the medium',
   ],
+  ['app/(room)/benches/_components/bench-helpers.tsx', /errorNm/, 'what a formula adds'],
+  ['components/reading/repeat-frames.tsx', /scatterNm/, 'scatter'],
   ['components/reading/move-text.ts', /move\.nm/, 'change of a value'],
   [
     'lib/server/commands/apply-correction.ts',

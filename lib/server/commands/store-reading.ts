@@ -6,9 +6,9 @@ import type { FitResult, ScanOptions } from '@/lib/domain/scan-result';
 import type { Specification } from '@/lib/domain/specification';
 import { canonicalJson, sha256 } from '../canonical';
 import { db, select } from '../db';
+import { drawBudgetInPool } from '../measure-pool';
 import { gravest, lengthColumns, riskOf } from '../findings';
 import type { ComparisonFacts } from '@/lib/quantity/comparison';
-import { drawBudget } from '@/lib/quantity/monte-carlo';
 import { valueIn, type ValueIn } from '@/lib/quantity/value-in';
 
 /** What a new reading is made from. */
@@ -101,7 +101,7 @@ export async function storeReading(
   const { budget, valueNm, expandedNm } = value;
   const drawn =
     budget.length && valueNm !== null && expandedNm !== null
-      ? drawBudget(budget, valueNm, expandedNm, digest)
+      ? await drawBudgetInPool(budget, valueNm, expandedNm, digest)
       : null;
   await tables.readingValues.create(
     {

@@ -3,9 +3,10 @@ import type { FitOptions, SetupValues } from '@/lib/domain/reading-result';
 import type { FitResult } from '@/lib/domain/scan-result';
 import type { Role } from '@/lib/domain/roles';
 import type { ReadingBrief, ReadingView, ReturnReason } from '@/lib/domain/views';
-import { drawBudget, type MonteCarlo } from '@/lib/quantity/monte-carlo';
+import type { MonteCarlo } from '@/lib/quantity/monte-carlo';
 import type { ValueIn } from '@/lib/quantity/value-in';
 import { select } from '../db';
+import { drawBudgetInPool } from '../measure-pool';
 import { firstValueOf } from '../move-reasons';
 import { BRIEF_COLUMNS, BRIEF_JOINS, briefOf, type BriefColumns } from './reading-brief';
 import { setupViews } from './setup-views';
@@ -58,7 +59,7 @@ export async function readingView(readingId: number): Promise<ReadingView | null
   return {
     ...brief,
     result,
-    ...valueOf(row, result),
+    ...(await valueOf(row, result)),
     conditions: { air, sourceTemperature },
     findings: result.findings,
     setup,
@@ -84,7 +85,7 @@ type Value = Pick<ReadingView, 'dof' | 'budget' | 'corrections' | 'method' | 'ot
 type KeptValue = Omit<ValueIn, 'judgement' | 'method' | 'other'> & Partial<Pick<ValueIn, 'method' | 'other'>>;
 
 /** The kept value; a reading of before values were kept shows its result's budget, drawn from the same seed. */
-function valueOf(row: ViewColumns, result: FitResult): Value {
+async function valueOf(row: ViewColumns, result: FitResult): Promise<Value> {
   if (row.value_json !== null) {
     const {
       dof,
@@ -100,7 +101,7 @@ function valueOf(row: ViewColumns, result: FitResult): Value {
   const { budget, wavelengthNm, expandedNm, dofWavelength } = result;
   const drawn =
     budget.length && wavelengthNm !== null && expandedNm !== null
-      ? drawBudget(budget, wavelengthNm, expandedNm, row.digest)
+      ? await drawBudgetInPool(budget, wavelengthNm, expandedNm, row.digest)
       : null;
   const plain = { corrections: [], method: 'absolute' as const, other: null };
   return { dof: dofWavelength, budget, ...plain, monteCarlo: drawn };

@@ -45,7 +45,7 @@ const LABELS: Record<(typeof KEYS)[number], string> = {
 /** Planning: what the camera will see, how to expose, how wide a source slit may be. Nothing here changes the setup. */
 export function BenchHelpers({ setup, nm, pictureWidthPx }: Props) {
   const [text, setText] = useState(() => ({
-    wavelength: nm.toFixed(1),
+    wavelength: String(Math.round(10 * nm) / 10),
     separation: String(setup.separationUm.value),
     width: String(setup.widthUm.value),
     distance: String(setup.distanceMm.value),
