@@ -55,7 +55,10 @@ export function RepeatFrames({ repeats, mayChoose, chooseReading, shownId }: Pro
       </div>
       {meanNm === null ? null : (
         <p className="mt-2 text-small text-ink-2">
-          Mean of {counted} <b className="text-ink">{formatNumber(meanNm, 3)} nm ({MEDIUM_SHORT[medium]})</b>
+          Mean of {counted}{' '}
+          <b className="text-ink">
+            {formatNumber(meanNm, 3)} nm ({MEDIUM_SHORT[medium]})
+          </b>
           {scatterNm === null ? '' : `, scatter s = ${formatNumber(scatterNm, 3)} nm, without the setup`}
           {rows.some(({ isOutlier }) => isOutlier) ? '. One value does not belong to the others.' : '.'}
         </p>
