@@ -168,7 +168,14 @@ test('the queue, the review page, acceptance and the chart see the same reading'
   expect(queue).toHaveLength(1);
   const [{ readingId }] = queue;
   const review = await findReview(world.people.reviewer, readingId);
-  expect(review?.queue).toEqual({ at: 1, of: 1, previousId: null, nextId: null });
+  expect(review?.queue).toEqual({
+    at: 1,
+    of: 1,
+    previousId: null,
+    nextId: null,
+    nextFrameId: null,
+    because: 'No other lot of this supplier has been accepted yet.',
+  });
   const looks = review?.frame.shown?.findings.filter(({ word }) => word === 'look') ?? [];
   const answers = looks.map(({ check }) => ({ check, answer: 'accept-as-is' as const, reason: 'Seen.' }));
   await acceptReading(as(world.people.reviewer), { readingId, version: 0, password: PASSWORD, answers });
