@@ -8,7 +8,7 @@ import {
   type FindingContext,
   type PatternContext,
 } from './finding-context';
-import { nearFieldRelative } from './wavelength';
+import { nearFieldRelative } from '@/lib/quantity/two-slit';
 
 export function geometryFindings(c: FindingContext): Finding[] {
   return [tilt(c), yaw(c), keystone(c), ...placeFindings(c)];

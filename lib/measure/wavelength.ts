@@ -2,7 +2,7 @@ import type { BudgetRow, Estimate, SetupValues, Shape } from '@/lib/domain/readi
 import { vacuumFromAir } from '@/lib/quantity/air-index';
 import { combineBudget, type BudgetInput } from '@/lib/quantity/budget';
 import { uOfHalfWidth } from '@/lib/quantity/monte-carlo';
-import { wavelengthFromSpacing } from '@/lib/quantity/two-slit';
+import { nearFieldRelative, wavelengthFromSpacing } from '@/lib/quantity/two-slit';
 
 export interface Wavelength {
   airNm: number | null;
@@ -48,15 +48,6 @@ export interface FrameEffect {
 /** Effect of a colour sensor's missing sites, from simulation: 0.128 / (px per fringe)^2 of the wavelength. */
 export function demosaicRelative(spacingPx: number): number {
   return 0.128 / (spacingPx * spacingPx);
-}
-
-/**
- * Far-field formula at a finite distance, from simulation with Fresnel integrals: 0.18 (w^2/(lambda L))^2 of the wavelength
- * when the region scales with L.
- */
-export function nearFieldRelative(widthUm: number, wavelengthNm: number, distanceMm: number): number {
-  const number = (widthUm * widthUm) / (wavelengthNm * distanceMm);
-  return 0.18 * number * number;
 }
 
 /** What the frame itself adds to the budget: each largest effect taken as a half width (rectangular, / sqrt 3). */

@@ -2,7 +2,7 @@
  * Planning a bench: what a camera will see of it, before anything is set up. Letters: d separation, w width, L distance,
  * λ wavelength in air, s pixel scale, R distance of a source slit, e its width, V visibility.
  */
-import { orderPositionMm, spacingPx } from './two-slit';
+import { nearFieldRelative, orderPositionMm, spacingPx } from './two-slit';
 
 /** Peaks between these shares of full scale use the camera well and clip nothing (common practice, no source). */
 export const GOOD_PEAK = [0.5, 0.85] as const;
@@ -115,5 +115,5 @@ export function farFieldNumber(widthUm: number, wavelengthNm: number, distanceMm
  * the distance. From the project's own simulation with Fresnel integrals; good to a tenth of itself up to w²/λL = 0.1.
  */
 export function farFieldErrorNm(widthUm: number, wavelengthNm: number, distanceMm: number): number {
-  return 0.18 * farFieldNumber(widthUm, wavelengthNm, distanceMm) ** 2 * wavelengthNm;
+  return nearFieldRelative(widthUm, wavelengthNm, distanceMm) * wavelengthNm;
 }

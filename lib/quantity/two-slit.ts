@@ -59,3 +59,12 @@ export function isMissingOrder(m: number, separationUm: number, widthUm: number,
   const k = (m * widthUm) / separationUm;
   return Math.round(k) !== 0 && Math.abs(k - Math.round(k)) <= slack;
 }
+
+/**
+ * What the far-field formula adds at a finite distance, as a share of the wavelength: 0.18 (w^2/(lambda L))^2 when the
+ * region scales with L (simulation with Fresnel integrals). Width in um, wavelength in nm, distance in mm.
+ */
+export function nearFieldRelative(widthUm: number, wavelengthNm: number, distanceMm: number): number {
+  const number = (widthUm * widthUm) / (wavelengthNm * distanceMm);
+  return 0.18 * number * number;
+}
