@@ -11,6 +11,7 @@ const OTHER_WAYS = /\.(toFixed|toPrecision|toExponential|toLocaleString)\(|Intl\
 const FOR_MACHINES: Record<string, string> = {
   'app/(room)/benches/[id]/new-setup/_components/setup-text.ts': 'text of a field',
   'app/(room)/log/_components/change.tsx': 'raw content of a log row',
+  'app/(room)/sources/_components/add-source.tsx': 'text of a field',
   'components/budget/what-if.tsx': 'text of a field',
   'components/figures/calliper-parts.tsx': 'drawing',
   'components/figures/geometry-drawing.tsx': 'drawing',

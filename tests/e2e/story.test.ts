@@ -150,6 +150,12 @@ describe('the main job', () => {
 
     await page.goto('/sources');
     await page.getByRole('button', { name: /^Add a (reference )?source/ }).click();
+    // A published line fills the form; what is typed afterwards stands.
+    await page.getByLabel('Published line').selectOption('Cd 644 (C′)');
+    expect(await page.getByLabel('Wavelength in vacuum, nm').inputValue()).toBe('644.0249');
+    expect(await page.getByLabel('Kind', { exact: true }).inputValue()).toBe('lamp-line');
+    await page.getByLabel('Published line').selectOption('');
+    await page.getByLabel('Kind', { exact: true }).selectOption('stabilised-laser');
     await page.getByLabel('Name', { exact: true }).fill('Reference S-1');
     await page.getByLabel('Wavelength in vacuum, nm').fill('635.1725');
     await page.getByLabel(/^Standard uncertainty/).fill('0.001');

@@ -10,6 +10,7 @@ import { useSubmit } from '@/lib/client/use-submit';
 import type { ActionAnswer } from '@/lib/domain/errors';
 import { SOURCE_KIND_WORDS, SOURCE_KINDS, type SourceKind } from '@/lib/domain/source';
 import type { sourceSchema } from '@/lib/domain/source-schemas';
+import { LINE_KINDS, REFERENCE_LINES, type ReferenceLine } from '@/lib/quantity/reference-lines';
 import { CertifiedFields, certifiedInput, type CertifiedText } from './source-fields';
 
 interface Props {
@@ -26,14 +27,43 @@ export function AddSource({ addSource }: Props) {
 
 const START: CertifiedText = { vacuum: '', u: '', certificate: '', file: null, due: '' };
 
+type Kind = Exclude<SourceKind, 'unstated'>;
+
+/** A free-running laser that is no He-Ne is known too poorly for a check: it is a product like any other. */
+function kindOf({ kind, isReference }: ReferenceLine): Kind {
+  if (kind !== 'free-running-laser') return kind;
+  return isReference ? 'free-running-he-ne' : 'product';
+}
+
+/** What a published line says of a source; a stabilised laser stands on its own certificate, which is to be named. */
+function textOf(line: ReferenceLine): CertifiedText {
+  return {
+    ...START,
+    vacuum: String(line.vacuumNm),
+    u: String(Number(line.uNm.toPrecision(2))),
+    certificate: line.kind === 'stabilised-laser' ? '' : line.source,
+  };
+}
+
 function SourceForm({ addSource, close }: Props & { close: () => void }) {
   const router = useRouter();
   const [name, setName] = useState('');
   const [note, setNote] = useState('');
-  const [kind, setKind] = useState<Exclude<SourceKind, 'unstated'>>('stabilised-laser');
+  const [kind, setKind] = useState<Kind>('stabilised-laser');
+  const [line, setLine] = useState('');
   const [isReference, setIsReference] = useState(true);
   const [text, setText] = useState(START);
   const submit = useSubmit<unknown>();
+  const pick = (wanted: string) => {
+    setLine(wanted);
+    const found = REFERENCE_LINES.find((one) => one.name === wanted);
+    if (!found) return;
+    setName(found.name);
+    setKind(kindOf(found));
+    setIsReference(found.isReference);
+    setText(textOf(found));
+    setNote(found.note);
+  };
   return (
     <form
       onSubmit={(event) => {
@@ -55,6 +85,23 @@ function SourceForm({ addSource, close }: Props & { close: () => void }) {
       }}
     >
       <div className="form-grid">
+        <Select
+          label="Published line"
+          help="Fills the fields below with a published wavelength."
+          value={line}
+          onChange={(event) => pick(event.target.value)}
+        >
+          <option value="">none: entered by hand</option>
+          {Object.entries(LINE_KINDS).map(([one, words]) => (
+            <optgroup key={one} label={words}>
+              {REFERENCE_LINES.filter((entry) => entry.kind === one).map((entry) => (
+                <option key={entry.name} value={entry.name}>
+                  {entry.name}
+                </option>
+              ))}
+            </optgroup>
+          ))}
+        </Select>
         <Field
           label="Name"
           required
