@@ -2,7 +2,7 @@ import 'server-only';
 import { mentionsIn } from '@/lib/domain/comment';
 import type { CommandContext } from '../context';
 import { db, select } from '../db';
-import { pageAddress } from '../mail-words';
+import { pageAddress } from '../people-mail';
 import { findReading, readingText } from '../reading-facts';
 import { inTransaction } from '../transaction';
 

@@ -2,7 +2,7 @@ import 'server-only';
 import { UniqueConstraintError } from 'sequelize';
 import type { CommandContext } from '../context';
 import { db, select } from '../db';
-import { pageAddress } from '../mail-words';
+import { pageAddress } from '../people-mail';
 import { inTransaction } from '../transaction';
 
 /**

@@ -4,9 +4,9 @@ import { READING_STEPS } from '@/lib/domain/life-cycle';
 import { RETURN_WORDS, type ReturnReason } from '@/lib/domain/views';
 import type { CommandContext } from '../context';
 import { db } from '../db';
-import { pageAddress } from '../mail-words';
-import { findReading, readingText, stepReading, type ReadingFacts } from '../reading-facts';
-import { inTransaction, type Work } from '../transaction';
+import { findReading, readingText, stepReading } from '../reading-facts';
+import { mailSender } from '../sender-mail';
+import { inTransaction } from '../transaction';
 
 /** Gives a reading back to the technician, with the reason, and mails it to whoever sent it. */
 export async function returnReading(
@@ -34,35 +34,14 @@ export async function returnReading(
       before: { status: facts.status },
       after: { status: READING_STEPS.return.to, reason, words },
     });
-    await mailSender(work, context, facts, `${RETURN_WORDS[reason]}.${words ? ` ${words}` : ''}`);
+    await mailSender(work, facts, {
+      subject: `Returned: ${readingText(facts)}`,
+      cause: `returned ${facts.readingId}`,
+      paragraphs: [
+        `${context.actor.name} returned ${readingText(facts)}:`,
+        `${RETURN_WORDS[reason]}.${words ? ` ${words}` : ''}`,
+      ],
+    });
     return { readingId, version: version + 1 };
-  });
-}
-
-async function mailSender(
-  work: Work,
-  context: CommandContext,
-  facts: ReadingFacts,
-  why: string,
-): Promise<void> {
-  const sender = await db().tables.people.findByPk(facts.sentBy ?? facts.uploadedBy, {
-    transaction: work.transaction,
-    rejectOnEmpty: true,
-  });
-  if (!sender.active) return;
-  await work.mail({
-    to: sender.email,
-    subject: `Returned: ${readingText(facts)}`,
-    notice: true,
-    cause: `returned ${facts.readingId}`,
-    text: [
-      `Hello ${sender.name},`,
-      '',
-      `${context.actor.name} returned ${readingText(facts)}:`,
-      '',
-      why,
-      '',
-      pageAddress(`/frames/${facts.frameId}`),
-    ].join('\n'),
   });
 }

@@ -6,9 +6,9 @@ import { READING_STEPS, readingMay } from '@/lib/domain/life-cycle';
 import type { answerWithdrawalSchema, askWithdrawalSchema } from '@/lib/domain/withdrawal';
 import type { CommandContext } from '../context';
 import { db, select } from '../db';
-import { pageAddress } from '../mail-words';
 import { requireOwnPassword } from '../password-proofs';
-import { changedMeanwhile, findReading, readingText, stepReading, type ReadingFacts } from '../reading-facts';
+import { changedMeanwhile, findReading, readingText, stepReading } from '../reading-facts';
+import { mailSender } from '../sender-mail';
 import { inTransaction, type Work } from '../transaction';
 
 /**
@@ -88,7 +88,17 @@ export async function answerWithdrawal(
         words: wanted.words,
       },
     });
-    if (confirms) await mailSender(work, context, facts, proposal.reason);
+    if (confirms) {
+      await mailSender(work, facts, {
+        subject: `Withdrawn: ${readingText(facts)}`,
+        cause: `withdrawn ${facts.readingId}`,
+        paragraphs: [
+          `${readingText(facts)} was accepted and has now been withdrawn, confirmed by ${context.actor.name}:`,
+          proposal.reason,
+          'What was measured and signed stays as it was. A new reading can take its place:',
+        ],
+      });
+    }
     return { readingId };
   });
 }
@@ -131,34 +141,4 @@ async function openProposal(work: Work, readingId: number): Promise<boolean> {
     work.transaction,
   );
   return open.length > 0;
-}
-
-async function mailSender(
-  work: Work,
-  context: CommandContext,
-  facts: ReadingFacts,
-  reason: string,
-): Promise<void> {
-  const sender = await db().tables.people.findByPk(facts.sentBy ?? facts.uploadedBy, {
-    transaction: work.transaction,
-    rejectOnEmpty: true,
-  });
-  if (!sender.active) return;
-  await work.mail({
-    to: sender.email,
-    subject: `Withdrawn: ${readingText(facts)}`,
-    notice: true,
-    cause: `withdrawn ${facts.readingId}`,
-    text: [
-      `Hello ${sender.name},`,
-      '',
-      `${readingText(facts)} was accepted and has now been withdrawn, confirmed by ${context.actor.name}:`,
-      '',
-      reason,
-      '',
-      'What was measured and signed stays as it was. A new reading can take its place:',
-      '',
-      pageAddress(`/frames/${facts.frameId}`),
-    ].join('\n'),
-  });
 }
